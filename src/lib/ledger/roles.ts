@@ -1,0 +1,7 @@
+/** Roles nest: each may do all that the ones before it may. */
+export const ROLES = ['observer', 'member', 'maintainer', 'owner'] as const;
+export type Role = (typeof ROLES)[number];
+
+export function hasRole(role: Role | null | undefined, atLeast: Role): boolean {
+	return role != null && ROLES.indexOf(role) >= ROLES.indexOf(atLeast);
+}

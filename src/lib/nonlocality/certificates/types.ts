@@ -1,0 +1,76 @@
+/** What a reader needs to check a result without trusting the solver. One kind per claim proved. */
+import type { QuantumStrategy } from '../problem';
+
+/** A deterministic strategy `strategy[party][input] = output`; its exact value is recomputed. */
+export interface DeterministicCertificate {
+	readonly kind: 'deterministic-strategy';
+	readonly strategy: readonly (readonly number[])[];
+	/** Exact rational as a string, or null for irrational coefficients. */
+	readonly value: string | null;
+	/** How many strategies the enumeration covered (decimal string). */
+	readonly enumerated: string;
+}
+
+/** Primal and dual solutions of the no-signalling linear programme with equal exact objective. */
+export interface LinearProgrammeCertificate {
+	readonly kind: 'linear-programme';
+	/** The vertex: `"a,b|x,y"` to an exact rational. */
+	readonly primal: Readonly<Record<string, string>>;
+	/** Multipliers of the equalities, in the order the check rebuilds them; exact rationals. */
+	readonly dual: readonly string[];
+	readonly value: string;
+}
+
+/** A word per party, `[[inputs and outputs] per party]`: each letter is `[input, output]`. */
+export type Monomial = readonly (readonly (readonly [input: number, output: number])[])[];
+
+/** Dual multiplier of the moment-matrix relaxation, and the feasible moments below it. */
+export interface MomentCertificate {
+	readonly kind: 'npa-dual';
+	readonly monomials: readonly Monomial[];
+	/** Lower triangle, row by row, of the symmetric multiplier Z. */
+	readonly multiplier: readonly number[];
+	/** Multipliers z_j >= 0 of the rows P_j >= 0, by `"a,b|x,y"`; empty without those rows. */
+	readonly rowMultipliers: Readonly<Record<string, number>>;
+	/** Guaranteed bound on the functional (upper for `max`). */
+	readonly bound: number;
+	/** Moments of a strictly feasible matrix in the order the check rebuilds them, or null. */
+	readonly moments: readonly number[] | null;
+	readonly feasibleValue: number | null;
+}
+
+/** An explicit state and measurements; `value` is what the re-evaluation guarantees. */
+export interface StrategyCertificate {
+	readonly kind: 'quantum-strategy';
+	readonly strategy: QuantumStrategy;
+	readonly projective: boolean;
+	readonly value: number;
+}
+
+/** A lower and an upper side, each proved on its own. */
+export interface EnclosureCertificate {
+	readonly kind: 'enclosure';
+	readonly lower: DeterministicCertificate | StrategyCertificate | null;
+	readonly upper: MomentCertificate | null;
+	/** The relaxation the upper side belongs to, as a level of the problem format. */
+	readonly upperLevel: unknown;
+}
+
+export type Certificate =
+	| DeterministicCertificate
+	| LinearProgrammeCertificate
+	| MomentCertificate
+	| StrategyCertificate
+	| EnclosureCertificate;
+
+/** The outcome of an independent check. */
+export type CheckOutcome =
+	| {
+			readonly checked: true;
+			/** Sides proved by the check itself, doubles rounded outward. */
+			readonly lower: number | null;
+			readonly upper: number | null;
+			readonly exact: string | null;
+			readonly method: string;
+	  }
+	| { readonly checked: false; readonly reason: string };

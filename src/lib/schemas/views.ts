@@ -1,0 +1,276 @@
+/**
+ * What pages, forms and the API get from the services: plain data, ready to show. Figures are
+ * decimal strings, already rounded outward; times are ISO 8601 in UTC.
+ */
+import type { ClaimState, Relation, VerdictStatus, Visibility } from '../ledger/claim';
+import type { Role } from '../ledger/roles';
+import type { Verdict } from '../ledger/verdict';
+import type { ClaimInput } from './claim-input';
+import type { FieldIssueView } from './field-issue';
+
+/** Values on the rule, in the normalisation of what it is shown beside; null: not known yet. */
+export interface StationsView {
+	readonly local: string | null;
+	readonly quantumLower: string | null;
+	readonly quantumUpper: string | null;
+	readonly almostQuantum: string | null;
+	readonly noSignalling: string | null;
+	/** False while stations are queued or running. */
+	readonly complete: boolean;
+}
+
+export interface ProgressView {
+	readonly state: 'queued' | 'running' | 'done' | 'failed' | 'cancelled';
+	readonly stage: string | null;
+	readonly iteration: number | null;
+	/** 0 to 1. */
+	readonly fraction: number | null;
+	readonly lower: string | null;
+	readonly upper: string | null;
+	readonly seconds: number | null;
+	/** Jobs ahead of it in the queue. */
+	readonly ahead: number | null;
+}
+
+export interface SubjectView {
+	readonly inequalityId: string | null;
+	/** `CHSH`, or the expression as entered. */
+	readonly text: string;
+	/** KaTeX output (safe HTML made by the server), or null. */
+	readonly html: string | null;
+	readonly latex: string | null;
+	/** `2 in, 2 out`; empty for a described subject. */
+	readonly scenario: string;
+}
+
+export interface ReferenceLine {
+	readonly id: string;
+	/** `Arden & Voss 2004`. */
+	readonly short: string;
+	readonly locator: string;
+}
+
+export interface LedgerRow {
+	readonly id: string;
+	readonly number: number;
+	readonly subject: SubjectView;
+	readonly quantityLabel: string;
+	readonly relation: Relation;
+	readonly printed: string;
+	readonly verdict: Verdict;
+	/** `NPA level 1, see-saw d=2`. */
+	readonly recomputedBy: string;
+	readonly stations: StationsView | null;
+	readonly progress: ProgressView | null;
+	readonly reference: ReferenceLine;
+	readonly state: ClaimState;
+	readonly visibility: Visibility;
+}
+
+export interface StatusCounts extends Readonly<Record<VerdictStatus, number>> {
+	readonly all: number;
+}
+
+export interface LedgerPage {
+	readonly rows: readonly LedgerRow[];
+	/** Rows that match, and those of each status that match all but the status filter. */
+	readonly total: number;
+	readonly counts: StatusCounts;
+	readonly page: number;
+	readonly pageSize: number;
+	readonly papers: number;
+	/** Choices of the filters, with how many claims each has. */
+	readonly scenarios: readonly { readonly value: string; readonly count: number }[];
+	readonly quantities: readonly {
+		readonly value: string;
+		readonly label: string;
+		readonly count: number;
+	}[];
+}
+
+export interface RecomputationView {
+	readonly id: string;
+	/** `NPA level 2`, `See-saw, dimension 2`. */
+	readonly label: string;
+	/** `28 x 28, 153 moments`. */
+	readonly detail: string;
+	readonly lower: string | null;
+	readonly upper: string | null;
+	readonly exact: string | null;
+	readonly certificate: string | null;
+	readonly checked: boolean | null;
+	readonly checkNote: string | null;
+	readonly seconds: number | null;
+	readonly finishedAt: string | null;
+	readonly seed: number | null;
+	readonly solver: string | null;
+	readonly progress: ProgressView;
+	readonly reason: string | null;
+	/** True when the problem can be downloaded as SDPA text. */
+	readonly hasSdpa: boolean;
+}
+
+export interface ReferenceView {
+	readonly id: string;
+	readonly title: string;
+	readonly short: string;
+	readonly source: string;
+	readonly formatted: string;
+	readonly year: number | null;
+	readonly doi: string | null;
+	readonly arxiv: string | null;
+	readonly bibtex: string;
+	readonly cslJson: string;
+}
+
+export interface HistoryEntry {
+	readonly at: string;
+	/** Null: the product itself; never a name on a public page. */
+	readonly who: string | null;
+	/** `Entered`, `Recomputed: Discrepancy`, `Value changed from 2.83 to 2.8284`. */
+	readonly text: string;
+}
+
+export interface ClaimView {
+	readonly id: string;
+	readonly number: number;
+	readonly version: number;
+	readonly groupSlug: string;
+	readonly groupName: string;
+	readonly subject: SubjectView;
+	/** The representative's form of the same inequality, when it differs from what was entered. */
+	readonly map: { readonly scale: string; readonly shift: string; readonly name: string } | null;
+	readonly quantity: string;
+	readonly quantityLabel: string;
+	readonly relation: Relation;
+	readonly printed: string;
+	readonly method: string;
+	readonly locator: string;
+	readonly note: string;
+	readonly state: ClaimState;
+	readonly visibility: Visibility;
+	readonly supersededBy: { readonly number: number; readonly id: string } | null;
+	readonly verdict: Verdict;
+	readonly stations: StationsView | null;
+	readonly progress: ProgressView | null;
+	readonly recomputations: readonly RecomputationView[];
+	readonly reference: ReferenceView;
+	readonly history: readonly HistoryEntry[];
+	readonly input: ClaimInput;
+	/** The sentence about devices, when the quantity calls for it. */
+	readonly caution: boolean;
+	readonly enteredBy: string;
+	readonly enteredAt: string;
+}
+
+/** A public claim: nothing of who entered it, of notes, or of the group's other data. */
+export type PublicClaimView = Omit<
+	ClaimView,
+	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number'
+>;
+
+export interface InequalityRow {
+	readonly id: string;
+	readonly subject: SubjectView;
+	readonly parties: number;
+	readonly stations: StationsView;
+	/** Claims the viewer may see. */
+	readonly claims: number;
+}
+
+export interface NormalisationView {
+	/** Value of the URL parameter. */
+	readonly key: string;
+	readonly label: string;
+}
+
+export interface InequalityView extends InequalityRow {
+	readonly digest: string;
+	readonly latex: string;
+	/** Collins-Gisin table of a two-party inequality, exact entries as text. */
+	readonly collinsGisin: readonly (readonly string[])[] | null;
+	readonly normalisation: NormalisationView;
+	readonly normalisations: readonly NormalisationView[];
+	readonly recomputations: readonly RecomputationView[];
+	readonly claimRows: readonly LedgerRow[];
+}
+
+export interface BoundsRow {
+	readonly inequality: SubjectView & { readonly id: string };
+	readonly parties: number;
+	readonly local: string | null;
+	readonly noSignalling: string | null;
+	/** From published claims in Agreement. */
+	readonly claimedLower: BoundSource | null;
+	readonly claimedUpper: BoundSource | null;
+	/** From our own recomputations. */
+	readonly ownLower: string | null;
+	readonly ownUpper: string | null;
+	/** upper - lower of the own bounds, rounded up; `closed` when at most 1e-7 of the value. */
+	readonly gap: string | null;
+	readonly closed: boolean;
+	readonly stations: StationsView;
+}
+
+export interface BoundSource {
+	readonly printed: string;
+	readonly claimId: string;
+	readonly short: string;
+	readonly year: number | null;
+}
+
+export interface BoundsPage {
+	readonly rows: readonly BoundsRow[];
+	readonly counts: StatusCounts;
+	readonly total: number;
+	readonly page: number;
+	readonly pageSize: number;
+}
+
+/** Answer of POST /api/v1/readings: what the product understood of a half-filled form. */
+export interface ReadingView {
+	readonly formulaHtml: string | null;
+	readonly latex: string | null;
+	/** `2 parties, 2 inputs each, 2 outputs`. */
+	readonly scenario: string | null;
+	/** 0 or 1, and whether it was read or chosen; null where indices play no part. */
+	readonly indexBase: { readonly base: 0 | 1; readonly chosen: boolean } | null;
+	readonly knownAs: {
+		readonly id: string;
+		readonly name: string;
+		readonly claims: number;
+		/** What is entered = scale * it + shift; null when it is the same. */
+		readonly map: string | null;
+	} | null;
+	readonly stations: StationsView | null;
+	/** `Read as 2.82835 to 2.82845`. */
+	readonly value: string | null;
+	readonly valueRange: { readonly low: string; readonly high: string } | null;
+	/** `Will be recomputed by ...`, or why it can't be. */
+	readonly recomputedBy: string | null;
+	readonly reference: string | null;
+	readonly issues: readonly FieldIssueView[];
+}
+
+export interface GroupView {
+	readonly id: string;
+	readonly slug: string;
+	readonly name: string;
+	readonly description: string;
+	readonly role: Role;
+}
+
+export interface MemberView {
+	readonly id: string;
+	readonly name: string;
+	readonly email: string;
+	readonly role: Role;
+	readonly since: string;
+}
+
+export interface InvitationView {
+	readonly id: string;
+	readonly role: Role;
+	readonly createdBy: string;
+	readonly expiresAt: string;
+}

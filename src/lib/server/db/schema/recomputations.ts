@@ -1,0 +1,65 @@
+import { index, integer, real, sqliteTable, text } from 'drizzle-orm/sqlite-core';
+import type { Problem, Progress, Result } from '../../../nonlocality/problem';
+import { groups } from './groups';
+import { inequalities } from './inequalities';
+
+export const RECOMPUTATION_STATES = [
+	'queued',
+	'running',
+	'done',
+	'failed',
+	'cancelled'
+] as const;
+
+/** The stations every functional gets, in the order they are run. */
+export const STATIONS = [
+	'local',
+	'no-signalling',
+	'npa-1',
+	'npa-1-non-negative',
+	'almost-quantum',
+	'npa-2',
+	'see-saw-2',
+	'quantum'
+] as const;
+export type Station = (typeof STATIONS)[number];
+
+/**
+ * The job queue and its results in one table: a problem is solved once and shared by every claim
+ * that asks for it. Values are those of the inequality's representative.
+ */
+export const recomputations = sqliteTable(
+	'recomputations',
+	{
+		id: text('id').primaryKey(),
+		/** SHA-256 of the normalised problem: the same problem is one row. */
+		problemHash: text('problem_hash').notNull().unique(),
+		problem: text('problem', { mode: 'json' }).$type<Problem>().notNull(),
+		inequalityId: text('inequality_id').references(() => inequalities.id),
+		station: text('station', { enum: STATIONS }),
+		/** Whose turn it counts against; null for the seed. */
+		groupId: text('group_id').references(() => groups.id, { onDelete: 'set null' }),
+		state: text('state', { enum: RECOMPUTATION_STATES }).notNull().default('queued'),
+		attempts: integer('attempts').notNull().default(0),
+		leaseToken: text('lease_token'),
+		leaseUntil: integer('lease_until', { mode: 'timestamp_ms' }),
+		notBefore: integer('not_before', { mode: 'timestamp_ms' }),
+		progress: text('progress', { mode: 'json' }).$type<Progress>(),
+		result: text('result', { mode: 'json' }).$type<Result>(),
+		lower: real('lower'),
+		upper: real('upper'),
+		exact: text('exact'),
+		/** Whether the independent check accepted the certificate; null when there is none yet. */
+		checked: integer('checked', { mode: 'boolean' }),
+		checkNote: text('check_note'),
+		/** Why it failed or stopped, for a person. */
+		reason: text('reason'),
+		createdAt: integer('created_at', { mode: 'timestamp_ms' }).notNull(),
+		startedAt: integer('started_at', { mode: 'timestamp_ms' }),
+		finishedAt: integer('finished_at', { mode: 'timestamp_ms' })
+	},
+	(table) => [
+		index('recomputations_state').on(table.state, table.notBefore),
+		index('recomputations_inequality').on(table.inequalityId)
+	]
+);

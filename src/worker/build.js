@@ -1,0 +1,26 @@
+import { build } from 'vite';
+
+/**
+ * Bundles the solver thread's entry to `solver.js` in a folder; packages stay external, so that
+ * HiGHS finds its WebAssembly file beside itself.
+ * @param {string} outDir
+ * @param {{ watch?: boolean }} [options]
+ */
+export async function buildWorkers(outDir, options = {}) {
+	await build({
+		configFile: false,
+		logLevel: 'warn',
+		publicDir: false,
+		build: {
+			ssr: true,
+			outDir,
+			emptyOutDir: true,
+			target: 'node20',
+			watch: options.watch ? {} : null,
+			rolldownOptions: {
+				input: { solver: 'src/worker/solver.ts' },
+				output: { entryFileNames: '[name].js', format: 'es' }
+			}
+		}
+	});
+}

@@ -1,0 +1,67 @@
+import { sveltekit } from '@sveltejs/kit/vite';
+import tailwindcss from '@tailwindcss/vite';
+import { fileURLToPath } from 'node:url';
+import { defineConfig, type Plugin } from 'vitest/config';
+import { buildWorkers } from './src/worker/build.js';
+
+/** Keeps .svelte-kit/workers/solver.js fresh while developing. */
+function developmentWorkers(): Plugin {
+	return {
+		name: 'development-workers',
+		apply: 'serve',
+		async configureServer() {
+			if (!process.env.VITEST) await buildWorkers('.svelte-kit/workers', { watch: true });
+		}
+	};
+}
+
+export default defineConfig({
+	plugins: [tailwindcss(), sveltekit(), developmentWorkers()],
+	resolve: {
+		alias: {
+			// The package's own entry imports every schema library there is.
+			'sveltekit-superforms/adapters': fileURLToPath(
+				new URL('./src/lib/schemas/superforms-adapter.ts', import.meta.url)
+			)
+		}
+	},
+	build: { assetsInlineLimit: 0 },
+	test: {
+		expect: { requireAssertions: true },
+		projects: [
+			{
+				extends: true,
+				test: {
+					name: 'unit',
+					environment: 'node',
+					include: [
+						'src/**/*.test.ts',
+						'tests/architecture/**/*.test.ts',
+						'tests/vectors/**/*.test.ts'
+					],
+					exclude: ['src/lib/components/**', 'src/lib/features/**']
+				}
+			},
+			{
+				extends: true,
+				resolve: { conditions: ['browser'] },
+				test: {
+					name: 'component',
+					environment: 'jsdom',
+					include: ['src/lib/components/**/*.test.ts', 'src/lib/features/**/*.test.ts']
+				}
+			},
+			{
+				extends: true,
+				test: {
+					name: 'api',
+					environment: 'node',
+					include: ['tests/api/**/*.test.ts'],
+					fileParallelism: false,
+					testTimeout: 60_000,
+					hookTimeout: 120_000
+				}
+			}
+		]
+	}
+});

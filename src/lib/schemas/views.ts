@@ -169,6 +169,38 @@ export type PublicClaimView = Omit<
 	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number'
 >;
 
+/** What a page that watches a claim polls or streams; the page reloads its data when it changes. */
+export interface ClaimProgressView {
+	readonly number: number;
+	/** Changes whenever anything shown of the claim changes. */
+	readonly stamp: string;
+	readonly verdict: Verdict;
+	readonly progress: ProgressView | null;
+	readonly stations: StationsView | null;
+	readonly recomputations: readonly RecomputationView[];
+	/** True when nothing is queued or running any more for this claim or its stations. */
+	readonly settled: boolean;
+}
+
+/** A paper in the group's list. */
+export interface ReferenceRow extends ReferenceView {
+	readonly claims: number;
+}
+
+export interface ReferencePage extends ReferenceRow {
+	readonly claimRows: readonly LedgerRow[];
+}
+
+/** A mail that the local sink caught; demo and tests only. */
+export interface CaughtMailView {
+	readonly id: string;
+	readonly at: string;
+	readonly from: string;
+	readonly to: string;
+	readonly subject: string;
+	readonly text: string;
+}
+
 export interface InequalityRow {
 	readonly id: string;
 	readonly subject: SubjectView;

@@ -21,7 +21,8 @@ export default {
 			accent: { DEFAULT: color('accent'), soft: color('accent-soft'), ink: color('accent-ink') },
 			agreement: { DEFAULT: color('agreement'), soft: color('agreement-soft') },
 			discrepancy: { DEFAULT: color('discrepancy'), soft: color('discrepancy-soft') },
-			open: { DEFAULT: color('open'), soft: color('open-soft') }
+			open: { DEFAULT: color('open'), soft: color('open-soft') },
+			backdrop: color('backdrop')
 		},
 		fontFamily: {
 			sans: ['"Atkinson Hyperlegible Next Variable"', 'system-ui', 'sans-serif'],
@@ -37,6 +38,7 @@ export default {
 			hero: ['42px', '48px']
 		},
 		fontWeight: { normal: '400', semibold: '600', bold: '700' },
+		boxShadow: { none: 'none', floating: 'var(--floating)' },
 		borderRadius: { none: '0', control: '6px', sheet: '8px', full: '9999px' }
 	},
 	plugins: [forms({ strategy: 'class' })]

@@ -1,7 +1,7 @@
 import { build } from 'vite';
 
 /**
- * Bundles the solver thread's entry to `solver.js` in a folder; packages stay external, so that
+ * Bundles the threads' entries (`solver.js`, `references.js`) to a folder; packages stay external, so that
  * HiGHS finds its WebAssembly file beside itself.
  * @param {string} outDir
  * @param {{ watch?: boolean }} [options]
@@ -18,7 +18,10 @@ export async function buildWorkers(outDir, options = {}) {
 			target: 'node20',
 			watch: options.watch ? {} : null,
 			rolldownOptions: {
-				input: { solver: 'src/worker/solver.ts' },
+				input: {
+					solver: 'src/worker/solver.ts',
+					references: 'src/lib/server/references/thread.ts'
+				},
 				output: { entryFileNames: '[name].js', format: 'es' }
 			}
 		}

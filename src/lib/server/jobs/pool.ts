@@ -1,0 +1,99 @@
+import { cpus } from 'node:os';
+import { pathToFileURL } from 'node:url';
+import { MessageChannel } from 'node:worker_threads';
+import { Piscina } from 'piscina';
+import type { CheckOutcome } from '../../nonlocality/certificates/types';
+import type { Problem, Progress, Result } from '../../nonlocality/problem';
+import type { SolvedTask, SolverTask } from '../../../worker/task';
+import { findWorkerFile } from './worker-file';
+
+export interface SolveOptions {
+	/** Aborting stops the solver; a solver that does not stop loses its thread. */
+	readonly signal?: AbortSignal;
+	onProgress?(progress: Progress): void;
+}
+
+/** Where solvers run: threads in production, this very thread in unit tests. */
+export interface SolverPool {
+	/** How many problems it solves at the same time. */
+	readonly threads: number;
+	/** @throws SolverKilled when the thread had to be ended. */
+	solve(problem: Problem, options?: SolveOptions): Promise<SolvedTask>;
+	verify(result: Result): Promise<CheckOutcome>;
+	sdpa(problem: Problem): Promise<string>;
+	close(): Promise<void>;
+}
+
+/** The thread was ended from outside, so there is no result. */
+export class SolverKilled extends Error {
+	constructor(readonly cause: 'cancelled' | 'time') {
+		super(cause === 'time' ? 'the solver did not keep its time limit' : 'cancelled');
+		this.name = 'SolverKilled';
+	}
+}
+
+/** A told solver ends within 100 ms, a call into HiGHS does not: after this the thread is ended. */
+export const STOP_GRACE_MS = 2_000;
+/** A solver keeps its own budget; the check afterwards takes time too. Past this it is stuck. */
+export const hardLimitMs = (problem: Problem) => problem.seconds * 2_000 + 30_000;
+/** Checks and SDPA texts are short; one that is not is ended. */
+const CHECK_LIMIT_MS = 60_000;
+const HEAP_LIMIT_MB = 2_048;
+
+export const threadCount = () => Math.max(1, cpus().length - 1);
+
+/** @throws Error when the thread's bundle has not been built. */
+export function createThreadPool(threads = threadCount()): SolverPool {
+	const file = findWorkerFile('solver');
+	if (!file) throw new Error('The solver threads are not built: run `npm run build` first.');
+	// One more thread than solvers, so that a re-check never waits for a long computation.
+	const pool = new Piscina({
+		filename: pathToFileURL(file).href,
+		minThreads: 0,
+		maxThreads: threads + 1,
+		idleTimeout: 60_000,
+		concurrentTasksPerWorker: 1,
+		resourceLimits: { maxOldGenerationSizeMb: HEAP_LIMIT_MB }
+	});
+
+	async function short<T>(task: SolverTask): Promise<T> {
+		return pool.run(task, { signal: AbortSignal.timeout(CHECK_LIMIT_MS) });
+	}
+
+	return {
+		threads,
+		verify: (result) => short<CheckOutcome>({ kind: 'verify', result }),
+		sdpa: (problem) => short<string>({ kind: 'sdpa', problem }),
+		close: () => pool.destroy(),
+		async solve(problem, { signal, onProgress } = {}) {
+			const stop = new Int32Array(new SharedArrayBuffer(4));
+			const { port1, port2 } = new MessageChannel();
+			port1.on('message', (progress: Progress) => onProgress?.(progress));
+			const kill = new AbortController();
+			let cause: SolverKilled['cause'] = 'cancelled';
+			let grace: NodeJS.Timeout | undefined;
+			const tell = () => {
+				Atomics.store(stop, 0, 1);
+				grace ??= setTimeout(() => kill.abort(), STOP_GRACE_MS);
+			};
+			const limit = setTimeout(() => {
+				cause = 'time';
+				tell();
+			}, hardLimitMs(problem));
+			if (signal?.aborted) tell();
+			signal?.addEventListener('abort', tell);
+			const task: SolverTask = { kind: 'solve', problem, stop, port: port2 };
+			try {
+				return await pool.run(task, { transferList: [port2], signal: kill.signal });
+			} catch (error) {
+				if (kill.signal.aborted) throw new SolverKilled(cause);
+				throw error;
+			} finally {
+				clearTimeout(limit);
+				clearTimeout(grace);
+				signal?.removeEventListener('abort', tell);
+				port1.close();
+			}
+		}
+	};
+}

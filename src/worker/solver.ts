@@ -1,0 +1,2 @@
+/** Entry of a solver thread: one task in, one answer out. It never opens the database. */
+export { runTask as default } from './task';

@@ -1,0 +1,68 @@
+import type { MessagePort } from 'node:worker_threads';
+import { sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
+import type { CheckOutcome } from '../lib/nonlocality/certificates/types';
+import type { Control, Problem, Progress, Result } from '../lib/nonlocality/problem';
+
+/** What a solver thread can be asked; plain data, so that it crosses the thread's border. */
+export type SolverTask =
+	| {
+			readonly kind: 'solve';
+			readonly problem: Problem;
+			/** Set to 1 to stop the solver: a busy thread gets no messages. */
+			readonly stop: Int32Array;
+			readonly port: MessagePort | null;
+	  }
+	| { readonly kind: 'verify'; readonly result: Result }
+	| { readonly kind: 'sdpa'; readonly problem: Problem };
+
+export type SolvedTask = { readonly result: Result; readonly check: CheckOutcome | null };
+
+/** Progress is a courtesy: more often than this it only costs. */
+const REPORT_EVERY_MS = 250;
+
+/** Solves a problem and checks the certificate of what it found with the independent code. */
+export async function solveAndCheck(problem: Problem, control: Control): Promise<SolvedTask> {
+	const result = await solve(problem, control);
+	if (result.status !== 'done') return { result, check: null };
+	if (!result.certificate) return { result, check: null };
+	control.report({
+		stage: 'checking the certificate',
+		iteration: 0,
+		fraction: null,
+		lower: result.lower,
+		upper: result.upper
+	});
+	return { result, check: await verifyResult(result) };
+}
+
+export function controlOf(stop: Int32Array, send: (progress: Progress) => void): Control {
+	let last = -Infinity;
+	return {
+		now: () => performance.now(),
+		shouldStop: () => Atomics.load(stop, 0) !== 0,
+		report(progress) {
+			const now = performance.now();
+			if (now - last < REPORT_EVERY_MS) return;
+			last = now;
+			send(progress);
+		}
+	};
+}
+
+export async function runTask(task: SolverTask): Promise<SolvedTask | CheckOutcome | string> {
+	switch (task.kind) {
+		case 'solve': {
+			const { port } = task;
+			try {
+				const control = controlOf(task.stop, (progress) => port?.postMessage(progress));
+				return await solveAndCheck(task.problem, control);
+			} finally {
+				port?.close();
+			}
+		}
+		case 'verify':
+			return verifyResult(task.result);
+		case 'sdpa':
+			return sdpaText(task.problem);
+	}
+}

@@ -60,7 +60,7 @@ describe('a BibTeX entry', () => {
 	it('with an unbalanced brace is refused with its line', async () => {
 		const reading = await problemOf('@article{x,\n title={a},\n author={B {C},\n year=2000\n}');
 		expect(reading.message).toBe('Line 3: this brace is never closed.');
-		expect(reading.position).toBe(31);
+		expect(reading.position).toBe(32);
 		expect((await problemOf('@article{x, title={a}}\n}')).message).toBe(
 			'Line 2: this closing brace has no opening one.'
 		);

@@ -12,7 +12,8 @@ export function ratio(numerator: bigint, denominator: bigint = 1n): Rational {
 	return new Fraction(numerator, denominator);
 }
 
-const DECIMAL = /^([+-]?)(\d+)(?:\.(\d*))?(?:[eE]([+-]?\d{1,4}))?$|^([+-]?)\.(\d+)(?:[eE]([+-]?\d{1,4}))?$/;
+const DECIMAL =
+	/^([+-]?)(\d+)(?:\.(\d*))?(?:[eE]([+-]?\d{1,4}))?$|^([+-]?)\.(\d+)(?:[eE]([+-]?\d{1,4}))?$/;
 
 /**
  * Reads an integer, decimal (optionally with an exponent) or fraction `p/q` exactly.
@@ -65,7 +66,10 @@ export function numeratorOf(value: Rational): bigint {
 	return value.s * value.n;
 }
 
-/** The double nearest to a rational (within one unit in the last place). */
+/**
+ * The double nearest to a rational: correctly rounded in the normal range, infinite past it; below
+ * it within one unit in the last place.
+ */
 export function toDouble(value: Rational): number {
 	const scaled = value.n === 0n ? 0 : divideToDouble(value.n, value.d);
 	return value.s < 0n ? -scaled : scaled;
@@ -74,17 +78,26 @@ export function toDouble(value: Rational): number {
 function divideToDouble(numerator: bigint, denominator: bigint): number {
 	const bits = (x: bigint) => x.toString(2).length;
 	const shift = 64 - (bits(numerator) - bits(denominator));
-	const quotient =
-		shift >= 0
-			? (numerator << BigInt(shift)) / denominator
-			: numerator / (denominator << BigInt(-shift));
+	const above = shift >= 0 ? numerator << BigInt(shift) : numerator;
+	const below = shift >= 0 ? denominator : denominator << BigInt(-shift);
+	// 64 bits, the last one set when anything was cut off: Number() then rounds correctly.
+	const quotient = (above / below) | (above % below === 0n ? 0n : 1n);
 	const half = Math.trunc(shift / 2); // in two steps: 2 ** -shift alone may overflow
 	return Number(quotient) * 2 ** -half * 2 ** -(shift - half);
 }
 
-/** The largest double that is not above a rational. */
+/** True only when the rational is a double (small denominators; a quick test, not a complete one). */
+export function isExactDouble(value: Rational): boolean {
+	return value.n <= LARGEST_SAFE && value.d <= LARGEST_SAFE && (value.d & (value.d - 1n)) === 0n;
+}
+
+const LARGEST_SAFE = BigInt(Number.MAX_SAFE_INTEGER);
+
+/** The largest double that is not above a rational (-Infinity below all of them). */
 export function toDoubleDown(value: Rational): number {
 	let near = toDouble(value);
+	if (near === -Infinity) return near;
+	if (near === Infinity) near = Number.MAX_VALUE;
 	while (exactOfDouble(near).compare(value) > 0) near = nextDouble(near, -1);
 	return near;
 }
@@ -114,7 +127,11 @@ export function printRational(value: Rational): string {
  * The decimal with `places` digits behind the point, rounded in the given direction
  * (`down` towards minus infinity, `up` towards plus infinity, `nearest` half away from zero).
  */
-export function toDecimal(value: Rational, places: number, direction: 'down' | 'up' | 'nearest'): string {
+export function toDecimal(
+	value: Rational,
+	places: number,
+	direction: 'down' | 'up' | 'nearest'
+): string {
 	const scale = 10n ** BigInt(places);
 	const numerator = numeratorOf(value) * scale;
 	let whole = numerator / value.d;

@@ -1,0 +1,13 @@
+/** Something written that can't be read: where, and what to write instead. */
+export class NotationError extends Error {
+	constructor(
+		message: string,
+		/** Zero-based position in the text as it was given, or null where no single place is at fault. */
+		readonly position: number | null = null,
+		/** What to do about it, as a sentence, or null. */
+		readonly suggestion: string | null = null
+	) {
+		super(message);
+		this.name = 'NotationError';
+	}
+}

@@ -1,0 +1,78 @@
+/**
+ * Re-checks a result from its problem and its certificate alone, without solving again.
+ * Certificates speak about g (the functional maximised); the outcome speaks about the problem's own.
+ */
+import { parseRational, printRational, toDoubleDown, toDoubleUp } from '../exact/rational';
+import type { DoneResult, Problem, Result } from '../problem';
+import type { Functional } from '../scenario/functional';
+import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { checkDeterministicStrategy } from './check-deterministic-strategy';
+import type { Certificate, CheckOutcome } from './types';
+
+type Proved = Extract<CheckOutcome, { checked: true }>;
+
+/** Never throws: a certificate that cannot be read is not checked, with the reason. */
+export function verifyResult(result: Result): CheckOutcome {
+	if (result.status !== 'done')
+		return { checked: false, reason: `the result is not done: ${result.status}` };
+	try {
+		const g = functionalToMaximise(result.problem);
+		const outcome = checkCertificate(result.problem, g, result.certificate);
+		if (!outcome.checked) return outcome;
+		const proved = isNegated(result.problem) ? turnSigns(outcome) : outcome;
+		const defect = printedDefect(result, proved);
+		return defect ? { checked: false, reason: defect } : proved;
+	} catch (error) {
+		const what = error instanceof Error ? error.message : String(error);
+		return { checked: false, reason: `the certificate cannot be read: ${what}` };
+	}
+}
+
+function checkCertificate(
+	problem: Problem,
+	g: Functional,
+	certificate: Certificate | null
+): CheckOutcome {
+	if (!certificate) return { checked: false, reason: 'the result carries no certificate' };
+	switch (problem.quantity) {
+		case 'local':
+			if (certificate.kind === 'deterministic-strategy')
+				return checkDeterministicStrategy(g, certificate);
+			break;
+	}
+	return {
+		checked: false,
+		reason: `a certificate of the kind "${certificate.kind}" proves nothing on "${problem.quantity}"`
+	};
+}
+
+/** A printed side may be looser than what is proved, never tighter. */
+function printedDefect(result: DoneResult, proved: Proved): string | null {
+	const { lower, upper, value, exact } = result;
+	if (lower !== null && proved.lower !== null && lower > proved.lower)
+		return `the printed lower side ${lower} is above the proved ${proved.lower}`;
+	if (upper !== null && proved.upper !== null && upper < proved.upper)
+		return `the printed upper side ${upper} is below the proved ${proved.upper}`;
+	if (lower !== null && upper !== null && lower > upper)
+		return `the printed lower side ${lower} is above the upper ${upper}`;
+	if (value !== null && ((lower !== null && value < lower) || (upper !== null && value > upper)))
+		return `the printed value ${value} is outside its own sides`;
+	if (exact === null) return null;
+	if (proved.exact !== null)
+		return exact === proved.exact ? null : `the exact value is ${proved.exact}, not ${exact}`;
+	const read = parseRational(exact);
+	if (!read) return `the exact value "${exact}" is no fraction`;
+	if ((lower !== null && toDoubleDown(read) < lower) || (upper !== null && toDoubleUp(read) > upper))
+		return `the exact value ${exact} is outside its own sides`;
+	return null;
+}
+
+function turnSigns(proved: Proved): Proved {
+	const exact = proved.exact === null ? null : parseRational(proved.exact);
+	return {
+		...proved,
+		lower: proved.upper === null ? null : 0 - proved.upper,
+		upper: proved.lower === null ? null : 0 - proved.lower,
+		exact: exact ? printRational(exact.neg()) : null
+	};
+}

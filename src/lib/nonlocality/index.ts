@@ -1,0 +1,34 @@
+/** The public surface: solvers, checks and canonical forms, for the server, threads and commands. */
+export { solve, SOLVER } from './quantities/solve';
+export { verifyResult } from './certificates/verify';
+export { FORMAT, SolverStop } from './problem';
+export type {
+	ComplexMatrix,
+	ComplexNumber,
+	Control,
+	DoneResult,
+	Level,
+	Problem,
+	ProblemBox,
+	ProblemConstraint,
+	ProblemOf,
+	ProblemTerm,
+	Progress,
+	QuantityOfProblem,
+	QuantumStrategy,
+	Result,
+	ResultStatus,
+	UnfinishedResult
+} from './problem';
+export type {
+	Certificate,
+	CheckOutcome,
+	DeterministicCertificate,
+	EnclosureCertificate,
+	LinearProgrammeCertificate,
+	MomentCertificate,
+	StrategyCertificate
+} from './certificates/types';
+export type { Scenario, Event } from './scenario/scenario';
+export type { Functional, Term } from './scenario/functional';
+export type { Coefficient } from './exact/coefficient';

@@ -1,0 +1,17 @@
+import type { Problem } from '../problem';
+import { COEFFICIENT_ONE, negateCoefficient } from '../exact/coefficient';
+import { scaleFunctional, type Functional } from './functional';
+import { functionalOfTerms } from './problem-terms';
+
+/**
+ * The functional g that is maximised: the problem's own for `max`, its negative for `min` (min f =
+ * -max(-f)). All solvers and all certificates speak about g. The value of a box has no sense.
+ */
+export function functionalToMaximise(problem: Problem): Functional {
+	const f = functionalOfTerms({ outputs: problem.outputs }, problem.terms);
+	return isNegated(problem) ? scaleFunctional(f, negateCoefficient(COEFFICIENT_ONE)) : f;
+}
+
+export function isNegated(problem: Problem): boolean {
+	return problem.sense === 'min' && problem.quantity !== 'value';
+}

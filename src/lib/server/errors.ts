@@ -24,7 +24,9 @@ export class ServiceError extends Error {
 	constructor(
 		readonly code: ErrorCode,
 		message: string,
-		readonly issues: readonly FieldIssue[] = []
+		readonly issues: readonly FieldIssue[] = [],
+		/** For `rate-limited` and `unavailable`: when another try makes sense. */
+		readonly retryAfterSeconds: number | null = null
 	) {
 		super(message);
 		this.name = 'ServiceError';

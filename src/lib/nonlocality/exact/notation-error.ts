@@ -11,3 +11,11 @@ export class NotationError extends Error {
 		this.name = 'NotationError';
 	}
 }
+
+/** Well written, but past a limit that the message names. */
+export class NotationLimitError extends NotationError {
+	constructor(message: string, position: number | null = null, suggestion: string | null = null) {
+		super(message, position, suggestion);
+		this.name = 'NotationLimitError';
+	}
+}

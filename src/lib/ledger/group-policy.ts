@@ -1,0 +1,20 @@
+import { hasRole, type Role } from './roles';
+
+/** Who may make or revoke joining links; nobody hands out more than they have. */
+export function mayInvite(role: Role, invited: Role): boolean {
+	return hasRole(role, 'maintainer') && hasRole(role, invited);
+}
+
+export function mayRevokeInvitation(role: Role): boolean {
+	return hasRole(role, 'maintainer');
+}
+
+/** Roles are the owners' to give; so is removing someone else. */
+export function mayChangeRoles(role: Role): boolean {
+	return hasRole(role, 'owner');
+}
+
+/** A group keeps at least one owner. */
+export function leavesNoOwner(owners: number, from: Role, to: Role | null): boolean {
+	return from === 'owner' && to !== 'owner' && owners <= 1;
+}

@@ -306,3 +306,11 @@ export interface InvitationView {
 	readonly createdBy: string;
 	readonly expiresAt: string;
 }
+
+/** A place where one is signed in. */
+export interface SessionView {
+	readonly id: string;
+	readonly startedAt: string;
+	readonly expiresAt: string;
+	readonly current: boolean;
+}

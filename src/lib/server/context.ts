@@ -17,9 +17,13 @@ export interface Context {
 	now(): Date;
 }
 
-/** A context inside a group the actor belongs to; made by `requireRole` and by the seed. */
-export interface GroupContext extends Context {
+/** A context of someone who has signed in; made by `requireUser` and by the seed. */
+export interface UserContext extends Context {
 	readonly actor: Actor;
+}
+
+/** A context inside a group the actor belongs to; made by `requireRole` and by the seed. */
+export interface GroupContext extends UserContext {
 	readonly group: { readonly id: string; readonly slug: string; readonly name: string };
 	readonly role: Role;
 }

@@ -1,5 +1,5 @@
 /** What a reader needs to check a result without trusting the solver. One kind per claim proved. */
-import type { QuantumStrategy } from '../problem';
+import type { ComplexMatrix, QuantumStrategy } from '../problem';
 
 /** A deterministic strategy `strategy[party][input] = output`; its exact value is recomputed. */
 export interface DeterministicCertificate {
@@ -30,13 +30,32 @@ export interface MomentCertificate {
 	readonly monomials: readonly Monomial[];
 	/** Lower triangle, row by row, of the symmetric multiplier Z. */
 	readonly multiplier: readonly number[];
-	/** Multipliers z_j >= 0 of the rows P_j >= 0, by `"a,b|x,y"`; empty without those rows. */
+	/**
+	 * Multipliers z_j >= 0 of the rows P_j >= 0, by `"a,b|x,y"` (`-` for a party that a marginal
+	 * leaves out); empty without those rows.
+	 */
 	readonly rowMultipliers: Readonly<Record<string, number>>;
+	/**
+	 * Multipliers of the problem's constraints, in their order: >= 0 for `<=` (written as
+	 * value - form >= 0) and `>=` (form - value >= 0), any sign for `=` (form - value = 0).
+	 */
+	readonly constraintMultipliers?: readonly number[];
 	/** Guaranteed bound on the functional (upper for `max`). */
 	readonly bound: number;
-	/** Moments of a strictly feasible matrix in the order the check rebuilds them, or null. */
+	/**
+	 * Moments of a strictly feasible matrix, or null. Their order: the first appearance of each
+	 * moment (a word or its adjoint, reduced, other than 0 and 1) along the lower triangle of
+	 * monomial^dagger_row monomial_column, row by row.
+	 */
 	readonly moments: readonly number[] | null;
 	readonly feasibleValue: number | null;
+}
+
+/** A projective measurement: an orthonormal basis and the output that each vector belongs to. */
+export interface OutputBasis {
+	/** `vectors[k]` is the k-th basis vector. */
+	readonly vectors: ComplexMatrix;
+	readonly outputs: readonly number[];
 }
 
 /** An explicit state and measurements; `value` is what the re-evaluation guarantees. */
@@ -44,6 +63,8 @@ export interface StrategyCertificate {
 	readonly kind: 'quantum-strategy';
 	readonly strategy: QuantumStrategy;
 	readonly projective: boolean;
+	/** `bases[party][input]` of a projective strategy, null otherwise. */
+	readonly bases: readonly (readonly OutputBasis[])[] | null;
 	readonly value: number;
 }
 

@@ -16,6 +16,8 @@ export default {
 				await buildWorkers('build/workers');
 			}
 		},
+		// The hook checks every unsafe method and content type: src/lib/server/http/same-origin.ts.
+		csrf: { trustedOrigins: ['*'] },
 		csp: {
 			mode: 'nonce',
 			directives: {

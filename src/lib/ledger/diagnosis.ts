@@ -1,3 +1,5 @@
+import type { Rational } from '../nonlocality/exact/rational';
+
 export const DIAGNOSIS_KINDS = [
 	'solver-tolerance',
 	'other-quantity',
@@ -31,4 +33,17 @@ export interface Diagnosis {
 	readonly name?: string;
 	/** Set when it holds only together with truncation. */
 	readonly truncated?: boolean;
+}
+
+/** The value of another quantity of the same functional, in the claim's normalisation. */
+export interface OtherValue {
+	/** Completes "the paper meant ...": `the almost-quantum bound (NPA level 1+AB)`. */
+	readonly label: string;
+	/** The quantity and its fields in the problem format. */
+	readonly quantity: string;
+	readonly fields: Readonly<Record<string, unknown>>;
+	readonly lower: Rational | null;
+	readonly upper: Rational | null;
+	/** It is what the method the paper states would give. */
+	readonly matchesMethod: boolean;
 }

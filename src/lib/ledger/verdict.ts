@@ -1,42 +1,15 @@
-import type { Rational } from '../nonlocality/exact/rational';
-import type { VerdictStatus } from './claim';
+import type { Relation, VerdictStatus } from './claim';
 import type { Diagnosis } from './diagnosis';
+import { isExact, type Enclosure, type Evidence } from './enclosure';
+import { showEnclosure } from './figures';
+import { judge, type ReasonCode, type RecomputationState } from './judgement';
+import { printRational } from '../nonlocality/exact/rational';
+import { readingEnd } from './reading-text';
+import { reasonFor, slackOf } from './reasons';
+import type { StatedValue } from './stated-value';
 
-/** Where an enclosure comes from and what it is worth. */
-export interface Evidence {
-	/** `guaranteed`: proved by a checked certificate; the others decide only where those leave it open. */
-	readonly worth: 'guaranteed' | 'numerical' | 'person';
-	/** Ends as exact rationals, in the claim's own normalisation; null: unbounded. */
-	readonly lower: Rational | null;
-	readonly upper: Rational | null;
-	/** What it is, for the reason: `NPA level 2`, `an explicit quantum strategy in dimension 2`. */
-	readonly lowerLabel: string;
-	readonly upperLabel: string;
-}
-
-/** Why a claim stands as it does; each has one sentence made by `deriveVerdict`. */
-export const REASON_CODES = [
-	'within',
-	'proved',
-	'above-upper-bound',
-	'below-lower-bound',
-	'last-digits',
-	'not-run',
-	'running',
-	'failed',
-	'no-solver',
-	'not-settled',
-	'contradictory'
-] as const;
-export type ReasonCode = (typeof REASON_CODES)[number];
-
-/** The state of the recomputation behind a claim, when there is nothing to judge yet. */
-export type RecomputationState =
-	| { readonly kind: 'no-solver'; readonly why?: string }
-	| { readonly kind: 'not-run' }
-	| { readonly kind: 'running' }
-	| { readonly kind: 'failed'; readonly why: string }
-	| { readonly kind: 'done' };
+export type { Evidence } from './enclosure';
+export { REASON_CODES, type ReasonCode, type RecomputationState } from './judgement';
 
 /** A verdict as it is stored and shown. Numbers are decimal strings, bounds rounded outward. */
 export interface Verdict {
@@ -62,5 +35,66 @@ export interface Verdict {
 		readonly lowerLabel: string;
 		readonly upperLabel: string;
 	} | null;
+	/** By how much at least a true bound (`<=`, `>=`) is looser than what is known. */
+	readonly slack?: string;
 	readonly diagnosis: readonly Diagnosis[];
+}
+
+/** Digits a stored bound keeps past those an enclosure is shown with in a table. */
+const STORED_EXTRA = 2;
+
+export interface VerdictInput {
+	readonly reading: StatedValue;
+	readonly relation: Relation;
+	readonly evidence: readonly Evidence[];
+	readonly recomputation: RecomputationState;
+	/** The quantity's label, for the sentence: `Quantum maximum`. */
+	readonly quantity?: string;
+}
+
+/** The one function every verdict comes from: claim and evidence in, status and reason out. */
+export function deriveVerdict(input: VerdictInput): Omit<Verdict, 'diagnosis'> {
+	const judgement = judge(input);
+	const { status, reasonCode, enclosure } = judgement;
+	const verdict = {
+		status,
+		reasonCode,
+		reason: reasonFor(judgement, input),
+		reading: storeReading(input.reading),
+		enclosure: enclosure && storeEnclosure(enclosure)
+	};
+	const slack = status === 'agreement' && enclosure ? slackOf(enclosure, input) : null;
+	return slack ? { ...verdict, slack } : verdict;
+}
+
+export function storeReading(reading: StatedValue): Verdict['reading'] {
+	return {
+		printed: reading.printed,
+		low: readingEnd(reading.low, 'lower'),
+		high: readingEnd(reading.high, 'upper'),
+		exact: reading.exact,
+		text: reading.text
+	};
+}
+
+function storeEnclosure(enclosure: Enclosure): NonNullable<Verdict['enclosure']> {
+	const { lower, upper, worth, lowerLabel, upperLabel } = enclosure;
+	const shown = showEnclosure(lower, upper, STORED_EXTRA);
+	return {
+		lower: shown.lower,
+		upper: shown.upper,
+		exact: isExact(enclosure) && lower ? printRational(lower) : null,
+		worth,
+		lowerLabel,
+		upperLabel
+	};
+}
+
+/** Whether a verdict is worth a mail: a discrepancy that is more than a solver's last digits. */
+export function mailWorthy(verdict: Pick<Verdict, 'status' | 'reasonCode' | 'diagnosis'>): boolean {
+	return (
+		verdict.status === 'discrepancy' &&
+		verdict.reasonCode !== 'last-digits' &&
+		verdict.diagnosis[0]?.kind !== 'solver-tolerance'
+	);
 }

@@ -1,0 +1,114 @@
+import type { Level, Problem } from '../nonlocality/problem';
+
+/** `1`, `1+AB`, `2 per party`, `the products A, B, AB`. */
+export function levelName(level: Level): string {
+	if (typeof level === 'number' || typeof level === 'string') return String(level);
+	if ('perParty' in level)
+		return level.perParty === 1
+			? 'of one operator per party'
+			: `of ${level.perParty} operators per party`;
+	return `of the products ${level.products.join(', ')}`;
+}
+
+function npaName(level: Level): string {
+	return typeof level === 'object'
+		? `the NPA level ${levelName(level)}`
+		: `NPA level ${levelName(level)}`;
+}
+
+/** 1+AB, or one operator per party. */
+export function isAlmostQuantum(level: Level): boolean {
+	return (
+		level === '1+AB' || (typeof level === 'object' && 'perParty' in level && level.perParty === 1)
+	);
+}
+
+const extremum = (problem: Problem) => (problem.sense === 'max' ? 'maximum' : 'minimum');
+
+/** What a problem's value is, for "the paper meant ...". */
+export function valueLabel(problem: Problem): string {
+	switch (problem.quantity) {
+		case 'value':
+			return 'the value of the given box';
+		case 'local':
+			return `the local ${extremum(problem)}`;
+		case 'no-signalling':
+			return `the no-signalling ${extremum(problem)}`;
+		case 'quantum':
+			return `the quantum ${extremum(problem)}`;
+		case 'see-saw':
+			return problem.state === 'maximally-entangled'
+				? `the best value found with a maximally entangled state of local dimension ${problem.dimension.join(' x ')}`
+				: `the best value found in local dimension ${problem.dimension.join(' x ')}`;
+		case 'npa': {
+			const { level, nonNegative } = problem;
+			if (isAlmostQuantum(level)) return `the almost-quantum bound (${npaName(level)})`;
+			if (level === 1 && nonNegative && problem.outputs.length === 2)
+				return 'the macroscopic-locality bound (NPA level 1 with non-negative probabilities)';
+			const positivity = nonNegative ? ' with non-negative probabilities' : '';
+			const without = level === 1 && !nonNegative ? ' without non-negative probabilities' : '';
+			return `the bound of ${npaName(level)}${positivity}${without}`;
+		}
+	}
+}
+
+/** What proves that the value reaches at least so far (for `max`; at most, for `min`). */
+export function innerLabel(problem: Problem): string {
+	switch (problem.quantity) {
+		case 'local':
+			return 'a deterministic strategy';
+		case 'no-signalling':
+			return 'a no-signalling box';
+		case 'npa':
+			return `a feasible moment matrix of ${npaName(problem.level)}`;
+		case 'see-saw':
+			return `an explicit quantum strategy in dimension ${problem.dimension.join(' x ')}`;
+		case 'quantum':
+			return 'an explicit quantum strategy';
+		case 'value':
+			return 'evaluation';
+	}
+}
+
+/** What proves that the value reaches no farther. */
+export function outerLabel(problem: Problem): string {
+	switch (problem.quantity) {
+		case 'local':
+			return 'all deterministic strategies';
+		case 'no-signalling':
+			return 'the no-signalling linear programme';
+		case 'npa':
+			return (
+				npaName(problem.level) + (problem.nonNegative ? ' with non-negative probabilities' : '')
+			);
+		case 'quantum':
+			return 'the moment-matrix relaxation';
+		case 'see-saw':
+		case 'value':
+			return 'evaluation';
+	}
+}
+
+/** The quantity and its fields in the problem format. */
+export function fieldsOf(problem: Problem): {
+	readonly quantity: string;
+	readonly fields: Readonly<Record<string, unknown>>;
+} {
+	const { quantity } = problem;
+	const sense = problem.sense === 'min' ? { sense: 'min' } : {};
+	if (quantity === 'npa')
+		return {
+			quantity,
+			fields: { ...sense, level: problem.level, nonNegative: problem.nonNegative }
+		};
+	if (quantity === 'see-saw')
+		return {
+			quantity,
+			fields: {
+				...sense,
+				dimension: problem.dimension,
+				...(problem.state === 'maximally-entangled' ? { state: problem.state } : {})
+			}
+		};
+	return { quantity, fields: sense };
+}

@@ -1,17 +1,18 @@
 import { parseCoefficient } from '../exact/expression';
 import type { ProblemTerm } from '../problem';
 import { makeFunctional, type Functional } from './functional';
+import type { Scenario } from './scenario';
 
 /**
- * The functional that a problem's terms stand for.
- * @throws NotationError for an unreadable coefficient, RangeError for an event outside `outputs`.
+ * The functional that a problem's terms stand for, in a scenario or its `outputs`.
+ * @throws NotationError for an unreadable coefficient, RangeError for an event outside the scenario.
  */
 export function functionalOfTerms(
-	outputs: readonly (readonly number[])[],
+	scenario: Scenario | Scenario['outputs'],
 	terms: readonly ProblemTerm[]
 ): Functional {
 	return makeFunctional(
-		{ outputs },
+		'outputs' in scenario ? scenario : { outputs: scenario },
 		terms.map(([coefficient, events]) => ({ coefficient: parseCoefficient(coefficient), events }))
 	);
 }

@@ -1,0 +1,174 @@
+import { describe, expect, it } from 'vitest';
+import { checkStrategy } from '../certificates/check-quantum-strategy';
+import type { StrategyCertificate } from '../certificates/types';
+import { SolverStop, type Control, type ProblemOf } from '../problem';
+import { familyFunctional, type FamilySpec } from '../scenario/families';
+import { termsOfFunctional } from '../scenario/problem-terms';
+import { seeSaw } from './see-saw';
+
+type SeeSawProblem = ProblemOf<'see-saw'>;
+
+const control: Control = {
+	now: () => performance.now(),
+	shouldStop: () => false,
+	report: () => {}
+};
+
+function setUp(spec: FamilySpec, changes: Partial<SeeSawProblem>) {
+	const g = familyFunctional(spec);
+	const problem: SeeSawProblem = {
+		format: 1,
+		quantity: 'see-saw',
+		outputs: g.scenario.outputs,
+		terms: termsOfFunctional(g),
+		sense: 'max',
+		constraints: [],
+		seconds: 30,
+		seed: 1,
+		dimension: [2],
+		starts: 10,
+		state: 'free',
+		...changes
+	};
+	return { g, problem };
+}
+
+function strategyOf(certificate: unknown): StrategyCertificate {
+	return JSON.parse(JSON.stringify(certificate));
+}
+
+describe('seeSaw reaches published quantum values', () => {
+	it.each<[FamilySpec, number, number, number]>([
+		// Cirel'son, Lett. Math. Phys. 4, 93 (1980)
+		[{ name: 'chsh' }, 2, 2 * Math.SQRT2, 1e-10],
+		// Acin, Massar, Pironio, Phys. Rev. Lett. 108, 100402 (2012): sqrt(8 + 2 alpha^2)
+		[{ name: 'tilted-chsh', alpha: 0.5 }, 2, Math.sqrt(8.5), 1e-9],
+		[{ name: 'tilted-chsh', alpha: 1 }, 2, Math.sqrt(10), 1e-9],
+		[{ name: 'tilted-chsh', alpha: 1.5 }, 2, Math.sqrt(12.5), 1e-9],
+		// Wehner, Phys. Rev. A 73, 022110 (2006), formula from memory: 2n cos(pi/2n)
+		[{ name: 'chained', n: 3 }, 2, 6 * Math.cos(Math.PI / 6), 1e-9],
+		[{ name: 'chained', n: 4 }, 2, 8 * Math.cos(Math.PI / 8), 1e-9],
+		[{ name: 'chained', n: 6 }, 2, 12 * Math.cos(Math.PI / 12), 1e-9],
+		// Gisin, arXiv:quant-ph/0702021, from memory; no real qubit strategy reaches it
+		[{ name: 'elegant' }, 2, 4 * Math.sqrt(3), 1e-9],
+		// Navascues, Vertesi, Phys. Rev. Lett. 115, 020501 (2015)
+		[{ name: 'i3322' }, 2, 0.25, 1e-10],
+		// Acin, Durt, Gisin, Latorre, Phys. Rev. A 65, 052325 (2002), Table I (4 decimals there; the
+		// further ones are those of the NPA 1+AB bound, which they meet)
+		[{ name: 'cglmp', d: 3 }, 3, 2.914854215512676, 1e-9],
+		[{ name: 'cglmp', d: 4 }, 4, 2.9726983, 1e-7],
+		[{ name: 'cglmp', d: 5 }, 5, 3.0157105, 1e-7],
+		// Mermin 1990, Peres 1990; as a game in Aravind, arXiv:quant-ph/0206070, from memory
+		[{ name: 'magic-square' }, 4, 1, 1e-9],
+		// Mermin, Phys. Rev. Lett. 65, 1838 (1990), from memory: 2^(n-1)
+		[{ name: 'mermin', n: 3 }, 2, 4, 1e-9],
+		[{ name: 'mermin', n: 4 }, 2, 8, 1e-9],
+		// Collins et al., Phys. Rev. Lett. 88, 170405 (2002): 2^(n-1) sqrt 2
+		[{ name: 'svetlichny', n: 3 }, 2, 4 * Math.SQRT2, 1e-9]
+	])('%j in local dimension %i: %d', (spec, dimension, value, tolerance) => {
+		const { g, problem } = setUp(spec, { dimension: [dimension], starts: 20 });
+		const found = seeSaw(problem, g, control, value);
+		expect(found.lower).toBeLessThanOrEqual(value + tolerance);
+		expect(found.lower).toBeGreaterThanOrEqual(value - tolerance);
+		expect(found.guaranteed).toEqual({ lower: true, upper: false });
+		const checked = checkStrategy(problem, g, strategyOf(found.certificate));
+		expect(checked).toMatchObject({ checked: true });
+		if (checked.checked) expect(checked.lower).toBeGreaterThanOrEqual(found.lower ?? Infinity);
+	});
+
+	// Phys. Rev. A 65, 052325 (2002), Table I, printed to 4 decimals
+	it.each([
+		[3, 2.8729],
+		[4, 2.8962],
+		[5, 2.9105]
+	])('CGLMP d=%i on the maximally entangled state: %d', (d, value) => {
+		const changes = { dimension: [d], state: 'maximally-entangled' } as const;
+		const { g, problem } = setUp({ name: 'cglmp', d }, changes);
+		const found = seeSaw(problem, g, control);
+		expect(Math.abs((found.lower ?? 0) - value)).toBeLessThan(6e-5);
+		expect(checkStrategy(problem, g, strategyOf(found.certificate)).checked).toBe(true);
+	});
+});
+
+describe('seeSaw on a prescribed state', () => {
+	it('gives the Horodecki value of CHSH on a partially entangled state', () => {
+		// Gisin, Phys. Lett. A 154, 201 (1991), from memory: 2 sqrt(1 + sin^2 2t) on cos t, sin t
+		const angle = 0.4;
+		const state = [
+			[Math.cos(angle), 0],
+			[0, 0],
+			[0, 0],
+			[0, Math.sin(angle)]
+		] as const;
+		const { g, problem } = setUp({ name: 'chsh' }, { state });
+		const found = seeSaw(problem, g, control);
+		expect(found.lower).toBeCloseTo(2 * Math.sqrt(1 + Math.sin(2 * angle) ** 2), 8);
+		expect(checkStrategy(problem, g, strategyOf(found.certificate)).checked).toBe(true);
+	});
+
+	it('finds the deterministic maximum on a product state', () => {
+		const state = [
+			[1, 0],
+			[0, 0],
+			[0, 0],
+			[0, 0]
+		] as const;
+		const { g, problem } = setUp({ name: 'chsh' }, { state });
+		expect(seeSaw(problem, g, control).lower).toBeCloseTo(2, 9);
+	});
+
+	it('refuses a state that does not fit', () => {
+		const { g, problem } = setUp({ name: 'chsh' }, { state: [[1, 0]] });
+		expect(() => seeSaw(problem, g, control)).toThrow(/1 entries .* need 4/);
+		const three = setUp({ name: 'mermin', n: 3 }, { state: 'maximally-entangled' });
+		expect(() => seeSaw(three.problem, three.g, control)).toThrow(/two parties/);
+	});
+});
+
+describe('seeSaw as a search', () => {
+	it('gives the local maximum in dimension 1', () => {
+		const { g, problem } = setUp({ name: 'chsh' }, { dimension: [1], starts: 20 });
+		expect(seeSaw(problem, g, control).lower).toBeCloseTo(2, 10);
+	});
+
+	it('takes a dimension per party', () => {
+		const { g, problem } = setUp({ name: 'chsh' }, { dimension: [2, 3] });
+		const found = seeSaw(problem, g, control);
+		expect(found.lower).toBeCloseTo(2 * Math.SQRT2, 9);
+		expect(found.method).toMatchObject({ dimension: [2, 3] });
+	});
+
+	it('repeats itself for a seed', () => {
+		const { g, problem } = setUp({ name: 'cglmp', d: 3 }, { dimension: [3], starts: 3 });
+		expect(seeSaw(problem, g, control).certificate).toEqual(
+			seeSaw(problem, g, control).certificate
+		);
+	});
+
+	it('stops when its target is met', () => {
+		const { g, problem } = setUp({ name: 'chsh' }, { starts: 1000 });
+		const found = seeSaw(problem, g, control, 2 * Math.SQRT2);
+		expect(Number(found.method['starts'])).toBeLessThan(20);
+	});
+
+	it('keeps the best found when its time is over', () => {
+		const { g, problem } = setUp(
+			{ name: 'magic-square' },
+			{ dimension: [8], starts: 1e6, seconds: 0.3 }
+		);
+		const start = performance.now();
+		const found = seeSaw(problem, g, control);
+		expect(performance.now() - start).toBeLessThan(2000);
+		expect(found.lower).toBeGreaterThan(0.5);
+		expect(checkStrategy(problem, g, strategyOf(found.certificate)).checked).toBe(true);
+	});
+
+	it('obeys being told to stop, constraints and limits', () => {
+		const { g, problem } = setUp({ name: 'chsh' }, {});
+		expect(() => seeSaw(problem, g, { ...control, shouldStop: () => true })).toThrow(SolverStop);
+		const constraints = [{ terms: problem.terms, relation: '=', value: '2' }] as const;
+		expect(() => seeSaw({ ...problem, constraints }, g, control)).toThrow(/constraints/);
+		expect(() => seeSaw({ ...problem, dimension: [65] }, g, control)).toThrow(/limit is 4096/);
+		expect(() => seeSaw({ ...problem, dimension: [2, 2, 2] }, g, control)).toThrow(/3 numbers/);
+	});
+});

@@ -1,6 +1,12 @@
 /** The public surface: solvers, checks and canonical forms, for the server, threads and commands. */
 export { solve, SOLVER } from './quantities/solve';
 export { verifyResult } from './certificates/verify';
+export {
+	affineMap,
+	canonicalForm,
+	DIGEST_VERSION,
+	type CanonicalForm
+} from './scenario/equivalence';
 export { FORMAT, SolverStop } from './problem';
 export type {
 	ComplexMatrix,

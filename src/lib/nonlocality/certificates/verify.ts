@@ -62,7 +62,10 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 		return exact === proved.exact ? null : `the exact value is ${proved.exact}, not ${exact}`;
 	const read = parseRational(exact);
 	if (!read) return `the exact value "${exact}" is no fraction`;
-	if ((lower !== null && toDoubleDown(read) < lower) || (upper !== null && toDoubleUp(read) > upper))
+	if (
+		(lower !== null && toDoubleDown(read) < lower) ||
+		(upper !== null && toDoubleUp(read) > upper)
+	)
 		return `the exact value ${exact} is outside its own sides`;
 	return null;
 }

@@ -87,8 +87,10 @@ class DoubleEnumeration extends Enumeration {
 			if (code.changed >= 0) {
 				const old = rowOf(party, code.changed, code.before) * width;
 				const now = rowOf(party, code.changed, code.digits[code.changed] ?? 0) * width;
-				if (old >= 0) for (let k = 0; k < width; k++) current[k] = at(current, k) - at(rows, old + k);
-				if (now >= 0) for (let k = 0; k < width; k++) current[k] = at(current, k) + at(rows, now + k);
+				if (old >= 0)
+					for (let k = 0; k < width; k++) current[k] = at(current, k) - at(rows, old + k);
+				if (now >= 0)
+					for (let k = 0; k < width; k++) current[k] = at(current, k) + at(rows, now + k);
 			}
 			this.#descend(level + 1, current);
 		} while (code.step());

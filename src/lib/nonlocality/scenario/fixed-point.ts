@@ -57,8 +57,5 @@ export function integerFunctional(functional: Functional): IntegerFunctional {
 
 /** The sum of |coefficients|: no partial sum over a deterministic strategy exceeds it. */
 export function absoluteSum(functional: IntegerFunctional): bigint {
-	return functional.terms.reduce(
-		(total, { coefficient: c }) => total + (c < 0n ? -c : c),
-		0n
-	);
+	return functional.terms.reduce((total, { coefficient: c }) => total + (c < 0n ? -c : c), 0n);
 }

@@ -1,0 +1,340 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { COEFFICIENT_ONE, exactCoefficient, negateCoefficient } from '../exact/coefficient';
+import { parseCoefficient } from '../exact/expression';
+import { ratio, type Rational } from '../exact/rational';
+import { enumerateStrategies } from '../quantities/enumerate-strategies';
+import { strategyTensor } from '../quantities/strategy-tensor';
+import { affineMap, canonicalForm } from './equivalence';
+import { familyFunctional, type FamilySpec } from './families';
+import { makeFunctional, scaleFunctional, type Functional, type Term } from './functional';
+import { functionalOfTerms } from './problem-terms';
+import { relabelFunctional, type Relabelling } from './relabelling';
+import type { Event } from './scenario';
+
+/** A small linear congruential generator (Lehmer, 48271 mod 2^31 - 1): tests repeat exactly. */
+function lehmer(seed: number): (below: number) => number {
+	let state = (seed % 2147483646) + 1;
+	return (below) => {
+		state = (state * 48271) % 2147483647;
+		return state % below;
+	};
+}
+
+function shuffled(count: number, random: (below: number) => number): number[] {
+	const list = Array.from({ length: count }, (_, i) => i);
+	for (let i = count - 1; i > 0; i--) {
+		const j = random(i + 1);
+		[list[i], list[j]] = [list[j] ?? 0, list[i] ?? 0];
+	}
+	return list;
+}
+
+function randomRelabelling(f: Functional, random: (below: number) => number): Relabelling {
+	const { outputs } = f.scenario;
+	return {
+		parties: shuffled(outputs.length, random),
+		inputs: outputs.map((counts) => shuffled(counts.length, random)),
+		outputs: outputs.map((counts) => counts.map((count) => shuffled(count, random)))
+	};
+}
+
+function randomFunctional(outputs: number[][], size: number, random: (below: number) => number) {
+	let events: Event[][] = [[]];
+	outputs.forEach((counts, p) => {
+		const own = counts.flatMap((n, x) => Array.from({ length: n }, (_, a): Event => [p, x, a]));
+		events = events.flatMap((list) => [list, ...own.map((event) => [...list, event])]);
+	});
+	const terms = events.map((list) => ({
+		events: list,
+		coefficient: exactCoefficient(ratio(BigInt(random(2 * size + 1) - size)))
+	}));
+	return makeFunctional({ outputs }, terms);
+}
+
+/** Adds r * (sum_a P(a b|x y) - sum_a P(a b|x' y)), which is zero on every behaviour. */
+function rewritten(f: Functional, random: (below: number) => number): Functional {
+	const terms: Term[] = [...f.terms];
+	const counts = f.scenario.outputs[0] ?? [];
+	for (let times = 0; times < 4; times++) {
+		const other: Event = [1, 0, random(2)];
+		const weight = exactCoefficient(ratio(BigInt(random(9) - 4), 3n));
+		const pair = [random(counts.length), random(counts.length)];
+		pair.forEach((x, side) => {
+			for (let a = 0; a < (counts[x] ?? 0); a++)
+				terms.push({
+					coefficient: side === 0 ? weight : negateCoefficient(weight),
+					events: [[0, x, a], other]
+				});
+		});
+	}
+	return makeFunctional(f.scenario, terms);
+}
+
+function localMaximumOf(f: Functional): Rational {
+	const tensor = strategyTensor(f);
+	return ratio(enumerateStrategies(tensor, () => {}).value, tensor.denominator);
+}
+
+const SCENARIOS = [
+	[
+		[2, 2],
+		[2, 2]
+	],
+	[
+		[2, 2, 2],
+		[2, 2, 2]
+	],
+	[
+		[3, 3],
+		[3, 3]
+	],
+	[
+		[2, 3],
+		[3, 2, 2]
+	],
+	[
+		[2, 2],
+		[2, 2],
+		[2, 2]
+	]
+];
+
+const FAMILY_LIST: FamilySpec[] = [
+	{ name: 'chsh' },
+	{ name: 'tilted-chsh', alpha: '1/2' },
+	{ name: 'tilted-chsh', alpha: '1' },
+	{ name: 'chained', n: 3 },
+	{ name: 'chained', n: 4 },
+	{ name: 'i3322' },
+	{ name: 'cglmp', d: 3 },
+	{ name: 'cglmp', d: 4 },
+	{ name: 'elegant' },
+	{ name: 'mermin', n: 3 },
+	{ name: 'svetlichny', n: 3 },
+	{ name: 'gyni', n: 3 },
+	{ name: 'magic-square' }
+];
+
+describe('canonical form', () => {
+	it('does not change under relabelling, scale, shift and no-signalling rewriting', () => {
+		const shape = fc.record({
+			seed: fc.nat(),
+			outputs: fc.constantFrom(...SCENARIOS),
+			size: fc.constantFrom(1, 3, 20),
+			scale: fc.tuple(fc.integer({ min: 1, max: 40 }), fc.integer({ min: 1, max: 40 })),
+			shift: fc.integer({ min: -50, max: 50 })
+		});
+		fc.assert(
+			fc.property(shape, ({ seed, outputs, size, scale, shift }) => {
+				const random = lehmer(seed);
+				const f = randomFunctional(outputs, size, random);
+				const factor = exactCoefficient(ratio(BigInt(scale[0]), BigInt(scale[1])));
+				const scaled = scaleFunctional(rewritten(f, random), factor);
+				const constant = { coefficient: exactCoefficient(ratio(BigInt(shift))), events: [] };
+				const g = relabelFunctional(
+					makeFunctional(scaled.scenario, [...scaled.terms, constant]),
+					randomRelabelling(f, random)
+				);
+				expect(canonicalForm(g).digest).toBe(canonicalForm(f).digest);
+				const map = affineMap(g, f);
+				expect(map?.scale.exact?.equals(factor.exact ?? 0)).toBe(true);
+				const moved = factor.exact?.mul(localMaximumOf(f)).add(map?.shift.exact ?? 0);
+				expect(moved?.equals(localMaximumOf(g))).toBe(true);
+			}),
+			{ numRuns: 150, seed: 1 }
+		);
+	});
+
+	it('tells generic f from -f, but CHSH is its own negative relabelled', () => {
+		const minus = negateCoefficient(COEFFICIENT_ONE);
+		const f = randomFunctional(
+			[
+				[3, 3],
+				[3, 3]
+			],
+			20,
+			lehmer(7)
+		);
+		expect(canonicalForm(scaleFunctional(f, minus)).digest).not.toBe(canonicalForm(f).digest);
+		const chsh = familyFunctional({ name: 'chsh' });
+		expect(canonicalForm(scaleFunctional(chsh, minus)).digest).toBe(canonicalForm(chsh).digest);
+	});
+
+	it('tells the published families apart, whatever their labels', () => {
+		const random = lehmer(3);
+		const digests = FAMILY_LIST.map((spec) => {
+			const f = familyFunctional(spec);
+			const { digest, complete, canonical, scale, shift } = canonicalForm(f);
+			expect(complete).toBe(true);
+			const again = canonicalForm(relabelFunctional(f, randomRelabelling(f, random)));
+			expect(again.digest, spec.name).toBe(digest);
+			expect(again.canonical).toEqual(canonical);
+			const expected = localMaximumOf(canonical)
+				.mul(scale.exact ?? 0)
+				.add(shift.exact ?? 0);
+			expect(expected.equals(localMaximumOf(f)), spec.name).toBe(true);
+			return digest;
+		});
+		expect(new Set(digests).size).toBe(digests.length);
+	});
+
+	it('is the same after it was taken', () => {
+		const { canonical, digest } = canonicalForm(familyFunctional({ name: 'i3322' }));
+		const again = canonicalForm(canonical);
+		expect(again.canonical).toEqual(canonical);
+		expect([again.digest, again.scale.text, again.shift.text]).toEqual([digest, '1', '0']);
+	});
+
+	it('drops inputs and parties on which the functional does not depend', () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const wider = makeFunctional({ outputs: [[2, 2, 3], [4], [2, 2]] }, [
+			...chsh.terms.map(({ coefficient, events }) => ({
+				coefficient,
+				events: events.map(([p, x, a]): Event => [p === 1 ? 2 : p, x, a])
+			}))
+		]);
+		expect(canonicalForm(wider)).toEqual(canonicalForm(chsh));
+	});
+
+	it('falls back to an invariant digest when the search is cut short', () => {
+		const f = familyFunctional({ name: 'elegant' });
+		const g = relabelFunctional(f, randomRelabelling(f, lehmer(2)));
+		const [a, b] = [canonicalForm(f, 0), canonicalForm(g, 0)];
+		expect([a.complete, b.complete]).toEqual([false, false]);
+		expect(a.digest).toBe(b.digest);
+		expect(a.digest).not.toBe(canonicalForm(f).digest);
+		expect(localMaximumOf(a.canonical).toFraction()).toBe('6');
+	});
+
+	it('gives constants one empty form, with the constant as the shift', () => {
+		const zero = functionalOfTerms([[2], [2]], []);
+		const one = functionalOfTerms(
+			[[2], [2]],
+			[
+				['1', [[0, 0, 0]]],
+				['1', [[0, 0, 1]]]
+			]
+		);
+		expect(canonicalForm(one)).toMatchObject({
+			digest: canonicalForm(zero).digest,
+			canonical: { scenario: { outputs: [] }, terms: [] },
+			shift: { text: '1' },
+			complete: true
+		});
+		expect(affineMap(one, zero)).toMatchObject({ scale: { text: '1' }, shift: { text: '1' } });
+		expect(affineMap(one, familyFunctional({ name: 'chsh' }))).toBeNull();
+	});
+});
+
+describe('affine map', () => {
+	it('finds the published conversions', () => {
+		const ch = functionalOfTerms(
+			[
+				[2, 2],
+				[2, 2]
+			],
+			[
+				['-1', [[0, 0, 0]]],
+				['-1', [[1, 0, 0]]],
+				[
+					'1',
+					[
+						[0, 0, 0],
+						[1, 0, 0]
+					]
+				],
+				[
+					'1',
+					[
+						[0, 0, 0],
+						[1, 1, 0]
+					]
+				],
+				[
+					'1',
+					[
+						[0, 1, 0],
+						[1, 0, 0]
+					]
+				],
+				[
+					'-1',
+					[
+						[0, 1, 0],
+						[1, 1, 0]
+					]
+				]
+			]
+		);
+		// CHSH = 4 CH + 2 (Clauser and Horne, Phys. Rev. D 10, 526 (1974); from memory)
+		expect(affineMap(familyFunctional({ name: 'chsh' }), ch)).toMatchObject({
+			scale: { text: '4' },
+			shift: { text: '2' }
+		});
+		// I_2 of Collins et al., Phys. Rev. Lett. 88, 040404 (2002), is CHSH (from memory)
+		const two = familyFunctional({ name: 'cglmp', d: 2 });
+		expect(affineMap(two, familyFunctional({ name: 'chsh' }))).toMatchObject({
+			scale: { text: '1' },
+			shift: { text: '0' }
+		});
+		expect(affineMap(two, familyFunctional({ name: 'i3322' }))).toBeNull();
+	});
+
+	it('takes a common irrational factor into the scale and stays exact', () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const scaled = scaleFunctional(chsh, parseCoefficient('2*sqrt(2)'));
+		expect(canonicalForm(scaled)).toMatchObject({
+			digest: canonicalForm(chsh).digest,
+			numerical: false
+		});
+		expect(affineMap(scaled, chsh)?.scale.text).toBe('2*sqrt(2)');
+	});
+
+	it('marks irrational ratios as numerical and still finds the map', () => {
+		const f = familyFunctional({ name: 'tilted-chsh', alpha: 'sqrt(2)' });
+		const form = canonicalForm(f);
+		expect(form.numerical).toBe(true);
+		const g = relabelFunctional(
+			scaleFunctional(f, parseCoefficient('3*cos(pi/7)')),
+			randomRelabelling(f, lehmer(11))
+		);
+		expect(canonicalForm(g).digest).toBe(form.digest);
+		expect(affineMap(g, f)?.scale.value).toBeCloseTo(3 * Math.cos(Math.PI / 7), 12);
+		expect(affineMap(f, familyFunctional({ name: 'tilted-chsh', alpha: '1.4142' }))).toBeNull();
+	});
+});
+
+describe('cost', () => {
+	it.each([
+		[
+			'5 by 5 inputs with 2 outputs',
+			[
+				[2, 2, 2, 2, 2],
+				[2, 2, 2, 2, 2]
+			],
+			1
+		],
+		[
+			'2 by 2 inputs with 5 outputs',
+			[
+				[5, 5],
+				[5, 5]
+			],
+			1
+		]
+	])('%s: below a second', (_, outputs, size) => {
+		const f = randomFunctional(outputs, size, lehmer(5));
+		const start = performance.now();
+		expect(canonicalForm(f).complete).toBe(true);
+		expect(performance.now() - start).toBeLessThan(1000);
+	});
+
+	it('stays below a second where symmetry is largest', () => {
+		const matrix = Array.from({ length: 10 }, () => Array<number>(10).fill(1));
+		const f = familyFunctional({ name: 'xor-game', matrix });
+		const start = performance.now();
+		expect(canonicalForm(f).complete).toBe(true);
+		expect(performance.now() - start).toBeLessThan(1000);
+	});
+});

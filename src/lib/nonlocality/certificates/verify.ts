@@ -7,6 +7,7 @@ import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
+import { checkStrategy } from './check-quantum-strategy';
 import type { Certificate, CheckOutcome } from './types';
 
 type Proved = Extract<CheckOutcome, { checked: true }>;
@@ -33,18 +34,20 @@ function checkCertificate(
 	g: Functional,
 	certificate: Certificate | null
 ): CheckOutcome {
-	if (!certificate) return { checked: false, reason: 'the result carries no certificate' };
-	switch (problem.quantity) {
-		case 'local':
-			if (certificate.kind === 'deterministic-strategy')
-				return checkDeterministicStrategy(g, certificate);
+	if (!certificate) return refuse('the result carries no certificate');
+	const { quantity } = problem;
+	switch (certificate.kind) {
+		case 'deterministic-strategy':
+			if (quantity === 'local') return checkDeterministicStrategy(g, certificate);
+			break;
+		case 'quantum-strategy':
+			if (quantity === 'see-saw') return checkStrategy(problem, g, certificate);
 			break;
 	}
-	return {
-		checked: false,
-		reason: `a certificate of the kind "${certificate.kind}" proves nothing on "${problem.quantity}"`
-	};
+	return refuse(`a certificate of the kind "${certificate.kind}" proves nothing on "${quantity}"`);
 }
+
+const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
 
 /** A printed side may be looser than what is proved, never tighter. */
 function printedDefect(result: DoneResult, proved: Proved): string | null {

@@ -11,7 +11,9 @@ import {
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { localMaximum } from './local-maximum';
+import { npaBound } from './npa-bound';
 import type { Outcome } from './outcome';
+import { seeSaw } from './see-saw';
 
 export const SOLVER = 'merestone 0.1.0';
 
@@ -56,6 +58,10 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 	switch (problem.quantity) {
 		case 'local':
 			return localMaximum(problem, g, control);
+		case 'npa':
+			return npaBound(problem, g, control);
+		case 'see-saw':
+			return seeSaw(problem, g, control);
 		default:
 			throw new SolverStop('failed', `no solver for the quantity "${problem.quantity}" yet`);
 	}

@@ -27,13 +27,14 @@ export class Refiner {
 	readonly #graph: EquivalenceGraph;
 	readonly #lanes: readonly [Int32Array, Int32Array];
 	readonly #order: number[];
-	readonly #workPerPass: number;
+	/** Incidences of events in terms, and some for sorting. */
+	readonly workPerPass: number;
 
 	constructor(graph: EquivalenceGraph) {
 		this.#graph = graph;
 		this.#lanes = [new Int32Array(graph.vertexCount), new Int32Array(graph.vertexCount)];
 		this.#order = Array.from({ length: graph.vertexCount }, (_, v) => v);
-		this.#workPerPass =
+		this.workPerPass =
 			graph.terms.reduce((sum, term) => sum + term.events.length, 0) + 8 * graph.vertexCount;
 	}
 
@@ -53,7 +54,7 @@ export class Refiner {
 	refine(colours: Int32Array, count: number): Colouring {
 		let trace: [number, number] = [count, count];
 		for (;;) {
-			this.spent += this.#workPerPass;
+			this.spent += this.workPerPass;
 			this.#hash(colours, 0);
 			this.#hash(colours, 1);
 			const next = this.#rank(colours, trace);

@@ -7,7 +7,7 @@ export interface CanonicalLabelling {
 	readonly relabelling: Relabelling;
 	/** False when the search was cut short: the labelling then still depends on the input's names. */
 	readonly complete: boolean;
-	/** The same for equivalent graphs, complete or not; different graphs may share it. */
+	/** Set when incomplete: the same for equivalent graphs; different ones may share it. */
 	readonly invariant: string;
 }
 
@@ -57,12 +57,8 @@ class Search {
 
 	run(): void {
 		const root = this.#refiner.initial();
-		const children = this.graph.events.map((_, v) =>
-			this.#refiner.individualise(root, v).trace.join(',')
-		);
-		this.#invariant = [root.trace.join(','), ...children.sort()].join(';');
-		this.#refiner.spent = 0;
 		this.#explore(root, 0);
+		if (!this.#complete) this.#invariant = this.#describe(root);
 	}
 
 	outcome(): CanonicalLabelling {
@@ -72,6 +68,16 @@ class Search {
 			complete: this.#complete,
 			invariant: this.#invariant
 		};
+	}
+
+	/** Traces at the root and below it; the latter only where they cost no more than a search. */
+	#describe(root: Colouring): string {
+		const traces = [root.trace.join(',')];
+		if (this.graph.events.length * this.#refiner.workPerPass <= WORK_LIMIT / 4) {
+			const children = this.graph.events.map((_, v) => this.#refiner.individualise(root, v));
+			traces.push(...children.map((child) => child.trace.join(',')).sort());
+		}
+		return traces.join(';');
 	}
 
 	/** Returns the depth to go back to: a node deeper than that has nothing new below it. */

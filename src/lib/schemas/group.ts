@@ -34,7 +34,5 @@ export function slugFromName(name: string): string {
 }
 
 export const createInvitationInput = z.object({ role: z.enum(ROLES).default('member') });
-export type CreateInvitationInput = z.infer<typeof createInvitationInput>;
 
 export const changeRoleInput = z.object({ userId: z.string().max(40), role: z.enum(ROLES) });
-export type ChangeRoleInput = z.infer<typeof changeRoleInput>;

@@ -1,7 +1,7 @@
 import { and, eq } from 'drizzle-orm';
 import { leavesNoOwner, mayChangeRoles } from '../../../ledger/group-policy';
 import type { Role } from '../../../ledger/roles';
-import { changeRoleInput, type ChangeRoleInput } from '../../../schemas/group';
+import { changeRoleInput } from '../../../schemas/group';
 import type { GroupContext } from '../../context';
 import type { Transaction } from '../../db/client';
 import { memberships } from '../../db/schema';
@@ -13,7 +13,10 @@ import { parseInput } from '../parse-input';
  * Gives a member another role; it counts from their next request on.
  * @throws ServiceError forbidden, not-found, conflict (the last owner)
  */
-export async function changeRole(ctx: GroupContext, input: ChangeRoleInput): Promise<void> {
+export async function changeRole(
+	ctx: GroupContext,
+	input: { readonly userId: string; readonly role: string }
+): Promise<void> {
 	if (!mayChangeRoles(ctx.role)) throw new ServiceError('forbidden', 'Only owners give roles.');
 	const { userId, role } = parseInput(changeRoleInput, input);
 	await setMembership(ctx, userId, role);

@@ -1,5 +1,6 @@
 import { mayInvite } from '../../../ledger/group-policy';
-import { createInvitationInput, type CreateInvitationInput } from '../../../schemas/group';
+import { createInvitationInput } from '../../../schemas/group';
+import { config } from '../../config';
 import type { GroupContext } from '../../context';
 import { invitations } from '../../db/schema';
 import { ServiceError } from '../../errors';
@@ -11,8 +12,8 @@ export const INVITATION_DAYS = 14;
 
 export interface CreatedInvitation {
 	readonly id: string;
-	/** For the link `/join/TOKEN`; it can't be shown again, since only its hash is kept. */
-	readonly token: string;
+	/** Can't be shown again, since only the hash of its token is kept. */
+	readonly link: string;
 	readonly expiresAt: Date;
 }
 
@@ -22,7 +23,7 @@ export interface CreatedInvitation {
  */
 export async function createInvitation(
 	ctx: GroupContext,
-	input: CreateInvitationInput
+	input: { readonly role: string }
 ): Promise<CreatedInvitation> {
 	const { role } = parseInput(createInvitationInput, input);
 	if (!mayInvite(ctx.role, role)) {
@@ -53,5 +54,5 @@ export async function createInvitation(
 			after: { role, expiresAt: expiresAt.toISOString() }
 		});
 	});
-	return { id, token, expiresAt };
+	return { id, link: `${config().origin}/join/${token}`, expiresAt };
 }

@@ -1,0 +1,12 @@
+import type { FieldIssueView } from '../../schemas/field-issue';
+
+/** What the server says of a form it sends back, beside the errors at the fields. */
+export interface ClaimFormMessage {
+	readonly text: string;
+	/** Issues whose position in the text is known. */
+	readonly issues: readonly FieldIssueView[];
+	/** The session has ended: the form asks to sign in, within itself. */
+	readonly signedOut?: boolean;
+	/** The session was renewed from within the form; nothing is entered yet. */
+	readonly signedIn?: boolean;
+}

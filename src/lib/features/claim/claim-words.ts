@@ -1,0 +1,54 @@
+import type { Relation } from '../../ledger/claim';
+import type { ProgressView, RecomputationView } from '../../schemas/views';
+
+export const RELATION_SIGNS: Readonly<Record<Relation, string>> = {
+	'=': '=',
+	'<=': '≤',
+	'>=': '≥'
+};
+
+const RELATION_WORDS: Readonly<Record<Relation, string>> = {
+	'=': 'is',
+	'<=': 'is at most',
+	'>=': 'is at least'
+};
+
+/** `maximum is at most`: how a paper's sentence reads. */
+export function relationWords(relation: Relation): string {
+	return RELATION_WORDS[relation];
+}
+
+const MINUTE = 60;
+
+/** `0.21 s`, `72 s`, `3 min 5 s`, with thin spaces before the units. */
+export function duration(seconds: number): string {
+	if (seconds < 10) return `${seconds < 0.01 ? '< 0.01' : seconds.toFixed(2)}\u2009s`;
+	if (seconds < 2 * MINUTE) return `${Math.round(seconds)}\u2009s`;
+	const minutes = Math.floor(seconds / MINUTE);
+	return `${minutes}\u2009min ${Math.round(seconds % MINUTE)}\u2009s`;
+}
+
+/** A few words on a job that has not ended: `running 62 %`, `queued, 3 before it`. */
+export function progressWords(progress: ProgressView): string {
+	if (progress.state === 'queued')
+		return progress.ahead ? `queued, ${progress.ahead} before it` : 'queued';
+	if (progress.state === 'running')
+		return progress.fraction === null
+			? 'running'
+			: `running ${Math.floor(progress.fraction * 100)}\u2009%`;
+	return { done: 'done', failed: 'failed', cancelled: 'cancelled' }[progress.state];
+}
+
+/** What a recomputation found, as one line: `= 2`, `≤ 0.2509`, `0.2508 … 0.2510`. */
+export function resultWords(run: RecomputationView): string | null {
+	if (run.exact !== null) return `= ${run.exact}`;
+	if (run.lower !== null && run.upper !== null)
+		return run.lower === run.upper ? `= ${run.lower}` : `${run.lower} … ${run.upper}`;
+	if (run.upper !== null) return `≤ ${run.upper}`;
+	if (run.lower !== null) return `≥ ${run.lower}`;
+	return null;
+}
+
+/** The address of a DOI or an arXiv identifier. */
+export const doiAddress = (doi: string): string => `https://doi.org/${encodeURI(doi)}`;
+export const arxivAddress = (id: string): string => `https://arxiv.org/abs/${encodeURI(id)}`;

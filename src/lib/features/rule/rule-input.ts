@@ -1,0 +1,73 @@
+import type { VerdictStatus } from '../../ledger/claim';
+import type { RuleInput, RuleLayout, RuleStation } from '../../ledger/rule';
+import type { StationsView } from '../../schemas/views';
+
+const number = (text: string | null | undefined): number | null => {
+	if (text == null || text === '') return null;
+	const value = Number(text);
+	if (Number.isFinite(value)) return value;
+	// Exact values come as fractions, `4/3`, or with their decimal, `4/3 = 1.333…`.
+	const [numerator, denominator] = (text.split('=')[0] ?? '').split('/').map(Number);
+	const quotient = (numerator ?? NaN) / (denominator ?? NaN);
+	return Number.isFinite(quotient) ? quotient : null;
+};
+
+export interface ShownOnRule {
+	readonly stations: StationsView;
+	/** Ends of what the printed value stands for. */
+	readonly claimed?: { readonly low: string; readonly high: string } | null;
+	readonly printed?: string;
+	readonly status?: VerdictStatus | null;
+	/** Where the claimed quantity lies by the recomputation. */
+	readonly admissible?: { readonly lower: string | null; readonly upper: string | null } | null;
+}
+
+/** Decimal strings of the views as the numbers a drawing needs. */
+export function ruleInput(shown: ShownOnRule): RuleInput {
+	const { stations, claimed, admissible } = shown;
+	const low = number(claimed?.low);
+	const high = number(claimed?.high);
+	return {
+		local: number(stations.local),
+		quantumLower: number(stations.quantumLower),
+		quantumUpper: number(stations.quantumUpper),
+		almostQuantum: number(stations.almostQuantum),
+		noSignalling: number(stations.noSignalling),
+		claimed: low === null || high === null ? null : { low, high, printed: shown.printed ?? '' },
+		status: shown.status ?? null,
+		...(admissible
+			? { admissible: { lower: number(admissible.lower), upper: number(admissible.upper) } }
+			: {})
+	};
+}
+
+export interface StationLabel {
+	readonly at: number;
+	readonly label: string;
+	readonly figures: string;
+	readonly anchor: 'start' | 'middle' | 'end';
+}
+
+/** Near an end a text hangs on that end instead of its middle. */
+export function anchorAt(x: number): StationLabel['anchor'] {
+	return x < 0.1 ? 'start' : x > 0.9 ? 'end' : 'middle';
+}
+
+const middleOf = (station: RuleStation) =>
+	station.key === 'local' ? station.to : (station.from + station.to) / 2;
+
+/** One label per place: stations of the same value share it. */
+export function stationLabels({ stations }: RuleLayout): readonly StationLabel[] {
+	const labels: { at: number; names: string[]; figures: string }[] = [];
+	for (const station of stations) {
+		const same = labels.find(({ at }) => station.coincides && Math.abs(at - station.to) < 0.05);
+		if (same) same.names.push(station.label);
+		else labels.push({ at: middleOf(station), names: [station.label], figures: station.figures });
+	}
+	return labels.map(({ at, names, figures }) => ({
+		at,
+		label: names.join(', '),
+		figures,
+		anchor: anchorAt(at)
+	}));
+}

@@ -1,0 +1,103 @@
+import { fail, type RequestEvent } from '@sveltejs/kit';
+import { setError, superValidate, type SuperValidated } from 'sveltekit-superforms';
+import { zod4 } from 'sveltekit-superforms/adapters';
+import type { ClaimFormMessage } from '../../features/claim-form/form-message';
+import { claimInput, type ClaimInput } from '../../schemas/claim-input';
+import type { InequalityRow, ReadingView } from '../../schemas/views';
+import { contextOf } from '../auth/guards';
+import { setSessionCookie } from '../auth/cookie';
+import type { GroupContext } from '../context';
+import { ServiceError } from '../errors';
+import { searchInequalities } from '../services/inequalities/search-inequalities';
+import { readClaim } from '../services/readings/read-claim';
+import { listReferences } from '../services/references/list-references';
+import { signIn } from '../services/users/sign-in';
+
+export type ClaimForm = SuperValidated<ClaimInput, ClaimFormMessage>;
+
+/** What the form offers to choose from, and what was understood of it so far. */
+export interface ClaimFormChoices {
+	readonly known: readonly InequalityRow[];
+	readonly papers: readonly { readonly id: string; readonly formatted: string }[];
+	readonly reading: ReadingView | null;
+}
+
+export const NO_CHOICES: ClaimFormChoices = { known: [], papers: [], reading: null };
+
+const FORM_ID = 'claim';
+
+/** The form as sent, checked by the schema only. */
+export async function readClaimForm(data: FormData): Promise<ClaimForm> {
+	return superValidate<ClaimInput, ClaimFormMessage>(data, zod4(claimInput), { id: FORM_ID });
+}
+
+export async function claimFormOf(start: Partial<ClaimInput>): Promise<ClaimForm> {
+	return superValidate<ClaimInput, ClaimFormMessage>(start, zod4(claimInput), {
+		id: FORM_ID,
+		errors: false
+	});
+}
+
+export async function claimFormChoices(
+	ctx: GroupContext,
+	input: ClaimInput,
+	begun: boolean
+): Promise<ClaimFormChoices> {
+	const [known, references, reading] = await Promise.all([
+		searchInequalities(ctx, ''),
+		listReferences(ctx),
+		begun ? readClaim(ctx, input) : null
+	]);
+	return { known, papers: references.map(({ id, formatted }) => ({ id, formatted })), reading };
+}
+
+/** Sends the form back, filled as it was, with what there is to say. */
+function sendBack(form: ClaimForm, status: number, message: ClaimFormMessage) {
+	form.message = message;
+	form.valid = false;
+	return fail(status, { form });
+}
+
+/** What is wrong at its fields; anything unexpected goes on. */
+export function refuseClaim(form: ClaimForm, thrown: unknown) {
+	if (!(thrown instanceof ServiceError)) throw thrown;
+	for (const { field, message } of thrown.issues) {
+		if (field in form.data) setError(form, field as keyof ClaimInput, message);
+	}
+	return sendBack(form, thrown.status, { text: thrown.message, issues: [...thrown.issues] });
+}
+
+/** The schema alone refused it. */
+export function refuseInvalid(form: ClaimForm) {
+	const text = 'Some fields need another look; they are marked below.';
+	return sendBack(form, 400, { text, issues: [] });
+}
+
+/** The session has ended: the filled form goes back, with a way to sign in inside it. */
+export function askToSignIn(form: ClaimForm) {
+	const text =
+		'Your session has ended, so nothing was entered yet. Sign in, then send the form again.';
+	return sendBack(form, 401, { text, issues: [], signedOut: true });
+}
+
+/** Signs in from within a claim's form; what was typed stays. */
+export async function signInWithinForm(event: RequestEvent, data: FormData) {
+	const form = await readClaimForm(data);
+	const text = (name: string) => String(data.get(name) ?? '');
+	try {
+		const credentials = { email: text('signInEmail'), password: text('signInPassword') };
+		const signedIn = await signIn(contextOf(event), credentials, event.getClientAddress());
+		setSessionCookie(event.cookies, signedIn.token);
+		event.locals.actor = signedIn.actor;
+		event.locals.sessionId = signedIn.sessionId;
+	} catch (thrown) {
+		if (!(thrown instanceof ServiceError)) throw thrown;
+		return sendBack(form, thrown.status, { text: thrown.message, issues: [], signedOut: true });
+	}
+	form.message = {
+		text: 'Signed in. Nothing is entered yet: check the form and send it.',
+		issues: [],
+		signedIn: true
+	};
+	return { form };
+}

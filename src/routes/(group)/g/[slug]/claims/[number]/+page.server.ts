@@ -1,0 +1,65 @@
+import { requireRole } from '$lib/server/auth/guards';
+import { failWith } from '$lib/server/http/action-error';
+import { answering } from '$lib/server/http/page-errors';
+import { claimNumber } from '$lib/server/http/route-numbers';
+import { proposeClaim } from '$lib/server/services/claims/propose-claim';
+import { publishClaim } from '$lib/server/services/claims/publish-claim';
+import { recomputeClaim } from '$lib/server/services/claims/recompute-claim';
+import { restoreClaim } from '$lib/server/services/claims/restore-claim';
+import { showClaim } from '$lib/server/services/claims/show-claim';
+import { supersedeClaim } from '$lib/server/services/claims/supersede-claim';
+import { unpublishClaim } from '$lib/server/services/claims/unpublish-claim';
+import { withdrawClaim } from '$lib/server/services/claims/withdraw-claim';
+import { cancelRecomputation } from '$lib/server/services/recomputations/cancel-recomputation';
+import { recheckCertificate } from '$lib/server/services/recomputations/recheck-certificate';
+import type { GroupContext } from '$lib/server/context';
+import type { Action, Actions, PageServerLoad } from './$types';
+
+export const load: PageServerLoad = async (event) => {
+	const ctx = await requireRole(event, 'observer');
+	event.depends('merestone:claim');
+	const number = claimNumber(event.params.number);
+	const claim = await answering(() => showClaim(ctx, number));
+	return { claim, role: ctx.role, me: ctx.actor.name };
+};
+
+/** Guards, does it, and answers with the sentence that says so. */
+function doing(
+	done: string,
+	verb: (ctx: GroupContext, number: number, data: FormData) => Promise<void>
+): Action {
+	return async (event) => {
+		const ctx = await requireRole(event, 'observer');
+		const number = claimNumber(event.params.number);
+		try {
+			await verb(ctx, number, await event.request.formData());
+		} catch (thrown) {
+			return failWith(thrown);
+		}
+		return { message: done };
+	};
+}
+
+export const actions: Actions = {
+	recompute: doing('Queued again.', recomputeClaim),
+	withdraw: doing('Withdrawn. It stays in the ledger, struck through.', withdrawClaim),
+	restore: doing('Restored.', restoreClaim),
+	supersede: doing('Superseded.', (ctx, number, data) =>
+		supersedeClaim(ctx, number, claimNumber(String(data.get('by')).replace(/^#/, '')))
+	),
+	propose: doing('Proposed. A maintainer decides.', proposeClaim),
+	publish: doing('Public now.', publishClaim),
+	unpublish: doing('Only the group sees it now.', unpublishClaim),
+	cancel: doing('Cancelled.', (ctx, _number, data) =>
+		cancelRecomputation(ctx, String(data.get('id')))
+	),
+	recheck: async (event) => {
+		const ctx = await requireRole(event, 'observer');
+		const id = String((await event.request.formData()).get('id'));
+		try {
+			return { recheck: { id, outcome: await recheckCertificate(ctx, id) } };
+		} catch (thrown) {
+			return failWith(thrown);
+		}
+	}
+};

@@ -1,0 +1,63 @@
+import { requireRole } from '$lib/server/auth/guards';
+import {
+	askToSignIn,
+	claimFormChoices,
+	claimFormOf,
+	NO_CHOICES,
+	readClaimForm,
+	refuseClaim,
+	refuseInvalid,
+	signInWithinForm
+} from '$lib/server/http/claim-form';
+import { answering } from '$lib/server/http/page-errors';
+import { claimNumber } from '$lib/server/http/route-numbers';
+import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
+import { editClaim } from '$lib/server/services/claims/edit-claim';
+import { showClaim } from '$lib/server/services/claims/show-claim';
+import { fail, redirect, type ActionFailure } from '@sveltejs/kit';
+import type { Actions, PageServerLoad } from './$types';
+
+export const load: PageServerLoad = async (event) => {
+	const number = claimNumber(event.params.number);
+	if (isFormSentBySignedOut(event))
+		return { form: await claimFormOf({}), ...NO_CHOICES, number, version: 0 };
+	const ctx = await requireRole(event, 'member');
+	const { input, version, reference } = await answering(() => showClaim(ctx, number));
+	const form = await claimFormOf({
+		...input,
+		paper: 'known',
+		referenceId: reference.id,
+		bibtex: ''
+	});
+	const choices = await answering(() => claimFormChoices(ctx, form.data, true));
+	return { form, ...choices, number, version };
+};
+
+/** The version the person started from goes back with the form, so that a later one is noticed. */
+function keepVersion<T extends object>(answer: ActionFailure<T>, version: number) {
+	return fail(answer.status, { ...answer.data, version });
+}
+
+export const actions: Actions = {
+	save: async (event) => {
+		const number = claimNumber(event.params.number);
+		const data = await event.request.formData();
+		const version = Number(data.get('version'));
+		const form = await readClaimForm(data);
+		if (!event.locals.actor) return keepVersion(askToSignIn(form), version);
+		const ctx = await requireRole(event, 'member');
+		if (!form.valid) return keepVersion(refuseInvalid(form), version);
+		try {
+			await editClaim(ctx, number, version, form.data);
+		} catch (thrown) {
+			return keepVersion(refuseClaim(form, thrown), version);
+		}
+		redirect(303, `/g/${ctx.group.slug}/claims/${number}`);
+	},
+	signIn: async (event) => {
+		const data = await event.request.formData();
+		const version = Number(data.get('version'));
+		const answer = await signInWithinForm(event, data);
+		return 'status' in answer ? keepVersion(answer, version) : { ...answer, version };
+	}
+};

@@ -1,0 +1,93 @@
+import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { plainNotation } from '../exact/plain-notation';
+
+/** Sizes past which an expression is refused before any work is done on it. */
+export const EXPRESSION_LIMITS = {
+	characters: 4_000,
+	/** Terms after multiplying out, an observable counted as one. */
+	terms: 2_000,
+	/** Probabilities after writing observables out. */
+	probabilities: 20_000,
+	parties: 6,
+	inputs: 12,
+	outputs: 20,
+	nesting: 50
+} as const;
+
+export interface Token {
+	readonly kind: 'number' | 'letter' | 'function' | 'symbol' | 'relation' | 'end';
+	readonly text: string;
+	/** Zero-based position in the text as it was given. */
+	readonly position: number;
+	/** False when it follows the token before it directly. */
+	readonly spaced: boolean;
+}
+
+const PATTERNS: readonly (readonly [Token['kind'], RegExp])[] = [
+	['relation', /<=|>=|=</y],
+	['function', /sqrt|cos|sin|pi/y],
+	['letter', /Pr|[A-Za-z]/y],
+	// An exponent takes a lower-case e, so that 2E(0,1) is twice a correlator.
+	['number', /\d+(?:\.\d+)?(?:e[+-]?\d+)?|\.\d+/y],
+	['symbol', /[-+*/^()[\]{}<>|,_=]/y]
+];
+
+/** @throws NotationError at the first character that has no meaning; NotationLimitError when too long. */
+export function tokenize(source: string): Token[] {
+	if (source.length > EXPRESSION_LIMITS.characters)
+		throw new NotationLimitError(
+			`an expression has at most ${EXPRESSION_LIMITS.characters.toLocaleString('en')} characters, this one ${source.length.toLocaleString('en')}`
+		);
+	const plain = plainNotation(source);
+	// `\hat{A}_0` comes as `{A}_0`: the braces say nothing.
+	const text = plain.text.replace(/\{(\s*[A-Za-z]\s*)\}/g, ' $1 ');
+	const at = (index: number) => plain.positions[index] ?? source.length;
+	const tokens: Token[] = [];
+	let index = 0;
+	let spaced = true;
+	while (index < text.length) {
+		if (text[index] === ' ') {
+			index++;
+			spaced = true;
+			continue;
+		}
+		const token = matchAt(text, index);
+		if (!token) throw unknownCharacter(text.charAt(index), at(index));
+		tokens.push({ ...token, position: at(index), spaced });
+		index += token.text.length;
+		spaced = false;
+	}
+	return [...tokens, { kind: 'end', text: '', position: source.length, spaced: true }];
+}
+
+function matchAt(text: string, index: number): Pick<Token, 'kind' | 'text'> | null {
+	for (const [kind, pattern] of PATTERNS) {
+		pattern.lastIndex = index;
+		const match = pattern.exec(text);
+		if (match) return { kind, text: match[0] };
+	}
+	return null;
+}
+
+function unknownCharacter(character: string, position: number): NotationError {
+	if (character === ':' || character === ';')
+		return new NotationError(
+			`${character} has no meaning here`,
+			position,
+			'Enter the formula alone.'
+		);
+	if (character === "'" || character === '\u2032')
+		return new NotationError(
+			'primes are not understood',
+			position,
+			'Write A0 and A1 for A and A\u2032.'
+		);
+	if (character === '.')
+		return new NotationError(
+			'a stray point',
+			position,
+			'Write a decimal as 0.5, a product as a*b.'
+		);
+	const shown = /^[!-~]$/.test(character) ? character : 'this character';
+	return new NotationError(`${shown} has no meaning here`, position);
+}

@@ -1,0 +1,315 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { addCoefficients, negateCoefficient, type Coefficient } from '../exact/coefficient';
+import { parseCoefficient } from '../exact/expression';
+import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { parseExpression, type ExpressionOptions } from './expression';
+import { printExpression } from './expression-print';
+import { familyFunctional, type FamilySpec } from './families';
+import { collinsGisinForm, makeFunctional, type Functional } from './functional';
+import { printLatex } from './latex';
+import type { Event, Scenario } from './scenario';
+
+/** Equal on every no-signalling behaviour: equal Collins-Gisin coordinates. */
+function expectSame(a: Functional, b: Functional): void {
+	expect(a.scenario.outputs).toEqual(b.scenario.outputs);
+	const negative = b.terms.map((t) => ({ ...t, coefficient: negateCoefficient(t.coefficient) }));
+	const difference = makeFunctional(a.scenario, [...a.terms, ...negative]);
+	expect(collinsGisinForm(difference).terms).toEqual([]);
+}
+
+const read = (text: string, options?: ExpressionOptions) =>
+	parseExpression(text, options).functional;
+const chsh = familyFunctional({ name: 'chsh' });
+
+function failure(text: string, options?: ExpressionOptions): unknown {
+	try {
+		parseExpression(text, options);
+	} catch (error) {
+		return error;
+	}
+	return null;
+}
+
+describe('ways to write CHSH', () => {
+	it.each([
+		'A0 B0 + A0 B1 + A1 B0 - A1 B1',
+		'A0B0+A0B1+A1B0-A1B1',
+		'A_0 B_0 + A_0 B_1 + A_1 B_0 - A_1 B_1',
+		'A0*B0 + A0*B1 + A1*B0 - A1*B1',
+		'<A_0 B_0> + <A_0 B_1> + <A_1 B_0> - <A_1 B_1>',
+		'<A0 B0>+<A0 B1>+<A1 B0>-<A1 B1> <= 2',
+		'A0 (B0 + B1) + A1 (B0 - B1)',
+		'(A0 + A1) B0 + (A0 - A1) B1',
+		'E(0,0) + E(0,1) + E(1,0) - E(1,1)',
+		'E_{00}+E_{01}+E_{10}-E_{11}',
+		'E_{0,0}+E_{0,1}+E_{1,0}-E_{1,1}',
+		'2 * (1/2 A0 B0 + A0 B1/2 + 0.5 A1 B0 - \\frac{1}{2} A1 B1)',
+		'\\langle A_0 B_0\\rangle + \\langle A_{0}B_{1}\\rangle + \\langle A_1 B_0 \\rangle - \\langle A_1 B_1\\rangle \\leq 2',
+		'\\left\\langle \\hat{A}_0 \\otimes \\hat{B}_0 \\right\\rangle + A_0 B_1 + A_1 B_0 \u2212 A_1 B_1',
+		'\u27e8A\u2080 B\u2080\u27e9 + A\u2080B\u2081 + A\u2081B\u2080 - A\u2081B\u2081',
+		'sqrt(2) (A0 B0 + A0 B1 + A1 B0 - A1 B1) / \\sqrt{2}',
+		'A0 B0 + A0 B1 + A1 B0 - A1 B1 + 1 - 1'
+	])('reads %s', (text) => {
+		expectSame(read(text), chsh);
+	});
+
+	it('reads the probabilities of the form of Clauser and Horne: CHSH = 4 CH + 2', () => {
+		const ch = 'P(0,0|0,0) + P(00|01) + P_{AB}(0,0|1,0) - P(0 0|1 1) - P_A(0|0) - P_B(0|0)';
+		expectSame(read(`4 (${ch}) + 2`), chsh);
+		expectSame(read(`4 (${ch.replaceAll('P', 'p')}) + 2`), chsh);
+	});
+
+	it('reads three parties', () => {
+		const mermin = familyFunctional({ name: 'mermin', n: 3 });
+		expectSame(read('A0 B0 C0 - A0 B1 C1 - A1 B0 C1 - A1 B1 C0'), mermin);
+		expectSame(read('E(0,0,0) - E(0,1,1) - E(1,0,1) - E(1,1,0)'), mermin);
+	});
+});
+
+describe('index base and scenario', () => {
+	it('reads inputs from 1 only where no 0 occurs, and says so', () => {
+		const one = parseExpression('A1 B1 + A1 B2 + A2 B1 - A2 B2', { indexBase: 'read' });
+		expect(one).toMatchObject({ indexBase: 1, chosen: false });
+		expectSame(one.functional, chsh);
+		const zero = parseExpression('A0 B1 + A1 B2', { indexBase: 'read' });
+		expect(zero).toMatchObject({ indexBase: 0, chosen: false });
+		expect(zero.functional.scenario.outputs).toEqual([
+			[2, 2],
+			[2, 2, 2]
+		]);
+		expect(parseExpression('A1 B1', { indexBase: 0 })).toMatchObject({
+			indexBase: 0,
+			chosen: true
+		});
+	});
+
+	it('takes the smallest scenario that contains every index', () => {
+		expect(read('P(2,0|0,1)').scenario.outputs).toEqual([[3], [2, 2]]);
+		expect(read('A0 C1').scenario.outputs).toEqual([[2], [2], [2, 2]]);
+		expect(read('P_A(0|0)', { outputs: [[4], [3, 2]] }).scenario.outputs).toEqual([[4], [3, 2]]);
+		expect(read('3/2', { outputs: [[2], [2]] }).terms).toHaveLength(1);
+	});
+
+	it.each([
+		['A0 B0 <= 2', { relation: '<=', text: '2' }],
+		['A0 B0 \\leq 2\\sqrt{2}', { relation: '<=', text: '2\\sqrt{2}' }],
+		['<A0 B0> < 0.25088(2)', { relation: '<=', text: '0.25088(2)' }],
+		['<A0 B0>=1', { relation: '=', text: '1' }],
+		['\\langle A_0\\rangle\\geq -1', { relation: '>=', text: '-1' }],
+		['A0 B0 > -3/2', { relation: '>=', text: '-3/2' }],
+		['A0 B0', null]
+	])('finds the bound in %s', (text, bound) => {
+		expect(parseExpression(text).claimedBound).toEqual(bound);
+	});
+});
+
+describe('what cannot be read', () => {
+	it.each<[string, ExpressionOptions, number | null, RegExp, RegExp | null]>([
+		['', {}, 0, /empty/, /for example/],
+		['A0 B0 + ', {}, 8, /ends too early/, null],
+		['A0 B0 + A0 & % B1', {}, 13, /% has no meaning/, null],
+		['A0 B0 + A B1', {}, 8, /A needs an input/, /A0 or A1/],
+		['a0 b0', {}, 0, /a is not a party/, /Write A0/],
+		['S = A0 B0', {}, 0, /S is not a party/, /right-hand side alone/],
+		['Z0', {}, 0, /not a party/, /A, B, C/],
+		['A0 A1', {}, 3, /party A occurs twice/, /\+ or -/],
+		['A0 B0 A1', {}, 6, /party A occurs twice/, null],
+		['1/A0', {}, 2, /only a number can be divided by/, null],
+		['A0^2', {}, 0, /only a number can be raised/, null],
+		['sqrt(A0)', {}, 5, /sqrt takes a number/, null],
+		['A0 B0 / 0', {}, 8, /division by zero/, null],
+		['sqrt 2 A0', {}, 0, /needs parentheses/, /sqrt\(/],
+		['1/2sqrt(2) A0', {}, 3, /below the fraction bar/, /\*/],
+		['1/sqrt(2) sqrt(3) A0', {}, 10, /below the fraction bar/, /\*/],
+		['(A0 B0', {}, 0, /never closed/, /Add a \)/],
+		['A0 B0)', {}, 5, /never opened/, null],
+		['<A0 B0', {}, 0, /never closed/, null],
+		['|A0 B0|', {}, 0, /absolute values/, /without the bars/],
+		['A0 B0 <= ', {}, 6, /bound after the relation is missing/, null],
+		['-2 <= A0 B0 <= 2', {}, 6, /right-hand side has to be a number/, /one relation/],
+		['P(0,1|1)', {}, 0, /2 outputs for 1 inputs/, /commas/],
+		['P(a,b|x,y)', {}, 2, /have to be numbers/, /P\(0,1\|1,0\)/],
+		['P_A(0,1|1,0)', {}, 0, /1 parties are named/, null],
+		['P_{AA}(0,1|1,0)', {}, 0, /twice/, null],
+		['A0 B0 + P(0|1)', {}, 8, /does not say whose/, /P_A/],
+		['E(0,1) + C0', {}, 0, /does not say whose/, /<A0 B0>/],
+		['A0 + P_A(2|0)', {}, 0, /needs an input with two outputs, not 3/, /probabilities/],
+		['\\sum_i A_i', {}, 0, /\\sum is not understood/, null],
+		["A0 B0 + A0 B'", {}, 12, /primes/, null],
+		['A1 B1 + A0 B1', { indexBase: 1 }, 8, /does not exist when indices start at 1/, /start at 0/],
+		[
+			'A2 B0',
+			{
+				outputs: [
+					[2, 2],
+					[2, 2]
+				]
+			},
+			0,
+			/no input 2 when indices start at 0 and it has 2/,
+			/start at 1/
+		],
+		[
+			'A0 C0',
+			{
+				outputs: [
+					[2, 2],
+					[2, 2]
+				]
+			},
+			3,
+			/no party C: the scenario has 2/,
+			null
+		],
+		[
+			'P(0,2|0,0)',
+			{
+				outputs: [
+					[2, 2],
+					[2, 2]
+				]
+			},
+			0,
+			/no output 2: it has 2/,
+			null
+		],
+		['A0', { outputs: [[3], [2]] }, 0, /two outputs, not 3/, null],
+		['5', {}, 0, /no observable/, null],
+		['<script>alert(1)</script>', {}, 0, /s|</, null]
+	])('%j', (text, options, position, message, suggestion) => {
+		const error = failure(text, options);
+		expect(error).toBeInstanceOf(NotationError);
+		if (!(error instanceof NotationError)) return;
+		expect(error.message).toMatch(message);
+		if (!text.includes('script')) expect(error.position).toBe(position);
+		if (suggestion) expect(error.suggestion).toMatch(suggestion);
+	});
+
+	it.each([
+		['A12', /at most 12 inputs/],
+		['P(20,0|0,0)', /at most 20 outputs/],
+		[`${'A0 B0 + '.repeat(600)}A0`, /at most 4,000 characters/],
+		[`${'('.repeat(60)}A0${')'.repeat(60)}`, /50 levels/],
+		['E(0,0,0,0,0,0,0)', /at most 6 parties/],
+		[
+			['A', 'B', 'C', 'D']
+				.map((p) => `(${[...Array(7).keys()].map((x) => p + x).join('+')})`)
+				.join(''),
+			/at most 2,000 terms/
+		],
+		['(2^200)^6 A0', /too many digits/]
+	])('stops at its limits: %s', (text, message) => {
+		const error = failure(text);
+		expect(error).toBeInstanceOf(NotationError);
+		expect(String(error)).toMatch(message);
+	});
+
+	it('tells limits from mistakes', () => {
+		expect(failure('A12')).toBeInstanceOf(NotationLimitError);
+		expect(failure('A0 +')).not.toBeInstanceOf(NotationLimitError);
+	});
+
+	it('throws nothing but NotationError on any text', () => {
+		const pieces = fc.constantFrom(
+			...'A0 B1 C2 E P ( ) | , _ { } < > <= = + - * / ^ 2 1/3 sqrt( pi \\frac \\sqrt & ~ [ ] ; x E(0,1) P(0,1|1,0) P_A(0|1) \\langle \\rangle'.split(
+				' '
+			)
+		);
+		fc.assert(
+			fc.property(fc.array(pieces, { maxLength: 14 }), fc.constantFrom('', ' '), (parts, glue) => {
+				const error = failure(parts.join(glue), { indexBase: 'read' });
+				if (error !== null) expect(error).toBeInstanceOf(NotationError);
+				expect(true).toBe(true);
+			}),
+			{ numRuns: 3000 }
+		);
+	});
+});
+
+const coefficient = fc
+	.oneof(
+		fc.integer({ min: -9, max: 9 }).map(String),
+		fc
+			.tuple(fc.integer({ min: -9, max: 9 }), fc.integer({ min: 1, max: 9 }))
+			.map(([p, q]) => `${p}/${q}`),
+		fc.constantFrom('sqrt(2)', '-2*sqrt(3)', '1/2-sqrt(5)', '-1-sqrt(2)', 'cos(pi/8)', 'pi')
+	)
+	.map(parseCoefficient);
+
+/** A functional of 1 to 3 parties; with `binary`, every input has two outputs. */
+const functional = (binary: boolean) =>
+	fc
+		.array(
+			fc.array(binary ? fc.constant(2) : fc.integer({ min: 2, max: 3 }), {
+				minLength: 1,
+				maxLength: 3
+			}),
+			{ minLength: 1, maxLength: 3 }
+		)
+		.chain((outputs) => {
+			const scenario: Scenario = { outputs };
+			const event = (party: number): fc.Arbitrary<Event | null> =>
+				fc.tuple(fc.nat(2), fc.nat(2), fc.boolean()).map(([x, a, there]) => {
+					const input = x % (outputs[party]?.length ?? 1);
+					return there ? [party, input, a % (outputs[party]?.[input] ?? 1)] : null;
+				});
+			const term = fc
+				.tuple(coefficient, fc.tuple(...outputs.map((_, party) => event(party))))
+				.map(([c, events]) => ({ coefficient: c, events: events.filter((e) => e !== null) }));
+			return fc.array(term, { maxLength: 6 }).map((terms) => makeFunctional(scenario, terms));
+		});
+
+describe('printing', () => {
+	it.each<[FamilySpec, string]>([
+		[{ name: 'chsh' }, 'A0 B0 + A0 B1 + A1 B0 - A1 B1'],
+		[{ name: 'tilted-chsh', alpha: 'sqrt(2)/2' }, '1/2*sqrt(2) A0 + A0 B0 + A0 B1 + A1 B0 - A1 B1'],
+		[{ name: 'mermin', n: 3 }, 'A0 B0 C0 - A0 B1 C1 - A1 B0 C1 - A1 B1 C0']
+	])('prints %j', (spec, text) => {
+		expect(printExpression(familyFunctional(spec))).toBe(text);
+	});
+
+	it('prints LaTeX', () => {
+		expect(printLatex(chsh, { indexBase: 1 })).toBe('A_1B_1+A_1B_2+A_2B_1-A_2B_2');
+		const tilted = familyFunctional({ name: 'tilted-chsh', alpha: '1/2' });
+		expect(printLatex(tilted)).toBe('\\tfrac{1}{2}\\,A_0+A_0B_0+A_0B_1+A_1B_0-A_1B_1');
+		expect(printLatex(read('P(2,0|0,0) - 2 sqrt(2) P_A(0|0)'))).toBe(
+			'-2\\sqrt{2}\\,P_{A}(0|0)+P(2,0|0,0)'
+		);
+		expect(printLatex(read('cos(pi/8) A0'))).toBe('\\cos (\\tfrac{1}{8}\\,\\pi )\\,A_0');
+	});
+
+	it.each([true, false])('parse(print(f)) = f (two outputs everywhere: %s)', (binary) => {
+		fc.assert(
+			fc.property(functional(binary), fc.constantFrom<(0 | 1)[]>(0, 1), (f, indexBase) => {
+				const { outputs } = f.scenario;
+				expectSame(read(printExpression(f, { indexBase }), { indexBase, outputs }), f);
+				expectSame(read(printLatex(f, { indexBase }), { indexBase, outputs }), f);
+			}),
+			{ numRuns: 200 }
+		);
+	});
+
+	it('is linear: a sum of texts is the sum of the functionals', () => {
+		fc.assert(
+			fc.property(functional(true), functional(true), (f, g) => {
+				const text = `(${printExpression(f)}) - 3/2 (${printExpression(g)})`;
+				const outputs = [0, 1, 2].map(() => [2, 2, 2]);
+				const wide = makeFunctional({ outputs }, [
+					...f.terms,
+					...g.terms.map((t) => ({
+						...t,
+						coefficient: minusThreeHalves(t.coefficient)
+					}))
+				]);
+				expectSame(read(text, { outputs }), wide);
+			}),
+			{ numRuns: 100 }
+		);
+	});
+});
+
+/** -3/2 c, as -(c + c/2), so that the property does not lean on the same multiplication. */
+function minusThreeHalves(c: Coefficient): Coefficient {
+	return negateCoefficient(addCoefficients(c, parseCoefficient(`(${c.text})/2`)));
+}

@@ -11,14 +11,21 @@ export interface DeterministicCertificate {
 	readonly enumerated: string;
 }
 
-/** Primal and dual solutions of the no-signalling linear programme with equal exact objective. */
+/**
+ * The no-signalling linear programme: maximise g over P(a|x) >= 0. Entries are exact rationals,
+ * keyed `"a,b|x,y"` (outputs and inputs of all parties, in order); those left out are 0.
+ */
 export interface LinearProgrammeCertificate {
 	readonly kind: 'linear-programme';
-	/** The vertex: `"a,b|x,y"` to an exact rational. */
+	/** A no-signalling behaviour: proves g >= its value. */
 	readonly primal: Readonly<Record<string, string>>;
-	/** Multipliers of the equalities, in the order the check rebuilds them; exact rationals. */
-	readonly dual: readonly string[];
-	readonly value: string;
+	/**
+	 * Multipliers m(a|x) >= 0 of the rows P(a|x) >= 0. In Collins-Gisin coordinates y (each a
+	 * probability, in [0, 1]) let g + sum m P = U + sum_i r_i y_i; then g <= U + sum_i max(0, r_i).
+	 */
+	readonly dual: Readonly<Record<string, string>>;
+	/** The maximum as an exact rational, or null where the two sides do not meet exactly. */
+	readonly value: string | null;
 }
 
 /** A word per party, `[[inputs and outputs] per party]`: each letter is `[input, output]`. */
@@ -40,6 +47,8 @@ export interface MomentCertificate {
 	 * value - form >= 0) and `>=` (form - value >= 0), any sign for `=` (form - value = 0).
 	 */
 	readonly constraintMultipliers?: readonly number[];
+	/** lambda_min(Z) >= -shift (0 when left out); the bound contains size * shift. */
+	readonly shift?: number;
 	/** Guaranteed bound on the functional (upper for `max`). */
 	readonly bound: number;
 	/**

@@ -230,6 +230,7 @@ export class SemidefiniteSolver {
 	}
 
 	#take(direction: Direction): boolean {
+		this.#projectDirection(direction);
 		const primalStep = Math.min(1, STEP_FRACTION * this.#multiplierStep(direction));
 		const dualStep = Math.min(1, STEP_FRACTION * this.#slackStep(direction));
 		const movedX = this.#moveMultiplier(direction, primalStep);
@@ -268,15 +269,32 @@ export class SemidefiniteSolver {
 		return 0;
 	}
 
+	/**
+	 * Takes the rounding errors of the linear solve out of dX, so that a full step would meet the
+	 * equalities: near the end they are larger than X's smallest eigenvalues.
+	 */
+	#projectDirection(direction: Direction): void {
+		const { equalities, rows } = this.#programme;
+		const residuals = this.#dualResiduals();
+		addInnerProducts(this.#programme, direction.dx, 1, residuals);
+		addRows(rows, direction.rowMultipliers, 1, residuals);
+		addRows(equalities, direction.equalityMultipliers, 1, residuals);
+		addRows(equalities, this.#equalityMultipliers, -1, residuals);
+		this.#subtractAverages(direction.dx, residuals);
+	}
+
 	/** Moves X to the nearest matrix that meets the linear equalities. */
 	#project(): void {
+		this.#subtractAverages(this.#x, this.#dualResiduals());
+	}
+
+	#subtractAverages(matrix: Float64Array, residuals: Float64Array): void {
 		const { index } = this.#programme;
-		const residuals = this.#dualResiduals();
 		for (let cell = 0; cell < index.length; cell++) {
 			const moment = index[cell] ?? -1;
 			if (moment > 0)
-				this.#x[cell] =
-					(this.#x[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
+				matrix[cell] =
+					(matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
 		}
 	}
 

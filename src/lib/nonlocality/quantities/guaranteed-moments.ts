@@ -32,11 +32,14 @@ export function provenShift(matrix: Float64Array, n: number, work: Float64Array)
 	return null;
 }
 
-/** Covers the factorisation's own error and the rounding of the shifted diagonal, with slack. */
+/**
+ * Covers the factorisation's own error and the rounding of the shifted diagonal. Twice what is
+ * needed, so that another factorisation, rounding differently, completes as well.
+ */
 function choleskyError(matrix: Float64Array, n: number): number {
 	let trace = 0;
 	for (let i = 0; i < n; i++) trace += Math.abs(matrix[i * n + i] ?? 0);
-	return 1.1 * gamma(n + 3) * trace + 1e-300;
+	return 2.2 * gamma(n + 3) * trace + 1e-300;
 }
 
 function choleskyCompletes(
@@ -50,6 +53,12 @@ function choleskyCompletes(
 	return factorCholesky(work, n);
 }
 
+/** A guaranteed bound and the shift it contains. */
+export interface ProvenBound {
+	readonly bound: number;
+	readonly shift: number;
+}
+
 export interface Multipliers {
 	/** Symmetric row-major. */
 	readonly matrix: Float64Array;
@@ -58,20 +67,20 @@ export interface Multipliers {
 }
 
 /**
- * A guaranteed upper bound on the relaxation from any multipliers: domain of validity is every
- * feasible y, for which |y_i| <= 1 and trace Gamma(y) <= size:
+ * A guaranteed upper bound on the relaxation from any multipliers, by weak duality and because
+ * every feasible y has |y_i| <= 1 and trace Gamma(y) <= size:
  * c_0 + c.y <= c_0 + <F_0,Z> + sum_j z_j p_j0 + sum_i |c_i + <F_i,Z> + sum_j z_j p_ji| + size * d.
- * All roundings are covered by a-priori bounds. Infinity when Z cannot be proved positive.
+ * All roundings are covered by a-priori bounds. Null when Z cannot be proved positive.
  */
 export function provenUpperBound(
 	problem: MomentProblem,
 	multipliers: Multipliers,
 	work: Float64Array
-): number {
+): ProvenBound | null {
 	const { programme } = problem;
 	const n = programme.size;
 	const shift = provenShift(multipliers.matrix, n, work);
-	if (shift === null) return Infinity;
+	if (shift === null) return null;
 	const sums = programme.objective.slice();
 	const sizes = sums.map(Math.abs);
 	const counts = new Int32Array(sums.length).fill(2);
@@ -100,7 +109,8 @@ export function provenUpperBound(
 		slack += gamma((counts[i] ?? 0) + 1) * (sizes[i] ?? 0) * (1 + 4 * U * (counts[i] ?? 0));
 	});
 	slack *= 1 + 2 * gamma(sums.length + programme.rows.length + programme.equalities.length + 8);
-	return nextDouble(nextDouble((sums[0] ?? 0) + slack, 1), 1);
+	const bound = nextDouble(nextDouble((sums[0] ?? 0) + slack, 1), 1);
+	return Number.isFinite(bound) ? { bound, shift } : null;
 }
 
 /**

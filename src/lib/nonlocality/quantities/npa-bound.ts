@@ -13,12 +13,16 @@ import { makeMomentProblem, type MomentProblem } from './moment-problem';
 import type { Outcome } from './outcome';
 
 /** Guaranteed gap, relative to the objective's scale, at which more iterations would be wasted. */
-const ENOUGH_GAP = 5e-10;
+const ENOUGH_GAP = 1e-9;
 /** The solver's own end, where rounding keeps the guaranteed gap from closing. */
 const SOLVER_TOLERANCE = 1e-11;
 const MOST_ITERATIONS = 80;
+/** A gap smaller by less than this factor is no progress. */
+const WORTHWHILE = 0.8;
+/** How far to go from the last proved point towards an iterate that cannot be proved itself. */
+const TOWARDS_ITERATE = [1, 0.99, 0.95, 0.85, 0.7, 0.5, 0.25];
 /** Iterations without a better guaranteed gap after which it will not get better. */
-const PATIENCE = 4;
+const PATIENCE = 3;
 
 /**
  * Optimum of the moment-matrix relaxation for the functional g, from both sides.
@@ -81,6 +85,7 @@ class BoundSearch {
 	readonly #work: Float64Array;
 	readonly #gamma: Float64Array;
 	#multipliers: Multipliers | null = null;
+	#shift = 0;
 	#moments: Float64Array | null = null;
 	#bestError = Infinity;
 	#bestGap = Infinity;
@@ -130,16 +135,13 @@ class BoundSearch {
 			rows: iterate.rowMultipliers.map((value) => Math.max(0, value) * scale),
 			equalities: iterate.equalityMultipliers.map((value) => value * scale)
 		};
-		const upper = provenUpperBound(this.#problem, multipliers, this.#work);
-		if (upper < this.upper) {
-			this.upper = upper;
+		const proven = provenUpperBound(this.#problem, multipliers, this.#work);
+		if (proven && proven.bound < this.upper) {
+			this.upper = proven.bound;
+			this.#shift = proven.shift;
 			this.#multipliers = multipliers;
 		}
-		const value = provenFeasibleValue(this.#problem, iterate.moments, this.#work, this.#gamma);
-		if (value !== null && (this.lower === null || value > this.lower)) {
-			this.lower = value;
-			this.#moments = iterate.moments.slice();
-		}
+		this.#keepFeasible(iterate.moments);
 		const error = Math.abs(iterate.dual - iterate.primal) + iterate.residual;
 		if (error < this.#bestError) {
 			this.#bestError = error;
@@ -156,11 +158,33 @@ class BoundSearch {
 		return this.#isEnough();
 	}
 
+	/**
+	 * Keeps y when Gamma(y) is proved positive and g is larger there. Once the iterates lie too near
+	 * the boundary for that, goes as far towards them from the last good point as the proof allows.
+	 */
+	#keepFeasible(moments: Float64Array): void {
+		const from = this.#moments;
+		for (const fraction of from ? TOWARDS_ITERATE : [1]) {
+			const candidate =
+				from && fraction < 1
+					? moments.map((value, i) => (1 - fraction) * (from[i] ?? 0) + fraction * value)
+					: moments.slice();
+			candidate[0] = 1;
+			const value = provenFeasibleValue(this.#problem, candidate, this.#work, this.#gamma);
+			if (value === null) continue;
+			if (this.lower === null || value > this.lower) {
+				this.lower = value;
+				this.#moments = candidate;
+			}
+			return;
+		}
+	}
+
 	#isEnough(): boolean {
 		const gap = this.lower === null ? Infinity : this.upper - this.lower;
-		const size = Math.max(this.#scale, Math.abs(this.upper));
+		const size = this.#scale;
 		if (gap <= ENOUGH_GAP * size) return true;
-		if (gap < this.#bestGap) {
+		if (gap < WORTHWHILE * this.#bestGap) {
 			this.#idle = 0;
 			this.#bestGap = gap;
 			return false;
@@ -192,6 +216,7 @@ class BoundSearch {
 			multiplier,
 			rowMultipliers,
 			...(constraintMultipliers.length > 0 && { constraintMultipliers }),
+			shift: this.#shift,
 			bound: this.upper,
 			moments: this.#moments ? [...this.#moments.subarray(1)] : null,
 			feasibleValue: this.lower

@@ -1,0 +1,232 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { exactCoefficient, multiplyCoefficients, negateCoefficient } from '../exact/coefficient';
+import { parseCoefficient } from '../exact/expression';
+import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { ratio } from '../exact/rational';
+import { familyFunctional } from './families';
+import { collinsGisinForm, makeFunctional, type Functional } from './functional';
+import type { Event } from './scenario';
+import {
+	parseCollinsGisin,
+	parseCorrelators,
+	parseProbabilities,
+	printCollinsGisin,
+	printCorrelators,
+	printProbabilities,
+	splitTable
+} from './tables';
+
+const same = (a: Functional, b: Functional): boolean => {
+	const negative = b.terms.map((t) => ({ ...t, coefficient: negateCoefficient(t.coefficient) }));
+	return collinsGisinForm(makeFunctional(a.scenario, [...a.terms, ...negative])).terms.length === 0;
+};
+
+/** scale * f + shift. */
+const affine = (f: Functional, scale: number, shift: number): Functional =>
+	makeFunctional(f.scenario, [
+		...f.terms.map((t) => ({
+			...t,
+			coefficient: multiplyCoefficients(t.coefficient, exactCoefficient(ratio(BigInt(scale))))
+		})),
+		{ coefficient: exactCoefficient(ratio(BigInt(shift))), events: [] }
+	]);
+
+// Clauser, Horne, Phys. Rev. D 10, 526 (1974); the table as in arXiv:0711.3362.
+const CH = [
+	[0, -1, 0],
+	[-1, 1, 1],
+	[0, 1, -1]
+];
+// Collins, Gisin, J. Phys. A 37, 1775 (2004); its correlators follow with p = (1 + A)/2.
+const I3322 = [
+	[0, -1, 0, 0],
+	[-2, 1, 1, 1],
+	[-1, 1, 1, -1],
+	[0, 1, -1, 0]
+];
+const I3322_CORRELATORS = [
+	[0, 1, 1, 0],
+	[-1, 1, 1, 1],
+	[-1, 1, 1, -1],
+	[0, 1, -1, 0]
+];
+
+describe('known conversions', () => {
+	it('CHSH = 4 CH + 2', () => {
+		expect(same(familyFunctional({ name: 'chsh' }), affine(parseCollinsGisin(CH), 4, 2))).toBe(
+			true
+		);
+	});
+
+	it('I3322 in correlators = 4 I + 4', () => {
+		const i = parseCollinsGisin(I3322);
+		expect(same(i, familyFunctional({ name: 'i3322' }))).toBe(true);
+		expect(same(parseCorrelators(I3322_CORRELATORS), affine(i, 4, 4))).toBe(true);
+		expect(printCorrelators(affine(i, 4, 4))).toEqual(
+			I3322_CORRELATORS.map((row) => row.map(String))
+		);
+	});
+
+	it('prints the tables it was given', () => {
+		expect(printCollinsGisin(parseCollinsGisin(CH))).toEqual(CH.map((row) => row.map(String)));
+		expect(printCollinsGisin(parseCorrelators(I3322_CORRELATORS))).toEqual([
+			['4', '-4', '0', '0'],
+			['-8', '4', '4', '4'],
+			['-4', '4', '4', '-4'],
+			['0', '4', '-4', '0']
+		]);
+	});
+});
+
+describe('splitTable', () => {
+	it.each([
+		'1 2 3\n4 5 6',
+		'1, 2, 3\n4, 5, 6\n',
+		'1;2;3\r\n4;5;6',
+		'1\t2\t3\n4\t5\t6',
+		'1 & 2 & 3 \\\\\n4 & 5 & 6 \\\\',
+		'\\begin{pmatrix} 1 & 2 & 3 \\\\ 4 & 5 & 6 \\end{pmatrix}',
+		'\\begin{array}{c|cc} 1 & 2 & 3 \\\\ \\hline 4 & 5 & 6 \\end{array}',
+		'[[1,2,3],[4,5,6]]',
+		'1 | 2 3\n4 | 5 6'
+	])('%j', (text) => {
+		expect(splitTable(text)).toEqual([
+			['1', '2', '3'],
+			['4', '5', '6']
+		]);
+	});
+
+	it('keeps expressions whole between commas', () => {
+		expect(splitTable('1/2, 2 sqrt(2)\n-1, \\frac{1}{2}')).toEqual([
+			['1/2', '2 sqrt(2)'],
+			['-1', '\\frac{1}{2}']
+		]);
+	});
+});
+
+describe('what cannot be read', () => {
+	it.each<[() => unknown, RegExp]>([
+		[() => splitTable(''), /empty/],
+		[() => splitTable('1 2\n3'), /row 2 has 1 cells, the first row 2/],
+		[
+			() =>
+				parseCollinsGisin([
+					[1, 2],
+					[3, 'x']
+				]),
+			/row 2, column 2: x is not a number/
+		],
+		[() => parseCollinsGisin([[1, 2]]), /at least two rows/],
+		[
+			() =>
+				parseCollinsGisin(CH, [
+					[2, 2],
+					[2, 2, 2]
+				]),
+			/3 rows and 3 columns; these outputs need 3 and 4/
+		],
+		[() => parseCollinsGisin(CH, [[2, 2], [2, 2], [2]]), /two parties, not 3/],
+		[
+			() =>
+				parseCorrelators([
+					[NaN, 1],
+					[1, 1]
+				]),
+			/row 1, column 1/
+		],
+		[() => parseProbabilities({ 'a|b': 1 }), /names no probability/],
+		[() => parseProbabilities({ '0,0|0': 1 }), /names no probability/],
+		[() => parseProbabilities({ '0,0|0,0': 1, '0|0': 1 }), /is for 1 parties, the others for 2/],
+		[() => parseProbabilities({ '0,2|0,0': 1 }, [[2], [2]]), /outside the scenario/],
+		[() => parseProbabilities({ '0,0|0,0': 'x' }), /"0,0\|0,0": x is not a number/],
+		[() => parseProbabilities(JSON.parse('{"__proto__": 1}')), /names no probability/]
+	])('%#', (attempt, message) => {
+		expect(attempt).toThrow(message);
+		expect(attempt).toThrow(NotationError);
+	});
+
+	it('tells too large from malformed', () => {
+		const wide = Array.from({ length: 131 }, () => ['1']);
+		expect(() => parseCollinsGisin(wide)).toThrow(NotationLimitError);
+		expect(() => parseProbabilities({ '0,0|0,99': 1 })).toThrow(NotationLimitError);
+	});
+});
+
+const coefficient = fc
+	.oneof(
+		fc
+			.tuple(fc.integer({ min: -9, max: 9 }), fc.integer({ min: 1, max: 9 }))
+			.map(([p, q]) => `${p}/${q}`),
+		fc.constantFrom('sqrt(2)', '1/2-sqrt(5)', 'cos(pi/8)')
+	)
+	.map(parseCoefficient);
+
+const functional = (outputs: readonly (readonly number[])[], full: boolean) => {
+	const event = (party: number) =>
+		fc.tuple(fc.nat(5), fc.nat(5), full ? fc.constant(true) : fc.boolean()).map(([x, a, there]) => {
+			const input = x % (outputs[party]?.length ?? 1);
+			const found: Event = [party, input, a % (outputs[party]?.[input] ?? 1)];
+			return there ? [found] : [];
+		});
+	const term = fc
+		.tuple(coefficient, event(0), event(1))
+		.map(([c, a, b]) => ({ coefficient: c, events: [...a, ...b] }));
+	return fc.array(term, { maxLength: 8 }).map((terms) => makeFunctional({ outputs }, terms));
+};
+
+describe('round trips', () => {
+	const outputs = [
+		[2, 3],
+		[3, 2, 2]
+	];
+	it('through a Collins-Gisin table', () => {
+		fc.assert(
+			fc.property(functional(outputs, false), (f) => {
+				expect(same(parseCollinsGisin(printCollinsGisin(f) ?? [], outputs), f)).toBe(true);
+			})
+		);
+	});
+
+	it('through a correlator table', () => {
+		const binary = [
+			[2, 2],
+			[2, 2, 2]
+		];
+		fc.assert(
+			fc.property(functional(binary, false), (f) => {
+				expect(same(parseCorrelators(printCorrelators(f) ?? []), f)).toBe(true);
+			})
+		);
+		fc.assert(
+			fc.property(functional(outputs, false), (f) => {
+				expect(printCorrelators(f)).toBeNull();
+			})
+		);
+	});
+
+	it('through a table of probabilities', () => {
+		fc.assert(
+			fc.property(functional(outputs, true), (f) => {
+				expect(parseProbabilities(printProbabilities(f) ?? {}, outputs).terms).toEqual(f.terms);
+			})
+		);
+	});
+
+	it('is linear in the table', () => {
+		const cell = fc.integer({ min: -5, max: 5 });
+		const table = fc.array(fc.array(cell, { minLength: 3, maxLength: 3 }), {
+			minLength: 3,
+			maxLength: 3
+		});
+		fc.assert(
+			fc.property(table, table, (a, b) => {
+				const sum = a.map((row, i) => row.map((value, j) => value + (b[i]?.[j] ?? 0)));
+				const [fa, fb, fsum] = [a, b, sum].map((t) => parseCollinsGisin(t));
+				expect(fa && fb && fsum).toBeDefined();
+				if (!fa || !fb || !fsum) return;
+				expect(same(fsum, makeFunctional(fa.scenario, [...fa.terms, ...fb.terms]))).toBe(true);
+			})
+		);
+	});
+});

@@ -7,6 +7,7 @@ import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
+import { checkLinearProgramme } from './check-linear-programme';
 import { checkStrategy } from './check-quantum-strategy';
 import type { Certificate, CheckOutcome } from './types';
 
@@ -39,6 +40,9 @@ function checkCertificate(
 	switch (certificate.kind) {
 		case 'deterministic-strategy':
 			if (quantity === 'local') return checkDeterministicStrategy(g, certificate);
+			break;
+		case 'linear-programme':
+			if (quantity === 'no-signalling') return checkLinearProgramme(g, certificate);
 			break;
 		case 'quantum-strategy':
 			if (quantity === 'see-saw') return checkStrategy(problem, g, certificate);

@@ -104,7 +104,7 @@ export function toDoubleDown(value: Rational): number {
 
 /** The smallest double that is not below a rational. */
 export function toDoubleUp(value: Rational): number {
-	return -toDoubleDown(value.neg());
+	return 0 - toDoubleDown(value.neg()); // 0, never -0
 }
 
 /** The neighbouring double in the given direction (+1 or -1). */

@@ -11,6 +11,7 @@ import {
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { localMaximum } from './local-maximum';
+import { noSignallingMaximum } from './no-signalling-maximum';
 import { npaBound } from './npa-bound';
 import type { Outcome } from './outcome';
 import { seeSaw } from './see-saw';
@@ -58,6 +59,8 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 	switch (problem.quantity) {
 		case 'local':
 			return localMaximum(problem, g, control);
+		case 'no-signalling':
+			return noSignallingMaximum(problem, g, control);
 		case 'npa':
 			return npaBound(problem, g, control);
 		case 'see-saw':

@@ -71,7 +71,7 @@ export function strategyTensor(functional: Functional): StrategyTensor {
  * The check evaluates the functional's own doubles, not the grid's: twice their errors keeps the
  * sides printed here outside the ones it proves.
  */
-function twiceTheErrors(functional: Functional): Rational {
+export function twiceTheErrors(functional: Functional): Rational {
 	return functional.terms.reduce(
 		(sum, { coefficient: c }) => (c.exact ? sum : sum.add(exactOfDouble(2 * c.error))),
 		ZERO

@@ -57,7 +57,7 @@ export type Fit = 'inside' | 'above' | 'below' | 'undecided';
  * `below` when the whole set lies above or below it, `undecided` otherwise. Ends are compared as
  * exact rationals; touching ends meet.
  */
-export function fitOf(set: AcceptedSet, enclosure: Enclosure): Fit {
+export function fitOf(set: AcceptedSet, enclosure: Pick<Enclosure, 'lower' | 'upper'>): Fit {
 	const { lower, upper } = enclosure;
 	if (set.low && upper && upper.compare(set.low) < 0) return 'above';
 	if (set.high && lower && lower.compare(set.high) > 0) return 'below';

@@ -1,5 +1,7 @@
 import type { Rational } from '../nonlocality/exact/rational';
 
+export { diagnose, type DiagnosisInput } from './diagnose';
+
 export const DIAGNOSIS_KINDS = [
 	'solver-tolerance',
 	'other-quantity',

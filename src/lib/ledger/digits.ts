@@ -33,6 +33,8 @@ export interface DigitInput {
 interface ClaimDigits {
 	readonly decimal: string;
 	readonly places: number;
+	/** Cut off rather than rounded: what it is compared with is cut off alike. */
+	readonly truncated: boolean;
 	/** The decimal is the printed text itself, so that it can be split into runs. */
 	readonly asPrinted: boolean;
 }
@@ -64,7 +66,7 @@ export function compareDigits(input: DigitInput): DigitComparison {
 		lower: against(enclosure.lower),
 		upper: against(enclosure.upper),
 		value: against(knownDigits(enclosure)),
-		rounded: status === 'agreement' ? roundedAlike(enclosure, claim.places) : null
+		rounded: status === 'agreement' ? roundedAlike(enclosure, claim) : null
 	};
 }
 
@@ -87,11 +89,15 @@ function claimDigits({ printed, reading }: DigitInput): ClaimDigits | null {
 		const decimal = toDecimal(form.value, places, 'nearest');
 		const withSign = form.negative && !decimal.startsWith('-') ? `-${decimal}` : decimal;
 		const asPrinted = number.text.replace(/\s/g, '') === withSign && start === 0;
-		return { decimal: withSign, places, asPrinted };
+		// An exact number is not rounded either: its digits stand as they are.
+		const truncated =
+			reading.exact || [reading.low, reading.high].some((end) => sameValue(end, form.value));
+		return { decimal: withSign, places, truncated, asPrinted };
 	}
 	const known = sharedDigits(reading.low, reading.high);
 	if (known === null) return null;
-	return { decimal: known, places: known.split('.')[1]?.length ?? 0, asPrinted: false };
+	const places = known.split('.')[1]?.length ?? 0;
+	return { decimal: known, places, truncated: true, asPrinted: false };
 }
 
 function readForm(number: ReturnType<typeof plainText>) {
@@ -115,13 +121,15 @@ function matchRuns(text: string, same: string): DigitRun[] {
 
 function roundedAlike(
 	{ lower, upper }: NonNullable<Verdict['enclosure']>,
-	places: number
+	claim: ClaimDigits
 ): string | null {
 	const [low, high] = [toRational(lower), toRational(upper)];
 	if (!low || !high) return null;
-	const rounded = toDecimal(low, places, 'nearest');
-	return rounded === toDecimal(high, places, 'nearest') ? withMinusSign(rounded) : null;
+	const sides = [low, high].map((side) => toDecimal(side, claim.places, 'nearest'));
+	return sides.every((side) => side === claim.decimal) ? withMinusSign(claim.decimal) : null;
 }
+
+const sameValue = (end: string, value: Rational) => toRational(end)?.equals(value) ?? false;
 
 const toRational = (text: string | null): Rational | null =>
 	text === null ? null : parseRational(text);
@@ -131,7 +139,7 @@ const toRational = (text: string | null): Rational | null =>
  * as many places.
  */
 function sharedLength(
-	{ decimal, places }: ClaimDigits,
+	{ decimal, places, truncated }: ClaimDigits,
 	{ lower, upper }: NonNullable<Verdict['enclosure']>
 ): number {
 	const negative = decimal.startsWith('-');
@@ -139,7 +147,9 @@ function sharedLength(
 	const [near, far] = negative ? [negated(upper), negated(lower)] : [lower, upper];
 	const scaleUp = (text: string | null) => {
 		const value = toRational(text);
-		return value && BigInt(toDecimal(value, places, 'nearest').replace('.', ''));
+		return (
+			value && BigInt(toDecimal(value, places, truncated ? 'down' : 'nearest').replace('.', ''))
+		);
 	};
 	const least = scaleUp(near);
 	const most = scaleUp(far);
@@ -154,7 +164,8 @@ function sharedLength(
 		if (end < from || (most !== null && start > most)) break;
 		shared = count;
 	}
-	return charactersFor(decimal, shared);
+	// A discrepancy shows somewhere: at the latest in the last digit printed.
+	return charactersFor(decimal, Math.min(shared, digits.length - 1));
 }
 
 const negated = (text: string | null) =>

@@ -1,4 +1,5 @@
-import { ROLES, hasRole, type Role } from './roles';
+import { mayChangeRoles, mayInvite, mayRevokeInvitation } from './group-policy';
+import { hasRole, type Role } from './roles';
 
 /** Everything a person can do within a group. */
 export const ACTIONS = [
@@ -26,10 +27,8 @@ export type Action = (typeof ACTIONS)[number];
 export interface PolicyFacts {
 	/** The claim (or reference, recomputation, invitation, membership) is the person's own. */
 	readonly own?: boolean;
-	/** The role an invitation gives, or that a member is to have. */
-	readonly givenRole?: Role;
-	/** The role the member in question has now. */
-	readonly presentRole?: Role;
+	/** The role an invitation gives. */
+	readonly invited?: Role;
 }
 
 interface Rule {
@@ -39,7 +38,10 @@ interface Rule {
 	readonly own?: Role;
 }
 
-const RULES: Readonly<Record<Action, Rule>> = {
+/** People's own rules stand in group-policy.ts. */
+type PeopleAction = 'invite' | 'revoke-invitation' | 'change-role' | 'remove-member';
+
+const RULES: Readonly<Record<Exclude<Action, PeopleAction>, Rule>> = {
 	'view-group': { any: 'observer' },
 	'enter-claim': { any: 'member' },
 	'edit-claim': { any: 'maintainer', own: 'member' },
@@ -52,29 +54,29 @@ const RULES: Readonly<Record<Action, Rule>> = {
 	'cancel-recomputation': { any: 'maintainer', own: 'member' },
 	'add-reference': { any: 'member' },
 	'edit-reference': { any: 'maintainer', own: 'member' },
-	invite: { any: 'maintainer' },
-	'revoke-invitation': { any: 'maintainer' },
-	'change-role': { any: 'maintainer' },
-	'remove-member': { any: 'maintainer', own: 'observer' },
 	'change-settings': { any: 'maintainer' },
 	'delete-group': { any: 'owner' }
 };
 
-/**
- * Whether a person of this role (null: not in the group) may do this. Nobody gives, changes or
- * removes a role as high as their own or higher; only an owner makes or removes owners.
- */
+/** Whether a person of this role (null: not in the group) may do this. */
 export function may(
 	role: Role | null | undefined,
 	action: Action,
 	facts: PolicyFacts = {}
 ): boolean {
-	const rule = RULES[action];
-	if (rule.own && facts.own && hasRole(role, rule.own)) return true;
-	if (!hasRole(role, rule.any)) return false;
-	return role === 'owner' || [facts.givenRole, facts.presentRole].every((r) => isBelow(r, role));
-}
-
-function isBelow(role: Role | undefined, limit: Role | null | undefined): boolean {
-	return role === undefined || (limit != null && ROLES.indexOf(role) < ROLES.indexOf(limit));
+	if (!role) return false;
+	switch (action) {
+		case 'invite':
+			return mayInvite(role, facts.invited ?? 'observer');
+		case 'revoke-invitation':
+			return mayRevokeInvitation(role);
+		case 'change-role':
+			return mayChangeRoles(role);
+		case 'remove-member':
+			return mayChangeRoles(role) || facts.own === true;
+		default: {
+			const { any, own } = RULES[action];
+			return hasRole(role, any) || (own !== undefined && facts.own === true && hasRole(role, own));
+		}
+	}
 }

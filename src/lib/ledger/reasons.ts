@@ -19,6 +19,11 @@ export function showMoreThan(distance: Rational): string {
 	return places <= 0 ? toDecimal(distance, 0, 'down') : toDecimal(distance, places, 'down');
 }
 
+/** A positive distance with one digit, rounded up: what it is at most. */
+export function showAtMost(distance: Rational): string {
+	return toDecimal(distance, Math.max(0, placesOfGap(distance)), 'up');
+}
+
 /** `the quantum maximum`; an abbreviation keeps its capitals. */
 export function inSentence(quantity: string | undefined): string {
 	if (!quantity) return 'the quantity';

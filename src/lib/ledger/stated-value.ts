@@ -24,6 +24,8 @@ export interface StatedValue {
 	/** Digits of the value behind the point (percent and exponent counted in); null without digits. */
 	readonly precision: number | null;
 	readonly percent: boolean;
+	/** The choice it was read by. */
+	readonly choice: ReadingChoice;
 	/** The number as digits, for telling slips of the pen; null for a fraction or an expression. */
 	readonly decimal: DecimalForm | null;
 	/** `Read as 2.82835 to 2.82845`. */
@@ -68,7 +70,19 @@ export function readStatedValue(printed: string, reading: ReadingChoice): Stated
 	const { low, high, exact, irrational, value, percent } = parts;
 	const text = readingText(low, high, exact, irrational ? printed.trim() : null);
 	const precision = decimal ? decimal.precision : null;
-	const read = { printed, low, high, value, exact, irrational, precision, percent, decimal, text };
+	const read = {
+		printed,
+		low,
+		high,
+		value,
+		exact,
+		irrational,
+		precision,
+		percent,
+		choice: reading,
+		decimal,
+		text
+	};
 	return relation ? { ...read, relation } : read;
 }
 

@@ -1,0 +1,46 @@
+import { SolverStop, type Level, type ProblemOf } from '../problem';
+import type { Scenario } from '../scenario/scenario';
+import { levelWords } from './moment-level';
+import { STATE_LIMIT } from './see-saw';
+
+/** Rows of a moment matrix worth predicting a time for; npaBound has its own limit. */
+const ROWS_LIMIT = 600;
+/** Multiplications a second of the interior-point method, and its usual number of iterations. */
+const SPEED = 1e9;
+const ITERATIONS = 15;
+/** Moments per squared row: 1/4 to 1/9 over the levels of the usual scenarios. */
+const MOMENTS_PER_CELL = 1 / 8;
+
+/** Relaxations in the order they are tried: each costs a multiple of the one before. */
+export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
+	if (problem.levels) return problem.levels;
+	// With three parties and more the levels 1 and 2 are no cheaper, or lack a moment.
+	return problem.outputs.length === 2
+		? [1, '1+AB', 2, 3, 4]
+		: [{ perParty: 1 }, 3, { perParty: 2 }, 4];
+}
+
+/** A guess at the seconds that a level takes; Infinity past the limits or where it does not fit. */
+export function predictSeconds(scenario: Scenario, level: Level): number {
+	try {
+		const rows = levelWords(scenario, level, ROWS_LIMIT).length;
+		const moments = MOMENTS_PER_CELL * rows * rows;
+		return (ITERATIONS * (rows ** 4 + moments ** 3 / 6)) / SPEED;
+	} catch (error) {
+		if (error instanceof SolverStop) return Infinity;
+		throw error;
+	}
+}
+
+/**
+ * Local dimensions in the order they are tried. The largest number of outputs comes first: with
+ * fewer dimensions an output of such a measurement is empty.
+ */
+export function dimensionsToTry(problem: ProblemOf<'quantum'>): readonly number[] {
+	const parties = problem.outputs.length;
+	const fits = (d: number) => d ** parties <= STATE_LIMIT;
+	if (problem.dimensions) return problem.dimensions;
+	const outputs = Math.max(2, ...problem.outputs.flat());
+	const escalating = [2, 3, 4, 5, 6, 8].filter((d) => d !== outputs);
+	return [outputs, ...escalating].filter(fits);
+}

@@ -24,22 +24,21 @@ export const oneLine = (limit: number, missing: string) =>
 		.max(limit, `At most ${limit} characters`)
 		.regex(/^[^\p{Cc}\u2028\u2029]*$/u, 'Only one line of text, without control characters');
 
-/** Where to go afterwards; anything but a path of this site is dropped. */
-export const nextPath = z
-	.string()
-	.max(2_000)
-	.default('')
-	.transform((path) => (isLocalPath(path) ? path : ''));
+/** Where to go afterwards; read with `localPath`. */
+const next = z.string().max(2_000).default('');
 
-/** `//host` and `/\host` leave the site although they start like a path. */
-export function isLocalPath(path: string): boolean {
-	return /^\/(?![/\\])[^\p{Cc}\\]*$/u.test(path);
+/**
+ * The path if it is one of this site, else nothing: `//host` and `/\host` leave it although they
+ * start like a path.
+ */
+export function localPath(path: string): string | null {
+	return /^\/(?![/\\])[^\p{Cc}\\]*$/u.test(path) ? path : null;
 }
 
 export const signInInput = z.object({
 	email: emailAddress,
 	password: anyPassword,
-	next: nextPath
+	next
 });
 export type SignInInput = z.infer<typeof signInInput>;
 
@@ -48,7 +47,7 @@ export const signUpInput = z
 		name: oneLine(100, 'Give your name, as the others in a group should read it'),
 		email: emailAddress,
 		password: z.string().max(1_024, `Use at most ${PASSWORD_LENGTH.max} characters`),
-		next: nextPath
+		next
 	})
 	.check(({ value, issues }) => {
 		const message = passwordProblem(value.password, value);

@@ -31,7 +31,7 @@ export function requireUser(event: RequestEvent): UserContext {
 	if (isPage) {
 		redirect(
 			303,
-			`/account/sign-in?next=${encodeURIComponent(event.url.pathname + event.url.search)}`
+			`/sign-in?next=${encodeURIComponent(event.url.pathname + event.url.search)}`
 		);
 	}
 	error(401, 'Sign in first.');

@@ -1,10 +1,9 @@
-import { signUpInput } from '$lib/schemas/account';
+import { localPath, signInInput } from '$lib/schemas/account';
 import { enter } from '$lib/server/auth/enter';
 import { contextOf, publicContext } from '$lib/server/auth/guards';
 import { landingPath } from '$lib/server/auth/landing';
 import { failForm } from '$lib/server/http/action-error';
 import { signIn } from '$lib/server/services/users/sign-in';
-import { signUp } from '$lib/server/services/users/sign-up';
 import { fail, redirect } from '@sveltejs/kit';
 import { superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
@@ -13,26 +12,24 @@ import type { Actions, PageServerLoad } from './$types';
 export const load: PageServerLoad = async (event) => {
 	publicContext(event);
 	const start = { next: event.url.searchParams.get('next') ?? '' };
-	const form = await superValidate(start, zod4(signUpInput), { errors: false });
-	if (event.locals.actor) redirect(303, form.data.next || (await landingPath(event)));
+	const form = await superValidate(start, zod4(signInInput), { errors: false });
+	if (event.locals.actor) redirect(303, localPath(form.data.next) ?? (await landingPath(event)));
 	return { form };
 };
 
 export const actions: Actions = {
 	default: async (event) => {
 		const ctx = contextOf(event);
-		const form = await superValidate(event.request, zod4(signUpInput));
+		const form = await superValidate(event.request, zod4(signInInput));
 		const { data } = form;
 		// A password never travels back to the page.
 		form.data = { ...data, password: '' };
 		if (!form.valid) return fail(400, { form });
-		const address = event.getClientAddress();
 		try {
-			await signUp(ctx, data, address);
-			enter(event, await signIn(ctx, data, address));
+			enter(event, await signIn(ctx, data, event.getClientAddress()));
 		} catch (thrown) {
 			return failForm(form, thrown);
 		}
-		redirect(303, data.next || (await landingPath(event)));
+		redirect(303, localPath(data.next) ?? (await landingPath(event)));
 	}
 };

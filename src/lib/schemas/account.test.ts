@@ -1,0 +1,33 @@
+import { describe, expect, it } from 'vitest';
+import { emailAddress, localPath, oneLine } from './account';
+
+describe('localPath', () => {
+	it.each(['/', '/g/harbour?q=a%20b#x', '/join/abc'])('takes %s', (path) => {
+		expect(localPath(path)).toBe(path);
+	});
+
+	it.each([
+		'',
+		'//elsewhere.example',
+		'/\\elsewhere.example',
+		'/a\\b',
+		'https://elsewhere.example',
+		'javascript:alert(1)',
+		'g/harbour',
+		'/a\r\nSet-Cookie: x=1',
+		'/\t/elsewhere.example'
+	])('drops %j', (path) => {
+		expect(localPath(path)).toBeNull();
+	});
+});
+
+describe('fields that reach a mail', () => {
+	it.each(['a\nb', 'a\r\nBcc: x@y.example', 'a\u2028b', 'a\0b'])('refuse %j', (text) => {
+		expect(oneLine(80, 'missing').safeParse(text).success).toBe(false);
+		expect(emailAddress.safeParse(`${text}@y.example`).success).toBe(false);
+	});
+
+	it('keep an address in lower case', () => {
+		expect(emailAddress.parse(' Ines@Harrow.example ')).toBe('ines@harrow.example');
+	});
+});

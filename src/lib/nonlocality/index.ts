@@ -1,5 +1,5 @@
 /** The public surface: solvers, checks and canonical forms, for the server, threads and commands. */
-export { solve, SOLVER } from './quantities/solve';
+export { sdpaText, solve, SOLVER } from './quantities/solve';
 export { verifyResult } from './certificates/verify';
 export {
 	affineMap,

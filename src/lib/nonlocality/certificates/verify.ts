@@ -7,7 +7,9 @@ import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
+import { checkEnclosure } from './check-enclosure';
 import { checkLinearProgramme } from './check-linear-programme';
+import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
 import type { Certificate, CheckOutcome } from './types';
 
@@ -36,19 +38,26 @@ function checkCertificate(
 	certificate: Certificate | null
 ): CheckOutcome {
 	if (!certificate) return refuse('the result carries no certificate');
-	const { quantity } = problem;
 	switch (certificate.kind) {
 		case 'deterministic-strategy':
-			if (quantity === 'local') return checkDeterministicStrategy(g, certificate);
+			if (problem.quantity === 'local') return checkDeterministicStrategy(g, certificate);
 			break;
 		case 'linear-programme':
-			if (quantity === 'no-signalling') return checkLinearProgramme(g, certificate);
+			if (problem.quantity === 'no-signalling') return checkLinearProgramme(g, certificate);
 			break;
 		case 'quantum-strategy':
-			if (quantity === 'see-saw') return checkStrategy(problem, g, certificate);
+			if (problem.quantity === 'see-saw') return checkStrategy(problem, g, certificate);
+			break;
+		case 'npa-dual':
+			if (problem.quantity === 'npa') return checkMomentCertificate(problem, g, certificate);
+			break;
+		case 'enclosure':
+			if (problem.quantity === 'quantum') return checkEnclosure(problem, g, certificate);
 			break;
 	}
-	return refuse(`a certificate of the kind "${certificate.kind}" proves nothing on "${quantity}"`);
+	return refuse(
+		`a certificate of the kind "${certificate.kind}" proves nothing on "${problem.quantity}"`
+	);
 }
 
 const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });

@@ -13,7 +13,9 @@ import { functionalToMaximise, isNegated } from '../scenario/problem-functional'
 import { localMaximum } from './local-maximum';
 import { noSignallingMaximum } from './no-signalling-maximum';
 import { npaBound } from './npa-bound';
+import { momentProblemSdpa } from './moment-problem-sdpa';
 import type { Outcome } from './outcome';
+import { quantumMaximum } from './quantum-maximum';
 import { seeSaw } from './see-saw';
 
 export const SOLVER = 'merestone 0.1.0';
@@ -55,6 +57,16 @@ export async function solve(problem: Problem, control: Control): Promise<Result>
 	}
 }
 
+/**
+ * The semidefinite programme behind an NPA bound in the SDPA sparse format, to solve it elsewhere.
+ * @throws SolverStop for another quantity, or past the limits of the relaxation
+ */
+export function sdpaText(problem: Problem): string {
+	if (problem.quantity !== 'npa')
+		throw new SolverStop('failed', `"${problem.quantity}" is no single semidefinite programme`);
+	return momentProblemSdpa(problem);
+}
+
 async function dispatch(problem: Problem, g: Functional, control: Control): Promise<Outcome> {
 	switch (problem.quantity) {
 		case 'local':
@@ -65,6 +77,8 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 			return npaBound(problem, g, control);
 		case 'see-saw':
 			return seeSaw(problem, g, control);
+		case 'quantum':
+			return quantumMaximum(problem, g, control);
 		default:
 			throw new SolverStop('failed', `no solver for the quantity "${problem.quantity}" yet`);
 	}

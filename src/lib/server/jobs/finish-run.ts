@@ -50,7 +50,8 @@ async function store(tx: Transaction, lease: Lease, values: Row, now: Date): Pro
 	if (!before) return false;
 	// A repeated run that ends without a result leaves the proved one in place.
 	const keepsResult = before.checked === true && values.result === undefined;
-	const kept: Row = keepsResult && values.state !== 'queued' ? { ...values, state: 'done' } : values;
+	const kept: Row =
+		keepsResult && values.state !== 'queued' ? { ...values, state: 'done' } : values;
 	await tx
 		.update(recomputations)
 		.set({ ...kept, leaseToken: null, leaseUntil: null, progress: null })
@@ -102,13 +103,15 @@ function rowOfResult(result: Result, check: CheckOutcome | null, now: Date): Row
 		state: 'done',
 		finishedAt: now,
 		result,
-		...sides(result),
+		...sides(result, check),
 		checked: check ? true : null,
 		checkNote: check ? check.method : null,
 		reason: null
 	};
 }
 
-function sides(result: DoneResult): Row {
-	return { lower: result.lower, upper: result.upper, exact: result.exact };
+/** What the check proved; without a certificate what the solver says, which stays unchecked. */
+function sides(result: DoneResult, check: CheckOutcome | null): Row {
+	const { lower, upper, exact } = check?.checked ? check : result;
+	return { lower, upper, exact };
 }

@@ -31,12 +31,14 @@ const due = (now: Date) =>
 
 /**
  * Takes the oldest problem of the group that was served least recently.
+ * @param onTaken what else happens in the transaction
  * @param served when each group (`''`: none) was last served, as rising numbers; updated here
  */
 export async function takeNext(
 	db: Database,
 	now: Date,
-	served: Map<string, number>
+	served: Map<string, number>,
+	onTaken?: (tx: Transaction, id: string) => Promise<void>
 ): Promise<Lease | null> {
 	return db.write(async (tx) => {
 		const waiting = await tx
@@ -62,6 +64,7 @@ export async function takeNext(
 			.orderBy(asc(recomputations.createdAt), asc(recomputations.id))
 			.limit(1);
 		const lease = next && (await take(tx, next.id, now));
+		if (lease) await onTaken?.(tx, lease.id);
 		if (lease) served.set(turn.groupId ?? '', Math.max(0, ...served.values()) + 1);
 		return lease ?? null;
 	});
@@ -125,10 +128,7 @@ export async function reap(tx: Transaction, now: Date, all: boolean): Promise<st
 		.select({ id: recomputations.id, attempts: recomputations.attempts })
 		.from(recomputations)
 		.where(
-			and(
-				eq(recomputations.state, 'running'),
-				all ? undefined : lt(recomputations.leaseUntil, now)
-			)
+			and(eq(recomputations.state, 'running'), all ? undefined : lt(recomputations.leaseUntil, now))
 		);
 	const spent = lost.filter(({ attempts }) => attempts >= MOST_ATTEMPTS).map(({ id }) => id);
 	const again = lost.filter(({ attempts }) => attempts < MOST_ATTEMPTS).map(({ id }) => id);

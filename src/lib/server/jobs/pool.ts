@@ -26,8 +26,8 @@ export interface SolverPool {
 
 /** The thread was ended from outside, so there is no result. */
 export class SolverKilled extends Error {
-	constructor(readonly cause: 'cancelled' | 'time') {
-		super(cause === 'time' ? 'the solver did not keep its time limit' : 'cancelled');
+	constructor(readonly why: 'cancelled' | 'time') {
+		super(why === 'time' ? 'the solver did not keep its time limit' : 'cancelled');
 		this.name = 'SolverKilled';
 	}
 }
@@ -70,14 +70,14 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 			const { port1, port2 } = new MessageChannel();
 			port1.on('message', (progress: Progress) => onProgress?.(progress));
 			const kill = new AbortController();
-			let cause: SolverKilled['cause'] = 'cancelled';
+			let why: SolverKilled['why'] = 'cancelled';
 			let grace: NodeJS.Timeout | undefined;
 			const tell = () => {
 				Atomics.store(stop, 0, 1);
 				grace ??= setTimeout(() => kill.abort(), STOP_GRACE_MS);
 			};
 			const limit = setTimeout(() => {
-				cause = 'time';
+				why = 'time';
 				tell();
 			}, hardLimitMs(problem));
 			if (signal?.aborted) tell();
@@ -86,7 +86,7 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 			try {
 				return await pool.run(task, { transferList: [port2], signal: kill.signal });
 			} catch (error) {
-				if (kill.signal.aborted) throw new SolverKilled(cause);
+				if (kill.signal.aborted) throw new SolverKilled(why);
 				throw error;
 			} finally {
 				clearTimeout(limit);

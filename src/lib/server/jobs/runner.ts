@@ -1,6 +1,7 @@
 import type { Logger } from 'pino';
 import type { Progress } from '../../nonlocality/problem';
 import type { Database } from '../db/client';
+import { deriveTouchedClaims } from '../services/claims/derive-claim';
 import { finishRun, type RunOutcome } from './finish-run';
 import { HEARTBEAT_MS, extendLease, giveBack, takeNext, type Lease } from './lease';
 import { SolverKilled, type SolverPool } from './pool';
@@ -50,7 +51,9 @@ export function startRunner(options: RunnerOptions): Runner {
 		do {
 			again = false;
 			while (!stopping && running.size < pool.threads) {
-				const lease = await takeNext(db, now(), served);
+				const lease = await takeNext(db, now(), served, (tx, id) =>
+					deriveTouchedClaims(tx, id, now(), { ownOnly: true })
+				);
 				if (!lease) break;
 				start(lease);
 			}
@@ -144,7 +147,7 @@ export function startRunner(options: RunnerOptions): Runner {
 
 function failureOf(error: unknown): RunOutcome {
 	if (error instanceof SolverKilled) {
-		return error.cause === 'cancelled'
+		return error.why === 'cancelled'
 			? { kind: 'cancelled' }
 			: { kind: 'failed', reason: error.message };
 	}

@@ -1,6 +1,5 @@
 import { and, eq, inArray } from 'drizzle-orm';
 import { hasRole } from '../../ledger/roles';
-import type { Verdict } from '../../ledger/verdict';
 import type { Transaction } from '../db/client';
 import { memberships, outbox } from '../db/schema';
 import { newId } from '../ids';
@@ -8,15 +7,6 @@ import { newId } from '../ids';
 /** Stations explain most discrepancies: the mail waits for them, but not longer than this. */
 export const MAIL_WAIT_MS = 60_000;
 const MESSAGE_DOMAIN = 'merestone.invalid';
-
-/** A difference within usual solver tolerance is shown, but nobody is called for it. */
-export function deservesMail(verdict: Verdict): boolean {
-	return (
-		verdict.status === 'discrepancy' &&
-		verdict.reasonCode !== 'last-digits' &&
-		verdict.diagnosis[0]?.kind !== 'solver-tolerance'
-	);
-}
 
 export interface MailedClaim {
 	readonly id: string;

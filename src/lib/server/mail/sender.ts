@@ -1,8 +1,8 @@
 import { and, asc, eq, lte } from 'drizzle-orm';
+import { mailWorthy } from '../../ledger/verdict';
 import type { Database } from '../db/client';
 import { claims, groups, inequalities, memberships, outbox, references, users } from '../db/schema';
 import { renderDiscrepancy, type RenderedMail } from './discrepancy-mail';
-import { deservesMail } from './queue-mail';
 import type { MailTransport } from './transport';
 
 const BATCH = 20;
@@ -109,7 +109,7 @@ async function render(
 		.where(eq(claims.id, row.claimId));
 	if (!found) return null;
 	const { claim } = found;
-	if (claim.state === 'withdrawn' || !deservesMail(claim.verdict)) return null;
+	if (claim.state === 'withdrawn' || !mailWorthy(claim.verdict)) return null;
 	return renderDiscrepancy({
 		name: row.name,
 		groupName: found.groupName,

@@ -14,7 +14,11 @@ export interface AuditEntry {
 }
 
 /** Writes who changed what, in the transaction of the change itself; never secrets. */
-export async function recordAudit(tx: Transaction, ctx: Context, entry: AuditEntry): Promise<void> {
+export async function recordAudit(
+	tx: Transaction,
+	ctx: Pick<Context, 'actor' | 'requestId' | 'now'>,
+	entry: AuditEntry
+): Promise<void> {
 	await tx.insert(audit).values({
 		id: newId(),
 		groupId: entry.groupId ?? null,

@@ -1,7 +1,119 @@
-import type { LedgerQuery } from '../../../schemas/ledger-query';
-import type { LedgerPage } from '../../../schemas/views';
+import { and, asc, count, desc, eq, ne, or, sql, type SQL } from 'drizzle-orm';
+import { VERDICT_STATUSES } from '../../../ledger/claim';
+import { QUANTITIES } from '../../../ledger/quantities';
+import { PAGE_SIZE, type LedgerQuery, type LedgerSort } from '../../../schemas/ledger-query';
+import type { LedgerPage, StatusCounts } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
+import { claims, inequalities, references } from '../../db/schema';
+import { claimRows, selectClaimRows } from './claim-rows';
 
-export async function listClaims(_ctx: GroupContext, _query: LedgerQuery): Promise<LedgerPage> {
-	throw new Error('being written');
+/** One page of a group's ledger: searched, filtered, sorted and counted by the database. */
+export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise<LedgerPage> {
+	const { read } = ctx.db;
+	const base = and(
+		eq(claims.groupId, ctx.group.id),
+		query.withdrawn ? undefined : ne(claims.state, 'withdrawn')
+	);
+	const filters = {
+		search: query.search ? matches(query.search) : undefined,
+		status: query.status === 'all' ? undefined : eq(claims.status, query.status),
+		scenario: query.scenario ? eq(inequalities.scenario, query.scenario) : undefined,
+		quantity: query.quantity ? eq(claims.quantity, query.quantity) : undefined
+	};
+	const { search, status, scenario, quantity } = filters;
+	const byStatus = await read
+		.select({ status: claims.status, count: count() })
+		.from(claims)
+		.innerJoin(references, eq(references.id, claims.referenceId))
+		.leftJoin(inequalities, eq(inequalities.id, claims.inequalityId))
+		.where(and(base, search, scenario, quantity))
+		.groupBy(claims.status);
+	const counts = statusCounts(byStatus);
+	const total = query.status === 'all' ? counts.all : counts[query.status];
+	const page = Math.min(query.page, Math.max(1, Math.ceil(total / PAGE_SIZE)));
+	const selected = await selectClaimRows(read, and(base, search, status, scenario, quantity))
+		.orderBy(...order(query.sort))
+		.limit(PAGE_SIZE)
+		.offset((page - 1) * PAGE_SIZE);
+	const [papers] = await read
+		.select({ papers: sql<number>`count(distinct ${claims.referenceId})` })
+		.from(claims)
+		.where(base);
+	const scenarios = await read
+		.select({ value: inequalities.scenario, count: count() })
+		.from(claims)
+		.innerJoin(inequalities, eq(inequalities.id, claims.inequalityId))
+		.where(base)
+		.groupBy(inequalities.scenario)
+		.orderBy(desc(count()), asc(inequalities.scenario));
+	const quantities = await read
+		.select({ value: claims.quantity, count: count() })
+		.from(claims)
+		.where(base)
+		.groupBy(claims.quantity)
+		.orderBy(desc(count()), asc(claims.quantity));
+	return {
+		rows: await claimRows(read, selected, ctx.now()),
+		total,
+		counts,
+		page,
+		pageSize: PAGE_SIZE,
+		papers: papers?.papers ?? 0,
+		scenarios,
+		quantities: quantities.map((row) => ({
+			...row,
+			label: QUANTITIES.find(({ key }) => key === row.value)?.label ?? row.value
+		}))
+	};
+}
+
+export function statusCounts(
+	rows: readonly { readonly status: (typeof VERDICT_STATUSES)[number]; readonly count: number }[]
+): StatusCounts {
+	const of = (status: string) => rows.find((row) => row.status === status)?.count ?? 0;
+	const [agreement, discrepancy, open] = [of('agreement'), of('discrepancy'), of('open')];
+	return { agreement, discrepancy, open, all: agreement + discrepancy + open };
+}
+
+/** Each word must occur somewhere in what the row shows; `%` and `_` are themselves. */
+function matches(search: string): SQL | undefined {
+	const words = search.split(/\s+/).filter(Boolean).slice(0, 10);
+	return and(
+		...words.map((word) => {
+			const pattern = `%${word.replace(/[\\%_]/g, '\\$&')}%`;
+			const has = (column: SQL | (typeof claims)['subject'] | (typeof references)['title']) =>
+				sql`${column} like ${pattern} escape '\\'`;
+			const number = /^#?(\d{1,9})$/.exec(word)?.[1];
+			return or(
+				has(sql`${inequalities.name}`),
+				has(sql`${claims.subject}`),
+				has(sql`${claims.quantityLabel}`),
+				has(sql`${claims.printed}`),
+				has(sql`${claims.locator}`),
+				has(sql`${claims.method}`),
+				has(sql`${references.formatted}`),
+				has(sql`${references.short}`),
+				has(sql`${references.doi}`),
+				number ? eq(claims.number, Number(number)) : undefined
+			);
+		})
+	);
+}
+
+const ORDERS: Record<LedgerSort, () => SQL[]> = {
+	newest: () => [desc(claims.createdAt)],
+	oldest: () => [asc(claims.createdAt)],
+	number: () => [],
+	value: () => [asc(claims.sortValue)],
+	'value-descending': () => [desc(claims.sortValue)],
+	subject: () => [asc(sql`coalesce(${inequalities.name}, ${claims.subject}) collate nocase`)],
+	status: () => [
+		asc(sql`case ${claims.status} when 'discrepancy' then 0 when 'open' then 1 else 2 end`)
+	],
+	reference: () => [asc(sql`${references.short} collate nocase`)]
+};
+
+/** Ties go by number, so that pages never overlap. */
+function order(sort: LedgerSort): SQL[] {
+	return [...ORDERS[sort](), sort === 'newest' ? desc(claims.number) : asc(claims.number)];
 }

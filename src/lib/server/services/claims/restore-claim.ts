@@ -1,5 +1,13 @@
 import type { GroupContext } from '../../context';
+import { changeClaim } from './change-claim';
 
-export async function restoreClaim(_ctx: GroupContext, _number: number): Promise<void> {
-	throw new Error('being written');
+/** Makes a withdrawn or superseded claim active again. */
+export async function restoreClaim(ctx: GroupContext, number: number): Promise<void> {
+	await changeClaim(ctx, number, {
+		action: 'withdraw-claim',
+		audit: 'claim.restored',
+		refusal: 'Only who entered a claim and maintainers may restore it.',
+		change: (_, { state }) =>
+			state === 'active' ? null : { state: 'active', supersededById: null }
+	});
 }

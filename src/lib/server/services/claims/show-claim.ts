@@ -1,6 +1,10 @@
 import type { ClaimView } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
+import { claimView } from './claim-view';
+import { findClaim } from './find-claim';
 
-export async function showClaim(_ctx: GroupContext, _number: number): Promise<ClaimView> {
-	throw new Error('being written');
+/** @throws ServiceError not-found, also for a claim of another group */
+export async function showClaim(ctx: GroupContext, number: number): Promise<ClaimView> {
+	const claim = await findClaim(ctx.db.read, ctx, number);
+	return claimView(ctx.db.read, claim, ctx.now());
 }

@@ -1,6 +1,56 @@
+import { and, eq } from 'drizzle-orm';
 import type { PublicClaimView } from '../../../schemas/views';
 import type { Context } from '../../context';
+import { claims } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import { isPublicClaim } from '../inequalities/visibility';
+import { claimView } from './claim-view';
 
-export async function showPublicClaim(_ctx: Context, _id: string): Promise<PublicClaimView> {
-	throw new Error('being written');
+/** @throws ServiceError not-found for a claim that is not public, as if it did not exist */
+export async function showPublicClaim(ctx: Context, id: string): Promise<PublicClaimView> {
+	const { read } = ctx.db;
+	const [claim] = await read
+		.select()
+		.from(claims)
+		.where(and(eq(claims.id, id), isPublicClaim));
+	if (!claim) throw new ServiceError('not-found', 'There is no such public claim.');
+	const whole = await claimView(read, claim, ctx.now());
+	// Fields are listed, not taken away: what is added to the group's view stays private.
+	return {
+		id: whole.id,
+		version: whole.version,
+		groupName: whole.groupName,
+		subject: whole.subject,
+		map: whole.map,
+		quantity: whole.quantity,
+		quantityLabel: whole.quantityLabel,
+		relation: whole.relation,
+		printed: whole.printed,
+		method: whole.method,
+		locator: whole.locator,
+		state: whole.state,
+		visibility: whole.visibility,
+		supersededBy: await publicSuccessor(ctx, claim.supersededById),
+		verdict: whole.verdict,
+		stations: whole.stations,
+		progress: whole.progress,
+		recomputations: whole.recomputations,
+		reference: whole.reference,
+		history: whole.history
+			.filter(({ text }) => PUBLIC_HISTORY.test(text))
+			.map(({ at, text }) => ({ at, who: null, text })),
+		caution: whole.caution,
+		enteredAt: whole.enteredAt
+	};
+}
+
+const PUBLIC_HISTORY = /^(Entered|Published|Recomputed: |Value changed|Marked as superseded)/;
+
+async function publicSuccessor(ctx: Context, id: string | null) {
+	if (!id) return null;
+	const [row] = await ctx.db.read
+		.select({ number: claims.number, id: claims.id })
+		.from(claims)
+		.where(and(eq(claims.id, id), isPublicClaim));
+	return row ?? null;
 }

@@ -1,9 +1,28 @@
 import type { GroupContext } from '../../context';
+import { ServiceError } from '../../errors';
+import { changeClaim } from './change-claim';
+import { findClaim } from './find-claim';
 
+const wrong = (message: string) =>
+	new ServiceError('invalid', message, [{ field: 'byNumber', message }]);
+
+/** Points from a claim to the one that takes its place, for instance a tighter bound. */
 export async function supersedeClaim(
-	_ctx: GroupContext,
-	_number: number,
-	_byNumber: number
+	ctx: GroupContext,
+	number: number,
+	byNumber: number
 ): Promise<void> {
-	throw new Error('being written');
+	await changeClaim(ctx, number, {
+		action: 'supersede-claim',
+		audit: 'claim.superseded',
+		refusal: 'Only who entered a claim and maintainers may mark it as superseded.',
+		async change(tx, { id, state }) {
+			if (state === 'withdrawn') throw wrong('A withdrawn claim can’t be superseded.');
+			const by = await findClaim(tx, ctx, byNumber);
+			if (by.id === id) throw wrong('A claim can’t supersede itself.');
+			// Only an active claim takes another's place: so there are no circles.
+			if (by.state !== 'active') throw wrong(`Claim ${byNumber} is not active itself.`);
+			return { state: 'superseded', supersededById: by.id };
+		}
+	});
 }

@@ -1,6 +1,19 @@
+import { eq } from 'drizzle-orm';
 import type { Context } from '../../context';
+import { recomputations } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import { solverPool } from '../../jobs/current-pool';
+import { requireVisible } from './find-visible';
 
-/** The semidefinite programme in the SDPA sparse format. */
-export async function sdpaText(_ctx: Context, _id: string): Promise<string> {
-	throw new Error('being written');
+/** The semidefinite programme in the SDPA sparse format. @throws ServiceError not-found */
+export async function sdpaText(ctx: Context, id: string): Promise<string> {
+	await requireVisible(ctx, id);
+	const [row] = await ctx.db.read
+		.select({ problem: recomputations.problem })
+		.from(recomputations)
+		.where(eq(recomputations.id, id));
+	if (row?.problem.quantity !== 'npa') {
+		throw new ServiceError('not-found', 'This recomputation is no semidefinite programme.');
+	}
+	return (await solverPool()).sdpa(row.problem);
 }

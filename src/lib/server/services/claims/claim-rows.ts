@@ -1,0 +1,108 @@
+import { eq, inArray, type SQL } from 'drizzle-orm';
+import type { LedgerRow } from '../../../schemas/views';
+import type { Reader } from '../../db/client';
+import { claims, inequalities, recomputations, references } from '../../db/schema';
+import { readMap } from '../inequalities/affine';
+import { loadStations, stationsView } from '../inequalities/stations-view';
+import { subjectView } from '../inequalities/subject-view';
+import {
+	PROGRESS_COLUMNS,
+	jobsAhead,
+	progressView,
+	type ProgressRow
+} from '../recomputations/progress-view';
+import { problemLabel } from '../recomputations/problem-label';
+import type { Verdict } from '../../../ledger/verdict';
+
+/** The columns of a ledger's row; one join, so that any list can filter and sort by them. */
+export function selectClaimRows(read: Reader, where: SQL | undefined) {
+	return read
+		.select({
+			claim: claims,
+			inequality: {
+				name: inequalities.name,
+				nameLatex: inequalities.nameLatex,
+				scenario: inequalities.scenario
+			},
+			reference: { id: references.id, short: references.short },
+			run: { ...PROGRESS_COLUMNS, problem: recomputations.problem }
+		})
+		.from(claims)
+		.innerJoin(references, eq(references.id, claims.referenceId))
+		.leftJoin(inequalities, eq(inequalities.id, claims.inequalityId))
+		.leftJoin(recomputations, eq(recomputations.id, claims.recomputationId))
+		.where(where)
+		.$dynamic();
+}
+
+export type SelectedClaim = Awaited<ReturnType<typeof selectClaimRows>>[number];
+
+/** What the table shows, for rows in the order given. */
+export async function claimRows(
+	read: Reader,
+	selected: readonly SelectedClaim[],
+	now: Date
+): Promise<LedgerRow[]> {
+	const ids = selected.flatMap(({ claim }) => (claim.inequalityId ? [claim.inequalityId] : []));
+	const stations = await loadStations(read, ids);
+	const rows: LedgerRow[] = [];
+	for (const { claim, inequality, reference, run } of selected) {
+		const map = readMap(claim);
+		const own = claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
+		rows.push({
+			id: claim.id,
+			number: claim.number,
+			subject: subjectView({
+				inequalityId: claim.inequalityId,
+				name: inequality?.name ?? null,
+				nameLatex: inequality?.nameLatex ?? null,
+				text: claim.subject,
+				latex: claim.subjectLatex,
+				scenario: inequality?.scenario ?? null
+			}),
+			quantityLabel: claim.quantityLabel,
+			relation: claim.relation,
+			printed: claim.printed,
+			verdict: claim.verdict,
+			recomputedBy: recomputedBy(claim.verdict) ?? (run ? problemLabel(run.problem) : ''),
+			stations: own.length > 0 ? stationsView(own, map) : null,
+			progress: run && (await runningView(read, run, map, now)),
+			reference: { ...reference, locator: claim.locator },
+			state: claim.state,
+			visibility: claim.visibility
+		});
+	}
+	return rows;
+}
+
+async function runningView(
+	read: Reader,
+	run: ProgressRow,
+	map: ReturnType<typeof readMap>,
+	now: Date
+) {
+	return progressView(run, map, now, run.state === 'queued' ? await jobsAhead(read, run) : null);
+}
+
+/** Which evidence the verdict rests on, each named once. */
+function recomputedBy({ enclosure }: Verdict): string | null {
+	if (!enclosure) return null;
+	const { lower, upper, lowerLabel, upperLabel } = enclosure;
+	const labels = [upper === null ? '' : upperLabel, lower === null ? '' : lowerLabel];
+	return [...new Set(labels.filter(Boolean))].join(', ') || null;
+}
+
+/** Rows of the claims with these ids, in that order. */
+export async function claimRowsOf(
+	read: Reader,
+	ids: readonly string[],
+	now: Date
+): Promise<LedgerRow[]> {
+	if (ids.length === 0) return [];
+	const selected = await selectClaimRows(read, inArray(claims.id, [...ids]));
+	const place = new Map(ids.map((id, index) => [id, index]));
+	const ordered = [...selected].sort(
+		(a, b) => (place.get(a.claim.id) ?? 0) - (place.get(b.claim.id) ?? 0)
+	);
+	return claimRows(read, ordered, now);
+}

@@ -1,0 +1,108 @@
+import { and, eq, isNotNull, or } from 'drizzle-orm';
+import { mailWorthy, type Verdict } from '../../../ledger/verdict';
+import type { Transaction } from '../../db/client';
+import { claims, recomputations, verdicts } from '../../db/schema';
+import { newId } from '../../ids';
+import {
+	dropWaitingMails,
+	queueDiscrepancyMails,
+	releaseWaitingMails
+} from '../../mail/queue-mail';
+import { recordAudit } from '../audit';
+import { stationsDone } from '../inequalities/stations-view';
+import { judgeClaim, type JudgedClaim } from './judge-claim';
+
+/** The product itself, in the audit. */
+const product = (now: Date) => ({ actor: null, requestId: 'derived', now: () => now });
+
+/**
+ * Judges a claim again from all that is known now, in the transaction of whatever changed: stores
+ * the verdict, its history when it changed for a reader, and the mail when it turned to a
+ * discrepancy. The only place where a verdict is written.
+ */
+export async function deriveClaim(tx: Transaction, id: string, now: Date): Promise<void> {
+	const [claim] = await tx.select().from(claims).where(eq(claims.id, id));
+	if (claim) await derive(tx, claim, now);
+}
+
+/**
+ * Judges every claim that a recomputation touches: those on its inequality and those that asked
+ * for it.
+ * @param ownOnly only those that asked for it (it has started; nothing is known yet)
+ */
+export async function deriveTouchedClaims(
+	tx: Transaction,
+	recomputationId: string,
+	now: Date,
+	{ ownOnly = false } = {}
+): Promise<void> {
+	const [row] = await tx
+		.select({ inequalityId: recomputations.inequalityId })
+		.from(recomputations)
+		.where(eq(recomputations.id, recomputationId));
+	if (!row) return;
+	const own = eq(claims.recomputationId, recomputationId);
+	const touched = await tx
+		.select()
+		.from(claims)
+		.where(
+			row.inequalityId === null || ownOnly
+				? own
+				: or(own, eq(claims.inequalityId, row.inequalityId))
+		);
+	for (const claim of touched) await derive(tx, claim, now);
+	if (!ownOnly && row.inequalityId && (await areStationsDone(tx, row.inequalityId))) {
+		await releaseWaitingMails(
+			tx,
+			touched.map(({ id }) => id),
+			now
+		);
+	}
+}
+
+async function derive(tx: Transaction, claim: JudgedClaim, now: Date): Promise<void> {
+	const verdict = await judgeClaim(tx, claim);
+	const before = claim.verdict;
+	if (JSON.stringify(before) === JSON.stringify(verdict)) return;
+	await tx.update(claims).set({ verdict, status: verdict.status }).where(eq(claims.id, claim.id));
+	const turned = mailWorthy(verdict) && !mailWorthy(before);
+	if (!turned && changeKey(before) === changeKey(verdict)) return;
+	const verdictId = newId();
+	await tx.insert(verdicts).values({
+		id: verdictId,
+		claimId: claim.id,
+		claimVersion: claim.version,
+		status: verdict.status,
+		verdict,
+		at: now
+	});
+	if (before.status !== verdict.status) {
+		await recordAudit(tx, product(now), {
+			action: 'claim.judged',
+			entity: 'claim',
+			entityId: claim.id,
+			groupId: claim.groupId,
+			before: { status: before.status },
+			after: { status: verdict.status, reason: verdict.reason }
+		});
+	}
+	if (!mailWorthy(verdict)) await dropWaitingMails(tx, claim.id);
+	else if (turned && claim.state === 'active') {
+		const done = claim.inequalityId === null || (await areStationsDone(tx, claim.inequalityId));
+		await queueDiscrepancyMails(tx, claim, verdictId, now, done);
+	}
+}
+
+/** What a reader would call a change: not that a run was queued or started, nor one more digit. */
+function changeKey({ status, reasonCode, diagnosis }: Verdict): string {
+	const reason = reasonCode === 'not-run' || reasonCode === 'running' ? 'waiting' : reasonCode;
+	return JSON.stringify([status, reason, diagnosis.map(({ kind, value }) => [kind, value])]);
+}
+
+async function areStationsDone(tx: Transaction, inequalityId: string): Promise<boolean> {
+	const rows = await tx
+		.select({ state: recomputations.state })
+		.from(recomputations)
+		.where(and(eq(recomputations.inequalityId, inequalityId), isNotNull(recomputations.station)));
+	return stationsDone(rows);
+}

@@ -1,0 +1,74 @@
+import { eq } from 'drizzle-orm';
+import { diagnose } from '../../../ledger/diagnose';
+import type { Diagnosis } from '../../../ledger/diagnosis';
+import { othersOfFindings } from '../../../ledger/evidence';
+import { judge, type JudgementInput } from '../../../ledger/judgement';
+import { knownNormalisations } from '../../../ledger/normalisations';
+import type { StatedValue } from '../../../ledger/stated-value';
+import type { Rational } from '../../../nonlocality/exact/rational';
+import type { Problem } from '../../../nonlocality/problem';
+import type { Transaction } from '../../db/client';
+import { inequalities } from '../../db/schema';
+import { mapSides, type AffineMap } from '../inequalities/affine';
+import { familyOfName } from '../inequalities/family-of-name';
+import type { StoredFinding } from './findings';
+import type { JudgedClaim } from './judge-claim';
+
+export interface Explained {
+	readonly claim: JudgedClaim;
+	readonly judged: JudgementInput & { readonly reading: StatedValue };
+	readonly findings: readonly StoredFinding[];
+	readonly claimed: Problem;
+	readonly map: AffineMap;
+}
+
+/** Ways in which a claim that disagrees, or is not settled, would agree; best first. */
+export async function explainVerdict(
+	tx: Transaction,
+	{ claim, judged, findings, claimed, map }: Explained
+): Promise<readonly Diagnosis[]> {
+	const { status, reasonCode, enclosure } = judge(judged);
+	if (!enclosure || status === 'agreement') return [];
+	// An irrational map is enclosed to 1e-28: its middle is enough to recognise a value.
+	const middle = {
+		scale: map.scale.low.add(map.scale.high).div(2),
+		shift: map.shift.low.add(map.shift.high).div(2)
+	};
+	return diagnose({
+		reading: judged.reading,
+		relation: judged.relation,
+		quantity: claim.quantity,
+		status,
+		reasonCode,
+		enclosure,
+		others: othersOfFindings(findings, claimed, middle, claim.method),
+		normalisations: await normalisationsOf(tx, claim, findings, map, middle)
+	});
+}
+
+async function normalisationsOf(
+	tx: Transaction,
+	claim: JudgedClaim,
+	findings: readonly StoredFinding[],
+	map: AffineMap,
+	fromFamily: { readonly scale: Rational; readonly shift: Rational }
+) {
+	if (!claim.inequalityId) return [];
+	const [row] = await tx
+		.select({ name: inequalities.name, outputs: inequalities.outputs })
+		.from(inequalities)
+		.where(eq(inequalities.id, claim.inequalityId));
+	const family = familyOfName(row?.name ?? null);
+	const local = findings.find(
+		({ result, check }) =>
+			check?.checked && result.quantity === 'local' && result.problem.sense === 'max'
+	);
+	const sides = local?.check?.checked ? mapSides(map, local.check) : null;
+	const exact = sides?.lower && sides.upper?.equals(sides.lower) ? sides.lower : null;
+	return knownNormalisations({
+		family,
+		...(family ? { fromFamily } : {}),
+		...(row ? { outputs: row.outputs } : {}),
+		localMaximum: exact
+	});
+}

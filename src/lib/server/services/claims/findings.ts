@@ -1,0 +1,70 @@
+import { and, eq, inArray, isNotNull, or, sql } from 'drizzle-orm';
+import type { Finding } from '../../../ledger/evidence';
+import type { DoneResult } from '../../../nonlocality/problem';
+import type { Transaction } from '../../db/client';
+import { claims, recomputations } from '../../db/schema';
+
+/** A finished recomputation as verdicts see it. */
+export interface StoredFinding extends Finding {
+	readonly id: string;
+	readonly isStation: boolean;
+}
+
+/** The result without its certificate, which may be megabytes; its kind and level name the evidence. */
+const slimResult = sql`
+	json_set(${recomputations.result}, '$.certificate', json_object(
+		'kind', ${recomputations.result} ->> '$.certificate.kind',
+		'upperLevel', json(${recomputations.result} -> '$.certificate.upperLevel')))`.mapWith(
+	(text: string): DoneResult => JSON.parse(text)
+);
+
+/**
+ * What has been recomputed about an inequality: its stations, and what the group's own claims asked
+ * for. What another group's claims asked for stays with that group.
+ */
+export async function loadFindings(
+	tx: Transaction,
+	inequalityId: string,
+	groupId: string
+): Promise<StoredFinding[]> {
+	const asked = tx
+		.select({ id: claims.recomputationId })
+		.from(claims)
+		.where(
+			and(
+				eq(claims.inequalityId, inequalityId),
+				eq(claims.groupId, groupId),
+				isNotNull(claims.recomputationId)
+			)
+		);
+	const rows = await tx
+		.select({
+			id: recomputations.id,
+			station: recomputations.station,
+			checked: recomputations.checked,
+			checkNote: recomputations.checkNote,
+			lower: recomputations.lower,
+			upper: recomputations.upper,
+			exact: recomputations.exact,
+			result: slimResult
+		})
+		.from(recomputations)
+		.where(
+			and(
+				eq(recomputations.inequalityId, inequalityId),
+				isNotNull(recomputations.result),
+				or(isNotNull(recomputations.station), inArray(recomputations.id, asked))
+			)
+		);
+	return rows.map(({ id, station, checked, checkNote, lower, upper, exact, result }) => ({
+		id,
+		isStation: station !== null,
+		result,
+		check:
+			checked === null
+				? null
+				: checked
+					? { checked, lower, upper, exact, method: checkNote ?? '' }
+					: { checked, reason: checkNote ?? '' }
+	}));
+}

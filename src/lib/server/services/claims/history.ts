@@ -1,0 +1,93 @@
+import { asc, eq } from 'drizzle-orm';
+import type { Verdict } from '../../../ledger/verdict';
+import type { ClaimInput } from '../../../schemas/claim-input';
+import type { HistoryEntry } from '../../../schemas/views';
+import type { Reader } from '../../db/client';
+import { audit, users, verdicts } from '../../db/schema';
+
+const STATUS_WORD = {
+	agreement: 'Agreement',
+	discrepancy: 'Discrepancy',
+	open: 'Open'
+} as const;
+
+const ACTION_TEXT: Readonly<Record<string, string>> = {
+	'claim.entered': 'Entered',
+	'claim.withdrawn': 'Withdrawn',
+	'claim.restored': 'Restored',
+	'claim.superseded': 'Marked as superseded',
+	'claim.proposed': 'Proposed for publication',
+	'claim.published': 'Published',
+	'claim.unpublished': 'Taken back from the public',
+	'claim.recompute-asked': 'Asked to recompute'
+};
+
+const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
+	printed: 'Value',
+	relation: 'Relation',
+	reading: 'Reading',
+	quantity: 'Quantity',
+	level: 'Level',
+	expression: 'Expression',
+	table: 'Table',
+	locator: 'Locator',
+	method: 'Method',
+	note: 'Note',
+	bibtex: 'Paper',
+	referenceId: 'Paper'
+};
+
+/** What happened to a claim, newest first: what people did, and what the recomputation made of it. */
+export async function claimHistory(read: Reader, claimId: string): Promise<HistoryEntry[]> {
+	const actions = await read
+		.select({
+			at: audit.at,
+			action: audit.action,
+			before: audit.before,
+			after: audit.after,
+			who: users.name
+		})
+		.from(audit)
+		.leftJoin(users, eq(users.id, audit.actorId))
+		.where(eq(audit.entityId, claimId))
+		.orderBy(asc(audit.at), asc(audit.id));
+	const judged = await read
+		.select({ at: verdicts.at, status: verdicts.status, verdict: verdicts.verdict })
+		.from(verdicts)
+		.where(eq(verdicts.claimId, claimId))
+		.orderBy(asc(verdicts.at), asc(verdicts.id));
+	const entries = [
+		...actions.flatMap(({ at, action, before, after, who }) => {
+			const text = action === 'claim.edited' ? editText(before, after) : ACTION_TEXT[action];
+			return text === undefined ? [] : [{ at, who, text }];
+		}),
+		...judgedEntries(judged)
+	];
+	return entries
+		.sort((a, b) => b.at.getTime() - a.at.getTime())
+		.map(({ at, who, text }) => ({ at: at.toISOString(), who, text }));
+}
+
+/** One entry per change of status: how the explanation grew in between is of no interest later. */
+function judgedEntries(
+	rows: readonly { at: Date; status: Verdict['status']; verdict: Verdict }[]
+): { at: Date; who: null; text: string }[] {
+	return rows
+		.filter(({ status }, i) => status !== rows[i - 1]?.status)
+		.map(({ at, status }) => ({ at, who: null, text: `Recomputed: ${STATUS_WORD[status]}` }));
+}
+
+function editText(before: unknown, after: unknown): string {
+	const changed = Object.entries(FIELD_WORD).flatMap(([field, word]) => {
+		const [was, is] = [fieldOf(before, field), fieldOf(after, field)];
+		if (was === is) return [];
+		const short = was && is && was.length <= 40 && is.length <= 40;
+		return [short ? `${word} changed from ${was} to ${is}` : `${word} changed`];
+	});
+	return changed.length > 0 ? [...new Set(changed)].join('; ') : 'Edited';
+}
+
+function fieldOf(input: unknown, field: string): string {
+	const value: unknown = typeof input === 'object' && input ? Reflect.get(input, field) : '';
+	return typeof value === 'string' ? value : '';
+}

@@ -1,0 +1,104 @@
+import type { ClaimInput } from '../../../schemas/claim-input';
+import { toDouble } from '../../../nonlocality/exact/rational';
+import type { GroupContext } from '../../context';
+import type { Transaction } from '../../db/client';
+import type { claims } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import type { MapText } from '../inequalities/canonical-subject';
+import { findOrCreateInequality, queueStations } from '../inequalities/find-or-create-inequality';
+import { budgetSeconds } from '../recomputations/budget';
+import { claimProblem } from '../recomputations/claim-problem';
+import { queueRecomputation } from '../recomputations/queue-recomputation';
+import { addReference } from '../references/add-reference';
+import type { ReadClaimInput } from './read-claim-input';
+
+/** A claim's form in which nothing is wrong. */
+export type SoundClaim = {
+	readonly [K in 'subject' | 'stated' | 'paper']: NonNullable<ReadClaimInput[K]>;
+} & Pick<ReadClaimInput, 'place' | 'quantity' | 'relation'>;
+
+/** @throws ServiceError invalid with every issue, when there is one */
+export function requireSound(read: ReadClaimInput): SoundClaim {
+	const { subject, stated, paper, place, quantity, relation, issues } = read;
+	if (issues.length > 0 || !subject || !stated || !paper) {
+		throw new ServiceError('invalid', issues[0]?.message ?? 'This claim is incomplete.', issues);
+	}
+	return { subject, stated, paper, place, quantity, relation };
+}
+
+type ClaimColumns = Omit<
+	typeof claims.$inferInsert,
+	'id' | 'groupId' | 'number' | 'createdBy' | 'createdAt' | 'verdict'
+>;
+
+/** Text for one line: what a paste brings of line breaks becomes a space. */
+const oneLine = (text: string) => text.replace(/\s+/g, ' ').trim();
+
+/**
+ * Writes what a claim rests on (paper, inequality with its stations, recomputation) and returns
+ * the claim's own columns; the same for a new claim and for an edited one.
+ */
+export async function storeClaimParts(
+	tx: Transaction,
+	ctx: GroupContext,
+	input: ClaimInput,
+	claim: SoundClaim
+): Promise<ClaimColumns> {
+	const now = ctx.now();
+	const { subject, stated, paper, quantity, relation } = claim;
+	const referenceId =
+		paper.kind === 'known'
+			? paper.id
+			: (await addReference(tx, ctx, paper.bibtex, paper.parsed)).id;
+	const recomputed = await storeSubject(tx, ctx, input, claim, now);
+	return {
+		input,
+		...recomputed,
+		subject: subject.text,
+		subjectLatex: subject.latex,
+		quantity: input.quantity,
+		quantityLabel: quantity.label,
+		relation,
+		printed: oneLine(input.printed),
+		reading: input.reading,
+		sortValue: toDouble(stated.value),
+		method: oneLine(input.method),
+		referenceId,
+		locator: oneLine(input.locator),
+		note: input.note.trim(),
+		updatedAt: now
+	};
+}
+
+interface StoredSubject extends MapText {
+	readonly inequalityId: string | null;
+	readonly recomputationId: string | null;
+}
+
+async function storeSubject(
+	tx: Transaction,
+	ctx: GroupContext,
+	input: ClaimInput,
+	{ subject, place, quantity }: SoundClaim,
+	now: Date
+): Promise<StoredSubject> {
+	const { functional, latex, family } = subject;
+	if (!functional || !place) {
+		return { inequalityId: null, recomputationId: null, scale: '1', shift: '0' };
+	}
+	const placed = { functional, latex: latex ?? '', family, place };
+	const inequality = await findOrCreateInequality(tx, placed, now);
+	const seconds = budgetSeconds();
+	await queueStations(tx, inequality, ctx.group.id, seconds, now);
+	const own = claimProblem(input, quantity, inequality, seconds);
+	const { id: inequalityId, map } = inequality;
+	const recomputationId =
+		'problem' in own
+			? await queueRecomputation(
+					tx,
+					{ problem: own.problem, inequalityId, groupId: ctx.group.id },
+					now
+				)
+			: null;
+	return { inequalityId, recomputationId, ...map };
+}

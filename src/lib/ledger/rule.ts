@@ -187,11 +187,14 @@ function stationsOf(input: RuleInput, anchors: readonly Anchor[], sign: number):
 const FIGURE_PLACES = 6;
 
 function figure(value: number | null): string {
-	return value === null ? '' : withMinusSign(showBound(value, 'upper', FIGURE_PLACES));
+	return value === null ? '' : withMinusSign(showBound(String(value), 'upper', FIGURE_PLACES));
 }
 
+const asWritten = (value: number | null) => (value === null ? null : String(value));
+
 function quantumFigures(lower: number | null, upper: number | null): string {
-	const shown = showEnclosure(lower, upper);
+	// Read back as the decimals they came as, not as the doubles those became.
+	const shown = showEnclosure(asWritten(lower), asWritten(upper));
 	if (shown.lower === null) return withMinusSign(`≤ ${shown.upper ?? ''}`);
 	if (shown.upper === null) return withMinusSign(`≥ ${shown.lower}`);
 	if (lower !== null && upper !== null && close(lower, upper) && shown.value)

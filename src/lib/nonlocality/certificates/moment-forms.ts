@@ -1,5 +1,5 @@
 import { exactOfDouble, type Rational } from '../exact/rational';
-import type { Coefficient } from '../exact/coefficient';
+import { COEFFICIENT_ONE, type Coefficient } from '../exact/coefficient';
 import type { ProblemConstraint } from '../problem';
 import { collinsGisinForm, makeFunctional, type Functional } from '../scenario/functional';
 import { functionalOfTerms } from '../scenario/problem-terms';
@@ -76,8 +76,10 @@ export function formOfProbability(
 	scenario: Scenario,
 	events: readonly Event[]
 ): MomentForm | null {
-	const one: Coefficient = { exact: exactOfDouble(1), value: 1, error: 0, text: '1' };
-	return formOfFunctional(numbers, makeFunctional(scenario, [{ coefficient: one, events }]));
+	return formOfFunctional(
+		numbers,
+		makeFunctional(scenario, [{ coefficient: COEFFICIENT_ONE, events }])
+	);
 }
 
 /** weight * form.error rounded up, for a weight >= 0. */

@@ -1,0 +1,221 @@
+import type { z } from 'zod';
+import {
+	termsOfFunctional,
+	type Level,
+	type Problem,
+	type ProblemConstraint
+} from '../nonlocality/notation';
+import { readBox, readState } from './problem-box';
+import { ProblemError, ProblemLimitError, UnsolvedQuantityError } from './problem-error';
+import { PROBLEM_LIMITS, problemShape, type ProblemShape } from './problem-shape';
+import { checkOutputs, readCoefficient, readFunctional } from './problem-subject';
+
+export { ProblemError, ProblemLimitError, UnsolvedQuantityError } from './problem-error';
+export { PROBLEM_LIMITS } from './problem-shape';
+
+/** Quantities of the format that no solver serves yet. */
+export const UNSOLVED_QUANTITIES = [
+	'visibility',
+	'efficiency',
+	'information-causality',
+	'information-causality-test',
+	'guessing',
+	'random-access-code'
+] as const;
+
+const SOLVED_QUANTITIES = ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'] as const;
+
+/** What a problem means when it does not say. */
+export const PROBLEM_DEFAULTS = { seconds: 30, seed: 0, starts: 20, gap: 1e-8 } as const;
+
+/**
+ * Reads a problem as people and programs write it (families, expressions and tables included) into
+ * its normal form. A normalised problem comes back as it is.
+ * @throws ProblemError naming the field, ProblemLimitError, UnsolvedQuantityError.
+ */
+export function parseProblem(json: unknown): Problem {
+	const shape = readShape(json);
+	const { outputs, terms, box } = readSubject(shape);
+	const common = {
+		format: 1,
+		outputs,
+		terms,
+		sense: shape.sense ?? 'max',
+		constraints: readConstraints(shape, outputs),
+		seconds: atMost('seconds', shape.seconds ?? PROBLEM_DEFAULTS.seconds, PROBLEM_LIMITS.seconds),
+		seed: shape.seed ?? PROBLEM_DEFAULTS.seed
+	} as const;
+	const parties = outputs.length;
+	switch (shape.quantity) {
+		case 'value':
+			if (!box)
+				throw new ProblemError(
+					'box',
+					'is missing: the value of a functional needs a box or strategy'
+				);
+			return { ...common, quantity: 'value', box };
+		case 'local':
+		case 'no-signalling':
+			return { ...common, quantity: shape.quantity };
+		case 'npa':
+			if (shape.level === undefined)
+				throw new ProblemError('level', 'is missing: an NPA bound needs its level');
+			return {
+				...common,
+				quantity: 'npa',
+				level: readLevel('level', shape.level, parties),
+				nonNegative: shape.nonNegative ?? false
+			};
+		case 'see-saw':
+			return { ...common, quantity: 'see-saw', ...readSeeSaw(shape, parties) };
+		default:
+			return {
+				...common,
+				quantity: 'quantum',
+				levels: shape.levels?.map((level, i) => readLevel(`levels[${i}]`, level, parties)) ?? null,
+				dimensions:
+					shape.dimensions?.map((d, i) =>
+						atMost(`dimensions[${i}]`, d, PROBLEM_LIMITS.dimension)
+					) ?? null,
+				gap: shape.gap ?? PROBLEM_DEFAULTS.gap
+			};
+	}
+}
+
+function readShape(json: unknown): ProblemShape {
+	if (typeof json !== 'object' || json === null || Array.isArray(json))
+		throw new ProblemError('problem', 'must be an object');
+	if ('quantity' in json && typeof json.quantity === 'string') checkQuantity(json.quantity);
+	// Before anything walks through it: a list that is too long is not looked at.
+	if ('terms' in json && Array.isArray(json.terms))
+		atMost('terms', json.terms.length, PROBLEM_LIMITS.terms, 'terms');
+	if ('constraints' in json && Array.isArray(json.constraints))
+		atMost('constraints', json.constraints.length, PROBLEM_LIMITS.constraints, 'constraints');
+	const read = problemShape.safeParse(json);
+	if (read.success) return read.data;
+	throw errorOfIssue(read.error.issues[0], json);
+}
+
+function checkQuantity(quantity: string): void {
+	if (UNSOLVED_QUANTITIES.some((name) => name === quantity))
+		throw new UnsolvedQuantityError(quantity);
+	if (SOLVED_QUANTITIES.some((name) => name === quantity)) return;
+	const names = [...SOLVED_QUANTITIES, ...UNSOLVED_QUANTITIES].join(', ');
+	throw new ProblemError(
+		'quantity',
+		`${JSON.stringify(quantity.slice(0, 40))} is none of ${names}`
+	);
+}
+
+function errorOfIssue(issue: z.core.$ZodIssue | undefined, json: object): ProblemError {
+	if (!issue) return new ProblemError('problem', 'is malformed');
+	const path = issue.path.map((key) =>
+		typeof key === 'number' ? `[${key}]` : `.${String(key).slice(0, 40)}`
+	);
+	const field = path.join('').replace(/^\./, '');
+	if (issue.code === 'unrecognized_keys') {
+		const key = (issue.keys[0] ?? '').slice(0, 40);
+		const known =
+			field === '' ? `; a problem has ${Object.keys(problemShape.shape).join(', ')}` : '';
+		return new ProblemError(field === '' ? key : `${field}.${key}`, `is not known here${known}`);
+	}
+	const [first] = issue.path;
+	const missing = issue.path.length === 1 && !Object.hasOwn(json, String(first));
+	return new ProblemError(field || 'problem', missing ? 'is missing' : issue.message);
+}
+
+function atMost(field: string, value: number, limit: number, what = ''): number {
+	if (value <= limit) return value;
+	throw new ProblemLimitError(field, `at most ${limit}${what && ` ${what}`}, not ${value}`);
+}
+
+function readSubject(shape: ProblemShape) {
+	if (shape.outputs) checkOutputs('outputs', shape.outputs);
+	const functional = readFunctional(shape, shape.outputs);
+	if (!functional)
+		throw new ProblemError(
+			'terms',
+			'is missing: give the functional as terms, expression, family, collinsGisin, correlators or probabilities'
+		);
+	const { outputs } = functional.scenario;
+	checkOutputs('outputs', outputs);
+	if (shape.box !== undefined && shape.quantity !== 'value')
+		throw new ProblemError('box', `has no part in the quantity ${shape.quantity}`);
+	const read = shape.box === undefined ? null : readBox(shape.box, outputs);
+	if (read && JSON.stringify(read.outputs) !== JSON.stringify(outputs))
+		throw new ProblemError(
+			'box',
+			`is for the outputs ${JSON.stringify(read.outputs)}, the functional for ${JSON.stringify(outputs)}`
+		);
+	return { outputs, terms: termsOfFunctional(functional), box: read?.box ?? null };
+}
+
+function readConstraints(shape: ProblemShape, outputs: Problem['outputs']): ProblemConstraint[] {
+	const { constraints = [], quantity } = shape;
+	if (constraints.length > 0 && (quantity === 'value' || quantity === 'quantum'))
+		throw new ProblemError('constraints', `have no part in the quantity ${quantity}`);
+	return constraints.map((constraint, i) => {
+		const prefix = `constraints[${i}].`;
+		const functional = readFunctional(constraint, outputs, prefix);
+		if (!functional) throw new ProblemError(`${prefix}terms`, 'is missing');
+		return {
+			terms: termsOfFunctional(functional),
+			relation: constraint.relation,
+			value: readCoefficient(`${prefix}value`, constraint.value)
+		};
+	});
+}
+
+function readLevel(
+	field: string,
+	level: NonNullable<ProblemShape['level']>,
+	parties: number
+): Level {
+	if (typeof level === 'number') return atMost(field, level, PROBLEM_LIMITS.level);
+	if (level === '1+AB') {
+		if (parties !== 2)
+			throw new ProblemError(
+				field,
+				`1+AB is for two parties, not ${parties}`,
+				null,
+				'Write {"perParty": 1}.'
+			);
+		return level;
+	}
+	if ('perParty' in level)
+		return { perParty: atMost(`${field}.perParty`, level.perParty, PROBLEM_LIMITS.level) };
+	atMost(`${field}.products`, level.products.length, PROBLEM_LIMITS.products, 'products');
+	const last = String.fromCharCode(64 + parties);
+	const outside = level.products.findIndex((product) =>
+		[...product].some((letter) => letter > last)
+	);
+	if (outside >= 0)
+		throw new ProblemError(`${field}.products[${outside}]`, `names a party beyond ${last}`);
+	return { products: level.products };
+}
+
+function readSeeSaw(shape: ProblemShape, parties: number) {
+	if (shape.grow !== undefined) throw new UnsolvedQuantityError('see-saw with a growing dimension');
+	const { dimension, state } = shape;
+	if (dimension === undefined)
+		throw new ProblemError('dimension', 'is missing: a see-saw needs its local dimension');
+	const dimensions =
+		typeof dimension === 'number' ? Array.from({ length: parties }, () => dimension) : dimension;
+	if (dimensions.length !== parties)
+		throw new ProblemError(
+			'dimension',
+			`must be one number, or one for each of the ${parties} parties`
+		);
+	dimensions.forEach((d) => atMost('dimension', d, PROBLEM_LIMITS.dimension));
+	const starts = atMost('starts', shape.starts ?? PROBLEM_DEFAULTS.starts, PROBLEM_LIMITS.starts);
+	if (state === undefined || typeof state === 'string')
+		return { dimension: dimensions, starts, state: state ?? 'free' };
+	const size = dimensions.reduce((product, d) => product * d, 1);
+	const vector = readState('state', state);
+	if (vector.length !== size)
+		throw new ProblemError(
+			'state',
+			`must have ${dimensions.join(' x ')} = ${size} components, not ${vector.length}`
+		);
+	return { dimension: dimensions, starts, state: vector };
+}

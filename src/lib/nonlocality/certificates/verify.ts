@@ -11,6 +11,7 @@ import { checkEnclosure } from './check-enclosure';
 import { checkLinearProgramme } from './check-linear-programme';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
+import { checkValue } from './check-value';
 import type { Certificate, CheckOutcome } from './types';
 
 type Proved = Extract<CheckOutcome, { checked: true }>;
@@ -37,6 +38,7 @@ function checkCertificate(
 	g: Functional,
 	certificate: Certificate | null
 ): CheckOutcome {
+	if (problem.quantity === 'value') return checkValue(problem, g);
 	if (!certificate) return refuse('the result carries no certificate');
 	switch (certificate.kind) {
 		case 'deterministic-strategy':
@@ -64,7 +66,10 @@ const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
 
 /** A printed side may be looser than what is proved, never tighter. */
 function printedDefect(result: DoneResult, proved: Proved): string | null {
-	const { lower, upper, value, exact } = result;
+	const { lower, upper, value, exact, tolerance } = result;
+	const slack = tolerance ?? 0;
+	const unproved = unprovedSide(result, proved);
+	if (unproved) return `the ${unproved} side is printed as guaranteed, but nothing proves it`;
 	if (lower !== null && proved.lower !== null && lower > proved.lower)
 		return `the printed lower side ${lower} is above the proved ${proved.lower}`;
 	if (upper !== null && proved.upper !== null && upper < proved.upper)
@@ -73,6 +78,12 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 		return `the printed lower side ${lower} is above the upper ${upper}`;
 	if (value !== null && ((lower !== null && value < lower) || (upper !== null && value > upper)))
 		return `the printed value ${value} is outside its own sides`;
+	if (
+		value !== null &&
+		((proved.lower !== null && value + slack < proved.lower) ||
+			(proved.upper !== null && value - slack > proved.upper))
+	)
+		return `the printed value ${value} is outside the proved sides`;
 	if (exact === null) return null;
 	if (proved.exact !== null)
 		return exact === proved.exact ? null : `the exact value is ${proved.exact}, not ${exact}`;
@@ -83,6 +94,14 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 		(upper !== null && toDoubleUp(read) > upper)
 	)
 		return `the exact value ${exact} is outside its own sides`;
+	return null;
+}
+
+/** A large enumeration is not repeated: only there may a guaranteed side go unproved. */
+function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | null {
+	if (result.quantity === 'local') return null;
+	for (const side of ['lower', 'upper'] as const)
+		if (result.guaranteed[side] && result[side] !== null && proved[side] === null) return side;
 	return null;
 }
 

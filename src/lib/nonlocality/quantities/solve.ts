@@ -17,6 +17,7 @@ import { momentProblemSdpa } from './moment-problem-sdpa';
 import type { Outcome } from './outcome';
 import { quantumMaximum } from './quantum-maximum';
 import { seeSaw } from './see-saw';
+import { boxValue } from './value';
 
 export const SOLVER = 'merestone 0.1.0';
 
@@ -69,6 +70,8 @@ export function sdpaText(problem: Problem): string {
 
 async function dispatch(problem: Problem, g: Functional, control: Control): Promise<Outcome> {
 	switch (problem.quantity) {
+		case 'value':
+			return boxValue(problem, g);
 		case 'local':
 			return localMaximum(problem, g, control);
 		case 'no-signalling':
@@ -79,8 +82,6 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 			return seeSaw(problem, g, control);
 		case 'quantum':
 			return quantumMaximum(problem, g, control);
-		default:
-			throw new SolverStop('failed', `no solver for the quantity "${problem.quantity}" yet`);
 	}
 }
 

@@ -1,4 +1,11 @@
-import { ONE, ZERO, parseRational, printRational, type Rational } from '../exact/rational';
+import {
+	ONE,
+	ZERO,
+	parseRational,
+	printRational,
+	toDouble,
+	type Rational
+} from '../exact/rational';
 import type { Event, Scenario } from './scenario';
 
 /** All probabilities of a scenario as exact rationals; those not listed are 0. */
@@ -23,10 +30,11 @@ export function tableSize(scenario: Scenario): number {
 	);
 }
 
-/** Reads exact fractions, or says what is wrong with the first entry that is not one. */
+/** Reads the entries (exact fractions, unless told otherwise), or says what is wrong with one. */
 export function readTable(
 	scenario: Scenario,
-	entries: Readonly<Record<string, string>>
+	entries: Readonly<Record<string, string>>,
+	read: (text: string) => Rational | null = parseRational
 ): ExactTable | string {
 	if (tableSize(scenario) > TABLE_LIMIT)
 		return `a table of ${tableSize(scenario)} entries is past the limit of ${TABLE_LIMIT}`;
@@ -37,31 +45,41 @@ export function readTable(
 	const probabilities = new Map<string, Rational>();
 	for (const [key, text] of Object.entries(entries)) {
 		if (!known.has(key)) return `"${key}" names no probability of this scenario`;
-		const value = parseRational(text);
+		const value = read(text);
 		if (!value) return `P(${key}) = "${text}" is no fraction`;
 		probabilities.set(key, value);
 	}
 	return { scenario, probabilities };
 }
 
-/** The first defect of a table as a no-signalling behaviour, in words; null when it is one. */
-export function tableDefect(table: ExactTable): string | null {
+/**
+ * The first defect of a table as a no-signalling behaviour, in words; null when it is one, up to
+ * the tolerance (0: exactly).
+ */
+export function tableDefect(table: ExactTable, tolerance: Rational = ZERO): string | null {
+	const exact = tolerance.n === 0n;
+	const print = (value: Rational) => (exact ? printRational(value) : String(toDouble(value)));
+	const same = (a: Rational, b: Rational) => a.sub(b).abs().compare(tolerance) <= 0;
 	for (const [key, value] of table.probabilities) {
-		if (value.n !== 0n && value.s < 0n) return `P(${key}) = ${printRational(value)} is negative`;
+		if (value.add(tolerance).compare(0) < 0) return `P(${key}) = ${print(value)} is negative`;
 	}
 	const { scenario } = table;
 	let defect: string | null = null;
 	forEachTuple(scenario, (inputs) => {
 		if (defect) return;
 		const sum = marginal(table, inputs, []);
-		if (!sum.equals(ONE))
-			defect = `the probabilities at inputs ${inputs.join(',')} sum to ${printRational(sum)}, not 1`;
+		if (!same(sum, ONE))
+			defect = `the probabilities at inputs ${inputs.join(',')} sum to ${print(sum)}, not 1`;
 	});
-	return defect ?? signallingDefect(table);
+	return defect ?? signallingDefect(table, same, print);
 }
 
 /** Each party's input may not show in the joint distribution of the others. */
-function signallingDefect(table: ExactTable): string | null {
+function signallingDefect(
+	table: ExactTable,
+	same: (a: Rational, b: Rational) => boolean,
+	print: (value: Rational) => string
+): string | null {
 	const { scenario } = table;
 	let defect: string | null = null;
 	for (const party of scenario.outputs.keys()) {
@@ -74,10 +92,10 @@ function signallingDefect(table: ExactTable): string | null {
 					p === party ? [] : [[p, inputs[p] ?? 0, a]]
 				);
 				const [here, there] = [marginal(table, inputs, events), marginal(table, reference, events)];
-				if (!here.equals(there))
+				if (!same(here, there))
 					defect =
 						`signalling: with input ${inputs[party]} instead of 0 of party ${party}, ` +
-						`the others' probability changes from ${printRational(there)} to ${printRational(here)}`;
+						`the others' probability changes from ${print(there)} to ${print(here)}`;
 			});
 		});
 	}
@@ -140,4 +158,13 @@ function forEachDigits(
 		if (k < 0) return;
 		digits[k] = (digits[k] ?? 0) + 1;
 	}
+}
+
+/** Keys of the entries that sum to P(events), with input 0 for the parties that are not named. */
+export function marginalEntries(scenario: Scenario, events: readonly Event[]): string[] {
+	const inputs = scenario.outputs.map((_, p) => events.find(([q]) => q === p)?.[1] ?? 0);
+	const fixed = inputs.map((_, p) => events.find(([q]) => q === p)?.[2] ?? null);
+	const keys: string[] = [];
+	forEachOutputs(scenario, inputs, (outputs) => keys.push(tableKey(outputs, inputs)), fixed);
+	return keys;
 }

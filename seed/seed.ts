@@ -11,6 +11,7 @@ import { openDatabase } from '../src/lib/server/db/client';
 import { createThreadPool } from '../src/lib/server/jobs/pool';
 import { startRunner } from '../src/lib/server/jobs/runner';
 import { log } from '../src/lib/server/log';
+import { closeReferences } from '../src/lib/server/references/read-reference';
 import { enterClaim } from '../src/lib/server/services/claims/enter-claim';
 import { proposeClaim } from '../src/lib/server/services/claims/propose-claim';
 import { publishClaim } from '../src/lib/server/services/claims/publish-claim';
@@ -91,7 +92,7 @@ async function seed(marker: string): Promise<void> {
 	console.log(`  ${numbers.size} claims entered; recomputing ...`);
 
 	const pool = createThreadPool(cpus().length);
-	const runner = startRunner({ db, pool, log, now: ctx.now });
+	const runner = startRunner({ db, pool, log: log(), now: ctx.now });
 	await runner.idle();
 	await runner.stop();
 	await pool.close();
@@ -99,6 +100,7 @@ async function seed(marker: string): Promise<void> {
 	for (const claim of CLAIMS) {
 		if (claim.leaveQueued) await enter(people, claim);
 	}
+	await closeReferences();
 	close();
 	writeFileSync(marker, `${new Date().toISOString()}\n`);
 }

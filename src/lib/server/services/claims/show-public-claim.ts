@@ -4,6 +4,7 @@ import type { Context } from '../../context';
 import { claims } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { isPublicClaim } from '../inequalities/visibility';
+import { publicReference } from '../references/public-reference';
 import { claimView } from './claim-view';
 
 /** @throws ServiceError not-found for a claim that is not public, as if it did not exist */
@@ -35,7 +36,7 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		stations: whole.stations,
 		progress: whole.progress,
 		recomputations: whole.recomputations,
-		reference: whole.reference,
+		reference: publicReference(whole.reference),
 		history: whole.history
 			.filter(({ text }) => PUBLIC_HISTORY.test(text))
 			.map(({ at, text }) => ({ at, who: null, text })),
@@ -46,11 +47,14 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 
 const PUBLIC_HISTORY = /^(Entered|Published|Recomputed: |Value changed|Marked as superseded)/;
 
+/** How many claims a group has is its own business. */
+const NO_NUMBER = 0;
+
 async function publicSuccessor(ctx: Context, id: string | null) {
 	if (!id) return null;
 	const [row] = await ctx.db.read
-		.select({ number: claims.number, id: claims.id })
+		.select({ id: claims.id })
 		.from(claims)
 		.where(and(eq(claims.id, id), isPublicClaim));
-	return row ?? null;
+	return row ? { id: row.id, number: NO_NUMBER } : null;
 }

@@ -41,6 +41,10 @@ export function familyOfDigest(digest: string): FamilySpec | null {
 	return recognised().get(digest) ?? null;
 }
 
+export function recognisedDigests(): readonly string[] {
+	return [...recognised().keys()];
+}
+
 export function recognisedFamilies(): readonly FamilySpec[] {
 	return [...recognised().values()];
 }

@@ -1,10 +1,51 @@
+import { and, asc, eq, inArray, or, sql } from 'drizzle-orm';
 import type { InequalityRow } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
+import { claims, inequalities } from '../../db/schema';
+import { recognisedDigests } from './catalogue';
+import { inequalityRows } from './inequality-rows';
+import { isPublicClaim } from './visibility';
 
-/** Known inequalities whose name, scenario or formula holds the text; empty: the usual ones. */
+const MOST_FOUND = 50;
+
+/**
+ * Known inequalities whose name, scenario or formula holds each word; all that the group may see
+ * when there is none. Those the group has claims on come first.
+ */
 export async function searchInequalities(
-	_ctx: GroupContext,
-	_text: string
+	ctx: GroupContext,
+	text: string
 ): Promise<readonly InequalityRow[]> {
-	throw new Error('being written');
+	const { read } = ctx.db;
+	const own = eq(claims.groupId, ctx.group.id);
+	const visible = read
+		.select({ id: claims.inequalityId })
+		.from(claims)
+		.where(or(own, isPublicClaim));
+	const mine = read.select({ id: claims.inequalityId }).from(claims).where(own);
+	const words = text.slice(0, 200).split(/\s+/).filter(Boolean).slice(0, 10);
+	const rows = await read
+		.select()
+		.from(inequalities)
+		.where(
+			and(
+				or(
+					inArray(inequalities.digest, [...recognisedDigests()]),
+					inArray(inequalities.id, visible)
+				),
+				...words.map((word) => {
+					const pattern = `%${word.replace(/[\\%_]/g, '\\$&')}%`;
+					const place = sql`coalesce(${inequalities.name}, '') || ' ' || ${inequalities.scenario} || ' ' || ${inequalities.latex}`;
+					return sql`${place} like ${pattern} escape '\\'`;
+				})
+			)
+		)
+		.orderBy(
+			sql`${inequalities.id} in ${mine} desc`,
+			asc(inequalities.parties),
+			asc(sql`${inequalities.name} is null`),
+			asc(inequalities.name)
+		)
+		.limit(MOST_FOUND);
+	return inequalityRows(read, rows, own);
 }

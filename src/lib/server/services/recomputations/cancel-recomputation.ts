@@ -46,7 +46,7 @@ export async function cancelRecomputation(ctx: GroupContext, id: string): Promis
 				leaseUntil: null,
 				progress: null,
 				finishedAt: ctx.now(),
-				reason: `stopped by ${ctx.actor.name}`
+				reason: 'stopped by a member of a group'
 			})
 			.where(and(eq(recomputations.id, id), inArray(recomputations.state, ['queued', 'running'])))
 			.returning({ id: recomputations.id });

@@ -1,0 +1,142 @@
+import { dirname, join, resolve } from 'node:path';
+import { openedDatabase } from '../application';
+import { config } from '../config';
+import type { Database } from '../db/client';
+import { log } from '../log';
+import { sendDueMails } from '../mail/sender';
+import { setMailSink, startMailSink } from '../mail/sink';
+import { createSmtpTransport, type MailTransport } from '../mail/transport';
+import { closeReferences, warmReferences } from '../references/read-reference';
+import { deriveTouchedClaims } from '../services/claims/derive-claim';
+import { ensureCatalogue } from '../services/inequalities/ensure-catalogue';
+import { setBudgetSeconds } from '../services/recomputations/budget';
+import { closeSolverPool, setSolverPool, solverPool } from './current-pool';
+import { reap } from './lease';
+import { createThreadPool, threadCount } from './pool';
+import { startRunner, type Runner } from './runner';
+import { onHint } from './signal';
+
+const REAP_EVERY_MS = 15_000;
+const MAIL_EVERY_MS = 2_000;
+
+interface Background {
+	readonly runner: Runner;
+	stop(): Promise<void>;
+}
+
+/** On globalThis, because the development server evaluates this module anew after a change. */
+const holder: { merestoneBackground?: Promise<Background> | undefined } = globalThis as never;
+
+/** Starts the solver threads' runner, the reaper and the outbox; once per process. */
+export async function startBackground(): Promise<void> {
+	if (!holder.merestoneBackground) {
+		holder.merestoneBackground = start();
+		// adapter-node emits it after the last request and waits for what it starts.
+		process.once('sveltekit:shutdown', () => void stopBackground());
+	}
+	await holder.merestoneBackground;
+}
+
+/** Puts running work back into the queue, lets a mail being sent end, and frees the threads. */
+export async function stopBackground(): Promise<void> {
+	const background = await holder.merestoneBackground;
+	holder.merestoneBackground = undefined;
+	await background?.stop();
+}
+
+async function start(): Promise<Background> {
+	const settings = config();
+	const db = openedDatabase();
+	const now = () => new Date();
+	setBudgetSeconds(settings.budgetSeconds);
+	setSolverPool(createThreadPool(settings.threads ?? threadCount()));
+	await takeBack(db, now(), true);
+
+	const runner = startRunner({ db, pool: await solverPool(), log: log(), now });
+	const forget = onHint((hint) => (hint.kind === 'stop' ? runner.cancel(hint.id) : runner.wake()));
+	const reaper = every(REAP_EVERY_MS, 'taking back lost runs', () => takeBack(db, now(), false));
+	const mail = await startMail(db, now);
+	void warmUp(db);
+	return {
+		runner,
+		async stop() {
+			forget();
+			await Promise.all([reaper.stop(), mail.stop(), runner.stop()]);
+			await Promise.all([closeSolverPool(), closeReferences()]);
+		}
+	};
+}
+
+/** Puts lost runs back into the queue and judges the claims of those that are given up. */
+async function takeBack(db: Database, now: Date, all: boolean): Promise<void> {
+	const count = await db.write(async (tx) => {
+		const given = await reap(tx, now, all);
+		for (const id of given) await deriveTouchedClaims(tx, id, now);
+		return given.length;
+	});
+	if (count > 0) log().error({ count }, 'recomputations given up after repeated crashes');
+}
+
+/** Slow beginnings, after the server has begun to answer. */
+async function warmUp(db: Database): Promise<void> {
+	try {
+		await warmReferences();
+		await ensureCatalogue(db);
+	} catch (error) {
+		log().warn({ err: error }, 'warming up failed');
+	}
+}
+
+async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promise<void> }> {
+	const { smtpUrl, mailFrom, origin, demo, databaseUrl } = config();
+	let url = smtpUrl;
+	let closeSink = async () => undefined as void;
+	if (!url && demo) {
+		// The demo keeps the mail it would send, beside its database.
+		const file = resolve(databaseUrl.replace(/^file:/, ''));
+		const sink = await startMailSink(join(dirname(file), 'mail'));
+		setMailSink(sink);
+		url = sink.url;
+		closeSink = () => sink.close();
+	}
+	if (!url) return { stop: closeSink };
+	const transport: MailTransport = createSmtpTransport(url, mailFrom);
+	const timer = every(MAIL_EVERY_MS, 'sending mail', async () => {
+		await sendDueMails({
+			db,
+			transport,
+			origin,
+			now,
+			onFailure: (messageId, error, dead) =>
+				log()[dead ? 'error' : 'warn'](
+					{ messageId, err: error },
+					dead ? 'mail given up' : 'mail later'
+				)
+		});
+	});
+	return {
+		async stop() {
+			await timer.stop();
+			transport.close();
+			await closeSink();
+		}
+	};
+}
+
+/** Runs work again and again, never twice at the same time. */
+function every(ms: number, what: string, work: () => Promise<void>): { stop(): Promise<void> } {
+	let current: Promise<void> | null = null;
+	const timer = setInterval(() => {
+		current ??= work()
+			.catch((error: unknown) => log().error({ err: error }, `${what} failed`))
+			.finally(() => {
+				current = null;
+			});
+	}, ms);
+	return {
+		async stop() {
+			clearInterval(timer);
+			await current;
+		}
+	};
+}

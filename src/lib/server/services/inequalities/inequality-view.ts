@@ -1,0 +1,57 @@
+import { and, asc, eq, inArray, isNotNull, ne, or, type SQL } from 'drizzle-orm';
+import { collinsGisinTableOf } from './collins-gisin-table';
+import type { InequalityView } from '../../../schemas/views';
+import type { Reader } from '../../db/client';
+import { claims, recomputations } from '../../db/schema';
+import { claimRows, selectClaimRows } from '../claims/claim-rows';
+import { recomputationViews } from '../recomputations/recomputation-view';
+import { IDENTITY_TEXT, readMap } from './affine';
+import { inequalitySubject, type InequalityRecord } from './inequality-rows';
+import { chooseNormalisation, normalisationChoices } from './normalisations';
+import { loadStations, stationSides, stationsView } from './stations-view';
+
+/**
+ * The page of one inequality, every value in the chosen normalisation.
+ * @param visible which of its claims the viewer may see
+ */
+export async function inequalityView(
+	read: Reader,
+	row: InequalityRecord,
+	visible: SQL | undefined,
+	normalisation: string | undefined,
+	now: Date
+): Promise<InequalityView> {
+	const stations = (await loadStations(read, [row.id])).get(row.id) ?? [];
+	const own = stationSides(stations, readMap(IDENTITY_TEXT)).local;
+	const local = own.lower && own.upper?.equals(own.lower) ? own.lower : null;
+	const choices = normalisationChoices(row, local);
+	const chosen = chooseNormalisation(choices, normalisation);
+	const map = readMap(chosen.map);
+	const onIt = and(eq(claims.inequalityId, row.id), ne(claims.state, 'withdrawn'), visible);
+	const selected = await selectClaimRows(read, onIt).orderBy(
+		asc(claims.quantity),
+		asc(claims.createdAt)
+	);
+	const asked = read
+		.select({ id: claims.recomputationId })
+		.from(claims)
+		.where(and(onIt, isNotNull(claims.recomputationId)));
+	const runs = and(
+		eq(recomputations.inequalityId, row.id),
+		or(isNotNull(recomputations.station), inArray(recomputations.id, asked))
+	);
+	return {
+		id: row.id,
+		subject: inequalitySubject(row),
+		parties: row.parties,
+		stations: stationsView(stations, map),
+		claims: selected.length,
+		digest: row.digest,
+		latex: row.latex,
+		collinsGisin: collinsGisinTableOf(row, chosen.map),
+		normalisation: { key: chosen.key, label: chosen.label },
+		normalisations: choices.map(({ key, label }) => ({ key, label })),
+		recomputations: await recomputationViews(read, runs, map, now),
+		claimRows: await claimRows(read, selected, now)
+	};
+}

@@ -55,6 +55,9 @@ export function compareDigits(input: DigitInput): DigitComparison {
 	}
 	const shared = status === 'discrepancy' ? sharedLength(claim, enclosure) : claim.decimal.length;
 	const same = claim.decimal.slice(0, shared);
+	const known = knownDigits(enclosure);
+	// Where rounding changes a digit the full value follows the rounded one, all of it quiet.
+	const rounded = status === 'agreement' ? roundedAlike(enclosure, claim) : null;
 	const against = (text: string | null) => (text === null ? null : matchRuns(text, same));
 	return {
 		claimed:
@@ -65,8 +68,8 @@ export function compareDigits(input: DigitInput): DigitComparison {
 				: whole('same'),
 		lower: against(enclosure.lower),
 		upper: against(enclosure.upper),
-		value: against(knownDigits(enclosure)),
-		rounded: status === 'agreement' ? roundedAlike(enclosure, claim) : null
+		value: known?.startsWith(rounded ?? '') ? against(known) : quiet(known),
+		rounded: rounded === null ? null : withMinusSign(rounded)
 	};
 }
 
@@ -126,7 +129,7 @@ function roundedAlike(
 	const [low, high] = [toRational(lower), toRational(upper)];
 	if (!low || !high) return null;
 	const sides = [low, high].map((side) => toDecimal(side, claim.places, 'nearest'));
-	return sides.every((side) => side === claim.decimal) ? withMinusSign(claim.decimal) : null;
+	return sides.every((side) => side === claim.decimal) ? claim.decimal : null;
 }
 
 const sameValue = (end: string, value: Rational) => toRational(end)?.equals(value) ?? false;

@@ -1,5 +1,5 @@
 import type { VerdictStatus } from './claim';
-import { showEnclosure, showBound, withMinusSign } from './figures';
+import { describeRule, quantumFigures, stationFigure } from './rule-text';
 
 /** Values on the rule, in one normalisation; null: not known (or not drawn). */
 export interface RuleInput {
@@ -83,7 +83,7 @@ export function layOutRule(input: RuleInput): RuleLayout {
 		claim && target !== null && input.status === 'discrepancy'
 			? { from: claim.x, to: target }
 			: null;
-	return { stations, claim, dashed, text: describe(input, stations) };
+	return { stations, claim, dashed, text: describeRule(input, stations, nearest) };
 }
 
 /** A minimum's sets nest downwards: the line then runs the other way. */
@@ -176,47 +176,10 @@ function stationsOf(input: RuleInput, anchors: readonly Anchor[], sign: number):
 		stations.push({ key, from, to, label: LABELS[key], figures, coincides });
 	};
 	const [lower, upper] = [input.quantumLower, input.quantumUpper];
-	add('local', [input.local], figure(input.local));
+	const side = sign > 0 ? 'upper' : 'lower';
+	add('local', [input.local], stationFigure(input.local, side));
 	add('quantum', quantumEnds(input, sign), quantumFigures(lower, upper));
-	add('almost-quantum', [input.almostQuantum], figure(input.almostQuantum));
-	add('no-signalling', [input.noSignalling], figure(input.noSignalling));
+	add('almost-quantum', [input.almostQuantum], stationFigure(input.almostQuantum, side));
+	add('no-signalling', [input.noSignalling], stationFigure(input.noSignalling, side));
 	return stations;
-}
-
-/** Digits under a station. */
-const FIGURE_PLACES = 6;
-
-function figure(value: number | null): string {
-	return value === null ? '' : withMinusSign(showBound(String(value), 'upper', FIGURE_PLACES));
-}
-
-const asWritten = (value: number | null) => (value === null ? null : String(value));
-
-function quantumFigures(lower: number | null, upper: number | null): string {
-	// Read back as the decimals they came as, not as the doubles those became.
-	const shown = showEnclosure(asWritten(lower), asWritten(upper));
-	if (shown.lower === null) return withMinusSign(`≤ ${shown.upper ?? ''}`);
-	if (shown.upper === null) return withMinusSign(`≥ ${shown.lower}`);
-	if (lower !== null && upper !== null && close(lower, upper) && shown.value)
-		return withMinusSign(shown.value);
-	return withMinusSign(`${shown.lower} … ${shown.upper}`);
-}
-
-function describe(input: RuleInput, stations: readonly RuleStation[]): string {
-	const values = stations.map(({ label, figures }) => `${label} ${figures}`);
-	const sentences = [
-		values.length > 0 ? `In order: ${values.join(', ')}.` : 'No value is known yet.'
-	];
-	const { claimed } = input;
-	if (claimed)
-		sentences.push(`Claimed ${withMinusSign(claimed.printed.trim())}${relativeTo(input)}.`);
-	return sentences.join(' ');
-}
-
-function relativeTo(input: RuleInput): string {
-	const nearest = nearestAdmissible(input);
-	if (nearest === null || input.status !== 'discrepancy' || !input.claimed) return '';
-	const above = input.claimed.low > nearest;
-	const shown = withMinusSign(showBound(nearest, above ? 'upper' : 'lower', FIGURE_PLACES));
-	return `, ${above ? 'above' : 'below'} the nearest admissible value ${shown}`;
 }

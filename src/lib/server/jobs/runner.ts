@@ -129,11 +129,12 @@ export function startRunner(options: RunnerOptions): Runner {
 		wake,
 		cancel: (id) => running.get(id)?.abort.abort(),
 		async idle() {
-			do {
+			for (;;) {
 				wake();
 				while (looking) await looking;
+				if (running.size === 0) return;
 				await Promise.all([...running.values()].map(({ done }) => done));
-			} while (running.size > 0);
+			}
 		},
 		async stop() {
 			stopping = true;

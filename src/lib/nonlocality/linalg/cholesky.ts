@@ -6,9 +6,12 @@
 /** Columns eliminated together: a panel of this width stays in the cache. */
 const PANEL = 32;
 
+/** Even; at 6000 columns so many rows of an update take some milliseconds. */
+const ROWS_PER_POLL = 64;
+
 /**
  * Replaces the lower triangle of `a` by its Cholesky factor L (a = L L^T). Returns false, with `a`
- * half overwritten, as soon as a pivot is not positive.
+ * half overwritten, as soon as a pivot is not positive. `poll` is called every few milliseconds.
  */
 export function factorCholesky(a: Float64Array, n: number, poll?: () => void): boolean {
 	const panel = n > 2 * PANEL ? new Float64Array(n * PANEL) : null;
@@ -17,9 +20,8 @@ export function factorCholesky(a: Float64Array, n: number, poll?: () => void): b
 		if (!factorDiagonalBlock(a, n, start, end)) return false;
 		if (end === n) break;
 		solvePanel(a, n, start, end);
-		if (panel) updateTrailing(a, n, start, end, panel);
+		if (panel) updateTrailing(a, n, start, end, panel, poll);
 		else updateTrailingPlain(a, n, start, end);
-		poll?.();
 	}
 	return true;
 }
@@ -66,7 +68,8 @@ function updateTrailing(
 	n: number,
 	start: number,
 	end: number,
-	panel: Float64Array
+	panel: Float64Array,
+	poll?: () => void
 ): void {
 	const width = end - start;
 	for (let i = end; i < n; i++) {
@@ -76,6 +79,7 @@ function updateTrailing(
 	}
 	let i = end;
 	for (; i + 1 < n; i += 2) {
+		if ((i - end) % ROWS_PER_POLL === 0) poll?.();
 		const p0 = (i - end) * width;
 		let j = end;
 		for (; j + 3 <= i; j += 4) updateTile(a, n, panel, width, i, j, p0, (j - end) * width);

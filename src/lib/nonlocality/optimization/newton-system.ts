@@ -34,6 +34,7 @@ export interface Direction {
 
 /** Relative additions to the diagonal of the Schur complement, tried when it is not positive. */
 const REGULARISATIONS = [0, 1e-15, 1e-14, 1e-13];
+const BORDER_REGULARISATIONS = [0, 1e-14, 1e-12, 1e-10];
 
 /**
  * The linear system of one iteration. HKM: dX = -X + sigma mu W - sym(X dS W) [- sym(dXp dSp W)],
@@ -48,10 +49,13 @@ export class NewtonSystem {
 	readonly #diagonal: Float64Array;
 	readonly #first: Float64Array;
 	readonly #second: Float64Array;
+	readonly #poll: () => void;
 	#border: Border | null = null;
 
-	constructor(programme: MomentProgramme) {
+	/** @param poll called at least every few milliseconds of work. */
+	constructor(programme: MomentProgramme, poll: () => void) {
 		const { size: n, unknowns: m } = programme;
+		this.#poll = poll;
 		this.#programme = programme;
 		this.#schur = new SchurComplement(programme);
 		this.#matrix = new Float64Array(m * m);
@@ -61,7 +65,8 @@ export class NewtonSystem {
 	}
 
 	/** Builds and factorises; false when the matrix is singular to working precision. */
-	prepare(state: NewtonState, poll: () => void): boolean {
+	prepare(state: NewtonState): boolean {
+		const poll = this.#poll;
 		const m = this.#programme.unknowns;
 		const weights = state.rowMultipliers.map((z, j) => z / (state.rowSlack[j] ?? 1));
 		this.#schur.build(state.x, state.w, weights, this.#matrix, poll);
@@ -79,11 +84,13 @@ export class NewtonSystem {
 	#keepCopy(): void {
 		const m = this.#programme.unknowns;
 		const tile = 32; // both triangles of a tile stay in the cache
-		for (let i0 = 0; i0 < m; i0 += tile)
+		for (let i0 = 0; i0 < m; i0 += tile) {
+			this.#poll();
 			for (let j0 = 0; j0 <= i0; j0 += tile)
 				for (let i = i0; i < Math.min(i0 + tile, m); i++)
 					for (let j = j0; j < Math.min(j0 + tile, i); j++)
 						this.#matrix[j * m + i] = this.#matrix[i * m + j] ?? 0;
+		}
 		for (let i = 0; i < m; i++) this.#diagonal[i] = this.#matrix[i * m + i] ?? 0;
 	}
 
@@ -108,7 +115,13 @@ export class NewtonSystem {
 			const vector = this.#ranked(row);
 			solved.forEach((other, b) => (matrix[a * k + b] = dot(vector, other)));
 		});
-		return factorCholesky(matrix, k) ? { solved, matrix } : null;
+		// Equalities that say the same twice make it singular.
+		for (const relative of BORDER_REGULARISATIONS) {
+			const factor = matrix.slice();
+			for (let a = 0; a < k; a++) factor[a * k + a] = (factor[a * k + a] ?? 0) * (1 + relative);
+			if (factorCholesky(factor, k)) return { solved, matrix: factor };
+		}
+		return null;
 	}
 
 	#ranked(row: SparseRow): Float64Array {
@@ -193,6 +206,7 @@ export class NewtonSystem {
 		const matrix = this.#matrix;
 		const solution = rhs.slice();
 		solveFactored(matrix, m, solution);
+		this.#poll();
 		const rest = rhs.slice();
 		for (let i = 0; i < m; i++) {
 			const row = i * m;
@@ -205,6 +219,7 @@ export class NewtonSystem {
 			}
 			rest[i] = (rest[i] ?? 0) - sum;
 		}
+		this.#poll();
 		solveFactored(matrix, m, rest);
 		for (let i = 0; i < m; i++) solution[i] = (solution[i] ?? 0) + (rest[i] ?? 0);
 		return solution;

@@ -96,7 +96,7 @@ export class SemidefiniteSolver {
 		this.#rowResidual = new Float64Array(programme.rows.length);
 		this.#rowMultipliers = new Float64Array(programme.rows.length);
 		this.#equalityMultipliers = new Float64Array(programme.equalities.length);
-		this.#newton = new NewtonSystem(programme);
+		this.#newton = new NewtonSystem(programme, () => hooks.poll());
 	}
 
 	run(options: SolverOptions): { ending: Ending; iterations: number } {
@@ -183,7 +183,7 @@ export class SemidefiniteSolver {
 			rowResidual: this.#rowResidual,
 			rowMultipliers: this.#rowMultipliers
 		};
-		if (!this.#newton.prepare(state, () => this.#hooks.poll())) return false;
+		if (!this.#newton.prepare(state)) return false;
 		const mu = this.#complementarity();
 		const predictor = this.#newton.solve(state, 0, null);
 		const primalStep = Math.min(1, this.#multiplierStep(predictor));
@@ -293,8 +293,7 @@ export class SemidefiniteSolver {
 		for (let cell = 0; cell < index.length; cell++) {
 			const moment = index[cell] ?? -1;
 			if (moment > 0)
-				matrix[cell] =
-					(matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
+				matrix[cell] = (matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
 		}
 	}
 

@@ -12,8 +12,13 @@ import type { MomentMatrix } from './moment-matrix';
 import { makeMomentProblem, type MomentProblem } from './moment-problem';
 import type { Outcome } from './outcome';
 
-/** Guaranteed gap, relative to the objective's scale, at which more iterations would be wasted. */
+/**
+ * Guaranteed gap at which more iterations would be wasted: relative to the objective's scale (its
+ * largest coefficient), but no more than LARGEST_GAP unless rounding at that scale forbids it.
+ */
 const ENOUGH_GAP = 1e-9;
+const LARGEST_GAP = 2e-9;
+const ROUNDING_GAP = 1e-10;
 /** The solver's own end, where rounding keeps the guaranteed gap from closing. */
 const SOLVER_TOLERANCE = 1e-11;
 const MOST_ITERATIONS = 80;
@@ -21,8 +26,13 @@ const MOST_ITERATIONS = 80;
 const WORTHWHILE = 0.8;
 /** How far to go from the last proved point towards an iterate that cannot be proved itself. */
 const TOWARDS_ITERATE = [1, 0.99, 0.95, 0.85, 0.7, 0.5, 0.25];
-/** Iterations without a better guaranteed gap after which it will not get better. */
+/**
+ * Iterations without such progress after which there will be none: few where rounding is the
+ * reason, more where the problem has no interior (Hardy's) and each step is short.
+ */
 const PATIENCE = 3;
+const LONG_PATIENCE = 15;
+const NEARLY = 1e-6;
 
 /**
  * Optimum of the moment-matrix relaxation for the functional g, from both sides.
@@ -46,7 +56,7 @@ export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Cont
 		upper: search.upper,
 		value: null,
 		tolerance: null,
-		optimum: search.optimum,
+		optimum: search.clippedOptimum(),
 		guaranteed: { lower: search.lower !== null, upper: true },
 		exact: null,
 		method: {
@@ -82,6 +92,7 @@ class BoundSearch {
 	readonly #deadline: number;
 	/** A power of two near the largest coefficient: the solver sees entries of about 1. */
 	readonly #scale: number;
+	readonly #target: number;
 	readonly #work: Float64Array;
 	readonly #gamma: Float64Array;
 	#multipliers: Multipliers | null = null;
@@ -98,6 +109,10 @@ class BoundSearch {
 		this.#control = control;
 		this.#deadline = deadline;
 		this.#scale = largest > 0 ? 2 ** Math.round(Math.log2(largest)) : 1;
+		this.#target = Math.max(
+			Math.min(ENOUGH_GAP * this.#scale, LARGEST_GAP),
+			ROUNDING_GAP * this.#scale
+		);
 		this.#work = new Float64Array(programme.size ** 2);
 		this.#gamma = new Float64Array(programme.size ** 2);
 	}
@@ -155,6 +170,7 @@ class BoundSearch {
 			lower: this.lower,
 			upper: Number.isFinite(this.upper) ? this.upper : null
 		});
+		this.#refuseInfeasible();
 		return this.#isEnough();
 	}
 
@@ -180,17 +196,37 @@ class BoundSearch {
 		}
 	}
 
+	/** Without a proved lower side the iterate itself stands in for it. */
 	#isEnough(): boolean {
-		const gap = this.lower === null ? Infinity : this.upper - this.lower;
-		const size = this.#scale;
-		if (gap <= ENOUGH_GAP * size) return true;
+		const gap = Math.abs(this.upper - (this.lower ?? this.optimum ?? Infinity));
+		if (gap <= this.#target) return true;
 		if (gap < WORTHWHILE * this.#bestGap) {
 			this.#idle = 0;
 			this.#bestGap = gap;
 			return false;
 		}
 		this.#idle++;
-		return Number.isFinite(gap) && gap < 1e-6 * size && this.#idle >= PATIENCE;
+		return this.#idle >= (gap < NEARLY * this.#scale ? PATIENCE : LONG_PATIENCE);
+	}
+
+	/** Every |y_i| is at most 1: an upper side below this proves that there is no feasible point. */
+	#refuseInfeasible(): void {
+		const { programme, objectiveError } = this.#problem;
+		const least = programme.objective.reduce(
+			(sum, c, i) => sum + (i === 0 ? c : -Math.abs(c)),
+			-objectiveError - 1e-9 * this.#scale
+		);
+		if (this.upper < least)
+			throw new SolverStop(
+				'infeasible',
+				'no moment matrix of this level satisfies the constraints'
+			);
+	}
+
+	/** The solver's own optimum, which rounding may put outside what is proved. */
+	clippedOptimum(): number | null {
+		if (this.optimum === null) return null;
+		return Math.min(Math.max(this.optimum, this.lower ?? -Infinity), this.upper);
 	}
 
 	certificate(): MomentCertificate | null {

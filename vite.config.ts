@@ -48,6 +48,8 @@ export default defineConfig({
 				test: {
 					name: 'component',
 					environment: 'jsdom',
+					// Unmounts what a test rendered.
+					setupFiles: ['@testing-library/svelte/vitest'],
 					include: ['src/lib/components/**/*.test.ts', 'src/lib/features/**/*.test.ts']
 				}
 			},

@@ -1,4 +1,5 @@
 import type { VerdictStatus } from '../../ledger/claim';
+import { sharedDigits, withMinusSign } from '../../ledger/figures';
 import type { RuleInput, RuleLayout, RuleStation } from '../../ledger/rule';
 import type { StationsView } from '../../schemas/views';
 
@@ -56,13 +57,41 @@ export function anchorAt(x: number): StationLabel['anchor'] {
 const middleOf = (station: RuleStation) =>
 	station.key === 'local' ? station.to : (station.from + station.to) / 2;
 
+/** The figures of the view itself, which are rounded already. */
+function figuresOf(key: RuleStation['key'], stations: StationsView): string {
+	const { quantumLower: low, quantumUpper: high } = stations;
+	switch (key) {
+		case 'local':
+			return withMinusSign(stations.local ?? '');
+		case 'almost-quantum':
+			return withMinusSign(stations.almostQuantum ?? '');
+		case 'no-signalling':
+			return withMinusSign(stations.noSignalling ?? '');
+		case 'quantum': {
+			if (low === null) return withMinusSign(`≤ ${high ?? ''}`);
+			if (high === null) return withMinusSign(`≥ ${low}`);
+			const shared = sharedDigits(low, high);
+			const enough = shared !== null && low.length - shared.length <= 2;
+			return withMinusSign(enough ? shared : `${low} … ${high}`);
+		}
+	}
+}
+
 /** One label per place: stations of the same value share it. */
-export function stationLabels({ stations }: RuleLayout): readonly StationLabel[] {
+export function stationLabels(
+	{ stations }: RuleLayout,
+	view: StationsView
+): readonly StationLabel[] {
 	const labels: { at: number; names: string[]; figures: string }[] = [];
 	for (const station of stations) {
 		const same = labels.find(({ at }) => station.coincides && Math.abs(at - station.to) < 0.05);
 		if (same) same.names.push(station.label);
-		else labels.push({ at: middleOf(station), names: [station.label], figures: station.figures });
+		else
+			labels.push({
+				at: middleOf(station),
+				names: [station.label],
+				figures: figuresOf(station.key, view)
+			});
 	}
 	return labels.map(({ at, names, figures }) => ({
 		at,

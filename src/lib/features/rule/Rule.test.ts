@@ -1,0 +1,66 @@
+import { render } from '@testing-library/svelte';
+import { describe, expect, it } from 'vitest';
+import { makeStations } from '../../../../tests/factories/views';
+import Rule from './Rule.svelte';
+
+// I3322 in probabilities: local 0 and no-signalling 1 (Collins, Gisin 2004), almost quantum
+// 0.2514709, quantum between 0.250852 and 0.250940 for this drawing.
+const i3322 = makeStations({
+	local: '0',
+	quantumLower: '0.250852',
+	quantumUpper: '0.250940',
+	almostQuantum: '0.251471',
+	noSignalling: '1'
+});
+const claimed = { low: '0.25145', high: '0.25155' };
+
+describe('Rule', () => {
+	it('says in words what it draws', () => {
+		const { getByRole } = render(Rule, { stations: i3322, claimed, printed: '0.2515' });
+		const text = getByRole('img').getAttribute('aria-label') ?? '';
+		for (const part of ['local 0', 'quantum 0.250852', 'no-signalling 1', 'Claimed 0.2515'])
+			expect(text).toContain(part);
+	});
+
+	it('joins a discrepancy to the nearest admissible value', () => {
+		const { container } = render(Rule, {
+			stations: i3322,
+			claimed,
+			printed: '0.2515',
+			status: 'discrepancy',
+			large: true
+		});
+		expect(container.querySelector('[stroke-dasharray]')).not.toBeNull();
+		expect(container.textContent).toContain('claimed 0.2515');
+	});
+
+	it('draws no such line in agreement', () => {
+		const { container } = render(Rule, {
+			stations: makeStations(),
+			claimed: { low: '2.82835', high: '2.82845' },
+			printed: '2.8284',
+			status: 'agreement',
+			large: true
+		});
+		expect(container.querySelector('[stroke-dasharray]')).toBeNull();
+	});
+
+	it('gives stations of one value one label, with the digits both sides share', () => {
+		const { container } = render(Rule, { stations: makeStations(), large: true });
+		const texts = [...container.querySelectorAll('text')].map((node) => node.textContent);
+		expect(texts).toContain('quantum, almost quantum');
+		expect(texts).toContain('2.82842712');
+	});
+
+	it('stands without any value', () => {
+		const nothing = makeStations({
+			local: null,
+			quantumLower: null,
+			quantumUpper: null,
+			almostQuantum: null,
+			noSignalling: null
+		});
+		const { getByRole } = render(Rule, { stations: nothing });
+		expect(getByRole('img').getAttribute('aria-label')).toContain('No value is known yet');
+	});
+});

@@ -1,0 +1,14 @@
+import { publicContext } from '$lib/server/auth/guards';
+import { letCache } from '$lib/server/http/cache';
+import { answering } from '$lib/server/http/page-errors';
+import { showPublicInequality } from '$lib/server/services/inequalities/show-public-inequality';
+import type { PageServerLoad } from './$types';
+
+export const load: PageServerLoad = async (event) => {
+	const normalisation = event.url.searchParams.get('as') ?? undefined;
+	const inequality = await answering(() =>
+		showPublicInequality(publicContext(event), event.params.id, normalisation)
+	);
+	letCache(event);
+	return { inequality };
+};

@@ -1,0 +1,97 @@
+import { spawnSync } from 'node:child_process';
+import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { readProblem } from './problem-input';
+import { EXIT, readJson } from './read-input';
+
+/** Starting a command takes a second alone and several on a busy machine. */
+const TIMEOUT = 60_000;
+
+let directory = '';
+beforeAll(() => {
+	directory = mkdtempSync(join(tmpdir(), 'merestone-command-'));
+});
+afterAll(() => rmSync(directory, { recursive: true, force: true }));
+
+function run(command: string, args: string[], input?: string) {
+	const script = `src/cli/${command}.ts`;
+	const { status, stdout, stderr } = spawnSync('node_modules/.bin/tsx', [script, ...args], {
+		input,
+		encoding: 'utf8',
+		timeout: TIMEOUT
+	});
+	return { status, stdout, stderr };
+}
+
+const file = (name: string, content: unknown) => {
+	const path = join(directory, name);
+	writeFileSync(path, typeof content === 'string' ? content : JSON.stringify(content));
+	return path;
+};
+
+describe('bound and verify-certificate', () => {
+	it(
+		'recompute, check, and catch a change',
+		() => {
+			const problem = { family: { name: 'chsh' }, quantity: 'npa', level: 1 };
+			const bound = run('bound', ['-'], JSON.stringify(problem));
+			expect(bound.status).toBe(0);
+			const result = JSON.parse(bound.stdout);
+			// Cirel'son, Lett. Math. Phys. 4, 93 (1980): 2 sqrt(2)
+			expect(result).toMatchObject({ format: 1, status: 'done', quantity: 'npa' });
+			expect(result.upper).toBeGreaterThanOrEqual(2 * Math.SQRT2);
+			expect(result.upper).toBeLessThan(2 * Math.SQRT2 + 1e-7);
+
+			const good = run('verify-certificate', [file('good.json', bound.stdout)]);
+			expect(good.status).toBe(0);
+			expect(JSON.parse(good.stdout)).toMatchObject({ checked: true });
+
+			const lower = { ...result, upper: 2.8, certificate: { ...result.certificate, bound: 2.8 } };
+			const bad = run('verify-certificate', [file('bad.json', lower)]);
+			expect(bad.status).toBe(1);
+			expect(JSON.parse(bad.stdout)).toMatchObject({ checked: false });
+			expect(bad.stderr).toMatch(/not checked: /);
+		},
+		TIMEOUT
+	);
+
+	it(
+		'name what is malformed on standard error, with nothing on standard output',
+		() => {
+			const path = file('malformed.json', {
+				outputs: [[2]],
+				terms: [['1/0', []]],
+				quantity: 'local'
+			});
+			const { status, stdout, stderr } = run('bound', [path]);
+			expect(status).toBe(2);
+			expect(stdout).toBe('');
+			expect(stderr).toBe('terms[0][0]: division by zero (at position 0)\n');
+		},
+		TIMEOUT
+	);
+});
+
+describe('exit codes', () => {
+	it.each<[unknown, number, RegExp]>([
+		[{ quantity: 'local' }, EXIT.malformed, /^terms: is missing/],
+		[
+			{ quantity: 'local', family: { name: 'cglmp', d: 99 } },
+			EXIT.limit,
+			/^family: d must be an integer from 2 to 12/
+		],
+		[{ quantity: 'visibility' }, EXIT.unfinished, /no solver for this quantity yet: visibility/]
+	])('%j', (json, exitCode, message) => {
+		expect(() => readProblem(json)).toThrow(message);
+		expect(() => readProblem(json)).toThrow(expect.objectContaining({ exitCode }));
+	});
+
+	it('explains its use and unreadable files', () => {
+		expect(() => readJson('usage', [])).toThrow('usage');
+		expect(() => readJson('usage', ['a', 'b'])).toThrow('usage');
+		expect(() => readJson('usage', [join(directory, 'none.json')])).toThrow(/can't be read/);
+		expect(() => readJson('usage', [file('broken.json', '{"a": ')])).toThrow(/is not JSON/);
+	});
+});

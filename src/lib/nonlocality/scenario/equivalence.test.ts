@@ -5,71 +5,18 @@ import { parseCoefficient } from '../exact/expression';
 import { ratio, type Rational } from '../exact/rational';
 import { enumerateStrategies } from '../quantities/enumerate-strategies';
 import { strategyTensor } from '../quantities/strategy-tensor';
+import {
+	randomFunctional,
+	randomRelabelling,
+	rewrittenByNoSignalling
+} from '../../../../tests/factories/random-functional';
+import { lehmer } from '../../../../tests/factories/solver-problem';
 import { affineMap, canonicalForm } from './equivalence';
 import { familyFunctional, type FamilySpec } from './families';
-import { makeFunctional, scaleFunctional, type Functional, type Term } from './functional';
+import { makeFunctional, scaleFunctional, type Functional } from './functional';
 import { functionalOfTerms } from './problem-terms';
-import { relabelFunctional, type Relabelling } from './relabelling';
+import { relabelFunctional } from './relabelling';
 import type { Event } from './scenario';
-
-/** A small linear congruential generator (Lehmer, 48271 mod 2^31 - 1): tests repeat exactly. */
-function lehmer(seed: number): (below: number) => number {
-	let state = (seed % 2147483646) + 1;
-	return (below) => {
-		state = (state * 48271) % 2147483647;
-		return state % below;
-	};
-}
-
-function shuffled(count: number, random: (below: number) => number): number[] {
-	const list = Array.from({ length: count }, (_, i) => i);
-	for (let i = count - 1; i > 0; i--) {
-		const j = random(i + 1);
-		[list[i], list[j]] = [list[j] ?? 0, list[i] ?? 0];
-	}
-	return list;
-}
-
-function randomRelabelling(f: Functional, random: (below: number) => number): Relabelling {
-	const { outputs } = f.scenario;
-	return {
-		parties: shuffled(outputs.length, random),
-		inputs: outputs.map((counts) => shuffled(counts.length, random)),
-		outputs: outputs.map((counts) => counts.map((count) => shuffled(count, random)))
-	};
-}
-
-function randomFunctional(outputs: number[][], size: number, random: (below: number) => number) {
-	let events: Event[][] = [[]];
-	outputs.forEach((counts, p) => {
-		const own = counts.flatMap((n, x) => Array.from({ length: n }, (_, a): Event => [p, x, a]));
-		events = events.flatMap((list) => [list, ...own.map((event) => [...list, event])]);
-	});
-	const terms = events.map((list) => ({
-		events: list,
-		coefficient: exactCoefficient(ratio(BigInt(random(2 * size + 1) - size)))
-	}));
-	return makeFunctional({ outputs }, terms);
-}
-
-/** Adds r * (sum_a P(a b|x y) - sum_a P(a b|x' y)), which is zero on every behaviour. */
-function rewritten(f: Functional, random: (below: number) => number): Functional {
-	const terms: Term[] = [...f.terms];
-	const counts = f.scenario.outputs[0] ?? [];
-	for (let times = 0; times < 4; times++) {
-		const other: Event = [1, 0, random(2)];
-		const weight = exactCoefficient(ratio(BigInt(random(9) - 4), 3n));
-		const pair = [random(counts.length), random(counts.length)];
-		pair.forEach((x, side) => {
-			for (let a = 0; a < (counts[x] ?? 0); a++)
-				terms.push({
-					coefficient: side === 0 ? weight : negateCoefficient(weight),
-					events: [[0, x, a], other]
-				});
-		});
-	}
-	return makeFunctional(f.scenario, terms);
-}
 
 function localMaximumOf(f: Functional): Rational {
 	const tensor = strategyTensor(f);
@@ -130,7 +77,7 @@ describe('canonical form', () => {
 				const random = lehmer(seed);
 				const f = randomFunctional(outputs, size, random);
 				const factor = exactCoefficient(ratio(BigInt(scale[0]), BigInt(scale[1])));
-				const scaled = scaleFunctional(rewritten(f, random), factor);
+				const scaled = scaleFunctional(rewrittenByNoSignalling(f, random), factor);
 				const constant = { coefficient: exactCoefficient(ratio(BigInt(shift))), events: [] };
 				const g = relabelFunctional(
 					makeFunctional(scaled.scenario, [...scaled.terms, constant]),

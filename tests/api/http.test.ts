@@ -1,0 +1,225 @@
+import { spawnSync } from 'node:child_process';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { newPerson, PASSWORD } from '../support/people';
+import { startServer, type TestServer } from '../support/server';
+import { Visitor } from '../support/visitor';
+
+let server: TestServer;
+beforeAll(async () => {
+	server = await startServer();
+});
+afterAll(() => server.stop());
+
+describe('every answer', () => {
+	it.each(['/', '/sign-in', '/sign-up', '/nothing/here', '/api/v1/nothing', '/account'])(
+		'of %s carries the headers that keep it in its place',
+		async (path) => {
+			const { headers } = await new Visitor(server).get(path);
+			expect(headers.get('x-content-type-options')).toBe('nosniff');
+			expect(headers.get('referrer-policy')).toBe('same-origin');
+			expect(headers.get('cross-origin-opener-policy')).toBe('same-origin');
+			expect(headers.get('content-security-policy')).toContain("frame-ancestors 'none'");
+			expect(headers.get('x-request-id')).toMatch(/^[0-9a-f]{8}-[0-9a-f]{4}-7/);
+			expect(headers.get('access-control-allow-origin')).toBeNull();
+		}
+	);
+
+	it('that is a page lets only scripts with its nonce run', async () => {
+		const response = await new Visitor(server).get('/sign-in');
+		const policy = response.headers.get('content-security-policy') ?? '';
+		const scripts = /script-src ([^;]*)/.exec(policy)?.[1] ?? '';
+		const nonce = /'nonce-([^']+)'/.exec(scripts)?.[1] ?? '';
+		expect(nonce.length).toBeGreaterThan(16);
+		expect(scripts).not.toContain('unsafe');
+		expect(policy).toContain("object-src 'none'");
+		expect(policy).toContain("base-uri 'none'");
+		expect(policy).toContain("form-action 'self'");
+		const page = await response.text();
+		expect(page).not.toContain('%modewatcher');
+		const tags = page.match(/<script\b[^>]*>/g) ?? [];
+		expect(tags.length).toBeGreaterThan(1);
+		for (const tag of tags) expect(tag).toContain(`nonce="${nonce}"`);
+		expect(
+			(await new Visitor(server).get('/sign-in')).headers.get('content-security-policy')
+		).not.toContain(nonce);
+	});
+
+	it('that is private is never stored, and a public one only for those who are nobody', async () => {
+		const person = await newPerson(server);
+		const caching = async (visitor: Visitor, path: string) =>
+			(await visitor.get(path)).headers.get('cache-control');
+		expect(await caching(person, '/account')).toBe('private, no-store');
+		expect(await caching(person, '/account/__data.json')).toBe('private, no-store');
+		expect(await caching(new Visitor(server), '/sign-in')).toBe('private, no-store');
+		expect(await caching(person, '/')).toBe('private, no-store');
+		const shared = await new Visitor(server).get('/');
+		expect(shared.headers.get('cache-control')).toContain('public, max-age=');
+		expect(shared.headers.get('vary')).toContain('Cookie');
+	});
+
+	it('of a page that is missing shows the error page, and nothing of the inside', async () => {
+		const response = await new Visitor(server).get('/nothing/here');
+		expect(response.status).toBe(404);
+		const page = await response.text();
+		expect(page).toContain('Not found');
+		expect(page).not.toMatch(/at \w+ \(|node_modules|\.ts:/);
+	});
+});
+
+describe('requests from other sites', () => {
+	const methods = ['POST', 'PUT', 'PATCH', 'DELETE'];
+	const types = [
+		'application/x-www-form-urlencoded',
+		'multipart/form-data; boundary=x',
+		'text/plain',
+		'application/json',
+		'application/octet-stream',
+		null
+	];
+
+	it.each(methods.flatMap((method) => types.map((type) => [method, type] as const)))(
+		'%s with %s change nothing',
+		async (method, type) => {
+			const person = new Visitor(server);
+			const foreign = { Origin: 'https://elsewhere.example', 'Sec-Fetch-Site': 'cross-site' };
+			for (const path of ['/sign-out', '/groups/new', '/api/v1/readings']) {
+				const response = await person.request(path, {
+					method,
+					headers: { ...foreign, ...(type && { 'Content-Type': type }) },
+					body: type && 'name=x'
+				});
+				expect(response.status, path).toBe(403);
+				expect(response.headers.get('content-type')).toContain('application/problem+json');
+			}
+		}
+	);
+
+	it('are refused without saying where from, and accepted from here', async () => {
+		const person = await newPerson(server);
+		const send = (headers: Record<string, string>) =>
+			fetch(`${server.address}/groups/new`, {
+				method: 'POST',
+				redirect: 'manual',
+				body: new URLSearchParams({ name: '' }),
+				headers: { ...headers, Accept: 'text/html', Cookie: `merestone=${cookie}` }
+			});
+		const cookie = person.cookies.get('merestone') ?? '';
+		expect((await send({})).status).toBe(403);
+		expect((await send({ Origin: 'null' })).status).toBe(403);
+		expect((await send({ Origin: server.origin })).status).toBe(400);
+		expect((await send({ 'Sec-Fetch-Site': 'same-origin' })).status).toBe(400);
+	});
+});
+
+describe('the API', () => {
+	it('answers what does not exist as problem details', async () => {
+		const response = await new Visitor(server).get('/api/v1/nothing');
+		expect(response.status).toBe(404);
+		expect(response.headers.get('content-type')).toBe('application/problem+json; charset=utf-8');
+		expect(await response.json()).toMatchObject({ status: 404, title: 'Not found' });
+	});
+
+	it('names the methods that would do', async () => {
+		const response = await new Visitor(server).sendJson('DELETE', '/api/v1/readings', {});
+		expect(response.status).toBe(405);
+		expect(response.headers.get('allow')).toContain('POST');
+		expect(await response.json()).toMatchObject({ status: 405 });
+	});
+});
+
+describe('over https', () => {
+	let secure: TestServer;
+	beforeAll(async () => {
+		secure = await startServer({ env: { ORIGIN: 'https://merestone.example' } });
+	});
+	afterAll(() => secure.stop());
+
+	it('the session cookie is bound to this host and kept from scripts', async () => {
+		const response = await new Visitor(secure).submit('/sign-up', {
+			name: 'Ada Fenwick',
+			email: 'ada@secure.example',
+			password: PASSWORD
+		});
+		expect(response.status).toBe(303);
+		const [cookie = '', ...others] = response.headers.getSetCookie();
+		expect(others).toEqual([]);
+		expect(cookie).toMatch(/^__Host-merestone=[\w-]{27};/);
+		const attributes = cookie.toLowerCase().split('; ').slice(1);
+		expect(attributes).toEqual(
+			expect.arrayContaining(['path=/', 'httponly', 'secure', 'samesite=lax'])
+		);
+		expect(cookie).not.toMatch(/domain/i);
+	});
+
+	it('browsers are told to stay there', async () => {
+		const { headers } = await new Visitor(secure).get('/sign-in');
+		const age = /max-age=(\d+)/.exec(headers.get('strict-transport-security') ?? '')?.[1];
+		expect(Number(age)).toBeGreaterThanOrEqual(31_536_000);
+	});
+});
+
+describe('limits on tries', () => {
+	it('make the eleventh wrong password wait, and say how long', async () => {
+		const strict = await startServer({ env: { MERESTONE_RATE_FACTOR: '1' } });
+		try {
+			await newPerson(strict, { email: 'tried@limits.example' });
+			const attempt = (password: string, headers = {}) =>
+				new Visitor(strict).submit(
+					'/sign-in',
+					{ email: 'tried@limits.example', password },
+					headers
+				);
+			for (let i = 0; i < 10; i++) {
+				expect((await attempt(`wrong password ${i}`)).status).toBe(401);
+			}
+			// A made-up address of the caller changes nothing.
+			const refused = await attempt(PASSWORD, { 'X-Forwarded-For': '192.0.2.7' });
+			expect(refused.status).toBe(429);
+			expect(await refused.text()).toContain('Try again in');
+			expect(strict.logs()).toContain('"security":"rate-limited"');
+		} finally {
+			await strict.stop();
+		}
+	});
+});
+
+describe('a bad configuration', () => {
+	it.each([
+		[{ MERESTONE_SECRET: '' }, 'MERESTONE_SECRET: expected at least 32 characters'],
+		[{ SMTP_URL: 'mail' }, 'SMTP_URL: expected an address'],
+		[{ DATABASE_URL: 'postgres://x' }, 'DATABASE_URL: expected a file']
+	])('%j stops the start with its name', (env, message) => {
+		const { status, stdout, stderr } = spawnSync(process.execPath, ['build/index.js'], {
+			env: {
+				PATH: process.env.PATH,
+				PORT: '0',
+				MERESTONE_SECRET: 'a secret of the tests, of no use elsewhere',
+				...env
+			},
+			encoding: 'utf8',
+			timeout: 20_000
+		});
+		expect(status).not.toBe(0);
+		expect(stdout + stderr).toContain(message);
+	});
+});
+
+describe('a taken port', () => {
+	it('stops the start and is named', () => {
+		const port = new URL(server.address).port;
+		const { status, stdout, stderr } = spawnSync(process.execPath, ['build/index.js'], {
+			env: {
+				PATH: process.env.PATH,
+				HOST: '127.0.0.1',
+				PORT: port,
+				DATABASE_URL: `file:${server.folder}/other.db`,
+				MERESTONE_SECRET: 'a secret of the tests, of no use elsewhere'
+			},
+			encoding: 'utf8',
+			timeout: 20_000
+		});
+		expect(status).not.toBe(0);
+		expect(stdout + stderr).toContain(port);
+		expect(stdout + stderr).toMatch(/taken|EADDRINUSE/);
+	});
+});

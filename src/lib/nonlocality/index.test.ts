@@ -1,0 +1,195 @@
+import fc from 'fast-check';
+import { beforeAll, describe, expect, it } from 'vitest';
+import { problemOn, quietControl } from '../../../tests/factories/solver-problem';
+import { exactOfDouble, parseRational, type Rational } from './exact/rational';
+import type { DoneResult, Problem, Result } from './problem';
+import { solve, verifyResult } from './index';
+import { familyFunctional, type FamilySpec } from './scenario/families';
+
+async function solved(problem: Problem): Promise<DoneResult> {
+	const result = await solve(problem, quietControl);
+	if (result.status !== 'done') throw new Error(result.reason);
+	return result;
+}
+
+/** Any JSON: what a stored file may hold. */
+type Json = null | boolean | number | string | Json[] | { [key: string]: Json };
+
+const asJson = (value: unknown): Json => JSON.parse(JSON.stringify(value));
+const asResult = (value: Json): Result => JSON.parse(JSON.stringify(value));
+
+/** Every place in a JSON value, as its path. */
+function pathsOf(value: Json, path: (string | number)[] = []): (string | number)[][] {
+	if (value === null || typeof value !== 'object') return [path];
+	const entries = Array.isArray(value) ? [...value.entries()] : Object.entries(value);
+	return [path, ...entries.flatMap(([key, inner]) => pathsOf(inner, [...path, key]))];
+}
+
+function changed(value: Json, path: readonly (string | number)[], by: (old: Json) => Json): Json {
+	const [key, ...rest] = path;
+	if (key === undefined) return by(value);
+	const inside = (list: Json[]) =>
+		list.map((inner, i) => (i === key ? changed(inner, rest, by) : inner));
+	if (Array.isArray(value)) return inside(value);
+	if (value === null || typeof value !== 'object') return value;
+	return { ...value, [key]: changed(value[key] ?? null, rest, by) };
+}
+
+const CHANGES: readonly ((old: Json) => Json)[] = [
+	() => null,
+	() => 'x',
+	() => [],
+	() => -1,
+	(old) => (typeof old === 'number' ? old + 1 : 'Infinity'),
+	(old) => (typeof old === 'number' ? old * (1 + 1e-9) : '1e400'),
+	(old) => (typeof old === 'string' ? `-${old}` : NaN),
+	(old) => (typeof old === 'string' ? old.replace(/\d/, (d) => String((Number(d) + 1) % 10)) : 0),
+	(old) => (typeof old === 'string' ? `${old}1` : '1/3')
+];
+
+/** What is proved or printed as a number must be true of the real maximum. */
+function expectTrue(outcome: ReturnType<typeof verifyResult>, result: Result, truth: Rational) {
+	if (!outcome.checked || result.status !== 'done') return;
+	for (const { lower, upper } of [outcome, result]) {
+		if (lower !== null) expect(exactOfDouble(lower).compare(truth)).toBeLessThanOrEqual(0);
+		if (upper !== null) expect(exactOfDouble(upper).compare(truth)).toBeGreaterThanOrEqual(0);
+	}
+	if (result.exact !== null) expect(parseRational(result.exact)?.equals(truth)).toBe(true);
+}
+
+// Values: Collins et al., PRL 88, 040404 (2002); Collins, Gisin, J. Phys. A 37, 1775 (2004); Almeida
+// et al., PRL 104, 230404 (2010); all from memory. I3322 at no-signalling: recomputed, unpublished.
+const CASES: readonly [FamilySpec, 'local' | 'no-signalling', string][] = [
+	[{ name: 'cglmp', d: 3 }, 'local', '2'],
+	[{ name: 'i3322' }, 'local', '0'],
+	[{ name: 'gyni', n: 3 }, 'local', '1/4'],
+	[{ name: 'i3322' }, 'no-signalling', '1'],
+	[{ name: 'gyni', n: 3 }, 'no-signalling', '1/3']
+];
+
+describe.each(CASES)('%o %s', (spec, quantity, truthText) => {
+	const truth = parseRational(truthText);
+	let result: DoneResult;
+	beforeAll(async () => {
+		const f = familyFunctional(spec);
+		result = await solved(
+			quantity === 'local' ? problemOn('local', f) : problemOn('no-signalling', f)
+		);
+	});
+
+	it('is checked, on both sides and exactly', () => {
+		expect(verifyResult(result)).toMatchObject({ checked: true, exact: truthText });
+	});
+
+	it('is checked after a round trip through JSON', () => {
+		expect(verifyResult(asResult(asJson(result)))).toMatchObject({ checked: true });
+	});
+
+	it('any change to the certificate is caught or still proves the printed bound', () => {
+		if (!truth) throw new Error('no truth');
+		const certificate = asJson(result.certificate);
+		const paths = pathsOf(certificate);
+		let caught = 0;
+		fc.assert(
+			fc.property(fc.constantFrom(...paths), fc.constantFrom(...CHANGES), (path, change) => {
+				const other = asResult({
+					...(asJson(result) as { [key: string]: Json }),
+					certificate: changed(certificate, path, change)
+				});
+				const outcome = verifyResult(other);
+				if (!outcome.checked) caught++;
+				expectTrue(outcome, other, truth);
+			}),
+			{ numRuns: 400, seed: 6 }
+		);
+		expect(caught).toBeGreaterThan(100);
+	});
+
+	it('a printed side tighter than what is proved is refused', () => {
+		const lower = { ...result, lower: (result.lower ?? 0) + 1e-6 };
+		const upper = { ...result, upper: (result.upper ?? 0) - 1e-6 };
+		const exact = { ...result, exact: `${truthText}1` };
+		const value = { ...result, value: (result.value ?? 0) + 1e-6 };
+		for (const tampered of [lower, upper, exact, value])
+			expect(verifyResult(tampered)).toMatchObject({ checked: false });
+	});
+
+	it('a looser printed side passes', () => {
+		const looser = { ...result, lower: -1000, upper: 1000 };
+		expect(verifyResult(looser)).toMatchObject({ checked: true });
+	});
+
+	it('proves nothing on another problem', () => {
+		const { problem } = result;
+		const doubled = problem.terms.map(([c, events]) => [`2*(${c})`, events] as const);
+		const moved = [...doubled, ['1', []] as const];
+		expect(verifyResult({ ...result, problem: { ...problem, terms: moved } })).toMatchObject({
+			checked: false
+		});
+		const kind = quantity === 'local' ? 'no-signalling' : 'local';
+		const otherwise = { ...result, problem: { ...problem, quantity: kind } };
+		expect(verifyResult(asResult(asJson(otherwise)))).toMatchObject({ checked: false });
+	});
+
+	it('needs its certificate', () => {
+		expect(verifyResult({ ...result, certificate: null })).toMatchObject({
+			checked: false,
+			reason: 'the result carries no certificate'
+		});
+	});
+});
+
+describe('the minimum', () => {
+	it.each(['local', 'no-signalling'] as const)(
+		'%s: sides and signs turned back',
+		async (quantity) => {
+			const f = familyFunctional({ name: 'i3322' });
+			const problem =
+				quantity === 'local'
+					? problemOn('local', f, { sense: 'min' })
+					: problemOn('no-signalling', f, { sense: 'min' });
+			const result = await solved(problem);
+			expect(verifyResult(result)).toMatchObject({
+				checked: true,
+				exact: result.exact,
+				lower: result.lower,
+				upper: result.upper
+			});
+			expect(result.value).toBeLessThan(0);
+			expect(verifyResult({ ...result, upper: (result.upper ?? 0) - 0.5 })).toMatchObject({
+				checked: false
+			});
+		}
+	);
+});
+
+it('a large enumeration proves its lower side only, and says so', async () => {
+	const matrix = Array.from({ length: 20 }, (_, x) =>
+		Array.from({ length: 20 }, (_, y) => ((x * x + 3 * x * y + y) % 5) - 2)
+	);
+	const f = familyFunctional({ name: 'xor-game', matrix });
+	const result = await solved(problemOn('local', f));
+	expect(verifyResult(result)).toMatchObject({
+		checked: true,
+		lower: result.lower,
+		upper: null,
+		exact: null,
+		method: expect.stringContaining('only the lower side is checked')
+	});
+});
+
+it('an unfinished result is not checked', () => {
+	const problem = problemOn('local', familyFunctional({ name: 'chsh' }));
+	const outcome = verifyResult({
+		format: 1,
+		status: 'limit',
+		reason: 'too large',
+		quantity: 'local',
+		method: {},
+		seconds: 0,
+		seed: 0,
+		solver: 'merestone 0.1.0',
+		problem
+	});
+	expect(outcome).toEqual({ checked: false, reason: 'the result is not done: limit' });
+});

@@ -132,6 +132,12 @@ describe('evidenceOfFinding', () => {
 		expect([e?.lower?.toFraction(), e?.upper?.toFraction()]).toEqual(['10/3', '10/3']);
 	});
 
+	it('lets an enumeration too large for the check to repeat still prove the local maximum', () => {
+		const { result } = finding(local, 2, 2, { exact: '2' });
+		const check: CheckOutcome = { checked: true, lower: 2, upper: null, exact: null, method: '' };
+		expect(sides({ result, check }, local)).toEqual([['guaranteed', 2, 2]]);
+	});
+
 	it('keeps apart problems with other constraints', () => {
 		const constrained: Problem = {
 			...quantum,
@@ -158,7 +164,7 @@ describe('othersOfFindings', () => {
 		expect(others.map((o) => [o.label, o.matchesMethod])).toEqual([
 			['the almost-quantum bound (NPA level 1+AB)', true],
 			['the macroscopic-locality bound (NPA level 1 with non-negative probabilities)', false],
-			['the best value found in local dimension 2 x 2', false]
+			['the best value found in local dimension 2', false]
 		]);
 		expect(others[0]?.fields).toEqual({ level: '1+AB', nonNegative: false });
 		expect(others.map((o) => Number(o.lower?.valueOf()).toFixed(3))).toEqual([

@@ -1,5 +1,11 @@
 import type { CheckOutcome } from '../nonlocality/certificates/types';
-import { exactOfDouble, parseRational, type Rational } from '../nonlocality/exact/rational';
+import {
+	ONE,
+	ZERO,
+	exactOfDouble,
+	parseRational,
+	type Rational
+} from '../nonlocality/exact/rational';
 import type { DoneResult, Problem } from '../nonlocality/problem';
 import type { OtherValue } from './diagnosis';
 import type { Evidence } from './enclosure';
@@ -19,6 +25,8 @@ export interface AffineMap {
 	readonly shift: Rational;
 }
 
+export const IDENTITY_MAP: AffineMap = { scale: ONE, shift: ZERO };
+
 interface Sides {
 	readonly lower: Rational | null;
 	readonly upper: Rational | null;
@@ -28,11 +36,21 @@ const NOTHING: Sides = { lower: null, upper: null };
 const ofDouble = (x: number | null) => (x === null ? null : exactOfDouble(x));
 
 /** What the check proved, in the problem's normalisation. */
-function provedSides({ check }: Finding): Sides {
+function provedSides({ result, check }: Finding): Sides {
 	if (!check?.checked) return NOTHING;
 	const exact = check.exact === null ? null : parseRational(check.exact);
 	if (exact) return { lower: exact, upper: exact };
-	return { lower: ofDouble(check.lower), upper: ofDouble(check.upper) };
+	const proved = { lower: ofDouble(check.lower), upper: ofDouble(check.upper) };
+	return result.quantity === 'local' ? withEnumeration(result, proved) : proved;
+}
+
+/** A check repeats a small enumeration only: the side of a large one rests on the solver's own. */
+function withEnumeration({ exact, lower, upper, guaranteed }: DoneResult, proved: Sides): Sides {
+	const value = exact === null ? null : parseRational(exact);
+	return {
+		lower: proved.lower ?? (guaranteed.lower ? (value ?? ofDouble(lower)) : null),
+		upper: proved.upper ?? (guaranteed.upper ? (value ?? ofDouble(upper)) : null)
+	};
 }
 
 /** What the solver says without proof: sides it does not guarantee, or a value with its tolerance. */
@@ -102,9 +120,19 @@ function outerLabelOf({ result }: Finding): string {
 const SEARCH_TOLERANCE = exactOfDouble(1e-7);
 
 /**
- * The values of other quantities of the same functional, for the diagnosis. A see-saw's best value
- * stands for the maximum in its dimension, and is labelled as found, not as proved.
+ * A recomputation's own value as something a claim may have meant. A see-saw's best value stands for
+ * the maximum in its dimension, and is labelled as found, not as proved.
  */
+export function valueOfFinding(
+	finding: Finding,
+	map: AffineMap
+): Omit<OtherValue, 'matchesMethod'> {
+	const { problem } = finding.result;
+	const sides = mapSides(valueSides(finding), map);
+	return { label: valueLabel(problem), ...fieldsOf(problem), ...sides };
+}
+
+/** The values of other quantities of the same functional, for the diagnosis. */
 export function othersOfFindings(
 	findings: readonly Finding[],
 	claimed: Problem,
@@ -113,14 +141,24 @@ export function othersOfFindings(
 ): readonly OtherValue[] {
 	return findings
 		.filter(({ result }) => !sameQuantity(result.problem, claimed))
-		.map((finding) => {
-			const { problem } = finding.result;
-			const { quantity, fields } = fieldsOf(problem);
-			const sides = mapSides(valueSides(finding), map);
-			const matchesMethod = methodMatches(method, problem);
-			return { label: valueLabel(problem), quantity, fields, ...sides, matchesMethod };
-		})
+		.map((finding) => ({
+			...valueOfFinding(finding, map),
+			matchesMethod: methodMatches(method, finding.result.problem)
+		}))
 		.filter(({ lower, upper }) => lower !== null && upper !== null);
+}
+
+/** The proved exact value of a quantity among the findings, in the problem's normalisation. */
+export function exactValueOf(
+	findings: readonly Finding[],
+	quantity: Problem['quantity']
+): Rational | null {
+	for (const finding of findings) {
+		if (finding.result.quantity !== quantity) continue;
+		const { lower, upper } = provedSides(finding);
+		if (lower && upper?.equals(lower)) return lower;
+	}
+	return null;
 }
 
 function valueSides(finding: Finding): Sides {

@@ -23,6 +23,11 @@ export function isAlmostQuantum(level: Level): boolean {
 	);
 }
 
+/** `2`, or `2 x 3` where the parties differ. */
+function dimensionName(dimension: readonly number[]): string {
+	return new Set(dimension).size === 1 ? String(dimension[0]) : dimension.join(' x ');
+}
+
 const extremum = (problem: Problem) => (problem.sense === 'max' ? 'maximum' : 'minimum');
 
 /** What a problem's value is, for "the paper meant ...". */
@@ -38,8 +43,8 @@ export function valueLabel(problem: Problem): string {
 			return `the quantum ${extremum(problem)}`;
 		case 'see-saw':
 			return problem.state === 'maximally-entangled'
-				? `the best value found with a maximally entangled state of local dimension ${problem.dimension.join(' x ')}`
-				: `the best value found in local dimension ${problem.dimension.join(' x ')}`;
+				? `the best value found with a maximally entangled state of local dimension ${dimensionName(problem.dimension)}`
+				: `the best value found in local dimension ${dimensionName(problem.dimension)}`;
 		case 'npa': {
 			const { level, nonNegative } = problem;
 			if (isAlmostQuantum(level)) return `the almost-quantum bound (${npaName(level)})`;
@@ -62,7 +67,7 @@ export function innerLabel(problem: Problem): string {
 		case 'npa':
 			return `a feasible moment matrix of ${npaName(problem.level)}`;
 		case 'see-saw':
-			return `an explicit quantum strategy in dimension ${problem.dimension.join(' x ')}`;
+			return `an explicit quantum strategy in dimension ${dimensionName(problem.dimension)}`;
 		case 'quantum':
 			return 'an explicit quantum strategy';
 		case 'value':

@@ -7,12 +7,8 @@ import { StatedValueError, readStatedValue } from './stated-value';
 const r = (text: string): Rational => parseRational(text) ?? expect.fail(`${text} is no rational`);
 
 /** The forms and readings that the ledger's rules name, with the interval each stands for. */
-const CASES: readonly (readonly [
-	printed: string,
-	low: string,
-	high: string,
-	choice?: ReadingChoice
-])[] = [
+type Case = [printed: string, low: string, high: string, choice?: ReadingChoice];
+const CASES: Case[] = [
 	['0.2509', '0.25085', '0.25095'],
 	['0.25090', '0.250895', '0.250905'],
 	['2.8284', '2.82835', '2.82845'],
@@ -77,7 +73,7 @@ const CASES: readonly (readonly [
 ];
 
 describe('readStatedValue', () => {
-	it.each(CASES)('reads %s as %s to %s', (printed, low, high, choice) => {
+	it.each<Case>(CASES)('reads %s as %s to %s', (printed, low, high, choice) => {
 		const read = readStatedValue(printed, choice ?? 'as-printed');
 		expect([read.low.toFraction(), read.high.toFraction()]).toEqual([
 			r(low).toFraction(),

@@ -1,0 +1,60 @@
+/** `check-claim CLAIM.json`: recomputes one claim and judges it as the ledger does. */
+import { deriveVerdict, type Verdict } from '../lib/ledger/verdict';
+import { StatedValueError, readStatedValue, type StatedValue } from '../lib/ledger/stated-value';
+import { parseClaimJson, type ClaimJson } from '../lib/schemas/claim-json';
+import { ProblemError, UnsolvedQuantityError, parseProblem } from '../lib/schemas/problem';
+import { printableComputation, printableVerdict } from './claim-report';
+import { judgeClaim } from './judge-claim';
+import { exitCodeOf, readProblem } from './problem-input';
+import { consoleControl } from './progress';
+import { CommandError, EXIT, printJson, readJson, runCommand } from './read-input';
+
+const USAGE = 'usage: npm run --silent check-claim -- CLAIM.json   (- for standard input)';
+
+await runCommand(async () => {
+	const claim = readClaim(readJson(USAGE));
+	const reading = readValue(claim);
+	if (isUnsolved(claim)) {
+		printJson(printableVerdict(withoutSolver(claim, reading)));
+		return EXIT.unfinished;
+	}
+	const judged = await judgeClaim(claim, reading, readProblem(claim.problem), consoleControl());
+	printJson({ ...printableVerdict(judged.verdict), ...printableComputation(judged) });
+	return exitCodeOf(judged.result);
+});
+
+function readClaim(json: unknown): ClaimJson {
+	try {
+		return parseClaimJson(json);
+	} catch (error) {
+		if (error instanceof ProblemError) throw new CommandError(EXIT.malformed, error.message);
+		throw error;
+	}
+}
+
+function readValue({ printed, reading }: ClaimJson): StatedValue {
+	try {
+		return readStatedValue(printed, reading);
+	} catch (error) {
+		if (!(error instanceof StatedValueError)) throw error;
+		throw new CommandError(
+			EXIT.malformed,
+			`value (at position ${error.position}): ${error.message}`
+		);
+	}
+}
+
+/** A quantity no solver serves is a legal claim: it is Open. */
+function isUnsolved({ problem }: ClaimJson): boolean {
+	try {
+		parseProblem(problem);
+		return false;
+	} catch (error) {
+		return error instanceof UnsolvedQuantityError;
+	}
+}
+
+function withoutSolver({ relation }: ClaimJson, reading: StatedValue): Verdict {
+	const recomputation = { kind: 'no-solver' } as const;
+	return { ...deriveVerdict({ reading, relation, evidence: [], recomputation }), diagnosis: [] };
+}

@@ -1,0 +1,97 @@
+import { diagnose, type Diagnosis, type OtherValue } from '../lib/ledger/diagnosis';
+import {
+	IDENTITY_MAP,
+	evidenceOfFinding,
+	exactValueOf,
+	othersOfFindings,
+	valueOfFinding,
+	type Finding
+} from '../lib/ledger/evidence';
+import { judge, type RecomputationState } from '../lib/ledger/judgement';
+import { knownNormalisations } from '../lib/ledger/normalisations';
+import { valueLabel } from '../lib/ledger/problem-labels';
+import type { StatedValue } from '../lib/ledger/stated-value';
+import { deriveVerdict, type Verdict } from '../lib/ledger/verdict';
+import { solve, verifyResult, type Control, type Problem, type Result } from '../lib/nonlocality';
+import { parseProblem } from '../lib/schemas/problem';
+import type { ClaimJson } from '../lib/schemas/claim-json';
+import { claimStations } from './claim-stations';
+import { knownFamily } from './known-family';
+
+export interface JudgedClaim {
+	readonly verdict: Verdict;
+	readonly result: Result;
+	/** The other quantities that were compared with. */
+	readonly others: readonly OtherValue[];
+}
+
+/** Recomputes a claim's quantity and judges it as the ledger does; on a doubt, with the stations. */
+export async function judgeClaim(
+	claim: ClaimJson,
+	reading: StatedValue,
+	problem: Problem,
+	control: Control
+): Promise<JudgedClaim> {
+	const result = await solve(problem, control);
+	const findings = checked(result);
+	const state: RecomputationState =
+		result.status === 'done' ? { kind: 'done' } : { kind: 'failed', why: result.reason };
+	const quantity = valueLabel(problem).replace(/^the /, '');
+	const input = () => ({
+		reading,
+		relation: claim.relation,
+		evidence: findings.flatMap((finding) => evidenceOfFinding(finding, problem, IDENTITY_MAP)),
+		recomputation: state,
+		quantity
+	});
+	if (judge(input()).status === 'agreement')
+		return { verdict: { ...deriveVerdict(input()), diagnosis: [] }, result, others: [] };
+
+	for (const station of claimStations(problem))
+		findings.push(...checked(await solve(station, control)));
+	const others = othersOfFindings(findings, problem, IDENTITY_MAP, claim.method);
+	const { status, reasonCode, enclosure } = judge(input());
+	const diagnosis: Diagnosis[] = diagnose({
+		reading,
+		relation: claim.relation,
+		quantity: problem.quantity,
+		status,
+		reasonCode,
+		enclosure,
+		others,
+		normalisations: knownNormalisations({
+			...knownFamily(problem),
+			outputs: problem.outputs,
+			localMaximum: exactValueOf(findings, 'local')
+		}),
+		indexBaseAlternative:
+			status === 'discrepancy' ? await otherIndexBase(claim, problem, control) : null
+	});
+	return { verdict: { ...deriveVerdict(input()), diagnosis }, result, others };
+}
+
+/** A finished result with its check; nothing for one that did not finish. */
+function checked(result: Result): Finding[] {
+	return result.status === 'done' ? [{ result, check: verifyResult(result) }] : [];
+}
+
+/** The claimed quantity of the expression read with the other index base, where it can be. */
+async function otherIndexBase(
+	{ problem: written }: ClaimJson,
+	claimed: Problem,
+	control: Control
+): Promise<OtherValue | null> {
+	if (!('expression' in written) || 'outputs' in written) return null;
+	const base = 'indexBase' in written && written.indexBase === 1 ? 0 : 1;
+	let problem: Problem;
+	try {
+		problem = parseProblem({ ...written, indexBase: base });
+	} catch {
+		return null; // the expression has no meaning with the other base
+	}
+	if (JSON.stringify(problem.terms) === JSON.stringify(claimed.terms)) return null;
+	const [finding] = checked(await solve(problem, control));
+	if (!finding) return null;
+	const label = `counted from ${base}, ${valueLabel(problem)}`;
+	return { ...valueOfFinding(finding, IDENTITY_MAP), label, matchesMethod: false };
+}

@@ -1,33 +1,8 @@
-import { factorCholesky, invertFactor, inverseFromFactor } from '../linalg/cholesky';
-import { addScaled, dot, largestMagnitude } from '../linalg/dense';
-import {
-	addInnerProducts,
-	addRows,
-	countCells,
-	evaluateRow,
-	fillMoments,
-	type MomentProgramme
-} from './moment-programme';
+import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
+import type { MomentProgramme } from './moment-programme';
 import { NewtonSystem, type Direction } from './newton-system';
-import { largestStep } from './step-length';
 
-/** A primal point y with Gamma(y) > 0 and a multiplier; arrays are the solver's own, copy to keep. */
-export interface Iterate {
-	readonly iteration: number;
-	/** y[0] = 1. */
-	readonly moments: Float64Array;
-	/** X > 0, symmetric row-major. */
-	readonly multiplier: Float64Array;
-	/** z >= 0, one per row. */
-	readonly rowMultipliers: Float64Array;
-	/** Free, one per equality. */
-	readonly equalityMultipliers: Float64Array;
-	/** Objective at y, and the value the multiplier would prove were it exactly feasible. */
-	readonly primal: number;
-	readonly dual: number;
-	/** Largest |c_i + <F_i, X> + ...|. */
-	readonly residual: number;
-}
+export type { Iterate } from './interior-point';
 
 export interface SolverHooks {
 	/** Called at least every few milliseconds of work; stops the solver by throwing. */
@@ -45,65 +20,41 @@ export interface SolverOptions {
 }
 
 /** Fraction of the way to the boundary that a step takes. */
-const STEP_FRACTION = 0.95;
-/** Below this step in both variables rounding has won. */
-const SMALLEST_STEP = 1e-6;
-const BACKTRACK = 0.8;
+const STEP_FRACTION = 0.97;
+/** Smallest centring: below it the corrector's second-order terms are noise. */
+const LEAST_CENTRING = 1e-6;
+/** Further corrections, each far cheaper than a new factorisation, while steps stay short ... */
+const MOST_CORRECTIONS = 2;
+const LONG_STEPS = 0.95;
+/** ... and the product of the two steps grows by this factor. */
+const WORTHWHILE = 1.02;
 
 /**
- * Primal-dual interior-point method: the HKM direction with Mehrotra's predictor and corrector,
- * started from a strictly feasible y (rows may start infeasible) and X = Gamma(y)^-1.
- * The multiplier is projected back on its linear equalities after every step where that keeps it
- * positive, which the disjoint supports make an average over cells.
+ * Primal-dual interior-point method: the HKM direction with Mehrotra's predictor and corrector (the
+ * corrector repeated where that lengthens the steps), started from a strictly feasible y (rows may
+ * start infeasible) and X = Gamma(y)^-1. The multiplier is kept on its linear equalities by
+ * projection, which the disjoint supports make an average over cells.
  * Helmberg, Rendl, Vanderbei, Wolkowicz, SIAM J. Optim. 6, 342 (1996); Mehrotra's corrector as in
  * Fujisawa, Kojima, Nakata, Yamashita, SDPA manual (2002).
  * The objective should be scaled to entries of about 1.
  */
 export class SemidefiniteSolver {
-	readonly #programme: MomentProgramme;
 	readonly #hooks: SolverHooks;
-	readonly #n: number;
-	readonly #cells: Int32Array;
-	readonly #y: Float64Array;
-	readonly #x: Float64Array;
-	readonly #s: Float64Array;
-	readonly #w: Float64Array;
-	readonly #factor: Float64Array;
-	readonly #inverseS: Float64Array;
-	readonly #inverseX: Float64Array;
-	readonly #rowSlack: Float64Array;
-	readonly #rowResidual: Float64Array;
-	readonly #rowMultipliers: Float64Array;
-	readonly #equalityMultipliers: Float64Array;
+	readonly #point: InteriorPoint;
 	readonly #newton: NewtonSystem;
 
 	/** @param start moments with Gamma > 0, `start[0] = 1`. */
 	constructor(programme: MomentProgramme, start: Float64Array, hooks: SolverHooks) {
-		const n = programme.size;
-		const square = () => new Float64Array(n * n);
-		this.#programme = programme;
 		this.#hooks = hooks;
-		this.#n = n;
-		this.#cells = countCells(programme);
-		this.#y = start.slice();
-		this.#x = square();
-		this.#s = square();
-		this.#w = square();
-		this.#factor = square();
-		this.#inverseS = square();
-		this.#inverseX = square();
-		this.#rowSlack = new Float64Array(programme.rows.length);
-		this.#rowResidual = new Float64Array(programme.rows.length);
-		this.#rowMultipliers = new Float64Array(programme.rows.length);
-		this.#equalityMultipliers = new Float64Array(programme.equalities.length);
+		this.#point = new InteriorPoint(programme, start);
 		this.#newton = new NewtonSystem(programme, () => hooks.poll());
 	}
 
 	run(options: SolverOptions): { ending: Ending; iterations: number } {
-		if (!this.#begin()) return { ending: 'stalled', iterations: 0 };
+		if (!this.#point.begin()) return { ending: 'stalled', iterations: 0 };
 		for (let iteration = 0; ; iteration++) {
 			this.#hooks.poll();
-			const iterate = this.#measure(iteration);
+			const iterate = this.#point.measure(iteration);
 			if (this.#hooks.visit(iterate)) return { ending: 'accepted', iterations: iteration };
 			const scale = 1 + Math.abs(iterate.primal);
 			if (
@@ -117,205 +68,51 @@ export class SemidefiniteSolver {
 		}
 	}
 
-	/** S from the start, X = S^-1, so that X S is the identity: a centred start. */
-	#begin(): boolean {
-		const n = this.#n;
-		fillMoments(this.#programme, this.#y, this.#s);
-		if (!this.#factorSlack()) return false;
-		this.#x.set(this.#w);
-		this.#factor.set(this.#x);
-		if (!factorCholesky(this.#factor, n)) return false;
-		invertFactor(this.#factor, n, this.#inverseX);
-		this.#programme.rows.forEach((row, j) => {
-			const value = evaluateRow(row, this.#y);
-			const slack = Math.max(value, 0.1);
-			this.#rowSlack[j] = slack;
-			this.#rowResidual[j] = value - slack;
-			this.#rowMultipliers[j] = 1 / slack;
-		});
-		return true;
-	}
-
-	/** Cholesky of S, its inverse factor and W = S^-1. */
-	#factorSlack(): boolean {
-		this.#factor.set(this.#s);
-		if (!factorCholesky(this.#factor, this.#n)) return false;
-		invertFactor(this.#factor, this.#n, this.#inverseS);
-		inverseFromFactor(this.#inverseS, this.#n, this.#w);
-		return true;
-	}
-
-	/** c_i + <F_i, X> + rows + equalities, entry 0 the dual objective. */
-	#dualResiduals(): Float64Array {
-		const { objective, rows, equalities } = this.#programme;
-		const residuals = objective.slice();
-		addInnerProducts(this.#programme, this.#x, 1, residuals);
-		addRows(rows, this.#rowMultipliers, 1, residuals);
-		addRows(equalities, this.#equalityMultipliers, 1, residuals);
-		return residuals;
-	}
-
-	#measure(iteration: number): Iterate {
-		const residuals = this.#dualResiduals();
-		return {
-			iteration,
-			moments: this.#y,
-			multiplier: this.#x,
-			rowMultipliers: this.#rowMultipliers,
-			equalityMultipliers: this.#equalityMultipliers,
-			primal: dot(this.#programme.objective, this.#y),
-			dual: residuals[0] ?? 0,
-			residual: largestMagnitude(residuals.subarray(1))
-		};
-	}
-
-	#complementarity(): number {
-		const products = dot(this.#x, this.#s) + dot(this.#rowMultipliers, this.#rowSlack);
-		return products / (this.#n + this.#rowSlack.length);
-	}
-
 	#advance(): boolean {
-		const state = {
-			y: this.#y,
-			x: this.#x,
-			w: this.#w,
-			rowSlack: this.#rowSlack,
-			rowResidual: this.#rowResidual,
-			rowMultipliers: this.#rowMultipliers
-		};
-		if (!this.#newton.prepare(state)) return false;
-		const mu = this.#complementarity();
-		const predictor = this.#newton.solve(state, 0, null);
-		const primalStep = Math.min(1, this.#multiplierStep(predictor));
-		const dualStep = Math.min(1, this.#slackStep(predictor));
-		const ahead = this.#complementarityAfter(predictor, primalStep, dualStep);
-		const ratio = Math.max(0, ahead / mu);
-		const power = Math.max(1, 3 * Math.min(primalStep, dualStep) ** 2);
-		const centring = Math.min(1, Math.max(1e-6, ratio ** power));
-		const direction = this.#newton.solve(state, centring * mu, predictor);
-		return this.#take(direction);
-	}
-
-	#multiplierStep(direction: Direction): number {
-		let step = largestStep(this.#inverseX, direction.dx, this.#n);
-		this.#rowMultipliers.forEach((z, j) => {
-			const dz = direction.rowMultipliers[j] ?? 0;
-			if (dz < 0) step = Math.min(step, -z / dz);
-		});
-		return step;
-	}
-
-	#slackStep(direction: Direction): number {
-		let step = largestStep(this.#inverseS, direction.ds, this.#n);
-		this.#rowSlack.forEach((s, j) => {
-			const ds = direction.rowSlack[j] ?? 0;
-			if (ds < 0) step = Math.min(step, -s / ds);
-		});
-		return step;
-	}
-
-	#complementarityAfter(direction: Direction, primalStep: number, dualStep: number): number {
-		const { dx, ds } = direction;
-		let sum =
-			dot(this.#x, this.#s) +
-			primalStep * dot(dx, this.#s) +
-			dualStep * dot(this.#x, ds) +
-			primalStep * dualStep * dot(dx, ds);
-		this.#rowSlack.forEach((s, j) => {
-			sum +=
-				(s + dualStep * (direction.rowSlack[j] ?? 0)) *
-				((this.#rowMultipliers[j] ?? 0) + primalStep * (direction.rowMultipliers[j] ?? 0));
-		});
-		return sum / (this.#n + this.#rowSlack.length);
-	}
-
-	#take(direction: Direction): boolean {
-		this.#projectDirection(direction);
-		const primalStep = Math.min(1, STEP_FRACTION * this.#multiplierStep(direction));
-		const dualStep = Math.min(1, STEP_FRACTION * this.#slackStep(direction));
-		const movedX = this.#moveMultiplier(direction, primalStep);
-		const movedY = this.#moveMoments(direction, dualStep);
+		const point = this.#point;
+		if (!this.#newton.prepare(point)) return false;
+		const predictor = this.#newton.solve(point, 0, null);
+		const target = this.#centring(predictor) * point.complementarity();
+		let direction = this.#newton.solve(point, target, predictor);
+		let steps = this.#steps(direction);
+		for (let extra = 0; extra < MOST_CORRECTIONS && product(steps) < LONG_STEPS; extra++) {
+			const next = this.#newton.solve(point, target, direction);
+			const nextSteps = this.#steps(next);
+			if (product(nextSteps) < WORTHWHILE * product(steps)) break;
+			direction = next;
+			steps = nextSteps;
+		}
+		point.projectDirection(direction);
+		steps = this.#steps(direction);
+		const movedX = point.moveMultiplier(direction, steps.multiplier);
+		const movedY = point.moveMoments(direction, steps.moments);
 		return movedX > SMALLEST_STEP || movedY > SMALLEST_STEP;
 	}
 
-	/** Returns the step taken; 0 leaves everything as it was. */
-	#moveMultiplier(direction: Direction, wanted: number): number {
-		const n = this.#n;
-		const before = this.#x.slice();
-		const rowsBefore = this.#rowMultipliers.slice();
-		const equalitiesBefore = this.#equalityMultipliers.slice();
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
-			this.#x.set(before);
-			addScaled(this.#x, step, direction.dx);
-			this.#rowMultipliers.set(rowsBefore);
-			addScaled(this.#rowMultipliers, step, direction.rowMultipliers);
-			equalitiesBefore.forEach((old, k) => {
-				this.#equalityMultipliers[k] = old + step * ((direction.equalityMultipliers[k] ?? 0) - old);
-			});
-			const unprojected = this.#x.slice();
-			this.#project();
-			this.#factor.set(this.#x);
-			if (!factorCholesky(this.#factor, n)) {
-				this.#x.set(unprojected);
-				this.#factor.set(unprojected);
-				if (!factorCholesky(this.#factor, n)) continue;
-			}
-			invertFactor(this.#factor, n, this.#inverseX);
-			return step;
-		}
-		this.#x.set(before);
-		this.#rowMultipliers.set(rowsBefore);
-		this.#equalityMultipliers.set(equalitiesBefore);
-		return 0;
+	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
+	#centring(predictor: Direction): number {
+		const point = this.#point;
+		const multiplierStep = Math.min(1, point.multiplierStep(predictor));
+		const momentStep = Math.min(1, point.slackStep(predictor));
+		const ahead = point.complementarityAfter(predictor, multiplierStep, momentStep);
+		const ratio = Math.max(0, ahead / point.complementarity());
+		const power = Math.max(1, 3 * Math.min(multiplierStep, momentStep) ** 2);
+		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
 	}
 
-	/**
-	 * Takes the rounding errors of the linear solve out of dX, so that a full step would meet the
-	 * equalities: near the end they are larger than X's smallest eigenvalues.
-	 */
-	#projectDirection(direction: Direction): void {
-		const { equalities, rows } = this.#programme;
-		const residuals = this.#dualResiduals();
-		addInnerProducts(this.#programme, direction.dx, 1, residuals);
-		addRows(rows, direction.rowMultipliers, 1, residuals);
-		addRows(equalities, direction.equalityMultipliers, 1, residuals);
-		addRows(equalities, this.#equalityMultipliers, -1, residuals);
-		this.#subtractAverages(direction.dx, residuals);
+	#steps(direction: Direction): Steps {
+		return {
+			multiplier: Math.min(1, STEP_FRACTION * this.#point.multiplierStep(direction)),
+			moments: Math.min(1, STEP_FRACTION * this.#point.slackStep(direction))
+		};
 	}
+}
 
-	/** Moves X to the nearest matrix that meets the linear equalities. */
-	#project(): void {
-		this.#subtractAverages(this.#x, this.#dualResiduals());
-	}
+interface Steps {
+	readonly multiplier: number;
+	readonly moments: number;
+}
 
-	#subtractAverages(matrix: Float64Array, residuals: Float64Array): void {
-		const { index } = this.#programme;
-		for (let cell = 0; cell < index.length; cell++) {
-			const moment = index[cell] ?? -1;
-			if (moment > 0)
-				matrix[cell] = (matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
-		}
-	}
-
-	#moveMoments(direction: Direction, wanted: number): number {
-		const before = this.#y.slice();
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
-			this.#y.set(before);
-			addScaled(this.#y, step, direction.dy);
-			fillMoments(this.#programme, this.#y, this.#s);
-			const slacks = this.#programme.rows.map(
-				(row, j) => evaluateRow(row, this.#y) - (1 - step) * (this.#rowResidual[j] ?? 0)
-			);
-			if (slacks.some((slack) => !(slack > 0)) || !this.#factorSlack()) continue;
-			slacks.forEach((slack, j) => {
-				this.#rowSlack[j] = slack;
-				this.#rowResidual[j] = (1 - step) * (this.#rowResidual[j] ?? 0);
-			});
-			return step;
-		}
-		this.#y.set(before);
-		fillMoments(this.#programme, this.#y, this.#s);
-		this.#factorSlack();
-		return 0;
-	}
+function product(steps: Steps): number {
+	return steps.multiplier * steps.moments;
 }

@@ -4,7 +4,7 @@ import { PATIENT, npaProblem } from '../../../../tests/factories/npa-problem';
 import { checkMomentCertificate } from '../certificates/check-moments';
 import { exactCoefficient } from '../exact/coefficient';
 import { ratio } from '../exact/rational';
-import { SolverStop, type Level, type ProblemOf } from '../problem';
+import { SolverStop, type Level, type ProblemConstraint, type ProblemOf } from '../problem';
 import { familyFunctional } from '../scenario/families';
 import { makeFunctional, scaleFunctional, type Functional } from '../scenario/functional';
 import { functionalToMaximise } from '../scenario/problem-functional';
@@ -166,6 +166,94 @@ describe('the answer moves as it must', () => {
 		const { lower, upper } = value(constant, 1);
 		close(lower, 1 / 3);
 		close(upper, 1 / 3);
+	});
+});
+
+describe('constraints on the behaviour', () => {
+	const chsh = { name: 'chsh' };
+	const marginal: ProblemConstraint['terms'] = [['1', [[0, 0, 0]]]];
+	const hardy: ProblemConstraint[] = (
+		[
+			[0, 1, 0],
+			[1, 0, 1],
+			[1, 1, 2]
+		] as const
+	).map(([x, y, which]) => ({
+		terms: [
+			[
+				'1',
+				[
+					[0, x, which === 1 ? 1 : 0],
+					[1, y, which === 0 ? 1 : 0]
+				]
+			]
+		],
+		relation: '=',
+		value: '0'
+	}));
+
+	test("Hardy's paradox, which has no strictly feasible point", () => {
+		// (5 sqrt(5) - 11) / 2 in any dimension: Rabelo, Law, Scarani, Phys. Rev. Lett. 109, 180401
+		// (2012), arXiv:1205.3280; from memory.
+		const both = makeFunctional(
+			{
+				outputs: [
+					[2, 2],
+					[2, 2]
+				]
+			},
+			[
+				{
+					coefficient: exactCoefficient(ratio(1n)),
+					events: [
+						[0, 0, 0],
+						[1, 0, 0]
+					]
+				}
+			]
+		);
+		const problem = npaProblem(both, '1+AB', { constraints: hardy });
+		const outcome = npaBound(problem, functionalToMaximise(problem), PATIENT);
+		const value = (5 * Math.sqrt(5) - 11) / 2;
+		expect(outcome.upper).toBeGreaterThan(value);
+		expect(outcome.upper).toBeLessThan(value + 2e-5);
+		expect(outcome.lower).toBe(null);
+		expect(outcome.guaranteed).toEqual({ lower: false, upper: true });
+		expect(String(outcome.method['equalities'])).toMatch(/no lower side/);
+		expect(solveChecked(problem).upper).toBe(outcome.upper);
+	});
+	test.each([
+		['<=', '1/4'],
+		['>=', '3/4']
+	] as const)('P(0|0) %s %s: CHSH is sqrt(7)', (relation, value) => {
+		// With marginal m the largest CHSH is sqrt(8 - 4 m^2), the dual of the tilted inequality's
+		// sqrt(8 + 2 alpha^2) (Acin, Massar, Pironio 2012); m = 1/2 here.
+		const problem = npaProblem(chsh, '1+AB', {
+			constraints: [{ terms: marginal, relation, value }]
+		});
+		const { lower, upper } = solveChecked(problem);
+		expect(upper).toBeGreaterThan(Math.sqrt(7));
+		expect(lower).toBeLessThan(Math.sqrt(7));
+		expect(upper - lower).toBeLessThan(1e-8);
+	});
+	test('an equality, and the same one twice', () => {
+		const once: ProblemConstraint = { terms: marginal, relation: '=', value: '1/4' };
+		const twice: ProblemConstraint = { ...once, terms: [['2', [[0, 0, 0]]]], value: '1/2' };
+		for (const constraints of [[once], [once, twice]]) {
+			const { upper } = solveChecked(npaProblem(chsh, '1+AB', { constraints }));
+			expect(upper).toBeGreaterThan(Math.sqrt(7));
+			expect(upper).toBeLessThan(Math.sqrt(7) + 1e-6);
+		}
+	});
+	test.each([['>='], ['=']] as const)('P(0|0) %s 1.1 leaves nothing', (relation) => {
+		const constraints: ProblemConstraint[] = [{ terms: marginal, relation, value: '1.1' }];
+		expect(() => solveChecked(npaProblem(chsh, '1+AB', { constraints }))).toThrow(
+			/satisfies the constraints/
+		);
+	});
+	test('one that says nothing on the behaviour is refused', () => {
+		const constraints: ProblemConstraint[] = [{ terms: [['1', []]], relation: '<=', value: '2' }];
+		expect(() => solveChecked(npaProblem(chsh, 1, { constraints }))).toThrow(/constraint 0/);
 	});
 });
 

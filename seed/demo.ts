@@ -14,6 +14,7 @@ const SEEDED = `${FOLDER}/seeded`;
 /** What the build is made of. */
 const SOURCES = ['src', 'static', 'svelte.config.js', 'vite.config.ts', 'package-lock.json'];
 
+const node = process.execPath;
 const port = Number(process.env.PORT ?? 3000);
 const origin = process.env.ORIGIN ?? `http://localhost:${port}`;
 const environment = {
@@ -31,14 +32,14 @@ function newest(path: string): number {
 	return Math.max(0, ...readdirSync(path).map((name) => newest(join(path, name))));
 }
 
-function run(what: string, command: string, args: readonly string[]): void {
+/** Runs a step; a quiet one shows what it printed only when it fails. */
+function run(what: string, args: readonly string[], quiet: boolean): void {
 	console.log(what);
-	const done = spawnSync(command, args, {
-		stdio: ['ignore', 'inherit', 'inherit'],
-		env: environment
-	});
+	const output = quiet ? 'pipe' : 'inherit';
+	const done = spawnSync(node, args, { stdio: ['ignore', output, output], env: environment });
 	if (done.status !== 0) {
-		console.error(`That failed (${command} ${args.join(' ')}).`);
+		if (quiet) console.error(String(done.stdout), String(done.stderr));
+		console.error(`That failed (node ${args.join(' ')}).`);
 		process.exit(done.status ?? 1);
 	}
 }
@@ -63,23 +64,17 @@ if (!(await portIsFree())) {
 }
 if (process.argv.includes('--fresh')) rmSync(FOLDER, { recursive: true, force: true });
 
-const node = process.execPath;
 const built = 'build/index.js';
 if (!existsSync(built) || statSync(built).mtimeMs < Math.max(...SOURCES.map(newest))) {
-	run('Building (about half a minute) ...', node, [
-		'node_modules/vite/bin/vite.js',
-		'build',
-		'--logLevel',
-		'warn'
-	]);
+	run('Building (about half a minute) ...', ['node_modules/vite/bin/vite.js', 'build'], true);
 }
 if (!existsSync(SEEDED)) {
 	rmSync(FOLDER, { recursive: true, force: true });
-	run('Seeding: the solvers recompute the demo group’s claims ...', node, [
-		'node_modules/tsx/dist/cli.mjs',
-		'seed/seed.ts',
-		SEEDED
-	]);
+	run(
+		'Seeding: the solvers recompute the demo group’s claims (about a minute) ...',
+		['node_modules/tsx/dist/cli.mjs', 'seed/seed.ts', SEEDED],
+		false
+	);
 }
 
 const server = spawn(node, ['build'], {

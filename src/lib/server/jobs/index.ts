@@ -90,7 +90,7 @@ async function warmUp(db: Database): Promise<void> {
 async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promise<void> }> {
 	const { smtpUrl, mailFrom, origin, demo, databaseUrl } = config();
 	let url = smtpUrl;
-	let closeSink = async () => undefined as void;
+	let closeSink = (): Promise<void> => Promise.resolve();
 	if (!url && demo) {
 		// The demo keeps the mail it would send, beside its database.
 		const file = resolve(databaseUrl.replace(/^file:/, ''));

@@ -75,7 +75,10 @@ async function read(id: string, raw: Buffer): Promise<CaughtMailView> {
 		id,
 		at: (parsed.date ?? new Date(0)).toISOString(),
 		from: parsed.from?.text ?? '',
-		to: recipients.map(({ text }) => text).join(', '),
+		to: recipients
+			.flatMap(({ value }) => value)
+			.map(({ name, address }) => (name ? `${name} <${address ?? ''}>` : (address ?? '')))
+			.join(', '),
 		subject: parsed.subject ?? '',
 		text: parsed.text ?? ''
 	};

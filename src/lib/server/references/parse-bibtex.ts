@@ -84,7 +84,8 @@ function finish(text: string, entry: CslEntry, formatted: string): BibtexReading
 		const at = text.indexOf(givenDoi);
 		return wrong(`“${givenDoi.slice(0, 80)}” is not a DOI.`, at >= 0 ? at : null);
 	}
-	const { _graph, ...csl } = entry;
+	// How Citation.js came by it is no part of the entry.
+	const csl = Object.fromEntries(Object.entries(entry).filter(([key]) => key !== '_graph'));
 	return {
 		ok: true,
 		reference: {

@@ -25,7 +25,7 @@ export async function readClaim(
 	ctx: GroupContext,
 	partial: Partial<ClaimInput>
 ): Promise<ReadingView> {
-	const input = parseInput(claimInput, partial);
+	const { input, issues } = parseWhatFits(partial);
 	const read = await readClaimInput(ctx, input);
 	const { subject, place, stated, paper } = read;
 	const functional = subject?.functional ?? null;
@@ -41,8 +41,24 @@ export async function readClaim(
 		valueRange: stated && rangeOf(stated),
 		recomputedBy: describeRecomputation(input, read),
 		reference: paper && (paper.kind === 'known' ? paper.formatted : paper.parsed.formatted),
-		issues: typedIssues(input, read)
+		issues: [...issues, ...typedIssues(input, read)]
 	};
+}
+
+/** A field that the schema refuses is named and left out, so that the rest is still read. */
+function parseWhatFits(partial: Partial<ClaimInput>): {
+	input: ClaimInput;
+	issues: readonly FieldIssue[];
+} {
+	const parsed = claimInput.safeParse(partial);
+	if (parsed.success) return { input: parsed.data, issues: [] };
+	const issues = parsed.error.issues.map(({ path, message }) => ({
+		field: String(path[0] ?? ''),
+		message
+	}));
+	const refused = new Set(issues.map(({ field }) => field));
+	const rest = Object.entries(partial).filter(([field]) => !refused.has(field));
+	return { input: parseInput(claimInput, Object.fromEntries(rest)), issues };
 }
 
 const rangeOf = ({ low, high }: StatedValue) => ({

@@ -193,3 +193,13 @@ it('an unfinished result is not checked', () => {
 	});
 	expect(outcome).toEqual({ checked: false, reason: 'the result is not done: limit' });
 });
+
+it('the README names the whole public surface, quantities and certificate kinds', async () => {
+	const surface = await import('./index');
+	const readme = (await import('./README.md?raw')).default;
+	for (const name of Object.keys(surface)) expect(readme).toContain(`\`${name}`);
+	const kinds = ['deterministic-strategy', 'linear-programme', 'npa-dual', 'quantum-strategy'];
+	for (const kind of [...kinds, 'enclosure']) expect(readme).toContain(`### \`${kind}\`\n`);
+	for (const quantity of ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'])
+		expect(readme).toContain(`### \`${quantity}\`: `);
+});

@@ -1,0 +1,198 @@
+import { ROLES, type Role } from '../../src/lib/ledger/roles';
+import type { MatrixWorld } from '../support/matrix-world';
+
+export const EVERYONE = ['anonymous', 'outsider', ...ROLES] as const;
+export type Who = (typeof EVERYONE)[number];
+
+type Answers = Readonly<Record<Who, number>>;
+
+export interface MatrixRow {
+	/** The route's folder below src/routes without groups: `/g/[slug]/members`. */
+	readonly route: string;
+	/** `GET`, another method of an endpoint, or the name of a page's action. */
+	readonly door: string;
+	readonly path: (world: MatrixWorld) => string;
+	readonly fields?: Readonly<Record<string, string>>;
+	readonly json?: (world: MatrixWorld) => unknown;
+	readonly answers: Answers;
+}
+
+const at = (path: string) => (world: MatrixWorld) =>
+	path.replace('[slug]', world.slug).replace('[number]', String(world.number));
+
+/** From a role on `ok`; a visitor gets `signIn`, members of other groups 404, lower roles 403. */
+function members(from: Role, ok: number, signIn: number): Answers {
+	const needed = ROLES.indexOf(from);
+	const roles = ROLES.map((role, i) => [role, i >= needed ? ok : 403] as const);
+	return { anonymous: signIn, outsider: 404, ...Object.fromEntries(roles) } as Answers;
+}
+
+const same = (status: number): Answers => ({
+	anonymous: status,
+	outsider: status,
+	observer: status,
+	member: status,
+	maintainer: status,
+	owner: status
+});
+
+const page = (from: Role, ok = 200) => members(from, ok, 303);
+const action = (from: Role, ok = 200) => members(from, ok, 401);
+const signedIn = (visitor: number, ok: number): Answers => ({ ...same(ok), anonymous: visitor });
+
+const claim = '/g/[slug]/claims/[number]';
+const apiGroup = '/api/v1/groups/[slug]/claims';
+const apiClaim = `${apiGroup}/[number]`;
+const run = '/api/v1/recomputations/[id]';
+
+function doors(
+	route: string,
+	entries: Readonly<Record<string, Answers>>,
+	more: Partial<MatrixRow> = {}
+): MatrixRow[] {
+	return Object.entries(entries).map(([door, answers]) => ({
+		route,
+		door,
+		path: at(route),
+		answers,
+		...more
+	}));
+}
+
+/** A new page, action or endpoint needs its row here; authorisation.test.ts fails without. */
+export const MATRIX: readonly MatrixRow[] = [
+	// For everyone.
+	...doors('/', { GET: same(200) }),
+	...doors('/method', { GET: same(200) }),
+	...doors('/demo/mail', { GET: same(404) }),
+	...doors('/claims/[id]', { GET: same(200) }, { path: (w) => `/claims/${w.publicClaimId}` }),
+	...doors('/claims/[id]', { GET: same(404) }, { path: (w) => `/claims/${w.claimId}` }),
+	...doors(
+		'/inequalities/[id]',
+		{ GET: same(200) },
+		{ path: (w) => `/inequalities/${w.publicInequalityId}` }
+	),
+	...doors(
+		'/inequalities/[id]',
+		{ GET: same(404) },
+		{ path: (w) => `/inequalities/${w.inequalityId}` }
+	),
+
+	// Accounts.
+	...doors('/sign-in', { GET: signedIn(200, 303), default: signedIn(400, 303) }),
+	...doors('/sign-up', { GET: signedIn(200, 303), default: signedIn(400, 303) }),
+	...doors('/account', {
+		GET: signedIn(303, 200),
+		password: signedIn(401, 400),
+		end: signedIn(401, 404),
+		endOthers: signedIn(401, 200)
+	}),
+	...doors('/groups/new', { GET: signedIn(303, 200), default: signedIn(401, 400) }),
+	...doors('/join/[token]', { GET: same(200) }, { path: (w) => w.link }),
+	// Joining itself is in groups.test.ts; here it would make a member of the outsider.
+	...doors('/join/[token]', { default: signedIn(401, 404) }, { path: () => '/join/unknown' }),
+
+	// A group.
+	...doors('/g/[slug]', { GET: page('observer') }),
+	...doors('/g/[slug]/members', { GET: page('observer') }),
+	...doors('/g/[slug]/members', { invite: action('maintainer') }, { fields: { role: 'observer' } }),
+	...doors('/g/[slug]/members', { revoke: action('maintainer', 404) }, { fields: { id: 'none' } }),
+	...doors(
+		'/g/[slug]/members',
+		{ role: action('owner', 404) },
+		{ fields: { user: 'nobody', role: 'member' } }
+	),
+	...doors(
+		'/g/[slug]/members',
+		{ remove: { ...action('owner', 404) } },
+		{ fields: { user: 'nobody' } }
+	),
+	...doors('/g/[slug]/inequalities', { GET: page('observer') }),
+	...doors(
+		'/g/[slug]/inequalities/[id]',
+		{ GET: page('observer') },
+		{ path: (w) => `/g/${w.slug}/inequalities/${w.inequalityId}` }
+	),
+	...doors('/g/[slug]/references', { GET: page('observer') }),
+	...doors(
+		'/g/[slug]/references/[id]',
+		{ GET: page('observer') },
+		{ path: (w) => `/g/${w.slug}/references/${w.referenceId}` }
+	),
+
+	// Claims. The member entered it, so that what is one's own to do is the member's too.
+	...doors('/g/[slug]/claims/new', {
+		GET: page('member'),
+		enter: action('member', 400),
+		signIn: members('member', 400, 400)
+	}),
+	...doors(`${claim}/edit`, {
+		GET: page('member'),
+		save: action('member', 400),
+		signIn: members('member', 400, 400)
+	}),
+	...doors(claim, {
+		GET: page('observer'),
+		recompute: action('member'),
+		withdraw: action('member'),
+		restore: action('member'),
+		propose: action('member'),
+		publish: action('maintainer'),
+		unpublish: action('maintainer')
+	}),
+	...doors(claim, { supersede: action('member', 404) }, { fields: { by: '999' } }),
+	...doors(claim, { cancel: action('observer', 404) }, { fields: { id: 'none' } }),
+	...doors(claim, { recheck: action('observer', 404) }, { fields: { id: 'none' } }),
+
+	// The API.
+	...doors('/api/v1/bounds', { GET: same(200) }),
+	...doors(
+		'/api/v1/claims/[id]',
+		{ GET: same(200) },
+		{ path: (w) => `/api/v1/claims/${w.publicClaimId}` }
+	),
+	...doors(
+		'/api/v1/claims/[id]',
+		{ GET: same(404) },
+		{ path: (w) => `/api/v1/claims/${w.claimId}` }
+	),
+	...doors(
+		'/api/v1/readings',
+		{ POST: action('observer') },
+		{ path: () => '/api/v1/readings', json: (w) => ({ group: w.slug }) }
+	),
+	...doors(
+		'/api/v1/inequalities',
+		{ GET: action('observer') },
+		{ path: (w) => `/api/v1/inequalities?group=${w.slug}` }
+	),
+	...doors(apiGroup, { GET: action('observer') }),
+	...doors(apiGroup, { POST: action('member', 400) }, { json: () => ({ printed: 'no number' }) }),
+	...doors(apiClaim, { GET: action('observer') }),
+	...doors(`${apiClaim}/progress`, { GET: action('observer') }),
+	...doors(`${apiClaim}/events`, { GET: action('observer') }),
+	...doors(`${apiClaim}/recomputations`, { POST: action('member', 202) }),
+	...['', '/result', '/check'].flatMap((part) => {
+		const door = part === '/check' ? 'POST' : 'GET';
+		const path = (id: string) => `/api/v1/recomputations/${id}${part}`;
+		return [
+			...doors(run + part, { [door]: same(200) }, { path: (w) => path(w.publicRecomputationId) }),
+			...doors(
+				run + part,
+				{ [door]: { ...same(200), anonymous: 404, outsider: 404 } },
+				{ path: (w) => path(w.recomputationId) }
+			)
+		];
+	}),
+	// Neither run is a semidefinite programme.
+	...doors(
+		`${run}/sdpa`,
+		{ GET: same(404) },
+		{ path: (w) => `/api/v1/recomputations/${w.recomputationId}/sdpa` }
+	),
+	...doors(
+		run,
+		{ DELETE: members('member', 409, 401) },
+		{ path: (w) => `/api/v1/recomputations/${w.recomputationId}?group=${w.slug}` }
+	)
+];

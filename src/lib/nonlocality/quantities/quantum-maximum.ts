@@ -6,6 +6,7 @@ import type { Outcome } from './outcome';
 import { QuantumEnclosure } from './quantum-enclosure';
 import { dimensionsToTry, levelsToTry, predictSeconds } from './quantum-plan';
 import { partyDimensions, searchStrategies } from './see-saw';
+import { StrategyGrowth } from './see-saw-growth';
 
 /** Share of the time left that one relaxation may take, so that both sides get their turn. */
 const LEVEL_SHARE = 0.75;
@@ -19,6 +20,8 @@ const FIRST_STARTS = 6;
 const SEARCH_SHARE = 0.5;
 /** A level predicted to be this cheap (s) is tried at once. */
 const CHEAP_LEVEL = 0.1;
+/** Growing begins when no level is left and each small dimension had this many starts. */
+const STARTS_BEFORE_GROWTH = 20;
 /** A dimension visited with this many starts in all has shown what random starts can reach. */
 const MOST_STARTS = 400;
 
@@ -65,6 +68,7 @@ class Escalation {
 	readonly #levels: Level[];
 	readonly #visits: Visit[];
 	readonly #levelsDone: Record<string, unknown>[] = [];
+	readonly #growth: StrategyGrowth | null;
 	#local: Record<string, unknown> = {};
 
 	constructor(problem: ProblemOf<'quantum'>, g: Functional, control: Control) {
@@ -73,6 +77,10 @@ class Escalation {
 		this.#control = control;
 		this.#begin = control.now();
 		this.#levels = [...levelsToTry(problem)];
+		this.#growth =
+			problem.dimensions === null && StrategyGrowth.suits(g)
+				? new StrategyGrowth(g, problem.seed)
+				: null;
 		this.#visits = dimensionsToTry(problem).map((dimension) => ({
 			dimension,
 			starts: 0,
@@ -89,7 +97,8 @@ class Escalation {
 		if (first && !this.#closed) this.#visit(first, this.#left / 4);
 		while (!this.#closed && this.#left > 0) {
 			const next = this.#secondsOfNextLevel();
-			const more = this.#search(next === null ? this.#left : this.#slice(next));
+			const more =
+				next === null ? this.#searchToTheEnd() : this.#search(this.#slice(next), MOST_STARTS);
 			if (this.#closed) break;
 			const tried = this.#tryLevel();
 			if (!more && !tried) break;
@@ -177,11 +186,25 @@ class Escalation {
 		);
 	}
 
+	#searchToTheEnd(): boolean {
+		if (!this.#growth) return this.#search(this.#left, MOST_STARTS);
+		this.#search(this.#left / 2, STARTS_BEFORE_GROWTH);
+		if (!this.#closed && this.#left > 0) this.#grow(this.#growth);
+		return true;
+	}
+
+	#grow(growth: StrategyGrowth): void {
+		const known = this.#enclosure.lower ?? -Infinity;
+		const enough = (this.#enclosure.upper ?? Infinity) - this.#problem.gap / 2;
+		const certificate = growth.run(this.#left, known, this.#passingOn(), enough);
+		if (certificate) this.#enclosure.raise(certificate.value, certificate);
+	}
+
 	/** See-saw for some seconds, least visited dimension first; false when none is left to visit. */
-	#search(seconds: number): boolean {
+	#search(seconds: number, mostStarts: number): boolean {
 		const end = this.#control.now() + 1000 * seconds;
 		for (;;) {
-			const open = this.#visits.filter((visit) => visit.starts < MOST_STARTS);
+			const open = this.#visits.filter((visit) => visit.starts < mostStarts);
 			const [visit] = open.sort(
 				(a, b) => a.seconds + a.starts * 0.001 - b.seconds - b.starts * 0.001
 			);
@@ -275,6 +298,9 @@ class Escalation {
 				lowerFrom,
 				upperLevel,
 				...this.#local,
+				...(this.#growth?.dimension && {
+					grown: { dimension: this.#growth.dimension, tries: this.#growth.tries }
+				}),
 				levels: this.#levelsDone,
 				dimensions: this.#visits
 					.filter(({ starts }) => starts > 0)

@@ -26,6 +26,8 @@ export interface ClimbOptions {
 	readonly random: SeededRandom;
 	/** The best value known: a climb that will not reach it is given up. */
 	readonly best: number;
+	/** Gain of an iteration, as a share of the scale, at which the climb ends (default 1e-15). */
+	readonly tolerance?: number;
 	/** Called at least every 100 ms; throws to stop the climb where it is. */
 	readonly poll: () => void;
 }
@@ -46,7 +48,7 @@ export interface Climb {
 export function climb(
 	functional: SeeSawFunctional,
 	strategy: SeeSawStrategy,
-	{ moveState, random, best, poll }: ClimbOptions
+	{ moveState, random, best, poll, tolerance = CONVERGED }: ClimbOptions
 ): Climb {
 	const stateStep = (from = strategy.state) =>
 		moveState
@@ -66,7 +68,7 @@ export function climb(
 		value = next;
 		if (iteration > PATIENCE && value + (OPTIMISM * gain * pace) / (1 - pace) < best)
 			return { value, iterations: iteration, converged: false };
-		if (gain > CONVERGED * functional.scale) continue;
+		if (gain > tolerance * functional.scale) continue;
 		// The Krylov space of an eigenvector is closed: only a fresh vector can show a higher one.
 		if (restarted || !moveState) {
 			cleanBases(strategy);

@@ -15,8 +15,11 @@ import { applyToFactor } from '../linalg/tensor-factors';
 import type { BellNode, Letter, SeeSawFunctional } from './see-saw-functional';
 import type { SeeSawStrategy } from './see-saw-strategy';
 
-/** Krylov dimension: exact for two qutrits and fewer; a warm start needs no more beyond. */
+/** Krylov dimension: exact for two qutrits and fewer. */
 const KRYLOV = 10;
+/** A large state starts from the last one and is moved often: a few steps are worth their time. */
+const KRYLOV_LARGE = 5;
+const LARGE = 64;
 /** Below this share of the operator's scale the Krylov space has closed. */
 const CLOSED = 1e-13;
 
@@ -88,7 +91,8 @@ export function improveState(
 	from: ComplexArray = strategy.state
 ): number {
 	const { state, real } = strategy;
-	const size = Math.min(KRYLOV, state.re.length);
+	const length = state.re.length;
+	const size = Math.min(length > LARGE ? KRYLOV_LARGE : KRYLOV, length);
 	const basis: ComplexArray[] = [];
 	const images = new Float64Array(size * size);
 	let next = copyComplex(from);

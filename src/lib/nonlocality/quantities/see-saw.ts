@@ -3,6 +3,7 @@ import { seededRandom } from '../linalg/seeded-random';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
 import type { Outcome } from './outcome';
+import { BudgetSpent, pollWithin } from './search-budget';
 import { climb } from './see-saw-climb';
 import { fixedState } from './see-saw-fixed-state';
 import { arrangeForSeeSaw } from './see-saw-functional';
@@ -40,8 +41,6 @@ export interface SearchResult {
 	readonly targetReached: boolean;
 }
 
-class BudgetSpent extends Error {}
-
 /**
  * Best of many alternating maximisations from seeded random strategies, real and complex in turn.
  * Any number of parties. Null when the budget ended before the first step.
@@ -61,11 +60,7 @@ export function searchStrategies(
 		);
 	const functional = arrangeForSeeSaw(g);
 	const given = fixedState(search.state, dimensions);
-	const end = control.now() + 1000 * search.seconds;
-	const poll = () => {
-		if (control.shouldStop()) throw new SolverStop('cancelled', 'stopped on request');
-		if (control.now() > end) throw new BudgetSpent();
-	};
+	const poll = pollWithin(control, search.seconds);
 	let best: Omit<
 		SearchResult,
 		'certificate' | 'startsDone' | 'targetReached' | 'iterations'

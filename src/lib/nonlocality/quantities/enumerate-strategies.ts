@@ -72,45 +72,70 @@ class DoubleEnumeration extends Enumeration {
 	#value = -Infinity;
 
 	run(): BestStrategy {
-		this.#descend(0, Float64Array.from(this.tensor.entries, Number));
+		const rows = Float64Array.from(this.tensor.entries, Number);
+		const [first] = this.parties;
+		if (this.parties.length === 1 && first) this.#consider(first, rows);
+		else this.#descend(0, rows);
 		return { value: BigInt(this.#value), digits: this.best };
 	}
 
 	#descend(level: number, rows: Float64Array): void {
 		const party = this.parties[level];
 		if (!party) return;
-		if (level === this.parties.length - 1) return this.#reply(party, rows);
+		const innermost = level === this.parties.length - 2;
+		const last = this.parties[level + 1];
 		const width = rows.length / party.size;
 		const current = rows.slice(0, width);
 		const code = this.startCode(level);
 		do {
 			if (code.changed >= 0) {
-				const old = rowOf(party, code.changed, code.before) * width;
-				const now = rowOf(party, code.changed, code.digits[code.changed] ?? 0) * width;
-				if (old >= 0)
-					for (let k = 0; k < width; k++) current[k] = at(current, k) - at(rows, old + k);
-				if (now >= 0)
-					for (let k = 0; k < width; k++) current[k] = at(current, k) + at(rows, now + k);
+				const old = rowOf(party, code.changed, code.before);
+				const now = rowOf(party, code.changed, code.digits[code.changed] ?? 0);
+				if (old >= 0) subtractRow(current, rows, old * width);
+				if (now >= 0) addRow(current, rows, now * width);
 			}
-			this.#descend(level + 1, current);
+			if (innermost && last) this.#consider(last, current);
+			else this.#descend(level + 1, current);
 		} while (code.step());
 	}
 
-	#reply(party: TensorParty, row: Float64Array): void {
+	#consider(last: TensorParty, row: Float64Array): void {
 		this.countStep();
-		const { starts, outputs } = party;
-		let value = at(row, 0);
-		for (let i = 0; i < starts.length; i++) {
-			const start = starts[i] ?? 0;
-			const end = start + (outputs[i] ?? 2) - 1;
-			let most = 0; // the last output
-			for (let k = start; k < end; k++) if (at(row, k) > most) most = at(row, k);
-			value += most;
-		}
+		const value = last.binary ? binaryValue(row) : replyValue(row, last.starts, last.size);
 		if (value <= this.#value) return;
 		this.#value = value;
-		this.keep(bestReply(party, (k) => at(row, k)));
+		this.keep(bestReply(last, (k) => at(row, k)));
 	}
+}
+
+function addRow(into: Float64Array, rows: Float64Array, offset: number): void {
+	for (let k = 0; k < into.length; k++) into[k] = at(into, k) + at(rows, offset + k);
+}
+
+function subtractRow(into: Float64Array, rows: Float64Array, offset: number): void {
+	for (let k = 0; k < into.length; k++) into[k] = at(into, k) - at(rows, offset + k);
+}
+
+/** Value of the best reply when every input has two outputs: one coordinate each. */
+function binaryValue(row: Float64Array): number {
+	let value = at(row, 0);
+	for (let k = 1; k < row.length; k++) {
+		const weight = at(row, k);
+		value += weight > 0 ? weight : 0;
+	}
+	return value;
+}
+
+/** Per input the largest coordinate, or 0 for the last output. */
+function replyValue(row: Float64Array, starts: readonly number[], size: number): number {
+	let value = at(row, 0);
+	for (let i = 0; i < starts.length; i++) {
+		const end = starts[i + 1] ?? size;
+		let most = 0;
+		for (let k = starts[i] ?? 0; k < end; k++) if (at(row, k) > most) most = at(row, k);
+		value += most;
+	}
+	return value;
 }
 
 /** The same for integers beyond 2^53. */

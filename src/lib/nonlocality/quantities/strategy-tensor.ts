@@ -15,6 +15,8 @@ export interface TensorParty {
 	readonly size: number;
 	/** Product of the outputs. */
 	readonly strategies: number;
+	/** True when all listed inputs have two outputs. */
+	readonly binary: boolean;
 }
 
 /** A functional as a dense integer tensor, Collins-Gisin coordinates, first party slowest. */
@@ -88,5 +90,6 @@ function tensorParty(party: number, counts: readonly number[], used: Set<string>
 		return start;
 	});
 	const strategies = outputs.reduce((product, count) => product * count, 1);
-	return { party, inputs, outputs, starts, size, strategies };
+	const binary = outputs.every((count) => count === 2);
+	return { party, inputs, outputs, starts, size, strategies, binary };
 }

@@ -161,12 +161,14 @@ export interface ClaimView {
 	readonly caution: boolean;
 	readonly enteredBy: string;
 	readonly enteredAt: string;
+	/** The viewer entered it. */
+	readonly own: boolean;
 }
 
 /** A public claim: nothing of who entered it, of notes, or of the group's other data. */
 export type PublicClaimView = Omit<
 	ClaimView,
-	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number'
+	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number' | 'own'
 >;
 
 /** What a page that watches a claim polls or streams; the page reloads its data when it changes. */
@@ -219,6 +221,10 @@ export interface NormalisationView {
 export interface InequalityView extends InequalityRow {
 	readonly digest: string;
 	readonly latex: string;
+	/** The formula of its representative, typeset; null when it can't be. */
+	readonly formulaHtml: string | null;
+	/** `outputs[party][input]`. */
+	readonly outputs: readonly (readonly number[])[];
 	/** Collins-Gisin table of a two-party inequality, exact entries as text. */
 	readonly collinsGisin: readonly (readonly string[])[] | null;
 	readonly normalisation: NormalisationView;

@@ -39,14 +39,14 @@ export function progressWords(progress: ProgressView): string {
 	return { done: 'done', failed: 'failed', cancelled: 'cancelled' }[progress.state];
 }
 
-/** What a recomputation found, as one line: `= 2`, `≤ 0.2509`, `0.2508 … 0.2510`. */
-export function resultWords(run: RecomputationView): string | null {
-	if (run.exact !== null) return `= ${run.exact}`;
-	if (run.lower !== null && run.upper !== null)
-		return run.lower === run.upper ? `= ${run.lower}` : `${run.lower} … ${run.upper}`;
-	if (run.upper !== null) return `≤ ${run.upper}`;
-	if (run.lower !== null) return `≥ ${run.lower}`;
-	return null;
+/** What a recomputation found, a line a side: `= 2`, or `≥ 0.2508` and `≤ 0.2510`. */
+export function resultLines(run: RecomputationView): readonly string[] {
+	if (run.exact !== null) return [`= ${run.exact}`];
+	if (run.lower !== null && run.lower === run.upper) return [`= ${run.lower}`];
+	return [
+		...(run.lower === null ? [] : [`≥ ${run.lower}`]),
+		...(run.upper === null ? [] : [`≤ ${run.upper}`])
+	];
 }
 
 /** The address of a DOI or an arXiv identifier. */

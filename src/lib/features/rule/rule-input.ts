@@ -1,7 +1,8 @@
 import type { VerdictStatus } from '../../ledger/claim';
-import { sharedDigits, withMinusSign } from '../../ledger/figures';
+import { withMinusSign } from '../../ledger/figures';
 import type { RuleInput, RuleLayout, RuleStation } from '../../ledger/rule';
 import type { StationsView } from '../../schemas/views';
+import { shownBetween } from '../digits/shown-between';
 
 const number = (text: string | null | undefined): number | null => {
 	if (text == null || text === '') return null;
@@ -67,15 +68,13 @@ function figuresOf(key: RuleStation['key'], stations: StationsView): string {
 			return withMinusSign(stations.almostQuantum ?? '');
 		case 'no-signalling':
 			return withMinusSign(stations.noSignalling ?? '');
-		case 'quantum': {
-			if (low === null) return withMinusSign(`≤ ${high ?? ''}`);
-			if (high === null) return withMinusSign(`≥ ${low}`);
-			const shared = sharedDigits(low, high);
-			const enough = shared !== null && low.length - shared.length <= 2;
-			return withMinusSign(enough ? shared : `${low} … ${high}`);
-		}
+		case 'quantum':
+			return withMinusSign(shownBetween(low, high) ?? '');
 	}
 }
+
+/** Labels nearer than this would lie on one another. */
+const TOO_CLOSE = 0.03;
 
 /** One label per place: stations of the same value share it. */
 export function stationLabels(
@@ -84,7 +83,7 @@ export function stationLabels(
 ): readonly StationLabel[] {
 	const labels: { at: number; names: string[]; figures: string }[] = [];
 	for (const station of stations) {
-		const same = labels.find(({ at }) => station.coincides && Math.abs(at - station.to) < 0.05);
+		const same = labels.find(({ at }) => Math.abs(at - station.to) < TOO_CLOSE);
 		if (same) same.names.push(station.label);
 		else
 			labels.push({

@@ -14,7 +14,11 @@ import type { ClaimRow } from './find-claim';
 import { claimHistory } from './history';
 
 /** The whole page of one claim, in the normalisation it was entered in. */
-export async function claimView(read: Reader, claim: ClaimRow, now: Date): Promise<ClaimView> {
+export async function claimView(
+	read: Reader,
+	claim: ClaimRow,
+	now: Date
+): Promise<Omit<ClaimView, 'own'>> {
 	const [joined] = await read
 		.select({
 			group: { slug: groups.slug, name: groups.name },

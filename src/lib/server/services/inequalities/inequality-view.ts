@@ -3,6 +3,7 @@ import { collinsGisinTableOf } from './collins-gisin-table';
 import type { InequalityView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, recomputations } from '../../db/schema';
+import { typeset } from '../../math/typeset';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
 import { recomputationViews } from '../recomputations/recomputation-view';
 import { IDENTITY_TEXT, readMap } from './affine';
@@ -48,6 +49,8 @@ export async function inequalityView(
 		claims: selected.length,
 		digest: row.digest,
 		latex: row.latex,
+		formulaHtml: row.latex ? typeset(row.latex, true) : null,
+		outputs: row.outputs,
 		collinsGisin: collinsGisinTableOf(row, chosen.map),
 		normalisation: { key: chosen.key, label: chosen.label },
 		normalisations: choices.map(({ key, label }) => ({ key, label })),

@@ -20,7 +20,7 @@ export const load: PageServerLoad = async (event) => {
 	event.depends('merestone:claim');
 	const number = claimNumber(event.params.number);
 	const claim = await answering(() => showClaim(ctx, number));
-	return { claim, role: ctx.role, me: ctx.actor.name };
+	return { claim, role: ctx.role };
 };
 
 /** Guards, does it, and answers with the sentence that says so. */

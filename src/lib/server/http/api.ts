@@ -45,16 +45,17 @@ export async function readJson<T extends z.ZodType>(
 	return parseInput(schema, body);
 }
 
+/** A body past the limit is read to its end but not kept: an answer to half a request gets lost. */
 async function readText(request: Request, limit: number): Promise<string> {
-	const tooLarge = () =>
-		new ServiceError('too-large', `The body has more than ${limit.toLocaleString('en')} bytes.`);
-	if (Number(request.headers.get('content-length') ?? 0) > limit) throw tooLarge();
 	const chunks: Uint8Array[] = [];
 	let length = 0;
 	for await (const chunk of request.body ?? []) {
 		length += chunk.byteLength;
-		if (length > limit) throw tooLarge();
-		chunks.push(chunk);
+		if (length <= limit) chunks.push(chunk);
+	}
+	if (length > limit) {
+		const bytes = limit.toLocaleString('en');
+		throw new ServiceError('too-large', `The body has more than ${bytes} bytes.`);
 	}
 	return new TextDecoder().decode(Buffer.concat(chunks));
 }

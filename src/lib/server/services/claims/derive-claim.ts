@@ -1,4 +1,4 @@
-import { and, eq, isNotNull, or } from 'drizzle-orm';
+import { and, eq, inArray, isNotNull, or } from 'drizzle-orm';
 import { mailWorthy, type Verdict } from '../../../ledger/verdict';
 import type { Transaction } from '../../db/client';
 import { claims, recomputations, verdicts } from '../../db/schema';
@@ -10,6 +10,7 @@ import {
 } from '../../mail/queue-mail';
 import { recordAudit } from '../audit';
 import { stationsDone } from '../inequalities/stations-view';
+import { findingsCache, type FindingsOf } from './findings';
 import { judgeClaim, type JudgedClaim } from './judge-claim';
 
 /** The product itself, in the audit. */
@@ -22,7 +23,7 @@ const product = (now: Date) => ({ actor: null, requestId: 'derived', now: () => 
  */
 export async function deriveClaim(tx: Transaction, id: string, now: Date): Promise<void> {
 	const [claim] = await tx.select().from(claims).where(eq(claims.id, id));
-	if (claim) await derive(tx, claim, now);
+	if (claim) await derive(tx, claim, now, findingsCache(tx));
 }
 
 /**
@@ -37,20 +38,21 @@ export async function deriveTouchedClaims(
 	{ ownOnly = false } = {}
 ): Promise<void> {
 	const [row] = await tx
-		.select({ inequalityId: recomputations.inequalityId })
+		.select({ inequalityId: recomputations.inequalityId, station: recomputations.station })
 		.from(recomputations)
 		.where(eq(recomputations.id, recomputationId));
 	if (!row) return;
 	const own = eq(claims.recomputationId, recomputationId);
+	const onIt = row.inequalityId === null ? undefined : eq(claims.inequalityId, row.inequalityId);
+	// A station speaks to every group; what a claim asked for only to the groups that asked.
+	const asking = tx.select({ id: claims.groupId }).from(claims).where(own);
+	const heard = row.station === null ? and(onIt, inArray(claims.groupId, asking)) : onIt;
 	const touched = await tx
 		.select()
 		.from(claims)
-		.where(
-			row.inequalityId === null || ownOnly
-				? own
-				: or(own, eq(claims.inequalityId, row.inequalityId))
-		);
-	for (const claim of touched) await derive(tx, claim, now);
+		.where(onIt && !ownOnly ? or(own, heard) : own);
+	const findings = findingsCache(tx);
+	for (const claim of touched) await derive(tx, claim, now, findings);
 	if (!ownOnly && row.inequalityId && (await areStationsDone(tx, row.inequalityId))) {
 		await releaseWaitingMails(
 			tx,
@@ -60,8 +62,13 @@ export async function deriveTouchedClaims(
 	}
 }
 
-async function derive(tx: Transaction, claim: JudgedClaim, now: Date): Promise<void> {
-	const verdict = await judgeClaim(tx, claim);
+async function derive(
+	tx: Transaction,
+	claim: JudgedClaim,
+	now: Date,
+	findings: FindingsOf
+): Promise<void> {
+	const verdict = await judgeClaim(tx, claim, findings);
 	const before = claim.verdict;
 	if (JSON.stringify(before) === JSON.stringify(verdict)) return;
 	await tx.update(claims).set({ verdict, status: verdict.status }).where(eq(claims.id, claim.id));

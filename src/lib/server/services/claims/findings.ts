@@ -22,7 +22,7 @@ const slimResult = sql`
  * What has been recomputed about an inequality: its stations, and what the group's own claims asked
  * for. What another group's claims asked for stays with that group.
  */
-export async function loadFindings(
+async function loadFindings(
 	tx: Transaction,
 	inequalityId: string,
 	groupId: string
@@ -67,4 +67,20 @@ export async function loadFindings(
 					? { checked, lower, upper, exact, method: checkNote ?? '' }
 					: { checked, reason: checkNote ?? '' }
 	}));
+}
+
+/** The findings on a claim's inequality; judging many claims reads each set once. */
+export type FindingsOf = (
+	claim: Readonly<Pick<typeof claims.$inferSelect, 'inequalityId' | 'groupId'>>
+) => Promise<readonly StoredFinding[]>;
+
+export function findingsCache(tx: Transaction): FindingsOf {
+	const known = new Map<string, Promise<readonly StoredFinding[]>>();
+	return async ({ inequalityId, groupId }) => {
+		if (inequalityId === null) return [];
+		const key = `${inequalityId} ${groupId}`;
+		const found = known.get(key) ?? loadFindings(tx, inequalityId, groupId);
+		known.set(key, found);
+		return found;
+	};
 }

@@ -11,7 +11,7 @@ import { inequalities, recomputations, type claims } from '../../db/schema';
 import { readMap, type AffineMap as EnclosedMap } from '../inequalities/affine';
 import { claimProblem, readQuantity } from '../recomputations/claim-problem';
 import { explainVerdict } from './explain-verdict';
-import { loadFindings, type StoredFinding } from './findings';
+import type { FindingsOf, StoredFinding } from './findings';
 
 export type JudgedClaim = typeof claims.$inferSelect;
 
@@ -21,11 +21,14 @@ interface OwnRun {
 }
 
 /** The verdict on a claim from everything that is known in this transaction. Writes nothing. */
-export async function judgeClaim(tx: Transaction, claim: JudgedClaim): Promise<Verdict> {
+export async function judgeClaim(
+	tx: Transaction,
+	claim: JudgedClaim,
+	findingsOf: FindingsOf
+): Promise<Verdict> {
 	const reading = readStatedValue(claim.printed, claim.reading);
 	const own = await ownRun(tx, claim);
-	const findings =
-		own && claim.inequalityId ? await loadFindings(tx, claim.inequalityId, claim.groupId) : [];
+	const findings = own ? await findingsOf(claim) : [];
 	const map = readMap(claim);
 	const evidence = own ? findings.flatMap((f) => evidenceIn(f, own.problem, map)) : [];
 	const recomputation = own?.state ?? (await noSolver(tx, claim));

@@ -4,9 +4,8 @@ import { localMaximum } from './local-maximum';
 import { npaBound } from './npa-bound';
 import type { Outcome } from './outcome';
 import { QuantumEnclosure } from './quantum-enclosure';
-import { dimensionsToTry, levelsToTry, predictSeconds } from './quantum-plan';
-import { partyDimensions, searchStrategies } from './see-saw';
-import { StrategyGrowth } from './see-saw-growth';
+import { levelsToTry, predictSeconds } from './quantum-plan';
+import { StrategyEscalation } from './quantum-search';
 
 /** Share of the time left that one relaxation may take, so that both sides get their turn. */
 const LEVEL_SHARE = 0.75;
@@ -14,16 +13,10 @@ const LEVEL_SHARE = 0.75;
 const HOPELESS = 3;
 /** The local maximum is a first lower side only: a share of the budget. */
 const LOCAL_SHARE = 0.25;
-/** Starts of the first visit to a dimension; later visits double it. */
-const FIRST_STARTS = 6;
 /** Between two levels see-saw gets this share of what the next level is predicted to take. */
 const SEARCH_SHARE = 0.5;
 /** A level predicted to be this cheap (s) is tried at once. */
 const CHEAP_LEVEL = 0.1;
-/** Growing begins when no level is left and each small dimension had this many starts. */
-const STARTS_BEFORE_GROWTH = 20;
-/** A dimension visited with this many starts in all has shown what random starts can reach. */
-const MOST_STARTS = 400;
 
 /**
  * Encloses the quantum maximum of g (the supremum over finite-dimensional tensor-product
@@ -51,14 +44,6 @@ export function quantumMaximum(
 	return new Escalation(problem, g, control).run();
 }
 
-interface Visit {
-	readonly dimension: number;
-	starts: number;
-	batch: number;
-	seconds: number;
-	lower: number | null;
-}
-
 class Escalation {
 	readonly #problem: ProblemOf<'quantum'>;
 	readonly #g: Functional;
@@ -66,9 +51,8 @@ class Escalation {
 	readonly #begin: number;
 	readonly #enclosure = new QuantumEnclosure();
 	readonly #levels: Level[];
-	readonly #visits: Visit[];
 	readonly #levelsDone: Record<string, unknown>[] = [];
-	readonly #growth: StrategyGrowth | null;
+	readonly #strategies: StrategyEscalation;
 	#local: Record<string, unknown> = {};
 
 	constructor(problem: ProblemOf<'quantum'>, g: Functional, control: Control) {
@@ -77,28 +61,19 @@ class Escalation {
 		this.#control = control;
 		this.#begin = control.now();
 		this.#levels = [...levelsToTry(problem)];
-		this.#growth =
-			problem.dimensions === null && StrategyGrowth.suits(g)
-				? new StrategyGrowth(g, problem.seed)
-				: null;
-		this.#visits = dimensionsToTry(problem).map((dimension) => ({
-			dimension,
-			starts: 0,
-			batch: FIRST_STARTS,
-			seconds: 0,
-			lower: null
-		}));
+		this.#strategies = new StrategyEscalation(problem, g, this.#enclosure, this.#passingOn());
 	}
 
 	run(): Outcome {
-		const first = this.#visits[0];
 		this.#tryLocal();
 		this.#tryLevel();
-		if (first && !this.#closed) this.#visit(first, this.#left / 4);
+		if (!this.#closed) this.#strategies.begin(this.#left / 4);
 		while (!this.#closed && this.#left > 0) {
 			const next = this.#secondsOfNextLevel();
 			const more =
-				next === null ? this.#searchToTheEnd() : this.#search(this.#slice(next), MOST_STARTS);
+				next === null
+					? this.#strategies.searchToTheEnd(this.#left)
+					: this.#strategies.search(this.#slice(next));
 			if (this.#closed) break;
 			const tried = this.#tryLevel();
 			if (!more && !tried) break;
@@ -120,12 +95,16 @@ class Escalation {
 		return levelSeconds < CHEAP_LEVEL ? 0 : Math.min(SEARCH_SHARE * levelSeconds, this.#left / 2);
 	}
 
-	/** Null when no level is left that has a chance within the budget. */
+	/** Drops the levels that have no chance within the budget; null when none is left. */
 	#secondsOfNextLevel(): number | null {
-		const level = this.#levels[0];
-		if (level === undefined) return null;
-		const predicted = predictSeconds(this.#g.scenario, level);
-		return predicted > HOPELESS * this.#left ? null : predicted;
+		for (;;) {
+			const level = this.#levels[0];
+			if (level === undefined) return null;
+			const predicted = predictSeconds(this.#g.scenario, level);
+			if (predicted <= HOPELESS * this.#left || this.#enclosure.upper === null) return predicted;
+			this.#levels.shift();
+			this.#levelsDone.push({ level, reason: 'not begun: too large for the time left' });
+		}
 	}
 
 	#tryLocal(): void {
@@ -149,16 +128,9 @@ class Escalation {
 
 	/** Runs the next level that has a chance; false when there is none. */
 	#tryLevel(): boolean {
-		while (this.#levels.length > 0) {
+		while (this.#left > 0 && this.#secondsOfNextLevel() !== null) {
 			const level = this.#levels.shift();
-			if (level === undefined || this.#left === 0) return false;
-			const predicted = predictSeconds(this.#g.scenario, level);
-			if (predicted > HOPELESS * this.#left && this.#enclosure.upper !== null) {
-				const reason = 'not begun: too large for the time left';
-				this.#levelsDone.push({ level, reason });
-				continue;
-			}
-			if (this.#runLevel(level)) return true;
+			if (level !== undefined && this.#runLevel(level)) return true;
 		}
 		return false;
 	}
@@ -184,65 +156,6 @@ class Escalation {
 			},
 			(reason) => this.#levelsDone.push({ level, reason, seconds: elapsed() })
 		);
-	}
-
-	#searchToTheEnd(): boolean {
-		if (!this.#growth) return this.#search(this.#left, MOST_STARTS);
-		this.#search(this.#left / 2, STARTS_BEFORE_GROWTH);
-		if (!this.#closed && this.#left > 0) this.#grow(this.#growth);
-		return true;
-	}
-
-	#grow(growth: StrategyGrowth): void {
-		const known = this.#enclosure.lower ?? -Infinity;
-		const enough = (this.#enclosure.upper ?? Infinity) - this.#problem.gap / 2;
-		const certificate = growth.run(this.#left, known, this.#passingOn(), enough);
-		if (certificate) this.#enclosure.raise(certificate.value, certificate);
-	}
-
-	/** See-saw for some seconds, least visited dimension first; false when none is left to visit. */
-	#search(seconds: number, mostStarts: number): boolean {
-		const end = this.#control.now() + 1000 * seconds;
-		for (;;) {
-			const open = this.#visits.filter((visit) => visit.starts < mostStarts);
-			const [visit] = open.sort(
-				(a, b) => a.seconds + a.starts * 0.001 - b.seconds - b.starts * 0.001
-			);
-			if (!visit) return false;
-			const left = (end - this.#control.now()) / 1000;
-			if (left <= 0 || this.#closed) return true;
-			this.#visit(visit, left);
-		}
-	}
-
-	#visit(visit: Visit, seconds: number): void {
-		const start = this.#control.now();
-		this.#attempt(
-			() => {
-				const found = searchStrategies(
-					this.#g,
-					{
-						dimensions: partyDimensions([visit.dimension], this.#problem.outputs.length),
-						starts: visit.batch,
-						firstStart: visit.starts,
-						seed: this.#problem.seed,
-						seconds,
-						state: 'free',
-						target: this.#enclosure.upper,
-						known: this.#enclosure.lower
-					},
-					this.#passingOn()
-				);
-				visit.starts += found?.startsDone ?? visit.batch;
-				visit.batch *= 2;
-				if (!found) return;
-				const { certificate } = found;
-				visit.lower = Math.max(visit.lower ?? -Infinity, certificate.value);
-				this.#enclosure.raise(certificate.value, certificate);
-			},
-			() => (visit.starts = MOST_STARTS)
-		);
-		visit.seconds += (this.#control.now() - start) / 1000;
 	}
 
 	/** A limit or failure of one part is noted, not fatal; false then. Being cancelled ends all. */
@@ -298,13 +211,8 @@ class Escalation {
 				lowerFrom,
 				upperLevel,
 				...this.#local,
-				...(this.#growth?.dimension && {
-					grown: { dimension: this.#growth.dimension, tries: this.#growth.tries }
-				}),
 				levels: this.#levelsDone,
-				dimensions: this.#visits
-					.filter(({ starts }) => starts > 0)
-					.map(({ dimension, starts, seconds, lower }) => ({ dimension, starts, seconds, lower }))
+				...this.#strategies.summary()
 			},
 			certificate: this.#enclosure.certificate()
 		};

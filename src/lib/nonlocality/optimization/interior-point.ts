@@ -47,6 +47,7 @@ export class InteriorPoint implements NewtonState {
 	readonly rowSlack: Float64Array;
 	readonly rowResidual: Float64Array;
 	readonly rowMultipliers: Float64Array;
+	readonly equalityMultipliers: Float64Array;
 	readonly #programme: MomentProgramme;
 	readonly #n: number;
 	readonly #cells: Int32Array;
@@ -54,7 +55,6 @@ export class InteriorPoint implements NewtonState {
 	readonly #factor: Float64Array;
 	readonly #inverseS: Float64Array;
 	readonly #inverseX: Float64Array;
-	readonly #equalityMultipliers: Float64Array;
 
 	/** @param start moments with Gamma > 0, `start[0] = 1`. */
 	constructor(programme: MomentProgramme, start: Float64Array) {
@@ -73,7 +73,7 @@ export class InteriorPoint implements NewtonState {
 		this.rowSlack = new Float64Array(programme.rows.length);
 		this.rowResidual = new Float64Array(programme.rows.length);
 		this.rowMultipliers = new Float64Array(programme.rows.length);
-		this.#equalityMultipliers = new Float64Array(programme.equalities.length);
+		this.equalityMultipliers = new Float64Array(programme.equalities.length);
 	}
 
 	/** X = S^-1, so that X S is the identity: a centred start. False when S is not positive. */
@@ -110,7 +110,7 @@ export class InteriorPoint implements NewtonState {
 		const residuals = objective.slice();
 		addInnerProducts(this.#programme, this.x, 1, residuals);
 		addRows(rows, this.rowMultipliers, 1, residuals);
-		addRows(equalities, this.#equalityMultipliers, 1, residuals);
+		addRows(equalities, this.equalityMultipliers, 1, residuals);
 		return residuals;
 	}
 
@@ -121,7 +121,7 @@ export class InteriorPoint implements NewtonState {
 			moments: this.y,
 			multiplier: this.x,
 			rowMultipliers: this.rowMultipliers,
-			equalityMultipliers: this.#equalityMultipliers,
+			equalityMultipliers: this.equalityMultipliers,
 			primal: dot(this.#programme.objective, this.y),
 			dual: residuals[0] ?? 0,
 			residual: largestMagnitude(residuals.subarray(1))
@@ -171,15 +171,14 @@ export class InteriorPoint implements NewtonState {
 		const n = this.#n;
 		const before = this.x.slice();
 		const rowsBefore = this.rowMultipliers.slice();
-		const equalitiesBefore = this.#equalityMultipliers.slice();
+		const equalitiesBefore = this.equalityMultipliers.slice();
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
 			this.x.set(before);
 			addScaled(this.x, step, direction.dx);
 			this.rowMultipliers.set(rowsBefore);
 			addScaled(this.rowMultipliers, step, direction.rowMultipliers);
-			equalitiesBefore.forEach((old, k) => {
-				this.#equalityMultipliers[k] = old + step * ((direction.equalityMultipliers[k] ?? 0) - old);
-			});
+			this.equalityMultipliers.set(equalitiesBefore);
+			addScaled(this.equalityMultipliers, step, direction.equalityMultipliers);
 			const unprojected = this.x.slice();
 			this.#project();
 			this.#factor.set(this.x);
@@ -193,7 +192,7 @@ export class InteriorPoint implements NewtonState {
 		}
 		this.x.set(before);
 		this.rowMultipliers.set(rowsBefore);
-		this.#equalityMultipliers.set(equalitiesBefore);
+		this.equalityMultipliers.set(equalitiesBefore);
 		return 0;
 	}
 
@@ -207,7 +206,6 @@ export class InteriorPoint implements NewtonState {
 		addInnerProducts(this.#programme, direction.dx, 1, residuals);
 		addRows(rows, direction.rowMultipliers, 1, residuals);
 		addRows(equalities, direction.equalityMultipliers, 1, residuals);
-		addRows(equalities, this.#equalityMultipliers, -1, residuals);
 		this.#subtractAverages(direction.dx, residuals);
 	}
 

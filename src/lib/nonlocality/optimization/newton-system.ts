@@ -19,6 +19,7 @@ export interface NewtonState {
 	/** rows(y) - rowSlack. */
 	readonly rowResidual: Float64Array;
 	readonly rowMultipliers: Float64Array;
+	readonly equalityMultipliers: Float64Array;
 }
 
 export interface Direction {
@@ -28,7 +29,6 @@ export interface Direction {
 	readonly ds: Float64Array;
 	readonly rowSlack: Float64Array;
 	readonly rowMultipliers: Float64Array;
-	/** The new multipliers themselves, not their change. */
 	readonly equalityMultipliers: Float64Array;
 }
 
@@ -39,7 +39,7 @@ const BORDER_REGULARISATIONS = [0, 1e-14, 1e-12, 1e-10];
 /**
  * The linear system of one iteration. HKM: dX = -X + sigma mu W - sym(X dS W) [- sym(dXp dSp W)],
  * and <F_i, X + dX> + ... = -c_i gives M dy = c + ... with M_ij = <F_i, X F_j W>.
- * Equalities border it: M dy - A^T w = rhs, A dy = -residual.
+ * Equalities border it: M dy - A^T dw = rhs + A^T w, A dy = -residual.
  */
 export class NewtonSystem {
 	readonly #programme: MomentProgramme;
@@ -134,7 +134,7 @@ export class NewtonSystem {
 
 	/** @param target sigma mu; @param predictor adds Mehrotra's second-order correction. */
 	solve(state: NewtonState, target: number, predictor: Direction | null): Direction {
-		const { size: n, objective, rows, unknowns: m } = this.#programme;
+		const { size: n, objective, rows, equalities, unknowns: m } = this.#programme;
 		const fixed = new Float64Array(n * n);
 		for (let cell = 0; cell < fixed.length; cell++) fixed[cell] = target * (state.w[cell] ?? 0);
 		if (predictor) {
@@ -154,6 +154,7 @@ export class NewtonSystem {
 		const rhs = objective.slice();
 		addInnerProducts(this.#programme, fixed, 1, rhs);
 		addRows(rows, rowFixed, 1, rhs);
+		addRows(equalities, state.equalityMultipliers, 1, rhs);
 		const { dy, equalityMultipliers } = this.#solveLinear(rhs, state.y, m);
 
 		const ds = new Float64Array(n * n);

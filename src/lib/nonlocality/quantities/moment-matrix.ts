@@ -28,10 +28,15 @@ export interface MomentMatrix {
 }
 
 /**
+ * @param poll called for every row of the matrix.
  * @throws SolverStop `limit` past MOST_ROWS or MOST_MOMENTS, with the figure; `failed` for a level
  *   that does not fit the scenario.
  */
-export function makeMomentMatrix(scenario: Scenario, level: Level): MomentMatrix {
+export function makeMomentMatrix(
+	scenario: Scenario,
+	level: Level,
+	poll?: () => void
+): MomentMatrix {
 	const alphabet = makeAlphabet(scenario);
 	const words = levelWords(scenario, level, MOST_ROWS);
 	const n = words.length;
@@ -40,6 +45,7 @@ export function makeMomentMatrix(scenario: Scenario, level: Level): MomentMatrix
 	const moments: Word[] = [identity];
 	const numberOf = new Map([[momentKey(identity), 0]]);
 	words.forEach((u, i) => {
+		poll?.();
 		for (let j = 0; j <= i; j++) {
 			const product = adjointProduct(alphabet, u, words[j] ?? identity);
 			let number = -1;

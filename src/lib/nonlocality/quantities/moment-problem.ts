@@ -33,8 +33,12 @@ export interface MomentProblem {
  * The moment-matrix relaxation of `problem` with the objective g (maximised).
  * @throws SolverStop when the level lacks a moment (naming one that has it), or past the limits.
  */
-export function makeMomentProblem(problem: ProblemOf<'npa'>, g: Functional): MomentProblem {
-	const matrix = makeMomentMatrix(g.scenario, problem.level);
+export function makeMomentProblem(
+	problem: ProblemOf<'npa'>,
+	g: Functional,
+	poll?: () => void
+): MomentProblem {
+	const matrix = makeMomentMatrix(g.scenario, problem.level, poll);
 	const { form: objective, error } = linearForm(matrix, g);
 	const probabilities = problem.nonNegative ? probabilityRows(matrix) : [];
 	const inequalities: ConstraintRow[] = [];
@@ -67,9 +71,11 @@ export function makeMomentProblem(problem: ProblemOf<'npa'>, g: Functional): Mom
 function linearForm(matrix: MomentMatrix, functional: Functional) {
 	const form = new Float64Array(matrix.moments.length);
 	let error = 0;
-	for (const { events, coefficient } of collinsGisinForm(functional).terms) {
+	const { terms } = collinsGisinForm(functional);
+	for (const { events, coefficient } of terms) {
 		const moment = momentOfEvents(matrix, events);
-		if (moment === null) throw missingMoment(matrix, events.length);
+		if (moment === null)
+			throw missingMoment(matrix, Math.max(...terms.map((term) => term.events.length)));
 		form[moment] = coefficient.value;
 		error += coefficient.error;
 	}

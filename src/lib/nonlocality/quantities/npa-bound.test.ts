@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import vectors from '../../../../tests/vectors/vectors.json';
 import { PATIENT, npaProblem } from '../../../../tests/factories/npa-problem';
@@ -256,6 +257,46 @@ describe('constraints on the behaviour', () => {
 		expect(() => solveChecked(npaProblem(chsh, 1, { constraints }))).toThrow(/constraint 0/);
 	});
 });
+
+/** Random functionals with at most three parties, rational coefficients, all level shapes. */
+const anyFunctional: fc.Arbitrary<Functional> = fc
+	.array(fc.array(fc.integer({ min: 2, max: 3 }), { minLength: 1, maxLength: 2 }), {
+		minLength: 1,
+		maxLength: 3
+	})
+	.chain((outputs) => {
+		const event = (party: number) =>
+			fc.option(
+				fc
+					.nat((outputs[party]?.length ?? 1) - 1)
+					.chain((input) =>
+						fc
+							.nat((outputs[party]?.[input] ?? 1) - 1)
+							.map((output) => [party, input, output] as const)
+					)
+			);
+		const term = fc
+			.tuple(fc.integer({ min: -20, max: 20 }), ...outputs.map((_, party) => event(party)))
+			.map(([numerator, ...events]) => ({
+				coefficient: exactCoefficient(ratio(BigInt(numerator), 3n)),
+				events: events.filter((found) => found !== null)
+			}));
+		return fc
+			.array(term, { minLength: 1, maxLength: 12 })
+			.map((terms) => makeFunctional({ outputs }, terms));
+	});
+
+test('any functional: both sides are checked and close', () => {
+	const level = fc.constantFrom<Level>({ perParty: 1 }, 2);
+	fc.assert(
+		fc.property(anyFunctional, level, fc.boolean(), (functional, chosen, nonNegative) => {
+			const { lower, upper } = solveChecked(npaProblem(functional, chosen, { nonNegative }));
+			expect(lower).toBeLessThanOrEqual(upper);
+			expect(upper - lower).toBeLessThan(GAP);
+		}),
+		{ numRuns: 40 }
+	);
+}, 60_000);
 
 describe('what is refused', () => {
 	const solve = (problem: ProblemOf<'npa'>, control = PATIENT) =>

@@ -45,7 +45,7 @@ const NEARLY = 1e-6;
  */
 export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Control): Outcome {
 	const started = control.now();
-	const relaxation = makeMomentProblem(problem, g);
+	const relaxation = makeMomentProblem(problem, g, () => refuseWhenCancelled(control));
 	const search = new BoundSearch(relaxation, control, started + 1000 * problem.seconds);
 	const run = search.run();
 	const { matrix, programme } = relaxation;
@@ -81,6 +81,10 @@ export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Cont
 }
 
 class BudgetSpent extends Error {}
+
+function refuseWhenCancelled(control: Control): void {
+	if (control.shouldStop()) throw new SolverStop('cancelled', 'cancelled');
+}
 
 class BoundSearch {
 	upper = Infinity;
@@ -126,7 +130,7 @@ class BoundSearch {
 		};
 		const solver = new SemidefiniteSolver(scaled, this.#problem.start, {
 			poll: () => {
-				if (this.#control.shouldStop()) throw new SolverStop('cancelled', 'cancelled');
+				refuseWhenCancelled(this.#control);
 				if (this.#control.now() > this.#deadline) throw new BudgetSpent();
 			},
 			visit: (iterate) => {

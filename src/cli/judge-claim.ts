@@ -1,3 +1,4 @@
+import { correlatorGame } from '../lib/ledger/correlator-game';
 import { diagnose, type Diagnosis, type OtherValue } from '../lib/ledger/diagnosis';
 import {
 	IDENTITY_MAP,
@@ -13,6 +14,7 @@ import { valueLabel } from '../lib/ledger/problem-labels';
 import type { StatedValue } from '../lib/ledger/stated-value';
 import { deriveVerdict, type Verdict } from '../lib/ledger/verdict';
 import { solve, verifyResult, type Control, type Problem, type Result } from '../lib/nonlocality';
+import { functionalOfTerms } from '../lib/nonlocality/notation';
 import { parseProblem } from '../lib/schemas/problem';
 import type { ClaimJson } from '../lib/schemas/claim-json';
 import { claimStations } from './claim-stations';
@@ -62,6 +64,7 @@ export async function judgeClaim(
 		normalisations: knownNormalisations({
 			...knownFamily(problem),
 			outputs: problem.outputs,
+			game: correlatorGame(functionalOfTerms(problem.outputs, problem.terms)),
 			localMaximum: exactValueOf(findings, 'local')
 		}),
 		indexBaseAlternative:
@@ -81,7 +84,7 @@ async function otherIndexBase(
 	claimed: Problem,
 	control: Control
 ): Promise<OtherValue | null> {
-	if (!('expression' in written) || 'outputs' in written) return null;
+	if (!('expression' in written)) return null;
 	const base = 'indexBase' in written && written.indexBase === 1 ? 0 : 1;
 	let problem: Problem;
 	try {

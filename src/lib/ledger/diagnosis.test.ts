@@ -3,6 +3,8 @@ import { describe, expect, it } from 'vitest';
 import { parseRational, type Rational } from '../nonlocality/exact/rational';
 import type { ReadingChoice, Relation } from './claim';
 import { DIAGNOSIS_KINDS, diagnose, type OtherValue } from './diagnosis';
+import { parseExpression } from '../nonlocality/scenario/expression';
+import { correlatorGame } from './correlator-game';
 import { judge } from './judgement';
 import { knownNormalisations, type NormalisationContext } from './normalisations';
 import { readStatedValue } from './stated-value';
@@ -216,9 +218,21 @@ describe('knownNormalisations', () => {
 	});
 
 	it('knows the winning probability of any game of correlators, and the multiple of the local maximum', () => {
-		const context = { correlatorWeight: r('12'), localMaximum: r('6') };
+		const context = { game: { weight: r('12'), constant: r('0') }, localMaximum: r('6') };
 		// The elegant inequality: 4 sqrt 3 = 6.9282.
 		expect(mapped(context, '6.9282032')).toEqual([0.788675, 0.928203, 1.154701]);
+	});
+
+	it('finds the game behind a sum of correlators, and none behind marginals', () => {
+		const game = (expression: string) =>
+			correlatorGame(parseExpression(expression, { indexBase: 0 }).functional);
+		// 1/2 + S/8 for CHSH: weight 4. A constant is taken off first.
+		const chsh = game('A0 B0 + A0 B1 + A1 B0 - A1 B1');
+		expect([chsh?.weight.toFraction(), chsh?.constant.toFraction()]).toEqual(['4', '0']);
+		const shifted = game('2 A0 B0 + 2 A0 B1 + 2 A1 B0 - 2 A1 B1 + 3');
+		expect(mapped({ game: shifted }, '8.6568542')).toEqual([0.853553]);
+		expect(game('A0 B0 + A0')).toBeNull();
+		expect(game('P(0,0|0,0)')).toBeNull();
 	});
 
 	it('never proposes the claim as it stands', () => {

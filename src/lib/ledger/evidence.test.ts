@@ -164,7 +164,7 @@ describe('othersOfFindings', () => {
 		expect(others.map((o) => [o.label, o.matchesMethod])).toEqual([
 			['the almost-quantum bound (NPA level 1+AB)', true],
 			['the macroscopic-locality bound (NPA level 1 with non-negative probabilities)', false],
-			['the best value found in local dimension 2', false]
+			['the quantum maximum in local dimension 2 (best value found)', false]
 		]);
 		expect(others[0]?.fields).toEqual({ level: '1+AB', nonNegative: false });
 		expect(others.map((o) => Number(o.lower?.valueOf()).toFixed(3))).toEqual([

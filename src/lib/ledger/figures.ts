@@ -117,7 +117,7 @@ export function showExact(exact: string | Rational, places: number = BOUND_PLACE
 
 /** For reading: a true minus sign instead of a hyphen in front of a digit or between spaces. */
 export function withMinusSign(text: string): string {
-	return text.replace(/-(?=[\d.])|(?<= )-(?= )/g, '\u2212');
+	return text.replace(/(?<!\de)-(?=[\d.])|(?<= )-(?= )/g, '\u2212');
 }
 
 /** For reading: a thin space between every three digits behind the point (of more than four). */

@@ -1,4 +1,5 @@
 import { ONE, ZERO, parseRational, ratio, type Rational } from '../nonlocality/exact/rational';
+import { winningProbabilityMap, type CorrelatorGame } from './correlator-game';
 
 /** Another way to write values of the same inequality: value there = scale * value here + shift. */
 export interface Normalisation {
@@ -17,8 +18,8 @@ export interface NormalisationContext {
 	readonly outputs?: readonly (readonly number[])[];
 	/** In the claim's normalisation, when it is known exactly. */
 	readonly localMaximum?: Rational | null;
-	/** Sum of the sizes of the coefficients, for a functional of full correlators alone. */
-	readonly correlatorWeight?: Rational | null;
+	/** For a sum of full correlators: the game it is. */
+	readonly game?: CorrelatorGame | null;
 }
 
 const fraction = (numerator: number, denominator = 1): Rational =>
@@ -30,8 +31,12 @@ const form = (name: string, scale: Rational, shift: Rational): Normalisation => 
 	shift
 });
 
-const winningProbability = (weight: Rational) =>
-	form('as the winning probability of the game', ONE.div(weight.mul(2)), fraction(1, 2));
+function gameForm(game: CorrelatorGame): Normalisation {
+	const { scale, shift } = winningProbabilityMap(game);
+	return form('as the winning probability of the game', scale, shift);
+}
+
+const winningProbability = (weight: Rational) => gameForm({ weight, constant: ZERO });
 
 /** Forms in which a family's values are published, from its own form (problem format). */
 function familyForms(name: string, parameter: number | undefined): Normalisation[] {
@@ -101,7 +106,7 @@ function scenarioForms(outputs: NormalisationContext['outputs']): Normalisation[
 
 /** The affine maps worth trying when a claimed value disagrees; the claim's own form is left out. */
 export function knownNormalisations(context: NormalisationContext): readonly Normalisation[] {
-	const { family, fromFamily, localMaximum, correlatorWeight } = context;
+	const { family, fromFamily, localMaximum, game } = context;
 	const named = family ? familyForms(family.name, family.parameter) : [];
 	const scale = fromFamily?.scale ?? ONE;
 	const shift = fromFamily?.shift ?? ZERO;
@@ -110,8 +115,7 @@ export function knownNormalisations(context: NormalisationContext): readonly Nor
 		form(name, a.div(scale), b.sub(a.mul(shift).div(scale)))
 	);
 	if (named.length === 0) candidates.push(...scenarioForms(context.outputs));
-	if (correlatorWeight && correlatorWeight.n > 0n)
-		candidates.push(winningProbability(correlatorWeight));
+	if (game) candidates.push(gameForm(game));
 	if (localMaximum && localMaximum.n > 0n) {
 		candidates.push(form('with the local maximum subtracted', ONE, localMaximum.neg()));
 		if (localMaximum.s > 0n)

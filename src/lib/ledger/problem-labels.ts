@@ -43,8 +43,8 @@ export function valueLabel(problem: Problem): string {
 			return `the quantum ${extremum(problem)}`;
 		case 'see-saw':
 			return problem.state === 'maximally-entangled'
-				? `the best value found with a maximally entangled state of local dimension ${dimensionName(problem.dimension)}`
-				: `the best value found in local dimension ${dimensionName(problem.dimension)}`;
+				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem.dimension)} (best value found)`
+				: `the quantum ${extremum(problem)} in local dimension ${dimensionName(problem.dimension)} (best value found)`;
 		case 'npa': {
 			const { level, nonNegative } = problem;
 			if (isAlmostQuantum(level)) return `the almost-quantum bound (${npaName(level)})`;
@@ -79,7 +79,7 @@ export function innerLabel(problem: Problem): string {
 export function outerLabel(problem: Problem): string {
 	switch (problem.quantity) {
 		case 'local':
-			return 'all deterministic strategies';
+			return 'the enumeration of all deterministic strategies';
 		case 'no-signalling':
 			return 'the no-signalling linear programme';
 		case 'npa':

@@ -2,7 +2,7 @@ import { toDecimal, type Rational } from '../nonlocality/exact/rational';
 import { sizeOf, type ReadInterval } from './accepted-set';
 import type { Relation } from './claim';
 import { isExact, type Enclosure } from './enclosure';
-import { placesOfGap, showEnclosure, showExact, withMinusSign } from './figures';
+import { placesOfGap, rationalOf, showEnclosure, showExact, withMinusSign } from './figures';
 import { distanceTo, type Judgement, type RecomputationState } from './judgement';
 
 export interface ReasonInput {
@@ -13,10 +13,15 @@ export interface ReasonInput {
 	readonly quantity?: string;
 }
 
-/** A positive distance with one digit, rounded down: what it is more than. */
-export function showMoreThan(distance: Rational): string {
-	const places = placesOfGap(distance);
-	return places <= 0 ? toDecimal(distance, 0, 'down') : toDecimal(distance, places, 'down');
+/** A positive distance with one digit, rounded down. */
+export function showAtLeast(distance: Rational): string {
+	return toDecimal(distance, Math.max(0, placesOfGap(distance)), 'down');
+}
+
+/** `more than 0.0005`, or `2` when it is exactly that. */
+function showMoreThan(distance: Rational): string {
+	const shown = showAtLeast(distance);
+	return rationalOf(shown).equals(distance) ? shown : `more than ${shown}`;
 }
 
 /** A positive distance with one digit, rounded up: what it is at most. */
@@ -94,7 +99,7 @@ function agreement(enclosure: Enclosure, input: ReasonInput): string {
 	const fact = `${capital} ${range(enclosure)}`;
 	if (relation !== '=') {
 		const slack = slackOf(enclosure, input);
-		const loose = slack ? `, with a slack of more than ${slack}` : '';
+		const loose = slack ? `, with a slack of ${showMoreThan(slack)}` : '';
 		return `${fact}, so the claimed ${relation === '<=' ? 'upper' : 'lower'} bound holds${loose}.${worth}`;
 	}
 	if (reading.exact && isExact(enclosure)) return `${fact}, as claimed: proved.`;
@@ -107,7 +112,7 @@ function agreement(enclosure: Enclosure, input: ReasonInput): string {
 export function slackOf(
 	enclosure: Enclosure,
 	input: Pick<ReasonInput, 'reading' | 'relation'>
-): string | null {
+): Rational | null {
 	const { reading, relation } = input;
 	const slack =
 		relation === '<='
@@ -115,7 +120,7 @@ export function slackOf(
 			: relation === '>='
 				? enclosure.lower && enclosure.lower.sub(reading.high)
 				: null;
-	return slack && slack.s > 0n && slack.n > 0n ? showMoreThan(slack) : null;
+	return slack && slack.s > 0n && slack.n > 0n ? slack : null;
 }
 
 function discrepancy(enclosure: Enclosure, input: ReasonInput, lastDigits: boolean): string {
@@ -124,7 +129,7 @@ function discrepancy(enclosure: Enclosure, input: ReasonInput, lastDigits: boole
 	const distance = distanceTo(reading, relation, enclosure);
 	const more = distance ? showMoreThan(distance) : '0';
 	const above = enclosure.upper !== null && reading.low.compare(enclosure.upper) > 0;
-	const where = `lies more than ${more} ${above ? 'above' : 'below'} ${boundName(enclosure, above)}`;
+	const where = `lies ${more} ${above ? 'above' : 'below'} ${boundName(enclosure, above)}`;
 	const worth = WORTH[enclosure.worth];
 	if (lastDigits)
 		return `The claimed value differs in the last digits, within usual solver tolerance: it ${where}.${worth}`;

@@ -114,6 +114,16 @@ describe('readStatedValue', () => {
 	});
 
 	it.each([
+		['0.2509', 'Read as 0.25085 to 0.25095'],
+		['-0.25', 'Read as \u22120.255 to \u22120.245'],
+		['4', 'Read as exactly 4'],
+		['4/3', 'Read as exactly 4/3 = 1.333333333333…'],
+		['~ 2 sqrt(2)', 'Read as exactly 2 sqrt(2) = 2.828427124746…']
+	])('says how %s was read', (printed, text) => {
+		expect(readStatedValue(printed, 'as-printed').text).toBe(text);
+	});
+
+	it.each([
 		['0.2509', 4],
 		['4', 0],
 		['82.8 %', 3],

@@ -68,7 +68,7 @@ export function readStatedValue(printed: string, reading: ReadingChoice): Stated
 	const decimal = decimalOf(number);
 	const parts = decimal ? readDigits(decimal, reading) : readExpression(printed, number, reading);
 	const { low, high, exact, irrational, value, percent } = parts;
-	const text = readingText(low, high, exact, irrational ? printed.trim() : null);
+	const text = readingText(low, high, exact, irrational ? typedPart(printed, number) : null);
 	const precision = decimal ? decimal.precision : null;
 	const read = {
 		printed,
@@ -178,6 +178,11 @@ function readExpression(printed: string, number: PrintedText, reading: ReadingCh
 			error.suggestion ?? 'Enter a number such as 2.8284, 1/3, 2*sqrt(2), 82.8 % or 0.25088(2).';
 		throw new StatedValueError(`${sentence(error.message)} ${advice}`, position);
 	}
+}
+
+/** What was typed of the number, without a relation in front of it. */
+function typedPart(printed: string, number: PrintedText): string {
+	return printed.slice(number.at[0] ?? 0, (number.at.at(-1) ?? printed.length) + 1).trim();
 }
 
 /** The expression as typed, without percent sign and without the spaces between digits. */

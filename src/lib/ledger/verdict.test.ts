@@ -101,6 +101,12 @@ describe('deriveVerdict', () => {
 		);
 	});
 
+	it('says an exact distance as it is', () => {
+		expect(verdictOf('4', '=', [evidence('2', '2')]).reason).toContain(
+			'lies 2 above the exact value 2'
+		);
+	});
+
 	it('shows both numbers when consistent, not settled', () => {
 		expect(verdictOf('0.25088', '=', [I3322]).reason).toBe(
 			'Consistent, not settled: the quantum maximum lies between 0.250852 and 0.250940, which is wider than the printed precision.'

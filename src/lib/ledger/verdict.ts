@@ -5,7 +5,7 @@ import { showEnclosure } from './figures';
 import { judge, type ReasonCode, type RecomputationState } from './judgement';
 import { printRational } from '../nonlocality/exact/rational';
 import { readingEnd } from './reading-text';
-import { reasonFor, slackOf } from './reasons';
+import { reasonFor, showAtLeast, slackOf } from './reasons';
 import type { StatedValue } from './stated-value';
 
 export type { Evidence } from './enclosure';
@@ -64,7 +64,7 @@ export function deriveVerdict(input: VerdictInput): Omit<Verdict, 'diagnosis'> {
 		enclosure: enclosure && storeEnclosure(enclosure)
 	};
 	const slack = status === 'agreement' && enclosure ? slackOf(enclosure, input) : null;
-	return slack ? { ...verdict, slack } : verdict;
+	return slack ? { ...verdict, slack: showAtLeast(slack) } : verdict;
 }
 
 export function storeReading(reading: StatedValue): Verdict['reading'] {

@@ -14,9 +14,11 @@ import {
 import { NotationError } from './notation-error';
 import { ONE, ZERO, numeratorOf, ratio, type Rational } from './rational';
 
-/** Powers beyond these would let a short text make an enormous number. */
+/** Past these, a short text would make an enormous number, or take a long time. */
 export const LARGEST_EXPONENT = 200;
 export const LARGEST_BITS = 1_100;
+export const LARGEST_PARTS = 16;
+export const LARGEST_FACTORS = 8;
 
 const UNIT_ROUNDOFF = 2 ** -53;
 
@@ -74,19 +76,28 @@ export function powerOfCoefficient(a: Coefficient, exponent: Coefficient): Coeff
 	const base = steps % 2 === 0 ? a : squareRoot(a);
 	const count = steps % 2 === 0 ? steps / 2 : steps;
 	let result = COEFFICIENT_ONE;
-	for (let i = 0; i < Math.abs(count); i++) {
-		result = multiplyCoefficients(result, base);
-		checkSize(result);
+	let square = base; // base^(2^i)
+	for (let rest = Math.abs(count); rest > 0; rest >>= 1) {
+		if (rest & 1) result = checkedProduct(result, square);
+		if (rest > 1) square = checkedProduct(square, square);
 	}
 	return count < 0 ? inverseOf(result) : result;
 }
 
-/** @throws NotationError when an exact number has become too long to go on with. */
+function checkedProduct(a: Coefficient, b: Coefficient): Coefficient {
+	const product = multiplyCoefficients(a, b);
+	checkSize(product);
+	return product;
+}
+
+/** @throws NotationError when a number has become too long to go on with. */
 export function checkSize(a: Coefficient): void {
 	const bits = (x: bigint) => x.toString(16).length * 4;
 	const tooLong = (x: Rational) => bits(x.n) > LARGEST_BITS || bits(x.d) > LARGEST_BITS;
 	if (tooLong(a.rational) || a.parts.some((part) => tooLong(part.scale)))
 		throw new NotationError('the number has too many digits');
+	if (a.parts.length > LARGEST_PARTS || a.parts.some((p) => p.factors.length > LARGEST_FACTORS))
+		throw new NotationError('the number has too many irrational parts');
 }
 
 /** Exact for the square of a rational. @throws NotationError for a negative number. */

@@ -6,6 +6,12 @@ export interface CommonFractions {
 	readonly denominator: bigint;
 }
 
+/** Not negative; 0 only for two zeros. */
+export function greatestCommonDivisor(a: bigint, b: bigint): bigint {
+	while (b !== 0n) [a, b] = [b, a % b];
+	return a < 0n ? -a : a;
+}
+
 export function overCommonDenominator(values: readonly Rational[]): CommonFractions {
 	let denominator = 1n;
 	for (const value of values)

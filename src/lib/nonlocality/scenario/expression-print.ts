@@ -1,4 +1,5 @@
 import {
+	COEFFICIENT_ZERO,
 	addCoefficients,
 	exactCoefficient,
 	isZero,
@@ -9,12 +10,13 @@ import {
 import { ratio } from '../exact/rational';
 import { PARTY_LETTERS } from './expression-tree';
 import { compareEvents, type Functional } from './functional';
+import type { Observable } from './observables';
 import { partyCount, type Event } from './scenario';
 
 /** One printed term: a coefficient times observables (output null) or one probability. */
 export interface PrintableTerm {
 	readonly coefficient: Coefficient;
-	readonly observables: readonly (readonly [party: number, input: number])[];
+	readonly observables: readonly Observable[];
 	readonly events: readonly Event[];
 }
 
@@ -25,7 +27,7 @@ export interface PrintOptions {
 
 /**
  * The functional as text that parseExpression reads back (given the same outputs and index base) to
- * the same functional: in observables where every input has two outputs, else in probabilities.
+ * the same functional: in observables or probabilities, as printableTerms chooses.
  */
 export function printExpression(functional: Functional, options: PrintOptions = {}): string {
 	const base = options.indexBase ?? 0;
@@ -40,45 +42,65 @@ export function printExpression(functional: Functional, options: PrintOptions = 
 	return joinPieces(pieces);
 }
 
-/** How every term is shown, marginals first, the constant last. */
+/**
+ * How every term is shown: in observables where every input has two outputs, unless probabilities
+ * take fewer terms. Marginals come first, the constant last.
+ */
 export function printableTerms(functional: Functional): PrintableTerm[] {
+	const asWritten = functional.terms.map((term) => ({ ...term, observables: [] }));
 	const binary = functional.scenario.outputs.flat().every((count) => count === 2);
-	const terms = binary
-		? observableTerms(functional)
-		: functional.terms.map((term) => ({ ...term, observables: [] }));
+	const observables = binary ? observableTerms(functional) : null;
+	const terms = observables && observables.length <= asWritten.length ? observables : asWritten;
 	const isConstant = (term: PrintableTerm) => term.observables.length + term.events.length === 0;
 	return [...terms.filter((t) => !isConstant(t)), ...terms.filter(isConstant)];
 }
 
-/** P(a|x) = (1 +- A_x)/2 put in: the unique form in products of observables. */
+/**
+ * P(a|x) = (1 + (-1)^a A_x)/2 put in: the unique form in products of observables. Terms on the same
+ * inputs are transformed together, one party after the other (a Walsh-Hadamard transform).
+ */
 export function observableTerms(functional: Functional): PrintableTerm[] {
-	const sum = new Map<string, { coefficient: Coefficient; events: Event[] }>();
+	const groups = new Map<string, { inputs: Observable[]; values: Coefficient[] }>();
 	for (const { coefficient, events } of functional.terms) {
-		const share = multiplyCoefficients(
-			coefficient,
-			exactCoefficient(ratio(1n, 2n ** BigInt(events.length)))
-		);
-		const opposite = negateCoefficient(share);
-		for (let subset = 0; subset < 2 ** events.length; subset++) {
-			const chosen = events.filter((_, i) => (subset >> i) & 1);
-			const odd = chosen.filter((event) => event[2] === 1).length % 2 === 1;
-			const key = chosen.map((event) => `${event[0]}.${event[1]}`).join(' ');
-			const before = sum.get(key);
-			const added = odd ? opposite : share;
-			sum.set(key, {
-				coefficient: before ? addCoefficients(before.coefficient, added) : added,
-				events: chosen.map(([party, input]): Event => [party, input, 0])
-			});
-		}
+		const inputs = events.map(([party, input]): Observable => [party, input]);
+		const key = inputs.join(' ');
+		const group = groups.get(key) ?? {
+			inputs,
+			values: Array.from({ length: 2 ** inputs.length }, () => COEFFICIENT_ZERO)
+		};
+		const outputs = events.reduce((bits, event, i) => bits | (event[2] << i), 0);
+		group.values[outputs] = coefficient;
+		groups.set(key, group);
 	}
+	const sum = new Map<string, PrintableTerm>();
+	for (const { inputs, values } of groups.values()) {
+		transform(values);
+		const scale = exactCoefficient(ratio(1n, BigInt(values.length)));
+		values.forEach((value, subset) => {
+			if (isZero(value)) return;
+			const observables = inputs.filter((_, i) => (subset >> i) & 1);
+			const key = observables.join(' ');
+			const before = sum.get(key)?.coefficient ?? COEFFICIENT_ZERO;
+			const coefficient = addCoefficients(before, multiplyCoefficients(value, scale));
+			sum.set(key, { coefficient, observables, events: [] });
+		});
+	}
+	const events = (term: PrintableTerm) => term.observables.map(([p, x]): Event => [p, x, 0]);
 	return [...sum.values()]
 		.filter(({ coefficient }) => !isZero(coefficient))
-		.sort((a, b) => compareEvents(a.events, b.events))
-		.map(({ coefficient, events }) => ({
-			coefficient,
-			observables: events.map(([party, input]) => [party, input]),
-			events: []
-		}));
+		.sort((a, b) => compareEvents(events(a), events(b)));
+}
+
+/** values[outputs] becomes sum over outputs of (-1)^(outputs in the subset) values, by subset. */
+function transform(values: Coefficient[]): void {
+	for (let step = 1; step < values.length; step *= 2) {
+		for (let i = 0; i < values.length; i++) {
+			const [even, odd] = [values[i], values[i + step]];
+			if ((i & step) !== 0 || !even || !odd) continue;
+			values[i] = addCoefficients(even, odd);
+			values[i + step] = addCoefficients(even, negateCoefficient(odd));
+		}
+	}
 }
 
 /** `P(0,1|1,0)` for all parties, `P_A(0|1)` for some. */

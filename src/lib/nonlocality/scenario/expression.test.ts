@@ -198,7 +198,8 @@ describe('what cannot be read', () => {
 				.join(''),
 			/at most 2,000 terms/
 		],
-		['(2^200)^6 A0', /too many digits/]
+		['(2^200)^6 A0', /too many digits/],
+		['(pi+sqrt(2)+cos(1)+sin(1)+cos(2)+cos(3))^200 A0', /too many irrational parts/]
 	])('stops at its limits: %s', (text, message) => {
 		const error = failure(text);
 		expect(error).toBeInstanceOf(NotationError);
@@ -291,21 +292,32 @@ describe('printing', () => {
 	});
 
 	it('is linear: a sum of texts is the sum of the functionals', () => {
+		const outputs = [0, 1, 2].map(() => [2, 2, 2]);
+		const wide = (f: Functional) => makeFunctional({ outputs }, f.terms);
 		fc.assert(
-			fc.property(functional(true), functional(true), (f, g) => {
+			fc.property(functional(true).map(wide), functional(true).map(wide), (f, g) => {
 				const text = `(${printExpression(f)}) - 3/2 (${printExpression(g)})`;
-				const outputs = [0, 1, 2].map(() => [2, 2, 2]);
-				const wide = makeFunctional({ outputs }, [
-					...f.terms,
-					...g.terms.map((t) => ({
-						...t,
-						coefficient: minusThreeHalves(t.coefficient)
-					}))
-				]);
-				expectSame(read(text, { outputs }), wide);
+				const scaled = g.terms.map((t) => ({
+					...t,
+					coefficient: minusThreeHalves(t.coefficient)
+				}));
+				expectSame(read(text, { outputs }), makeFunctional({ outputs }, [...f.terms, ...scaled]));
 			}),
 			{ numRuns: 100 }
 		);
+	});
+
+	it('takes probabilities where they are shorter', () => {
+		expect(printExpression(familyFunctional({ name: 'gyni', n: 3 }))).toBe(
+			'1/4 P(0,0,0|0,0,0) + 1/4 P(1,1,0|0,1,1) + 1/4 P(0,1,1|1,0,1) + 1/4 P(1,0,1|1,1,0)'
+		);
+	});
+
+	it('prints and reads six parties', () => {
+		const f = familyFunctional({ name: 'mermin', n: 6 });
+		const text = printExpression(f);
+		expect(text.split(/[+-]/)).toHaveLength(32);
+		expect(read(text).terms).toEqual(f.terms);
 	});
 });
 

@@ -13,6 +13,7 @@ import { correlatorTerms, type Observable } from './observables';
 import type { Event, Scenario } from './scenario';
 
 export const TABLE_LIMITS = {
+	characters: 200_000,
 	rows: 130,
 	columns: 130,
 	parties: 6,
@@ -27,13 +28,17 @@ export type TableCell = string | number;
  * spaces; also the body of a LaTeX matrix (`&` and `\\`) and nested brackets. @throws NotationError
  */
 export function splitTable(text: string): string[][] {
+	if (text.length > TABLE_LIMITS.characters)
+		throw new NotationLimitError(
+			`a table has at most ${TABLE_LIMITS.characters.toLocaleString('en')} characters`
+		);
 	const rows = text
-		.replace(/\\(begin|end)\{[a-z*]+\}(\{[lcr|\s]*\})?/g, '\n')
-		.replace(/\\(hline|cline\{[^}]*\}|toprule|midrule|bottomrule)/g, ' ')
-		.replace(/\\\\(\[[^\]]*\])?/g, '\n')
-		.replace(/\]\s*,?\s*\[/g, '\n')
+		.replace(/\\(begin|end)\{[a-z*]{1,20}\}(\{[lcr| ]{0,200}\})?/g, '\n')
+		.replace(/\\(hline|cline\{[\d-]{1,9}\}|toprule|midrule|bottomrule)/g, ' ')
+		.replace(/\\\\(\[[^\]]{0,20}\])?/g, '\n')
+		.replace(/\][\s,]*\[/g, '\n')
 		.split(/\r?\n/)
-		.map((line) => line.replace(/^[\s[]+|[\s\],]+$/g, ''))
+		.map((line) => trim(line, ' \t\u00a0[],'))
 		.filter((line) => line !== '');
 	const cells = rows.map(splitRow);
 	checkSize(cells);
@@ -43,9 +48,17 @@ export function splitTable(text: string): string[][] {
 function splitRow(line: string): string[] {
 	const separator = ['&', '\t', ';', ','].find((mark) => line.includes(mark));
 	return line
-		.split(separator ?? /[ \u00a0|]+/)
-		.map((cell) => cell.replace(/^[\s|$]+|[\s|$]+$/g, ''))
+		.split(separator ?? /[ \u00a0|]/)
+		.map((cell) => trim(cell, ' \t\u00a0|$'))
 		.filter((cell) => separator === '&' || separator === '\t' || cell !== '');
+}
+
+/** Takes the given characters off both ends; in linear time, which a regular expression is not. */
+function trim(text: string, characters: string): string {
+	let [start, end] = [0, text.length];
+	while (start < end && characters.includes(text.charAt(start))) start++;
+	while (end > start && characters.includes(text.charAt(end - 1))) end--;
+	return text.slice(start, end);
 }
 
 function checkSize(rows: readonly (readonly TableCell[])[]): { height: number; width: number } {

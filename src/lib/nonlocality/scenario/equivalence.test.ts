@@ -171,6 +171,9 @@ describe('canonical form', () => {
 		});
 		expect(affineMap(one, zero)).toMatchObject({ scale: { text: '1' }, shift: { text: '1' } });
 		expect(affineMap(one, familyFunctional({ name: 'chsh' }))).toBeNull();
+		// cos(pi/5) = (1 + sqrt 5)/4, which no symbolic form here knows
+		const vanishing = functionalOfTerms([[2], [2]], [['cos(pi/5)-(1+sqrt(5))/4', [[0, 0, 0]]]]);
+		expect(canonicalForm(vanishing).digest).toBe(canonicalForm(zero).digest);
 	});
 });
 

@@ -53,7 +53,8 @@ export function canonicalForm(
 ): CanonicalForm {
 	const zeroSum = zeroSumForm(functional);
 	const shift = zeroSum.constant;
-	const expanded = functionalOfZeroSumForm({ ...zeroSum, constant: COEFFICIENT_ZERO });
+	const whole = functionalOfZeroSumForm({ ...zeroSum, constant: COEFFICIENT_ZERO });
+	const expanded = { ...whole, terms: whole.terms.filter(isKnownNonzero) };
 	const version = DIGEST_VERSION;
 	if (expanded.terms.length === 0) {
 		const canonical = makeFunctional({ outputs: [] }, []);
@@ -116,6 +117,11 @@ export function agree(a: CanonicalForm, b: CanonicalForm): boolean {
 		if (c.exact && d.exact) return c.exact.equals(d.exact);
 		return Math.abs(c.value - d.value) <= NUMERICAL_TOLERANCE;
 	});
+}
+
+/** An irrational sum that cancels within its own error counts as zero. */
+function isKnownNonzero({ coefficient: c }: Term): boolean {
+	return c.exact !== null || Math.abs(c.value) > c.error;
 }
 
 interface IntegerTerm extends Term {

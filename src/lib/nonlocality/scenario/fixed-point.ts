@@ -1,3 +1,4 @@
+import { overCommonDenominator } from '../exact/common-denominator';
 import { exactOfDouble, ratio, toDoubleUp, type Rational, ZERO } from '../exact/rational';
 import { isRational, type Functional } from './functional';
 import type { Event } from './scenario';
@@ -18,26 +19,19 @@ export interface IntegerFunctional {
  */
 const GRID_BITS = 50;
 
-function gcd(a: bigint, b: bigint): bigint {
-	while (b !== 0n) [a, b] = [b, a % b];
-	return a < 0n ? -a : a;
-}
-
 /**
  * Scales a functional to integers: exactly when it is rational, otherwise rounded to a power-of-two
  * grid, with the sum of all rounding and coefficient errors as the allowance (each P is in [0, 1]).
  */
 export function integerFunctional(functional: Functional): IntegerFunctional {
 	if (isRational(functional)) {
-		let denominator = 1n;
-		for (const { coefficient } of functional.terms) {
-			const d = coefficient.exact?.d ?? 1n;
-			denominator *= d / gcd(denominator, d);
-		}
-		const terms = functional.terms.map(({ coefficient, events }) => {
-			const { s, n, d } = coefficient.exact ?? ZERO;
-			return { coefficient: s * n * (denominator / d), events };
-		});
+		const { integers, denominator } = overCommonDenominator(
+			functional.terms.map(({ coefficient }) => coefficient.exact ?? ZERO)
+		);
+		const terms = functional.terms.map(({ events }, i) => ({
+			coefficient: integers[i] ?? 0n,
+			events
+		}));
 		return { terms, denominator, allowance: ZERO };
 	}
 	const sum = functional.terms.reduce((total, t) => total + Math.abs(t.coefficient.value), 0);

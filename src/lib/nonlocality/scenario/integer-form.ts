@@ -7,7 +7,8 @@ import {
 	realCoefficient,
 	type Coefficient
 } from '../exact/coefficient';
-import { ONE, ZERO, numeratorOf, ratio, type Rational } from '../exact/rational';
+import { greatestCommonDivisor, overCommonDenominator } from '../exact/common-denominator';
+import { ONE, ZERO, ratio, type Rational } from '../exact/rational';
 
 /** Coefficients as integers: each is `scale` times its integer, up to 1e-12 when numerical. */
 export interface IntegerForm {
@@ -37,9 +38,8 @@ export function integerForm(coefficients: readonly Coefficient[]): IntegerForm {
 		if (!quotient) return numericalForm(coefficients);
 		ratios.push(quotient);
 	}
-	const denominator = ratios.reduce((d, q) => (d * q.d) / gcd(d, q.d), 1n);
-	const scaled = ratios.map((q) => numeratorOf(q) * (denominator / q.d));
-	const divisor = scaled.reduce((g, n) => gcd(g, n), 0n);
+	const { integers: scaled, denominator } = overCommonDenominator(ratios);
+	const divisor = scaled.reduce(greatestCommonDivisor, 0n);
 	const sign = reference.value < 0 ? -1n : 1n;
 	const integers = scaled.map((n) => (sign * n) / divisor);
 	return {
@@ -48,11 +48,6 @@ export function integerForm(coefficients: readonly Coefficient[]): IntegerForm {
 		normalised: integers.map((n) => exactCoefficient(ratio(n))),
 		numerical: false
 	};
-}
-
-function gcd(a: bigint, b: bigint): bigint {
-	while (b !== 0n) [a, b] = [b, a % b];
-	return a < 0n ? -a : a;
 }
 
 /** a / b when that is a rational number by their symbolic forms, otherwise null. */

@@ -81,6 +81,9 @@ describe('signing in and out', () => {
 		const after = first.cookies.get('merestone') ?? '';
 		expect(after).toMatch(/^[\w-]{27}$/);
 		expect(after).not.toBe(before);
+		const old = new Visitor(server);
+		old.cookies.set('merestone', before);
+		expect((await old.get('/account')).status).toBe(303);
 
 		const client = createClient({ url: server.databaseUrl });
 		const ids = (await client.execute('SELECT id FROM sessions')).rows.map((row) => String(row[0]));

@@ -71,11 +71,15 @@ describe('imports', () => {
 });
 
 describe('every route guards itself', () => {
+	const SHARED = 'a run belongs to no group; the service shows it to whom a claim on it is visible';
 	/** Open to everyone by intent, each with its reason. */
 	const OPEN: Readonly<Record<string, string>> = {
 		'src/routes/+layout.server.ts': 'who is here, for the header; nothing for a visitor',
 		'src/routes/(account)/sign-out/+server.ts': 'signing out twice is no error',
-		'src/routes/(account)/join/[token]/+page.server.ts': 'shows whom a link lets in, to its holder'
+		'src/routes/(account)/join/[token]/+page.server.ts': 'shows whom a link lets in, to its holder',
+		'src/routes/api/v1/recomputations/[id]/check/+server.ts': SHARED,
+		'src/routes/api/v1/recomputations/[id]/result/+server.ts': SHARED,
+		'src/routes/api/v1/recomputations/[id]/sdpa/+server.ts': SHARED
 	};
 	const GUARD = /\b(requireUser|requireRole|requireAdmin|publicContext)\(/;
 	const doors = sources.filter(({ path }) =>

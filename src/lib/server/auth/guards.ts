@@ -29,10 +29,7 @@ export function requireUser(event: RequestEvent): UserContext {
 	if (actor) return { ...ctx, actor };
 	const isPage = event.request.method === 'GET' && !event.url.pathname.startsWith('/api/');
 	if (isPage) {
-		redirect(
-			303,
-			`/sign-in?next=${encodeURIComponent(event.url.pathname + event.url.search)}`
-		);
+		redirect(303, `/sign-in?next=${encodeURIComponent(event.url.pathname + event.url.search)}`);
 	}
 	error(401, 'Sign in first.');
 }

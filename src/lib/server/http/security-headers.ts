@@ -1,5 +1,6 @@
 import type { RequestEvent } from '@sveltejs/kit';
 import { config } from '../config';
+import { STRICT_TRANSPORT } from './every-answer';
 
 const ALWAYS = {
 	'X-Content-Type-Options': 'nosniff',
@@ -15,7 +16,7 @@ export function setSecurityHeaders(event: RequestEvent, response: Response): voi
 	const { headers } = response;
 	for (const [name, value] of Object.entries(ALWAYS)) headers.set(name, value);
 	if (config().secure) {
-		headers.set('Strict-Transport-Security', 'max-age=63072000; includeSubDomains');
+		headers.set('Strict-Transport-Security', STRICT_TRANSPORT);
 	}
 	if (!headers.has('Content-Security-Policy')) {
 		headers.set('Content-Security-Policy', "default-src 'none'; frame-ancestors 'none'");

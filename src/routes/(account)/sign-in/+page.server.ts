@@ -26,7 +26,7 @@ export const actions: Actions = {
 		form.data = { ...data, password: '' };
 		if (!form.valid) return fail(400, { form });
 		try {
-			enter(event, await signIn(ctx, data, event.getClientAddress()));
+			await enter(event, await signIn(ctx, data, event.getClientAddress()));
 		} catch (thrown) {
 			return failForm(form, thrown);
 		}

@@ -29,7 +29,7 @@ export const actions: Actions = {
 		const address = event.getClientAddress();
 		try {
 			await signUp(ctx, data, address);
-			enter(event, await signIn(ctx, data, address));
+			await enter(event, await signIn(ctx, data, address));
 		} catch (thrown) {
 			return failForm(form, thrown);
 		}

@@ -22,10 +22,10 @@ const DECIMAL =
  */
 export function parseRational(text: string): Rational | null {
 	const trimmed = text.trim();
-	const slash = trimmed.indexOf('/');
-	if (slash >= 0) {
-		const above = parseRational(trimmed.slice(0, slash));
-		const below = parseRational(trimmed.slice(slash + 1));
+	const [numerator = '', denominator, more] = trimmed.split('/', 3);
+	if (denominator !== undefined) {
+		const above = parseRational(numerator);
+		const below = more === undefined ? parseRational(denominator) : null;
 		if (!above || !below || below.n === 0n) return null;
 		return above.div(below);
 	}

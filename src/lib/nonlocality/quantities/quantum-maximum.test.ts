@@ -84,6 +84,20 @@ describe('quantumMaximum', () => {
 		expect(upper).toBeCloseTo(Math.sqrt(10), 8);
 	});
 
+	it('follows a scale, a constant and a relabelling of the functional', () => {
+		const { problem } = setUp({ name: 'cglmp', d: 3 });
+		// 3 f + 1 with the parties exchanged and every output moved on by one
+		const moved = problem.terms.map(
+			([c, events]) =>
+				[`3*(${c})`, events.map(([p, x, a]) => [1 - p, x, (a + 1) % 3] as const)] as const
+		);
+		const changed: ProblemOf<'quantum'> = { ...problem, terms: [...moved, ['1', []]], gap: 1e-7 };
+		const { lower, upper } = quantumMaximum(changed, functionalToMaximise(changed), control);
+		// Phys. Rev. A 65, 052325 (2002), Table I
+		expect(Math.abs((lower ?? 0) - (3 * 2.914854215512676 + 1))).toBeLessThan(1e-7);
+		expect(Math.abs((upper ?? 0) - (3 * 2.914854215512676 + 1))).toBeLessThan(1e-7);
+	});
+
 	it('keeps the deterministic strategy where nothing quantum is better', () => {
 		const { g, problem } = setUp({ name: 'gyni', n: 3 });
 		const { certificate, method } = quantumMaximum(problem, g, control);

@@ -5,6 +5,7 @@ import { claims, inequalities, recomputations, references } from '../../db/schem
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
+import { quantityInfo } from '../recomputations/claim-problem';
 import {
 	PROGRESS_COLUMNS,
 	jobsAhead,
@@ -48,7 +49,9 @@ export async function claimRows(
 	const rows: LedgerRow[] = [];
 	for (const { claim, inequality, reference, run } of selected) {
 		const map = readMap(claim);
-		const own = claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
+		// Only maxima of the functional are drawn on the rule.
+		const onRule = quantityInfo(claim.input.quantity).subject === 'functional';
+		const own = onRule && claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
 		rows.push({
 			id: claim.id,
 			number: claim.number,

@@ -42,7 +42,9 @@ export async function claimView(
 	if (!joined) throw new ServiceError('not-found', 'This claim is gone.');
 	const { inequality, run } = joined;
 	const map = readMap(claim);
-	const { inequalityId } = claim;
+	const info = quantityInfo(claim.input.quantity);
+	// Maxima of the functional stand beside those of the nested sets; a visibility or a rate does not.
+	const inequalityId = info.subject === 'functional' ? claim.inequalityId : null;
 	const stations = inequalityId
 		? ((await loadStations(read, [inequalityId])).get(inequalityId) ?? [])
 		: [];
@@ -55,7 +57,7 @@ export async function claimView(
 		groupSlug: joined.group.slug,
 		groupName: joined.group.name,
 		subject: subjectView({
-			inequalityId,
+			inequalityId: claim.inequalityId,
 			name: inequality?.name ?? null,
 			nameLatex: inequality?.nameLatex ?? null,
 			text: claim.subject,
@@ -80,7 +82,7 @@ export async function claimView(
 		reference: referenceView(joined.reference),
 		history: await claimHistory(read, claim.id),
 		input: claim.input,
-		caution: quantityInfo(claim.input.quantity).caution,
+		caution: info.caution,
 		enteredBy: joined.enteredBy,
 		enteredAt: claim.createdAt.toISOString()
 	};

@@ -2,7 +2,7 @@ import { and, eq, inArray, isNotNull, or, sql } from 'drizzle-orm';
 import type { Finding } from '../../../ledger/evidence';
 import type { DoneResult } from '../../../nonlocality/problem';
 import type { Transaction } from '../../db/client';
-import { claims, recomputations } from '../../db/schema';
+import { claims, recomputations, type Station } from '../../db/schema';
 
 /** A finished recomputation as verdicts see it. */
 export interface StoredFinding extends Finding {
@@ -17,6 +17,18 @@ const slimResult = sql`
 		'upperLevel', json(${recomputations.result} -> '$.certificate.upperLevel')))`.mapWith(
 	(text: string): DoneResult => JSON.parse(text)
 );
+
+/** Of values that would explain a claim equally well, the one a paper most likely meant. */
+const EXPLAINING: readonly Station[] = [
+	'quantum',
+	'almost-quantum',
+	'npa-1-non-negative',
+	'npa-1',
+	'see-saw-2',
+	'no-signalling',
+	'local',
+	'npa-2'
+];
 
 /**
  * What has been recomputed about an inequality: its stations, and what the group's own claims asked
@@ -56,7 +68,10 @@ async function loadFindings(
 				or(isNotNull(recomputations.station), inArray(recomputations.id, asked))
 			)
 		);
-	return rows.map(({ id, station, checked, checkNote, lower, upper, exact, result }) => ({
+	const order = (station: Station | null) =>
+		station === null ? EXPLAINING.length : EXPLAINING.indexOf(station);
+	const sorted = [...rows].sort((a, b) => order(a.station) - order(b.station));
+	return sorted.map(({ id, station, checked, checkNote, lower, upper, exact, result }) => ({
 		id,
 		isStation: station !== null,
 		result,

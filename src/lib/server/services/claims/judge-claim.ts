@@ -9,7 +9,7 @@ import type { Problem } from '../../../nonlocality/problem';
 import type { Transaction } from '../../db/client';
 import { inequalities, recomputations, type claims } from '../../db/schema';
 import { readMap, type AffineMap as EnclosedMap } from '../inequalities/affine';
-import { claimProblem, readQuantity } from '../recomputations/claim-problem';
+import { claimProblem, quantityInfo, readQuantity } from '../recomputations/claim-problem';
 import { explainVerdict } from './explain-verdict';
 import type { FindingsOf, StoredFinding } from './findings';
 
@@ -69,7 +69,9 @@ async function ownRun(tx: Transaction, claim: JudgedClaim): Promise<OwnRun | nul
 
 /** Why nothing recomputes the claim: no solver for the quantity, or a limit of the one there is. */
 async function noSolver(tx: Transaction, claim: JudgedClaim): Promise<RecomputationState> {
-	if (claim.inequalityId === null) return { kind: 'no-solver' };
+	if (claim.inequalityId === null || quantityInfo(claim.input.quantity).solver === null) {
+		return { kind: 'no-solver' };
+	}
 	const [subject] = await tx
 		.select({ outputs: inequalities.outputs, terms: inequalities.terms })
 		.from(inequalities)

@@ -36,6 +36,13 @@ export function almostQuantumLevel(parties: number): Level {
 	return parties === 2 ? '1+AB' : { perParty: 1 };
 }
 
+/** Level k has the moments of at most 2k operators: of three parties level 1 knows no correlator. */
+function hasMoments(problem: Problem): boolean {
+	if (problem.quantity !== 'npa' || typeof problem.level !== 'number') return true;
+	const most = Math.max(0, ...problem.terms.map(([, events]) => events.length));
+	return most <= 2 * problem.level;
+}
+
 /** The problems behind the stations, in the order they are run. */
 export function stationProblems(
 	subject: ProblemSubjectData,
@@ -71,5 +78,7 @@ export function stationProblems(
 			gap: QUANTUM_GAP
 		}
 	};
-	return STATIONS.map((station) => ({ station, problem: problems[station] }));
+	return STATIONS.map((station) => ({ station, problem: problems[station] })).filter(
+		({ problem }) => hasMoments(problem)
+	);
 }

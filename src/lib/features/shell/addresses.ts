@@ -5,7 +5,9 @@ export const ADDRESSES = {
 	signIn: '/sign-in',
 	signOut: '/sign-out',
 	account: '/account',
-	newGroup: '/groups/new'
+	newGroup: '/groups/new',
+	/** Someone without an account makes one, then a group. */
+	newcomer: '/sign-up?next=/groups/new'
 } as const;
 
 export interface ShellGroup {

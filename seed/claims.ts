@@ -138,7 +138,7 @@ export const CLAIMS: readonly SeedClaim[] = [
 			locator: 'p. 78'
 		}
 	},
-	// Sign: the minimum of CHSH
+	// Another quantity: the maximum, not the minimum
 	{
 		key: 'chsh-minimum',
 		paper: 'halden1998',
@@ -151,7 +151,19 @@ export const CLAIMS: readonly SeedClaim[] = [
 			locator: 'p. 79'
 		}
 	},
-	// Under way when the demo starts; then consistent, not settled: the printed digits ask for more
+	// Sign
+	{
+		key: 'elegant-sign',
+		paper: 'halden1998',
+		by: 'member',
+		input: {
+			...family('elegant'),
+			quantity: 'no-signalling',
+			printed: '-12',
+			locator: 'p. 81'
+		}
+	},
+	// Settled by a strategy grown to large local dimension
 	{
 		key: 'i3322-quantum',
 		paper: 'lindmark2011',
@@ -162,8 +174,20 @@ export const CLAIMS: readonly SeedClaim[] = [
 			printed: '0.2509',
 			method: 'See-saw in large dimension',
 			locator: 'Table II, row 3'
-		},
-		leaveQueued: true
+		}
+	},
+	// Consistent, not settled: the printed digits ask for more than the enclosure gives
+	{
+		key: 'i3322-more-digits',
+		paper: 'novik2019',
+		by: 'member',
+		input: {
+			...family('i3322'),
+			quantity: 'quantum',
+			printed: '0.250875',
+			method: 'See-saw in large dimension',
+			locator: 'p. 13'
+		}
 	},
 	// Another quantity: the level the stated method would give
 	{
@@ -444,19 +468,34 @@ export const CLAIMS: readonly SeedClaim[] = [
 			locator: 'Thm 2'
 		}
 	},
-	// Open: past a solver's limit
+	// Open: the solver refuses, and names the level that would do
 	{
-		key: 'cglmp5-level-2',
-		paper: 'osk2015',
+		key: 'gyni-level-1',
+		paper: 'marsden2013',
 		by: 'maintainer',
 		input: {
-			...family('cglmp', '5'),
+			...family('gyni', '3'),
+			quantity: 'npa',
+			level: '1',
+			printed: '0.2500',
+			method: 'NPA level 1',
+			locator: 'Prop. 3'
+		}
+	},
+	// Under way when the demo starts
+	{
+		key: 'chained6-level-2',
+		paper: 'osk2015',
+		by: 'member',
+		input: {
+			...family('chained', '6'),
 			quantity: 'npa',
 			level: '2',
-			printed: '3.0157',
+			printed: '11.5911',
 			method: 'NPA level 2',
 			locator: 'Sec. 5'
-		}
+		},
+		leaveQueued: true
 	},
 	// Agreement with a level of the hierarchy
 	{

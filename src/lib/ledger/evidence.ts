@@ -141,11 +141,17 @@ export function othersOfFindings(
 ): readonly OtherValue[] {
 	return findings
 		.filter(({ result }) => !sameQuantity(result.problem, claimed))
+		.filter(({ result: { problem } }) => maySubstitute(problem, claimed))
 		.map((finding) => ({
 			...valueOfFinding(finding, map),
 			matchesMethod: methodMatches(method, finding.result.problem)
 		}))
 		.filter(({ lower, upper }) => lower !== null && upper !== null);
+}
+
+/** A maximum is offered for a claimed minimum, or the other way, only for the same set. */
+function maySubstitute(problem: Problem, claimed: Problem): boolean {
+	return problem.sense === claimed.sense || problem.quantity === claimed.quantity;
 }
 
 /** The proved exact value of a quantity among the findings, in the problem's normalisation. */

@@ -27,6 +27,9 @@ export const REASON_CODES = [
 ] as const;
 export type ReasonCode = (typeof REASON_CODES)[number];
 
+/** Why a claim stays Open for good: the usual `why` of `no-solver`. */
+export const NO_SOLVER = 'no solver for this quantity';
+
 /** The state of the recomputation behind a claim, when there is nothing to judge yet. */
 export type RecomputationState =
 	| { readonly kind: 'no-solver'; readonly why?: string }

@@ -3,7 +3,7 @@ import { sizeOf, type ReadInterval } from './accepted-set';
 import type { Relation } from './claim';
 import { isExact, type Enclosure } from './enclosure';
 import { placesOfGap, rationalOf, showEnclosure, showExact, withMinusSign } from './figures';
-import { distanceTo, type Judgement, type RecomputationState } from './judgement';
+import { NO_SOLVER, distanceTo, type Judgement, type RecomputationState } from './judgement';
 
 export interface ReasonInput {
 	readonly reading: ReadInterval;
@@ -59,7 +59,7 @@ function mainSentence({ reasonCode, enclosure }: Judgement, input: ReasonInput):
 		}
 		case 'no-solver': {
 			const why = recomputation.kind === 'no-solver' ? recomputation.why : undefined;
-			const because = why ? `: ${closed(why)}` : '.';
+			const because = why && why !== NO_SOLVER ? `: ${closed(why)}` : '.';
 			return `No solver for this quantity${because} Only a person's reproduction can settle it.${knownSoFar(enclosure)}`;
 		}
 		default:

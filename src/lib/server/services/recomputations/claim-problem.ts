@@ -1,3 +1,4 @@
+import { NO_SOLVER } from '../../../ledger/judgement';
 import { QUANTITIES, type QuantityInfo, type QuantityKey } from '../../../ledger/quantities';
 import type { Level, Problem } from '../../../nonlocality/problem';
 import type { FieldIssue } from '../../errors';
@@ -115,7 +116,7 @@ export function claimProblem(
 	const parties = subject.outputs.length;
 	switch (info.solver) {
 		case null:
-			return { why: 'no solver for this quantity' };
+			return { why: NO_SOLVER };
 		case 'local':
 			return { problem: { ...base, quantity: 'local' } };
 		case 'no-signalling':

@@ -27,6 +27,8 @@ export type {
 	QuantityOfProblem,
 	QuantumStrategy
 } from './problem';
+export { behaviourOfTable, type Behaviour } from './scenario/behaviour';
+export { behaviourOfStrategy } from './scenario/strategy-behaviour';
 export {
 	EXPRESSION_LIMITS,
 	parseExpression,

@@ -1,12 +1,15 @@
 import type { z } from 'zod';
 import {
+	behaviourOfStrategy,
+	behaviourOfTable,
 	termsOfFunctional,
 	type Level,
 	type Problem,
+	type ProblemBox,
 	type ProblemConstraint
 } from '../nonlocality/notation';
 import { readBox, readState } from './problem-box';
-import { ProblemError, ProblemLimitError, UnsolvedQuantityError } from './problem-error';
+import { ProblemError, ProblemLimitError, UnsolvedQuantityError, onField } from './problem-error';
 import { PROBLEM_LIMITS, problemShape, type ProblemShape } from './problem-shape';
 import { checkOutputs, readCoefficient, readFunctional } from './problem-subject';
 
@@ -147,7 +150,17 @@ function readSubject(shape: ProblemShape) {
 			'box',
 			`is for the outputs ${JSON.stringify(read.outputs)}, the functional for ${JSON.stringify(outputs)}`
 		);
+	if (read) checkBox(read.box, outputs);
 	return { outputs, terms: termsOfFunctional(functional), box: read?.box ?? null };
+}
+
+/** A box that is no behaviour (negative, not normalised, signalling) is malformed. */
+function checkBox(box: ProblemBox, outputs: Problem['outputs']): void {
+	onField('box', () =>
+		box.kind === 'table'
+			? behaviourOfTable({ outputs }, box.probabilities)
+			: behaviourOfStrategy({ outputs }, box.strategy)
+	);
 }
 
 function readConstraints(shape: ProblemShape, outputs: Problem['outputs']): ProblemConstraint[] {

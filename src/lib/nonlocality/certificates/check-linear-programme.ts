@@ -3,7 +3,7 @@
  * behaviour, exactly, and g is evaluated on it. Upper side: g + sum of multiplier * P is written in
  * Collins-Gisin coordinates, where what is left over is bounded by its positive entries.
  */
-import { exactCoefficient } from '../exact/coefficient';
+import { exactCoefficient, multiplyCoefficients, negateCoefficient } from '../exact/coefficient';
 import {
 	ONE,
 	ZERO,
@@ -20,6 +20,8 @@ import {
 	type Functional,
 	type Term
 } from '../scenario/functional';
+import type { Problem, ProblemConstraint } from '../problem';
+import { functionalOfTerms } from '../scenario/problem-terms';
 import type { Event, Scenario } from '../scenario/scenario';
 import { readTable, tableDefect, marginalOf, type ExactTable } from '../scenario/exact-table';
 import type { CheckOutcome, LinearProgrammeCertificate } from './types';
@@ -28,6 +30,7 @@ const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
 
 /** Proves both sides of the no-signalling maximum of g. */
 export function checkLinearProgramme(
+	problem: Problem,
 	g: Functional,
 	certificate: LinearProgrammeCertificate
 ): CheckOutcome {
@@ -46,9 +49,19 @@ export function checkLinearProgramme(
 	if (typeof primal === 'string') return refuse(`primal: ${primal}`);
 	const defect = tableDefect(primal);
 	if (defect) return refuse(`primal: ${defect}`);
+	const constraints = problem.constraints.map((constraint) =>
+		readConstraint(g.scenario, constraint)
+	);
+	for (const [k, { form, relation }] of constraints.entries()) {
+		if (form.some(({ coefficient }) => !coefficient.exact))
+			return refuse(`constraint ${k} is irrational`);
+		const sign = valueOf(form, primal).compare(0);
+		if ((relation !== '<=' && sign < 0) || (relation !== '>=' && sign > 0))
+			return refuse(`primal: constraint ${k} is violated`);
+	}
 	const below = valueOf(terms, primal);
 
-	const above = boundOf(g.scenario, terms, certificate.dual);
+	const above = boundOf(g.scenario, terms, constraints, certificate.dual);
 	if (typeof above === 'string') return refuse(`dual: ${above}`);
 
 	if (certificate.value !== null) {
@@ -78,16 +91,24 @@ function valueOf(terms: readonly Term[], table: ExactTable): Rational {
 function boundOf(
 	scenario: Scenario,
 	terms: readonly Term[],
+	constraints: readonly ReadConstraint[],
 	dual: LinearProgrammeCertificate['dual']
 ): Rational | string {
 	const multipliers: Term[] = [];
 	for (const [key, text] of Object.entries(dual)) {
 		const events = readEvents(key);
+		const row = events ? null : readRow(key, constraints);
 		const value = parseRational(text);
-		if (!events) return `"${key}" names no probability`;
+		if (!events && !row) return `"${key}" names no probability and no constraint`;
 		if (!value) return `the multiplier of ${key} is no fraction`;
 		if (value.n !== 0n && value.s < 0n) return `the multiplier of ${key} is negative`;
-		multipliers.push({ coefficient: exactCoefficient(value), events });
+		const coefficient = exactCoefficient(value);
+		if (events) multipliers.push({ coefficient, events });
+		for (const term of row ?? [])
+			multipliers.push({
+				...term,
+				coefficient: multiplyCoefficients(coefficient, term.coefficient)
+			});
 	}
 	let bound = ZERO;
 	// makeFunctional refuses events outside the scenario.
@@ -98,6 +119,29 @@ function boundOf(
 		if (events.length === 0 || value.s > 0n) bound = bound.add(value);
 	}
 	return bound;
+}
+
+/** form >= 0, form <= 0 or form = 0. */
+interface ReadConstraint {
+	readonly form: readonly Term[];
+	readonly relation: ProblemConstraint['relation'];
+}
+
+function readConstraint(scenario: Scenario, constraint: ProblemConstraint): ReadConstraint {
+	const { terms, value, relation } = constraint;
+	const form = functionalOfTerms(scenario, [...terms, [`-(${value})`, []] as const]).terms;
+	return { form, relation };
+}
+
+/** The terms that `constraint 0 >=` or `constraint 0 <=` says are non-negative in sum. */
+function readRow(key: string, constraints: readonly ReadConstraint[]): readonly Term[] | null {
+	const match = /^constraint (\d+) (>=|<=)$/.exec(key);
+	const constraint = constraints[Number(match?.[1])];
+	if (!constraint) return null;
+	const { form, relation } = constraint;
+	if (relation !== '=' && relation !== match?.[2]) return null;
+	if (match?.[2] === '>=') return form;
+	return form.map((term) => ({ ...term, coefficient: negateCoefficient(term.coefficient) }));
 }
 
 /** `"a,b|x,y"` as events. */

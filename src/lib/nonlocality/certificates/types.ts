@@ -20,7 +20,9 @@ export interface LinearProgrammeCertificate {
 	/** A no-signalling behaviour: proves g >= its value. */
 	readonly primal: Readonly<Record<string, string>>;
 	/**
-	 * Multipliers m(a|x) >= 0 of the rows P(a|x) >= 0. In Collins-Gisin coordinates y (each a
+	 * Multipliers m >= 0 of the rows P(a|x) >= 0, and of the problem's constraints as
+	 * `constraint 0 >=` (form - value >= 0) or `constraint 0 <=` (value - form >= 0); P stands for
+	 * any of these rows in what follows. In Collins-Gisin coordinates y (each a
 	 * probability, in [0, 1]) let g + sum m P = U + sum_i r_i y_i; then g <= U + sum_i max(0, r_i).
 	 */
 	readonly dual: Readonly<Record<string, string>>;

@@ -42,10 +42,13 @@ function checkCertificate(
 	if (!certificate) return refuse('the result carries no certificate');
 	switch (certificate.kind) {
 		case 'deterministic-strategy':
+			if (problem.quantity === 'local' && problem.constraints.length > 0)
+				return refuse('a strategy alone proves nothing on the maximum under constraints');
 			if (problem.quantity === 'local') return checkDeterministicStrategy(g, certificate);
 			break;
 		case 'linear-programme':
-			if (problem.quantity === 'no-signalling') return checkLinearProgramme(g, certificate);
+			if (problem.quantity === 'no-signalling')
+				return checkLinearProgramme(problem, g, certificate);
 			break;
 		case 'quantum-strategy':
 			if (problem.quantity === 'see-saw') return checkStrategy(problem, g, certificate);

@@ -3,7 +3,8 @@ import { nearbyFraction, overCommonDenominator } from '../exact/common-denominat
 import { ONE, ZERO, exactOfDouble, ratio, type Rational } from '../exact/rational';
 import { solveExactly } from '../optimization/exact-linear-system';
 import type { LinearProgrammeSolution } from '../optimization/linear-programme';
-import type { NoSignallingRows, ProbabilityRow } from './no-signalling-rows';
+import { SolverStop } from '../problem';
+import type { NoSignallingRows, PolytopeRow } from './no-signalling-rows';
 
 /** constant + sum of costs * y, integers. */
 export interface IntegerObjective {
@@ -12,7 +13,7 @@ export interface IntegerObjective {
 }
 
 export interface ExactBehaviour {
-	/** Of each row, all >= 0. */
+	/** Of each probability, all >= 0. */
 	readonly probabilities: readonly Rational[];
 	readonly value: Rational;
 	readonly how: string;
@@ -79,7 +80,7 @@ function roundAll(values: Float64Array, size: number): Rational[] | null {
 	return fractions;
 }
 
-/** Null unless every probability is >= 0. */
+/** Null unless every row is >= 0. */
 function behaviourAt(
 	polytope: NoSignallingRows,
 	{ costs, constant }: IntegerObjective,
@@ -88,19 +89,18 @@ function behaviourAt(
 ): ExactBehaviour | null {
 	const { integers, denominator } = overCommonDenominator(coordinates);
 	const probabilities: Rational[] = [];
-	for (const row of polytope.rows) {
+	for (const [i, row] of polytope.rows.entries()) {
 		const numerator = valueOfRow(row, integers, denominator);
 		if (numerator < 0n) return null;
-		probabilities.push(ratio(numerator, denominator));
+		if (i < polytope.probabilityCount) probabilities.push(ratio(numerator, denominator));
 	}
 	const sum = costs.reduce((s, c, i) => s + c * (integers[i] ?? 0n), constant * denominator);
 	return { probabilities, value: ratio(sum, denominator), how };
 }
 
-function valueOfRow(row: ProbabilityRow, y: readonly bigint[], denominator: bigint): bigint {
-	let value = row.constant === 1 ? denominator : 0n;
-	for (const [column, sign] of row.entries)
-		value += sign === 1 ? (y[column] ?? 0n) : -(y[column] ?? 0n);
+function valueOfRow(row: PolytopeRow, y: readonly bigint[], denominator: bigint): bigint {
+	let value = BigInt(row.constant) * denominator;
+	for (const [column, factor] of row.entries) value += BigInt(factor) * (y[column] ?? 0n);
 	return value;
 }
 
@@ -116,7 +116,7 @@ function nearVertex(
 	const { integers, denominator } = overCommonDenominator(point);
 	const even = overCommonDenominator(uniform);
 	let weight = ZERO; // of the uniform behaviour: -p / (u - p) at the worst row
-	for (const row of polytope.rows) {
+	for (const row of polytope.rows.slice(0, polytope.probabilityCount)) {
 		const p = ratio(valueOfRow(row, integers, denominator), denominator);
 		if (p.s > 0n || p.n === 0n) continue;
 		const u = ratio(valueOfRow(row, even.integers, even.denominator), even.denominator);
@@ -125,7 +125,7 @@ function nearVertex(
 	}
 	const mixed = point.map((y, i) => y.mul(ONE.sub(weight)).add((uniform[i] ?? ZERO).mul(weight)));
 	const behaviour = behaviourAt(polytope, objective, mixed, 'near the vertex');
-	if (!behaviour) throw new Error('the mixture with the uniform behaviour is not non-negative');
+	if (!behaviour) throw new SolverStop('failed', 'no exact behaviour that meets the constraints');
 	return behaviour;
 }
 
@@ -168,7 +168,7 @@ function multipliersOfBasis(
 	const { matrix } = activeSystem(polytope, solution);
 	if (!matrix) return null;
 	const transposed: [number, number][][] = matrix.map(() => []);
-	matrix.forEach((row, i) => row.forEach(([c, sign]) => transposed[c]?.push([i, sign])));
+	matrix.forEach((row, i) => row.forEach(([c, value]) => transposed[c]?.push([i, value])));
 	const active = solveExactly(
 		transposed,
 		objective.costs.map((c) => -c),
@@ -197,9 +197,9 @@ function boundOf(
 	polytope.rows.forEach((row, i) => {
 		const m = integers[i] ?? 0n;
 		if (m === 0n) return;
-		if (row.constant === 1) bound += m;
-		for (const [column, sign] of row.entries)
-			residuals[column] = (residuals[column] ?? 0n) + (sign === 1 ? m : -m);
+		bound += BigInt(row.constant) * m;
+		for (const [column, factor] of row.entries)
+			residuals[column] = (residuals[column] ?? 0n) + BigInt(factor) * m;
 	});
 	const tight = residuals.every((r) => r === 0n);
 	for (const residual of residuals) if (residual > 0n) bound += residual;

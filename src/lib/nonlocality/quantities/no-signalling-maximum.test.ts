@@ -5,6 +5,7 @@ import { lehmer, problemOn, quietControl } from '../../../../tests/factories/sol
 import { checkLinearProgramme } from '../certificates/check-linear-programme';
 import { parseCoefficient } from '../exact/expression';
 import { parseRational } from '../exact/rational';
+import type { Problem } from '../problem';
 import { familyFunctional, type FamilySpec } from '../scenario/families';
 import { makeFunctional, scaleFunctional, type Functional } from '../scenario/functional';
 import { functionalOfTerms } from '../scenario/problem-terms';
@@ -14,10 +15,11 @@ import { noSignallingMaximum } from './no-signalling-maximum';
 import { noSignallingRows } from './no-signalling-rows';
 import { solve } from './solve';
 
-async function maximumOf(f: Functional) {
-	const outcome = await noSignallingMaximum(problemOn('no-signalling', f), f, quietControl);
+async function maximumOf(f: Functional, constraints: Problem['constraints'] = []) {
+	const problem = problemOn('no-signalling', f, { constraints });
+	const outcome = await noSignallingMaximum(problem, f, quietControl);
 	if (outcome.certificate?.kind !== 'linear-programme') throw new Error('no certificate');
-	const check = checkLinearProgramme(f, outcome.certificate);
+	const check = checkLinearProgramme(problem, f, outcome.certificate);
 	if (!check.checked) throw new Error(check.reason);
 	expect(check.exact).toBe(outcome.exact);
 	return outcome;
@@ -126,6 +128,81 @@ describe('noSignallingMaximum', () => {
 		expect(result).toMatchObject({
 			status: 'limit',
 			reason: expect.stringContaining('25600 inequalities, more than the limit of 20000')
+		});
+	});
+});
+
+describe('under linear constraints', () => {
+	const box = [
+		[2, 2],
+		[2, 2]
+	];
+	const zero = (x: number, y: number, a: number, b: number) =>
+		({
+			terms: [
+				[
+					'1',
+					[
+						[0, x, a],
+						[1, y, b]
+					]
+				]
+			],
+			relation: '=',
+			value: '0'
+		}) as const;
+
+	it("Hardy's paradox reaches 1/2", async () => {
+		// Largest P(00|00) under Hardy's three conditions: 1/2 with no-signalling alone (Cereceda,
+		// Found. Phys. Lett. 13, 427 (2000); from memory).
+		const f = functionalOfTerms(box, [
+			[
+				'1',
+				[
+					[0, 0, 0],
+					[1, 0, 0]
+				]
+			]
+		]);
+		const constraints = [zero(0, 1, 0, 1), zero(1, 0, 1, 0), zero(1, 1, 0, 0)];
+		expect((await maximumOf(f, constraints)).exact).toBe('1/2');
+	});
+
+	it('a bound on one functional limits another, exactly', async () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const { terms } = problemOn('local', chsh);
+		for (const [relation, value, expected] of [
+			['<=', '5/2', '5/2'],
+			['=', '-7/3', '-7/3'],
+			['>=', '3', '4']
+		] as const)
+			expect((await maximumOf(chsh, [{ terms, relation, value }])).exact).toBe(expected);
+	});
+
+	it('says when no behaviour meets them', async () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const { terms } = problemOn('local', chsh);
+		const constraints = [{ terms, relation: '>=', value: '5' }] as const;
+		const result = await solve(problemOn('no-signalling', chsh, { constraints }), quietControl);
+		expect(result).toMatchObject({ status: 'infeasible' });
+	});
+
+	it('the check refuses a behaviour or a multiplier that does not fit them', async () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const { terms } = problemOn('local', chsh);
+		const constraints = [{ terms, relation: '<=', value: '3' }] as const;
+		const problem = problemOn('no-signalling', chsh, { constraints });
+		const free = await noSignallingMaximum(problemOn('no-signalling', chsh), chsh, quietControl);
+		if (free.certificate?.kind !== 'linear-programme') throw new Error('no certificate');
+		expect(checkLinearProgramme(problem, chsh, free.certificate)).toMatchObject({
+			checked: false,
+			reason: 'primal: constraint 0 is violated'
+		});
+		const { certificate } = await noSignallingMaximum(problem, chsh, quietControl);
+		if (certificate?.kind !== 'linear-programme') throw new Error('no certificate');
+		const dual = { 'constraint 0 >=': '1' };
+		expect(checkLinearProgramme(problem, chsh, { ...certificate, dual })).toMatchObject({
+			checked: false
 		});
 	});
 });

@@ -5,7 +5,7 @@ import { SolverStop, type Control, type ProblemOf } from '../problem';
 import { integerFunctional } from '../scenario/fixed-point';
 import { collinsGisinForm, eventsKey, type Functional } from '../scenario/functional';
 import { bestBehaviour, bestMultipliers, type IntegerObjective } from './no-signalling-certificate';
-import { noSignallingRows, type NoSignallingRows } from './no-signalling-rows';
+import { noSignallingRows, withConstraints, type NoSignallingRows } from './no-signalling-rows';
 import type { Outcome } from './outcome';
 import { twiceTheErrors } from './strategy-tensor';
 import { WorkClock } from './work-clock';
@@ -15,7 +15,7 @@ const LARGEST_COST = 2 ** 20;
 
 /**
  * Maximum of a functional over the no-signalling polytope {P(a|x) >= 0} in Collins-Gisin
- * coordinates, a linear programme.
+ * coordinates, and under the problem's linear constraints: a linear programme.
  *
  * The simplex method's vertex and multipliers are turned into rationals (by their continued
  * fractions, else by solving the basis exactly) and checked exactly. Guarantee: both sides hold by
@@ -29,13 +29,9 @@ export async function noSignallingMaximum(
 	functional: Functional,
 	control: Control
 ): Promise<Outcome> {
-	if (problem.constraints.length > 0)
-		throw new SolverStop(
-			'failed',
-			'the no-signalling maximum under additional constraints has no solver yet; leave out "constraints"'
-		);
 	const clock = new WorkClock(control, problem.seconds);
-	const polytope = noSignallingRows(functional.scenario);
+	const { scenario } = functional;
+	const polytope = withConstraints(noSignallingRows(scenario), scenario, problem.constraints);
 	const form = collinsGisinForm(functional);
 	const integers = integerFunctional(form);
 	const objective = objectiveOf(polytope, integers.terms);
@@ -54,6 +50,8 @@ export async function noSignallingMaximum(
 		clock.left,
 		control
 	);
+	if (solution.status === 'infeasible')
+		throw new SolverStop('infeasible', 'no no-signalling behaviour meets the constraints');
 	if (solution.status !== 'optimal')
 		throw new SolverStop('failed', `the linear programme came out ${solution.status}`);
 	const tick = () => clock.check();
@@ -77,7 +75,8 @@ export async function noSignallingMaximum(
 		exact,
 		method: {
 			name: 'linear programme over the no-signalling polytope',
-			inequalities: polytope.rows.length,
+			inequalities: polytope.probabilityCount,
+			constraints: polytope.rows.length - polytope.probabilityCount,
 			coordinates: polytope.columns.length,
 			iterations: solution.iterations,
 			vertex: behaviour.how,
@@ -88,7 +87,7 @@ export async function noSignallingMaximum(
 			primal: record(polytope, behaviour.probabilities),
 			dual: record(
 				polytope,
-				multipliers.multipliers.map((m) => m.mul(unit))
+				multipliers.multipliers.map((m, i) => m.mul(unit).mul(polytope.rows[i]?.scale ?? 1n))
 			),
 			value: exact
 		}
@@ -114,9 +113,9 @@ function programmeOf(polytope: NoSignallingRows, objective: IntegerObjective, sc
 	const indices: number[] = [];
 	const values: number[] = [];
 	for (const { entries } of polytope.rows) {
-		for (const [column, sign] of entries) {
+		for (const [column, value] of entries) {
 			indices.push(column);
-			values.push(sign);
+			values.push(value);
 		}
 		starts.push(indices.length);
 	}

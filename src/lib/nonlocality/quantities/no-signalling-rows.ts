@@ -1,13 +1,20 @@
-import { SolverStop } from '../problem';
-import { eventsKey } from '../scenario/functional';
+import { SolverStop, type ProblemConstraint } from '../problem';
+import { integerFunctional } from '../scenario/fixed-point';
+import { collinsGisinForm, eventsKey, isRational } from '../scenario/functional';
+import { functionalOfTerms } from '../scenario/problem-terms';
 import type { Event, Scenario } from '../scenario/scenario';
 
-/** The row P(a|x) >= 0 in Collins-Gisin coordinates: constant + sum of signs * y >= 0. */
-export interface ProbabilityRow {
-	/** `"a,b|x,y"`. */
+/**
+ * A row P(a|x) >= 0, or a constraint, in Collins-Gisin coordinates: constant + sum of
+ * value * y >= 0, in integers.
+ */
+export interface PolytopeRow {
+	/** `"a,b|x,y"`, or `constraint 0 >=` (form - value >= 0), `constraint 0 <=` (the reverse). */
 	readonly key: string;
-	readonly constant: 0 | 1;
-	readonly entries: readonly (readonly [column: number, sign: 1 | -1])[];
+	readonly constant: number;
+	readonly entries: readonly (readonly [column: number, value: number])[];
+	/** The row is this many times what its key says; 1 for probabilities. */
+	readonly scale: bigint;
 }
 
 export interface NoSignallingRows {
@@ -15,7 +22,9 @@ export interface NoSignallingRows {
 	readonly columns: readonly (readonly Event[])[];
 	/** Column by `eventsKey`. */
 	readonly columnOf: ReadonlyMap<string, number>;
-	readonly rows: readonly ProbabilityRow[];
+	/** Probabilities first, then constraints. */
+	readonly rows: readonly PolytopeRow[];
+	readonly probabilityCount: number;
 }
 
 /** Rows of the programme, and entries in all of them: some minutes of simplex beyond. */
@@ -48,7 +57,8 @@ export function noSignallingRows(scenario: Scenario): NoSignallingRows {
 	}
 	columns = columns.slice(1); // without the constant
 	const columnOf = new Map(columns.map((events, i) => [eventsKey(events), i]));
-	return { columns, columnOf, rows: combine(parties, columnOf) };
+	const rows = combine(parties, columnOf);
+	return { columns, columnOf, rows, probabilityCount: rows.length };
 }
 
 /** One party's P(a|x) as a sum of sign * (its event, or nothing). */
@@ -72,7 +82,7 @@ function partyRows(counts: readonly number[], party: number): PartyRows {
 function combine(
 	parties: readonly PartyRows[],
 	columnOf: ReadonlyMap<string, number>
-): ProbabilityRow[] {
+): PolytopeRow[] {
 	interface Partial {
 		readonly inputs: readonly number[];
 		readonly outputs: readonly number[];
@@ -94,14 +104,54 @@ function combine(
 		);
 	}
 	return partials.map(({ inputs, outputs, parts }) => {
-		let constant: 0 | 1 = 0;
-		const entries: [number, 1 | -1][] = [];
+		let constant = 0;
+		const entries: [number, number][] = [];
 		for (const [events, sign] of parts) {
 			const column = columnOf.get(eventsKey(events));
 			if (column === undefined)
 				constant = 1; // no event: all outputs are the last ones
 			else entries.push([column, sign]);
 		}
-		return { key: `${outputs.join(',')}|${inputs.join(',')}`, constant, entries };
+		return { key: `${outputs.join(',')}|${inputs.join(',')}`, constant, entries, scale: 1n };
 	});
+}
+
+/** Larger coefficients of a constraint would not be exact on their way through doubles. */
+const LARGEST_COEFFICIENT = 2n ** 40n;
+
+/**
+ * Adds the problem's linear constraints as rows, an equality as two.
+ * @throws SolverStop `failed` for an irrational constraint or one with very long coefficients
+ */
+export function withConstraints(
+	polytope: NoSignallingRows,
+	scenario: Scenario,
+	constraints: readonly ProblemConstraint[]
+): NoSignallingRows {
+	const rows = constraints.flatMap(({ terms, relation, value }, index) => {
+		const form = collinsGisinForm(
+			functionalOfTerms(scenario, [...terms, [`-(${value})`, []] as const])
+		);
+		const integers = integerFunctional(form);
+		const long = integers.terms.some(({ coefficient: c }) => c * c > LARGEST_COEFFICIENT ** 2n);
+		if (!isRational(form) || long || integers.denominator > LARGEST_COEFFICIENT)
+			throw new SolverStop(
+				'failed',
+				`constraint ${index} needs rational coefficients of at most 12 digits`
+			);
+		const sides = relation === '=' ? (['>=', '<='] as const) : [relation];
+		return sides.map((side): PolytopeRow => {
+			const sign = side === '>=' ? 1 : -1;
+			let constant = 0;
+			const entries: [number, number][] = [];
+			for (const { coefficient, events } of integers.terms) {
+				const column = polytope.columnOf.get(eventsKey(events));
+				if (column === undefined) constant = sign * Number(coefficient);
+				else entries.push([column, sign * Number(coefficient)]);
+			}
+			const scale = integers.denominator;
+			return { key: `constraint ${index} ${side}`, constant, entries, scale };
+		});
+	});
+	return { ...polytope, rows: [...polytope.rows, ...rows] };
 }

@@ -76,7 +76,7 @@ function playwright() {
 	};
 }
 
-const steps = [
+const all = [
 	{ name: 'format', command: ['npm', 'run', '--silent', 'format:check'], gate: true },
 	{ name: 'lint', command: ['npm', 'run', '--silent', 'lint'], gate: true },
 	{ name: 'types', command: ['npm', 'run', '--silent', 'check'], gate: true },
@@ -85,6 +85,9 @@ const steps = [
 	vitest('api', ['api']),
 	playwright()
 ];
+// `npm test -- unit api` runs some of them only.
+const chosen = process.argv.slice(2);
+const steps = all.filter(({ name }) => chosen.length === 0 || chosen.includes(name));
 
 let ok = true;
 try {

@@ -1,4 +1,4 @@
-import { cpus } from 'node:os';
+import { cpus, totalmem } from 'node:os';
 import { pathToFileURL } from 'node:url';
 import { MessageChannel } from 'node:worker_threads';
 import { Piscina } from 'piscina';
@@ -24,10 +24,16 @@ export interface SolverPool {
 	close(): Promise<void>;
 }
 
+const KILL_WORDS = {
+	cancelled: 'cancelled',
+	time: 'the solver did not keep its time limit',
+	memory: 'the solver took more memory than this server has to give'
+} as const;
+
 /** The thread was ended from outside, so there is no result. */
 export class SolverKilled extends Error {
-	constructor(readonly why: 'cancelled' | 'time') {
-		super(why === 'time' ? 'the solver did not keep its time limit' : 'cancelled');
+	constructor(readonly why: keyof typeof KILL_WORDS) {
+		super(KILL_WORDS[why]);
 		this.name = 'SolverKilled';
 	}
 }
@@ -39,6 +45,9 @@ export const hardLimitMs = (problem: Problem) => problem.seconds * 2_000 + 30_00
 /** Checks and SDPA texts are short; one that is not is ended. */
 const CHECK_LIMIT_MS = 60_000;
 const HEAP_LIMIT_MB = 2_048;
+/** A thread's own limits do not count typed arrays, so the whole process is watched. */
+const MEMORY_LIMIT = Math.max(1.5e9, totalmem() * 0.75);
+const MEMORY_LOOK_MS = 500;
 
 export const threadCount = () => Math.max(1, cpus().length - 1);
 
@@ -80,6 +89,11 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 				why = 'time';
 				tell();
 			}, hardLimitMs(problem));
+			const memory = setInterval(() => {
+				if (process.memoryUsage.rss() < MEMORY_LIMIT) return;
+				why = 'memory';
+				kill.abort();
+			}, MEMORY_LOOK_MS);
 			if (signal?.aborted) tell();
 			signal?.addEventListener('abort', tell);
 			const task: SolverTask = { kind: 'solve', problem, stop, port: port2 };
@@ -91,6 +105,7 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 			} finally {
 				clearTimeout(limit);
 				clearTimeout(grace);
+				clearInterval(memory);
 				signal?.removeEventListener('abort', tell);
 				port1.close();
 			}

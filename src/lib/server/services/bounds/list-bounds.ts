@@ -7,13 +7,16 @@ import { statusCounts } from '../claims/list-claims';
 import { IDENTITY_TEXT, readMap, showSides } from '../inequalities/affine';
 import { inequalitySubject, type InequalityRecord } from '../inequalities/inequality-rows';
 import {
+	larger,
 	loadStations,
+	smaller,
 	stationSides,
 	stationsView,
 	type StationRow
 } from '../inequalities/stations-view';
 import { isPublicClaim } from '../inequalities/visibility';
 import { claimedBounds, type ClaimedBounds } from './claimed-bounds';
+import { ownBounds, type OwnBound } from './own-bounds';
 import { isClosed, showGap } from './show-gap';
 
 /**
@@ -51,13 +54,16 @@ export async function listBounds(ctx: Context, query: BoundsQuery): Promise<Boun
 	const ids = rows.map(({ id }) => id);
 	const stations = await loadStations(read, ids);
 	const claimed = await claimedBounds(read, ids);
+	const own = await ownBounds(read, ids);
 	const byStatus = await read
 		.select({ status: claims.status, count: count() })
 		.from(claims)
 		.where(isPublicClaim)
 		.groupBy(claims.status);
 	return {
-		rows: rows.map((row) => boundsRow(row, stations.get(row.id) ?? [], claimed.get(row.id))),
+		rows: rows.map((row) =>
+			boundsRow(row, stations.get(row.id) ?? [], own.get(row.id) ?? [], claimed.get(row.id))
+		),
 		counts: statusCounts(byStatus),
 		total,
 		page,
@@ -70,9 +76,12 @@ const IDENTITY = readMap(IDENTITY_TEXT);
 function boundsRow(
 	row: InequalityRecord,
 	stations: readonly StationRow[],
+	runs: readonly OwnBound[],
 	claimed: ClaimedBounds | undefined
 ): BoundsRow {
-	const { lower, upper } = stationSides(stations, IDENTITY).quantum;
+	const { quantum } = stationSides(stations, IDENTITY);
+	const lower = runs.reduce((best, run) => larger(best, run.lower), quantum.lower);
+	const upper = runs.reduce((best, run) => smaller(best, run.upper), quantum.upper);
 	const own = showSides({ lower, upper });
 	const view = stationsView(stations, IDENTITY);
 	const closed = lower !== null && upper !== null && isClosed(lower, upper);

@@ -46,9 +46,10 @@ export async function loadStations(
 	return byInequality;
 }
 
-const larger = (a: Rational | null, b: Rational | null) =>
+/** The larger of two bounds, of which one may not be known. */
+export const larger = (a: Rational | null, b: Rational | null) =>
 	!a ? b : !b ? a : a.compare(b) >= 0 ? a : b;
-const smaller = (a: Rational | null, b: Rational | null) =>
+export const smaller = (a: Rational | null, b: Rational | null) =>
 	!a ? b : !b ? a : a.compare(b) <= 0 ? a : b;
 
 const UNKNOWN: MappedSides = { lower: null, upper: null };

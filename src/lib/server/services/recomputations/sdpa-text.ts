@@ -2,7 +2,7 @@ import { eq } from 'drizzle-orm';
 import type { Context } from '../../context';
 import { recomputations } from '../../db/schema';
 import { ServiceError } from '../../errors';
-import { solverPool } from '../../jobs/current-pool';
+import { runShortTask } from '../../jobs/current-pool';
 import { requireVisible } from './find-visible';
 
 /** The semidefinite programme in the SDPA sparse format. @throws ServiceError not-found */
@@ -15,5 +15,6 @@ export async function sdpaText(ctx: Context, id: string): Promise<string> {
 	if (row?.problem.quantity !== 'npa') {
 		throw new ServiceError('not-found', 'This recomputation is no semidefinite programme.');
 	}
-	return (await solverPool()).sdpa(row.problem);
+	const { problem } = row;
+	return runShortTask((pool) => pool.sdpa(problem));
 }

@@ -153,6 +153,22 @@ describe('what is too large names its limit', () => {
 		],
 		[{ quantity: 'local', outputs: [[65]], terms: [] }, /at most 64 outputs/],
 		[
+			{ quantity: 'local', outputs: Array.from({ length: 4 }, () => [64]), terms: [] },
+			/at most 1000000 joint probabilities, not 16777216/
+		],
+		[
+			{
+				quantity: 'local',
+				outputs: [0, 1, 2].map(() => [32, 32, 32]),
+				terms: [0, 1, 2].flatMap((x) =>
+					[0, 1, 2].flatMap((y) =>
+						[0, 1, 2].map((z) => [1, [x, y, z].map((input, party) => [party, input, 31])])
+					)
+				)
+			},
+			/at most 500000 terms without the last outputs, not 884736/
+		],
+		[
 			{ quantity: 'local', outputs: [[2]], terms: Array.from({ length: 50_001 }, () => [1, []]) },
 			/at most 50000 terms, not 50001/
 		],

@@ -9,6 +9,10 @@ export const PROBLEM_LIMITS = {
 	inputs: 64,
 	outputs: 64,
 	terms: 50_000,
+	/** Terms once the last outputs are written as 1 minus the others. */
+	expandedTerms: 500_000,
+	/** Joint probabilities of the whole scenario. */
+	tableEntries: 1_000_000,
 	constraints: 50,
 	probabilities: 100_000,
 	coefficientCharacters: 1_000,

@@ -39,6 +39,11 @@ export function checkOutputs(field: string, outputs: Outputs): void {
 		limit(PROBLEM_LIMITS.inputs, 'inputs per party', inputs.length);
 		limit(PROBLEM_LIMITS.outputs, 'outputs per input', Math.max(...inputs));
 	}
+	const entries = outputs.reduce(
+		(product, inputs) => product * inputs.reduce((sum, count) => sum + count, 0),
+		1
+	);
+	limit(PROBLEM_LIMITS.tableEntries, 'joint probabilities', entries);
 }
 
 /**
@@ -65,7 +70,24 @@ export function readFunctional(
 		);
 	if (functional.terms.length > PROBLEM_LIMITS.terms)
 		throw tooManyTerms(field, functional.terms.length);
+	checkExpansion(field, functional);
 	return functional;
+}
+
+/** Collins-Gisin coordinates turn an event on a last output into as many terms as it has outputs. */
+function checkExpansion(field: string, { scenario, terms }: Functional): void {
+	const expanded = terms.reduce((sum, { events }) => {
+		const counts = events.map(([party, input, output]) => {
+			const count = scenario.outputs[party]?.[input] ?? 1;
+			return output === count - 1 ? count : 1;
+		});
+		return sum + counts.reduce((product, count) => product * count, 1);
+	}, 0);
+	if (expanded > PROBLEM_LIMITS.expandedTerms)
+		throw new ProblemLimitError(
+			field,
+			`at most ${PROBLEM_LIMITS.expandedTerms} terms without the last outputs, not ${expanded}`
+		);
 }
 
 const tooManyTerms = (field: string, found: number) =>

@@ -18,6 +18,11 @@ export default {
 		},
 		// The hook checks every unsafe method and content type: src/lib/server/http/same-origin.ts.
 		csrf: { trustedOrigins: ['*'] },
+		typescript: {
+			config(config) {
+				config.include.push('../seed/**/*.ts', '../*.config.ts');
+			}
+		},
 		csp: {
 			mode: 'nonce',
 			directives: {

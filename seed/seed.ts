@@ -22,7 +22,8 @@ import { startGroup } from '../src/lib/server/services/groups/start-group';
 import { acceptInvitation } from '../src/lib/server/services/invitations/accept-invitation';
 import { createInvitation } from '../src/lib/server/services/invitations/create-invitation';
 import { signUp } from '../src/lib/server/services/users/sign-up';
-import { CLAIMS, type SeedClaim } from './claims';
+import { CLAIMS } from './claims';
+import type { SeedClaim } from './claims/seed-claim';
 import { PAPERS } from './papers';
 import { DEMO_PASSWORD, GROUP, PEOPLE, type Person } from './people';
 

@@ -1,3 +1,4 @@
+import { statSync } from 'node:fs';
 import { cpus, totalmem } from 'node:os';
 import { pathToFileURL } from 'node:url';
 import { MessageChannel } from 'node:worker_threads';
@@ -51,29 +52,55 @@ const MEMORY_LOOK_MS = 500;
 
 export const threadCount = () => Math.max(1, cpus().length - 1);
 
-/** @throws Error when the thread's bundle has not been built. */
+/**
+ * Threads are made when there is first work for them, and made anew when their bundle has changed,
+ * as it does while developing.
+ */
+function lazyThreads(maxThreads: number) {
+	let made: { readonly pool: Piscina; readonly builtAt: number } | null = null;
+	return {
+		/** @throws Error when the threads' bundle has not been built */
+		get(): Piscina {
+			const file = findWorkerFile('solver');
+			if (!file) throw new Error('The solver threads are not built: run `npm run build` first.');
+			const builtAt = statSync(file).mtimeMs;
+			if (made && made.builtAt !== builtAt) {
+				void made.pool.destroy();
+				made = null;
+			}
+			made ??= {
+				builtAt,
+				pool: new Piscina({
+					filename: pathToFileURL(file).href,
+					minThreads: 0,
+					maxThreads,
+					idleTimeout: 60_000,
+					concurrentTasksPerWorker: 1,
+					resourceLimits: { maxOldGenerationSizeMb: HEAP_LIMIT_MB }
+				})
+			};
+			return made.pool;
+		},
+		async close(): Promise<void> {
+			await made?.pool.destroy();
+			made = null;
+		}
+	};
+}
+
 export function createThreadPool(threads = threadCount()): SolverPool {
-	const file = findWorkerFile('solver');
-	if (!file) throw new Error('The solver threads are not built: run `npm run build` first.');
 	// One more thread than solvers, so that a re-check never waits for a long computation.
-	const pool = new Piscina({
-		filename: pathToFileURL(file).href,
-		minThreads: 0,
-		maxThreads: threads + 1,
-		idleTimeout: 60_000,
-		concurrentTasksPerWorker: 1,
-		resourceLimits: { maxOldGenerationSizeMb: HEAP_LIMIT_MB }
-	});
+	const pool = lazyThreads(threads + 1);
 
 	async function short<T>(task: SolverTask): Promise<T> {
-		return pool.run(task, { signal: AbortSignal.timeout(CHECK_LIMIT_MS) });
+		return pool.get().run(task, { signal: AbortSignal.timeout(CHECK_LIMIT_MS) });
 	}
 
 	return {
 		threads,
 		verify: (result) => short<CheckOutcome>({ kind: 'verify', result }),
 		sdpa: (problem) => short<string>({ kind: 'sdpa', problem }),
-		close: () => pool.destroy(),
+		close: () => pool.close(),
 		async solve(problem, { signal, onProgress } = {}) {
 			const stop = new Int32Array(new SharedArrayBuffer(4));
 			const { port1, port2 } = new MessageChannel();
@@ -98,7 +125,7 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 			signal?.addEventListener('abort', tell);
 			const task: SolverTask = { kind: 'solve', problem, stop, port: port2 };
 			try {
-				return await pool.run(task, { transferList: [port2], signal: kill.signal });
+				return await pool.get().run(task, { transferList: [port2], signal: kill.signal });
 			} catch (error) {
 				if (kill.signal.aborted) throw new SolverKilled(why);
 				throw error;

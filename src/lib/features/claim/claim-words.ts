@@ -28,6 +28,10 @@ export function duration(seconds: number): string {
 	return `${minutes}\u2009min ${Math.round(seconds % MINUTE)}\u2009s`;
 }
 
+/** True for a job that has not ended. */
+export const isUnderWay = (state: ProgressView['state']): boolean =>
+	state === 'queued' || state === 'running';
+
 /** A few words on a job that has not ended: `running 62 %`, `queued, 3 before it`. */
 export function progressWords(progress: ProgressView): string {
 	if (progress.state === 'queued')

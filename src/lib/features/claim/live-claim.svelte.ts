@@ -16,9 +16,8 @@ export class LiveClaim {
 		this.#changed = changed;
 	}
 
-	/** Returns what stops it. */
+	/** Returns what stops it; then the page's own data count again. */
 	follow(address: string): () => void {
-		this.progress = null;
 		this.#stamp = null;
 		let stop = () => {};
 		const poll = () => (stop = this.#poll(address));
@@ -36,7 +35,10 @@ export class LiveClaim {
 			});
 			stop = () => events.close();
 		}
-		return () => stop();
+		return () => {
+			stop();
+			this.progress = null;
+		};
 	}
 
 	#poll(address: string): () => void {

@@ -25,6 +25,7 @@ export interface ClaimFormChoices {
 export const NO_CHOICES: ClaimFormChoices = { known: [], papers: [], reading: null };
 
 const FORM_ID = 'claim';
+const MARKED_BELOW = 'Nothing was entered yet: some fields need another look, marked below.';
 
 /** The form as sent, checked by the schema only. */
 export async function readClaimForm(data: FormData): Promise<ClaimForm> {
@@ -61,16 +62,15 @@ function sendBack(form: ClaimForm, status: number, message: ClaimFormMessage) {
 /** What is wrong at its fields; anything unexpected goes on. */
 export function refuseClaim(form: ClaimForm, thrown: unknown) {
 	if (!(thrown instanceof ServiceError)) throw thrown;
-	for (const { field, message } of thrown.issues) {
-		if (field in form.data) setError(form, field as keyof ClaimInput, message);
-	}
-	return sendBack(form, thrown.status, { text: thrown.message, issues: [...thrown.issues] });
+	const shown = thrown.issues.filter(({ field }) => field in form.data);
+	for (const { field, message } of shown) setError(form, field as keyof ClaimInput, message);
+	const text = shown.length > 0 ? MARKED_BELOW : thrown.message;
+	return sendBack(form, thrown.status, { text, issues: [...thrown.issues] });
 }
 
 /** The schema alone refused it. */
 export function refuseInvalid(form: ClaimForm) {
-	const text = 'Some fields need another look; they are marked below.';
-	return sendBack(form, 400, { text, issues: [] });
+	return sendBack(form, 400, { text: MARKED_BELOW, issues: [] });
 }
 
 /** The session has ended: the filled form goes back, with a way to sign in inside it. */

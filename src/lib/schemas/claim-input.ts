@@ -1,11 +1,5 @@
 import { z } from 'zod';
-import {
-	READINGS,
-	RELATIONS,
-	SENSES,
-	SUBJECT_KINDS,
-	VISIBILITIES
-} from '../ledger/claim';
+import { READINGS, RELATIONS, SENSES, SUBJECT_KINDS, VISIBILITIES } from '../ledger/claim';
 import { QUANTITIES, type QuantityKey } from '../ledger/quantities';
 
 /** Longest texts a claim's fields take; a paste beyond them is refused before anything parses it. */
@@ -19,7 +13,10 @@ export const CLAIM_LIMITS = {
 } as const;
 
 const text = (limit: number) =>
-	z.string().max(limit, `At most ${limit.toLocaleString('en')} characters`).default('');
+	z
+		.string()
+		.max(limit, `At most ${limit.toLocaleString('en')} characters`)
+		.default('');
 
 /**
  * The fields of the claim form, flat so that the form works without JavaScript. Which of them count

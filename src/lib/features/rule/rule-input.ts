@@ -58,19 +58,11 @@ export function anchorAt(x: number): StationLabel['anchor'] {
 const middleOf = (station: RuleStation) =>
 	station.key === 'local' ? station.to : (station.from + station.to) / 2;
 
-/** The figures of the view itself, which are rounded already. */
-function figuresOf(key: RuleStation['key'], stations: StationsView): string {
-	const { quantumLower: low, quantumUpper: high } = stations;
-	switch (key) {
-		case 'local':
-			return withMinusSign(stations.local ?? '');
-		case 'almost-quantum':
-			return withMinusSign(stations.almostQuantum ?? '');
-		case 'no-signalling':
-			return withMinusSign(stations.noSignalling ?? '');
-		case 'quantum':
-			return withMinusSign(shownBetween(low, high) ?? '');
-	}
+/** Under the quantum block stand the digits both its sides share, when those are enough. */
+function figuresOf({ key, figures }: RuleStation, { quantumLower, quantumUpper }: StationsView) {
+	return key === 'quantum'
+		? withMinusSign(shownBetween(quantumLower, quantumUpper) ?? '')
+		: figures;
 }
 
 /** Labels nearer than this would lie on one another. */
@@ -89,7 +81,7 @@ export function stationLabels(
 			labels.push({
 				at: middleOf(station),
 				names: [station.label],
-				figures: figuresOf(station.key, view)
+				figures: figuresOf(station, view)
 			});
 	}
 	return labels.map(({ at, names, figures }) => ({

@@ -3,13 +3,7 @@ import type { Problem, Progress, Result } from '../../../nonlocality/problem';
 import { groups } from './groups';
 import { inequalities } from './inequalities';
 
-export const RECOMPUTATION_STATES = [
-	'queued',
-	'running',
-	'done',
-	'failed',
-	'cancelled'
-] as const;
+export const RECOMPUTATION_STATES = ['queued', 'running', 'done', 'failed', 'cancelled'] as const;
 
 /** The stations every functional gets, in the order they are run. */
 export const STATIONS = [

@@ -1,7 +1,0 @@
-import { letCache } from '$lib/server/http/cache';
-import type { PageServerLoad } from './$types';
-
-/** The same for everyone. */
-export const load: PageServerLoad = (event) => {
-	letCache(event);
-};

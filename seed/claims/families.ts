@@ -186,7 +186,7 @@ export const FAMILY_CLAIMS: readonly SeedClaim[] = [
 		input: { ...family('elegant'), quantity: 'quantum', printed: '6.928', locator: 'eq. (22)' },
 		then: 'publish'
 	},
-	// Open: the solver refuses, and names the level that would do
+	// Another quantity: level 1 lacks the moments of three parties, and level 2 proves more already
 	{
 		key: 'gyni-level-1',
 		paper: 'marsden2013',

@@ -96,5 +96,19 @@ export const THREE_SETTING_CLAIMS: readonly SeedClaim[] = [
 			method: 'NPA level 3',
 			locator: 'Fig. 3'
 		}
+	},
+	// Open: past the solver's limit, and the other levels do not settle it
+	{
+		key: 'i3322-level-5',
+		paper: 'novik2019',
+		by: 'maintainer',
+		input: {
+			...family('i3322'),
+			quantity: 'npa',
+			level: '5',
+			printed: '0.2508754',
+			method: 'NPA level 5',
+			locator: 'Table IV'
+		}
 	}
 ];

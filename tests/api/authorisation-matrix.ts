@@ -107,6 +107,7 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ remove: { ...action('owner', 404) } },
 		{ fields: { user: 'nobody' } }
 	),
+	...doors('/g/[slug]/ledger.csv', { GET: page('observer') }),
 	...doors('/g/[slug]/inequalities', { GET: page('observer') }),
 	...doors(
 		'/g/[slug]/inequalities/[id]',

@@ -153,6 +153,8 @@ export interface ClaimView {
 	readonly verdict: Verdict;
 	readonly stations: StationsView | null;
 	readonly progress: ProgressView | null;
+	/** Which of the recomputations is of exactly the claimed quantity. */
+	readonly recomputationId: string | null;
 	readonly recomputations: readonly RecomputationView[];
 	readonly reference: ReferenceView;
 	readonly history: readonly HistoryEntry[];

@@ -78,6 +78,7 @@ export async function claimView(
 		verdict: claim.verdict,
 		stations: stations.length > 0 ? stationsView(stations, map) : null,
 		progress: run && progressView(run, map, now, ahead),
+		recomputationId: claim.recomputationId,
 		recomputations: await recomputationViews(read, stationsAnd(inequalityId, own), map, now),
 		reference: referenceView(joined.reference),
 		history: await claimHistory(read, claim.id),

@@ -35,6 +35,7 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		verdict: whole.verdict,
 		stations: whole.stations,
 		progress: whole.progress,
+		recomputationId: whole.recomputationId,
 		recomputations: whole.recomputations,
 		reference: publicReference(whole.reference),
 		history: whole.history

@@ -58,7 +58,16 @@ export default ts.config(
 		['src/lib/nonlocality/**/*.ts'],
 		[
 			[
-				[...outside, 'node:*', 'svelte', 'drizzle-orm', 'zod', '**/ledger/**', '**/schemas/**', '**/server/**'],
+				[
+					...outside,
+					'node:*',
+					'svelte',
+					'drizzle-orm',
+					'zod',
+					'**/ledger/**',
+					'**/schemas/**',
+					'**/server/**'
+				],
 				'lib/nonlocality is pure mathematics: it imports only itself, fraction.js, mathjs and highs.'
 			]
 		]
@@ -76,14 +85,29 @@ export default ts.config(
 		['src/lib/ledger/**/*.ts'],
 		[
 			[
-				[...outside, 'node:*', 'svelte', 'drizzle-orm', 'zod', '**/schemas/**', '**/server/**', '**/quantities/**', '**/optimization/**'],
+				[
+					...outside,
+					'node:*',
+					'svelte',
+					'drizzle-orm',
+					'zod',
+					'**/schemas/**',
+					'**/server/**',
+					'**/quantities/**',
+					'**/optimization/**'
+				],
 				'lib/ledger holds pure rules: nonlocality/exact, nonlocality/scenario and types only.'
 			]
 		]
 	),
 	layer(
 		['src/lib/schemas/**/*.ts'],
-		[[[...outside, 'node:*', '**/server/**'], 'lib/schemas imports ledger, nonlocality/notation and zod.']]
+		[
+			[
+				[...outside, 'node:*', '**/server/**'],
+				'lib/schemas imports ledger, nonlocality/notation and zod.'
+			]
+		]
 	),
 	layer(
 		['src/worker/**/*.ts', 'src/cli/**/*.ts'],
@@ -91,7 +115,12 @@ export default ts.config(
 	),
 	layer(
 		['src/lib/components/**/*.{ts,svelte}'],
-		[[['$lib/features/**', '$lib/schemas/**', '$lib/server/**'], 'components/ are generic; what knows the domain lives in features/.']]
+		[
+			[
+				['$lib/features/**', '$lib/schemas/**', '$lib/server/**'],
+				'components/ are generic; what knows the domain lives in features/.'
+			]
+		]
 	),
 	layer(
 		['src/lib/features/**/*.{ts,svelte}'],
@@ -99,11 +128,21 @@ export default ts.config(
 	),
 	layer(
 		['src/lib/server/services/**/*.ts'],
-		[[['@sveltejs/kit', '$app/**'], 'Services know no transport: throw ServiceError, a route maps it.']]
+		[
+			[
+				['@sveltejs/kit', '$app/**'],
+				'Services know no transport: throw ServiceError, a route maps it.'
+			]
+		]
 	),
 	layer(
 		['src/routes/**/*.{ts,svelte}'],
-		[[['drizzle-orm', 'drizzle-orm/**', '$lib/server/db/**'], 'Routes call a service verb; only services know the database.']]
+		[
+			[
+				['drizzle-orm', 'drizzle-orm/**', '$lib/server/db/**'],
+				'Routes call a service verb; only services know the database.'
+			]
+		]
 	),
 	{ files: ['**/*.js', '**/*.mjs'], ...ts.configs.disableTypeChecked }
 );

@@ -42,10 +42,7 @@ export interface QuantumStrategy {
 
 /** 1, 2, 3 ...; `1+AB` (two parties); all products of at most k per party; or a list of products. */
 export type Level =
-	| number
-	| '1+AB'
-	| { readonly perParty: number }
-	| { readonly products: readonly string[] };
+	number | '1+AB' | { readonly perParty: number } | { readonly products: readonly string[] };
 
 interface ProblemSubject {
 	readonly format: 1;

@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import type { Problem, Result } from '../../src/lib/nonlocality/problem';
-import { recomputations } from '../../src/lib/server/db/schema';
+import { recomputations, results } from '../../src/lib/server/db/schema';
 import { createInProcessPool } from '../../src/lib/server/jobs/in-process-pool';
 import {
 	LEASE_MS,
@@ -18,7 +18,10 @@ import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { recomputeClaim } from '../../src/lib/server/services/claims/recompute-claim';
 import { showClaim } from '../../src/lib/server/services/claims/show-claim';
 import { cancelRecomputation } from '../../src/lib/server/services/recomputations/cancel-recomputation';
-import { queueRecomputation } from '../../src/lib/server/services/recomputations/queue-recomputation';
+import {
+	queueRecomputation,
+	requeue
+} from '../../src/lib/server/services/recomputations/queue-recomputation';
 import { stationProblems } from '../../src/lib/server/services/recomputations/station-problems';
 import { claimFields, openServiceWorld, silent, type ServiceWorld } from '../support/service';
 
@@ -190,6 +193,32 @@ describe('the runner', () => {
 		expect(claim.recomputations.some(({ checked }) => checked === false)).toBe(true);
 		expect(claim.recomputations.every(({ checked }) => checked !== true)).toBe(true);
 		expect(JSON.stringify(alarms)).toContain('ALARM');
+	});
+
+	it('keeps the certificate apart from the queue, and a proof when a later run is refused', async () => {
+		const id = await queue(1, world.as.owner.group.id);
+		await world.recompute();
+		const proved = await stateOf(id);
+		expect(proved).toMatchObject({ state: 'done', checked: true, exact: '2' });
+		expect(proved.summary).not.toHaveProperty('problem');
+		expect(proved.summary?.certificate).toEqual({ kind: 'deterministic-strategy' });
+		const whole = async () =>
+			world.db.read.select().from(results).where(eq(results.recomputationId, id));
+		const [stored] = await whole();
+		expect(stored?.result).toMatchObject({ problem: proved.problem, status: 'done' });
+
+		await world.db.write((tx) => requeue(tx, id, null));
+		const honest = createInProcessPool();
+		const refused = runner(
+			poolThat(async (problem, options) => ({
+				...(await honest.solve(problem, options)),
+				check: { checked: false, reason: 'forged' }
+			}))
+		);
+		await refused.idle();
+		await refused.stop();
+		expect(await stateOf(id)).toMatchObject({ state: 'done', checked: true, exact: '2' });
+		expect(await whole()).toEqual([stored]);
 	});
 
 	it('tries a crashed thread again, then says so', async () => {

@@ -13,9 +13,24 @@ import { methodMatches } from './method';
 import { isWithin, sameQuantity } from './nesting';
 import { fieldsOf, innerLabel, outerLabel, valueLabel } from './problem-labels';
 
+/**
+ * What a reader sees of a finished result: its problem stands elsewhere, and of its certificate,
+ * which may be megabytes, only what names the evidence.
+ */
+export interface ResultSummary extends Omit<DoneResult, 'problem' | 'certificate'> {
+	readonly certificate: { readonly kind: string; readonly upperLevel?: unknown } | null;
+}
+
+export function summaryOf({ problem: _, certificate, ...result }: DoneResult): ResultSummary {
+	if (!certificate) return { ...result, certificate };
+	const { kind } = certificate;
+	const level = kind === 'enclosure' ? { upperLevel: certificate.upperLevel } : {};
+	return { ...result, certificate: { kind, ...level } };
+}
+
 /** A finished recomputation with what its certificate check proved (null: there is no certificate). */
 export interface Finding {
-	readonly result: DoneResult;
+	readonly result: ResultSummary & Pick<DoneResult, 'problem'>;
 	readonly check: CheckOutcome | null;
 }
 
@@ -45,7 +60,7 @@ function provedSides({ result, check }: Finding): Sides {
 }
 
 /** A check repeats a small enumeration only: the side of a large one rests on the solver's own. */
-function withEnumeration({ exact, lower, upper, guaranteed }: DoneResult, proved: Sides): Sides {
+function withEnumeration({ exact, lower, upper, guaranteed }: ResultSummary, proved: Sides): Sides {
 	const value = exact === null ? null : parseRational(exact);
 	return {
 		lower: proved.lower ?? (guaranteed.lower ? (value ?? ofDouble(lower)) : null),
@@ -109,8 +124,7 @@ export function evidenceOfFinding(
 /** The level that a quantum enclosure's outer side belongs to, when its certificate says so. */
 function outerLabelOf({ result }: Finding): string {
 	const { certificate, problem } = result;
-	if (certificate?.kind !== 'enclosure') return outerLabel(problem);
-	const level = certificate.upperLevel;
+	const level = certificate?.upperLevel;
 	return typeof level === 'number' || typeof level === 'string'
 		? `NPA level ${level}`
 		: outerLabel(problem);

@@ -81,4 +81,39 @@ describe('the migrations', () => {
 			(await client.execute('SELECT name FROM sqlite_master')).rows.map(({ name }) => name)
 		).toContain('next');
 	});
+
+	it('set results apart, with a summary of each beside its run', async () => {
+		const copy = join(folder, 'drizzle');
+		cpSync(migrationsFolder(), copy, { recursive: true });
+		const file = join(copy, 'meta', '_journal.json');
+		const journal: { entries: unknown[] } = JSON.parse(readFileSync(file, 'utf8'));
+		writeFileSync(file, JSON.stringify({ ...journal, entries: journal.entries.slice(0, 1) }));
+		await applyMigrations(client, copy);
+		const whole = (certificate: unknown) => ({ problem: { terms: [] }, lower: 2, certificate });
+		const runs = {
+			local: whole({ kind: 'deterministic-strategy', strategy: [[0]] }),
+			quantum: whole({ kind: 'enclosure', lower: {}, upper: {}, upperLevel: { perParty: 1 } }),
+			value: whole(null)
+		};
+		for (const [id, result] of Object.entries({ ...runs, queued: null })) {
+			await client.execute({
+				sql: 'INSERT INTO recomputations (id, problem_hash, problem, result, created_at) VALUES (?, ?, ?, ?, 1)',
+				args: [id, id, '{}', result && JSON.stringify(result)]
+			});
+		}
+		await applyMigrations(client);
+		const summaries = await client.execute('SELECT id, summary FROM recomputations ORDER BY id');
+		expect(summaries.rows.map(({ id, summary }) => [id, JSON.parse(String(summary))])).toEqual([
+			['local', { lower: 2, certificate: { kind: 'deterministic-strategy' } }],
+			['quantum', { lower: 2, certificate: { kind: 'enclosure', upperLevel: { perParty: 1 } } }],
+			['queued', null],
+			['value', { lower: 2, certificate: null }]
+		]);
+		const stored = await client.execute('SELECT recomputation_id, result FROM results');
+		expect(
+			Object.fromEntries(
+				stored.rows.map((row) => [row.recomputation_id, JSON.parse(String(row.result))])
+			)
+		).toEqual(runs);
+	});
 });

@@ -1,8 +1,9 @@
 import { eq } from 'drizzle-orm';
+import { summaryOf } from '../../ledger/evidence';
 import type { CheckOutcome } from '../../nonlocality/certificates/types';
 import type { DoneResult, Result } from '../../nonlocality/problem';
 import type { Database, Transaction } from '../db/client';
-import { recomputations } from '../db/schema';
+import { recomputations, results } from '../db/schema';
 import { deriveTouchedClaims } from '../services/claims/derive-claim';
 import { MOST_ATTEMPTS, backoff, holdsLease, type Lease } from './lease';
 import type { JobLog } from './runner';
@@ -30,37 +31,63 @@ type Row = Partial<typeof recomputations.$inferInsert>;
  * A late runner that lost its lease changes nothing.
  */
 export async function finishRun({ db, log, lease, outcome, now }: FinishedRun): Promise<boolean> {
-	const values = rowOf(outcome, lease, now);
-	if (outcome.kind === 'solved' && values.checked === false) {
+	const { row, whole } = endingOf(outcome, lease, now);
+	if (row.checked === false) {
 		log.error(
-			{ recomputation: lease.id, quantity: lease.problem.quantity, note: values.checkNote },
+			{ recomputation: lease.id, quantity: lease.problem.quantity, note: row.checkNote },
 			'ALARM: a solver produced a certificate that the independent check does not accept'
 		);
 	}
-	const stored = await db.write((tx) => store(tx, lease, values, now));
+	const stored = await db.write((tx) => store(tx, lease, { row, whole }, now));
 	if (!stored) log.warn({ recomputation: lease.id }, 'a run that lost its lease was dropped');
 	return stored;
 }
 
-async function store(tx: Transaction, lease: Lease, values: Row, now: Date): Promise<boolean> {
+/** What is written of a run: its row, and the whole result where there is one. */
+interface Ending {
+	readonly row: Row;
+	readonly whole: DoneResult | null;
+}
+
+async function store(
+	tx: Transaction,
+	lease: Lease,
+	{ row, whole }: Ending,
+	now: Date
+): Promise<boolean> {
 	const [before] = await tx
 		.select({ checked: recomputations.checked })
 		.from(recomputations)
 		.where(holdsLease(lease));
 	if (!before) return false;
-	// A repeated run that ends without a result leaves the proved one in place.
-	const keepsResult = before.checked === true && values.result === undefined;
-	const kept: Row =
-		keepsResult && values.state !== 'queued' ? { ...values, state: 'done' } : values;
+	// A repeated run that ends without a result leaves the proved one, and its check, in place.
+	const keepsResult = before.checked === true && !whole && row.state !== 'queued';
+	const { finishedAt, reason } = row;
 	await tx
 		.update(recomputations)
-		.set({ ...kept, leaseToken: null, leaseUntil: null, progress: null })
+		.set({
+			...(keepsResult ? { state: 'done', finishedAt, reason } : row),
+			leaseToken: null,
+			leaseUntil: null,
+			progress: null
+		})
 		.where(eq(recomputations.id, lease.id));
+	if (whole) {
+		await tx
+			.insert(results)
+			.values({ recomputationId: lease.id, result: whole })
+			.onConflictDoUpdate({ target: results.recomputationId, set: { result: whole } });
+	}
 	await deriveTouchedClaims(tx, lease.id, now);
 	return true;
 }
 
-function rowOf(outcome: RunOutcome, lease: Lease, now: Date): Row {
+function endingOf(outcome: RunOutcome, lease: Lease, now: Date): Ending {
+	if (outcome.kind === 'solved') return endingOfResult(outcome.result, outcome.check, now);
+	return { row: rowOf(outcome, lease, now), whole: null };
+}
+
+function rowOf(outcome: Exclude<RunOutcome, { kind: 'solved' }>, lease: Lease, now: Date): Row {
 	switch (outcome.kind) {
 		case 'cancelled':
 			return { state: 'cancelled', finishedAt: now, reason: 'cancelled' };
@@ -78,36 +105,31 @@ function rowOf(outcome: RunOutcome, lease: Lease, now: Date): Row {
 						finishedAt: now,
 						reason: `${outcome.reason}, ${MOST_ATTEMPTS} times in a row`
 					};
-		case 'solved':
-			return rowOfResult(outcome.result, outcome.check, now);
 	}
 }
 
-function rowOfResult(result: Result, check: CheckOutcome | null, now: Date): Row {
-	if (result.status === 'cancelled') {
-		return { state: 'cancelled', finishedAt: now, reason: 'cancelled' };
-	}
-	if (result.status !== 'done') {
-		return { state: 'failed', finishedAt: now, reason: result.reason };
-	}
+function endingOfResult(result: Result, check: CheckOutcome | null, now: Date): Ending {
+	const without = (row: Row): Ending => ({ row: { ...row, finishedAt: now }, whole: null });
+	if (result.status === 'cancelled') return without({ state: 'cancelled', reason: 'cancelled' });
+	if (result.status !== 'done') return without({ state: 'failed', reason: result.reason });
 	if (check && !check.checked) {
-		return {
+		return without({
 			state: 'failed',
-			finishedAt: now,
 			checked: false,
 			checkNote: check.reason,
 			reason: `the independent check does not accept the certificate: ${check.reason}`
-		};
+		});
 	}
-	return {
+	const row: Row = {
 		state: 'done',
 		finishedAt: now,
-		result,
+		summary: summaryOf(result),
 		...sides(result, check),
 		checked: check ? true : null,
 		checkNote: check ? check.method : null,
 		reason: null
 	};
+	return { row, whole: result };
 }
 
 /** What the check proved; without a certificate what the solver says, which stays unchecked. */

@@ -1,5 +1,6 @@
 import { index, integer, real, sqliteTable, text } from 'drizzle-orm/sqlite-core';
-import type { Problem, Progress, Result } from '../../../nonlocality/problem';
+import type { DoneResult, Problem, Progress } from '../../../nonlocality/problem';
+import type { ResultSummary } from '../../../ledger/evidence';
 import { groups } from './groups';
 import { inequalities } from './inequalities';
 
@@ -39,7 +40,8 @@ export const recomputations = sqliteTable(
 		leaseUntil: integer('lease_until', { mode: 'timestamp_ms' }),
 		notBefore: integer('not_before', { mode: 'timestamp_ms' }),
 		progress: text('progress', { mode: 'json' }).$type<Progress>(),
-		result: text('result', { mode: 'json' }).$type<Result>(),
+		/** What lists and verdicts need of the result; the whole of it is a table of its own. */
+		summary: text('summary', { mode: 'json' }).$type<ResultSummary>(),
 		lower: real('lower'),
 		upper: real('upper'),
 		exact: text('exact'),
@@ -57,3 +59,14 @@ export const recomputations = sqliteTable(
 		index('recomputations_inequality').on(table.inequalityId)
 	]
 );
+
+/**
+ * The results whole, with certificates of up to megabytes: apart, so that reading the queue or a
+ * list never walks through them.
+ */
+export const results = sqliteTable('results', {
+	recomputationId: text('recomputation_id')
+		.primaryKey()
+		.references(() => recomputations.id, { onDelete: 'cascade' }),
+	result: text('result', { mode: 'json' }).$type<DoneResult>().notNull()
+});

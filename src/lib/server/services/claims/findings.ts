@@ -1,6 +1,5 @@
-import { and, eq, inArray, isNotNull, or, sql } from 'drizzle-orm';
+import { and, eq, inArray, isNotNull, or } from 'drizzle-orm';
 import type { Finding } from '../../../ledger/evidence';
-import type { DoneResult } from '../../../nonlocality/problem';
 import type { Transaction } from '../../db/client';
 import { claims, recomputations, type Station } from '../../db/schema';
 
@@ -9,14 +8,6 @@ export interface StoredFinding extends Finding {
 	readonly id: string;
 	readonly isStation: boolean;
 }
-
-/** The result without its certificate, which may be megabytes; its kind and level name the evidence. */
-const slimResult = sql`
-	json_set(${recomputations.result}, '$.certificate', json_object(
-		'kind', ${recomputations.result} ->> '$.certificate.kind',
-		'upperLevel', json(${recomputations.result} -> '$.certificate.upperLevel')))`.mapWith(
-	(text: string): DoneResult => JSON.parse(text)
-);
 
 /** Of values that would explain a claim equally well, the one a paper most likely meant. */
 const EXPLAINING: readonly Station[] = [
@@ -58,30 +49,31 @@ async function loadFindings(
 			lower: recomputations.lower,
 			upper: recomputations.upper,
 			exact: recomputations.exact,
-			result: slimResult
+			summary: recomputations.summary,
+			problem: recomputations.problem
 		})
 		.from(recomputations)
 		.where(
 			and(
 				eq(recomputations.inequalityId, inequalityId),
-				isNotNull(recomputations.result),
+				isNotNull(recomputations.summary),
 				or(isNotNull(recomputations.station), inArray(recomputations.id, asked))
 			)
 		);
 	const order = (station: Station | null) =>
 		station === null ? EXPLAINING.length : EXPLAINING.indexOf(station);
-	const sorted = [...rows].sort((a, b) => order(a.station) - order(b.station));
-	return sorted.map(({ id, station, checked, checkNote, lower, upper, exact, result }) => ({
-		id,
-		isStation: station !== null,
-		result,
-		check:
-			checked === null
-				? null
-				: checked
-					? { checked, lower, upper, exact, method: checkNote ?? '' }
-					: { checked, reason: checkNote ?? '' }
-	}));
+	return [...rows]
+		.sort((a, b) => order(a.station) - order(b.station))
+		.flatMap(({ id, station, checked, checkNote, lower, upper, exact, summary, problem }) => {
+			if (!summary) return [];
+			const check =
+				checked === null
+					? null
+					: checked
+						? ({ checked, lower, upper, exact, method: checkNote ?? '' } as const)
+						: ({ checked, reason: checkNote ?? '' } as const);
+			return [{ id, isStation: station !== null, result: { ...summary, problem }, check }];
+		});
 }
 
 /** The findings on a claim's inequality; judging many claims reads each set once. */

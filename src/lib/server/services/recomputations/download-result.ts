@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm';
 import type { Result } from '../../../nonlocality/problem';
 import type { Context } from '../../context';
-import { recomputations } from '../../db/schema';
+import { results } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { requireVisible } from './find-visible';
 
@@ -12,9 +12,9 @@ import { requireVisible } from './find-visible';
 export async function downloadResult(ctx: Context, id: string): Promise<Result> {
 	await requireVisible(ctx, id);
 	const [row] = await ctx.db.read
-		.select({ result: recomputations.result })
-		.from(recomputations)
-		.where(eq(recomputations.id, id));
-	if (!row?.result) throw new ServiceError('not-found', 'This recomputation has no result yet.');
+		.select({ result: results.result })
+		.from(results)
+		.where(eq(results.recomputationId, id));
+	if (!row) throw new ServiceError('not-found', 'This recomputation has no result yet.');
 	return row.result;
 }

@@ -1,26 +1,10 @@
 import { eq, inArray, or, sql, type SQL } from 'drizzle-orm';
-import type { Result } from '../../../nonlocality/problem';
 import type { RecomputationView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { STATIONS, recomputations } from '../../db/schema';
 import { exactText, mapSides, showSides, type AffineMap } from '../inequalities/affine';
 import { methodDetail, problemLabel } from './problem-label';
 import { PROGRESS_COLUMNS, progressView } from './progress-view';
-
-type Summary = Pick<Result, 'method' | 'seconds' | 'seed' | 'solver'> & {
-	readonly certificate: string | null;
-};
-
-/** What a list shows of a result; the certificate itself may be megabytes. */
-const summary = sql<Summary | null>`
-	case when ${recomputations.result} is null then null else json_object(
-		'method', json(${recomputations.result} -> '$.method'),
-		'seconds', ${recomputations.result} ->> '$.seconds',
-		'seed', ${recomputations.result} ->> '$.seed',
-		'solver', ${recomputations.result} ->> '$.solver',
-		'certificate', ${recomputations.result} ->> '$.certificate.kind') end`.mapWith(
-	(text: string | null): Summary | null => (text === null ? null : JSON.parse(text))
-);
 
 const CERTIFICATES: Readonly<Record<string, string>> = {
 	'deterministic-strategy': 'Deterministic strategy',
@@ -49,7 +33,7 @@ export async function recomputationViews(
 			checked: recomputations.checked,
 			checkNote: recomputations.checkNote,
 			reason: recomputations.reason,
-			summary
+			summary: recomputations.summary
 		})
 		.from(recomputations)
 		.where(where)
@@ -68,7 +52,7 @@ export async function recomputationViews(
 				lower: shown.lower,
 				upper: shown.upper,
 				exact: exactText(sides),
-				certificate: CERTIFICATES[row.summary?.certificate ?? ''] ?? null,
+				certificate: CERTIFICATES[row.summary?.certificate?.kind ?? ''] ?? null,
 				checked: row.checked,
 				checkNote: row.checkNote,
 				seconds: row.summary?.seconds ?? null,

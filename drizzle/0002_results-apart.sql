@@ -1,0 +1,1 @@
+ALTER TABLE `recomputations` DROP COLUMN `result`;

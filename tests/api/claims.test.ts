@@ -72,6 +72,25 @@ describe('a claim', () => {
 		expect(right.history.map(({ text }) => text)).toContain('Value changed from 2.8248 to 2.8284');
 	});
 
+	it('on a sum of correlators that has no name may have meant the game’s winning probability', async () => {
+		// CHSH and, on a pair of their own, A2 B2: at most 2 sqrt 2 + 1 (Cirel'son, Lett. Math. Phys.
+		// 4, 93 (1980)), so that the game of five questions is won with 1/2 + 3.8284/10 = 0.88284.
+		const expression = 'A0 B0 + A0 B1 + A1 B0 - A1 B1 + A2 B2';
+		const fields = { subjectKind: 'expression', family: '', expression } as const;
+		const { number } = await enterClaim(
+			world.as.member,
+			claimFields({ ...fields, printed: '0.88284' })
+		);
+		await world.recompute();
+		const { verdict } = await showClaim(world.as.observer, number);
+		expect(verdict.status).toBe('discrepancy');
+		expect(verdict.diagnosis.map(({ kind, value, scale }) => [kind, value, scale])).toContainEqual([
+			'other-normalisation',
+			'0.88284',
+			'1/10'
+		]);
+	});
+
 	it('edited from a stale page is refused', async () => {
 		const { number } = await enterClaim(world.as.member, claimFields());
 		await editClaim(world.as.member, number, 1, claimFields({ note: 'first' }));

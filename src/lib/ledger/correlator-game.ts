@@ -35,3 +35,12 @@ export function winningProbabilityMap({ weight, constant }: CorrelatorGame): {
 	const scale = ratio(1n, 2n).div(weight);
 	return { scale, shift: ratio(1n, 2n).sub(constant.mul(scale)) };
 }
+
+/** The game of scale * f + shift, from that of f; scale is positive. */
+export function gameOfMapped(
+	{ weight, constant }: CorrelatorGame,
+	scale: Rational,
+	shift: Rational
+): CorrelatorGame {
+	return { weight: weight.mul(scale), constant: constant.mul(scale).add(shift) };
+}

@@ -1,4 +1,5 @@
 import { eq } from 'drizzle-orm';
+import { correlatorGame, gameOfMapped } from '../../../ledger/correlator-game';
 import { diagnose } from '../../../ledger/diagnose';
 import type { Diagnosis } from '../../../ledger/diagnosis';
 import { othersOfFindings } from '../../../ledger/evidence';
@@ -7,6 +8,7 @@ import { knownNormalisations } from '../../../ledger/normalisations';
 import type { StatedValue } from '../../../ledger/stated-value';
 import type { Rational } from '../../../nonlocality/exact/rational';
 import type { Problem } from '../../../nonlocality/problem';
+import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
 import type { Transaction } from '../../db/client';
 import { inequalities } from '../../db/schema';
 import { mapSides, type AffineMap } from '../inequalities/affine';
@@ -51,14 +53,20 @@ async function normalisationsOf(
 	claim: JudgedClaim,
 	findings: readonly StoredFinding[],
 	map: AffineMap,
-	fromFamily: { readonly scale: Rational; readonly shift: Rational }
+	middle: { readonly scale: Rational; readonly shift: Rational }
 ) {
 	if (!claim.inequalityId) return [];
 	const [row] = await tx
-		.select({ name: inequalities.name, outputs: inequalities.outputs })
+		.select({
+			name: inequalities.name,
+			outputs: inequalities.outputs,
+			terms: inequalities.terms
+		})
 		.from(inequalities)
 		.where(eq(inequalities.id, claim.inequalityId));
-	const family = familyOfName(row?.name ?? null);
+	if (!row) return [];
+	const family = familyOfName(row.name);
+	const game = correlatorGame(functionalOfTerms(row.outputs, row.terms));
 	const local = findings.find(
 		({ result, check }) =>
 			check?.checked && result.quantity === 'local' && result.problem.sense === 'max'
@@ -67,8 +75,9 @@ async function normalisationsOf(
 	const exact = sides?.lower && sides.upper?.equals(sides.lower) ? sides.lower : null;
 	return knownNormalisations({
 		family,
-		...(family ? { fromFamily } : {}),
-		...(row ? { outputs: row.outputs } : {}),
-		localMaximum: exact
+		...(family ? { fromFamily: middle } : {}),
+		outputs: row.outputs,
+		localMaximum: exact,
+		game: game && gameOfMapped(game, middle.scale, middle.shift)
 	});
 }

@@ -1,5 +1,7 @@
+import { correlatorGame } from '../../../ledger/correlator-game';
 import { knownNormalisations } from '../../../ledger/normalisations';
 import { printRational, type Rational } from '../../../nonlocality/exact/rational';
+import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
 import type { NormalisationView } from '../../../schemas/views';
 import { IDENTITY_TEXT } from './affine';
 import type { MapText } from './canonical-subject';
@@ -21,7 +23,8 @@ export function normalisationChoices(
 ): readonly NormalisationChoice[] {
 	const family = familyOfName(row.name);
 	const own = { key: 'own', label: row.name ? 'As named' : 'As first entered', map: IDENTITY_TEXT };
-	const others = knownNormalisations({ family, outputs: row.outputs, localMaximum });
+	const game = correlatorGame(functionalOfTerms(row.outputs, row.terms));
+	const others = knownNormalisations({ family, outputs: row.outputs, localMaximum, game });
 	return [
 		own,
 		...others

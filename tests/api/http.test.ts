@@ -1,6 +1,6 @@
 import { spawnSync } from 'node:child_process';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { newPerson, PASSWORD } from '../support/people';
+import { newPerson, PASSWORD, startGroup } from '../support/people';
 import { startServer, type TestServer } from '../support/server';
 import { Visitor } from '../support/visitor';
 
@@ -190,6 +190,43 @@ describe('limits on tries', () => {
 			expect(refused.status).toBe(429);
 			expect(await refused.text()).toContain('Try again in');
 			expect(strict.logs()).toContain('"security":"rate-limited"');
+		} finally {
+			await strict.stop();
+		}
+	});
+});
+
+describe('limits on requests', () => {
+	it('answer 429 with the wait, and keep what was typed', async () => {
+		const strict = await startServer({ env: { MERESTONE_RATE_FACTOR: '1' } });
+		try {
+			const person = await newPerson(strict, { email: 'typist@limits.example' });
+			const slug = await startGroup(person, 'Limits');
+			const claims = `/api/v1/groups/${slug}/claims`;
+			const inTurn = async (times: number, send: () => Promise<Response>) => {
+				const statuses = new Set<number>();
+				for (let i = 0; i < times; i++) statuses.add((await send()).status);
+				return [...statuses];
+			};
+			expect(await inTurn(240, () => person.sendJson('POST', claims, {}))).toEqual([400]);
+			const problem = await person.sendJson('POST', claims, {});
+			expect(problem.status).toBe(429);
+			expect(problem.headers.get('content-type')).toContain('application/problem+json');
+			expect(Number(problem.headers.get('retry-after'))).toBeGreaterThan(3_000);
+
+			const typed = { printed: '2.8284271', locator: 'eq. (7), as typed' };
+			const form = await person.submit(`/g/${slug}/claims/new?/enter`, typed);
+			expect(form.status).toBe(429);
+			expect(Number(form.headers.get('retry-after'))).toBeGreaterThan(3_000);
+			const page = await form.text();
+			expect(page).toContain('eq. (7), as typed');
+			expect(page).toContain('Try again in');
+
+			const visitor = new Visitor(strict);
+			const look = () => visitor.get('/api/v1/claims/none');
+			expect(await inTurn(600, look)).toEqual([404]);
+			expect((await look()).status).toBe(429);
+			expect((await visitor.get('/')).status).toBe(200);
 		} finally {
 			await strict.stop();
 		}

@@ -1,7 +1,5 @@
-import { RateLimiterMemory, RateLimiterRes } from 'rate-limiter-flexible';
 import { config } from '../config';
-import { ServiceError } from '../errors';
-import { pseudonym, securityEvent } from '../log';
+import { rateLimit, refuse } from '../rate-limit';
 
 /** Wrong passwords for one account before the waits begin; NIST SP 800-63B-4 allows 100. */
 const FREE_FAILURES = 10;
@@ -17,34 +15,12 @@ interface Failures {
 }
 
 const failures = new Map<string, Failures>();
-let limiters: ReturnType<typeof createLimiters> | undefined;
-
-function createLimiters() {
-	const limiter = (points: number, duration: number) =>
-		new RateLimiterMemory({ points: Math.ceil(points * config().rateFactor), duration });
-	return { signIn: limiter(20, 60), signUp: limiter(10, 3_600) };
-}
-
-function refuse(kind: string, key: string, milliseconds: number): never {
-	const seconds = Math.max(1, Math.ceil(milliseconds / 1000));
-	securityEvent('rate-limited', { kind, key: pseudonym(key), seconds });
-	const wait = seconds < 90 ? `${seconds} seconds` : `${Math.ceil(seconds / 60)} minutes`;
-	throw new ServiceError('rate-limited', `Too many tries. Try again in ${wait}.`, [], seconds);
-}
-
-async function consume(kind: 'signIn' | 'signUp', address: string): Promise<void> {
-	limiters ??= createLimiters();
-	try {
-		await limiters[kind].consume(address);
-	} catch (refused) {
-		if (!(refused instanceof RateLimiterRes)) throw refused;
-		refuse(kind, address, refused.msBeforeNext);
-	}
-}
+const signIns = rateLimit('signIn', 20, 60, 'tries');
+const signUps = rateLimit('signUp', 10, 3_600, 'tries');
 
 /** @throws ServiceError rate-limited */
 export async function countSignUp(address: string): Promise<void> {
-	await consume('signUp', address);
+	await signUps.count(address);
 }
 
 /**
@@ -55,7 +31,7 @@ export async function countSignUp(address: string): Promise<void> {
  * @throws ServiceError rate-limited
  */
 export async function countSignIn(address: string | null, account: string): Promise<void> {
-	if (address !== null) await consume('signIn', address);
+	if (address !== null) await signIns.count(address);
 	const now = Date.now();
 	const { count, waitUntil } = failures.get(account) ?? { count: 0, waitUntil: 0 };
 	if (waitUntil > now) refuse('account', account, waitUntil - now);
@@ -75,6 +51,7 @@ export function forgetFailures(account: string): void {
 
 /** For tests of the limits themselves. */
 export function resetAttempts(): void {
-	limiters = undefined;
+	signIns.reset();
+	signUps.reset();
 	failures.clear();
 }

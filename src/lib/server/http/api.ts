@@ -4,16 +4,18 @@ import type { z } from 'zod';
 import { ServiceError } from '../errors';
 import { parseInput } from '../services/parse-input';
 import { problemOf, problemResponse } from './problem';
+import { countRequest } from './request-limits';
 
 /** Largest JSON body of an endpoint that names no limit of its own. */
 export const JSON_LIMIT_BYTES = 300_000;
 
-/** Wraps an endpoint: whatever it throws becomes problem details. */
+/** Wraps an endpoint: visitors are counted, and whatever it throws becomes problem details. */
 export function endpoint<E extends RequestEvent>(
 	handler: (event: E) => Promise<Response> | Response
 ): (event: E) => Promise<Response> {
 	return async (event) => {
 		try {
+			if (!event.locals.actor) await countRequest(event, 'anonymous');
 			return await handler(event);
 		} catch (thrown) {
 			return problemOf(thrown);

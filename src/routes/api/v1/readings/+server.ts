@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { requireRole } from '$lib/server/auth/guards';
 import { endpoint, jsonResponse, readJson } from '$lib/server/http/api';
+import { countRequest } from '$lib/server/http/request-limits';
 import { readClaim } from '$lib/server/services/readings/read-claim';
 import type { RequestHandler } from './$types';
 
@@ -11,5 +12,6 @@ const input = z.looseObject({ group: z.string().max(100) });
 export const POST: RequestHandler = endpoint(async (event) => {
 	const { group, ...fields } = await readJson(event, input);
 	const ctx = await requireRole(event, 'observer', group);
+	await countRequest(event, 'reading');
 	return jsonResponse(await readClaim(ctx, fields));
 });

@@ -1,6 +1,7 @@
 import { requireRole } from '$lib/server/auth/guards';
 import { failWith } from '$lib/server/http/action-error';
 import { answering } from '$lib/server/http/page-errors';
+import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
 import { proposeClaim } from '$lib/server/services/claims/propose-claim';
 import { publishClaim } from '$lib/server/services/claims/publish-claim';
@@ -13,7 +14,7 @@ import { withdrawClaim } from '$lib/server/services/claims/withdraw-claim';
 import { cancelRecomputation } from '$lib/server/services/recomputations/cancel-recomputation';
 import { recheckCertificate } from '$lib/server/services/recomputations/recheck-certificate';
 import type { GroupContext } from '$lib/server/context';
-import type { Action, Actions, PageServerLoad } from './$types';
+import type { Action, Actions, PageServerLoad, RequestEvent } from './$types';
 
 export const load: PageServerLoad = async (event) => {
 	const ctx = await requireRole(event, 'observer');
@@ -26,12 +27,14 @@ export const load: PageServerLoad = async (event) => {
 /** Guards, does it, and answers with the sentence that says so. */
 function doing(
 	done: string,
-	verb: (ctx: GroupContext, number: number, data: FormData) => Promise<void>
+	verb: (ctx: GroupContext, number: number, data: FormData) => Promise<void>,
+	before?: (event: RequestEvent) => Promise<void>
 ): Action {
 	return async (event) => {
 		const ctx = await requireRole(event, 'observer');
 		const number = claimNumber(event.params.number);
 		try {
+			await before?.(event);
 			await verb(ctx, number, await event.request.formData());
 		} catch (thrown) {
 			return failWith(thrown);
@@ -41,7 +44,7 @@ function doing(
 }
 
 export const actions: Actions = {
-	recompute: doing('Queued again.', recomputeClaim),
+	recompute: doing('Queued again.', recomputeClaim, (event) => countRequest(event, 'change')),
 	withdraw: doing('Withdrawn. It stays in the ledger, struck through.', withdrawClaim),
 	restore: doing('Restored.', restoreClaim),
 	supersede: doing('Superseded.', (ctx, number, data) =>

@@ -12,6 +12,7 @@ import {
 	signInWithinForm
 } from '$lib/server/http/claim-form';
 import { answering } from '$lib/server/http/page-errors';
+import { countRequest } from '$lib/server/http/request-limits';
 import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
 import { enterClaim } from '$lib/server/services/claims/enter-claim';
 import { showClaim } from '$lib/server/services/claims/show-claim';
@@ -54,6 +55,7 @@ export const actions: Actions = {
 		if (!form.valid) return refuseInvalid(form);
 		let number: number;
 		try {
+			await countRequest(event, 'change');
 			({ number } = await enterClaim(ctx, form.data));
 		} catch (thrown) {
 			return refuseClaim(form, thrown);

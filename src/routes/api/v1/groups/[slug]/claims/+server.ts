@@ -2,6 +2,7 @@ import { parseLedgerQuery } from '$lib/schemas/ledger-query';
 import { claimInput } from '$lib/schemas/claim-input';
 import { requireRole } from '$lib/server/auth/guards';
 import { endpoint, jsonResponse, jsonWithEtag, readJson } from '$lib/server/http/api';
+import { countRequest } from '$lib/server/http/request-limits';
 import { enterClaim } from '$lib/server/services/claims/enter-claim';
 import { ledgerRows } from '$lib/server/services/claims/ledger-rows';
 import { listClaims } from '$lib/server/services/claims/list-claims';
@@ -28,6 +29,7 @@ export const GET: RequestHandler = endpoint(async (event) => {
 /** Enters a claim; the body holds the fields of the form. */
 export const POST: RequestHandler = endpoint(async (event) => {
 	const ctx = await requireRole(event, 'member');
+	await countRequest(event, 'change');
 	const entered = await enterClaim(ctx, await readJson(event, claimInput.partial()));
 	const location = `/api/v1/groups/${ctx.group.slug}/claims/${entered.number}`;
 	return jsonResponse(entered, { status: 201, headers: { Location: location } });

@@ -10,6 +10,7 @@ import {
 	signInWithinForm
 } from '$lib/server/http/claim-form';
 import { answering } from '$lib/server/http/page-errors';
+import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
 import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
 import { editClaim } from '$lib/server/services/claims/edit-claim';
@@ -48,6 +49,7 @@ export const actions: Actions = {
 		const ctx = await requireRole(event, 'member');
 		if (!form.valid) return keepVersion(refuseInvalid(form), version);
 		try {
+			await countRequest(event, 'change');
 			await editClaim(ctx, number, version, form.data);
 		} catch (thrown) {
 			return keepVersion(refuseClaim(form, thrown), version);

@@ -1,0 +1,29 @@
+import type { RequestEvent } from '@sveltejs/kit';
+import { ServiceError } from '../errors';
+import { rateLimit } from '../rate-limit';
+
+const HOUR = 3_600;
+
+const LIMITS = {
+	/** The form's panel asks at every pause in typing. */
+	reading: rateLimit('reading', 240, 60, 'requests'),
+	/** Entering, editing and recomputing: a paper with a long table is entered in an hour. */
+	change: rateLimit('change', 240, HOUR, 'claims entered, edited or recomputed in an hour'),
+	/** Of a visitor, at the API. */
+	anonymous: rateLimit('anonymous', 600, HOUR, 'requests in an hour')
+} as const;
+
+/**
+ * Counts a request against its person, or its address where nobody has signed in.
+ * @throws ServiceError rate-limited; the answer then says when to come again
+ */
+export async function countRequest(event: RequestEvent, kind: keyof typeof LIMITS): Promise<void> {
+	try {
+		await LIMITS[kind].count(event.locals.actor?.id ?? event.getClientAddress());
+	} catch (thrown) {
+		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {
+			event.setHeaders({ 'Retry-After': String(thrown.retryAfterSeconds) });
+		}
+		throw thrown;
+	}
+}

@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import type { Problem, Result } from '../../src/lib/nonlocality/problem';
+import { parseLedgerQuery } from '../../src/lib/schemas/ledger-query';
 import { recomputations, results } from '../../src/lib/server/db/schema';
 import { createInProcessPool } from '../../src/lib/server/jobs/in-process-pool';
 import {
@@ -15,6 +16,7 @@ import { finishRun } from '../../src/lib/server/jobs/finish-run';
 import { SolverKilled, type SolverPool } from '../../src/lib/server/jobs/pool';
 import { startRunner } from '../../src/lib/server/jobs/runner';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
+import { listClaims } from '../../src/lib/server/services/claims/list-claims';
 import { recomputeClaim } from '../../src/lib/server/services/claims/recompute-claim';
 import { showClaim } from '../../src/lib/server/services/claims/show-claim';
 import { cancelRecomputation } from '../../src/lib/server/services/recomputations/cancel-recomputation';
@@ -23,7 +25,13 @@ import {
 	requeue
 } from '../../src/lib/server/services/recomputations/queue-recomputation';
 import { stationProblems } from '../../src/lib/server/services/recomputations/station-problems';
-import { claimFields, openServiceWorld, silent, type ServiceWorld } from '../support/service';
+import {
+	bibtexOf,
+	claimFields,
+	openServiceWorld,
+	silent,
+	type ServiceWorld
+} from '../support/service';
 
 let world: ServiceWorld;
 beforeEach(async () => {
@@ -102,6 +110,36 @@ describe('the queue', () => {
 		const order = [];
 		for (let i = 0; i < 3; i++) order.push((await takeNext(world.db, new Date(), served))?.id);
 		expect(order.slice(0, 2)).toContain(only);
+	});
+
+	it('runs what is instant first, then what claims ask for, then the other stations', async () => {
+		const { member } = world.as;
+		await enterClaim(member, claimFields({ family: 'i3322', printed: '0.2509' }));
+		const later = claimFields({ quantity: 'npa', level: '2', bibtex: bibtexOf(2) });
+		const { number } = await enterClaim(member, later);
+		expect((await showClaim(member, number)).progress).toMatchObject({ ahead: 5 });
+		const other = await queue(1, world.outsider.group.id);
+		expect((await showClaim(member, number)).progress).toMatchObject({ ahead: 6 });
+		const page = await listClaims(member, parseLedgerQuery(new URLSearchParams('sort=number')));
+		expect(page.rows.map(({ progress }) => progress?.ahead)).toEqual([5, 6]);
+
+		const served = new Map<string, number>();
+		const stations: string[] = [];
+		for (;;) {
+			const lease = await takeNext(world.db, new Date(), served);
+			if (!lease) break;
+			if (lease.id !== other) stations.push((await stateOf(lease.id)).station ?? 'claim');
+		}
+		expect(stations.slice(0, 6)).toEqual([
+			'local',
+			'no-signalling',
+			'local',
+			'no-signalling',
+			'claim',
+			'npa-2'
+		]);
+		expect(stations.slice(6)).not.toContain('local');
+		expect(stations).toHaveLength(17);
 	});
 
 	it('takes back what a dead runner held, and drops what it still says', async () => {

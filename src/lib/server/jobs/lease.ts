@@ -1,8 +1,9 @@
-import { and, asc, count, eq, inArray, isNull, lt, lte, or, sql } from 'drizzle-orm';
+import { and, count, eq, inArray, isNull, lt, lte, or, sql } from 'drizzle-orm';
 import type { Problem, Progress } from '../../nonlocality/problem';
 import type { Database, Transaction } from '../db/client';
 import { recomputations } from '../db/schema';
 import { newToken } from '../ids';
+import { QUEUE_ORDER } from '../services/recomputations/queue-order';
 
 /** A runner that is not heard of for this long has died; it is heard of three times as often. */
 export const LEASE_MS = 30_000;
@@ -30,7 +31,7 @@ const due = (now: Date) =>
 	);
 
 /**
- * Takes the oldest problem of the group that was served least recently.
+ * Takes the next problem of the group that was served least recently.
  * @param onTaken what else happens in the transaction
  * @param served when each group (`''`: none) was last served, as rising numbers; updated here
  */
@@ -61,7 +62,7 @@ export async function takeNext(
 						: eq(recomputations.groupId, turn.groupId)
 				)
 			)
-			.orderBy(asc(recomputations.createdAt), asc(recomputations.id))
+			.orderBy(...QUEUE_ORDER)
 			.limit(1);
 		const lease = next && (await take(tx, next.id, now));
 		if (lease) await onTaken?.(tx, lease.id);

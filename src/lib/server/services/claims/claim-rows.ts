@@ -6,12 +6,8 @@ import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
 import { quantityInfo } from '../recomputations/claim-problem';
-import {
-	PROGRESS_COLUMNS,
-	jobsAhead,
-	progressView,
-	type ProgressRow
-} from '../recomputations/progress-view';
+import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
+import { jobsAhead } from '../recomputations/queue-order';
 import { problemLabel } from '../recomputations/problem-label';
 import type { Verdict } from '../../../ledger/verdict';
 
@@ -46,6 +42,8 @@ export async function claimRows(
 ): Promise<LedgerRow[]> {
 	const ids = selected.flatMap(({ claim }) => (claim.inequalityId ? [claim.inequalityId] : []));
 	const stations = await loadStations(read, ids);
+	const waits = selected.some(({ run }) => run?.state === 'queued');
+	const ahead = waits ? await jobsAhead(read) : null;
 	const rows: LedgerRow[] = [];
 	for (const { claim, inequality, reference, run } of selected) {
 		const map = readMap(claim);
@@ -69,22 +67,13 @@ export async function claimRows(
 			verdict: claim.verdict,
 			recomputedBy: recomputedBy(claim.verdict) ?? (run ? problemLabel(run.problem) : ''),
 			stations: own.length > 0 ? stationsView(own, map) : null,
-			progress: run && (await runningView(read, run, map, now)),
+			progress: run && progressView(run, map, now, ahead?.get(run.id)),
 			reference: { ...reference, locator: claim.locator },
 			state: claim.state,
 			visibility: claim.visibility
 		});
 	}
 	return rows;
-}
-
-async function runningView(
-	read: Reader,
-	run: ProgressRow,
-	map: ReturnType<typeof readMap>,
-	now: Date
-) {
-	return progressView(run, map, now, run.state === 'queued' ? await jobsAhead(read, run) : null);
 }
 
 /** Which evidence the verdict rests on, each named once. */

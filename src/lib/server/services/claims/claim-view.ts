@@ -7,7 +7,8 @@ import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
 import { quantityInfo } from '../recomputations/claim-problem';
-import { PROGRESS_COLUMNS, jobsAhead, progressView } from '../recomputations/progress-view';
+import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
+import { jobsAhead } from '../recomputations/queue-order';
 import { recomputationViews, stationsAnd } from '../recomputations/recomputation-view';
 import { referenceView } from '../references/reference-view';
 import type { ClaimRow } from './find-claim';
@@ -49,7 +50,7 @@ export async function claimView(
 		? ((await loadStations(read, [inequalityId])).get(inequalityId) ?? [])
 		: [];
 	const own = claim.recomputationId ? [claim.recomputationId] : [];
-	const ahead = run?.state === 'queued' ? await jobsAhead(read, run) : null;
+	const ahead = run?.state === 'queued' ? (await jobsAhead(read)).get(run.id) : null;
 	return {
 		id: claim.id,
 		number: claim.number,

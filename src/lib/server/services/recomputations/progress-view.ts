@@ -1,21 +1,19 @@
-import { and, eq, lt, sql } from 'drizzle-orm';
 import { showBound } from '../../../ledger/figures';
 import type { ProgressView } from '../../../schemas/views';
-import type { Reader } from '../../db/client';
 import { recomputations } from '../../db/schema';
 import { mapSides, type AffineMap } from '../inequalities/affine';
 
 export type ProgressRow = Pick<
 	typeof recomputations.$inferSelect,
-	'state' | 'progress' | 'startedAt' | 'finishedAt' | 'createdAt'
+	'id' | 'state' | 'progress' | 'startedAt' | 'finishedAt'
 >;
 
 export const PROGRESS_COLUMNS = {
+	id: recomputations.id,
 	state: recomputations.state,
 	progress: recomputations.progress,
 	startedAt: recomputations.startedAt,
-	finishedAt: recomputations.finishedAt,
-	createdAt: recomputations.createdAt
+	finishedAt: recomputations.finishedAt
 } as const;
 
 /** How a run stands, its enclosure so far in the reader's normalisation. */
@@ -41,13 +39,4 @@ export function progressView(
 			row.startedAt && end ? Math.max(0, (end.getTime() - row.startedAt.getTime()) / 1000) : null,
 		ahead: state === 'queued' ? ahead : null
 	};
-}
-
-/** How many jobs stand before one in the queue; groups take turns, so it is at most that. */
-export async function jobsAhead(read: Reader, row: Pick<ProgressRow, 'createdAt'>) {
-	const [found] = await read
-		.select({ jobs: sql<number>`count(*)` })
-		.from(recomputations)
-		.where(and(eq(recomputations.state, 'queued'), lt(recomputations.createdAt, row.createdAt)));
-	return found?.jobs ?? 0;
 }

@@ -24,7 +24,6 @@ export async function recomputationViews(
 	const rows = await read
 		.select({
 			...PROGRESS_COLUMNS,
-			id: recomputations.id,
 			station: recomputations.station,
 			problem: recomputations.problem,
 			lower: recomputations.lower,

@@ -3,8 +3,8 @@ import { openedDatabase } from '../application';
 import { config } from '../config';
 import type { Database } from '../db/client';
 import { log } from '../log';
+import { setMailSink } from '../mail/caught-mails';
 import { sendDueMails } from '../mail/sender';
-import { setMailSink, startMailSink } from '../mail/sink';
 import { createSmtpTransport, type MailTransport } from '../mail/transport';
 import { closeReferences, warmReferences } from '../references/read-reference';
 import { deriveTouchedClaims } from '../services/claims/derive-claim';
@@ -93,6 +93,7 @@ async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promi
 	let closeSink = (): Promise<void> => Promise.resolve();
 	if (!url && demo) {
 		// The demo keeps the mail it would send, beside its database.
+		const { startMailSink } = await import('../mail/sink');
 		const file = resolve(databaseUrl.replace(/^file:/, ''));
 		const sink = await startMailSink(join(dirname(file), 'mail'));
 		setMailSink(sink);

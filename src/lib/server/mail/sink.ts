@@ -83,15 +83,3 @@ async function read(id: string, raw: Buffer): Promise<CaughtMailView> {
 		text: parsed.text ?? ''
 	};
 }
-
-/** On globalThis, because the development server evaluates this module anew after a change. */
-const holder: { merestoneSink?: MailSink } = globalThis as never;
-
-export function setMailSink(sink: MailSink): void {
-	holder.merestoneSink = sink;
-}
-
-/** What the demo's sink caught, newest first; null where no sink runs. */
-export function caughtMails(): readonly CaughtMailView[] | null {
-	return holder.merestoneSink?.caught() ?? null;
-}

@@ -1,7 +1,7 @@
 import { error } from '@sveltejs/kit';
 import { publicContext } from '$lib/server/auth/guards';
 import { config } from '$lib/server/config';
-import { caughtMails } from '$lib/server/mail/sink';
+import { caughtMails } from '$lib/server/mail/caught-mails';
 import type { PageServerLoad } from './$types';
 
 /** Demo only: what the local mail sink caught. Elsewhere there is nothing here. */

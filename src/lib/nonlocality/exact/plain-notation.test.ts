@@ -17,6 +17,17 @@ describe('plainNotation', () => {
 		['\\left. x \\right|', 'x|'],
 		['2 \\cdot 3 \\times 4 \\otimes 5', '2*3*4*5'],
 		['x\u00b2', 'x^2'],
+		['cos(pi/8)', 'cos(pi/8)'],
+		['\\cos^2(\\pi/8)', '(cos(pi/8)^2)'],
+		['cos\u00b2(\u03c0/8)', '(cos(pi/8)^2)'],
+		['\\sin^{2}\\left(\\frac{\\pi}{8}\\right)', '(sin(((pi)/(8)))^2)'],
+		['\\cos\\frac{\\pi}{8}', 'cos(((pi)/(8)))'],
+		['\\(a\\) \\[b\\]', 'ab'],
+		['\\begin{align*} a \\label{eq:a} \\end{align*}', 'a'],
+		['a \\overset{\\mathrm{L}}{\\leq} 2', 'a<=2'],
+		['a \\stackrel{LHV}{\\le} b \\lesssim c', 'a<=b<=c'],
+		['\\expval{A_0 B_0}', '<A_0B_0>'],
+		['{\\rm A}_{\\mathrm{0}}', '{A}_{{0}}'],
 		['$a \\, b$ \\\\', 'ab']
 	])('%s', (source, text) => {
 		expect(squeezed(source)).toBe(text);
@@ -48,7 +59,11 @@ describe('plainNotation', () => {
 		['\\sqrt[3]{2}', 0],
 		['\\frac{1}{2', 8],
 		['\\frac{1}', 0],
-		['a \\', 2]
+		['a \\', 2],
+		['\\begin{matrix}', 0],
+		['\\label x', 0],
+		['\\cos^2 \\pi', 0],
+		['1\u00bd', 1]
 	])('refuses %s at position %i', (source, position) => {
 		expect(() => plainNotation(source)).toThrow(NotationError);
 		expect(() => plainNotation(source)).toThrow(expect.objectContaining({ position }));

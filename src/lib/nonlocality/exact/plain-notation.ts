@@ -1,4 +1,14 @@
 import { NotationError } from './notation-error';
+import {
+	BRACKETS,
+	CHARACTERS,
+	DROPPED,
+	ENVIRONMENTS,
+	IGNORED,
+	STACKED,
+	SYMBOLS,
+	VULGAR_FRACTIONS
+} from './notation-symbols';
 
 /** A text rewritten in plain ASCII, and where each of its characters came from. */
 export interface PlainNotation {
@@ -7,128 +17,13 @@ export interface PlainNotation {
 	readonly positions: readonly number[];
 }
 
-const CHARACTERS: Readonly<Record<string, string>> = {
-	'\u2212': '-',
-	'\u2013': '-',
-	'\u2014': '-',
-	'\u2010': '-',
-	'\u2011': '-',
-	'\ufe63': '-',
-	'\uff0d': '-',
-	'\u00d7': '*',
-	'\u00b7': '*',
-	'\u22c5': '*',
-	'\u2219': '*',
-	'\u2217': '*',
-	'\u2297': '*',
-	'\u00f7': '/',
-	'\u2044': '/',
-	'\u2215': '/',
-	'\u03c0': ' pi ',
-	'\u00bd': '(1/2)',
-	'\u00bc': '(1/4)',
-	'\u00be': '(3/4)',
-	'\u2153': '(1/3)',
-	'\u2154': '(2/3)',
-	'\u00b2': '^2',
-	'\u00b3': '^3',
-	'\u27e8': '<',
-	'\u27e9': '>',
-	'\u2329': '<',
-	'\u232a': '>',
-	'\u3008': '<',
-	'\u3009': '>',
-	'\u2264': '<=',
-	'\u2265': '>=',
-	'\u2a7d': '<=',
-	'\u2a7e': '>=',
-	'\u2223': '|',
-	'\uff5c': '|',
-	'\u00a0': ' ',
-	'\u2002': ' ',
-	'\u2003': ' ',
-	'\u2009': ' ',
-	'\u200a': ' ',
-	'\u202f': ' ',
-	'\u2061': ' ',
-	'\u2062': ' ',
-	'\u200b': ' ',
-	'\ufeff': ' ',
-	'\t': ' ',
-	'\n': ' ',
-	'\r': ' ',
-	'~': ' ',
-	$: ' ',
-	'&': ' '
-};
-
-/** Commands that stand for a symbol. */
-const SYMBOLS: Readonly<Record<string, string>> = {
-	cdot: '*',
-	times: '*',
-	otimes: '*',
-	ast: '*',
-	div: '/',
-	pi: ' pi ',
-	cos: ' cos',
-	sin: ' sin',
-	langle: '<',
-	rangle: '>',
-	lt: '<',
-	gt: '>',
-	le: '<=',
-	leq: '<=',
-	leqslant: '<=',
-	ge: '>=',
-	geq: '>=',
-	geqslant: '>=',
-	mid: '|',
-	vert: '|',
-	lvert: '|',
-	rvert: '|',
-	lbrace: '(',
-	rbrace: ')',
-	Pr: ' P'
-};
-
-/** Commands that only change how something looks. */
-const IGNORED = new Set([
-	'left',
-	'right',
-	'middle',
-	'big',
-	'Big',
-	'bigg',
-	'Bigg',
-	'bigl',
-	'bigr',
-	'Bigl',
-	'Bigr',
-	'biggl',
-	'biggr',
-	'Biggl',
-	'Biggr',
-	'quad',
-	'qquad',
-	'displaystyle',
-	'textstyle',
-	'nonumber',
-	'hat',
-	'widehat',
-	'mathrm',
-	'mathbf',
-	'mathsf',
-	'mathit',
-	'mathcal',
-	'boldsymbol',
-	'operatorname',
-	'text',
-	'limits',
-	'thinspace'
-]);
-
 const FRACTIONS = new Set(['frac', 'tfrac', 'dfrac']);
 const MAXIMUM_NESTING = 50;
+
+const FUNCTION = /^(?:cos|sin)$/;
+const POWER_OF_FUNCTION = /^\s*(?:\^\s*(?:\{\s*(\d)\s*\}|(\d))|([\u00b2\u00b3]))\s*/;
+/** What may follow a function without doubt about where its argument ends. */
+const OPENS_ARGUMENT = /^\s*(?:\\left\s*)?(?=[({]|\\[td]?frac(?![A-Za-z]))/;
 
 /**
  * Rewrites pasted LaTeX and Unicode mathematics as plain text: `\frac{1}{2}` becomes `((1)/(2))`,
@@ -161,7 +56,22 @@ class Rewriter {
 		const start = this.at;
 		const character = this.source.charAt(start);
 		if (character === '\\') return this.command();
+		const word = FUNCTION.exec(this.source.slice(start, start + 3))?.[0];
+		if (word && !/[A-Za-z]/.test(this.source.charAt(start - 1))) {
+			this.at += word.length;
+			return this.apply(word, word, start);
+		}
 		this.at++;
+		const vulgar = VULGAR_FRACTIONS[character];
+		if (vulgar !== undefined) {
+			if (/\d\s*$/.test(this.source.slice(0, start)))
+				throw new NotationError(
+					'a mixed number',
+					start,
+					'Write it as one fraction, for instance 3/2.'
+				);
+			return this.emit(vulgar, start);
+		}
 		const code = character.charCodeAt(0);
 		if (code >= 0x2080 && code <= 0x2089) {
 			const follows = /[\u2080-\u2089]/.test(this.source.charAt(start - 1));
@@ -176,7 +86,7 @@ class Rewriter {
 		const name = /^[A-Za-z]+/.exec(this.source.slice(start + 1, start + 30))?.[0] ?? '';
 		if (name === '') {
 			const next = this.source.charAt(start + 1);
-			if (!',;:! \\|{}'.includes(next) || next === '')
+			if (!',;:! \\|{}()[]'.includes(next) || next === '')
 				throw new NotationError('a stray backslash', start, 'Leave it out.');
 			this.at += 2;
 			return this.emit({ '|': '|', '{': '(', '}': ')' }[next] ?? ' ', start);
@@ -189,6 +99,29 @@ class Rewriter {
 			return this.emit(' ', start);
 		}
 		if (name === 'sqrt') return this.root(start);
+		if (FUNCTION.test(name)) return this.apply(name, ` ${name}`, start);
+		if (DROPPED.has(name)) {
+			this.dropArgument(start);
+			return;
+		}
+		if (STACKED.has(name)) {
+			this.dropArgument(start);
+			return this.argument(start);
+		}
+		if (name === 'begin' || name === 'end') {
+			const environment = this.dropArgument(start).replace(/\*$/, '');
+			if (ENVIRONMENTS.has(environment)) return;
+			throw new NotationError(
+				`\\${name}{${environment.slice(0, 20)}} is not understood`,
+				start,
+				'Enter the formula alone.'
+			);
+		}
+		if (BRACKETS.has(name)) {
+			this.emit('<', start);
+			this.argument(start);
+			return this.emit('>', start);
+		}
 		if (FRACTIONS.has(name)) {
 			this.emit('((', start);
 			this.argument(start);
@@ -201,6 +134,41 @@ class Rewriter {
 			start,
 			'Write the formula with +, -, *, /, parentheses, \\frac, \\sqrt and indices only.'
 		);
+	}
+
+	/** `\cos^2(\pi/8)`, `\cos\frac{\pi}{8}`: as ((cos(pi/8))^2), cos((pi)/(8)). */
+	private apply(name: string, bare: string, start: number): void {
+		const rest = this.source.slice(this.at);
+		const power = POWER_OF_FUNCTION.exec(rest);
+		const exponent = power?.[1] ?? power?.[2] ?? (power && (power[3] === '\u00b2' ? '2' : '3'));
+		const opens = OPENS_ARGUMENT.exec(rest.slice(power?.[0].length ?? 0));
+		if (!opens) {
+			if (!power) return this.emit(bare, start);
+			throw new NotationError(
+				`${name} needs parentheses`,
+				start,
+				`Write (${name}(...))^${exponent}.`
+			);
+		}
+		if (!power && bare === name) return this.emit(bare, start);
+		this.at += (power?.[0].length ?? 0) + opens[0].length;
+		this.emit(power ? ` (${name}(` : ` ${name}(`, start);
+		this.argument(start);
+		this.emit(power ? `)^${exponent})` : ')', start);
+	}
+
+	/** The braces after a command, which say nothing here; what was in them. */
+	private dropArgument(command: number): string {
+		this.skipSpaces();
+		const group = /^\{((?:[^{}]|\{[^{}]*\})*)\}/.exec(this.source.slice(this.at));
+		if (!group)
+			throw new NotationError(
+				'this command needs its braces',
+				command,
+				'Leave it out, or enter the formula alone.'
+			);
+		this.at += group[0].length;
+		return group[1] ?? '';
 	}
 
 	private root(start: number): void {

@@ -40,7 +40,7 @@ export function tokenize(source: string): Token[] {
 		);
 	const plain = plainNotation(source);
 	// `\hat{A}_0` comes as `{A}_0`: the braces say nothing.
-	const text = plain.text.replace(/\{(\s*[A-Za-z]\s*)\}/g, ' $1 ');
+	const text = plain.text.replace(/\{(\s*(?:Pr|[A-Za-z])\s*)\}/g, ' $1 ');
 	const at = (index: number) => plain.positions[index] ?? source.length;
 	const tokens: Token[] = [];
 	let index = 0;
@@ -51,7 +51,13 @@ export function tokenize(source: string): Token[] {
 			spaced = true;
 			continue;
 		}
+		const rest = text.slice(index).trim();
+		// The punctuation of the sentence it was copied from, and the dots of a bound's digits.
+		if (rest === '.' || rest === ',' || rest === ';') break;
+		if (/^\.\.\.[.,;]?$/.test(rest) && isRelation(tokens.at(-2))) break;
 		const token = matchAt(text, index);
+		if (rest.startsWith('...'))
+			throw new NotationError('an ellipsis stands for terms', at(index), 'Write every term.');
 		if (!token) throw unknownCharacter(text.charAt(index), at(index));
 		tokens.push({ ...token, position: at(index), spaced });
 		index += token.text.length;
@@ -59,6 +65,9 @@ export function tokenize(source: string): Token[] {
 	}
 	return [...tokens, { kind: 'end', text: '', position: source.length, spaced: true }];
 }
+
+/** Not `<` and `>`, which are brackets as well. */
+const isRelation = (token?: Token) => token?.kind === 'relation' || token?.text === '=';
 
 function matchAt(text: string, index: number): Pick<Token, 'kind' | 'text'> | null {
 	for (const [kind, pattern] of PATTERNS) {

@@ -49,7 +49,16 @@ describe('ways to write CHSH', () => {
 		'\\left\\langle \\hat{A}_0 \\otimes \\hat{B}_0 \\right\\rangle + A_0 B_1 + A_1 B_0 \u2212 A_1 B_1',
 		'\u27e8A\u2080 B\u2080\u27e9 + A\u2080B\u2081 + A\u2081B\u2080 - A\u2081B\u2081',
 		'sqrt(2) (A0 B0 + A0 B1 + A1 B0 - A1 B1) / \\sqrt{2}',
-		'A0 B0 + A0 B1 + A1 B0 - A1 B1 + 1 - 1'
+		'A0 B0 + A0 B1 + A1 B0 - A1 B1 + 1 - 1',
+		'$A_0B_0 + A_0B_1 + A_1B_0 - A_1B_1.$',
+		'\\(A_0B_0 + A_0\\,B_1 + A_1\\;B_0\\! - A_1\\quad B_1\\)',
+		'\\begin{equation} A_0B_0 + A_0B_1 + A_1B_0 - A_1B_1 \\overset{L}{\\leq} 2, \\end{equation}',
+		'\\mathrm{A}_0\\mathrm{B}_0 + A_{\\rm 0} B_1 + \\hat A_1 B_0 - \\mathbf{A}_1 \\times B_1',
+		'E(A_0,B_0) + E(A_0,B_1) + E(A_1B_0) - E[A_1 B_1]',
+		'\\mathbb{E}[A_0B_0] + \\expval{A_0 B_1} + \\braket{A_1B_0} - \\bigl\\langle A_1B_1\\bigr\\rangle',
+		'E(x=0,y=0) + E(x=0,y=1) + E(x=1,y=0) - E(x=1,y=1)',
+		'C_{00}+C_{01}+C_{10}-C_{11}',
+		'\\sqrt2\\,\\tfrac{1}{\\sqrt2}\\left[A_0B_0+A_0B_1\\right] + \\dfrac22 A_1B_0 - A_1B_1'
 	])('reads %s', (text) => {
 		expectSame(read(text), chsh);
 	});
@@ -58,6 +67,21 @@ describe('ways to write CHSH', () => {
 		const ch = 'P(0,0|0,0) + P(00|01) + P_{AB}(0,0|1,0) - P(0 0|1 1) - P_A(0|0) - P_B(0|0)';
 		expectSame(read(`4 (${ch}) + 2`), chsh);
 		expectSame(read(`4 (${ch.replaceAll('P', 'p')}) + 2`), chsh);
+	});
+
+	it.each([
+		['P(a=0,b=1|x=0,y=1)', 'P(0,1|0,1)'],
+		['p(ab=01|xy=10)', 'P(0,1|1,0)'],
+		['P(b=1,a=0|y=1,x=0)', 'P(0,1|0,1)'],
+		['P(a=0, b=1 \\,|\\, x=0, y=1)', 'P(0,1|0,1)'],
+		['P(b=1|y=1) + 0 A0', 'P_B(1|1) + 0 A0'],
+		['P_A(a=1|x=0)', 'P_A(1|0)'],
+		['P(A_0=0,B_1=1)', 'P(0,1|0,1)'],
+		['P(B0 = 1) + 0 A0', 'P_B(1|0) + 0 A0'],
+		['P(0,1|x=1,y=0)', 'P(0,1|1,0)'],
+		['\\mathrm{Pr}(00\\vert 01)', 'P(0,0|0,1)']
+	])('reads %s as %s', (written, plain) => {
+		expectSame(read(written), read(plain));
 	});
 
 	it('reads three parties', () => {
@@ -98,6 +122,10 @@ describe('index base and scenario', () => {
 		['<A0 B0>=1', { relation: '=', text: '1' }],
 		['\\langle A_0\\rangle\\geq -1', { relation: '>=', text: '-1' }],
 		['A0 B0 > -3/2', { relation: '>=', text: '-3/2' }],
+		['A0 B0 \\leq 2.', { relation: '<=', text: '2' }],
+		['$A_0 B_0 \\leq 2\\sqrt2.$', { relation: '<=', text: '2\\sqrt2' }],
+		['\\[A_0B_0 \\stackrel{LHV}{\\le} 2, \\]', { relation: '<=', text: '2' }],
+		['A0 B0 \\approx 2.828...', { relation: '=', text: '2.828...' }],
 		['A0 B0', null]
 	])('finds the bound in %s', (text, bound) => {
 		expect(parseExpression(text).claimedBound).toEqual(bound);
@@ -130,6 +158,19 @@ describe('what cannot be read', () => {
 		['-2 <= A0 B0 <= 2', {}, 6, /right-hand side has to be a number/, /one relation/],
 		['P(0,1|1)', {}, 0, /2 outputs for 1 inputs/, /commas/],
 		['P(a,b|x,y)', {}, 2, /have to be numbers/, /P\(0,1\|1,0\)/],
+		['P(a=b|0,0)', {}, 2, /two outputs are equal is a sum/, /Write it out/],
+		['P(A_1=B_1)', {}, 2, /two outputs are equal is a sum/, /Write it out/],
+		['P(a=0,b=1|x=0)', {}, 0, /input beside b is missing/, /P\(a=0,b=1/],
+		['P(a=0|x=0,y=1)', {}, 0, /1 outputs for 2 inputs/, null],
+		['P(a=0,a=1|x=0,y=0)', {}, 6, /occurs twice/, null],
+		['P(k=0|x=0)', {}, 2, /no party/, /a, b, c/],
+		['P_B(a=0|x=0)', {}, 0, /not those of its parties/, /P_A/],
+		['P(++|11)', {}, 2, /have to be numbers/, /0 for \+, 1 for -/],
+		['E(A_x,B_y)', {}, 2, /which input/, /E\(A0,B1\)/],
+		['E(A0 B0 + A0 B1)', {}, 8, /one product/, /apart/],
+		['E(A0,A1)', {}, 5, /party A occurs twice/, null],
+		['A0 C_{01}', {}, 6, /C01 is no input/, /E\(0,1\)/],
+		['A0 B0 + \\dots + A1 B1', {}, 8, /ellipsis/, /every term/],
 		['P_A(0,1|1,0)', {}, 0, /1 parties are named/, null],
 		['P_{AA}(0,1|1,0)', {}, 0, /twice/, null],
 		['A0 B0 + P(0|1)', {}, 8, /does not say whose/, /P_A/],

@@ -72,12 +72,15 @@ export function parseExpression(source: string, options: ExpressionOptions = {})
 	};
 }
 
+/** What closes a pasted formula, with the full stop of its sentence; an ellipsis is kept. */
+const AFTER_BOUND = /(?:\$|\\[)\]]|\\end\{[a-z]+\*?\}|\\right\.|\s|(?<!\.)[.,;](?!\.))*$/;
+
 function claimedBound(
 	source: string,
 	{ relation }: ParsedExpression
 ): ReadExpression['claimedBound'] {
 	if (!relation) return null;
-	const text = source.slice(relation.end).trim();
+	const text = source.slice(relation.end).replace(AFTER_BOUND, '').trim();
 	if (text === '')
 		throw new NotationError('the bound after the relation is missing', relation.position, null);
 	if (/[A-F]\s*_?\{?\s*\d|[PE]\s*[(_]|[<>=]|\\l?geq?|\\leq?/.test(text))

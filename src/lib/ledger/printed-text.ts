@@ -17,19 +17,23 @@ function lowerSuperscript(run: string): string {
 	return `^(${lowered.join('')})`;
 }
 
-/** Tried in this order at every place; `~` stands for "about", `<` and `>` for the inequalities. */
+/** Tried in this order at every place; `≈` stands for "about", `<` and `>` for the inequalities. */
 const RULES: readonly (readonly [RegExp, string | ((found: string) => string)])[] = [
 	[/[\s\u00a0\u2007\u2009\u200a\u202f\u2060$]+/y, ' '],
-	[/\\(?:[,;:! ]|quad\b|left\b|right\b|displaystyle\b)/y, ' '],
-	[/\\(?:approx|simeq|sim|cong)\b|[≈≃∼≅]/y, '~'],
-	[/\\leqslant\b|\\leq?\b|<=|=<|[≤⩽]/y, '<'],
-	[/\\geqslant\b|\\geq?\b|>=|=>|[≥⩾]/y, '>'],
-	[/\\pm\b|±|\+\s*\/?\s*[-\u2212]/y, '±'],
-	[/\\(?:times|cdot)\b|[×·⋅∙]/y, '*'],
+	[
+		/\\(?:[,;:! ()[\]]|(?:q?quad|left|right|displaystyle|(?:math|text)(?:bf|rm|it)|bm|text)(?![A-Za-z]))/y,
+		' '
+	],
+	[/\\(?:approx|simeq|sim|cong)(?![A-Za-z])|[≈≃∼≅]/y, '≈'],
+	[/\\(?:leqslant|leq?|lesssim)(?![A-Za-z])|<=|=<|[≤⩽≲]/y, '<'],
+	[/\\(?:geqslant|geq?|gtrsim)(?![A-Za-z])|>=|=>|[≥⩾≳]/y, '>'],
+	[/\\pm(?![A-Za-z])|±|\+\s*\/?\s*[-\u2212]/y, '±'],
+	[/\\(?:times|cdot)(?![A-Za-z])|[×·⋅∙]/y, '*'],
+	[/\\(?:dots|ldots|cdots)(?![A-Za-z])|\.\.\.|…/y, '…'],
 	[/\\%|％/y, '%'],
 	[/[\u2212\u2010-\u2013\ufe63\uff0d]/y, '-'],
 	[/[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+/y, lowerSuperscript],
-	[/\\infty\b|∞/y, 'infinity']
+	[/\\infty(?![A-Za-z])|∞/y, 'infinity']
 ];
 
 /** Brings minus signs, spaces, LaTeX commands and superscripts to plain text. */

@@ -62,7 +62,28 @@ const CASES: Case[] = [
 	['\u2264 3', '3', '3'],
 	['\\geq 3', '3', '3'],
 	['2.8284.', '2.82835', '2.82845'],
+	['2.8284 .', '2.82835', '2.82845'],
+	['2.8284,', '2.82835', '2.82845'],
 	['$2.8284$', '2.82835', '2.82845'],
+	['\\(2.8284\\)', '2.82835', '2.82845'],
+	['\\mathbf{2.8284}', '2.82835', '2.82845'],
+	['\\textbf{2.8284}', '2.82835', '2.82845'],
+	['{2.8284}', '2.82835', '2.82845'],
+	['\\approx2.8284', '2.82835', '2.82845'],
+	['\\sim 0.2509', '0.25085', '0.25095'],
+	['\\lesssim 2.83', '2.825', '2.835'],
+	['2.5\\cdot10^{-4}', '0.000245', '0.000255'],
+	['2.5 10^-4', '0.000245', '0.000255'],
+	['82.8\\,\\%', '0.8275', '0.8285'],
+	['0.250\\,875', '0.2508745', '0.2508755'],
+	['2.82(8)', '2.74', '2.90'],
+	['2.828...', '2.828', '2.829'],
+	['2.828\u2026', '2.828', '2.829'],
+	['2.828\\ldots', '2.828', '2.829'],
+	['-0.25\\dots', '-0.26', '-0.25'],
+	['2.828...', '2.8275', '2.8285', 'rounded'],
+	['\\frac34', '3/4', '3/4'],
+	['\u00bd', '1/2', '1/2'],
 	['4', '3.5', '4.5', 'rounded'],
 	['0.25088(2)', '0.250875', '0.250885', 'rounded'],
 	['2.8284', '2.8284', '2.8285', 'truncated'],
@@ -84,7 +105,19 @@ describe('readStatedValue', () => {
 		expect(read.irrational).toBe(false);
 	});
 
-	it.each(['2*sqrt(2)', '2\\sqrt{2}', '2\u221a2', '2 sqrt(2)'])('encloses %s', (printed) => {
+	it.each([
+		'2*sqrt(2)',
+		'2\\sqrt{2}',
+		'2\u221a2',
+		'2 sqrt(2)',
+		'$2\\sqrt2$',
+		'2\\,\\sqrt 2',
+		'\\(2\\sqrt{2}\\)',
+		'2^{3/2}',
+		'4\\cos(\\pi/4)',
+		'4 \\cos\\frac{\\pi}{4}',
+		'4\\sqrt2\\cos^2(\\pi/4)'
+	])('encloses %s', (printed) => {
 		const read = readStatedValue(printed, 'as-printed');
 		// Square of 2 sqrt(2) is 8, whatever the digits.
 		expect(read.low.mul(read.low).compare(8)).toBe(-1);
@@ -151,6 +184,17 @@ describe('readStatedValue', () => {
 		['1:5', 1, /can't be read/],
 		['<script>', 1, /can't be read/],
 		['config()', 0, /config/],
+		['S = 2.8284', 0, /without the name/],
+		['2\\sqrt{2} \\approx 2.828', 10, /two values/],
+		['(sqrt(3)-1)/2 = 0.366', 14, /two values/],
+		['0.25 - 0.26', 5, /range or a difference/],
+		['0.25\u20130.26', 4, /range or a difference/],
+		['2.414(2)(3)', 8, /Two uncertainties/],
+		['1.23 bits', 8, /without its unit/],
+		['2 2/3', 1, /two ways/],
+		['1\u00bd', 1, /mixed number/],
+		['1/3...', 0, /Dots may follow digits only/],
+		['\\cos^2 \\pi/8', 0, /needs parentheses/],
 		['9'.repeat(201), 200, /at most 200 characters/]
 	])('refuses %j at position %i', (printed, position, message) => {
 		const read = () => readStatedValue(printed, 'as-printed');

@@ -4,8 +4,12 @@ import { ratio, type Rational } from '../nonlocality/exact/rational';
 import type { ReadingChoice, Relation } from './claim';
 import { ExponentTooLarge, readDecimalForm, type DecimalForm } from './decimal-form';
 import { encloseCoefficient } from './enclose-coefficient';
-import { plainText, sliceText, type PrintedText } from './printed-text';
+import { readNumberText } from './number-text';
+import type { PrintedText } from './printed-text';
 import { readingText } from './reading-text';
+import { StatedValueError } from './stated-value-error';
+
+export { StatedValueError } from './stated-value-error';
 
 /** A printed value, kept as printed and read as an interval. */
 export interface StatedValue {
@@ -32,22 +36,8 @@ export interface StatedValue {
 	readonly text: string;
 }
 
-/** A value that can't be read: where, and what to do. */
-export class StatedValueError extends Error {
-	constructor(
-		message: string,
-		/** Zero-based position in what was typed. */
-		readonly position: number
-	) {
-		super(message);
-		this.name = 'StatedValueError';
-	}
-}
-
 /** Longest printed value; nothing past it is looked at. */
 export const LONGEST_PRINTED = 200;
-
-const SIGNS: Readonly<Record<string, Relation>> = { '=': '=', '~': '=', '<': '<=', '>': '>=' };
 
 const HALF = ratio(1n, 2n);
 
@@ -62,11 +52,16 @@ export function readStatedValue(printed: string, reading: ReadingChoice): Stated
 			`A printed value has at most ${LONGEST_PRINTED} characters; enter the number alone.`,
 			LONGEST_PRINTED
 		);
-	const whole = plainText(printed);
-	refuseWhatIsNoNumber(whole);
-	const { relation, number } = splitRelation(whole);
+	const { relation, number, continues } = readNumberText(printed);
 	const decimal = decimalOf(number);
-	const parts = decimal ? readDigits(decimal, reading) : readExpression(printed, number, reading);
+	if (continues && !decimal)
+		throw new StatedValueError(
+			'Dots may follow digits only; enter an exact expression without them.',
+			number.at[0] ?? 0
+		);
+	// Digits that go on were cut off, not rounded.
+	const choice = continues && reading === 'as-printed' ? 'truncated' : reading;
+	const parts = decimal ? readDigits(decimal, choice) : readExpression(printed, number, choice);
 	const { low, high, exact, irrational, value, percent } = parts;
 	const text = readingText(low, high, exact, irrational ? typedPart(printed, number) : null);
 	const precision = decimal ? decimal.precision : null;
@@ -79,37 +74,11 @@ export function readStatedValue(printed: string, reading: ReadingChoice): Stated
 		irrational,
 		precision,
 		percent,
-		choice: reading,
+		choice,
 		decimal,
 		text
 	};
 	return relation ? { ...read, relation } : read;
-}
-
-function refuseWhatIsNoNumber({ text, at }: PrintedText): void {
-	if (text.trim() === '')
-		throw new StatedValueError('Enter the value as the paper prints it, for instance 2.8284.', 0);
-	const word = /\b(?:nan|inf(?:inity)?)\b/i.exec(text);
-	if (word)
-		throw new StatedValueError(
-			'A value must be a finite number; enter the number the paper prints.',
-			at[word.index] ?? 0
-		);
-	const comma = text.indexOf(',');
-	if (comma >= 0)
-		throw new StatedValueError(
-			'A comma can be read in two ways: write a decimal point, and leave thousands unseparated.',
-			at[comma] ?? 0
-		);
-}
-
-function splitRelation(whole: PrintedText): { relation?: Relation; number: PrintedText } {
-	const sign = /^\s*([=~<>])/.exec(whole.text);
-	const relation = sign?.[1] === undefined ? undefined : SIGNS[sign[1]];
-	const rest = sliceText(whole, sign?.[0].length ?? 0);
-	// The full stop of the sentence it was copied from.
-	const number = sliceText(rest, 0, rest.text.replace(/(?<=[\d)}%])\.?\s*$/, '').length);
-	return relation ? { relation, number } : { number };
 }
 
 function decimalOf(number: PrintedText): DecimalForm | null {
@@ -192,11 +161,24 @@ function expressionSource(printed: string, number: PrintedText): PrintedText {
 	const typed = printed.slice(start, last + 1).replace(/\\?[%％]\s*$/, '');
 	const text = { text: typed, at: Array.from(typed, (_, i) => start + i) };
 	const gaps = new Set<number>();
-	for (const gap of typed.matchAll(/(?<=[\d.])\s+(?=[\d.])/g))
+	for (const gap of typed.matchAll(/(?<=[\d.])\s+(?=[\d.])/g)) {
+		refuseMixedNumber(typed, gap.index, gap[0].length, start);
 		for (let i = 0; i < gap[0].length; i++) gaps.add(start + gap.index + i);
+	}
 	if (gaps.size === 0) return text;
 	const kept = text.at.filter((position) => !gaps.has(position));
 	return { text: kept.map((position) => printed.charAt(position)).join(''), at: kept };
+}
+
+/** `1 000/3` is a thousand by three; `2 2/3` may be a mixed number, and is not guessed. */
+function refuseMixedNumber(typed: string, gap: number, length: number, start: number): void {
+	const grouped = /^\d{3}(?![\d.])/.test(typed.slice(gap + length));
+	const behindPoint = /\.\d+(?:\s\d+)*$/.test(typed.slice(0, gap));
+	if (grouped || behindPoint) return;
+	throw new StatedValueError(
+		'A space here can be read in two ways: write a mixed number as one fraction, a product with *.',
+		start + gap
+	);
 }
 
 function sentence(message: string): string {

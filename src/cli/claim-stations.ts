@@ -1,15 +1,20 @@
 import type { Problem } from '../lib/nonlocality';
 
-/** Budgets of the other quantities: enough for a diagnosis, small beside the claim's own. */
-const SECONDS = 5;
-const QUANTUM_SECONDS = 10;
+/** Budgets of the other quantities, in seconds. */
+export interface StationBudget {
+	readonly each: number;
+	readonly quantum: number;
+}
+
+/** Enough for a diagnosis, small beside the claim's own. */
+export const STATION_BUDGET: StationBudget = { each: 5, quantum: 10 };
 const STARTS = 12;
 
 /** The other quantities of the claimed functional that a disagreement is compared with. */
-export function claimStations(claimed: Problem): Problem[] {
+export function claimStations(claimed: Problem, budget = STATION_BUDGET): Problem[] {
 	if (claimed.quantity === 'value') return [];
 	const { format, outputs, terms, sense, constraints, seed } = claimed;
-	const base = { format, outputs, terms, sense, constraints, seed, seconds: SECONDS };
+	const base = { format, outputs, terms, sense, constraints, seed, seconds: budget.each };
 	const twoParties = outputs.length === 2;
 	const npa = { ...base, quantity: 'npa' } as const;
 	const seeSaw = { ...base, quantity: 'see-saw', starts: STARTS } as const;
@@ -29,7 +34,7 @@ export function claimStations(claimed: Problem): Problem[] {
 	if (constraints.length === 0)
 		stations.push({
 			...base,
-			seconds: QUANTUM_SECONDS,
+			seconds: budget.quantum,
 			quantity: 'quantum',
 			levels: null,
 			dimensions: null,

@@ -17,7 +17,7 @@ import { solve, verifyResult, type Control, type Problem, type Result } from '..
 import { functionalOfTerms } from '../lib/nonlocality/notation';
 import { parseProblem } from '../lib/schemas/problem';
 import type { ClaimJson } from '../lib/schemas/claim-json';
-import { claimStations } from './claim-stations';
+import { STATION_BUDGET, claimStations } from './claim-stations';
 import { knownFamily } from './known-family';
 
 export interface JudgedClaim {
@@ -27,12 +27,16 @@ export interface JudgedClaim {
 	readonly others: readonly OtherValue[];
 }
 
-/** Recomputes a claim's quantity and judges it as the ledger does; on a doubt, with the stations. */
+/**
+ * Recomputes a claim's quantity and judges it as the ledger does; on a doubt, with the stations, as
+ * far as they are needed: what agrees needs no diagnosis.
+ */
 export async function judgeClaim(
 	claim: ClaimJson,
 	reading: StatedValue,
 	problem: Problem,
-	control: Control
+	control: Control,
+	budget = STATION_BUDGET
 ): Promise<JudgedClaim> {
 	const result = await solve(problem, control);
 	const findings = checked(result);
@@ -46,11 +50,14 @@ export async function judgeClaim(
 		recomputation: state,
 		quantity
 	});
-	if (judge(input()).status === 'agreement')
+	const agrees = () => judge(input()).status === 'agreement';
+	for (const station of claimStations(problem, budget)) {
+		if (agrees()) break;
+		findings.push(...checked(await solve(station, control)));
+	}
+	if (agrees())
 		return { verdict: { ...deriveVerdict(input()), diagnosis: [] }, result, others: [] };
 
-	for (const station of claimStations(problem))
-		findings.push(...checked(await solve(station, control)));
 	const others = othersOfFindings(findings, problem, IDENTITY_MAP, claim.method);
 	const { status, reasonCode, enclosure } = judge(input());
 	const diagnosis: Diagnosis[] = diagnose({

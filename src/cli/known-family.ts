@@ -1,27 +1,41 @@
-import { encloseCoefficient } from '../lib/ledger/enclose-coefficient';
+import { encloseCoefficient, type RationalInterval } from '../lib/ledger/enclose-coefficient';
 import type { NormalisationContext } from '../lib/ledger/normalisations';
 import { affineMap, type Problem } from '../lib/nonlocality';
-import { familyFunctional, functionalOfTerms, type FamilySpec } from '../lib/nonlocality/notation';
+import {
+	familyFunctional,
+	functionalOfTerms,
+	parseCoefficient,
+	scaleFunctional,
+	type FamilySpec
+} from '../lib/nonlocality/notation';
 
 /** Finding an equivalence of more inputs or parties than this takes longer than it is worth here. */
 const LARGEST_CHAIN = 6;
+const MINUS_ONE = parseCoefficient('-1');
 
 /**
- * The family a problem's functional is a member of, up to relabelling, scale and constant, with the
- * map between the two; nothing when it is none of those that have published normalisations.
+ * The family a problem's functional is a member of, up to relabelling, scale (a negative one turns
+ * maxima into minima) and constant, with the map between the two; nothing when it is none of those
+ * that have published normalisations.
  */
 export function knownFamily(problem: Problem): Pick<NormalisationContext, 'family' | 'fromFamily'> {
 	const functional = functionalOfTerms(problem.outputs, problem.terms);
 	for (const candidate of candidates(problem.outputs)) {
-		const map = affineMap(functional, familyFunctional(candidate));
+		const member = familyFunctional(candidate);
+		const direct = affineMap(functional, member);
+		const map = direct ?? affineMap(scaleFunctional(functional, MINUS_ONE), member);
 		if (!map) continue;
-		const { low: scale } = encloseCoefficient(map.scale);
-		const { low: shift } = encloseCoefficient(map.shift);
+		const { low: scale } = signed(encloseCoefficient(map.scale), direct !== null);
+		const { low: shift } = signed(encloseCoefficient(map.shift), direct !== null);
 		const parameter = candidate.d ?? candidate.n;
 		const family = { name: candidate.name, ...(parameter ? { parameter: Number(parameter) } : {}) };
 		return { family, fromFamily: { scale, shift } };
 	}
 	return { family: null };
+}
+
+function signed({ low, high }: RationalInterval, positive: boolean): RationalInterval {
+	return positive ? { low, high } : { low: high.neg(), high: low.neg() };
 }
 
 function candidates(outputs: Problem['outputs']): FamilySpec[] {

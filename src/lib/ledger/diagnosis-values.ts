@@ -1,4 +1,4 @@
-import { printRational, type Rational } from '../nonlocality/exact/rational';
+import { printRational, toDecimal, type Rational } from '../nonlocality/exact/rational';
 import type { Relation } from './claim';
 import type { Diagnosis, OtherValue } from './diagnosis';
 import { mapEnds, settles, type Trial } from './diagnosis-trial';
@@ -59,7 +59,13 @@ export function otherNormalisations(
 
 function showProduct(scale: Rational, value: string): string {
 	if (scale.equals(1)) return value;
-	return `${printRational(scale)} × ${value.startsWith('-') ? `(${value})` : value}`;
+	return `${shortRational(scale)} × ${value.startsWith('-') ? `(${value})` : value}`;
+}
+
+/** A scale that is no short fraction (an irrational one, enclosed) is shown to 9 digits. */
+function shortRational(scale: Rational): string {
+	const whole = printRational(scale);
+	return whole.length <= 12 ? whole : `${toDecimal(scale, 9, scale.s < 0n ? 'up' : 'down')}…`;
 }
 
 function showShift(shift: Rational): string {

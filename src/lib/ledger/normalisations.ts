@@ -1,4 +1,11 @@
-import { ONE, ZERO, parseRational, ratio, type Rational } from '../nonlocality/exact/rational';
+import {
+	ONE,
+	ZERO,
+	exactOfDouble,
+	parseRational,
+	ratio,
+	type Rational
+} from '../nonlocality/exact/rational';
 import { winningProbabilityMap, type CorrelatorGame } from './correlator-game';
 
 /** Another way to write values of the same inequality: value there = scale * value here + shift. */
@@ -58,7 +65,11 @@ function familyForms(name: string, parameter: number | undefined): Normalisation
 		case 'chained':
 			return parameter === undefined
 				? []
-				: [own('as a sum of correlators'), winningProbability(fraction(2 * parameter))];
+				: [
+						own('as a sum of correlators'),
+						winningProbability(fraction(2 * parameter)),
+						form(`with quantum maximum ${parameter}`, chainedShare(parameter), ZERO)
+					];
 		case 'elegant':
 			return [own('as a sum of correlators'), winningProbability(fraction(12))];
 		case 'mermin':
@@ -73,6 +84,9 @@ function familyForms(name: string, parameter: number | undefined): Normalisation
 			return [];
 	}
 }
+
+/** The form with d outputs and m inputs of Phys. Rev. Lett. 119, 040402 (2017), at d = 2. */
+const chainedShare = (n: number) => exactOfDouble(1 / (2 * Math.cos(Math.PI / (2 * n))));
 
 /** I_d = 2 + (2d/(d-1)) (1 - B): the complementary form falls where I_d rises. */
 function cglmpForms(d: number): Normalisation[] {

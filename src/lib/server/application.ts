@@ -1,7 +1,5 @@
 import { config } from './config';
-import type { Actor, Context } from './context';
 import { openDatabase, type Database, type OpenDatabase } from './db/client';
-import { newId } from './ids';
 
 declare global {
 	/**
@@ -30,9 +28,4 @@ let database: Database | undefined;
 export function openedDatabase(): Database {
 	if (!database) throw new Error('The database is not open yet.');
 	return database;
-}
-
-/** A context for the product itself, for jobs and for the seed; `actor` null is the product. */
-export function makeContext(db: Database, actor: Actor | null, requestId = newId()): Context {
-	return { db, actor, requestId, now: () => new Date() };
 }

@@ -4,8 +4,8 @@ import { zod4 } from 'sveltekit-superforms/adapters';
 import type { ClaimFormMessage } from '../../features/claim-form/form-message';
 import { claimInput, type ClaimInput } from '../../schemas/claim-input';
 import type { InequalityRow, ReadingView } from '../../schemas/views';
+import { enter } from '../auth/enter';
 import { contextOf } from '../auth/guards';
-import { setSessionCookie } from '../auth/cookie';
 import type { GroupContext } from '../context';
 import { ServiceError } from '../errors';
 import { searchInequalities } from '../services/inequalities/search-inequalities';
@@ -86,10 +86,7 @@ export async function signInWithinForm(event: RequestEvent, data: FormData) {
 	const text = (name: string) => String(data.get(name) ?? '');
 	try {
 		const credentials = { email: text('signInEmail'), password: text('signInPassword') };
-		const signedIn = await signIn(contextOf(event), credentials, event.getClientAddress());
-		setSessionCookie(event.cookies, signedIn.token);
-		event.locals.actor = signedIn.actor;
-		event.locals.sessionId = signedIn.sessionId;
+		await enter(event, await signIn(contextOf(event), credentials, event.getClientAddress()));
 	} catch (thrown) {
 		if (!(thrown instanceof ServiceError)) throw thrown;
 		return sendBack(form, thrown.status, { text: thrown.message, issues: [], signedOut: true });

@@ -15,6 +15,7 @@ import {
 	type StationRow
 } from '../inequalities/stations-view';
 import { isPublicClaim } from '../inequalities/visibility';
+import { INEQUALITY_TEXT, contains, searchWords } from '../search-words';
 import { claimedBounds, type ClaimedBounds } from './claimed-bounds';
 import { ownBounds, type OwnBound } from './own-bounds';
 import { isClosed, showGap } from './show-gap';
@@ -34,7 +35,7 @@ export async function listBounds(ctx: Context, query: BoundsQuery): Promise<Boun
 				? gt(inequalities.parties, 3)
 				: eq(inequalities.parties, Number(query.parties)),
 		query.scenario ? eq(inequalities.scenario, query.scenario) : undefined,
-		...words(query.search).map((word) => matches(word, ctx))
+		...searchWords(query.search).map((word) => matches(word, ctx))
 	);
 	const [counted] = await read.select({ total: count() }).from(inequalities).where(where);
 	const total = counted?.total ?? 0;
@@ -100,22 +101,18 @@ function boundsRow(
 	};
 }
 
-const words = (search: string) => search.split(/\s+/).filter(Boolean).slice(0, 10);
-
 /** In the inequality itself, or in the paper or the value of a public claim on it. */
 function matches(word: string, { db: { read } }: Context): SQL | undefined {
-	const pattern = `%${word.replace(/[\\%_]/g, '\\$&')}%`;
-	const place = sql`coalesce(${inequalities.name}, '') || ' ' || ${inequalities.scenario} || ' ' || ${inequalities.latex}`;
 	const cited = sql`${references.formatted} || ' ' || ${references.short} || ' ' || ${claims.printed}`;
 	return or(
-		sql`${place} like ${pattern} escape '\\'`,
+		contains(INEQUALITY_TEXT, word),
 		inArray(
 			inequalities.id,
 			read
 				.select({ id: claims.inequalityId })
 				.from(claims)
 				.innerJoin(references, eq(references.id, claims.referenceId))
-				.where(and(isPublicClaim, sql`${cited} like ${pattern} escape '\\'`))
+				.where(and(isPublicClaim, contains(cited, word)))
 		)
 	);
 }

@@ -5,6 +5,7 @@ import { PAGE_SIZE, type LedgerQuery, type LedgerSort } from '../../../schemas/l
 import type { LedgerPage, StatusCounts } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
 import { claims, inequalities, references } from '../../db/schema';
+import { contains, searchWords } from '../search-words';
 import { claimRows, selectClaimRows } from './claim-rows';
 
 /** One page of a group's ledger: searched, filtered, sorted and counted by the database. */
@@ -75,25 +76,21 @@ export function statusCounts(
 	return { agreement, discrepancy, open, all: agreement + discrepancy + open };
 }
 
-/** Each word must occur somewhere in what the row shows; `%` and `_` are themselves. */
+/** Each word must occur somewhere in what the row shows. */
 function matches(search: string): SQL | undefined {
-	const words = search.split(/\s+/).filter(Boolean).slice(0, 10);
 	return and(
-		...words.map((word) => {
-			const pattern = `%${word.replace(/[\\%_]/g, '\\$&')}%`;
-			const has = (column: SQL | (typeof claims)['subject'] | (typeof references)['title']) =>
-				sql`${column} like ${pattern} escape '\\'`;
+		...searchWords(search).map((word) => {
 			const number = /^#?(\d{1,9})$/.exec(word)?.[1];
 			return or(
-				has(sql`${inequalities.name}`),
-				has(sql`${claims.subject}`),
-				has(sql`${claims.quantityLabel}`),
-				has(sql`${claims.printed}`),
-				has(sql`${claims.locator}`),
-				has(sql`${claims.method}`),
-				has(sql`${references.formatted}`),
-				has(sql`${references.short}`),
-				has(sql`${references.doi}`),
+				contains(inequalities.name, word),
+				contains(claims.subject, word),
+				contains(claims.quantityLabel, word),
+				contains(claims.printed, word),
+				contains(claims.locator, word),
+				contains(claims.method, word),
+				contains(references.formatted, word),
+				contains(references.short, word),
+				contains(references.doi, word),
 				number ? eq(claims.number, Number(number)) : undefined
 			);
 		})

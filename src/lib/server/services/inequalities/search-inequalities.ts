@@ -2,6 +2,7 @@ import { and, asc, eq, inArray, or, sql } from 'drizzle-orm';
 import type { InequalityRow } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
 import { claims, inequalities } from '../../db/schema';
+import { INEQUALITY_TEXT, contains, searchWords } from '../search-words';
 import { recognisedDigests } from './catalogue';
 import { inequalityRows } from './inequality-rows';
 import { isPublicClaim } from './visibility';
@@ -23,7 +24,6 @@ export async function searchInequalities(
 		.from(claims)
 		.where(or(own, isPublicClaim));
 	const mine = read.select({ id: claims.inequalityId }).from(claims).where(own);
-	const words = text.slice(0, 200).split(/\s+/).filter(Boolean).slice(0, 10);
 	const rows = await read
 		.select()
 		.from(inequalities)
@@ -33,11 +33,7 @@ export async function searchInequalities(
 					inArray(inequalities.digest, [...recognisedDigests()]),
 					inArray(inequalities.id, visible)
 				),
-				...words.map((word) => {
-					const pattern = `%${word.replace(/[\\%_]/g, '\\$&')}%`;
-					const place = sql`coalesce(${inequalities.name}, '') || ' ' || ${inequalities.scenario} || ' ' || ${inequalities.latex}`;
-					return sql`${place} like ${pattern} escape '\\'`;
-				})
+				...searchWords(text).map((word) => contains(INEQUALITY_TEXT, word))
 			)
 		)
 		.orderBy(

@@ -1,5 +1,5 @@
 import { spawnSync } from 'node:child_process';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { newPerson, PASSWORD, startGroup } from '../support/people';
 import { startServer, type TestServer } from '../support/server';
 import { Visitor } from '../support/visitor';
@@ -189,7 +189,8 @@ describe('limits on tries', () => {
 			const refused = await attempt(PASSWORD, { 'X-Forwarded-For': '192.0.2.7' });
 			expect(refused.status).toBe(429);
 			expect(await refused.text()).toContain('Try again in');
-			expect(strict.logs()).toContain('"security":"rate-limited"');
+			// The log's line may come after the answer.
+			await vi.waitFor(() => expect(strict.logs()).toContain('"security":"rate-limited"'));
 		} finally {
 			await strict.stop();
 		}

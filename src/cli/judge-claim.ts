@@ -5,9 +5,9 @@ import {
 	evidenceOfFinding,
 	exactValueOf,
 	othersOfFindings,
-	valueOfFinding,
 	type Finding
 } from '../lib/ledger/evidence';
+import { valueWithOtherBase } from '../lib/ledger/index-base';
 import { judge, type RecomputationState } from '../lib/ledger/judgement';
 import { knownNormalisations } from '../lib/ledger/normalisations';
 import { valueLabel } from '../lib/ledger/problem-labels';
@@ -101,7 +101,5 @@ async function otherIndexBase(
 	}
 	if (JSON.stringify(problem.terms) === JSON.stringify(claimed.terms)) return null;
 	const [finding] = checked(await solve(problem, control));
-	if (!finding) return null;
-	const label = `counted from ${base}, ${valueLabel(problem)}`;
-	return { ...valueOfFinding(finding, IDENTITY_MAP), label, matchesMethod: false };
+	return finding ? valueWithOtherBase(finding, base) : null;
 }

@@ -91,6 +91,28 @@ describe('a claim', () => {
 		]);
 	});
 
+	it('on an expression may have meant the other index base, where that changes the value', async () => {
+		// P(a below 2) is 1 for the input with two outputs, and can be 0 for the one with three.
+		const { number } = await enterClaim(
+			world.as.member,
+			claimFields({
+				subjectKind: 'expression',
+				expression: 'P(0,0|1,1) + P(1,0|1,1) + P(0,1|1,1) + P(1,1|1,1)',
+				outputs: '2 3 / 2 2',
+				indexBase: '0',
+				quantity: 'local',
+				sense: 'min',
+				printed: '1'
+			})
+		);
+		await world.recompute();
+		const { verdict } = await showClaim(world.as.observer, number);
+		expect(verdict).toMatchObject({ status: 'discrepancy', enclosure: { exact: '0' } });
+		expect(verdict.diagnosis).toContainEqual(
+			expect.objectContaining({ kind: 'index-base', value: '1' })
+		);
+	});
+
 	it('edited from a stale page is refused', async () => {
 		const { number } = await enterClaim(world.as.member, claimFields());
 		await editClaim(world.as.member, number, 1, claimFields({ note: 'first' }));

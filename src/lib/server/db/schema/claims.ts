@@ -57,6 +57,10 @@ export const claims = sqliteTable(
 		status: text('status', { enum: VERDICT_STATUSES }).notNull().default('open'),
 		/** The recomputation of exactly the claimed quantity, when a solver serves it. */
 		recomputationId: text('recomputation_id').references(() => recomputations.id),
+		/** Of the expression with its inputs counted from the other number, where that matters. */
+		otherBaseRecomputationId: text('other_base_recomputation_id').references(
+			() => recomputations.id
+		),
 		createdBy: text('created_by')
 			.notNull()
 			.references(() => users.id),
@@ -68,6 +72,7 @@ export const claims = sqliteTable(
 		index('claims_inequality').on(table.inequalityId),
 		index('claims_reference').on(table.referenceId),
 		index('claims_recomputation').on(table.recomputationId),
+		index('claims_other_base').on(table.otherBaseRecomputationId),
 		index('claims_public').on(table.visibility, table.status)
 	]
 );

@@ -42,7 +42,10 @@ export async function deriveTouchedClaims(
 		.from(recomputations)
 		.where(eq(recomputations.id, recomputationId));
 	if (!row) return;
-	const own = eq(claims.recomputationId, recomputationId);
+	const own = or(
+		eq(claims.recomputationId, recomputationId),
+		eq(claims.otherBaseRecomputationId, recomputationId)
+	);
 	const onIt = row.inequalityId === null ? undefined : eq(claims.inequalityId, row.inequalityId);
 	// A station speaks to every group; what a claim asked for only to the groups that asked.
 	const asking = tx.select({ id: claims.groupId }).from(claims).where(own);

@@ -1,8 +1,9 @@
 import { eq } from 'drizzle-orm';
 import { correlatorGame, gameOfMapped } from '../../../ledger/correlator-game';
 import { diagnose } from '../../../ledger/diagnose';
-import type { Diagnosis } from '../../../ledger/diagnosis';
+import type { Diagnosis, OtherValue } from '../../../ledger/diagnosis';
 import { othersOfFindings } from '../../../ledger/evidence';
+import { valueWithOtherBase } from '../../../ledger/index-base';
 import { judge, type JudgementInput } from '../../../ledger/judgement';
 import { knownNormalisations } from '../../../ledger/normalisations';
 import type { StatedValue } from '../../../ledger/stated-value';
@@ -13,7 +14,7 @@ import type { Transaction } from '../../db/client';
 import { inequalities } from '../../db/schema';
 import { mapSides, type AffineMap } from '../inequalities/affine';
 import { familyOfName } from '../inequalities/family-of-name';
-import type { StoredFinding } from './findings';
+import { loadFinding, type StoredFinding } from './findings';
 import type { JudgedClaim } from './judge-claim';
 
 export interface Explained {
@@ -44,8 +45,19 @@ export async function explainVerdict(
 		reasonCode,
 		enclosure,
 		others: othersOfFindings(findings, claimed, middle, claim.method),
-		normalisations: await normalisationsOf(tx, claim, findings, map, middle)
+		normalisations: await normalisationsOf(tx, claim, findings, map, middle),
+		indexBaseAlternative: status === 'discrepancy' ? await otherIndexBase(tx, claim) : null
 	});
+}
+
+/** The claimed quantity with the inputs counted from the other number, where that was recomputed. */
+async function otherIndexBase(
+	tx: Transaction,
+	{ otherBaseRecomputationId, input }: JudgedClaim
+): Promise<OtherValue | null> {
+	const finding = otherBaseRecomputationId ? await loadFinding(tx, otherBaseRecomputationId) : null;
+	// A base that was read is 1: with an index 0 the expression has no meaning with any other.
+	return finding && valueWithOtherBase(finding, input.indexBase === '0' ? 1 : 0);
 }
 
 async function normalisationsOf(

@@ -41,17 +41,7 @@ async function loadFindings(
 			)
 		);
 	const rows = await tx
-		.select({
-			id: recomputations.id,
-			station: recomputations.station,
-			checked: recomputations.checked,
-			checkNote: recomputations.checkNote,
-			lower: recomputations.lower,
-			upper: recomputations.upper,
-			exact: recomputations.exact,
-			summary: recomputations.summary,
-			problem: recomputations.problem
-		})
+		.select(FINDING_COLUMNS)
 		.from(recomputations)
 		.where(
 			and(
@@ -64,16 +54,42 @@ async function loadFindings(
 		station === null ? EXPLAINING.length : EXPLAINING.indexOf(station);
 	return [...rows]
 		.sort((a, b) => order(a.station) - order(b.station))
-		.flatMap(({ id, station, checked, checkNote, lower, upper, exact, summary, problem }) => {
-			if (!summary) return [];
-			const check =
-				checked === null
-					? null
-					: checked
-						? ({ checked, lower, upper, exact, method: checkNote ?? '' } as const)
-						: ({ checked, reason: checkNote ?? '' } as const);
-			return [{ id, isStation: station !== null, result: { ...summary, problem }, check }];
-		});
+		.flatMap((row) => findingOf(row) ?? []);
+}
+
+const FINDING_COLUMNS = {
+	id: recomputations.id,
+	station: recomputations.station,
+	checked: recomputations.checked,
+	checkNote: recomputations.checkNote,
+	lower: recomputations.lower,
+	upper: recomputations.upper,
+	exact: recomputations.exact,
+	summary: recomputations.summary,
+	problem: recomputations.problem
+} as const;
+
+function findingOf(
+	row: Pick<typeof recomputations.$inferSelect, keyof typeof FINDING_COLUMNS>
+): StoredFinding | null {
+	const { id, station, checked, checkNote, lower, upper, exact, summary, problem } = row;
+	if (!summary) return null;
+	const check =
+		checked === null
+			? null
+			: checked
+				? ({ checked, lower, upper, exact, method: checkNote ?? '' } as const)
+				: ({ checked, reason: checkNote ?? '' } as const);
+	return { id, isStation: station !== null, result: { ...summary, problem }, check };
+}
+
+/** What one recomputation found; null while it has not. */
+export async function loadFinding(tx: Transaction, id: string): Promise<StoredFinding | null> {
+	const [row] = await tx
+		.select(FINDING_COLUMNS)
+		.from(recomputations)
+		.where(eq(recomputations.id, id));
+	return row ? findingOf(row) : null;
 }
 
 /** The findings on a claim's inequality; judging many claims reads each set once. */

@@ -92,8 +92,27 @@ function readExpression(input: ClaimInput): SubjectReading {
 		latex: latexOf(functional, indexBase ?? 0),
 		family: null,
 		inequalityId: null,
-		indexBase: indexBase === null ? null : { base: indexBase, chosen }
+		indexBase: indexBase === null ? null : { base: indexBase, chosen },
+		otherBase: indexBase === null ? null : readWithOtherBase(input.expression, indexBase, given)
 	});
+}
+
+/**
+ * Counting from the other number renames inputs, which changes no value unless inputs of one party
+ * differ in their outputs.
+ */
+function readWithOtherBase(
+	expression: string,
+	base: 0 | 1,
+	outputs: readonly (readonly number[])[] | undefined
+): Functional | null {
+	if (!outputs?.some((party) => new Set(party).size > 1)) return null;
+	try {
+		return parseExpression(expression, { indexBase: base === 0 ? 1 : 0, outputs }).functional;
+	} catch (error) {
+		if (error instanceof NotationError) return null; // it has no meaning with the other base
+		throw error;
+	}
 }
 
 const CONSTANT = 'This is the same number for every behaviour: everything else cancels.';

@@ -1,5 +1,6 @@
 import type { ClaimInput } from '../../../schemas/claim-input';
 import { toDouble } from '../../../nonlocality/exact/rational';
+import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
 import type { GroupContext } from '../../context';
 import type { Transaction } from '../../db/client';
 import type { claims } from '../../db/schema';
@@ -9,6 +10,7 @@ import { findOrCreateInequality, queueStations } from '../inequalities/find-or-c
 import { budgetSeconds } from '../recomputations/budget';
 import { claimProblem } from '../recomputations/claim-problem';
 import { queueRecomputation } from '../recomputations/queue-recomputation';
+import type { ProblemSubjectData } from '../recomputations/station-problems';
 import { addReference } from '../references/add-reference';
 import type { ReadClaimInput } from './read-claim-input';
 
@@ -73,6 +75,7 @@ export async function storeClaimParts(
 interface StoredSubject extends MapText {
 	readonly inequalityId: string | null;
 	readonly recomputationId: string | null;
+	readonly otherBaseRecomputationId: string | null;
 }
 
 async function storeSubject(
@@ -84,21 +87,30 @@ async function storeSubject(
 ): Promise<StoredSubject> {
 	const { functional, latex, family } = subject;
 	if (!functional || !place) {
-		return { inequalityId: null, recomputationId: null, scale: '1', shift: '0' };
+		const none = { inequalityId: null, recomputationId: null, otherBaseRecomputationId: null };
+		return { ...none, scale: '1', shift: '0' };
 	}
 	const placed = { functional, latex: latex ?? '', family, place };
 	const inequality = await findOrCreateInequality(tx, placed, now);
 	const seconds = budgetSeconds();
 	await queueStations(tx, inequality, ctx.group.id, seconds, now);
-	const own = claimProblem(input, quantity, inequality, seconds);
+	const queue = async (about: ProblemSubjectData, inequalityId: string | null) => {
+		const found = claimProblem(input, quantity, about, seconds);
+		if ('why' in found) return null;
+		const queued = { problem: found.problem, inequalityId, groupId: ctx.group.id };
+		return queueRecomputation(tx, queued, now);
+	};
 	const { id: inequalityId, map } = inequality;
-	const recomputationId =
-		'problem' in own
-			? await queueRecomputation(
-					tx,
-					{ problem: own.problem, inequalityId, groupId: ctx.group.id },
-					now
+	const { otherBase } = subject;
+	return {
+		inequalityId,
+		recomputationId: await queue(inequality, inequalityId),
+		otherBaseRecomputationId: otherBase
+			? await queue(
+					{ outputs: otherBase.scenario.outputs, terms: termsOfFunctional(otherBase) },
+					null
 				)
-			: null;
-	return { inequalityId, recomputationId, ...map };
+			: null,
+		...map
+	};
 }

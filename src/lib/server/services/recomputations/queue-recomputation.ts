@@ -39,14 +39,25 @@ export async function queueRecomputation(
 ): Promise<string> {
 	const problemHash = hashProblem(problem);
 	const [known] = await tx
-		.select({ id: recomputations.id, state: recomputations.state })
+		.select({
+			id: recomputations.id,
+			state: recomputations.state,
+			inequalityId: recomputations.inequalityId
+		})
 		.from(recomputations)
 		.where(eq(recomputations.problemHash, problemHash));
 	if (known) {
 		if (again && (known.state === 'cancelled' || known.state === 'failed')) {
 			await requeue(tx, known.id, groupId);
 		}
-		if (station) await asStation(tx, known.id, station);
+		// A claim may have asked for the same problem before it became a station, or an inequality's.
+		const belongs = {
+			...(station ? { station } : {}),
+			...(known.inequalityId === null && inequalityId ? { inequalityId } : {})
+		};
+		if (Object.keys(belongs).length > 0) {
+			await tx.update(recomputations).set(belongs).where(eq(recomputations.id, known.id));
+		}
 		return known.id;
 	}
 	const id = newId();
@@ -77,9 +88,4 @@ export async function requeue(tx: Transaction, id: string, groupId: string | nul
 			...(groupId ? { groupId } : {})
 		})
 		.where(eq(recomputations.id, id));
-}
-
-/** A claim may have asked for the same problem before it became a station. */
-async function asStation(tx: Transaction, id: string, station: Station): Promise<void> {
-	await tx.update(recomputations).set({ station }).where(eq(recomputations.id, id));
 }

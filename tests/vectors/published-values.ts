@@ -1,0 +1,56 @@
+/** Claims of published values, judged as `check-claim` judges them. */
+import { readFileSync } from 'node:fs';
+import { STATION_BUDGET, type StationBudget } from '../../src/cli/claim-stations';
+import { judgeClaim } from '../../src/cli/judge-claim';
+import type { VerdictStatus } from '../../src/lib/ledger/claim';
+import type { DiagnosisKind } from '../../src/lib/ledger/diagnosis';
+import { readStatedValue } from '../../src/lib/ledger/stated-value';
+import type { Control } from '../../src/lib/nonlocality';
+import { parseClaimJson } from '../../src/lib/schemas/claim-json';
+import { parseProblem } from '../../src/lib/schemas/problem';
+
+export interface PublishedValue {
+	readonly id: string;
+	/** As `check-claim` reads it. */
+	readonly claim: { readonly problem: object; readonly value: string };
+	readonly expect: VerdictStatus;
+	/** Of a discrepancy: the explanation that has to be among those offered. */
+	readonly diagnosis?: DiagnosisKind;
+	readonly source: string;
+	readonly locator: string | null;
+	readonly readInTheSource: boolean;
+	readonly identifierFromMemory?: true;
+	readonly note?: string;
+}
+
+export const publishedValues: readonly PublishedValue[] = JSON.parse(
+	readFileSync(new URL('./published-values.json', import.meta.url), 'utf8')
+);
+
+/** Too long for every run of the tests, with the reason; tests/bench/slow-claims.ts judges them. */
+export const SLOW_CLAIMS: Readonly<Record<string, string>> = {
+	'i3322.quantum.approx': 'needs a strategy grown past dimension 10',
+	'i3322.quantum': 'a supremum that no finite dimension reaches: 12 digits are not to be had',
+	'i3322.quantum.qubit-bound': 'needs a strategy grown past dimension 10',
+	'i3322.npa3': 'level 3: a matrix of 88 rows',
+	'i3322.npa3.printed': 'level 3: a matrix of 88 rows',
+	'ic.quantum.d4': '1+AB with 4 inputs of 4 outputs: a matrix of 91 rows'
+};
+
+const control: Control = {
+	now: () => performance.now(),
+	shouldStop: () => false,
+	report: () => undefined
+};
+
+/** `seconds`: for a problem that does not say. */
+export async function verdictOf(
+	json: object,
+	seconds: number,
+	stations: StationBudget = STATION_BUDGET
+) {
+	const claim = parseClaimJson(json);
+	const reading = readStatedValue(claim.printed, claim.reading);
+	const problem = parseProblem({ seconds, ...claim.problem });
+	return (await judgeClaim(claim, reading, problem, control, stations)).verdict;
+}

@@ -77,6 +77,12 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ GET: same(404) },
 		{ path: (w) => `/inequalities/${w.inequalityId}` }
 	),
+	...doors(
+		'/references/[id]',
+		{ GET: same(200) },
+		{ path: (w) => `/references/${w.publicReferenceId}` }
+	),
+	...doors('/references/[id]', { GET: same(404) }, { path: (w) => `/references/${w.referenceId}` }),
 
 	// Accounts.
 	...doors('/sign-in', { GET: signedIn(200, 303), default: signedIn(400, 303) }),

@@ -14,6 +14,7 @@ import { showPublicInequality } from '../../src/lib/server/services/inequalities
 import { readClaim } from '../../src/lib/server/services/readings/read-claim';
 import { downloadResult } from '../../src/lib/server/services/recomputations/download-result';
 import { showRecomputation } from '../../src/lib/server/services/recomputations/show-recomputation';
+import { showPublicReference } from '../../src/lib/server/services/references/show-public-reference';
 import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
 
 let world: ServiceWorld;
@@ -112,6 +113,41 @@ describe('a public claim', () => {
 		);
 		expect(shown.history.every(({ who }) => who === null)).toBe(true);
 		expect(shown).not.toHaveProperty('input');
+	});
+
+	it('shows its paper, with nothing of the group and none of its private claims', async () => {
+		const bibtex =
+			SECRET.bibtex?.replace('year ', 'annote = {my {private} remark},\n  year ') ?? '';
+		const open = await enteredBy(world.as.member, { ...SECRET, printed: '27.9', bibtex });
+		const paperId = open.reference.id;
+		await expect(showPublicReference(world.anonymous, paperId)).rejects.toMatchObject(notFound);
+		await publishClaim(world.as.maintainer, open.number);
+		const hidden = await enteredBy(
+			world.as.member,
+			claimFields({ printed: '2.8284', note: 'hidden note', locator: 'hidden place', bibtex })
+		);
+		expect(hidden.reference.id).toBe(paperId);
+		const shown = await showPublicReference(world.anonymous, paperId);
+		expect(shown.claimRows.map(({ id }) => id)).toEqual([open.id]);
+		expect(Object.keys(shown).sort()).toEqual(
+			[
+				'arxiv',
+				'bibtex',
+				'claimRows',
+				'cslJson',
+				'doi',
+				'formatted',
+				'id',
+				'short',
+				'source'
+			].concat(['title', 'year'])
+		);
+		expect(JSON.stringify(shown)).toContain('the secret paper');
+		expect(JSON.stringify(shown)).not.toMatch(
+			/secret note|hidden (note|place)|Mo Member|Mae Maintainer|reading\.example|private|"number":[1-9]/
+		);
+		await unpublishClaim(world.as.maintainer, open.number);
+		await expect(showPublicReference(world.anonymous, paperId)).rejects.toMatchObject(notFound);
 	});
 
 	it('is gone once it is taken back', async () => {

@@ -114,7 +114,7 @@ test('a wrong claim is found, explained, mailed, corrected, published and read b
 		const row = visitor.getByRole('row', { name: /Chained/ });
 		await expect(row).toBeVisible();
 		await expect(row.getByText('Osk 2015').first()).toBeVisible();
-		await row.getByRole('link', { name: 'Osk 2015' }).first().click();
+		await row.getByRole('link', { name: RIGHT }).first().click();
 		await visitor.waitForURL((url) => url.pathname.startsWith('/claims/'));
 		await expect(visitor.getByText(RIGHT).first()).toBeVisible();
 		await expect(visitor.getByText('Agreement').first()).toBeVisible();

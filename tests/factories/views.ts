@@ -53,6 +53,7 @@ export function makeLedgerRow(over: Partial<LedgerRow> = {}): LedgerRow {
 		quantityLabel: 'Quantum maximum',
 		relation: '=',
 		printed: '2.8284',
+		printedHtml: null,
 		verdict: makeVerdict(),
 		recomputedBy: 'NPA level 1, see-saw d=2',
 		stations: makeStations(),

@@ -17,6 +17,7 @@ export interface MatrixWorld extends GroupOfFour {
 	readonly publicRecomputationId: string;
 	readonly publicClaimId: string;
 	readonly publicInequalityId: string;
+	readonly publicReferenceId: string;
 	/** A joining link that nobody has used. */
 	readonly link: string;
 }
@@ -81,6 +82,7 @@ export async function matrixWorld(server: TestServer): Promise<MatrixWorld> {
 		publicRecomputationId: open.recomputations[0]?.id ?? '',
 		publicClaimId: open.id,
 		publicInequalityId: open.subject.inequalityId,
+		publicReferenceId: open.reference.id,
 		link: await joiningLink(group.owner, group.slug, 'observer')
 	};
 }

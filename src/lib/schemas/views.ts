@@ -57,6 +57,8 @@ export interface LedgerRow {
 	readonly quantityLabel: string;
 	readonly relation: Relation;
 	readonly printed: string;
+	/** The same typeset (safe HTML made by the server), where it is written in LaTeX. */
+	readonly printedHtml: string | null;
 	readonly verdict: Verdict;
 	/** `NPA level 1, see-saw d=2`. */
 	readonly recomputedBy: string;
@@ -144,6 +146,8 @@ export interface ClaimView {
 	readonly quantityLabel: string;
 	readonly relation: Relation;
 	readonly printed: string;
+	/** The same typeset (safe HTML made by the server), where it is written in LaTeX. */
+	readonly printedHtml: string | null;
 	readonly method: string;
 	readonly locator: string;
 	readonly note: string;
@@ -192,6 +196,11 @@ export interface ReferenceRow extends ReferenceView {
 }
 
 export interface ReferencePage extends ReferenceRow {
+	readonly claimRows: readonly LedgerRow[];
+}
+
+/** A paper as the public sees it, with its published claims. */
+export interface PublicReferencePage extends ReferenceView {
 	readonly claimRows: readonly LedgerRow[];
 }
 
@@ -254,7 +263,10 @@ export interface BoundsRow {
 
 export interface BoundSource {
 	readonly printed: string;
+	/** The same typeset (safe HTML made by the server), where it is written in LaTeX. */
+	readonly printedHtml: string | null;
 	readonly claimId: string;
+	readonly referenceId: string;
 	readonly short: string;
 	readonly year: number | null;
 }

@@ -1,5 +1,7 @@
 import type { Relation } from '../../ledger/claim';
+import { withMinusSign } from '../../ledger/figures';
 import type { ProgressView, RecomputationView } from '../../schemas/views';
+import { knownSides } from '../digits/shown-between';
 
 export const RELATION_SIGNS: Readonly<Record<Relation, string>> = {
 	'=': '=',
@@ -45,12 +47,13 @@ export function progressWords(progress: ProgressView): string {
 
 /** What a recomputation found, a line a side: `= 2`, or `≥ 0.2508` and `≤ 0.2510`. */
 export function resultLines(run: RecomputationView): readonly string[] {
-	if (run.exact !== null) return [`= ${run.exact}`];
+	// A fraction and its decimal, a line each.
+	if (run.exact !== null) return run.exact.split(' = ').map((part) => withMinusSign(`= ${part}`));
 	if (run.lower !== null && run.lower === run.upper) return [`= ${run.lower}`];
-	return [
-		...(run.lower === null ? [] : [`≥ ${run.lower}`]),
-		...(run.upper === null ? [] : [`≤ ${run.upper}`])
-	];
+	const { lower, upper } = knownSides(run);
+	return [...(lower === null ? [] : [`≥ ${lower}`]), ...(upper === null ? [] : [`≤ ${upper}`])].map(
+		withMinusSign
+	);
 }
 
 /** The address of a DOI or an arXiv identifier. */

@@ -48,6 +48,8 @@ export interface StationLabel {
 	readonly label: string;
 	readonly figures: string;
 	readonly anchor: 'start' | 'middle' | 'end';
+	/** Rows of texts under the line; a label that would lie on another one stands a row lower. */
+	readonly row: number;
 }
 
 /** Near an end a text hangs on that end instead of its middle. */
@@ -65,29 +67,43 @@ function figuresOf({ key, figures }: RuleStation, { quantumLower, quantumUpper }
 		: figures;
 }
 
-/** Labels nearer than this would lie on one another. */
-const TOO_CLOSE = 0.03;
+/** Stations nearer than this have one value, up to a solver's last digits. */
+const SAME_PLACE = 0.03;
+
+/** The narrowest line with texts under it, in pixels; below they stand in a list. */
+const NARROWEST = 560;
+/** Widths of a letter and of a figure at 13 px, on the wide side, and the gap between two texts. */
+const LETTER = 7;
+const FIGURE = 8;
+const GAP = 12;
 
 /** One label per place: stations of the same value share it. */
 export function stationLabels(
 	{ stations }: RuleLayout,
 	view: StationsView
 ): readonly StationLabel[] {
-	const labels: { at: number; names: string[]; figures: string }[] = [];
+	const places: { at: number; to: number; names: string[]; figures: string }[] = [];
 	for (const station of stations) {
-		const same = labels.find(({ at }) => Math.abs(at - station.to) < TOO_CLOSE);
-		if (same) same.names.push(station.label);
+		const { to, label } = station;
+		const same = places.find((place) => Math.abs(place.to - to) < SAME_PLACE);
+		if (same) same.names.push(label);
 		else
-			labels.push({
+			places.push({
 				at: middleOf(station),
-				names: [station.label],
+				to,
+				names: [label],
 				figures: figuresOf(station, view)
 			});
 	}
-	return labels.map(({ at, names, figures }) => ({
-		at,
-		label: names.join(', '),
-		figures,
-		anchor: anchorAt(at)
-	}));
+	const reach: number[] = [];
+	return places.map(({ at, names, figures }) => {
+		const label = names.join(', ');
+		const anchor = anchorAt(at);
+		const width = Math.max(label.length * LETTER, figures.length * FIGURE);
+		const start = at * NARROWEST - (anchor === 'middle' ? width / 2 : anchor === 'end' ? width : 0);
+		const free = reach.findIndex((end) => end + GAP <= start);
+		const row = free === -1 ? reach.length : free;
+		reach[row] = start + width;
+		return { at, label, figures, anchor, row };
+	});
 }

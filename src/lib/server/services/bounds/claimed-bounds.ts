@@ -5,6 +5,7 @@ import type { Rational } from '../../../nonlocality/exact/rational';
 import type { BoundSource } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, references } from '../../db/schema';
+import { printedHtml } from '../../math/printed-html';
 import { mapSide, readMap } from '../inequalities/affine';
 import { mapBetween } from '../inequalities/canonical-subject';
 import { isPublicClaim } from '../inequalities/visibility';
@@ -87,7 +88,9 @@ function rank(
 		end,
 		source: {
 			printed: identity ? claim.printed : showBound(end, side),
+			printedHtml: identity ? printedHtml(claim.printed) : null,
 			claimId: claim.id,
+			referenceId: claim.referenceId,
 			short,
 			year
 		}

@@ -2,6 +2,7 @@ import { eq, inArray, type SQL } from 'drizzle-orm';
 import type { LedgerRow } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, inequalities, recomputations, references } from '../../db/schema';
+import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
@@ -9,6 +10,7 @@ import { quantityInfo } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
 import { problemLabel } from '../recomputations/problem-label';
+import { shortMethod } from './short-method';
 import type { Verdict } from '../../../ledger/verdict';
 
 /** The columns of a ledger's row; one join, so that any list can filter and sort by them. */
@@ -64,6 +66,7 @@ export async function claimRows(
 			quantityLabel: claim.quantityLabel,
 			relation: claim.relation,
 			printed: claim.printed,
+			printedHtml: printedHtml(claim.printed),
 			verdict: claim.verdict,
 			recomputedBy: recomputedBy(claim.verdict) ?? (run ? problemLabel(run.problem) : ''),
 			stations: own.length > 0 ? stationsView(own, map) : null,
@@ -81,7 +84,7 @@ function recomputedBy({ enclosure }: Verdict): string | null {
 	if (!enclosure) return null;
 	const { lower, upper, lowerLabel, upperLabel } = enclosure;
 	const labels = [upper === null ? '' : upperLabel, lower === null ? '' : lowerLabel];
-	return [...new Set(labels.filter(Boolean))].join(', ') || null;
+	return [...new Set(labels.filter(Boolean).map(shortMethod))].join(', ') || null;
 }
 
 /** Rows of the claims with these ids, in that order. */

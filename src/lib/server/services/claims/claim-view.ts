@@ -3,6 +3,7 @@ import type { ClaimView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, groups, inequalities, recomputations, references, users } from '../../db/schema';
 import { ServiceError } from '../../errors';
+import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
@@ -70,6 +71,7 @@ export async function claimView(
 		quantityLabel: claim.quantityLabel,
 		relation: claim.relation,
 		printed: claim.printed,
+		printedHtml: printedHtml(claim.printed),
 		method: claim.method,
 		locator: claim.locator,
 		note: claim.note,

@@ -27,6 +27,7 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		quantityLabel: whole.quantityLabel,
 		relation: whole.relation,
 		printed: whole.printed,
+		printedHtml: whole.printedHtml,
 		method: whole.method,
 		locator: whole.locator,
 		state: whole.state,

@@ -53,7 +53,7 @@ export interface StationLabel {
 }
 
 /** Near an end a text hangs on that end instead of its middle. */
-export function anchorAt(x: number): StationLabel['anchor'] {
+function anchorAt(x: number): StationLabel['anchor'] {
 	return x < 0.1 ? 'start' : x > 0.9 ? 'end' : 'middle';
 }
 

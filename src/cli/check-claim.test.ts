@@ -26,6 +26,16 @@ describe.concurrent('check-claim', { timeout: 120_000 }, () => {
 		});
 	});
 
+	it('takes the relation that stands before the value, and refuses another one', async ({
+		expect
+	}) => {
+		const found = await checkClaim({ problem: CHSH, value: '\\lesssim 3.0' });
+		expect(JSON.parse(found.out)).toMatchObject({ status: 'agreement', reading: { high: 3.05 } });
+		const refused = await checkClaim({ problem: CHSH, relation: '<=', value: '> 3' });
+		expect(refused).toMatchObject({ code: 2, out: '' });
+		expect(refused.err).toMatch(/^value \(at position 0\): .*another sign/);
+	});
+
 	it('keeps a claim on a quantity without solver Open', async ({ expect }) => {
 		const problem = { ...CHSH, quantity: 'visibility' };
 		const { code, out } = await checkClaim({ problem, value: '0.7071' });

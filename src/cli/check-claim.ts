@@ -1,6 +1,12 @@
 /** `check-claim CLAIM.json`: recomputes one claim and judges it as the ledger does. */
 import { deriveVerdict, type Verdict } from '../lib/ledger/verdict';
-import { StatedValueError, readStatedValue, type StatedValue } from '../lib/ledger/stated-value';
+import {
+	StatedValueError,
+	claimedRelation,
+	readStatedValue,
+	type StatedValue
+} from '../lib/ledger/stated-value';
+import type { Relation } from '../lib/ledger/claim';
 import { parseClaimJson, type ClaimJson } from '../lib/schemas/claim-json';
 import { ProblemError, UnsolvedQuantityError, parseProblem } from '../lib/schemas/problem';
 import { printableComputation, printableVerdict } from './claim-report';
@@ -12,8 +18,9 @@ import { CommandError, EXIT, printJson, readJson, runCommand } from './read-inpu
 const USAGE = 'usage: npm run --silent check-claim -- CLAIM.json   (- for standard input)';
 
 await runCommand(async () => {
-	const claim = readClaim(readJson(USAGE));
-	const reading = readValue(claim);
+	const written = readClaim(readJson(USAGE));
+	const reading = readValue(written);
+	const claim = { ...written, relation: readRelation(written, reading) };
 	if (isUnsolved(claim)) {
 		printJson(printableVerdict(withoutSolver(claim, reading)));
 		return EXIT.unfinished;
@@ -42,6 +49,15 @@ function readValue({ printed, reading }: ClaimJson): StatedValue {
 			`value (at position ${error.position}): ${error.message}`
 		);
 	}
+}
+
+function readRelation({ relation }: ClaimJson, reading: StatedValue): Relation {
+	const claimed = claimedRelation(reading, relation);
+	if (claimed) return claimed;
+	throw new CommandError(
+		EXIT.malformed,
+		`value (at position 0): starts with another sign than the relation ${relation}; keep one`
+	);
 }
 
 /** A quantity no solver serves is a legal claim: it is Open. */

@@ -4,7 +4,7 @@ import { STATION_BUDGET, type StationBudget } from '../../src/cli/claim-stations
 import { judgeClaim } from '../../src/cli/judge-claim';
 import type { VerdictStatus } from '../../src/lib/ledger/claim';
 import type { DiagnosisKind } from '../../src/lib/ledger/diagnosis';
-import { readStatedValue } from '../../src/lib/ledger/stated-value';
+import { claimedRelation, readStatedValue } from '../../src/lib/ledger/stated-value';
 import type { Control } from '../../src/lib/nonlocality';
 import { parseClaimJson } from '../../src/lib/schemas/claim-json';
 import { parseProblem } from '../../src/lib/schemas/problem';
@@ -49,8 +49,11 @@ export async function verdictOf(
 	seconds: number,
 	stations: StationBudget = STATION_BUDGET
 ) {
-	const claim = parseClaimJson(json);
-	const reading = readStatedValue(claim.printed, claim.reading);
+	const written = parseClaimJson(json);
+	const reading = readStatedValue(written.printed, written.reading);
+	const relation = claimedRelation(reading, written.relation);
+	if (!relation) throw new Error('the value starts with another sign than the relation');
+	const claim = { ...written, relation };
 	const problem = parseProblem({ seconds, ...claim.problem });
 	return (await judgeClaim(claim, reading, problem, control, stations)).verdict;
 }

@@ -1,8 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { parseRational, ratio, toDecimal, type Rational } from '../nonlocality/exact/rational';
-import type { ReadingChoice } from './claim';
-import { StatedValueError, readStatedValue } from './stated-value';
+import type { ReadingChoice, Relation } from './claim';
+import { StatedValueError, claimedRelation, readStatedValue } from './stated-value';
 
 const r = (text: string): Rational => parseRational(text) ?? expect.fail(`${text} is no rational`);
 
@@ -144,6 +144,16 @@ describe('readStatedValue', () => {
 		['\\ge 2.8', '>=']
 	])('takes the relation of %s for %s', (printed, relation) => {
 		expect(readStatedValue(printed, 'as-printed').relation).toBe(relation);
+	});
+
+	it.each<[string, Relation, Relation | null]>([
+		['2.8', '<=', '<='],
+		['< 2.8', '=', '<='],
+		['< 2.8', '<=', '<='],
+		['< 2.8', '>=', null],
+		['\u2248 2.8', '>=', '>=']
+	])('with %s, the relation %s is %s', (printed, given, claimed) => {
+		expect(claimedRelation(readStatedValue(printed, 'as-printed'), given)).toBe(claimed);
 	});
 
 	it.each([

@@ -91,6 +91,18 @@ function decimalOf(number: PrintedText): DecimalForm | null {
 	}
 }
 
+/**
+ * The relation of a claim: a sign in front of its value decides where nothing but `=` is said, and
+ * `~ 2.8` goes with any. Null: the two contradict each other.
+ */
+export function claimedRelation(
+	{ relation: sign }: Pick<StatedValue, 'relation'>,
+	given: Relation
+): Relation | null {
+	if (!sign || sign === '=' || sign === given) return given;
+	return given === '=' ? sign : null;
+}
+
 type Interval = Pick<StatedValue, 'low' | 'high' | 'exact' | 'irrational' | 'value' | 'percent'>;
 
 function readDigits(decimal: DecimalForm, reading: ReadingChoice): Interval {

@@ -77,6 +77,7 @@ describe('what is malformed names its field', () => {
 		[{ quantity: 'local', expression: 'A2 B0', outputs: two }, 'expression', /no input 2/],
 		[{ quantity: 'local', family: { name: 'cglmp', d: 1 } }, 'family', /from 2 to 12/],
 		[{ quantity: 'local', family: { name: 'none' } }, 'family', /no family named/],
+		[{ quantity: 'local', family: 'chsh' }, 'family', /an object such as/],
 		[{ quantity: 'local', ...chsh, outputs: [[2], [2]] }, 'outputs', /is for the outputs/],
 		[{ quantity: 'local', collinsGisin: [[1, 2], [3]] }, 'collinsGisin', /row 2/],
 		[{ quantity: 'local', probabilities: { '0|0,0': 1 } }, 'probabilities', /names no probability/],

@@ -70,13 +70,16 @@ export const functionalShape = {
 	expression: z.string(kind('a text')).optional(),
 	indexBase: z.union([z.literal(0), z.literal(1)], kind('0 or 1')).optional(),
 	family: z
-		.strictObject({
-			name: z.string(kind('a text')),
-			alpha: coefficientShape.optional(),
-			n: coefficientShape.optional(),
-			d: coefficientShape.optional(),
-			matrix: tableShape.optional()
-		})
+		.strictObject(
+			{
+				name: z.string(kind('a text')),
+				alpha: coefficientShape.optional(),
+				n: coefficientShape.optional(),
+				d: coefficientShape.optional(),
+				matrix: tableShape.optional()
+			},
+			kind('an object such as {"name": "chsh"}')
+		)
 		.optional(),
 	collinsGisin: tableShape.optional(),
 	correlators: tableShape.optional(),

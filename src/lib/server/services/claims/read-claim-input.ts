@@ -1,6 +1,11 @@
 import { and, eq } from 'drizzle-orm';
 import type { Relation } from '../../../ledger/claim';
-import { StatedValueError, readStatedValue, type StatedValue } from '../../../ledger/stated-value';
+import {
+	StatedValueError,
+	claimedRelation,
+	readStatedValue,
+	type StatedValue
+} from '../../../ledger/stated-value';
 import type { ClaimInput } from '../../../schemas/claim-input';
 import type { GroupContext } from '../../context';
 import { references } from '../../db/schema';
@@ -66,16 +71,15 @@ export async function readClaimInput(
 type ReadValue =
 	{ readonly stated: StatedValue; readonly relation: Relation } | { readonly issue: FieldIssue };
 
-/** A sign in front of the value decides where the form says nothing else than `=`. */
 function readValue({ printed, reading, relation }: ClaimInput): ReadValue {
 	try {
 		const stated = readStatedValue(printed, reading);
-		const sign = stated.relation;
-		if (sign && relation !== '=' && sign !== relation) {
+		const claimed = claimedRelation(stated, relation);
+		if (!claimed) {
 			const message = `The value starts with another sign than the relation ${relation}; keep one.`;
 			return { issue: { field: 'printed', message, position: 0 } };
 		}
-		return { stated, relation: sign && relation === '=' ? sign : relation };
+		return { stated, relation: claimed };
 	} catch (error) {
 		if (!(error instanceof StatedValueError)) throw error;
 		return { issue: { field: 'printed', message: error.message, position: error.position } };

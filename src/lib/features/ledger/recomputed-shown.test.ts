@@ -64,6 +64,8 @@ describe('what stands beside a claim', () => {
 		const third = verdict('1/3', ['1/3', '1/3'], ['0.3333333333333', '0.3333333333333'], {
 			exact: '1/3'
 		});
+		const quarter = verdict('1/4', ['1/4', '1/4'], ['0.25', '0.25'], { exact: '1/4' });
+		expect(shown('1/4', quarter)).toBe('*1/4* | 0.25');
 		expect(shown('1/3', third)).toBe('*1/3* | 0.333333333…');
 	});
 

@@ -65,6 +65,23 @@ function exactShown(
 ): RecomputedShown {
 	const decimal = value ?? [];
 	if (!exact.includes('/')) return only(rounded === null ? decimal : bold(rounded));
-	if (printed.trim() === exact) return only(bold(exact), [`${textOf(decimal).slice(0, 11)}…`]);
-	return only(rounded === null ? decimal : bold(rounded), [exact]);
+	const shown = textOf(decimal);
+	const cut = shown.length > SHOWN_OF_FRACTION ? `${shown.slice(0, SHOWN_OF_FRACTION)}…` : shown;
+	if (printed.trim() === exact) return only(bold(exact), [cut]);
+	return rounded === null
+		? only(shown === cut ? decimal : cutRuns(decimal), [exact])
+		: only(bold(rounded), [exact]);
+}
+
+/** Characters of a fraction's decimal: nine behind the point of a number below ten. */
+const SHOWN_OF_FRACTION = 11;
+
+function cutRuns(runs: readonly DigitRun[]): DigitRun[] {
+	let left = SHOWN_OF_FRACTION;
+	const kept = runs.flatMap(({ text, tone }): DigitRun[] => {
+		const part = text.slice(0, left);
+		left -= part.length;
+		return part === '' ? [] : [{ text: part, tone }];
+	});
+	return [...kept, { text: '…', tone: 'quiet' }];
 }

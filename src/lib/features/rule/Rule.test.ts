@@ -1,7 +1,9 @@
 import { render } from '@testing-library/svelte';
 import { describe, expect, it } from 'vitest';
 import { makeStations } from '../../../../tests/factories/views';
+import { layOutRule } from '../../ledger/rule';
 import Rule from './Rule.svelte';
+import { ruleInput, stationLabels } from './rule-input';
 
 // I3322 in probabilities: local 0 and no-signalling 1 (Collins, Gisin 2004), almost quantum
 // 0.2514709, quantum between 0.250852 and 0.250940 for this drawing.
@@ -50,6 +52,30 @@ describe('Rule', () => {
 		const texts = [...container.querySelectorAll('text')].map((node) => node.textContent);
 		expect(texts).toContain('quantum, almost quantum');
 		expect(texts).toContain('2.82842712');
+	});
+
+	it('never lays the label of one place on that of another', () => {
+		// A quantum block whose lower side is the local value: its long figures need a row of their own.
+		const wide = makeStations({
+			local: '0.25',
+			quantumLower: '0.25',
+			quantumUpper: '0.25000124',
+			almostQuantum: '0.2501',
+			noSignalling: '0.333333334'
+		});
+		const layout = layOutRule(ruleInput({ stations: wide }));
+		const labels = stationLabels(layout, wide);
+		expect(labels.map(({ label }) => label)).toEqual([
+			'local',
+			'quantum',
+			'almost quantum',
+			'no-signalling'
+		]);
+		expect(labels[1]?.row).toBe(1);
+		expect(labels[2]?.row).toBe(0);
+		expect(
+			stationLabels(layOutRule(ruleInput({ stations: i3322 })), i3322).map((l) => l.row)
+		).toEqual([0, 0, 0, 0]);
 	});
 
 	it('stands without any value', () => {

@@ -71,11 +71,11 @@ function figuresOf({ key, figures }: RuleStation, { quantumLower, quantumUpper }
 const SAME_PLACE = 0.03;
 
 /** The narrowest line with texts under it, in pixels; below they stand in a list. */
-const NARROWEST = 560;
+const NARROWEST = 672;
 /** Widths of a letter and of a figure at 13 px, on the wide side, and the gap between two texts. */
-const LETTER = 7;
+const LETTER = 6.6;
 const FIGURE = 8;
-const GAP = 12;
+const GAP = 8;
 
 /** One label per place: stations of the same value share it. */
 export function stationLabels(

@@ -44,8 +44,10 @@ export const actions: Actions = {
 		} catch (thrown) {
 			return failWith(thrown);
 		}
+		return { ended: 'That session has ended.' };
 	},
 	endOthers: async (event) => {
 		await endSessionsElsewhere(requireUser(event), event.locals.sessionId ?? '');
+		return { ended: 'You are signed out everywhere else.' };
 	}
 };

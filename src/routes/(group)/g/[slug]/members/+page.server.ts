@@ -47,6 +47,7 @@ export const actions: Actions = {
 		} catch (thrown) {
 			return failWith(thrown);
 		}
+		return { done: 'The link is revoked.' };
 	},
 	role: async (event) => {
 		const ctx = await requireRole(event, 'owner');
@@ -56,6 +57,7 @@ export const actions: Actions = {
 		} catch (thrown) {
 			return failWith(thrown);
 		}
+		return { done: 'The role is changed.' };
 	},
 	remove: async (event) => {
 		const ctx = await requireRole(event, 'observer');
@@ -65,6 +67,7 @@ export const actions: Actions = {
 		} catch (thrown) {
 			return failWith(thrown);
 		}
-		if (user === ctx.actor.id) redirect(303, '/account');
+		if (user === ctx.actor.id) redirect(303, '/account?left');
+		return { done: 'Removed from the group.' };
 	}
 };

@@ -57,8 +57,8 @@ describe('Rule', () => {
 	it('never lays the label of one place on that of another', () => {
 		// A quantum block whose lower side is the local value: its long figures need a row of their own.
 		const wide = makeStations({
-			local: '0.25',
-			quantumLower: '0.25',
+			local: '0.250000001',
+			quantumLower: '0.250000001',
 			quantumUpper: '0.25000124',
 			almostQuantum: '0.2501',
 			noSignalling: '0.333333334'

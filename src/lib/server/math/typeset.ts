@@ -1,10 +1,10 @@
 import katex from 'katex';
+import { Recent } from '../recent';
 
 /** Beyond these KaTeX takes seconds or runs out of stack (measured: 100,000 characters, 10.8 s). */
 const LONGEST_FORMULA = 2_000;
-const CACHE_SIZE = 1_000;
 
-const cache = new Map<string, string | null>();
+const cache = new Recent<string | null>(1_000);
 
 /**
  * Typesets LaTeX as HTML with MathML inside, safe to put into a page: KaTeX escapes all text and
@@ -16,10 +16,13 @@ export function typeset(latex: string, display = false): string | null {
 	const key = `${display ? 'd' : 'i'}${latex}`;
 	const known = cache.get(key);
 	if (known !== undefined) return known;
-	let html: string | null;
+	return cache.keep(key, render(latex, display));
+}
+
+function render(latex: string, displayMode: boolean): string | null {
 	try {
-		html = katex.renderToString(latex, {
-			displayMode: display,
+		return katex.renderToString(latex, {
+			displayMode,
 			output: 'htmlAndMathml',
 			trust: false,
 			throwOnError: true,
@@ -29,9 +32,6 @@ export function typeset(latex: string, display = false): string | null {
 		});
 	} catch {
 		// Deep nesting throws RangeError whatever the options say.
-		html = null;
+		return null;
 	}
-	if (cache.size >= CACHE_SIZE) cache.clear();
-	cache.set(key, html);
-	return html;
 }

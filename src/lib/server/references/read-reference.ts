@@ -2,13 +2,19 @@ import { createHash } from 'node:crypto';
 import { pathToFileURL } from 'node:url';
 import { Piscina } from 'piscina';
 import { findWorkerFile } from '../jobs/worker-file';
+import { Recent } from '../recent';
 import { BIBTEX_LIMITS, parseBibtex, type BibtexReading } from './parse-bibtex';
 
 /** A form is read again at every pause in typing, mostly with the same paper in it. */
-const CACHE_SIZE = 200;
+const cache = new Recent<BibtexReading>(200);
 const TIME_LIMIT_MS = 20_000;
 
-const cache = new Map<string, BibtexReading>();
+const TOO_SLOW: BibtexReading = {
+	ok: false,
+	message: 'This BibTeX takes too long to read.',
+	position: null
+};
+
 let pool: Piscina | null | undefined;
 
 /** Reads and formats one BibTeX entry in a thread of its own (here, where none is built). */
@@ -19,12 +25,8 @@ export async function readReference(bibtex: string): Promise<BibtexReading> {
 	const known = cache.get(key);
 	if (known) return known;
 	const reading = await parse(bibtex);
-	if (cache.size >= CACHE_SIZE) {
-		const oldest = cache.keys().next().value;
-		if (oldest !== undefined) cache.delete(oldest);
-	}
-	cache.set(key, reading);
-	return reading;
+	// A busy moment is no reason to refuse the same paper later.
+	return reading === TOO_SLOW ? reading : cache.keep(key, reading);
 }
 
 async function parse(bibtex: string): Promise<BibtexReading> {
@@ -34,7 +36,7 @@ async function parse(bibtex: string): Promise<BibtexReading> {
 		return await pool.run(bibtex, { signal: AbortSignal.timeout(TIME_LIMIT_MS) });
 	} catch (error) {
 		if (error instanceof Error && error.name === 'AbortError') {
-			return { ok: false, message: 'This BibTeX takes too long to read.', position: null };
+			return TOO_SLOW;
 		}
 		throw error;
 	}

@@ -3,6 +3,7 @@ import { parseCoefficient } from '../../../nonlocality/exact/expression';
 import { canonicalForm } from '../../../nonlocality/scenario/equivalence';
 import { collinsGisinForm, type Functional } from '../../../nonlocality/scenario/functional';
 import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
+import { Recent } from '../../recent';
 
 /** value of a functional = scale * value of the canonical form + shift; coefficients as text. */
 export interface MapText {
@@ -17,7 +18,17 @@ export interface CanonicalSubject extends MapText {
 	readonly numerical: boolean;
 }
 
+/** A form is read again at every pause in typing, mostly with the same subject in it. */
+const cache = new Recent<CanonicalSubject>(200);
+
 export function canonicalSubject(functional: Functional): CanonicalSubject {
+	const { outputs } = functional.scenario;
+	const text = JSON.stringify([outputs, termsOfFunctional(functional)]);
+	const key = createHash('sha256').update(text).digest('base64');
+	return cache.get(key) ?? cache.keep(key, search(functional));
+}
+
+function search(functional: Functional): CanonicalSubject {
 	const { digest, version, numerical, scale, shift, complete } = canonicalForm(functional);
 	return {
 		// An invariant may be shared by inequivalent functionals: those then stay apart.

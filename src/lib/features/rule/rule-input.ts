@@ -54,7 +54,7 @@ export interface StationLabel {
 
 /** Near an end a text hangs on that end instead of its middle. */
 function anchorAt(x: number): StationLabel['anchor'] {
-	return x < 0.1 ? 'start' : x > 0.9 ? 'end' : 'middle';
+	return x < 0.1 ? 'start' : x > 0.96 ? 'end' : 'middle';
 }
 
 const middleOf = (station: RuleStation) =>

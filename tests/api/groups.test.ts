@@ -187,7 +187,7 @@ describe('roles', () => {
 		const user = await memberId('leaver@group.example');
 		const path = `/g/${group.slug}/members?/remove`;
 		expect((await group.maintainer.submit(path, { user })).status).toBe(403);
-		expect((await person.submit(path, { user })).headers.get('location')).toBe('/account');
+		expect((await person.submit(path, { user })).headers.get('location')).toBe('/account?left');
 		expect((await person.submit(path, { user })).status).toBe(404);
 	});
 });

@@ -1,4 +1,4 @@
-import { eq, inArray, type SQL } from 'drizzle-orm';
+import { eq, type SQL } from 'drizzle-orm';
 import type { LedgerRow } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, inequalities, recomputations, references } from '../../db/schema';
@@ -85,19 +85,4 @@ function recomputedBy({ enclosure }: Verdict): string | null {
 	const { lower, upper, lowerLabel, upperLabel } = enclosure;
 	const labels = [upper === null ? '' : upperLabel, lower === null ? '' : lowerLabel];
 	return [...new Set(labels.filter(Boolean).map(shortMethod))].join(', ') || null;
-}
-
-/** Rows of the claims with these ids, in that order. */
-export async function claimRowsOf(
-	read: Reader,
-	ids: readonly string[],
-	now: Date
-): Promise<LedgerRow[]> {
-	if (ids.length === 0) return [];
-	const selected = await selectClaimRows(read, inArray(claims.id, [...ids]));
-	const place = new Map(ids.map((id, index) => [id, index]));
-	const ordered = [...selected].sort(
-		(a, b) => (place.get(a.claim.id) ?? 0) - (place.get(b.claim.id) ?? 0)
-	);
-	return claimRows(read, ordered, now);
 }

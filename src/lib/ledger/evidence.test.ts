@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import type { CheckOutcome } from '../nonlocality/certificates/types';
 import { ONE, ZERO, parseRational, type Rational } from '../nonlocality/exact/rational';
 import type { DoneResult, Level, Problem } from '../nonlocality/problem';
-import { evidenceOfFinding, othersOfFindings, type Finding } from './evidence';
+import { IDENTITY_MAP, evidenceOfFinding, othersOfFindings, type Finding } from './evidence';
 import { methodMatches } from './method';
 import { isWithin, sameQuantity } from './nesting';
 
@@ -152,7 +152,7 @@ describe('othersOfFindings', () => {
 		const findings = [
 			finding(quantum, 0.25, 0.251),
 			finding(npa('1+AB'), 0.25147089, 0.25147091),
-			finding(npa(1, true), null, 0.3660254, { optimum: 0.36602539 }),
+			finding(npa(1, true), 0.36602539, 0.3660254),
 			finding(seeSaw(2), 0.25, null)
 		];
 		const others = othersOfFindings(
@@ -173,6 +173,12 @@ describe('othersOfFindings', () => {
 			'5.000'
 		]);
 		expect(others.every((o) => o.upper !== null)).toBe(true);
+	});
+
+	// As in Hardy's paradox, where the optimum at 1+AB comes out 4e-6 too high.
+	it('offers no relaxation that is known from above only', () => {
+		const findings = [finding(npa(2), null, 0.0901736, { optimum: 0.0901735 })];
+		expect(othersOfFindings(findings, npa(1), IDENTITY_MAP, '')).toEqual([]);
 	});
 });
 

@@ -184,19 +184,12 @@ export function exactValueOf(
 function valueSides(finding: Finding): Sides {
 	const proved = provedSides(finding);
 	if (proved.lower && proved.upper) return proved;
-	const { problem, optimum } = finding.result;
+	const { problem } = finding.result;
 	if (problem.quantity === 'see-saw') {
 		const { lower, upper } = proved;
 		if (lower) return { lower, upper: lower.add(SEARCH_TOLERANCE) };
 		return upper ? { lower: upper.sub(SEARCH_TOLERANCE), upper } : proved;
 	}
-	if (problem.quantity === 'npa' && optimum !== null) {
-		// Without a feasible point the solver's own optimum stands for the side that is missing.
-		const solved = exactOfDouble(optimum);
-		return {
-			lower: proved.lower ?? solved.sub(SEARCH_TOLERANCE),
-			upper: proved.upper ?? solved.add(SEARCH_TOLERANCE)
-		};
-	}
+	// A relaxation without a feasible point is known from above only: its optimum may be far off.
 	return proved;
 }

@@ -47,7 +47,10 @@ class Rewriter {
 		return { text: this.out, positions: [...this.positions, this.source.length] };
 	}
 
-	private emit(text: string, position: number): void {
+	/** A space in front of a word keeps it apart from letters only: `1/2√2` stays unclear. */
+	private emit(symbol: string, position: number): void {
+		const apart = /^ [a-zA-Z(]/.test(symbol) && !/[A-Za-z]$/.test(this.out.slice(-1));
+		const text = apart ? symbol.slice(1) : symbol;
 		this.out += text;
 		for (let i = 0; i < text.length; i++) this.positions.push(position);
 	}

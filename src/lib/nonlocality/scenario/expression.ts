@@ -73,7 +73,8 @@ export function parseExpression(source: string, options: ExpressionOptions = {})
 }
 
 /** What closes a pasted formula, with the full stop of its sentence; an ellipsis is kept. */
-const AFTER_BOUND = /(?:\$|\\[)\]]|\\end\{[a-z]+\*?\}|\\right\.|\s|(?<!\.)[.,;](?!\.))*$/;
+const AFTER_BOUND =
+	/(?:\$|\\[)\],;:!]|\\q?quad|\\end\{[a-z]+\*?\}|\\right\.|\s|(?<!\.)[.,;](?!\.))*$/;
 
 function claimedBound(
 	source: string,

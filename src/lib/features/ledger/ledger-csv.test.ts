@@ -8,7 +8,7 @@ describe('ledgerCsv', () => {
 	it('gives a heading and a line a row', () => {
 		const text = ledgerCsv([makeLedgerRow()]);
 		expect(line(text, 0)).toMatch(/^number,status,quantity,inequality,/);
-		expect(line(text)).toContain('1,agreement,Quantum maximum,CHSH,"2 in, 2 out",\'=,2.8284,');
+		expect(line(text)).toContain('1,agreement,Quantum maximum,CHSH,"2 in, 2 out",=,2.8284,');
 		expect(text.endsWith('\r\n')).toBe(true);
 	});
 

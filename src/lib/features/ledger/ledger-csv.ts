@@ -17,6 +17,7 @@ const COLUMNS = {
 	recomputed_by: (row) => row.recomputedBy,
 	reason: (row) => row.verdict.reason,
 	reference: (row) => row.reference.short,
+	doi: (row) => row.reference.doi ?? '',
 	locator: (row) => row.reference.locator,
 	state: (row) => row.state,
 	visibility: (row) => row.visibility
@@ -30,12 +31,12 @@ function cell(text: string): string {
 
 /**
  * A spreadsheet runs a cell that starts like a formula; a quote in front keeps it text. Numbers
- * start with a sign, too, and stay as they are.
+ * start with a sign, too, and a lone relation sign computes nothing: both stay as they are.
  */
 function defused(text: string): string {
 	const plain = text.replaceAll('\0', '');
 	const isNumber = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(plain);
-	return !isNumber && /^[=+\-@\t\r]/.test(plain) ? `'${plain}` : plain;
+	return !isNumber && plain !== '=' && /^[=+\-@\t\r]/.test(plain) ? `'${plain}` : plain;
 }
 
 /** Rows of the ledger as CSV with a heading, lines ended by CRLF. */

@@ -49,5 +49,7 @@ export function sortLink(base: string, query: LedgerQuery, column: string): Sort
 
 /** True when any filter is on, so that no rows means "no match" rather than "nothing yet". */
 export function isFiltered(query: LedgerQuery): boolean {
-	return Boolean(query.search || query.scenario || query.quantity || query.status !== 'all');
+	return Boolean(
+		query.search || query.scenario || query.quantity || query.proposed || query.status !== 'all'
+	);
 }

@@ -2,12 +2,14 @@
  * Fills an empty database with the demo group through the service verbs, runs the solvers until
  * the queue is empty, then writes the marker file named on the command line.
  */
+import { inArray } from 'drizzle-orm';
 import { writeFileSync } from 'node:fs';
 import { cpus } from 'node:os';
 import { claimInput } from '../src/lib/schemas/claim-input';
 import { config } from '../src/lib/server/config';
 import type { Context, GroupContext, UserContext } from '../src/lib/server/context';
 import { openDatabase } from '../src/lib/server/db/client';
+import { recomputations } from '../src/lib/server/db/schema';
 import { createThreadPool } from '../src/lib/server/jobs/pool';
 import { startRunner } from '../src/lib/server/jobs/runner';
 import { log } from '../src/lib/server/log';
@@ -97,6 +99,13 @@ async function seed(marker: string): Promise<void> {
 	await runner.idle();
 	await runner.stop();
 	await pool.close();
+	const left = await db.read.$count(
+		recomputations,
+		inArray(recomputations.state, ['queued', 'running'])
+	);
+	if (left > 0) {
+		throw new Error(`${left} recomputations did not run: build the solver thread (npm run build).`);
+	}
 
 	for (const claim of CLAIMS) {
 		if (claim.leaveQueued) await enter(people, claim);

@@ -137,5 +137,22 @@ export const CHSH_CLAIMS: readonly SeedClaim[] = [
 			printed: '3',
 			locator: 'eq. (19)'
 		}
+	},
+	// Index base: the paper counts inputs from 1, the entry from 0
+	{
+		key: 'agreements-index-base',
+		paper: 'quill2017',
+		by: 'member',
+		input: {
+			...expression(
+				'P(0,0|1,1) + P(1,1|1,1) + P(0,0|1,2) + P(1,1|1,2) + P(0,0|2,1) + P(1,1|2,1) + P(0,1|2,2) + P(1,0|2,2) + 1',
+				'0'
+			),
+			outputs: '2 2 3 / 2 2 2',
+			quantity: 'local',
+			sense: 'min',
+			printed: '2',
+			locator: 'eq. (24)'
+		}
 	}
 ];

@@ -186,7 +186,7 @@ export const FAMILY_CLAIMS: readonly SeedClaim[] = [
 		input: { ...family('elegant'), quantity: 'quantum', printed: '6.928', locator: 'eq. (22)' },
 		then: 'publish'
 	},
-	// Another quantity: level 1 lacks the moments of three parties, and level 2 proves more already
+	// Open: level 1 lacks the moments of three parties, so that it has no value here
 	{
 		key: 'gyni-level-1',
 		paper: 'marsden2013',

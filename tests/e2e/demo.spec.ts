@@ -89,6 +89,7 @@ test('the seed shows each status, each reason for Open and each diagnosis', asyn
 		'digit-missing',
 		'digit-mistyped',
 		'digits-swapped',
+		'index-base',
 		'other-normalisation',
 		'other-quantity',
 		'percent',

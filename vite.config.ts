@@ -34,6 +34,9 @@ export default defineConfig({
 				test: {
 					name: 'unit',
 					environment: 'node',
+					setupFiles: ['tests/support/fast-check.ts'],
+					// Solvers on a busy machine; each test takes well under a second on an idle one.
+					testTimeout: 30_000,
 					include: [
 						'src/**/*.test.ts',
 						'tests/architecture/**/*.test.ts',
@@ -49,7 +52,8 @@ export default defineConfig({
 					name: 'component',
 					environment: 'jsdom',
 					// Unmounts what a test rendered.
-					setupFiles: ['@testing-library/svelte/vitest'],
+					setupFiles: ['@testing-library/svelte/vitest', 'tests/support/fast-check.ts'],
+					testTimeout: 30_000,
 					include: ['src/lib/components/**/*.test.ts', 'src/lib/features/**/*.test.ts']
 				}
 			},

@@ -54,7 +54,7 @@ export const actions: Actions = {
 		} catch (thrown) {
 			return keepVersion(refuseClaim(form, thrown), version);
 		}
-		redirect(303, `/g/${ctx.group.slug}/claims/${number}`);
+		redirect(303, `/g/${ctx.group.slug}/claims/${number}?changed`);
 	},
 	signIn: async (event) => {
 		const data = await event.request.formData();

@@ -58,7 +58,12 @@ export function makeLedgerRow(over: Partial<LedgerRow> = {}): LedgerRow {
 		recomputedBy: 'NPA level 1, see-saw d=2',
 		stations: makeStations(),
 		progress: null,
-		reference: { id: 'r1', short: 'Arden & Voss 2004', locator: 'eq. 7' },
+		reference: {
+			id: 'r1',
+			short: 'Arden & Voss 2004',
+			doi: '10.5555/jip.12.345',
+			locator: 'eq. 7'
+		},
 		state: 'active',
 		visibility: 'group',
 		...over
@@ -74,6 +79,7 @@ export function makeLedgerPage(over: Partial<LedgerPage> = {}): LedgerPage {
 		page: 1,
 		pageSize: 25,
 		papers: 1,
+		proposed: 0,
 		scenarios: [{ value: '2 in, 2 out', count: rows.length }],
 		quantities: [{ value: 'quantum', label: 'Quantum maximum', count: rows.length }],
 		...over

@@ -24,7 +24,9 @@ export const ledgerQuery = z.object({
 	/** As `inequalities.scenario` words it; empty: any. */
 	scenario: z.string().max(200).catch(''),
 	quantity: z.enum(['', ...QUANTITIES.map((q) => q.key)] as ['', ...QuantityKey[]]).catch(''),
-	/** Withdrawn claims are kept but not listed unless asked for. */
+	/** Only those that wait for a maintainer. */
+	proposed: z.boolean().catch(false),
+	/** Withdrawn and superseded claims are kept but neither listed nor counted unless asked for. */
 	withdrawn: z.boolean().catch(false),
 	sort: z.enum(LEDGER_SORTS).catch('newest'),
 	page: z.coerce.number().int().min(1).max(100_000).catch(1)
@@ -37,6 +39,7 @@ export function parseLedgerQuery(parameters: URLSearchParams): LedgerQuery {
 		status: parameters.get('status') ?? 'all',
 		scenario: parameters.get('scenario') ?? '',
 		quantity: parameters.get('quantity') ?? '',
+		proposed: parameters.get('proposed') === '1',
 		withdrawn: parameters.get('withdrawn') === '1',
 		sort: parameters.get('sort') ?? 'newest',
 		page: parameters.get('page') ?? 1
@@ -50,6 +53,7 @@ export function printLedgerQuery(query: LedgerQuery): URLSearchParams {
 	if (query.status !== 'all') out.set('status', query.status);
 	if (query.scenario) out.set('scenario', query.scenario);
 	if (query.quantity) out.set('quantity', query.quantity);
+	if (query.proposed) out.set('proposed', '1');
 	if (query.withdrawn) out.set('withdrawn', '1');
 	if (query.sort !== 'newest') out.set('sort', query.sort);
 	if (query.page > 1) out.set('page', String(query.page));

@@ -8,7 +8,10 @@ import type { Verdict } from '../ledger/verdict';
 import type { ClaimInput } from './claim-input';
 import type { FieldIssueView } from './field-issue';
 
-/** Values on the rule, in the normalisation of what it is shown beside; null: not known yet. */
+/**
+ * Values on the rule, in the normalisation of what it is shown beside; null: not known yet. The best
+ * that all recomputations of the inequality prove; an exact one may be a fraction, `1/3`.
+ */
 export interface StationsView {
 	readonly local: string | null;
 	readonly quantumLower: string | null;
@@ -47,6 +50,7 @@ export interface ReferenceLine {
 	readonly id: string;
 	/** `Arden & Voss 2004`. */
 	readonly short: string;
+	readonly doi: string | null;
 	readonly locator: string;
 }
 
@@ -81,6 +85,8 @@ export interface LedgerPage {
 	readonly page: number;
 	readonly pageSize: number;
 	readonly papers: number;
+	/** Claims that wait for a maintainer to publish or decline them. */
+	readonly proposed: number;
 	/** Choices of the filters, with how many claims each has. */
 	readonly scenarios: readonly { readonly value: string; readonly count: number }[];
 	readonly quantities: readonly {
@@ -265,6 +271,8 @@ export interface BoundSource {
 	readonly printed: string;
 	/** The same typeset (safe HTML made by the server), where it is written in LaTeX. */
 	readonly printedHtml: string | null;
+	/** What the paper claims where it is not the quantum maximum itself: `Local maximum`. */
+	readonly quantityLabel: string | null;
 	readonly claimId: string;
 	readonly referenceId: string;
 	readonly short: string;

@@ -89,6 +89,7 @@ function rank(
 		source: {
 			printed: identity ? claim.printed : showBound(end, side),
 			printedHtml: identity ? printedHtml(claim.printed) : null,
+			quantityLabel: claim.quantity === 'quantum' ? null : claim.quantityLabel,
 			claimId: claim.id,
 			referenceId: claim.referenceId,
 			short,

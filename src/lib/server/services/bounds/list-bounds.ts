@@ -4,12 +4,10 @@ import type { BoundsPage, BoundsRow } from '../../../schemas/views';
 import type { Context } from '../../context';
 import { claims, inequalities, references } from '../../db/schema';
 import { statusCounts } from '../claims/list-claims';
-import { IDENTITY_TEXT, readMap, showSides } from '../inequalities/affine';
+import { IDENTITY_TEXT, readMap } from '../inequalities/affine';
 import { inequalitySubject, type InequalityRecord } from '../inequalities/inequality-rows';
 import {
-	larger,
 	loadStations,
-	smaller,
 	stationSides,
 	stationsView,
 	type StationRow
@@ -17,7 +15,6 @@ import {
 import { isPublicClaim } from '../inequalities/visibility';
 import { INEQUALITY_TEXT, contains, searchWords } from '../search-words';
 import { claimedBounds, type ClaimedBounds } from './claimed-bounds';
-import { ownBounds, type OwnBound } from './own-bounds';
 import { isClosed, showGap } from './show-gap';
 
 /**
@@ -55,16 +52,13 @@ export async function listBounds(ctx: Context, query: BoundsQuery): Promise<Boun
 	const ids = rows.map(({ id }) => id);
 	const stations = await loadStations(read, ids);
 	const claimed = await claimedBounds(read, ids);
-	const own = await ownBounds(read, ids);
 	const byStatus = await read
 		.select({ status: claims.status, count: count() })
 		.from(claims)
-		.where(isPublicClaim)
+		.where(and(isPublicClaim, eq(claims.state, 'active')))
 		.groupBy(claims.status);
 	return {
-		rows: rows.map((row) =>
-			boundsRow(row, stations.get(row.id) ?? [], own.get(row.id) ?? [], claimed.get(row.id))
-		),
+		rows: rows.map((row) => boundsRow(row, stations.get(row.id) ?? [], claimed.get(row.id))),
 		counts: statusCounts(byStatus),
 		total,
 		page,
@@ -77,13 +71,9 @@ const IDENTITY = readMap(IDENTITY_TEXT);
 function boundsRow(
 	row: InequalityRecord,
 	stations: readonly StationRow[],
-	runs: readonly OwnBound[],
 	claimed: ClaimedBounds | undefined
 ): BoundsRow {
-	const { quantum } = stationSides(stations, IDENTITY);
-	const lower = runs.reduce((best, run) => larger(best, run.lower), quantum.lower);
-	const upper = runs.reduce((best, run) => smaller(best, run.upper), quantum.upper);
-	const own = showSides({ lower, upper });
+	const { lower, upper } = stationSides(stations, IDENTITY).quantum;
 	const view = stationsView(stations, IDENTITY);
 	const closed = lower !== null && upper !== null && isClosed(lower, upper);
 	return {
@@ -93,8 +83,8 @@ function boundsRow(
 		noSignalling: view.noSignalling,
 		claimedLower: claimed?.lower ?? null,
 		claimedUpper: claimed?.upper ?? null,
-		ownLower: own.lower,
-		ownUpper: own.upper,
+		ownLower: view.quantumLower,
+		ownUpper: view.quantumUpper,
 		gap: lower && upper ? showGap(upper.sub(lower)) : null,
 		closed,
 		stations: view

@@ -6,7 +6,7 @@ import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
-import { quantityInfo } from '../recomputations/claim-problem';
+import { isOnRule } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
 import { problemLabel } from '../recomputations/problem-label';
@@ -23,7 +23,7 @@ export function selectClaimRows(read: Reader, where: SQL | undefined) {
 				nameLatex: inequalities.nameLatex,
 				scenario: inequalities.scenario
 			},
-			reference: { id: references.id, short: references.short },
+			reference: { id: references.id, short: references.short, doi: references.doi },
 			run: { ...PROGRESS_COLUMNS, problem: recomputations.problem }
 		})
 		.from(claims)
@@ -49,8 +49,7 @@ export async function claimRows(
 	const rows: LedgerRow[] = [];
 	for (const { claim, inequality, reference, run } of selected) {
 		const map = readMap(claim);
-		// Only maxima of the functional are drawn on the rule.
-		const onRule = quantityInfo(claim.input.quantity).subject === 'functional';
+		const onRule = isOnRule(claim.input);
 		const own = onRule && claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
 		rows.push({
 			id: claim.id,

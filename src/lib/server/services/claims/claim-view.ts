@@ -7,7 +7,7 @@ import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { subjectView } from '../inequalities/subject-view';
-import { quantityInfo } from '../recomputations/claim-problem';
+import { isOnRule, quantityInfo } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
 import { recomputationViews, stationsAnd } from '../recomputations/recomputation-view';
@@ -79,7 +79,7 @@ export async function claimView(
 		visibility: claim.visibility,
 		supersededBy: await supersededBy(read, claim),
 		verdict: claim.verdict,
-		stations: stations.length > 0 ? stationsView(stations, map) : null,
+		stations: stations.length > 0 && isOnRule(claim.input) ? stationsView(stations, map) : null,
 		progress: run && progressView(run, map, now, ahead),
 		recomputationId: claim.recomputationId,
 		recomputations: await recomputationViews(read, stationsAnd(inequalityId, own), map, now),

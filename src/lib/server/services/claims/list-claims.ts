@@ -1,4 +1,4 @@
-import { and, asc, count, desc, eq, ne, or, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, desc, eq, or, sql, type SQL } from 'drizzle-orm';
 import { VERDICT_STATUSES } from '../../../ledger/claim';
 import { QUANTITIES } from '../../../ledger/quantities';
 import { PAGE_SIZE, type LedgerQuery, type LedgerSort } from '../../../schemas/ledger-query';
@@ -13,26 +13,30 @@ export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise
 	const { read } = ctx.db;
 	const base = and(
 		eq(claims.groupId, ctx.group.id),
-		query.withdrawn ? undefined : ne(claims.state, 'withdrawn')
+		query.withdrawn ? undefined : eq(claims.state, 'active')
 	);
 	const filters = {
 		search: query.search ? matches(query.search) : undefined,
 		status: query.status === 'all' ? undefined : eq(claims.status, query.status),
 		scenario: query.scenario ? eq(inequalities.scenario, query.scenario) : undefined,
-		quantity: query.quantity ? eq(claims.quantity, query.quantity) : undefined
+		quantity: query.quantity ? eq(claims.quantity, query.quantity) : undefined,
+		proposed: query.proposed ? eq(claims.visibility, 'proposed') : undefined
 	};
-	const { search, status, scenario, quantity } = filters;
+	const { search, status, scenario, quantity, proposed } = filters;
 	const byStatus = await read
 		.select({ status: claims.status, count: count() })
 		.from(claims)
 		.innerJoin(references, eq(references.id, claims.referenceId))
 		.leftJoin(inequalities, eq(inequalities.id, claims.inequalityId))
-		.where(and(base, search, scenario, quantity))
+		.where(and(base, search, scenario, quantity, proposed))
 		.groupBy(claims.status);
 	const counts = statusCounts(byStatus);
 	const total = query.status === 'all' ? counts.all : counts[query.status];
 	const page = Math.min(query.page, Math.max(1, Math.ceil(total / PAGE_SIZE)));
-	const selected = await selectClaimRows(read, and(base, search, status, scenario, quantity))
+	const selected = await selectClaimRows(
+		read,
+		and(base, search, status, scenario, quantity, proposed)
+	)
 		.orderBy(...order(query.sort))
 		.limit(PAGE_SIZE)
 		.offset((page - 1) * PAGE_SIZE);
@@ -40,6 +44,10 @@ export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise
 		.select({ papers: sql<number>`count(distinct ${claims.referenceId})` })
 		.from(claims)
 		.where(base);
+	const [waiting] = await read
+		.select({ proposed: count() })
+		.from(claims)
+		.where(and(base, eq(claims.visibility, 'proposed')));
 	const scenarios = await read
 		.select({ value: inequalities.scenario, count: count() })
 		.from(claims)
@@ -60,6 +68,7 @@ export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise
 		page,
 		pageSize: PAGE_SIZE,
 		papers: papers?.papers ?? 0,
+		proposed: waiting?.proposed ?? 0,
 		scenarios,
 		quantities: quantities.map((row) => ({
 			...row,

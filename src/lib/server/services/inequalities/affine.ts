@@ -1,5 +1,13 @@
 import { encloseCoefficient, type RationalInterval } from '../../../ledger/enclose-coefficient';
-import { rationalOf, showBound, showEnclosure, showExact } from '../../../ledger/figures';
+import {
+	BOUND_PLACES,
+	finiteDecimal,
+	rationalOf,
+	showBound,
+	showEnclosure,
+	showExact,
+	type Side
+} from '../../../ledger/figures';
 import { parseCoefficient } from '../../../nonlocality/exact/expression';
 import { parseRational, type Rational } from '../../../nonlocality/exact/rational';
 
@@ -49,13 +57,22 @@ export function mapSides(map: AffineMap, { lower, upper, exact }: Sides): Mapped
 	};
 }
 
+/** Fractions up to this denominator are read at a glance, larger ones are not. */
+const LARGEST_DENOMINATOR = 1000n;
+
+/** A bound as a figure: `1/3` whole where no short decimal is, others rounded outward. */
+export function showFigure(value: Rational, side: Side): string {
+	const short = value.d <= LARGEST_DENOMINATOR && finiteDecimal(value, BOUND_PLACES) === null;
+	return short ? value.toFraction() : showBound(value, side);
+}
+
 /** Both sides as figures with the digits that are known; one figure twice when it is exact. */
 export function showSides({ lower, upper }: MappedSides): {
 	lower: string | null;
 	upper: string | null;
 } {
 	if (lower && upper && lower.equals(upper)) {
-		return { lower: showBound(lower, 'lower'), upper: showBound(upper, 'upper') };
+		return { lower: showFigure(lower, 'lower'), upper: showFigure(upper, 'upper') };
 	}
 	const shown = showEnclosure(lower, upper, 1);
 	return { lower: shown.lower, upper: shown.upper };

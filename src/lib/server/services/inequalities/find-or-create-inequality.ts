@@ -1,4 +1,4 @@
-import { and, eq } from 'drizzle-orm';
+import { and, eq, isNotNull } from 'drizzle-orm';
 import {
 	familyFunctional,
 	familyLatex,
@@ -7,7 +7,7 @@ import {
 import type { Functional } from '../../../nonlocality/scenario/functional';
 import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
 import type { Transaction } from '../../db/client';
-import { inequalities } from '../../db/schema';
+import { inequalities, recomputations } from '../../db/schema';
 import { newId } from '../../ids';
 import { queueRecomputation } from '../recomputations/queue-recomputation';
 import { stationProblems } from '../recomputations/station-problems';
@@ -82,7 +82,10 @@ function newRow({ functional, latex, family, place }: PlacedSubject, now: Date) 
 	};
 }
 
-/** Queues what is missing of an inequality's stations; each problem is run once for all. */
+/**
+ * Queues what is missing of an inequality's stations. One run is one station for good: a later
+ * budget makes another problem of it, but no reason to run it again.
+ */
 export async function queueStations(
 	tx: Transaction,
 	inequality: Pick<FoundInequality, 'id' | 'outputs' | 'terms'>,
@@ -90,7 +93,13 @@ export async function queueStations(
 	seconds: number,
 	now: Date
 ): Promise<void> {
+	const there = await tx
+		.select({ station: recomputations.station })
+		.from(recomputations)
+		.where(and(eq(recomputations.inequalityId, inequality.id), isNotNull(recomputations.station)));
+	const known = new Set(there.map(({ station }) => station));
 	for (const { station, problem } of stationProblems(inequality, seconds)) {
+		if (known.has(station)) continue;
 		const queued = { problem, inequalityId: inequality.id, groupId, station };
 		await queueRecomputation(tx, queued, now, { again: false });
 	}

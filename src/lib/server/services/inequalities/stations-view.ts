@@ -1,20 +1,35 @@
-import { and, inArray, isNotNull } from 'drizzle-orm';
-import { showBound } from '../../../ledger/figures';
+import { and, eq, inArray, isNotNull, or, sql } from 'drizzle-orm';
+import { isAlmostQuantum } from '../../../ledger/problem-labels';
 import type { Rational } from '../../../nonlocality/exact/rational';
+import type { Level, Problem } from '../../../nonlocality/problem';
 import type { StationsView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { recomputations, type Station } from '../../db/schema';
-import { mapSides, showSides, type AffineMap, type MappedSides, type Sides } from './affine';
+import {
+	mapSides,
+	showFigure,
+	showSides,
+	type AffineMap,
+	type MappedSides,
+	type Sides
+} from './affine';
 
 export interface StationRow extends Sides {
 	readonly id: string;
 	readonly inequalityId: string | null;
+	/** Null for a run that only a claim asked for. */
 	readonly station: Station | null;
+	readonly quantity: Problem['quantity'];
+	readonly level: Level | null;
 	readonly state: (typeof recomputations.$inferSelect)['state'];
 	readonly checked: boolean | null;
 }
 
-/** The stations of some inequalities without their (large) results, by inequality. */
+/**
+ * The stations of some inequalities without their (large) results, by inequality; with them every
+ * other checked run of a plain maximum. Who asked for a run plays no part: what it proves is a
+ * fact about the inequality, and nothing of the claim is read here.
+ */
 export async function loadStations(
 	read: Reader,
 	inequalityIds: readonly string[]
@@ -26,6 +41,8 @@ export async function loadStations(
 			id: recomputations.id,
 			inequalityId: recomputations.inequalityId,
 			station: recomputations.station,
+			quantity: sql<Problem['quantity']>`json_extract(${recomputations.problem}, '$.quantity')`,
+			level: sql<string | null>`${recomputations.problem} -> '$.level'`,
 			state: recomputations.state,
 			checked: recomputations.checked,
 			lower: recomputations.lower,
@@ -36,41 +53,59 @@ export async function loadStations(
 		.where(
 			and(
 				inArray(recomputations.inequalityId, [...new Set(inequalityIds)]),
-				isNotNull(recomputations.station)
+				or(isNotNull(recomputations.station), and(eq(recomputations.checked, true), PLAIN_MAXIMUM))
 			)
 		);
-	for (const row of rows) {
+	for (const { level, ...row } of rows) {
 		const key = row.inequalityId ?? '';
-		byInequality.set(key, [...(byInequality.get(key) ?? []), row]);
+		const read = level === null ? null : (JSON.parse(level) as Level);
+		byInequality.set(key, [...(byInequality.get(key) ?? []), { ...row, level: read }]);
 	}
 	return byInequality;
 }
 
+/** A maximum of the functional alone: no minimum, no further constraints. */
+const PLAIN_MAXIMUM = sql`json_extract(${recomputations.problem}, '$.sense') = 'max'
+	and json_array_length(${recomputations.problem}, '$.constraints') = 0`;
+
 /** The larger of two bounds, of which one may not be known. */
-export const larger = (a: Rational | null, b: Rational | null) =>
+const larger = (a: Rational | null, b: Rational | null) =>
 	!a ? b : !b ? a : a.compare(b) >= 0 ? a : b;
-export const smaller = (a: Rational | null, b: Rational | null) =>
+const smaller = (a: Rational | null, b: Rational | null) =>
 	!a ? b : !b ? a : a.compare(b) <= 0 ? a : b;
 
 const UNKNOWN: MappedSides = { lower: null, upper: null };
 
-/** What the stations prove about each set, mapped to a normalisation; unchecked ones prove nothing. */
+/** Runs whose value no quantum strategy falls short of, and those whose value none exceeds. */
+const BELOW_QUANTUM: readonly Problem['quantity'][] = ['quantum', 'see-saw', 'local'];
+const ABOVE_QUANTUM: readonly Problem['quantity'][] = ['quantum', 'npa', 'no-signalling'];
+
+/**
+ * The best that all checked runs together prove about each set, mapped to a normalisation;
+ * unchecked ones prove nothing.
+ */
 export function stationSides(rows: readonly StationRow[], map: AffineMap) {
-	const of = (station: Station): MappedSides => {
-		const row = rows.find((candidate) => candidate.station === station && candidate.checked);
-		return row ? mapSides(map, row) : UNKNOWN;
-	};
-	const relaxations = (['npa-1', 'npa-1-non-negative', 'almost-quantum', 'npa-2'] as const).map(of);
-	const quantum = of('quantum');
-	const local = of('local');
+	const checked = rows.filter((row) => row.checked);
+	const best = (
+		below: (row: StationRow) => boolean,
+		above: (row: StationRow) => boolean
+	): MappedSides => ({
+		lower: checked.filter(below).reduce(largerOf, UNKNOWN.lower),
+		upper: checked.filter(above).reduce(smallerOf, UNKNOWN.upper)
+	});
+	const largerOf = (found: Rational | null, row: StationRow) =>
+		larger(found, mapSides(map, row).lower);
+	const smallerOf = (found: Rational | null, row: StationRow) =>
+		smaller(found, mapSides(map, row).upper);
+	const set = (is: (row: StationRow) => boolean) => best(is, is);
 	return {
-		local,
-		noSignalling: of('no-signalling'),
-		almostQuantum: of('almost-quantum'),
-		quantum: {
-			lower: [of('see-saw-2').lower, local.lower].reduce(larger, quantum.lower),
-			upper: relaxations.reduce((best, { upper }) => smaller(best, upper), quantum.upper)
-		}
+		local: set(({ quantity }) => quantity === 'local'),
+		noSignalling: set(({ quantity }) => quantity === 'no-signalling'),
+		almostQuantum: set(({ level }) => level !== null && isAlmostQuantum(level)),
+		quantum: best(
+			({ quantity }) => BELOW_QUANTUM.includes(quantity),
+			({ quantity }) => ABOVE_QUANTUM.includes(quantity)
+		)
 	};
 }
 
@@ -78,15 +113,20 @@ export function stationsView(rows: readonly StationRow[], map: AffineMap): Stati
 	const { local, noSignalling, almostQuantum, quantum } = stationSides(rows, map);
 	const shown = showSides(quantum);
 	return {
-		local: local.lower && showBound(local.lower, 'lower'),
+		local: local.lower && showFigure(local.lower, 'lower'),
 		quantumLower: shown.lower,
 		quantumUpper: shown.upper,
 		almostQuantum: showSides(almostQuantum).upper,
-		noSignalling: noSignalling.upper && showBound(noSignalling.upper, 'upper'),
-		complete: rows.length > 0 && stationsDone(rows)
+		noSignalling: noSignalling.upper && showFigure(noSignalling.upper, 'upper'),
+		complete: rows.some(({ station }) => station !== null) && stationsDone(rows)
 	};
 }
 
-export function stationsDone(rows: readonly Pick<StationRow, 'state'>[]): boolean {
-	return rows.every(({ state }) => state !== 'queued' && state !== 'running');
+/** What claims asked for beside the stations does not keep them from being done. */
+export function stationsDone(
+	rows: readonly (Pick<StationRow, 'state'> & { readonly station?: Station | null })[]
+): boolean {
+	return rows.every(
+		({ state, station }) => station === null || (state !== 'queued' && state !== 'running')
+	);
 }

@@ -1,4 +1,5 @@
 import type { ClaimInput } from '../../../schemas/claim-input';
+import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
 import type { ReadClaimInput } from '../claims/read-claim-input';
 import { budgetSeconds } from '../recomputations/budget';
 import { claimProblem, quantityInfo } from '../recomputations/claim-problem';
@@ -15,7 +16,12 @@ export function describeRecomputation(
 	const functional = subject?.functional;
 	if (!functional || quantity.issues.length > 0) return null;
 	const { outputs } = functional.scenario;
-	const found = claimProblem(input, quantity, { outputs, terms: [] }, budgetSeconds());
+	const found = claimProblem(
+		input,
+		quantity,
+		{ outputs, terms: termsOfFunctional(functional) },
+		budgetSeconds()
+	);
 	if ('why' in found) return `Will be Open: ${found.why}.`;
 	const { problem } = found;
 	if (problem.quantity === 'quantum') {

@@ -6,6 +6,7 @@ import {
 	QUANTUM_GAP,
 	SEE_SAW_STARTS,
 	almostQuantumLevel,
+	lackingMoments,
 	problemBase,
 	type ProblemSubjectData
 } from './station-problems';
@@ -23,6 +24,11 @@ export function quantityInfo(key: QuantityKey): QuantityInfo {
 	const info = QUANTITIES.find((quantity) => quantity.key === key);
 	if (!info) throw new RangeError(`no quantity ${key}`);
 	return info;
+}
+
+/** The rule shows maxima of a functional: a minimum is of other sets' other ends. */
+export function isOnRule({ quantity, sense }: Pick<QuantityChoice, 'quantity' | 'sense'>): boolean {
+	return sense === 'max' && quantityInfo(quantity).subject === 'functional';
 }
 
 const HIGHEST_LEVEL = 5;
@@ -161,5 +167,7 @@ function npaProblem(
 	if (level === '1+AB' && parties !== 2) {
 		return { why: 'level 1+AB is for two parties; take 1 per party' };
 	}
-	return { problem: { ...base, quantity: 'npa', level, nonNegative } };
+	const problem = { ...base, quantity: 'npa', level, nonNegative } as const;
+	const lacking = lackingMoments(problem);
+	return lacking === null ? { problem } : { why: lacking };
 }

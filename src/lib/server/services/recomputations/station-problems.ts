@@ -1,5 +1,7 @@
 import type { Level, Problem, ProblemTerm } from '../../../nonlocality/problem';
 import { FORMAT } from '../../../nonlocality/problem';
+import { collinsGisinForm } from '../../../nonlocality/scenario/functional';
+import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
 import { STATIONS, type Station } from '../../db/schema';
 
 /** What a problem is about: the representative of an inequality. */
@@ -36,11 +38,20 @@ export function almostQuantumLevel(parties: number): Level {
 	return parties === 2 ? '1+AB' : { perParty: 1 };
 }
 
-/** Level k has the moments of at most 2k operators: of three parties level 1 knows no correlator. */
-function hasMoments(problem: Problem): boolean {
-	if (problem.quantity !== 'npa' || typeof problem.level !== 'number') return true;
-	const most = Math.max(0, ...problem.terms.map(([, events]) => events.length));
-	return most <= 2 * problem.level;
+/**
+ * Why a level does not bound a functional at all, null when it does: level k has the moments of at
+ * most 2k operators, so that of three parties level 1 knows no correlator.
+ */
+export function lackingMoments(problem: Problem): string | null {
+	if (problem.quantity !== 'npa' || typeof problem.level !== 'number') return null;
+	const { level, outputs, terms } = problem;
+	const written = Math.max(0, ...terms.map(([, events]) => events.length));
+	if (written <= 2 * level) return null;
+	// What is written of many parties may cancel down to marginals.
+	const { terms: needed } = collinsGisinForm(functionalOfTerms(outputs, terms));
+	const most = Math.max(0, ...needed.map(({ events }) => events.length));
+	if (most <= 2 * level) return null;
+	return `level ${level} has no moments of ${most} parties together, so the functional has no value there; ask for level ${Math.ceil(most / 2)}, or one operator per party`;
 }
 
 /** The problems behind the stations, in the order they are run. */
@@ -79,6 +90,6 @@ export function stationProblems(
 		}
 	};
 	return STATIONS.map((station) => ({ station, problem: problems[station] })).filter(
-		({ problem }) => hasMoments(problem)
+		({ problem }) => lackingMoments(problem) === null
 	);
 }

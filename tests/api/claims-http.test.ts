@@ -128,6 +128,20 @@ describe('a claim over HTTP', () => {
 	});
 });
 
+describe('the pages of a claim', () => {
+	it('name a wrong number at its field, and open the form to those who may edit', async () => {
+		const number = await enter(claimFields(), group.maintainer);
+		const page = `/g/${group.slug}/claims/${number}`;
+		for (const by of ['999', String(number), 'x', '']) {
+			const answer = await group.maintainer.submit(`${page}?/supersede`, { by });
+			expect(answer.status).toBe(400);
+			expect(await answer.text()).toContain('supersede-wrong');
+		}
+		expect((await group.member.get(`${page}/edit`)).status).toBe(403);
+		expect((await group.maintainer.get(`${page}/edit`)).status).toBe(200);
+	});
+});
+
 describe('a reading', () => {
 	it('says what is understood of a half-filled form', async () => {
 		const response = await group.observer.sendJson('POST', '/api/v1/readings', {
@@ -147,6 +161,19 @@ describe('a reading', () => {
 			issues: []
 		});
 		expect(reading.formulaHtml).toContain('<math');
+	});
+
+	it('says nothing of what is still empty, and of two papers at once', async () => {
+		const read = async (fields: object) =>
+			json<ReadingView>(
+				await group.member.sendJson('POST', '/api/v1/readings', { group: group.slug, ...fields })
+			);
+		const blank = { subjectKind: 'expression', expression: ' ', printed: '', bibtex: '' };
+		expect((await read(blank)).issues).toEqual([]);
+		const two = await read({ bibtex: `${bibtexOf(1)}\n@misc{b, title = {B` });
+		expect(two.issues).toMatchObject([
+			{ field: 'bibtex', message: expect.stringContaining('a second entry starts here') as unknown }
+		]);
 	});
 
 	it('names a field that is too long and reads the others', async () => {

@@ -12,7 +12,7 @@ type Change = Partial<
 >;
 
 export interface ClaimChange {
-	readonly action: Action;
+	readonly action: Action | ((claim: ClaimRow) => Action);
 	/** For the audit: `claim.withdrawn`. */
 	readonly audit: string;
 	/** Why the role does not suffice. */
@@ -29,7 +29,8 @@ export async function changeClaim(
 ): Promise<void> {
 	await ctx.db.write(async (tx) => {
 		const claim = await findClaim(tx, ctx, number);
-		if (!may(ctx.role, action, { own: isOwn(ctx, claim) })) {
+		const asked = typeof action === 'string' ? action : action(claim);
+		if (!may(ctx.role, asked, { own: isOwn(ctx, claim) })) {
 			throw new ServiceError('forbidden', refusal);
 		}
 		const values = await change(tx, claim);

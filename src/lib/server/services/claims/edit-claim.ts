@@ -13,6 +13,8 @@ import { findClaim, isOwn } from './find-claim';
 import { readClaimInput } from './read-claim-input';
 import { requireSound, storeClaimParts } from './store-claim';
 
+export const MAY_NOT_EDIT = 'Only who entered a claim and maintainers may edit it.';
+
 /**
  * Changes a claim; every version is kept and the verdict derived anew. Who may see it is not
  * changed here, but a published claim that a member edits has to be published again.
@@ -27,7 +29,7 @@ export async function editClaim(
 	const asks = parseInput(claimInput, input);
 	const before = await findClaim(ctx.db.read, ctx, number);
 	if (!may(ctx.role, 'edit-claim', { own: isOwn(ctx, before) })) {
-		throw new ServiceError('forbidden', 'Only who entered a claim and maintainers may edit it.');
+		throw new ServiceError('forbidden', MAY_NOT_EDIT);
 	}
 	const sound = requireSound(await readClaimInput(ctx, asks));
 	const next = await ctx.db.write(async (tx) => {
@@ -63,12 +65,17 @@ export async function editClaim(
 			entity: 'claim',
 			entityId: current.id,
 			groupId: ctx.group.id,
-			before: current.input,
-			after: asks
+			before: withPaper(current.input, current.referenceId),
+			after: withPaper(asks, columns.referenceId)
 		});
 		await deriveClaim(tx, current.id, ctx.now());
 		return { id: current.id, number, version: version + 1 };
 	});
 	announceQueued();
 	return next;
+}
+
+/** The paper as the row it is: a form names it as known, or pastes it. */
+function withPaper(input: ClaimInput, referenceId: string): ClaimInput {
+	return { ...input, paper: 'known', referenceId, bibtex: '' };
 }

@@ -25,7 +25,7 @@ const ACTION_TEXT: Readonly<Record<string, string>> = {
 const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
 	printed: 'Value',
 	relation: 'Relation',
-	reading: 'Reading',
+	reading: 'How it is printed',
 	quantity: 'Quantity',
 	level: 'Level',
 	expression: 'Expression',
@@ -33,9 +33,18 @@ const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
 	locator: 'Locator',
 	method: 'Method',
 	note: 'Note',
-	bibtex: 'Paper',
+	sense: 'Sense',
+	dimension: 'Dimension',
+	family: 'Family',
+	familyParameter: 'Parameter of the family',
+	described: 'Subject',
+	inequalityId: 'Inequality',
+	// The row of the paper; however it was named in the form, as known or pasted, it is one row.
 	referenceId: 'Paper'
 };
+
+/** Not words for a person. */
+const IDS: ReadonlySet<string> = new Set(['referenceId', 'inequalityId']);
 
 /** What happened to a claim, newest first: what people did, and what the recomputation made of it. */
 export async function claimHistory(read: Reader, claimId: string): Promise<HistoryEntry[]> {
@@ -58,13 +67,15 @@ export async function claimHistory(read: Reader, claimId: string): Promise<Histo
 		.orderBy(asc(verdicts.at), asc(verdicts.id));
 	const entries = [
 		...actions.flatMap(({ at, action, before, after, who }) => {
-			const text = action === 'claim.edited' ? editText(before, after) : ACTION_TEXT[action];
+			const text = actionText(action, before, after);
 			return text === undefined ? [] : [{ at, who, text }];
 		}),
 		...judgedEntries(judged)
 	];
+	// Where the result was there already, entering and judging have one time: then by kind.
 	return entries
-		.sort((a, b) => b.at.getTime() - a.at.getTime())
+		.map((entry, place) => ({ ...entry, place }))
+		.sort((a, b) => b.at.getTime() - a.at.getTime() || b.place - a.place)
 		.map(({ at, who, text }) => ({ at: at.toISOString(), who, text }));
 }
 
@@ -77,11 +88,18 @@ function judgedEntries(
 		.map(({ at, status }) => ({ at, who: null, text: `Recomputed: ${STATUS_WORD[status]}` }));
 }
 
+function actionText(action: string, before: unknown, after: unknown): string | undefined {
+	if (action === 'claim.edited') return editText(before, after);
+	if (action === 'claim.unpublished' && fieldOf(before, 'visibility') === 'proposed')
+		return 'Proposal taken back';
+	return ACTION_TEXT[action];
+}
+
 function editText(before: unknown, after: unknown): string {
 	const changed = Object.entries(FIELD_WORD).flatMap(([field, word]) => {
 		const [was, is] = [fieldOf(before, field), fieldOf(after, field)];
 		if (was === is) return [];
-		const short = was && is && was.length <= 40 && is.length <= 40;
+		const short = !IDS.has(field) && was && is && was.length <= 40 && is.length <= 40;
 		return [short ? `${word} changed from ${was} to ${is}` : `${word} changed`];
 	});
 	return changed.length > 0 ? [...new Set(changed)].join('; ') : 'Edited';

@@ -72,6 +72,10 @@ type ReadValue =
 	{ readonly stated: StatedValue; readonly relation: Relation } | { readonly issue: FieldIssue };
 
 function readValue({ printed, reading, relation }: ClaimInput): ReadValue {
+	// An empty field has no place to point at.
+	if (!printed.trim()) {
+		return { issue: { field: 'printed', message: 'Give the value as printed.' } };
+	}
 	try {
 		const stated = readStatedValue(printed, reading);
 		const claimed = claimedRelation(stated, relation);

@@ -79,6 +79,9 @@ function readFamily(input: ClaimInput): SubjectReading {
 }
 
 function readExpression(input: ClaimInput): SubjectReading {
+	if (!input.expression.trim()) {
+		return noSubject({ field: 'expression', message: 'Write the inequality.' });
+	}
 	const given = input.outputs.trim() ? readOutputs(input.outputs) : undefined;
 	if (given && 'field' in given) return noSubject(given);
 	const { functional, indexBase, chosen } = parseExpression(input.expression, {

@@ -24,6 +24,12 @@ export const load: PageServerLoad = async (event) => {
 	return { claim, role: ctx.role };
 };
 
+/** `12` or `#12`; NaN for what is no number, which no claim has. */
+function numberTyped(value: FormDataEntryValue | null): number {
+	const digits = /^#?([1-9]\d{0,8})$/.exec(String(value ?? '').trim())?.[1];
+	return digits ? Number(digits) : NaN;
+}
+
 /** Guards, does it, and answers with the sentence that says so. */
 function doing(
 	done: string,
@@ -48,7 +54,7 @@ export const actions: Actions = {
 	withdraw: doing('Withdrawn. It stays in the ledger, struck through.', withdrawClaim),
 	restore: doing('Restored.', restoreClaim),
 	supersede: doing('Superseded.', (ctx, number, data) =>
-		supersedeClaim(ctx, number, claimNumber(String(data.get('by')).replace(/^#/, '')))
+		supersedeClaim(ctx, number, numberTyped(data.get('by')))
 	),
 	propose: doing('Proposed. A maintainer decides.', proposeClaim),
 	publish: doing('Public now.', publishClaim),

@@ -13,9 +13,10 @@ import { answering } from '$lib/server/http/page-errors';
 import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
 import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
-import { editClaim } from '$lib/server/services/claims/edit-claim';
+import { editClaim, MAY_NOT_EDIT } from '$lib/server/services/claims/edit-claim';
 import { showClaim } from '$lib/server/services/claims/show-claim';
-import { fail, redirect, type ActionFailure } from '@sveltejs/kit';
+import { may } from '$lib/ledger/policy';
+import { error, fail, redirect, type ActionFailure } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async (event) => {
@@ -23,7 +24,8 @@ export const load: PageServerLoad = async (event) => {
 	if (isFormSentBySignedOut(event))
 		return { form: await claimFormOf({}), ...NO_CHOICES, number, version: 0 };
 	const ctx = await requireRole(event, 'member');
-	const { input, version, reference } = await answering(() => showClaim(ctx, number));
+	const { input, version, reference, own } = await answering(() => showClaim(ctx, number));
+	if (!may(ctx.role, 'edit-claim', { own })) error(403, MAY_NOT_EDIT);
 	const form = await claimFormOf({
 		...input,
 		paper: 'known',

@@ -6,7 +6,7 @@ export function normaliseDoi(text: string): string | null {
 	const bare = text
 		.trim()
 		.toLowerCase()
-		.replace(/^https?:\/\/(dx\.)?doi\.org\//, '')
+		.replace(/^(https?:\/\/)?(dx\.|www\.)?doi\.org\//, '')
 		.replace(/^doi:\s*/, '')
 		.replace(/[.,;]+$/, '');
 	return DOI.test(bare) ? bare : null;

@@ -69,6 +69,10 @@ describe('a BibTeX entry', () => {
 	it('that is two is refused with the line of the second', async () => {
 		const reading = await problemOf('@misc{x, title={a}, author={B}}\n\n@misc{y, title={b}}');
 		expect(reading.message).toContain('Line 3: a second entry starts here');
+		const typing = await problemOf('@misc{x, title={a}, author={B}}\n\n@misc{y, title={b');
+		expect(typing.message).toContain('Line 3: a second entry starts here');
+		const open = await problemOf('@misc{x, title={a, author={B}}\n\n@misc{y, title={b}}');
+		expect(open.message).toContain('never closed');
 	});
 
 	it.each([

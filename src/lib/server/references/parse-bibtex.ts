@@ -1,5 +1,6 @@
 import type { Cite as CiteClass } from '@citation-js/core';
 import { normaliseArxiv, normaliseDoi } from './identifiers';
+import { plainMath } from './plain-math';
 import { formattedName, shortLabel, sourceLine, yearOf, type CslEntry } from './labels';
 
 export const BIBTEX_LIMITS = { characters: 20_000, depth: 30 } as const;
@@ -40,12 +41,13 @@ export async function parseBibtex(text: string): Promise<BibtexReading> {
 	if (text.length > BIBTEX_LIMITS.characters) {
 		return wrong(`At most ${BIBTEX_LIMITS.characters.toLocaleString('en')} characters of BibTeX.`);
 	}
-	const braces = checkBraces(text);
-	if (braces) return braces;
 	const starts = [...text.matchAll(/@\s*([a-zA-Z]+)\s*[{(]/g)].filter(
 		(match) => !/^(string|preamble|comment)$/i.test(match[1] ?? '')
 	);
 	const [first, second] = starts;
+	// A brace that the second entry leaves open is no news while it is being typed or cut away.
+	const braces = checkBraces(text.slice(0, second?.index));
+	if (braces) return braces;
 	if (!first) return wrong('This is no BibTeX: an entry starts like @article{key, ...}.', 0);
 	if (second) {
 		return wrong(
@@ -64,6 +66,9 @@ export async function parseBibtex(text: string): Promise<BibtexReading> {
 		if (!entry || parsed.data.length !== 1) {
 			return wrong(`Line ${lineAt(text, first.index)}: this entry could not be read.`, first.index);
 		}
+		// A DOI pasted as an address would have the resolver's put in front of it again.
+		const doi = typeof entry.DOI === 'string' ? normaliseDoi(entry.DOI) : null;
+		if (doi) entry.DOI = doi;
 		formatted = parsed
 			.format('bibliography', { format: 'text', template: 'apa', lang: 'en-US' })
 			.replace(/\s+/g, ' ')
@@ -75,7 +80,7 @@ export async function parseBibtex(text: string): Promise<BibtexReading> {
 }
 
 function finish(text: string, entry: CslEntry, formatted: string): BibtexReading {
-	const title = typeof entry.title === 'string' ? entry.title.trim() : '';
+	const title = typeof entry.title === 'string' ? withoutTags(entry.title).trim() : '';
 	if (!title) return wrong('The entry has no title.');
 	if (formattedName(entry) === null) return wrong('The entry has no author or editor.');
 	const givenDoi = typeof entry.DOI === 'string' ? entry.DOI : '';
@@ -126,8 +131,16 @@ function withKnownCommands(text: string): string {
 		.replace(/\\aa(?![a-zA-Z])\s*(\{\})?/g, 'å')
 		.replace(/\\(['"`^~])\s*(?:\{\s*\\i\s*\}|\\i(?![a-zA-Z]))/g, '\\$1{i}')
 		.replace(/\\(La)?TeX(?![a-zA-Z])\s*(\{\})?/g, '$1TeX')
-		.replace(/\\,/g, ' ');
+		.replace(/\\,/g, ' ')
+		.replace(/\$([^$]{1,200})\$/g, (_, formula: string) => `$${plainMath(formula)}$`);
 }
+
+/** Citation.js marks emphasis in a title with HTML tags; titles are shown as plain text. */
+const withoutTags = (text: string) =>
+	text
+		.replace(/<sup>/g, '^')
+		.replace(/<sub>/g, '_')
+		.replace(/<\/?(i|b|sup|sub|sc|span)( [^<>]*)?>/g, '');
 
 const FIELD_START = /^[ \t]*[a-z]+[ \t]*=/i;
 

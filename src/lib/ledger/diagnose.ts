@@ -7,6 +7,7 @@ import {
 	otherNormalisations,
 	otherQuantities,
 	relationReversed,
+	roundedInstead,
 	solverTolerance,
 	truncated
 } from './diagnosis-values';
@@ -64,7 +65,10 @@ export function diagnose(input: DiagnosisInput): Diagnosis[] {
 	];
 }
 
-/** Truncation alone, or with one of the first four; what holds without truncation is left out. */
+/**
+ * Truncation alone, or with one of the first four; what holds without truncation is left out. Of a
+ * value that was entered as truncated, whether it agrees as a rounded one.
+ */
 function truncations(
 	input: DiagnosisInput,
 	enclosure: Ends,
@@ -72,7 +76,11 @@ function truncations(
 ): Diagnosis[] {
 	const { reading, relation } = input;
 	if (!reading.decimal || reading.decimal.uncertainty) return [];
-	if (reading.choice === 'truncated' || reading.choice === 'exact') return [];
+	if (reading.choice === 'truncated') {
+		const rounded = readStatedValue(reading.printed, 'rounded');
+		return roundedInstead(new Trial(rounded, relation, enclosure));
+	}
+	if (reading.choice === 'exact') return [];
 	const trial = new Trial(readStatedValue(reading.printed, 'truncated'), relation, enclosure, true);
 	const together = [
 		...solverTolerance(trial),

@@ -81,6 +81,14 @@ export function truncated(trial: Trial): Diagnosis[] {
 	return [trial.make('truncated', trial.print(enclosure), text)];
 }
 
+/** The other way round, for a trial whose reading is the rounded one. */
+export function roundedInstead(trial: Trial): Diagnosis[] {
+	const { reading, relation, enclosure } = trial;
+	if (!settles(reading, relation, enclosure)) return [];
+	const text = `the digits were rounded, not cut off: ${knownValue(enclosure, reading)}${trial.asPrinted(enclosure)}`;
+	return [trial.make('truncated', trial.print(enclosure), text)];
+}
+
 export function indexBase(trial: Trial, other: OtherValue | null | undefined): Diagnosis[] {
 	if (!other || !settles(trial.reading, '=', other)) return [];
 	const text = `the indices are counted from the other base: ${other.label}, ${trial.which(other)}`;

@@ -119,6 +119,19 @@ describe('diagnose', () => {
 		expect(found.map((d) => d.fields?.['level'])).toEqual([ALMOST.label, close.label]);
 	});
 
+	it('finds a value entered as cut off that was rounded', () => {
+		const rounded = {
+			printed: '2.8209',
+			between: ['2.8208812', '2.8208814'],
+			choice: 'truncated'
+		} as const;
+		const [first] = diagnosisOf(rounded);
+		expect(first).toMatchObject({ kind: 'truncated', value: '2.8209' });
+		expect(first?.text).toBe('the digits were rounded, not cut off: 2.820881, printed 2.8209');
+		const kinds = diagnosisOf({ ...rounded, printed: '2.8211' }).map(({ kind }) => kind);
+		expect(kinds).not.toContain('truncated');
+	});
+
 	it('combines truncation with another quantity, and says so', () => {
 		const found = diagnosisOf({ printed: '0.2514', between: I3322, others: [ALMOST] });
 		expect(found[0]).toMatchObject({ kind: 'other-quantity', truncated: true, value: '0.2514' });

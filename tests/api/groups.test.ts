@@ -73,6 +73,9 @@ describe('joining links', () => {
 		const joined = await person.submit(link);
 		expect(joined.headers.get('location')).toBe(`/g/${group.slug}`);
 		expect((await person.get(`/g/${group.slug}/members`)).status).toBe(200);
+		// Used, it still leads those who are in the group to it, and nobody else.
+		expect((await person.get(link)).headers.get('location')).toBe(`/g/${group.slug}`);
+		expect((await group.owner.submit(link)).headers.get('location')).toBe(`/g/${group.slug}`);
 		const second = await newPerson(server);
 		expect((await second.get(link)).status).toBe(404);
 		expect((await second.submit(link)).status).toBe(404);

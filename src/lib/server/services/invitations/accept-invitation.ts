@@ -1,9 +1,9 @@
-import { and, eq } from 'drizzle-orm';
+import { eq } from 'drizzle-orm';
 import type { UserContext } from '../../context';
 import { invitations, memberships } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { recordAudit } from '../audit';
-import { findInvitation } from './find-invitation';
+import { findInvitation, findJoinedGroup } from './find-invitation';
 
 /**
  * Joins the group a link stands for. Someone who is in it already keeps their role, and the link
@@ -16,16 +16,13 @@ export async function acceptInvitation(
 	token: string
 ): Promise<{ readonly slug: string; readonly joined: boolean }> {
 	return ctx.db.write(async (tx) => {
+		const already = await findJoinedGroup(ctx, token, tx);
+		if (already) return { slug: already.slug, joined: false };
 		const invitation = await findInvitation(ctx, token, tx);
 		if (!invitation) {
 			throw new ServiceError('not-found', 'This link was used, revoked, or is older than 14 days.');
 		}
 		const { group, role } = invitation;
-		const [already] = await tx
-			.select()
-			.from(memberships)
-			.where(and(eq(memberships.groupId, group.id), eq(memberships.userId, ctx.actor.id)));
-		if (already) return { slug: group.slug, joined: false };
 		const at = ctx.now();
 		await tx
 			.insert(memberships)

@@ -1,8 +1,8 @@
 import { and, eq, gt, isNull } from 'drizzle-orm';
 import type { Role } from '../../../ledger/roles';
 import type { Reader } from '../../db/client';
-import type { Context } from '../../context';
-import { groups, invitations } from '../../db/schema';
+import type { Context, UserContext } from '../../context';
+import { groups, invitations, memberships } from '../../db/schema';
 import { hashToken } from '../../ids';
 
 export interface OpenInvitation {
@@ -33,5 +33,23 @@ export async function findInvitation(
 				gt(invitations.expiresAt, ctx.now())
 			)
 		);
+	return found ?? null;
+}
+
+/**
+ * The group of a link, also a used or old one, for someone who is in that group: to them it tells
+ * nothing new. Null for anybody else.
+ */
+export async function findJoinedGroup(
+	ctx: UserContext,
+	token: string,
+	reader: Reader = ctx.db.read
+): Promise<{ readonly slug: string } | null> {
+	const [found] = await reader
+		.select({ slug: groups.slug })
+		.from(invitations)
+		.innerJoin(groups, eq(groups.id, invitations.groupId))
+		.innerJoin(memberships, eq(memberships.groupId, groups.id))
+		.where(and(eq(invitations.tokenHash, hashToken(token)), eq(memberships.userId, ctx.actor.id)));
 	return found ?? null;
 }

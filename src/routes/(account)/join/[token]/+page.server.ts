@@ -1,18 +1,21 @@
 import { contextOf, requireUser } from '$lib/server/auth/guards';
 import { answering } from '$lib/server/http/page-errors';
 import { acceptInvitation } from '$lib/server/services/invitations/accept-invitation';
-import { findInvitation } from '$lib/server/services/invitations/find-invitation';
+import { findInvitation, findJoinedGroup } from '$lib/server/services/invitations/find-invitation';
 import { error, redirect } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
 
 /** Looking at a link does not use it up: mail programmes open links by themselves. */
 export const load: PageServerLoad = async (event) => {
+	const { actor } = event.locals;
+	const joined = actor && (await findJoinedGroup(requireUser(event), event.params.token));
+	if (joined) redirect(303, `/g/${joined.slug}`);
 	const invitation = await findInvitation(contextOf(event), event.params.token);
 	if (!invitation) error(404, 'This link was used, revoked, or is older than 14 days.');
 	return {
 		groupName: invitation.group.name,
 		role: invitation.role,
-		signedIn: event.locals.actor !== null,
+		signedIn: actor !== null,
 		next: encodeURIComponent(event.url.pathname)
 	};
 };

@@ -147,7 +147,7 @@ export const MATRIX: readonly MatrixRow[] = [
 		publish: action('maintainer'),
 		unpublish: action('maintainer')
 	}),
-	...doors(claim, { supersede: action('member', 404) }, { fields: { by: '999' } }),
+	...doors(claim, { supersede: action('member', 400) }, { fields: { by: '999' } }),
 	...doors(claim, { cancel: action('observer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { recheck: action('observer', 404) }, { fields: { id: 'none' } }),
 

@@ -67,13 +67,21 @@ describe('is refused with its place and what to do', () => {
 		}
 	);
 
-	it.each(['two', '', 'NaN', '2,8284', '2.8.2', '1e9999', '__proto__', 'sqrt(', '<script>'])(
+	it.each(['two', 'NaN', '2,8284', '2.8.2', '1e9999', '__proto__', 'sqrt(', '<script>'])(
 		'the value %s',
 		async (printed) => {
 			const issue = await issueOf({ printed });
 			expect(issue).toMatchObject({ field: 'printed', position: expect.any(Number) });
 		}
 	);
+
+	it('an empty value or expression, which has no place to point at', async () => {
+		const { issues } = await refused(expression(' ', { printed: '' }));
+		expect(issues).toEqual([
+			{ field: 'expression', message: 'Write the inequality.' },
+			{ field: 'printed', message: 'Give the value as printed.' }
+		]);
+	});
 
 	it('BibTeX with an unbalanced brace', async () => {
 		const issue = await issueOf({

@@ -8,10 +8,13 @@ import type { Actions, PageServerLoad } from './$types';
 /** Looking at a link does not use it up: mail programmes open links by themselves. */
 export const load: PageServerLoad = async (event) => {
 	const { actor } = event.locals;
-	const joined = actor && (await findJoinedGroup(requireUser(event), event.params.token));
-	if (joined) redirect(303, `/g/${joined.slug}`);
 	const invitation = await findInvitation(contextOf(event), event.params.token);
-	if (!invitation) error(404, 'This link was used, revoked, or is older than 14 days.');
+	if (!invitation) {
+		// A used link still leads those who are in the group to it.
+		const joined = actor && (await findJoinedGroup(requireUser(event), event.params.token));
+		if (joined) redirect(303, `/g/${joined.slug}`);
+		error(404, 'This link was used, revoked, or is older than 14 days.');
+	}
 	return {
 		groupName: invitation.group.name,
 		role: invitation.role,

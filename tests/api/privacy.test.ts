@@ -73,7 +73,7 @@ describe('a private claim', () => {
 		expect((await bounds()).rows).toEqual([]);
 	});
 
-	it('on an inequality with a public claim does not show there', async () => {
+	it('on an inequality with a public claim does not show there, but what it proved does', async () => {
 		const open = await enteredBy(world.as.member, claimFields());
 		await publishClaim(world.as.maintainer, open.number);
 		const hidden = await enteredBy(
@@ -86,15 +86,34 @@ describe('a private claim', () => {
 				bibtex: bibtexOf(9)
 			})
 		);
-		const own = hidden.recomputations.find(({ label }) => label === 'NPA level 3');
 		const page = await showPublicInequality(world.anonymous, open.subject.inequalityId ?? '');
 		const row = (await bounds()).rows[0];
 		for (const shown of [page, row, await showPublicClaim(world.anonymous, open.id)]) {
-			expect(JSON.stringify(shown)).not.toMatch(/secret|part 9|jip\.9|2\.82842712"|level 3/);
+			expect(JSON.stringify(shown)).not.toMatch(/secret|part 9|jip\.9|2\.82842712"/);
+			expect(JSON.stringify(shown)).not.toContain(hidden.id);
 		}
 		expect(page.claims).toBe(1);
-		await expect(showRecomputation(world.anonymous, own?.id ?? '')).rejects.toMatchObject(notFound);
-		await expect(showRecomputation(world.outsider, own?.id ?? '')).rejects.toMatchObject(notFound);
+		// A checked maximum is a fact about the inequality, with a certificate that anyone may check.
+		const run = page.recomputations.find(({ label }) => label === 'NPA level 3');
+		const facts = await showRecomputation(world.anonymous, run?.id ?? '');
+		expect(JSON.stringify(facts)).not.toMatch(/secret|part 9|jip\.9|2\.82842712"/);
+		expect((await downloadResult(world.outsider, run?.id ?? '')).status).toBe('done');
+	});
+
+	it('keeps to itself a run that is no station of anything, such as a minimum', async () => {
+		const open = await enteredBy(world.as.member, claimFields());
+		await publishClaim(world.as.maintainer, open.number);
+		const hidden = await enteredBy(
+			world.as.member,
+			claimFields({ quantity: 'local', sense: 'min', printed: '-2' })
+		);
+		const page = await showPublicInequality(world.anonymous, open.subject.inequalityId ?? '');
+		expect(page.recomputations.map(({ label }) => label)).not.toContain(
+			'Deterministic strategies, minimum'
+		);
+		const id = hidden.recomputationId ?? '';
+		await expect(showRecomputation(world.anonymous, id)).rejects.toMatchObject(notFound);
+		await expect(showRecomputation(world.outsider, id)).rejects.toMatchObject(notFound);
 	});
 });
 

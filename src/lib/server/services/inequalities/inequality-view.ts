@@ -6,6 +6,7 @@ import { claims, recomputations } from '../../db/schema';
 import { typeset } from '../../math/typeset';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
 import { recomputationViews } from '../recomputations/recomputation-view';
+import { isSharedRun } from '../recomputations/shared-run';
 import { IDENTITY_TEXT, readMap } from './affine';
 import { inequalitySubject, type InequalityRecord } from './inequality-rows';
 import { chooseNormalisation, normalisationChoices } from './normalisations';
@@ -39,7 +40,7 @@ export async function inequalityView(
 		.where(and(onIt, isNotNull(claims.recomputationId)));
 	const runs = and(
 		eq(recomputations.inequalityId, row.id),
-		or(isNotNull(recomputations.station), inArray(recomputations.id, asked))
+		or(isSharedRun, inArray(recomputations.id, asked))
 	);
 	return {
 		id: row.id,

@@ -1,10 +1,11 @@
-import { and, eq, inArray, isNotNull, or, sql } from 'drizzle-orm';
+import { and, inArray, sql } from 'drizzle-orm';
 import { isAlmostQuantum } from '../../../ledger/problem-labels';
 import type { Rational } from '../../../nonlocality/exact/rational';
 import type { Level, Problem } from '../../../nonlocality/problem';
 import type { StationsView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { recomputations, type Station } from '../../db/schema';
+import { isSharedRun } from '../recomputations/shared-run';
 import {
 	mapSides,
 	showFigure,
@@ -50,12 +51,7 @@ export async function loadStations(
 			exact: recomputations.exact
 		})
 		.from(recomputations)
-		.where(
-			and(
-				inArray(recomputations.inequalityId, [...new Set(inequalityIds)]),
-				or(isNotNull(recomputations.station), and(eq(recomputations.checked, true), PLAIN_MAXIMUM))
-			)
-		);
+		.where(and(inArray(recomputations.inequalityId, [...new Set(inequalityIds)]), isSharedRun));
 	for (const { level, ...row } of rows) {
 		const key = row.inequalityId ?? '';
 		const read = level === null ? null : (JSON.parse(level) as Level);
@@ -63,10 +59,6 @@ export async function loadStations(
 	}
 	return byInequality;
 }
-
-/** A maximum of the functional alone: no minimum, no further constraints. */
-const PLAIN_MAXIMUM = sql`json_extract(${recomputations.problem}, '$.sense') = 'max'
-	and json_array_length(${recomputations.problem}, '$.constraints') = 0`;
 
 /** The larger of two bounds, of which one may not be known. */
 const larger = (a: Rational | null, b: Rational | null) =>

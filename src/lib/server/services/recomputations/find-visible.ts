@@ -1,19 +1,20 @@
-import { and, eq, isNotNull, or } from 'drizzle-orm';
+import { and, eq, or } from 'drizzle-orm';
 import type { Context } from '../../context';
 import { claims, memberships, recomputations } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { isPublicClaim } from '../inequalities/visibility';
+import { isSharedRun } from './shared-run';
 
 /**
  * Makes sure that the viewer may see a recomputation: one that a public claim asked for or that is
- * a station of an inequality with a public claim; for members also those of their groups' claims.
+ * belongs to an inequality with a public claim; for members also those of their groups' claims.
  * @throws ServiceError not-found otherwise, as if it did not exist
  */
 export async function requireVisible(ctx: Context, id: string): Promise<void> {
 	const { read } = ctx.db;
 	const related = or(
 		eq(claims.recomputationId, recomputations.id),
-		and(isNotNull(recomputations.station), eq(claims.inequalityId, recomputations.inequalityId))
+		and(isSharedRun, eq(claims.inequalityId, recomputations.inequalityId))
 	);
 	const open = await read
 		.select({ id: recomputations.id })

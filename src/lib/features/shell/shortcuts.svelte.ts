@@ -5,6 +5,8 @@ const KEY = 'merestone-single-keys';
 /** Whether single keys act as shortcuts; a person can switch them off (kept in this browser). */
 class Shortcuts {
 	on = $state(true);
+	/** Search fields on the page: without one the key does nothing and is not offered. */
+	searches = $state(0);
 
 	constructor() {
 		if (browser) this.on = localStorage.getItem(KEY) !== 'off';

@@ -54,6 +54,20 @@ describe('Rule', () => {
 		expect(texts).toContain('2.82842712');
 	});
 
+	it('shows an exact value as the fraction it is', () => {
+		// No-signalling 1/3 as of guess your neighbour's input (Almeida et al. 2010); the rest is made up.
+		const stations = makeStations({
+			local: '-1/6',
+			quantumLower: '0.25',
+			quantumUpper: '0.25',
+			almostQuantum: '0.25',
+			noSignalling: '1/3'
+		});
+		const labels = stationLabels(layOutRule(ruleInput({ stations })), stations);
+		expect(labels.map(({ figures }) => figures)).toEqual(['\u22121/6', '0.25', '1/3']);
+		expect(labels.at(-1)?.at).toBeGreaterThan(0.9);
+	});
+
 	it('never lays the label of one place on that of another', () => {
 		// A quantum block whose lower side is the local value: its long figures need a row of their own.
 		const wide = makeStations({

@@ -60,11 +60,22 @@ function anchorAt(x: number): StationLabel['anchor'] {
 const middleOf = (station: RuleStation) =>
 	station.key === 'local' ? station.to : (station.from + station.to) / 2;
 
-/** Under the quantum block stand the digits both its sides share, when those are enough. */
-function figuresOf({ key, figures }: RuleStation, { quantumLower, quantumUpper }: StationsView) {
-	return key === 'quantum'
-		? withMinusSign(shownBetween(quantumLower, quantumUpper) ?? '')
-		: figures;
+const SHOWN_AS = {
+	local: 'local',
+	'almost-quantum': 'almostQuantum',
+	'no-signalling': 'noSignalling'
+} as const;
+
+/**
+ * Under the quantum block stand the digits both its sides share, when those are enough; an exact
+ * value that is shown as a fraction, `1/3`, is one here too.
+ */
+function figuresOf({ key, figures }: RuleStation, view: StationsView) {
+	if (key === 'quantum') {
+		return withMinusSign(shownBetween(view.quantumLower, view.quantumUpper) ?? '');
+	}
+	const shown = view[SHOWN_AS[key]];
+	return shown?.includes('/') ? withMinusSign(shown) : figures;
 }
 
 /** Stations nearer than this have one value, up to a solver's last digits. */

@@ -196,17 +196,22 @@ export class InteriorPoint implements NewtonState {
 		return 0;
 	}
 
-	/**
-	 * Takes the rounding errors of the linear solve out of dX, so that a full step would meet the
-	 * equalities: near the end they are larger than X's smallest eigenvalues.
-	 */
-	projectDirection(direction: Direction): void {
+	/** c + <F, X + dX> + rows + equalities: what a full step would leave of the dual's equalities. */
+	residualsAfter(direction: Direction): Float64Array {
 		const { equalities, rows } = this.#programme;
 		const residuals = this.#dualResiduals();
 		addInnerProducts(this.#programme, direction.dx, 1, residuals);
 		addRows(rows, direction.rowMultipliers, 1, residuals);
 		addRows(equalities, direction.equalityMultipliers, 1, residuals);
-		this.#subtractAverages(direction.dx, residuals);
+		return residuals;
+	}
+
+	/**
+	 * Takes the rest of the rounding errors of the linear solve out of dX, so that a full step would
+	 * meet the equalities.
+	 */
+	projectDirection(direction: Direction): void {
+		this.#subtractAverages(direction.dx, this.residualsAfter(direction));
 	}
 
 	/** Moves X to the nearest matrix that meets the linear equalities. */

@@ -1,5 +1,5 @@
 import { factorCholesky, solveFactored } from '../linalg/cholesky';
-import { dot, multiply, symmetrise } from '../linalg/dense';
+import { addScaled, dot, multiply, symmetrise } from '../linalg/dense';
 import {
 	addInnerProducts,
 	addRows,
@@ -32,8 +32,22 @@ export interface Direction {
 	readonly equalityMultipliers: Float64Array;
 }
 
-/** Relative additions to the diagonal of the Schur complement, tried when it is not positive. */
-const REGULARISATIONS = [0, 1e-15, 1e-14, 1e-13];
+/**
+ * Additions to the diagonal of the Schur complement, tried when it is not positive: relative to each
+ * entry, then to the largest. The latter is the size of the rounding errors, under which entries
+ * that belong to moments free at the optimum vanish.
+ */
+const NO_ADDITION = { own: 0, largest: 0 };
+const ADDITIONS = [
+	NO_ADDITION,
+	{ own: 1e-15, largest: 0 },
+	{ own: 1e-14, largest: 0 },
+	{ own: 1e-13, largest: 0 },
+	{ own: 0, largest: 1e-16 },
+	{ own: 0, largest: 1e-15 },
+	{ own: 0, largest: 1e-14 },
+	{ own: 0, largest: 1e-13 }
+];
 const BORDER_REGULARISATIONS = [0, 1e-14, 1e-12, 1e-10];
 
 /**
@@ -51,6 +65,9 @@ export class NewtonSystem {
 	readonly #second: Float64Array;
 	readonly #poll: () => void;
 	#border: Border | null = null;
+	/** Place in ADDITIONS. */
+	#addition = 0;
+	#altered = false;
 
 	/** @param poll called at least every few milliseconds of work. */
 	constructor(programme: MomentProgramme, poll: () => void) {
@@ -67,17 +84,31 @@ export class NewtonSystem {
 	/** Builds and factorises; false when the matrix is singular to working precision. */
 	prepare(state: NewtonState): boolean {
 		const poll = this.#poll;
-		const m = this.#programme.unknowns;
 		const weights = state.rowMultipliers.map((z, j) => z / (state.rowSlack[j] ?? 1));
 		this.#schur.build(state.x, state.w, weights, this.#matrix, poll);
 		this.#keepCopy();
-		for (const relative of REGULARISATIONS) {
-			if (relative > 0) this.#restore(relative);
-			if (factorCholesky(this.#matrix, m, poll)) {
+		this.#altered = false;
+		return this.#factorise();
+	}
+
+	/** Factorises again, with a larger addition to the diagonal; false when there is none left. */
+	regularise(): boolean {
+		this.#addition++;
+		return this.#factorise();
+	}
+
+	/** Tries the additions from the one in use: the conditioning only worsens towards the optimum. */
+	#factorise(): boolean {
+		for (; this.#addition < ADDITIONS.length; this.#addition++) {
+			const { own, largest } = ADDITIONS[this.#addition] ?? NO_ADDITION;
+			if (this.#altered || this.#addition > 0) this.#restore(own, largest);
+			this.#altered = true;
+			if (factorCholesky(this.#matrix, this.#programme.unknowns, this.#poll)) {
 				this.#border = this.#makeBorder();
 				return this.#border !== null;
 			}
 		}
+		this.#addition = ADDITIONS.length - 1;
 		return false;
 	}
 
@@ -94,11 +125,12 @@ export class NewtonSystem {
 		for (let i = 0; i < m; i++) this.#diagonal[i] = this.#matrix[i * m + i] ?? 0;
 	}
 
-	#restore(relative: number): void {
+	#restore(own: number, largest: number): void {
 		const m = this.#programme.unknowns;
+		const added = largest * this.#diagonal.reduce((a, value) => Math.max(a, value), 0);
 		for (let i = 0; i < m; i++) {
 			for (let j = 0; j < i; j++) this.#matrix[i * m + j] = this.#matrix[j * m + i] ?? 0;
-			this.#matrix[i * m + i] = (this.#diagonal[i] ?? 0) * (1 + relative);
+			this.#matrix[i * m + i] = (this.#diagonal[i] ?? 0) * (1 + own) + added;
 		}
 	}
 
@@ -177,6 +209,30 @@ export class NewtonSystem {
 			}),
 			equalityMultipliers
 		};
+	}
+
+	/**
+	 * One step of iterative refinement on the linear equalities of the multiplier.
+	 * @param residuals c + <F, X + dX> + ..., what a full step along `direction` would leave.
+	 */
+	correct(state: NewtonState, direction: Direction, residuals: Float64Array): void {
+		const { size: n, rows, unknowns: m } = this.#programme;
+		const { dy, equalityMultipliers } = this.#solveLinear(residuals, new Float64Array(m + 1), m);
+		const ds = new Float64Array(n * n);
+		fillDirection(this.#programme, dy, ds);
+		multiply(state.x, ds, this.#first, n);
+		multiply(this.#first, state.w, this.#second, n);
+		symmetrise(this.#second, n);
+		addScaled(direction.dx, -1, this.#second);
+		addScaled(direction.equalityMultipliers, 1, equalityMultipliers);
+		addScaled(direction.dy, 1, dy);
+		addScaled(direction.ds, 1, ds);
+		rows.forEach((row, j) => {
+			const weight = (state.rowMultipliers[j] ?? 0) / (state.rowSlack[j] ?? 1);
+			const change = evaluateRow(row, dy);
+			direction.rowMultipliers[j] = (direction.rowMultipliers[j] ?? 0) - weight * change;
+			direction.rowSlack[j] = (direction.rowSlack[j] ?? 0) + change;
+		});
 	}
 
 	/** Solves the bordered system, with one step of iterative refinement on M. */

@@ -1,3 +1,4 @@
+import { largestMagnitude } from '../linalg/dense';
 import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
 import { NewtonSystem, type Direction } from './newton-system';
@@ -28,6 +29,14 @@ const MOST_CORRECTIONS = 2;
 const LONG_STEPS = 0.95;
 /** ... and the product of the two steps grows by this factor. */
 const WORTHWHILE = 1.02;
+
+/** Residual of a direction, relative to the complementarity, at which it is refined no further ... */
+const ENOUGH_ACCURACY = 1e-4;
+/** ... and one above which the linear system is regularised and solved again. */
+const TOLERABLE_ERROR = 0.03;
+const MOST_REFINEMENTS = 3;
+/** A refinement that leaves more than this share of the error has met the rounding errors. */
+const WORTHWHILE_REFINEMENT = 0.5;
 
 /**
  * Primal-dual interior-point method: the HKM direction with Mehrotra's predictor and corrector (the
@@ -71,6 +80,22 @@ export class SemidefiniteSolver {
 	#advance(): boolean {
 		const point = this.#point;
 		if (!this.#newton.prepare(point)) return false;
+		const tolerable = TOLERABLE_ERROR * point.complementarity();
+		let { direction, error } = this.#direction();
+		while (!(error <= tolerable) && this.#newton.regularise()) {
+			const next = this.#direction();
+			if (next.error < error || Number.isNaN(error)) ({ direction, error } = next);
+		}
+		point.projectDirection(direction);
+		const steps = this.#steps(direction);
+		const movedX = point.moveMultiplier(direction, steps.multiplier);
+		const movedY = point.moveMoments(direction, steps.moments);
+		return movedX > SMALLEST_STEP || movedY > SMALLEST_STEP;
+	}
+
+	/** The corrected direction, and what it leaves of the multiplier's linear equalities. */
+	#direction(): { direction: Direction; error: number } {
+		const point = this.#point;
 		const predictor = this.#newton.solve(point, 0, null);
 		const target = this.#centring(predictor) * point.complementarity();
 		let direction = this.#newton.solve(point, target, predictor);
@@ -82,11 +107,27 @@ export class SemidefiniteSolver {
 			direction = next;
 			steps = nextSteps;
 		}
-		point.projectDirection(direction);
-		steps = this.#steps(direction);
-		const movedX = point.moveMultiplier(direction, steps.multiplier);
-		const movedY = point.moveMoments(direction, steps.moments);
-		return movedX > SMALLEST_STEP || movedY > SMALLEST_STEP;
+		return { direction, error: this.#refine(direction) };
+	}
+
+	/**
+	 * Brings the errors of dX well below X's smallest eigenvalues, which are about as large as the
+	 * complementarity. Projection alone would spread them over all of X, and where the optimal
+	 * moments are not unique they would end the method early.
+	 * @returns the largest residual left; NaN after a useless factorisation.
+	 */
+	#refine(direction: Direction): number {
+		const point = this.#point;
+		const enough = ENOUGH_ACCURACY * point.complementarity();
+		let before = Infinity;
+		for (let step = 0; ; step++) {
+			const residuals = point.residualsAfter(direction);
+			const error = largestMagnitude(residuals.subarray(1));
+			if (error <= enough || step === MOST_REFINEMENTS) return error;
+			if (!(error <= WORTHWHILE_REFINEMENT * before)) return error;
+			before = error;
+			this.#newton.correct(point, direction, residuals);
+		}
 	}
 
 	/** Mehrotra's choice: little centring when the predictor gets far by itself. */

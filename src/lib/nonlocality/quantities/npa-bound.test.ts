@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import degenerate from '../../../../tests/vectors/degenerate-moment-problems.json';
 import vectors from '../../../../tests/vectors/vectors.json';
 import { PATIENT, npaProblem } from '../../../../tests/factories/npa-problem';
 import { checkMomentCertificate } from '../certificates/check-moments';
@@ -286,17 +287,39 @@ const anyFunctional: fc.Arbitrary<Functional> = fc
 			.map((terms) => makeFunctional({ outputs }, terms));
 	});
 
+/**
+ * Relative to max(1, |value|). Nearly all random functionals end below 1e-9. Where the optimal
+ * moments are far from unique, the linear system of the last iterations loses them to rounding: of
+ * 20,000 random ones of two parties two ended between 1e-8 and 1.3e-8, of 2,700 of three parties
+ * one at 7e-8 (85 rows, 216 of them probabilities).
+ */
+const ANY_GAP = 1e-7;
+/** For those that once ended between 1e-8 and 2e-6, and now do as well as others. */
+const DEGENERATE_GAP = 1e-8;
+
 test('any functional: both sides are checked and close', () => {
 	const level = fc.constantFrom<Level>({ perParty: 1 }, 2);
 	fc.assert(
 		fc.property(anyFunctional, level, fc.boolean(), (functional, chosen, nonNegative) => {
 			const { lower, upper } = solveChecked(npaProblem(functional, chosen, { nonNegative }));
 			expect(lower).toBeLessThanOrEqual(upper);
-			expect(upper - lower).toBeLessThan(GAP);
+			expect(upper - lower).toBeLessThan(ANY_GAP * Math.max(1, Math.abs(upper)));
 		}),
 		{ numRuns: 40 }
 	);
 }, 60_000);
+
+describe('optimal moments that are not unique', () => {
+	// Found among 25,000 random problems as those whose bounds did not close. A JSON module's types
+	// are wider than the format's.
+	const cases = degenerate as unknown as readonly Partial<ProblemOf<'npa'>>[];
+	test.each(cases.map((found, at) => [at, found] as const))('case %i', (_, found) => {
+		const problem = npaProblem({ name: 'chsh' }, found.level ?? 2, found);
+		const { lower, upper } = solveChecked(problem);
+		expect(lower).toBeLessThanOrEqual(upper);
+		expect(upper - lower).toBeLessThan(DEGENERATE_GAP * Math.max(1, Math.abs(upper)));
+	});
+});
 
 describe('what is refused', () => {
 	const solve = (problem: ProblemOf<'npa'>, control = PATIENT) =>

@@ -76,4 +76,27 @@ describe('stations', () => {
 		expect(verdict.reason).toContain('ask for level 2, or one operator per party');
 		expect(stations).toMatchObject({ local: '0.25', noSignalling: '1/3' });
 	});
+
+	it('judge a later claim at once, after it was entered', async () => {
+		await enterClaim(world.as.member, claimFields());
+		await world.recompute();
+		const later = claimFields({ printed: '2.9', bibtex: bibtexOf(2) });
+		const { number } = await enterClaim(world.as.member, later);
+		const { history } = await showClaim(world.as.member, number);
+		expect(history.map(({ text }) => text)).toEqual(['Recomputed: Discrepancy', 'Entered']);
+	});
+});
+
+describe('a reading', () => {
+	it('names the bound written behind an expression and keeps it out of the functional', async () => {
+		const expression = 'A1 B1 + A1 B2 + A2 B1 - A2 B2';
+		const typed = { subjectKind: 'expression', printed: '' } as const;
+		const alone = await readClaim(world.as.member, claimFields({ ...typed, expression }));
+		const bounded = await readClaim(
+			world.as.member,
+			claimFields({ ...typed, expression: `${expression} \\leq 2` })
+		);
+		expect(bounded.besideIt).toBe('≤ 2');
+		expect({ ...bounded, besideIt: null }).toEqual(alone);
+	});
 });

@@ -76,7 +76,7 @@ export async function enterClaim(
 			after: asks
 		});
 		// The inequality may have been recomputed for another claim: the verdict is then there at once.
-		await deriveClaim(tx, id, now);
+		await deriveClaim(tx, id, ctx.now());
 		return taken;
 	});
 	announceQueued();

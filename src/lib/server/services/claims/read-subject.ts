@@ -84,7 +84,7 @@ function readExpression(input: ClaimInput): SubjectReading {
 	}
 	const given = input.outputs.trim() ? readOutputs(input.outputs) : undefined;
 	if (given && 'field' in given) return noSubject(given);
-	const { functional, indexBase, chosen } = parseExpression(input.expression, {
+	const { functional, indexBase, chosen, claimedBound } = parseExpression(input.expression, {
 		indexBase: input.indexBase === 'read' ? 'read' : input.indexBase === '1' ? 1 : 0,
 		...(given ? { outputs: given } : {})
 	});
@@ -96,6 +96,7 @@ function readExpression(input: ClaimInput): SubjectReading {
 		family: null,
 		inequalityId: null,
 		indexBase: indexBase === null ? null : { base: indexBase, chosen },
+		besideIt: claimedBound && `${RELATION_SIGN[claimedBound.relation]} ${claimedBound.text}`,
 		otherBase: indexBase === null ? null : readWithOtherBase(input.expression, indexBase, given)
 	});
 }
@@ -117,6 +118,8 @@ function readWithOtherBase(
 		throw error;
 	}
 }
+
+const RELATION_SIGN = { '<=': '≤', '>=': '≥', '=': '=' } as const;
 
 const CONSTANT = 'This is the same number for every behaviour: everything else cancels.';
 

@@ -12,6 +12,8 @@ export interface ReadSubject {
 	/** Set when the subject was picked among the known ones. */
 	readonly inequalityId: string | null;
 	readonly indexBase: { readonly base: 0 | 1; readonly chosen: boolean } | null;
+	/** `<= 2` written behind the expression: a bound the paper claims, no part of the functional. */
+	readonly besideIt?: string | null;
 	/** The expression with its inputs counted from the other number, where its values may differ. */
 	readonly otherBase?: Functional | null;
 }

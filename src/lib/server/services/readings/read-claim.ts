@@ -35,6 +35,7 @@ export async function readClaim(
 		latex: subject?.latex ?? null,
 		scenario: functional && scenarioSentence(functional.scenario.outputs),
 		indexBase: subject?.indexBase ?? null,
+		besideIt: subject?.besideIt ?? null,
 		knownAs: known?.knownAs ?? null,
 		stations: known?.stations ?? null,
 		value: stated?.text ?? null,

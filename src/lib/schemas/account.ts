@@ -40,8 +40,6 @@ export const signInInput = z.object({
 	password: anyPassword,
 	next
 });
-export type SignInInput = z.infer<typeof signInInput>;
-
 export const signUpInput = z
 	.object({
 		name: oneLine(100, 'Give your name, as the others in a group should read it'),
@@ -54,8 +52,6 @@ export const signUpInput = z
 		if (message)
 			issues.push({ code: 'custom', input: value.password, path: ['password'], message });
 	});
-export type SignUpInput = z.infer<typeof signUpInput>;
-
 export const changePasswordInput = z.object({
 	current: anyPassword,
 	password: z.string().max(1_024, `Use at most ${PASSWORD_LENGTH.max} characters`)

@@ -20,8 +20,6 @@ export const startGroupInput = z.object({
 	slug: groupSlug.or(z.literal('')).default(''),
 	description: z.string().trim().max(300, 'At most 300 characters').default('')
 });
-export type StartGroupInput = z.infer<typeof startGroupInput>;
-
 /** `Café Nine, reading group` -> `cafe-nine-reading-group`; empty when nothing is left of it. */
 export function slugFromName(name: string): string {
 	return name

@@ -1,4 +1,4 @@
-import { numeratorOf, ratio, toDoubleDown, toDoubleUp, type Rational } from '../exact/rational';
+import { ratio, toDoubleDown, toDoubleUp } from '../exact/rational';
 
 /**
  * Reals as integers times 2^-1074: every finite double is one exactly, so sums of doubles are exact
@@ -23,14 +23,6 @@ export function scaleDouble(value: number): bigint {
 export function floorDivide(a: bigint, b: bigint): bigint {
 	const quotient = a / b;
 	return a % b < 0n ? quotient - 1n : quotient;
-}
-
-export function scaleRationalDown(value: Rational): bigint {
-	return floorDivide(numeratorOf(value) << SCALE_BITS, value.d);
-}
-
-export function scaleRationalUp(value: Rational): bigint {
-	return -floorDivide(-(numeratorOf(value) << SCALE_BITS), value.d);
 }
 
 /** The largest double not above / the smallest not below a scaled integer. */

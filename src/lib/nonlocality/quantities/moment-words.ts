@@ -92,10 +92,6 @@ export function momentKey(word: Word): string {
 	return reversed < key ? reversed : key;
 }
 
-export function wordLength(word: Word): number {
-	return word.reduce((sum, letters) => sum + letters.length, 0);
-}
-
 /** All reduced strings of exactly `length` letters of one party. */
 export function reducedStrings(alphabet: Alphabet, party: number, length: number): number[][] {
 	const inputs = alphabet.inputs[party] ?? [];

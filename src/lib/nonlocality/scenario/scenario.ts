@@ -13,18 +13,9 @@ export function partyCount(scenario: Scenario): number {
 	return scenario.outputs.length;
 }
 
-export function inputCount(scenario: Scenario, party: number): number {
-	return scenario.outputs[party]?.length ?? 0;
-}
-
 /** Number of outputs of a measurement. @throws RangeError when there is no such measurement. */
 export function outputCount(scenario: Scenario, party: number, input: number): number {
 	const count = scenario.outputs[party]?.[input];
 	if (count === undefined) throw new RangeError(`party ${party} has no input ${input}`);
 	return count;
-}
-
-/** Number of deterministic strategies of one party (a double; exact below 2^53). */
-export function strategyCount(scenario: Scenario, party: number): number {
-	return (scenario.outputs[party] ?? []).reduce((product, count) => product * count, 1);
 }

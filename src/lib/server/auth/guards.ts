@@ -57,10 +57,3 @@ export async function requireRole(
 	}
 	return found;
 }
-
-/** For the operator's pages: someone without that right is told that there is nothing. */
-export function requireAdmin(event: RequestEvent): UserContext {
-	const ctx = requireUser(event);
-	if (!ctx.actor.isAdmin) error(404, 'There is nothing here.');
-	return ctx;
-}

@@ -5,7 +5,7 @@ import { claims, inequalities, recomputations, references } from '../../db/schem
 import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
-import { subjectView } from '../inequalities/subject-view';
+import { claimSubject } from '../inequalities/subject-view';
 import { isOnRule } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
@@ -54,14 +54,7 @@ export async function claimRows(
 		rows.push({
 			id: claim.id,
 			number: claim.number,
-			subject: subjectView({
-				inequalityId: claim.inequalityId,
-				name: inequality?.name ?? null,
-				nameLatex: inequality?.nameLatex ?? null,
-				text: claim.subject,
-				latex: claim.subjectLatex,
-				scenario: inequality?.scenario ?? null
-			}),
+			subject: claimSubject(claim, inequality),
 			quantityLabel: claim.quantityLabel,
 			relation: claim.relation,
 			printed: claim.printed,

@@ -6,7 +6,7 @@ import { ServiceError } from '../../errors';
 import { printedHtml } from '../../math/printed-html';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
-import { subjectView } from '../inequalities/subject-view';
+import { claimSubject } from '../inequalities/subject-view';
 import { isOnRule, quantityInfo } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
@@ -58,14 +58,7 @@ export async function claimView(
 		version: claim.version,
 		groupSlug: joined.group.slug,
 		groupName: joined.group.name,
-		subject: subjectView({
-			inequalityId: claim.inequalityId,
-			name: inequality?.name ?? null,
-			nameLatex: inequality?.nameLatex ?? null,
-			text: claim.subject,
-			latex: claim.subjectLatex,
-			scenario: inequality?.scenario ?? null
-		}),
+		subject: claimSubject(claim, inequality),
 		map: mapOf(claim, inequality?.name ?? null),
 		quantity: claim.quantity,
 		quantityLabel: claim.quantityLabel,

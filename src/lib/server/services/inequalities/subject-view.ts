@@ -1,4 +1,5 @@
 import type { SubjectView } from '../../../schemas/views';
+import type { claims, inequalities } from '../../db/schema';
 import { typeset } from '../../math/typeset';
 
 export interface SubjectParts {
@@ -22,4 +23,19 @@ export function subjectView(parts: SubjectParts): SubjectView {
 		latex,
 		scenario: parts.scenario ?? ''
 	};
+}
+
+type ClaimOnIt = Pick<typeof claims.$inferSelect, 'inequalityId' | 'subject' | 'subjectLatex'>;
+type NamedInequality = Pick<typeof inequalities.$inferSelect, 'name' | 'nameLatex' | 'scenario'>;
+
+/** The subject of a claim: the inequality's name where it has one, else what was entered. */
+export function claimSubject(claim: ClaimOnIt, inequality: NamedInequality | null): SubjectView {
+	return subjectView({
+		inequalityId: claim.inequalityId,
+		name: inequality?.name ?? null,
+		nameLatex: inequality?.nameLatex ?? null,
+		text: claim.subject,
+		latex: claim.subjectLatex,
+		scenario: inequality?.scenario ?? null
+	});
 }

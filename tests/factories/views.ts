@@ -57,6 +57,8 @@ export function makeLedgerRow(over: Partial<LedgerRow> = {}): LedgerRow {
 		verdict: makeVerdict(),
 		recomputedBy: 'NPA level 1, see-saw d=2',
 		stations: makeStations(),
+		task: null,
+		wantsTask: false,
 		progress: null,
 		reference: {
 			id: 'r1',

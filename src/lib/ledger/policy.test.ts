@@ -27,7 +27,22 @@ const TABLE: Readonly<Record<Action, readonly [own: string, others: string]>> = 
 	'change-role': [OWNER, OWNER],
 	'remove-member': [OBSERVER_UP, OWNER],
 	'change-settings': [MAINTAINER_UP, MAINTAINER_UP],
-	'delete-group': [OWNER, OWNER]
+	'change-address': [OWNER, OWNER],
+	'transfer-ownership': [OWNER, OWNER],
+	'delete-group': [OWNER, OWNER],
+	'open-task': [MAINTAINER_UP, MAINTAINER_UP],
+	'edit-task': [MAINTAINER_UP, MAINTAINER_UP],
+	'cancel-task': [MAINTAINER_UP, MAINTAINER_UP],
+	'take-task': [MEMBER_UP, MEMBER_UP],
+	'work-on-task': [MEMBER_UP, NOBODY],
+	'release-task': [MEMBER_UP, MAINTAINER_UP],
+	'decide-task': [NOBODY, MAINTAINER_UP],
+	'confirm-transcription': [NOBODY, MEMBER_UP],
+	'attach-notice': [MEMBER_UP, MAINTAINER_UP],
+	'handle-author-message': [MAINTAINER_UP, MAINTAINER_UP],
+	comment: [MEMBER_UP, MEMBER_UP],
+	'edit-comment': [MEMBER_UP, NOBODY],
+	'remove-comment': [MEMBER_UP, MAINTAINER_UP]
 };
 
 const allowed = (action: Action, facts: PolicyFacts) =>

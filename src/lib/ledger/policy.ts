@@ -20,22 +20,40 @@ export const ACTIONS = [
 	'change-role',
 	'remove-member',
 	'change-settings',
-	'delete-group'
+	'change-address',
+	'transfer-ownership',
+	'delete-group',
+	'open-task',
+	'edit-task',
+	'cancel-task',
+	'take-task',
+	'work-on-task',
+	'release-task',
+	'decide-task',
+	'confirm-transcription',
+	'attach-notice',
+	'handle-author-message',
+	'comment',
+	'edit-comment',
+	'remove-comment'
 ] as const;
 export type Action = (typeof ACTIONS)[number];
 
 export interface PolicyFacts {
-	/** The claim (or reference, recomputation, invitation, membership) is the person's own. */
+	/**
+	 * The claim (or reference, recomputation, invitation, membership, comment, submission) is the
+	 * person's own; a task is its assignee's.
+	 */
 	readonly own?: boolean;
 	/** The role an invitation gives. */
 	readonly invited?: Role;
 }
 
 interface Rule {
-	/** From this role on, whoever made it. */
-	readonly any: Role;
-	/** From this role on, when it is the person's own. */
-	readonly own?: Role;
+	/** From this role on, whoever made it; null: nobody but the one whose it is. */
+	readonly any: Role | null;
+	/** From this role on, when it is the person's own; null: not even then. */
+	readonly own?: Role | null;
 }
 
 /** People's own rules stand in group-policy.ts. */
@@ -55,7 +73,23 @@ const RULES: Readonly<Record<Exclude<Action, PeopleAction>, Rule>> = {
 	'add-reference': { any: 'member' },
 	'edit-reference': { any: 'maintainer', own: 'member' },
 	'change-settings': { any: 'maintainer' },
-	'delete-group': { any: 'owner' }
+	'change-address': { any: 'owner' },
+	'transfer-ownership': { any: 'owner' },
+	'delete-group': { any: 'owner' },
+	'open-task': { any: 'maintainer' },
+	'edit-task': { any: 'maintainer' },
+	'cancel-task': { any: 'maintainer' },
+	'take-task': { any: 'member' },
+	'work-on-task': { any: null, own: 'member' },
+	'release-task': { any: 'maintainer', own: 'member' },
+	// Nobody accepts their own submission, and a second person compares a claim with its paper.
+	'decide-task': { any: 'maintainer', own: null },
+	'confirm-transcription': { any: 'member', own: null },
+	'attach-notice': { any: 'maintainer', own: 'member' },
+	'handle-author-message': { any: 'maintainer' },
+	comment: { any: 'member' },
+	'edit-comment': { any: null, own: 'member' },
+	'remove-comment': { any: 'maintainer', own: 'member' }
 };
 
 /** Whether a person of this role (null: not in the group) may do this. */
@@ -76,7 +110,8 @@ export function may(
 			return mayChangeRoles(role) || facts.own === true;
 		default: {
 			const { any, own } = RULES[action];
-			return hasRole(role, any) || (own !== undefined && facts.own === true && hasRole(role, own));
+			const needed = facts.own === true && own !== undefined ? own : any;
+			return needed !== null && hasRole(role, needed);
 		}
 	}
 }

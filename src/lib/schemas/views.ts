@@ -6,6 +6,7 @@ import type { ClaimState, Relation, VerdictStatus, Visibility } from '../ledger/
 import type { Role } from '../ledger/roles';
 import type { Verdict } from '../ledger/verdict';
 import type { ClaimInput } from './claim-input';
+import type { TaskMark } from './task-views';
 import type { FieldIssueView } from './field-issue';
 
 /**
@@ -71,6 +72,10 @@ export interface LedgerRow {
 	readonly reference: ReferenceLine;
 	readonly state: ClaimState;
 	readonly visibility: Visibility;
+	/** The task that waits on it and was changed last; null on public pages and without any. */
+	readonly task: TaskMark | null;
+	/** Machines do not settle it and no task is under way: one should be opened. */
+	readonly wantsTask: boolean;
 }
 
 export interface StatusCounts extends Readonly<Record<VerdictStatus, number>> {

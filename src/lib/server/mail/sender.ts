@@ -87,8 +87,9 @@ async function mark(db: Database, id: string, values: Partial<typeof outbox.$inf
 /** From the verdict as it stands now; null when there is nothing to tell that person any more. */
 async function render(
 	{ db, origin }: SenderOptions,
-	row: { claimId: string; userId: string; name: string }
+	row: { claimId: string | null; userId: string | null; name: string }
 ): Promise<RenderedMail | null> {
+	if (row.claimId === null || row.userId === null) return null;
 	const [found] = await db.read
 		.select({
 			claim: claims,

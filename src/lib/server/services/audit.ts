@@ -9,6 +9,8 @@ export interface AuditEntry {
 	readonly entity: string;
 	readonly entityId: string;
 	readonly groupId?: string | null;
+	/** The claim it concerns, where that is not the entity itself: a task or comment on it. */
+	readonly claimId?: string;
 	readonly before?: unknown;
 	readonly after?: unknown;
 }
@@ -26,6 +28,7 @@ export async function recordAudit(
 		action: entry.action,
 		entity: entry.entity,
 		entityId: entry.entityId,
+		claimId: entry.claimId ?? (entry.entity === 'claim' ? entry.entityId : null),
 		before: entry.before ?? null,
 		after: entry.after ?? null,
 		requestId: ctx.requestId,

@@ -14,6 +14,8 @@ export const audit = sqliteTable(
 		action: text('action').notNull(),
 		entity: text('entity').notNull(),
 		entityId: text('entity_id').notNull(),
+		/** The claim it concerns, also where the entity is a task or comment on it. */
+		claimId: text('claim_id'),
 		before: text('before', { mode: 'json' }).$type<unknown>(),
 		after: text('after', { mode: 'json' }).$type<unknown>(),
 		requestId: text('request_id').notNull(),
@@ -21,6 +23,7 @@ export const audit = sqliteTable(
 	},
 	(table) => [
 		index('audit_group').on(table.groupId, table.at),
+		index('audit_claim').on(table.claimId, table.at),
 		index('audit_entity').on(table.entity, table.entityId)
 	]
 );

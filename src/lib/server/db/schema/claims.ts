@@ -52,6 +52,9 @@ export const claims = sqliteTable(
 		visibility: text('visibility', { enum: VISIBILITIES }).notNull().default('group'),
 		publishedBy: text('published_by').references(() => users.id),
 		publishedAt: integer('published_at', { mode: 'timestamp_ms' }),
+		/** Who last compared it with the paper and found value, locator and inequality right, and which version. */
+		confirmedBy: text('confirmed_by').references(() => users.id),
+		confirmedVersion: integer('confirmed_version'),
 		/** Derived; never edited by hand. The whole of the latest verdict, and its parts for filters. */
 		verdict: text('verdict', { mode: 'json' }).$type<Verdict>().notNull(),
 		status: text('status', { enum: VERDICT_STATUSES }).notNull().default('open'),

@@ -9,10 +9,21 @@ export const groups = sqliteTable('groups', {
 	description: text('description').notNull().default(''),
 	/** The number the group's next claim gets. */
 	nextClaimNumber: integer('next_claim_number').notNull().default(1),
+	nextTaskNumber: integer('next_task_number').notNull().default(1),
+	/** Seconds a recomputation of the group may take; null: the operator's setting. */
+	budgetSeconds: integer('budget_seconds'),
 	createdBy: text('created_by')
 		.notNull()
 		.references(() => users.id),
 	createdAt: integer('created_at', { mode: 'timestamp_ms' }).notNull()
+});
+
+/** Addresses a group had before; they lead to where it is now. */
+export const formerSlugs = sqliteTable('former_slugs', {
+	slug: text('slug').primaryKey(),
+	groupId: text('group_id')
+		.notNull()
+		.references(() => groups.id, { onDelete: 'cascade' })
 });
 
 export const memberships = sqliteTable(
@@ -33,7 +44,7 @@ export const memberships = sqliteTable(
 	]
 );
 
-/** One-time joining links; only the token's hash is kept. */
+/** One-time joining links, given on or mailed; only the token's hash is kept. */
 export const invitations = sqliteTable(
 	'invitations',
 	{
@@ -43,6 +54,8 @@ export const invitations = sqliteTable(
 			.references(() => groups.id, { onDelete: 'cascade' }),
 		tokenHash: text('token_hash').notNull().unique(),
 		role: text('role', { enum: ROLES }).notNull(),
+		/** Where it was mailed to, in lower case; null for a link somebody passes on. */
+		email: text('email'),
 		createdBy: text('created_by')
 			.notNull()
 			.references(() => users.id),

@@ -65,7 +65,9 @@ export async function claimRows(
 			progress: run && progressView(run, map, now, ahead?.get(run.id)),
 			reference: { ...reference, locator: claim.locator },
 			state: claim.state,
-			visibility: claim.visibility
+			visibility: claim.visibility,
+			task: null,
+			wantsTask: false
 		});
 	}
 	return rows;

@@ -57,6 +57,8 @@ function publicRow(row: LedgerRow): LedgerRow {
 		progress: row.progress,
 		reference: row.reference,
 		state: row.state,
-		visibility: row.visibility
+		visibility: row.visibility,
+		task: null,
+		wantsTask: false
 	};
 }

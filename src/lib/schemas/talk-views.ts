@@ -1,0 +1,139 @@
+/** Comments, activity and what is new, as pages and the API get them. */
+import type { CommentSubject } from '../ledger/comments';
+import type { Delivery, NotificationKind } from '../ledger/notifications';
+import type { PersonView, TaskRow } from './task-views';
+import type { LedgerRow } from './views';
+
+export interface CommentView {
+	readonly id: string;
+	readonly author: PersonView;
+	/** Safe HTML made by the server. */
+	readonly html: string;
+	/** As typed, for editing; empty unless it is the viewer's. */
+	readonly body: string;
+	readonly at: string;
+	readonly editedAt: string | null;
+	/** Earlier texts, newest first, as safe HTML. */
+	readonly versions: readonly { readonly html: string; readonly until: string }[];
+	/** Who removed it; its text is gone then. */
+	readonly removedBy: string | null;
+	readonly mayEdit: boolean;
+	readonly mayRemove: boolean;
+	/** An edit now leaves no trace. */
+	readonly fresh: boolean;
+}
+
+export interface DiscussionView {
+	readonly subject: CommentSubject;
+	readonly subjectId: string;
+	/** Oldest first. */
+	readonly comments: readonly CommentView[];
+	readonly mayComment: boolean;
+	/** What can stand behind an `@`. */
+	readonly handles: readonly { readonly handle: string; readonly name: string }[];
+}
+
+export const ACTIVITY_KINDS = ['claims', 'tasks', 'talk', 'people', 'settings'] as const;
+export type ActivityKind = (typeof ACTIVITY_KINDS)[number];
+
+export interface ActivityEntry {
+	readonly id: string;
+	readonly at: string;
+	/** Null: the product itself. */
+	readonly who: string | null;
+	/** What happened, a sentence without its subject: `assigned task 4 to Wren Aldous`. */
+	readonly text: string;
+	/** Where it can be seen; null when it is gone. */
+	readonly href: string | null;
+	readonly kind: ActivityKind;
+	/** What changed, field by field, as text; empty where the sentence says it all. */
+	readonly changes: readonly {
+		readonly field: string;
+		readonly before: string;
+		readonly after: string;
+	}[];
+	readonly requestId: string;
+}
+
+export interface ActivityPage {
+	readonly entries: readonly ActivityEntry[];
+	readonly total: number;
+	readonly page: number;
+	readonly pageSize: number;
+	readonly people: readonly PersonView[];
+}
+
+export interface NotificationView {
+	readonly id: string;
+	readonly kind: NotificationKind;
+	readonly at: string;
+	readonly unread: boolean;
+	readonly groupName: string;
+	/** One sentence. */
+	readonly text: string;
+	readonly detail: string;
+	readonly href: string;
+}
+
+export interface NewsPage {
+	readonly items: readonly NotificationView[];
+	readonly unread: number;
+	readonly total: number;
+	readonly page: number;
+	readonly pageSize: number;
+}
+
+export interface NotificationChoice {
+	readonly kind: NotificationKind;
+	readonly label: string;
+	readonly delivery: Delivery;
+}
+
+/** A claim the viewer entered and what became of it. */
+export interface ChangedClaim {
+	readonly row: LedgerRow;
+	readonly groupSlug: string;
+	readonly groupName: string;
+	/** When its verdict changed last. */
+	readonly at: string;
+	/** The verdict before; null when it is the first. */
+	readonly before: string | null;
+}
+
+/** The home of a person. */
+export interface HomeView {
+	/** Active tasks of the viewer over all groups, soonest due first. */
+	readonly tasks: readonly TaskRow[];
+	/** Submissions that wait for the viewer's decision. */
+	readonly toDecide: readonly TaskRow[];
+	/** Newest first, of the last thirty days. */
+	readonly changed: readonly ChangedClaim[];
+	/** Standing discrepancies of the viewer's groups. */
+	readonly discrepancies: readonly {
+		readonly row: LedgerRow;
+		readonly groupSlug: string;
+		readonly groupName: string;
+	}[];
+	readonly unread: number;
+}
+
+/** A secret calendar address. */
+export interface CalendarFeedView {
+	readonly id: string;
+	/** Null: the person's own tasks. */
+	readonly groupName: string | null;
+	readonly address: string;
+	readonly createdAt: string;
+}
+
+/** A mail in the outbox, for the site's administrator. */
+export interface OutboxRow {
+	readonly id: string;
+	readonly kind: string;
+	readonly to: string;
+	readonly state: 'waiting' | 'sent' | 'dropped' | 'dead';
+	readonly attempts: number;
+	readonly lastError: string | null;
+	readonly createdAt: string;
+	readonly notBefore: string;
+}

@@ -40,6 +40,8 @@ export function inProcessRunner(db: Database, log: JobLog = silent): Runner {
 }
 
 export async function openServiceWorld(): Promise<ServiceWorld> {
+	// Tokens are derived from it.
+	process.env.MERESTONE_SECRET ??= 'a secret of the tests, of no use elsewhere';
 	const folder = mkdtempSync(join(tmpdir(), 'merestone-test-'));
 	const { db, close } = await openDatabase(`file:${join(folder, 'test.db')}`);
 	const anonymous: Context = { db, actor: null, requestId: 'test', now: () => new Date() };

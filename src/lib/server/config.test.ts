@@ -12,6 +12,7 @@ describe('readConfig', () => {
 			originGiven: false,
 			secure: false,
 			databaseUrl: 'file:data/merestone.db',
+			filesUrl: 'file:data/files',
 			smtpUrl: null,
 			demo: false,
 			budgetSeconds: 60
@@ -30,6 +31,8 @@ describe('readConfig', () => {
 		['ORIGIN', 'merestone', 'https://merestone.example'],
 		['ORIGIN', 'ftp://merestone.example', 'https://merestone.example'],
 		['DATABASE_URL', 'postgres://x', 'file:data/merestone.db'],
+		['FILES_URL', '/var/files', 'file:data/files'],
+		['FILES_URL', 's3://evidence', 'region'],
 		['SMTP_URL', 'http://mail.example', 'smtp://localhost:1025'],
 		['MERESTONE_MAIL_FROM', 'a@b.example\r\nBcc: c@d.example', 'sender'],
 		['MERESTONE_DEMO', 'yes', '1 or 0'],

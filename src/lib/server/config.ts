@@ -1,5 +1,7 @@
 import { existsSync } from 'node:fs';
+import { dirname, join } from 'node:path';
 import { z } from 'zod';
+import { readStoreUrl } from './storage/store-url';
 
 const switchOn = z
 	.enum(['0', '1', 'false', 'true'], { error: 'expected 1 or 0' })
@@ -25,6 +27,17 @@ const environment = z.object({
 		.string()
 		.regex(/^file:.+/, { error: 'expected a file, such as file:data/merestone.db' })
 		.default('file:data/merestone.db'),
+	/** Where uploaded files are kept; left out: the folder `files` beside the database. */
+	FILES_URL: z
+		.string()
+		.superRefine((text, context) => {
+			try {
+				readStoreUrl(text);
+			} catch (error) {
+				context.addIssue({ code: 'custom', message: error instanceof Error ? error.message : '' });
+			}
+		})
+		.optional(),
 	/** Left out: mail waits in the outbox. */
 	SMTP_URL: address('an address such as smtp://localhost:1025', ['smtp:', 'smtps:']).optional(),
 	MERESTONE_MAIL_FROM: z
@@ -71,6 +84,7 @@ export interface Config {
 	readonly originGiven: boolean;
 	readonly secure: boolean;
 	readonly databaseUrl: string;
+	readonly filesUrl: string;
 	readonly smtpUrl: string | null;
 	readonly mailFrom: string;
 	readonly secret: string;
@@ -106,6 +120,7 @@ export function readConfig(variables: Readonly<Record<string, string | undefined
 		originGiven: values.ORIGIN !== undefined,
 		secure: origin.startsWith('https:'),
 		databaseUrl: values.DATABASE_URL,
+		filesUrl: values.FILES_URL ?? filesBeside(values.DATABASE_URL),
 		smtpUrl: values.SMTP_URL ?? null,
 		mailFrom: values.MERESTONE_MAIL_FROM,
 		secret,
@@ -115,6 +130,10 @@ export function readConfig(variables: Readonly<Record<string, string | undefined
 		threads: values.MERESTONE_THREADS ?? null,
 		budgetSeconds: values.MERESTONE_BUDGET_SECONDS
 	};
+}
+
+function filesBeside(databaseUrl: string): string {
+	return `file:${join(dirname(databaseUrl.replace(/^file:(\/\/)?/, '')), 'files')}`;
 }
 
 /** The demo holds invented data only; anything else has to bring a secret of its own. */

@@ -6,6 +6,7 @@ import type { Database } from './db/client';
 import { setHeadersOfEveryAnswer } from './http/every-answer';
 import { startBackground } from './jobs';
 import { log } from './log';
+import { fileStore } from './storage/open-store';
 
 const PURGE_EVERY_MS = 3_600_000;
 
@@ -32,6 +33,7 @@ async function start(): Promise<void> {
 		log().warn('ORIGIN is plain http: cookies go without __Host- and Secure');
 	}
 	if (!smtpUrl && !demo) log().warn('SMTP_URL is not set: mail waits in the outbox');
+	await fileStore();
 	setHeadersOfEveryAnswer();
 	await startBackground();
 	await purge(db);

@@ -2,7 +2,7 @@ import { simpleParser } from 'mailparser';
 import { SMTPServer } from 'smtp-server';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { outbox } from '../../src/lib/server/db/schema';
-import { MAIL_WAIT_MS } from '../../src/lib/server/mail/queue-mail';
+import { MAIL_WAIT_MS } from '../../src/lib/server/services/notifications/verdict-notices';
 import { MOST_ATTEMPTS, retryDelay, sendDueMails } from '../../src/lib/server/mail/sender';
 import { startMailSink, type MailSink } from '../../src/lib/server/mail/sink';
 import { createSmtpTransport } from '../../src/lib/server/mail/transport';

@@ -3,13 +3,14 @@ import { mailWorthy, type Verdict } from '../../../ledger/verdict';
 import type { Transaction } from '../../db/client';
 import { claims, recomputations, verdicts } from '../../db/schema';
 import { newId } from '../../ids';
-import {
-	dropWaitingMails,
-	queueDiscrepancyMails,
-	releaseWaitingMails
-} from '../../mail/queue-mail';
 import { recordAudit } from '../audit';
 import { stationsDone } from '../inequalities/stations-view';
+import {
+	dropWaitingMails,
+	releaseWaitingMails,
+	tellDiscrepancy,
+	tellSettled
+} from '../notifications/verdict-notices';
 import { findingsCache, type FindingsOf } from './findings';
 import { judgeClaim, type JudgedClaim } from './judge-claim';
 
@@ -18,8 +19,8 @@ const product = (now: Date) => ({ actor: null, requestId: 'derived', now: () => 
 
 /**
  * Judges a claim again from all that is known now, in the transaction of whatever changed: stores
- * the verdict, its history when it changed for a reader, and the mail when it turned to a
- * discrepancy. The only place where a verdict is written.
+ * the verdict, its history when it changed for a reader, and tells people when it turned to a
+ * discrepancy or agrees after one. The only place where a verdict is written.
  */
 export async function deriveClaim(tx: Transaction, id: string, now: Date): Promise<void> {
 	const [claim] = await tx.select().from(claims).where(eq(claims.id, id));
@@ -97,10 +98,11 @@ async function derive(
 		});
 	}
 	if (!mailWorthy(verdict)) await dropWaitingMails(tx, claim.id);
-	else if (turned && claim.state === 'active') {
+	if (claim.state !== 'active') return;
+	if (turned) {
 		const done = claim.inequalityId === null || (await areStationsDone(tx, claim.inequalityId));
-		await queueDiscrepancyMails(tx, claim, verdictId, now, done);
-	}
+		await tellDiscrepancy(tx, claim, verdictId, now, done);
+	} else if (verdict.status === 'agreement') await tellSettled(tx, claim, verdictId, now);
 }
 
 /** What a reader would call a change: not that a run was queued or started, nor one more digit. */

@@ -1,5 +1,6 @@
-import { render, within } from '@testing-library/svelte';
+import { fireEvent, render, within } from '@testing-library/svelte';
 import { describe, expect, it } from 'vitest';
+import { makeTaskMark } from '../../../../tests/factories/task-views';
 import { makeLedgerRow, makeVerdict } from '../../../../tests/factories/views';
 import { parseLedgerQuery } from '../../schemas/ledger-query';
 import { ledgerHref, sortLink } from './ledger-url';
@@ -68,6 +69,74 @@ describe('LedgerTable', () => {
 			rows: [makeLedgerRow({ verdict: makeVerdict({ status: 'discrepancy' }) })]
 		});
 		expect(container.textContent).toContain('Discrepancy');
+	});
+});
+
+describe('tasks in the ledger', () => {
+	const tasks = { href: '/g/a/tasks', mayOpen: true };
+
+	it('have a column only where a group works', () => {
+		const rows = [makeLedgerRow({ task: makeTaskMark() })];
+		const shown = render(LedgerTable, { ...props, rows, tasks });
+		expect(shown.getByRole('columnheader', { name: 'Task' })).toBeTruthy();
+		shown.unmount();
+		const open = render(LedgerTable, { ...props, rows });
+		expect(open.queryByRole('columnheader', { name: 'Task' })).toBeNull();
+		expect(open.container.textContent).not.toContain('Mo Member');
+	});
+
+	it('are linked, and marked by word when overdue', () => {
+		const task = makeTaskMark({ dueOn: '2020-12-14', overdue: true, more: 2 });
+		const { getByRole, container } = render(LedgerTable, {
+			...props,
+			rows: [makeLedgerRow({ task })],
+			tasks
+		});
+		const link = getByRole('link', { name: /Task 4: Overdue since 14 Dec 2020, Mo Member/ });
+		expect(link.getAttribute('href')).toBe('/g/a/tasks/4');
+		expect(container.textContent).toContain('and 2 more');
+	});
+
+	it('are offered where a claim wants one, to those who open them', () => {
+		const rows = [makeLedgerRow({ number: 12, wantsTask: true })];
+		const maintainer = render(LedgerTable, { ...props, rows, tasks });
+		const offer = maintainer.getByRole('link', { name: 'Assign a task on claim 12' });
+		expect(offer.getAttribute('href')).toBe('/g/a/tasks/new?claims=12');
+		maintainer.unmount();
+		const member = render(LedgerTable, { ...props, rows, tasks: { ...tasks, mayOpen: false } });
+		expect(member.queryByRole('link', { name: /Assign a task/ })).toBeNull();
+		expect(member.queryByRole('checkbox')).toBeNull();
+	});
+});
+
+describe('selecting claims', () => {
+	const tasks = { href: '/g/a/tasks', mayOpen: true };
+	const rows = [3, 5, 8].map((number) => makeLedgerRow({ id: `c${number}`, number }));
+	const sent = (container: HTMLElement) => {
+		const form = container.querySelector('form');
+		return form ? new FormData(form).getAll('claims') : null;
+	};
+
+	it('sends the ticked numbers to where tasks are opened', async () => {
+		const { container, getByRole } = render(LedgerTable, { ...props, rows, tasks });
+		const form = container.querySelector('form');
+		expect(form?.getAttribute('action')).toBe('/g/a/tasks/new');
+		expect(form?.method).toBe('get');
+		await fireEvent.click(getByRole('checkbox', { name: 'Select claim 5' }));
+		await fireEvent.click(getByRole('checkbox', { name: 'Select claim 8' }));
+		expect(sent(container)).toEqual(['5', '8']);
+		expect(getByRole('status').textContent).toBe('2 selected');
+	});
+
+	it('ticks the page at once and clears it', async () => {
+		const { container, getByRole } = render(LedgerTable, { ...props, rows, tasks });
+		const all = getByRole('checkbox', { name: 'Select all claims on this page' });
+		await fireEvent.click(all);
+		expect(sent(container)).toEqual(['3', '5', '8']);
+		await fireEvent.click(getByRole('checkbox', { name: 'Select claim 3' }));
+		expect(all).toHaveProperty('indeterminate', true);
+		await fireEvent.click(getByRole('button', { name: 'Clear' }));
+		expect(sent(container)).toEqual([]);
 	});
 });
 

@@ -1,0 +1,67 @@
+import type { TaskKind, TaskState } from '../../ledger/tasks';
+import type { TaskMark } from '../../schemas/task-views';
+
+const MONTHS = 'Jan Feb Mar Apr May Jun Jul Aug Sep Oct Nov Dec'.split(' ');
+
+/** `14 Dec`; with its year when that is not this one. */
+export function dayWords(day: string, thisYear = new Date().getUTCFullYear()): string {
+	const [year, month, date] = day.split('-').map(Number);
+	const words = `${date ?? ''} ${MONTHS[(month ?? 1) - 1] ?? ''}`;
+	return year === thisYear ? words : `${words} ${year ?? ''}`;
+}
+
+/** What a ledger's row says of its task: `Due 14 Dec, I. Okafor`, `Unassigned`. */
+export function markWords(mark: TaskMark, thisYear?: number): string {
+	const { state, assignee } = mark;
+	if (state === 'submitted') return assignee ? `Submitted by ${assignee}` : 'Submitted';
+	if (state === 'returned') return assignee ? `Returned to ${assignee}` : 'Returned';
+	if (mark.dueOn) {
+		const due = mark.overdue ? 'Overdue since' : 'Due';
+		return `${due} ${dayWords(mark.dueOn, thisYear)}, ${assignee ?? 'unassigned'}`;
+	}
+	if (!assignee) return 'Unassigned';
+	return state === 'in-progress' ? `In progress, ${assignee}` : `Assigned to ${assignee}`;
+}
+
+/** What a task of this kind asks somebody to do, and what settles it. */
+export const KIND_HINTS: Readonly<Record<TaskKind, string>> = {
+	recompute: 'Find the value with another program or method, and say how.',
+	'check-derivation': 'Follow the paper’s derivation and say whether it gives what is printed.',
+	'find-code': 'Find the program the paper used, or what replaced it.',
+	'ask-authors': 'Ask the authors what the printed value means or how it was found.',
+	'confirm-transcription':
+		'Compare value, place and inequality with the paper. Somebody who did not enter the claim does it.',
+	other: 'Say in the instructions what is to be done.'
+};
+
+/** What happens next in each state, for whoever reads the page. */
+export function nextStep(state: TaskState, assignee: string | null): string {
+	const who = assignee ?? 'Nobody';
+	switch (state) {
+		case 'open':
+			return 'Any member can take it.';
+		case 'assigned':
+			return `${who} has it and has not begun.`;
+		case 'in-progress':
+			return `${who} works on it and submits what was found.`;
+		case 'submitted':
+			return 'A maintainer other than the one who submitted accepts it or returns it with a reason.';
+		case 'returned':
+			return assignee
+				? `${who} looks at it again and submits anew.`
+				: 'It came back and waits for somebody to take it.';
+		case 'accepted':
+			return 'Done. What was accepted counts for the claim’s verdict where machines leave it open.';
+		case 'cancelled':
+			return 'It was called off. Nothing is to be done.';
+	}
+}
+
+const UNITS = ['bytes', 'kB', 'MB'] as const;
+
+/** `812 bytes`, `1.3 MB` (powers of ten, as the limits are), with a thin space before the unit. */
+export function sizeWords(bytes: number): string {
+	const step = bytes < 1_000 ? 0 : bytes < 1_000_000 ? 1 : 2;
+	const amount = bytes / 1_000 ** step;
+	return `${step === 0 ? amount : amount.toFixed(1)}\u2009${UNITS[step] ?? ''}`;
+}

@@ -84,6 +84,13 @@ export const MATRIX: readonly MatrixRow[] = [
 	),
 	...doors('/references/[id]', { GET: same(404) }, { path: (w) => `/references/${w.referenceId}` }),
 
+	// What a standing address shows is in calendar.test.ts.
+	...doors(
+		'/calendar/[token].ics',
+		{ GET: same(404) },
+		{ path: () => '/calendar/none-of-anyone.ics' }
+	),
+
 	// Accounts.
 	...doors('/sign-in', { GET: signedIn(200, 303), default: signedIn(400, 303) }),
 	...doors('/sign-up', { GET: signedIn(200, 303), default: signedIn(400, 303) }),

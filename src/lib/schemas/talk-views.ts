@@ -121,8 +121,10 @@ export interface HomeView {
 export interface CalendarFeedView {
 	readonly id: string;
 	/** Null: the person's own tasks. */
+	readonly groupSlug: string | null;
 	readonly groupName: string | null;
-	readonly address: string;
+	/** Null: made under another secret of the server; it still works for whoever has it. */
+	readonly address: string | null;
 	readonly createdAt: string;
 }
 

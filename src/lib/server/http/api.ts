@@ -81,16 +81,20 @@ export function jsonWithEtag(
 	data: unknown,
 	answer: JsonAnswer = {}
 ): Response {
-	const text = JSON.stringify(data);
+	return textWithEtag(event, JSON.stringify(data), {
+		...answer,
+		headers: { 'Content-Type': 'application/json; charset=utf-8', ...answer.headers }
+	});
+}
+
+/** The same for a text of any kind; its `Content-Type` is among the headers. */
+export function textWithEtag(event: RequestEvent, text: string, answer: JsonAnswer): Response {
 	const etag = `"${createHash('sha256').update(text).digest('base64url').slice(0, 22)}"`;
 	const headers = { ...answer.headers, ETag: etag };
 	const known = event.request.headers.get('if-none-match') ?? '';
 	const same = known.split(',').some((tag) => tag.trim().replace(/^W\//, '') === etag);
 	if (same) return new Response(null, { status: 304, headers });
-	return new Response(text, {
-		status: answer.status ?? 200,
-		headers: { 'Content-Type': 'application/json; charset=utf-8', ...headers }
-	});
+	return new Response(text, { status: answer.status ?? 200, headers });
 }
 
 /** Answers of the framework itself under /api (no such route or method) as problem details too. */

@@ -10,7 +10,9 @@ const LIMITS = {
 	/** Entering, editing and recomputing: a paper with a long table is entered in an hour. */
 	change: rateLimit('change', 240, HOUR, 'claims entered, edited or recomputed in an hour'),
 	/** Of a visitor, at the API. */
-	anonymous: rateLimit('anonymous', 600, HOUR, 'requests in an hour')
+	anonymous: rateLimit('anonymous', 600, HOUR, 'requests in an hour'),
+	/** Of an address, at calendars: a group behind one address, whose programs ask every few minutes. */
+	calendar: rateLimit('calendar', 600, HOUR, 'requests in an hour')
 } as const;
 
 /**

@@ -7,7 +7,7 @@
  */
 const MOST: readonly { readonly what: RegExp; readonly count: number }[] = [
 	{ what: /\n/g, count: 1_500 },
-	{ what: /[*_~]+/g, count: 500 },
+	{ what: /\*+|_+|~+/g, count: 500 },
 	{ what: /[[\]]/g, count: 500 },
 	{ what: /</g, count: 500 },
 	{ what: /`+/g, count: 500 },

@@ -59,6 +59,17 @@ const dom = (text: string, handles = HANDLES) =>
 	new DOMParser().parseFromString(renderMarkdown(text, handles), 'text/html').body;
 
 describe('renderMarkdown', () => {
+	it('is looked at by a check that finds what is forbidden', () => {
+		for (const html of [
+			'<img src=x>',
+			'<p id=x>',
+			'<a href="javascript:x">y</a>',
+			'<p onclick=x>'
+		]) {
+			expect(forbidden(html), html).not.toEqual([]);
+		}
+	});
+
 	it('has a corpus of at least fifty attacks', () => {
 		expect(new Set(XSS_PAYLOADS).size).toBeGreaterThanOrEqual(50);
 	});

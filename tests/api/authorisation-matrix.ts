@@ -134,6 +134,18 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ path: (w) => `/g/${w.slug}/references/${w.referenceId}` }
 	),
 
+	// Files handed in; those that are there are in evidence-files.test.ts.
+	...doors(
+		'/g/[slug]/files/[id]',
+		{ GET: page('observer', 404) },
+		{ path: (w) => `/g/${w.slug}/files/01890a5d-ac96-774b-bcce-b302099a8057` }
+	),
+	...doors(
+		'/g/[slug]/submissions/[id]/certificate',
+		{ GET: page('observer', 404) },
+		{ path: (w) => `/g/${w.slug}/submissions/01890a5d-ac96-774b-bcce-b302099a8057/certificate` }
+	),
+
 	// Claims. The member entered it, so that what is one's own to do is the member's too.
 	...doors('/g/[slug]/claims/new', {
 		GET: page('member'),

@@ -9,6 +9,8 @@ import { groups, memberships, users } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
 import { createInProcessPool } from '../../src/lib/server/jobs/in-process-pool';
 import { startRunner, type JobLog, type Runner } from '../../src/lib/server/jobs/runner';
+import { createDiskStore } from '../../src/lib/server/storage/disk-store';
+import { setFileStore } from '../../src/lib/server/storage/open-store';
 
 /** Invented people and a group of theirs on a database of its own, without a server. */
 export interface ServiceWorld {
@@ -44,6 +46,7 @@ export async function openServiceWorld(): Promise<ServiceWorld> {
 	process.env.MERESTONE_SECRET ??= 'a secret of the tests, of no use elsewhere';
 	const folder = mkdtempSync(join(tmpdir(), 'merestone-test-'));
 	const { db, close } = await openDatabase(`file:${join(folder, 'test.db')}`);
+	setFileStore(await createDiskStore(join(folder, 'files')));
 	const anonymous: Context = { db, actor: null, requestId: 'test', now: () => new Date() };
 	const at = new Date();
 	const person = async (name: string) => {

@@ -8,8 +8,10 @@ import { sendDueMails } from '../mail/sender';
 import { createSmtpTransport, type MailTransport } from '../mail/transport';
 import { closeReferences, warmReferences } from '../references/read-reference';
 import { deriveTouchedClaims } from '../services/claims/derive-claim';
+import { sweepOrphans } from '../services/evidence-files/sweep-orphans';
 import { ensureCatalogue } from '../services/inequalities/ensure-catalogue';
 import { setBudgetSeconds } from '../services/recomputations/budget';
+import { closeFileStore, fileStore } from '../storage/open-store';
 import { closeSolverPool, setSolverPool, solverPool } from './current-pool';
 import { reap } from './lease';
 import { createThreadPool, threadCount } from './pool';
@@ -18,6 +20,7 @@ import { onHint } from './signal';
 
 const REAP_EVERY_MS = 15_000;
 const MAIL_EVERY_MS = 2_000;
+const SWEEP_EVERY_MS = 3_600_000;
 
 interface Background {
 	readonly runner: Runner;
@@ -56,13 +59,14 @@ async function start(): Promise<Background> {
 	const forget = onHint((hint) => (hint.kind === 'stop' ? runner.cancel(hint.id) : runner.wake()));
 	const reaper = every(REAP_EVERY_MS, 'taking back lost runs', () => takeBack(db, now(), false));
 	const mail = await startMail(db, now);
+	const sweep = every(SWEEP_EVERY_MS, 'sweeping unused files', () => sweepFiles(db, now()));
 	void warmUp(db);
 	return {
 		runner,
 		async stop() {
 			forget();
-			await Promise.all([reaper.stop(), mail.stop(), runner.stop()]);
-			await Promise.all([closeSolverPool(), closeReferences()]);
+			await Promise.all([reaper.stop(), mail.stop(), sweep.stop(), runner.stop()]);
+			await Promise.all([closeSolverPool(), closeReferences(), closeFileStore()]);
 		}
 	};
 }
@@ -75,6 +79,13 @@ async function takeBack(db: Database, now: Date, all: boolean): Promise<void> {
 		return given.length;
 	});
 	if (count > 0) log().error({ count }, 'recomputations given up after repeated crashes');
+}
+
+/** Files that no submission names. */
+async function sweepFiles(db: Database, now: Date): Promise<void> {
+	const { deleted, refused } = await sweepOrphans(db, await fileStore(), now);
+	if (deleted > 0) log().info({ deleted }, 'unused files deleted');
+	if (refused) log().error('FILES_URL holds many files this database does not know: none deleted');
 }
 
 /** Slow beginnings, after the server has begun to answer. */

@@ -68,6 +68,7 @@ export function makeLedgerRow(over: Partial<LedgerRow> = {}): LedgerRow {
 		},
 		state: 'active',
 		visibility: 'group',
+		notices: [],
 		...over
 	};
 }

@@ -6,7 +6,8 @@ import type { ClaimState, Relation, VerdictStatus, Visibility } from '../ledger/
 import type { Role } from '../ledger/roles';
 import type { Verdict } from '../ledger/verdict';
 import type { ClaimInput } from './claim-input';
-import type { TaskMark } from './task-views';
+import type { NoticeKind } from '../ledger/notices';
+import type { ClaimNoticeView, TaskMark } from './task-views';
 import type { FieldIssueView } from './field-issue';
 
 /**
@@ -72,6 +73,8 @@ export interface LedgerRow {
 	readonly reference: ReferenceLine;
 	readonly state: ClaimState;
 	readonly visibility: Visibility;
+	/** What is attached to it after its paper appeared. */
+	readonly notices: readonly NoticeKind[];
 	/** The task that waits on it and was changed last; null on public pages and without any. */
 	readonly task: TaskMark | null;
 	/** Machines do not settle it and no task is under way: one should be opened. */
@@ -166,6 +169,10 @@ export interface ClaimView {
 	readonly visibility: Visibility;
 	readonly supersededBy: { readonly number: number; readonly id: string } | null;
 	readonly verdict: Verdict;
+	/** A second person found value, locator and inequality of this version to be the paper's. */
+	readonly confirmed: boolean;
+	/** Errata and newer versions of its paper. */
+	readonly notices: readonly ClaimNoticeView[];
 	readonly stations: StationsView | null;
 	readonly progress: ProgressView | null;
 	/** Which of the recomputations is of exactly the claimed quantity. */
@@ -182,11 +189,26 @@ export interface ClaimView {
 	readonly own: boolean;
 }
 
-/** A public claim: nothing of who entered it, of notes, or of the group's other data. */
-export type PublicClaimView = Omit<
+/** An erratum or a newer version as the public sees it. */
+export interface PublicNoticeView extends Pick<ClaimNoticeView, 'kind' | 'note' | 'at'> {
+	readonly reference: Pick<
+		ReferenceView,
+		'title' | 'short' | 'source' | 'formatted' | 'year' | 'doi' | 'arxiv'
+	>;
+}
+
+/** What the pages of a claim, the group's and the public one, have in common. */
+export type SharedClaimView = Omit<
 	ClaimView,
-	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number' | 'own'
+	'input' | 'note' | 'enteredBy' | 'groupSlug' | 'number' | 'own' | 'notices'
 >;
+
+/** A public claim: nothing of who entered it, of notes, or of the group's other data. */
+export interface PublicClaimView extends SharedClaimView {
+	readonly notices: readonly PublicNoticeView[];
+	/** How a discrepancy is to be read; null for other verdicts. */
+	readonly wording: string | null;
+}
 
 /** What a page that watches a claim polls or streams; the page reloads its data when it changes. */
 export interface ClaimProgressView {
@@ -212,6 +234,8 @@ export interface ReferencePage extends ReferenceRow {
 
 /** A paper as the public sees it, with its published claims. */
 export interface PublicReferencePage extends ReferenceView {
+	/** Of its public claims. */
+	readonly notices: readonly PublicNoticeView[];
 	readonly claimRows: readonly LedgerRow[];
 }
 
@@ -335,11 +359,34 @@ export interface MemberView {
 	readonly since: string;
 }
 
+/** What became of the mail of an invitation. */
+export type InvitationMail = 'waiting' | 'sent' | 'failed';
+
 export interface InvitationView {
 	readonly id: string;
 	readonly role: Role;
+	/** Where it was mailed to; null for a link that is passed on. */
+	readonly email: string | null;
 	readonly createdBy: string;
 	readonly expiresAt: string;
+	/** Of the last mail; null for a link. */
+	readonly mail: InvitationMail | null;
+	/** Whether the viewer may mail it again. */
+	readonly mayResend: boolean;
+}
+
+export interface SettingsView {
+	readonly name: string;
+	readonly description: string;
+	/** Null: the site's. */
+	readonly budgetSeconds: number | null;
+	readonly siteBudgetSeconds: number;
+	readonly slug: string;
+	/** Addresses that lead to this one. */
+	readonly formerSlugs: readonly string[];
+	/** Differs when any setting does. */
+	readonly version: string;
+	readonly mayChangeAddress: boolean;
 }
 
 /** A place where one is signed in. */

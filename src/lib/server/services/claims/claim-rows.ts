@@ -3,6 +3,7 @@ import type { LedgerRow } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, inequalities, recomputations, references } from '../../db/schema';
 import { printedHtml } from '../../math/printed-html';
+import { noticeKinds } from '../claim-notices/notices-of';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { claimSubject } from '../inequalities/subject-view';
@@ -46,6 +47,10 @@ export async function claimRows(
 	const stations = await loadStations(read, ids);
 	const waits = selected.some(({ run }) => run?.state === 'queued');
 	const ahead = waits ? await jobsAhead(read) : null;
+	const notices = await noticeKinds(
+		read,
+		selected.map(({ claim }) => claim.id)
+	);
 	const rows: LedgerRow[] = [];
 	for (const { claim, inequality, reference, run } of selected) {
 		const map = readMap(claim);
@@ -66,6 +71,7 @@ export async function claimRows(
 			reference: { ...reference, locator: claim.locator },
 			state: claim.state,
 			visibility: claim.visibility,
+			notices: notices.get(claim.id) ?? [],
 			task: null,
 			wantsTask: false
 		});

@@ -1,9 +1,11 @@
 import { eq } from 'drizzle-orm';
+import { isConfirmed } from '../../../ledger/publication';
 import type { ClaimView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, groups, inequalities, recomputations, references, users } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { printedHtml } from '../../math/printed-html';
+import { noticesOf } from '../claim-notices/notices-of';
 import { readMap } from '../inequalities/affine';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { claimSubject } from '../inequalities/subject-view';
@@ -72,6 +74,8 @@ export async function claimView(
 		visibility: claim.visibility,
 		supersededBy: await supersededBy(read, claim),
 		verdict: claim.verdict,
+		confirmed: isConfirmed(claim),
+		notices: await noticesOf(read, claim.id),
 		stations: stations.length > 0 && isOnRule(claim.input) ? stationsView(stations, map) : null,
 		progress: run && progressView(run, map, now, ahead),
 		recomputationId: claim.recomputationId,

@@ -1,4 +1,5 @@
 import { asc, eq } from 'drizzle-orm';
+import { NOTICE_KINDS, NOTICE_LABELS } from '../../../ledger/notices';
 import type { Verdict } from '../../../ledger/verdict';
 import type { ClaimInput } from '../../../schemas/claim-input';
 import type { HistoryEntry } from '../../../schemas/views';
@@ -19,7 +20,10 @@ const ACTION_TEXT: Readonly<Record<string, string>> = {
 	'claim.proposed': 'Proposed for publication',
 	'claim.published': 'Published',
 	'claim.unpublished': 'Taken back from the public',
-	'claim.recompute-asked': 'Asked to recompute'
+	'claim.recompute-asked': 'Asked to recompute',
+	'claim.transcription-confirmed': 'Compared with the paper: all as printed',
+	'claim.transcription-disputed': 'Compared with the paper: not as printed',
+	'claim.transcription-voided': 'Comparison with the paper returned'
 };
 
 const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
@@ -92,6 +96,8 @@ function actionText(action: string, before: unknown, after: unknown): string | u
 	if (action === 'claim.edited') return editText(before, after);
 	if (action === 'claim.unpublished' && fieldOf(before, 'visibility') === 'proposed')
 		return 'Proposal taken back';
+	if (action === 'claim.notice-attached') return `${noticeWord(after)} attached`;
+	if (action === 'claim.notice-removed') return `${noticeWord(before)} removed`;
 	return ACTION_TEXT[action];
 }
 
@@ -103,6 +109,11 @@ function editText(before: unknown, after: unknown): string {
 		return [short ? `${word} changed from ${was} to ${is}` : `${word} changed`];
 	});
 	return changed.length > 0 ? [...new Set(changed)].join('; ') : 'Edited';
+}
+
+function noticeWord(notice: unknown): string {
+	const kind = NOTICE_KINDS.find((kind) => kind === fieldOf(notice, 'kind'));
+	return kind ? NOTICE_LABELS[kind] : 'Notice';
 }
 
 function fieldOf(input: unknown, field: string): string {

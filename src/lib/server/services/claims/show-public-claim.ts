@@ -1,8 +1,10 @@
 import { and, eq } from 'drizzle-orm';
+import { COMPARED_BY_SECOND, PUBLIC_DISCREPANCY } from '../../../ledger/publication';
 import type { PublicClaimView } from '../../../schemas/views';
 import type { Context } from '../../context';
 import { claims } from '../../db/schema';
 import { ServiceError } from '../../errors';
+import { publicNotices } from '../claim-notices/public-notices';
 import { isPublicClaim } from '../inequalities/visibility';
 import { publicReference } from '../references/public-reference';
 import { claimView } from './claim-view';
@@ -34,6 +36,9 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		visibility: whole.visibility,
 		supersededBy: await publicSuccessor(ctx, claim.supersededById),
 		verdict: whole.verdict,
+		confirmed: whole.confirmed,
+		notices: publicNotices(whole.notices),
+		wording: whole.verdict.status === 'discrepancy' ? DISCREPANCY_WORDING : null,
 		stations: whole.stations,
 		progress: whole.progress,
 		recomputationId: whole.recomputationId,
@@ -46,6 +51,8 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		enteredAt: whole.enteredAt
 	};
 }
+
+const DISCREPANCY_WORDING = `It ${PUBLIC_DISCREPANCY}. ${COMPARED_BY_SECOND}`;
 
 const PUBLIC_HISTORY = /^(Entered|Published|Recomputed: |Value changed|Marked as superseded)/;
 

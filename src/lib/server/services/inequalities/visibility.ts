@@ -29,13 +29,14 @@ export async function isVisibleToGroup(
 }
 
 /**
- * What the public may see of claims: published and not withdrawn; a discrepancy only when a second
- * person published it, also where it became one afterwards.
+ * What the public may see of claims: published and not withdrawn; a discrepancy only while a second
+ * person has confirmed this version against the paper, also where it became one afterwards. The
+ * same rule as `isPublic` in ledger/publication.ts.
  */
 export const isPublicClaim = and(
 	eq(claims.visibility, 'public'),
 	ne(claims.state, 'withdrawn'),
-	or(ne(claims.status, 'discrepancy'), ne(claims.publishedBy, claims.createdBy))
+	or(ne(claims.status, 'discrepancy'), eq(claims.confirmedVersion, claims.version))
 );
 
 /** The public sees an inequality once a claim on it is public. */

@@ -3,6 +3,8 @@ import type { LedgerRow, PublicReferencePage } from '../../../schemas/views';
 import type { Context } from '../../context';
 import { claims, references } from '../../db/schema';
 import { ServiceError } from '../../errors';
+import { noticesOf } from '../claim-notices/notices-of';
+import { publicNotices } from '../claim-notices/public-notices';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
 import { isPublicClaim } from '../inequalities/visibility';
 import { publicReference } from './public-reference';
@@ -23,6 +25,8 @@ export async function showPublicReference(ctx: Context, id: string): Promise<Pub
 		throw new ServiceError('not-found', 'There is no such public paper.');
 	}
 	const paper = publicReference(referenceView(row));
+	const notices = [];
+	for (const { claim } of selected) notices.push(...(await noticesOf(read, claim.id)));
 	// Fields are listed, not taken away: what is added to the group's view stays private.
 	return {
 		id: paper.id,
@@ -35,6 +39,7 @@ export async function showPublicReference(ctx: Context, id: string): Promise<Pub
 		arxiv: paper.arxiv,
 		bibtex: paper.bibtex,
 		cslJson: paper.cslJson,
+		notices: publicNotices(notices),
 		claimRows: (await claimRows(read, selected, ctx.now())).map(publicRow)
 	};
 }
@@ -58,6 +63,7 @@ function publicRow(row: LedgerRow): LedgerRow {
 		reference: row.reference,
 		state: row.state,
 		visibility: row.visibility,
+		notices: row.notices,
 		task: null,
 		wantsTask: false
 	};

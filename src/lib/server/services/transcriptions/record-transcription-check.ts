@@ -1,0 +1,94 @@
+import type { GroupContext } from '../../context';
+import type { Transaction } from '../../db/client';
+import { transcriptionChecks } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import { newId } from '../../ids';
+import { recordAudit } from '../audit';
+import type { ClaimRow } from '../claims/find-claim';
+import { notify } from '../notifications/notify';
+import { mayConfirm } from './may-confirm';
+import { requireNote, type Comparison } from './read-comparison';
+import { settleConfirmation } from './settle-confirmation';
+import { editorOf } from './wrote-version';
+
+export interface TranscriptionCheck extends Comparison {
+	/** The task it was done for; null: done from the claim's page. */
+	readonly taskId: string | null;
+}
+
+/**
+ * Records that a second person compared the claim, as it now stands, with its paper. All right
+ * confirms this version; anything wrong takes a confirmation back, and whoever entered or edited
+ * the claim is told either way.
+ * @throws ServiceError forbidden for who wrote it; conflict when it is withdrawn; invalid when
+ * something is wrong and no note says what
+ */
+export async function recordTranscriptionCheck(
+	tx: Transaction,
+	ctx: GroupContext,
+	claim: ClaimRow,
+	check: TranscriptionCheck
+): Promise<{ id: string; confirmed: boolean }> {
+	if (claim.state === 'withdrawn') {
+		throw new ServiceError('conflict', 'This claim is withdrawn.');
+	}
+	if (!(await mayConfirm(tx, ctx, claim))) {
+		throw new ServiceError(
+			'forbidden',
+			'A claim is compared with its paper by a second person: a member who neither entered nor edited it.'
+		);
+	}
+	requireNote(check);
+	const now = ctx.now();
+	const id = newId();
+	const { valueMatches, locatorMatches, inequalityMatches, taskId } = check;
+	const note = check.note.trim();
+	await tx.insert(transcriptionChecks).values({
+		id,
+		claimId: claim.id,
+		claimVersion: claim.version,
+		valueMatches,
+		locatorMatches,
+		inequalityMatches,
+		note,
+		taskId,
+		checkedBy: ctx.actor.id,
+		checkedAt: now
+	});
+	const after = await settleConfirmation(tx, claim, now);
+	const confirmed = valueMatches && locatorMatches && inequalityMatches;
+	const { confirmedBy, confirmedVersion } = claim;
+	await recordAudit(tx, ctx, {
+		action: confirmed ? 'claim.transcription-confirmed' : 'claim.transcription-disputed',
+		entity: 'claim',
+		entityId: claim.id,
+		groupId: ctx.group.id,
+		before: { confirmedBy, confirmedVersion },
+		after: { ...after, valueMatches, locatorMatches, inequalityMatches, note, taskId }
+	});
+	const editor = await editorOf(tx, claim);
+	await notify(tx, ctx, {
+		kind: 'transcription',
+		groupId: ctx.group.id,
+		recipients: [claim.createdBy, ...(editor ? [editor] : [])],
+		event: id,
+		claimId: claim.id,
+		...(taskId ? { taskId } : {}),
+		text: comparisonText({ ...check, note })
+	});
+	return { id, confirmed };
+}
+
+/** `Not as in the paper: the value, the locator. It is table 2.` */
+function comparisonText(check: Comparison): string {
+	const wrong = [
+		...(check.valueMatches ? [] : ['the value']),
+		...(check.locatorMatches ? [] : ['the locator']),
+		...(check.inequalityMatches ? [] : ['the inequality'])
+	];
+	const found =
+		wrong.length === 0
+			? 'Value, locator and inequality are as in the paper.'
+			: `Not as in the paper: ${wrong.join(', ')}.`;
+	return [found, check.note].filter(Boolean).join(' ');
+}

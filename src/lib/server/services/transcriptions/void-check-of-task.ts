@@ -1,0 +1,34 @@
+import { and, eq, isNull } from 'drizzle-orm';
+import type { GroupContext } from '../../context';
+import type { Transaction } from '../../db/client';
+import { claims, transcriptionChecks } from '../../db/schema';
+import { recordAudit } from '../audit';
+import { settleConfirmation } from './settle-confirmation';
+
+/** The comparison handed in for a task counts no more: the task was returned. */
+export async function voidCheckOfTask(
+	tx: Transaction,
+	ctx: GroupContext,
+	taskId: string
+): Promise<void> {
+	const now = ctx.now();
+	const voided = await tx
+		.update(transcriptionChecks)
+		.set({ voidedAt: now })
+		.where(and(eq(transcriptionChecks.taskId, taskId), isNull(transcriptionChecks.voidedAt)))
+		.returning({ id: transcriptionChecks.id, claimId: transcriptionChecks.claimId });
+	const [check] = voided;
+	if (!check) return;
+	const [claim] = await tx.select().from(claims).where(eq(claims.id, check.claimId));
+	if (!claim) return;
+	const after = await settleConfirmation(tx, claim, now);
+	const { confirmedBy, confirmedVersion } = claim;
+	await recordAudit(tx, ctx, {
+		action: 'claim.transcription-voided',
+		entity: 'claim',
+		entityId: claim.id,
+		groupId: ctx.group.id,
+		before: { confirmedBy, confirmedVersion },
+		after: { ...after, taskId }
+	});
+}

@@ -1,0 +1,25 @@
+import { and, eq } from 'drizzle-orm';
+import type { Reader } from '../../db/client';
+import { claimVersions } from '../../db/schema';
+import type { ClaimRow } from '../claims/find-claim';
+
+/** Who last wrote what the claim now says; null for a claim whose versions are gone. */
+export async function editorOf(read: Reader, claim: ClaimRow): Promise<string | null> {
+	const [row] = await read
+		.select({ changedBy: claimVersions.changedBy })
+		.from(claimVersions)
+		.where(and(eq(claimVersions.claimId, claim.id), eq(claimVersions.version, claim.version)));
+	return row?.changedBy ?? null;
+}
+
+/**
+ * Whether this person entered the claim or wrote the version it now has: then somebody else has to
+ * compare it with the paper.
+ */
+export async function wroteVersion(
+	read: Reader,
+	claim: ClaimRow,
+	userId: string
+): Promise<boolean> {
+	return claim.createdBy === userId || (await editorOf(read, claim)) === userId;
+}

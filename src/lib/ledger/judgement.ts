@@ -56,6 +56,8 @@ export interface Judgement {
 	readonly enclosure: Enclosure | null;
 	/** Reproductions that exclude what the certificates prove. */
 	readonly contradicting: readonly Evidence[];
+	/** People's reproductions exclude each other, so that none of them counts. */
+	readonly disputed: boolean;
 }
 
 /** How far the claim's own set lies from an enclosure it does not meet; null when they meet. */
@@ -85,25 +87,29 @@ export function judge(input: JudgementInput): Judgement {
 	const people = ofWorth('person');
 	const proved = combine(UNKNOWN, ofWorth('guaranteed'));
 	if (proved.contradictory || proved.contradicting.length > 0)
-		return { status: 'open', reasonCode: 'contradictory', enclosure: null, contradicting: [] };
+		return {
+			status: 'open',
+			reasonCode: 'contradictory',
+			enclosure: null,
+			contradicting: [],
+			disputed: false
+		};
 
-	const contradicting = combine(proved.enclosure, people).contradicting;
-	const stages = [
-		proved,
-		combine(proved.enclosure, ofWorth('numerical')),
-		combine(proved.enclosure, people)
-	];
+	const byPeople = combine(proved.enclosure, people);
+	const { contradicting, contradictory: disputed } = byPeople;
+	const stages = [proved, combine(proved.enclosure, ofWorth('numerical')), byPeople];
 	for (const stage of stages) {
 		if (stage.contradictory || isUnbounded(stage.enclosure)) continue;
 		const settled = settle(reading, relation, stage.enclosure);
-		if (settled) return { ...settled, enclosure: stage.enclosure, contradicting };
+		if (settled) return { ...settled, enclosure: stage.enclosure, contradicting, disputed };
 	}
 	const best = stages.find((s) => !isEmpty(s.enclosure) && !isUnbounded(s.enclosure));
 	return {
 		status: 'open',
 		reasonCode: recomputation.kind === 'done' ? 'not-settled' : recomputation.kind,
 		enclosure: best?.enclosure ?? null,
-		contradicting
+		contradicting,
+		disputed
 	};
 }
 

@@ -3,6 +3,7 @@ import { sizeOf, type ReadInterval } from './accepted-set';
 import type { Relation } from './claim';
 import { isExact, type Enclosure } from './enclosure';
 import { placesOfGap, rationalOf, showEnclosure, showExact, withMinusSign } from './figures';
+import { isNamedReproduction } from './reproductions';
 import { NO_SOLVER, distanceTo, type Judgement, type RecomputationState } from './judgement';
 
 export interface ReasonInput {
@@ -41,6 +42,8 @@ export function reasonFor(judgement: Judgement, input: ReasonInput): string {
 	const sentences = [mainSentence(judgement, input)];
 	if (judgement.contradicting.length > 0)
 		sentences.push('A reproduction by a person contradicts the certificate.');
+	if (judgement.disputed && judgement.status === 'open')
+		sentences.push('Accepted reproductions contradict each other, so none of them counts.');
 	return withMinusSign(sentences.join(' '));
 }
 
@@ -82,20 +85,29 @@ function range(enclosure: Enclosure): string {
 }
 
 function knownSoFar(enclosure: Enclosure | null): string {
-	return enclosure ? ` So far known: it ${range(enclosure)}.` : '';
+	return enclosure ? ` So far known: it ${range(enclosure)}.${worthOf(enclosure)}` : '';
 }
 
-const WORTH = {
-	guaranteed: '',
-	numerical: ' This rests on numerical evidence, not on a proof.',
-	person: ' This rests on an accepted reproduction, not on a certificate of ours.'
-} as const;
+/** What a statement rests on where that is less than a proof; with the person's name, if there is one. */
+function worthOf({ worth, lower, upper, lowerLabel, upperLabel }: Enclosure): string {
+	switch (worth) {
+		case 'guaranteed':
+			return '';
+		case 'numerical':
+			return ' This rests on numerical evidence, not on a proof.';
+		case 'person': {
+			const used = [lower ? lowerLabel : '', upper ? upperLabel : ''];
+			const named = [...new Set(used.filter(isNamedReproduction))].join(' and ');
+			return ` This rests on an accepted reproduction, not on a certificate of ours${named ? `: ${named}` : ''}.`;
+		}
+	}
+}
 
 function agreement(enclosure: Enclosure, input: ReasonInput): string {
 	const { reading, relation } = input;
 	const quantity = inSentence(input.quantity);
 	const capital = quantity.charAt(0).toUpperCase() + quantity.slice(1);
-	const worth = WORTH[enclosure.worth];
+	const worth = worthOf(enclosure);
 	const fact = `${capital} ${range(enclosure)}`;
 	if (relation !== '=') {
 		const slack = slackOf(enclosure, input);
@@ -130,7 +142,7 @@ function discrepancy(enclosure: Enclosure, input: ReasonInput, lastDigits: boole
 	const more = distance ? showMoreThan(distance) : '0';
 	const above = enclosure.upper !== null && reading.low.compare(enclosure.upper) > 0;
 	const where = `lies ${more} ${above ? 'above' : 'below'} ${boundName(enclosure, above)}`;
-	const worth = WORTH[enclosure.worth];
+	const worth = worthOf(enclosure);
 	if (lastDigits)
 		return `The claimed value differs in the last digits, within usual solver tolerance: it ${where}.${worth}`;
 	if (relation === '<=')
@@ -149,14 +161,14 @@ function boundName(enclosure: Enclosure, upper: boolean): string {
 	if (enclosure.worth === 'guaranteed')
 		return `the guaranteed ${upper ? 'upper' : 'lower'} bound${by}`;
 	if (enclosure.worth === 'person')
-		return `the ${upper ? 'upper' : 'lower'} end of the accepted reproduction${by}`;
+		return `the ${upper ? 'upper' : 'lower'} end of the accepted reproduction`;
 	return `the numerical ${upper ? 'upper' : 'lower'} bound${by}`;
 }
 
 function notSettled(enclosure: Enclosure, { reading, quantity }: ReasonInput): string {
 	const fact = `${inSentence(quantity)} ${range(enclosure)}`;
 	if (enclosure.lower === null || enclosure.upper === null)
-		return `Consistent, not settled: ${fact}, and nothing is known on the other side.${WORTH[enclosure.worth]}`;
+		return `Consistent, not settled: ${fact}, and nothing is known on the other side.${worthOf(enclosure)}`;
 	const precision = reading.exact ? 'the tolerance of 1e-7' : 'the printed precision';
-	return `Consistent, not settled: ${fact}, which is wider than ${precision}.${WORTH[enclosure.worth]}`;
+	return `Consistent, not settled: ${fact}, which is wider than ${precision}.${worthOf(enclosure)}`;
 }

@@ -6,6 +6,7 @@ import { judge, type ReasonCode, type RecomputationState } from './judgement';
 import { printRational } from '../nonlocality/exact/rational';
 import { readingEnd } from './reading-text';
 import { reasonFor, showAtLeast, slackOf } from './reasons';
+import { isNamedReproduction, withoutName } from './reproductions';
 import type { StatedValue } from './stated-value';
 
 export type { Evidence } from './enclosure';
@@ -37,6 +38,15 @@ export interface Verdict {
 	} | null;
 	/** By how much at least a true bound (`<=`, `>=`) is looser than what is known. */
 	readonly slack?: string;
+	/** The reason without people's names, where it has any: for public pages. */
+	readonly publicReason?: string;
+	/** Reproductions that what is proved excludes. */
+	readonly contradicting?: readonly {
+		readonly submissionId: string;
+		readonly taskNumber: number;
+		/** `a reproduction by Wren Aldous (own program 2.1)`. */
+		readonly label: string;
+	}[];
 	readonly diagnosis: readonly Diagnosis[];
 }
 
@@ -64,7 +74,25 @@ export function deriveVerdict(input: VerdictInput): Omit<Verdict, 'diagnosis'> {
 		enclosure: enclosure && storeEnclosure(enclosure)
 	};
 	const slack = status === 'agreement' && enclosure ? slackOf(enclosure, input) : null;
-	return slack ? { ...verdict, slack: showAtLeast(slack) } : verdict;
+	const unnamed = enclosure && withoutNames(enclosure);
+	return {
+		...verdict,
+		...(slack ? { slack: showAtLeast(slack) } : {}),
+		...(unnamed === enclosure
+			? {}
+			: { publicReason: reasonFor({ ...judgement, enclosure: unnamed }, input) })
+	};
+}
+
+/** The same object where no label names a person. */
+function withoutNames(enclosure: Enclosure): Enclosure {
+	const { lowerLabel, upperLabel } = enclosure;
+	if (![lowerLabel, upperLabel].some(isNamedReproduction)) return enclosure;
+	return {
+		...enclosure,
+		lowerLabel: withoutName(lowerLabel),
+		upperLabel: withoutName(upperLabel)
+	};
 }
 
 export function storeReading(reading: StatedValue): Verdict['reading'] {

@@ -1,14 +1,15 @@
-import { and, asc, eq, lte } from 'drizzle-orm';
-import { mailWorthy } from '../../ledger/verdict';
+import { and, eq } from 'drizzle-orm';
 import type { Database } from '../db/client';
-import { claims, groups, inequalities, memberships, outbox, references, users } from '../db/schema';
-import { renderDiscrepancy, type RenderedMail } from './discrepancy-mail';
-import type { MailTransport } from './transport';
+import { outbox } from '../db/schema';
+import { dueMails, type DueMail } from './due-mails';
+import { renderDue } from './render-due';
+import { isRefusedForGood, type MailTransport } from './transport';
 
-const BATCH = 20;
 export const MOST_ATTEMPTS = 10;
 const FIRST_DELAY_MS = 60_000;
 const LONGEST_DELAY_MS = 6 * 3_600_000;
+/** Sent side by side, so that a server that stalls over one mail does not hold up the rest. */
+const LANES = 4;
 
 /** 1 min, 2 min, 4 min ... 6 h after the failed attempt of that number (from 1). */
 export const retryDelay = (attempt: number) =>
@@ -30,49 +31,51 @@ export interface SenderOptions {
  * @returns how many were sent
  */
 export async function sendDueMails(options: SenderOptions): Promise<number> {
-	const { db, transport, now } = options;
-	const due = await db.read
-		.select({
-			id: outbox.id,
-			messageId: outbox.messageId,
-			attempts: outbox.attempts,
-			claimId: outbox.claimId,
-			userId: outbox.userId,
-			name: users.name,
-			address: users.email
-		})
-		.from(outbox)
-		.innerJoin(users, eq(users.id, outbox.userId))
-		.where(and(eq(outbox.state, 'waiting'), lte(outbox.notBefore, now())))
-		.orderBy(asc(outbox.notBefore))
-		.limit(BATCH);
+	const due = [...(await dueMails(options.db.read, options.now()))];
 	let sent = 0;
-	for (const row of due) {
-		const mail = await render(options, row);
-		if (!mail) {
-			await mark(db, row.id, { state: 'dropped' });
-			continue;
+	const lane = async () => {
+		for (let row = due.shift(); row; row = due.shift()) {
+			if (await sendOne(options, row)) sent++;
 		}
-		try {
-			const to = { name: row.name, address: row.address };
-			await transport.send({ ...mail, to, messageId: row.messageId });
-			await mark(db, row.id, { state: 'sent', sentAt: now(), attempts: row.attempts + 1 });
-			sent++;
-		} catch (cause) {
-			const error = cause instanceof Error ? cause : new Error(String(cause));
-			const attempts = row.attempts + 1;
-			const dead = attempts >= MOST_ATTEMPTS;
-			options.onFailure?.(row.messageId, error, dead);
-			await mark(db, row.id, {
-				attempts,
-				lastError: error.message.slice(0, 500),
-				...(dead
-					? { state: 'dead' as const }
-					: { notBefore: new Date(now().getTime() + retryDelay(attempts)) })
-			});
-		}
-	}
+	};
+	await Promise.all(Array.from({ length: LANES }, lane));
 	return sent;
+}
+
+async function sendOne(options: SenderOptions, row: DueMail): Promise<boolean> {
+	const { db, transport, origin, now } = options;
+	try {
+		const mail = row.to && (await renderDue(db.read, row, origin, now()));
+		if (!mail || !row.to) {
+			await mark(db, row.id, { state: 'dropped' });
+			return false;
+		}
+		await transport.send({ ...mail, to: row.to, messageId: row.messageId });
+	} catch (cause) {
+		await fail(options, row, cause instanceof Error ? cause : new Error(String(cause)));
+		return false;
+	}
+	// Outside the try: when this fails the mail was sent, and is no failure of the server's.
+	await mark(db, row.id, { state: 'sent', sentAt: now(), attempts: row.attempts + 1 });
+	return true;
+}
+
+/**
+ * Tried again later, longer each time; dead after ten, or at once when the server refuses the
+ * recipient for good: RFC 5321 section 4.2.1 asks not to repeat what was answered with 5yz, and
+ * repeating it spoils the sender's name. The administrator's page can still send it again.
+ */
+async function fail({ db, now, onFailure }: SenderOptions, row: DueMail, error: Error) {
+	const attempts = row.attempts + 1;
+	const dead = attempts >= MOST_ATTEMPTS || isRefusedForGood(error);
+	onFailure?.(row.messageId, error, dead);
+	await mark(db, row.id, {
+		attempts,
+		lastError: error.message.slice(0, 500),
+		...(dead
+			? { state: 'dead' as const }
+			: { notBefore: new Date(now().getTime() + retryDelay(attempts)) })
+	});
 }
 
 async function mark(db: Database, id: string, values: Partial<typeof outbox.$inferInsert>) {
@@ -82,45 +85,4 @@ async function mark(db: Database, id: string, values: Partial<typeof outbox.$inf
 			.set(values)
 			.where(and(eq(outbox.id, id), eq(outbox.state, 'waiting')))
 	);
-}
-
-/** From the verdict as it stands now; null when there is nothing to tell that person any more. */
-async function render(
-	{ db, origin }: SenderOptions,
-	row: { claimId: string | null; userId: string | null; name: string }
-): Promise<RenderedMail | null> {
-	if (row.claimId === null || row.userId === null) return null;
-	const [found] = await db.read
-		.select({
-			claim: claims,
-			groupName: groups.name,
-			slug: groups.slug,
-			reference: references.short,
-			inequality: inequalities.name
-		})
-		.from(claims)
-		.innerJoin(groups, eq(groups.id, claims.groupId))
-		.innerJoin(references, eq(references.id, claims.referenceId))
-		// Who has left the group gets no more of its mail.
-		.innerJoin(
-			memberships,
-			and(eq(memberships.groupId, claims.groupId), eq(memberships.userId, row.userId))
-		)
-		.leftJoin(inequalities, eq(inequalities.id, claims.inequalityId))
-		.where(eq(claims.id, row.claimId));
-	if (!found) return null;
-	const { claim } = found;
-	if (claim.state === 'withdrawn' || !mailWorthy(claim.verdict)) return null;
-	return renderDiscrepancy({
-		name: row.name,
-		groupName: found.groupName,
-		number: claim.number,
-		title: `${claim.quantityLabel} of ${found.inequality ?? claim.subject}`,
-		relation: claim.relation,
-		printed: claim.printed,
-		reference: found.reference,
-		locator: claim.locator,
-		verdict: claim.verdict,
-		link: `${origin}/g/${found.slug}/claims/${claim.number}`
-	});
 }

@@ -63,7 +63,7 @@ export const authorMessageInput = z.object({
 		)
 		.default('')
 });
-export type AuthorMessageInput = z.infer<typeof authorMessageInput>;
+export type AuthorMessageInput = z.input<typeof authorMessageInput>;
 
 /** The form has one more field, which no person sees: what fills it in is a program. */
 export const authorMessageForm = authorMessageInput.extend({

@@ -9,6 +9,10 @@ const LIMITS = {
 	reading: rateLimit('reading', 240, 60, 'requests'),
 	/** Entering, editing and recomputing: a paper with a long table is entered in an hour. */
 	change: rateLimit('change', 240, HOUR, 'claims entered, edited or recomputed in an hour'),
+	/** Each goes to somebody who may not have asked for it. */
+	invitation: rateLimit('invitation', 50, HOUR, 'invitations in an hour'),
+	/** Added, edited and removed ones. */
+	comment: rateLimit('comment', 60, HOUR, 'comments in an hour'),
 	/** Of a visitor, at the API. */
 	anonymous: rateLimit('anonymous', 600, HOUR, 'requests in an hour'),
 	/** Of an address, at calendars: a group behind one address, whose programs ask every few minutes. */
@@ -17,11 +21,16 @@ const LIMITS = {
 
 /**
  * Counts a request against its person, or its address where nobody has signed in.
+ * @param times how many of the kind it asks for
  * @throws ServiceError rate-limited; the answer then says when to come again
  */
-export async function countRequest(event: RequestEvent, kind: keyof typeof LIMITS): Promise<void> {
+export async function countRequest(
+	event: RequestEvent,
+	kind: keyof typeof LIMITS,
+	times = 1
+): Promise<void> {
 	try {
-		await LIMITS[kind].count(event.locals.actor?.id ?? event.getClientAddress());
+		await LIMITS[kind].count(event.locals.actor?.id ?? event.getClientAddress(), times);
 	} catch (thrown) {
 		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {
 			event.setHeaders({ 'Retry-After': String(thrown.retryAfterSeconds) });

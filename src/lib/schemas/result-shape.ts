@@ -1,0 +1,110 @@
+/** The shape of a result as the command line prints it; result.ts reads one. */
+import { z } from 'zod';
+import { levelShape } from './problem-shape';
+
+const kind = (what: string) => ({ error: `must be ${what}` });
+const number = z.number(kind('a finite number'));
+const nullable = z.number(kind('a finite number or null')).nullable();
+const place = z.int(kind('a whole number')).min(0, 'must not be negative');
+const fraction = z
+	.string(kind('a text such as "1/2"'))
+	.regex(/^-?\d{1,2000}(\/\d{1,2000})?$/, 'must be a fraction such as "1/2"');
+
+const strategyList = z.array(z.array(place, kind('a list of outputs')), kind('a list of lists'));
+const complex = z.tuple([number, number], kind('[re, im]'));
+const matrix = z.array(z.array(complex, kind('a row of [re, im]')), kind('a list of rows'));
+
+const deterministic = z.strictObject({
+	kind: z.literal('deterministic-strategy'),
+	strategy: strategyList,
+	value: fraction.nullable(),
+	enumerated: z.string().regex(/^\d{1,200}$/, 'must be a whole number as a text')
+});
+
+const linearProgramme = z.strictObject({
+	kind: z.literal('linear-programme'),
+	primal: z.record(z.string(), fraction, kind('an object from "a,b|x,y" to a fraction')),
+	dual: z.record(z.string(), fraction, kind('an object from "a,b|x,y" to a fraction')),
+	value: fraction.nullable()
+});
+
+const letter = z.tuple([place, place], kind('[input, output]'));
+const moments = z.strictObject({
+	kind: z.literal('npa-dual'),
+	monomials: z.array(
+		z.array(z.array(letter, kind('a list of [input, output]')), kind('a list per party')),
+		kind('a list of words')
+	),
+	multiplier: z.array(number, kind('a list of numbers')),
+	rowMultipliers: z.record(z.string(), number, kind('an object to numbers')),
+	constraintMultipliers: z.array(number, kind('a list of numbers')).optional(),
+	shift: number.optional(),
+	bound: number,
+	moments: z.array(number, kind('a list of numbers')).nullable(),
+	feasibleValue: nullable
+});
+
+const quantumStrategy = z.strictObject({
+	kind: z.literal('quantum-strategy'),
+	strategy: z.strictObject({
+		dimensions: z.array(place, kind('a list of whole numbers')),
+		state: z.array(complex, kind('a list of [re, im]')),
+		measurements: z.array(
+			z.array(z.array(matrix, kind('a list of matrices'))),
+			kind('matrices by party, input and output')
+		)
+	}),
+	projective: z.boolean(kind('true or false')),
+	bases: z
+		.array(
+			z.array(
+				z.strictObject({
+					vectors: matrix,
+					outputs: z.array(place, kind('a list of outputs'))
+				})
+			),
+			kind('bases by party and input')
+		)
+		.nullable(),
+	value: number
+});
+
+const enclosure = z.strictObject({
+	kind: z.literal('enclosure'),
+	lower: z.discriminatedUnion('kind', [deterministic, quantumStrategy]).nullable(),
+	upper: moments.nullable(),
+	upperLevel: levelShape.nullable()
+});
+
+export const certificateShape = z.discriminatedUnion(
+	'kind',
+	[deterministic, linearProgramme, moments, quantumStrategy, enclosure],
+	{
+		error:
+			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure'
+	}
+);
+
+/** Everything but the problem, which problem.ts reads. */
+export const resultShape = z.strictObject({
+	format: z.literal(1, kind('1')),
+	quantity: z.string(kind('a text')),
+	status: z.literal('done', kind('done: only a finished result proves something')),
+	lower: nullable,
+	upper: nullable,
+	value: nullable,
+	tolerance: nullable,
+	optimum: nullable,
+	guaranteed: z.strictObject({
+		lower: z.boolean(kind('true or false')),
+		upper: z.boolean(kind('true or false'))
+	}),
+	exact: fraction.nullable(),
+	/** What was run; nothing rests on it. */
+	method: z.record(z.string(), z.unknown(), kind('an object')),
+	seconds: z.number(kind('a number')).min(0, 'must not be negative'),
+	seed: z.int(kind('a whole number')),
+	solver: z.string(kind('a text')).max(100, 'has at most 100 characters'),
+	problem: z.unknown(),
+	certificate: certificateShape.nullable()
+});

@@ -1,6 +1,8 @@
 /** Comments, activity and what is new, as pages and the API get them. */
 import type { CommentSubject } from '../ledger/comments';
 import type { Delivery, NotificationKind } from '../ledger/notifications';
+import type { VerdictStatus } from '../ledger/claim';
+import type { Role } from '../ledger/roles';
 import type { PersonView, TaskRow } from './task-views';
 import type { LedgerRow } from './views';
 
@@ -31,6 +33,14 @@ export interface DiscussionView {
 	readonly mayComment: boolean;
 	/** What can stand behind an `@`. */
 	readonly handles: readonly { readonly handle: string; readonly name: string }[];
+}
+
+/** What a page's form data says when a comment was refused: beside its form, with what was typed. */
+export interface RefusedComment {
+	/** Id of the comment; empty for a new one. */
+	readonly id: string;
+	readonly body: string;
+	readonly message: string;
 }
 
 export const ACTIVITY_KINDS = ['claims', 'tasks', 'talk', 'people', 'settings'] as const;
@@ -97,10 +107,10 @@ export interface ChangedClaim {
 	/** When its verdict changed last. */
 	readonly at: string;
 	/** The verdict before; null when it is the first. */
-	readonly before: string | null;
+	readonly before: VerdictStatus | null;
 }
 
-/** The home of a person. */
+/** The home of a person: the first rows of each list, and how many there are. */
 export interface HomeView {
 	/** Active tasks of the viewer over all groups, soonest due first. */
 	readonly tasks: readonly TaskRow[];
@@ -108,13 +118,39 @@ export interface HomeView {
 	readonly toDecide: readonly TaskRow[];
 	/** Newest first, of the last thirty days. */
 	readonly changed: readonly ChangedClaim[];
-	/** Standing discrepancies of the viewer's groups. */
+	/** Standing discrepancies of the viewer's groups, newest first. */
 	readonly discrepancies: readonly {
 		readonly row: LedgerRow;
 		readonly groupSlug: string;
 		readonly groupName: string;
 	}[];
+	readonly totals: {
+		readonly tasks: number;
+		readonly overdue: number;
+		readonly toDecide: number;
+		readonly changed: number;
+		readonly discrepancies: number;
+	};
+	/** The viewer's groups, with how many discrepancies stand in each. */
+	readonly groups: readonly {
+		readonly slug: string;
+		readonly name: string;
+		readonly role: Role;
+		readonly discrepancies: number;
+	}[];
 	readonly unread: number;
+}
+
+/** A person's tasks over all groups. */
+export interface OwnTasksPage {
+	readonly rows: readonly TaskRow[];
+	readonly total: number;
+	readonly page: number;
+	readonly pageSize: number;
+	/** Of all the person's tasks, whatever the filters. */
+	readonly overdue: number;
+	/** For the filter. */
+	readonly groups: readonly { readonly slug: string; readonly name: string }[];
 }
 
 /** A secret calendar address. */

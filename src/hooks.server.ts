@@ -3,7 +3,7 @@ import { identify } from '$lib/server/auth/session-hook';
 import { asProblem } from '$lib/server/http/api';
 import { pageShell } from '$lib/server/http/page-shell';
 import { problemResponse } from '$lib/server/http/problem';
-import { mayChangeState } from '$lib/server/http/same-origin';
+import { isOneClickRoute, mayChangeState } from '$lib/server/http/same-origin';
 import { setSecurityHeaders } from '$lib/server/http/security-headers';
 import { newId } from '$lib/server/ids';
 import { log, securityEvent } from '$lib/server/log';
@@ -13,7 +13,8 @@ export const init: ServerInit = startServer;
 
 export const handle: Handle = async ({ event, resolve }) => {
 	await identify(event);
-	const response = mayChangeState(event.request, event.url)
+	const allowed = isOneClickRoute(event.route.id) || mayChangeState(event.request, event.url);
+	const response = allowed
 		? asProblem(event, await resolve(event, pageShell))
 		: refuse(event.route.id, event.locals.requestId);
 	setSecurityHeaders(event, response);

@@ -81,7 +81,7 @@ describe('every route guards itself', () => {
 		'src/routes/api/v1/recomputations/[id]/result/+server.ts': SHARED,
 		'src/routes/api/v1/recomputations/[id]/sdpa/+server.ts': SHARED
 	};
-	const GUARD = /\b(requireUser|requireRole|publicContext)\(/;
+	const GUARD = /\b(requireUser|requireRole|requireAdmin|publicContext)\(/;
 	const doors = sources.filter(({ path }) =>
 		/^src\/routes\/.*\+(page\.server|layout\.server|server)\.ts$/.test(path)
 	);

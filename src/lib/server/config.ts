@@ -51,6 +51,19 @@ const environment = z.object({
 		.min(32, 'expected at least 32 characters, for instance from: openssl rand -base64 32')
 		.optional(),
 	MERESTONE_DEMO: switchOn,
+	/** Account ids, as shown on the account page: who sees the site's own pages. */
+	MERESTONE_ADMINS: z
+		.string()
+		.default('')
+		.transform((text) =>
+			text
+				.split(',')
+				.map((id) => id.trim())
+				.filter((id) => id !== '')
+		)
+		.refine((ids) => ids.every((id) => /^[0-9a-f-]{36}$/.test(id)), {
+			error: 'expected account ids, separated by commas; each account page shows its own'
+		}),
 	/** `silent` to `trace`, as pino names them. */
 	MERESTONE_LOG: z
 		.enum(['silent', 'fatal', 'error', 'warn', 'info', 'debug', 'trace'], {
@@ -89,6 +102,8 @@ export interface Config {
 	readonly mailFrom: string;
 	readonly secret: string;
 	readonly demo: boolean;
+	/** Accounts of the site's administrators. */
+	readonly admins: readonly string[];
 	readonly logLevel: string;
 	readonly rateFactor: number;
 	readonly threads: number | null;
@@ -125,6 +140,7 @@ export function readConfig(variables: Readonly<Record<string, string | undefined
 		mailFrom: values.MERESTONE_MAIL_FROM,
 		secret,
 		demo: values.MERESTONE_DEMO,
+		admins: values.MERESTONE_ADMINS,
 		logLevel: values.MERESTONE_LOG,
 		rateFactor: values.MERESTONE_RATE_FACTOR,
 		threads: values.MERESTONE_THREADS ?? null,

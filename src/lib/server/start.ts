@@ -6,6 +6,7 @@ import type { Database } from './db/client';
 import { setHeadersOfEveryAnswer } from './http/every-answer';
 import { startBackground } from './jobs';
 import { log } from './log';
+import { applyAdmins } from './services/users/apply-admins';
 import { fileStore } from './storage/open-store';
 
 const PURGE_EVERY_MS = 3_600_000;
@@ -34,6 +35,7 @@ async function start(): Promise<void> {
 	}
 	if (!smtpUrl && !demo) log().warn('SMTP_URL is not set: mail waits in the outbox');
 	await fileStore();
+	await nameAdmins(db);
 	setHeadersOfEveryAnswer();
 	await startBackground();
 	await purge(db);
@@ -55,6 +57,13 @@ async function assertPortIsFree(): Promise<void> {
 		);
 		probe.listen(port, process.env.HOST ?? '0.0.0.0', () => probe.close(() => resolve()));
 	});
+}
+
+/** Who administers the site is said by its operator only, at every start. */
+async function nameAdmins(db: Database): Promise<void> {
+	const { admins, unknown } = await applyAdmins(db, config().admins, new Date());
+	if (admins.length > 0) log().info({ admins }, 'administrators of the site');
+	if (unknown.length > 0) log().warn({ unknown }, 'MERESTONE_ADMINS names ids of no account');
 }
 
 async function purge(db: Database): Promise<void> {

@@ -23,6 +23,12 @@ export function mayChangeState(
 	return from === origin || (!originGiven && hostOf(from) === url.host);
 }
 
+/**
+ * RFC 8058: a mail program sends this form itself, with no cookie and no origin. The token in the
+ * address says who asks, so that there is no cookie's power to misuse.
+ */
+export const isOneClickRoute = (route: string | null) => route === '/(account)/unsubscribe/[token]';
+
 function hostOf(origin: string): string | null {
 	return URL.canParse(origin) ? new URL(origin).host : null;
 }

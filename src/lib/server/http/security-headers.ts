@@ -1,6 +1,7 @@
 import type { RequestEvent } from '@sveltejs/kit';
 import { config } from '../config';
 import { STRICT_TRANSPORT } from './every-answer';
+import { isOneClickRoute } from './same-origin';
 
 const ALWAYS = {
 	'X-Content-Type-Options': 'nosniff',
@@ -15,6 +16,8 @@ const ALWAYS = {
 export function setSecurityHeaders(event: RequestEvent, response: Response): void {
 	const { headers } = response;
 	for (const [name, value] of Object.entries(ALWAYS)) headers.set(name, value);
+	// The address of such a page is a secret of the mail it stood in.
+	if (isOneClickRoute(event.route.id)) headers.set('Referrer-Policy', 'no-referrer');
 	if (config().secure) {
 		headers.set('Strict-Transport-Security', STRICT_TRANSPORT);
 	}

@@ -9,6 +9,8 @@ import { createSmtpTransport, type MailTransport } from '../mail/transport';
 import { closeReferences, warmReferences } from '../references/read-reference';
 import { deriveTouchedClaims } from '../services/claims/derive-claim';
 import { sweepOrphans } from '../services/evidence-files/sweep-orphans';
+import { queueDigests } from '../services/notifications/queue-digests';
+import { sendDueReminders } from '../services/notifications/send-due-reminders';
 import { ensureCatalogue } from '../services/inequalities/ensure-catalogue';
 import { setBudgetSeconds } from '../services/recomputations/budget';
 import { closeFileStore, fileStore } from '../storage/open-store';
@@ -20,6 +22,8 @@ import { onHint } from './signal';
 
 const REAP_EVERY_MS = 15_000;
 const MAIL_EVERY_MS = 2_000;
+/** Due dates and digests are matters of days and hours. */
+const REMIND_EVERY_MS = 300_000;
 const SWEEP_EVERY_MS = 3_600_000;
 
 interface Background {
@@ -59,13 +63,20 @@ async function start(): Promise<Background> {
 	const forget = onHint((hint) => (hint.kind === 'stop' ? runner.cancel(hint.id) : runner.wake()));
 	const reaper = every(REAP_EVERY_MS, 'taking back lost runs', () => takeBack(db, now(), false));
 	const mail = await startMail(db, now);
+	const reminders = every(REMIND_EVERY_MS, 'reminding', () => remind(db, now()), true);
 	const sweep = every(SWEEP_EVERY_MS, 'sweeping unused files', () => sweepFiles(db, now()));
 	void warmUp(db);
 	return {
 		runner,
 		async stop() {
 			forget();
-			await Promise.all([reaper.stop(), mail.stop(), sweep.stop(), runner.stop()]);
+			await Promise.all([
+				reaper.stop(),
+				reminders.stop(),
+				mail.stop(),
+				sweep.stop(),
+				runner.stop()
+			]);
 			await Promise.all([closeSolverPool(), closeReferences(), closeFileStore()]);
 		}
 	};
@@ -86,6 +97,12 @@ async function sweepFiles(db: Database, now: Date): Promise<void> {
 	const { deleted, refused } = await sweepOrphans(db, await fileStore(), now);
 	if (deleted > 0) log().info({ deleted }, 'unused files deleted');
 	if (refused) log().error('FILES_URL holds many files this database does not know: none deleted');
+}
+
+/** Both write only what was not written before, so that a restart tells nothing twice. */
+async function remind(db: Database, now: Date): Promise<void> {
+	await sendDueReminders(db, now);
+	await queueDigests(db, now);
 }
 
 /** Slow beginnings, after the server has begun to answer. */
@@ -136,15 +153,22 @@ async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promi
 }
 
 /** Runs work again and again, never twice at the same time. */
-function every(ms: number, what: string, work: () => Promise<void>): { stop(): Promise<void> } {
+function every(
+	ms: number,
+	what: string,
+	work: () => Promise<void>,
+	atOnce = false
+): { stop(): Promise<void> } {
 	let current: Promise<void> | null = null;
-	const timer = setInterval(() => {
+	const turn = () => {
 		current ??= work()
 			.catch((error: unknown) => log().error({ err: error }, `${what} failed`))
 			.finally(() => {
 				current = null;
 			});
-	}, ms);
+	};
+	const timer = setInterval(turn, ms);
+	if (atOnce) turn();
 	return {
 		async stop() {
 			clearInterval(timer);

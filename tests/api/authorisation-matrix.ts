@@ -110,6 +110,10 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors('/g/[slug]/members', { GET: page('observer') }),
 	...doors('/g/[slug]/members', { invite: action('maintainer') }, { fields: { role: 'observer' } }),
 	...doors('/g/[slug]/members', { revoke: action('maintainer', 404) }, { fields: { id: 'none' } }),
+	...doors('/g/[slug]/members', { mail: action('maintainer', 400) }, { fields: { emails: 'x' } }),
+	...doors('/g/[slug]/members', { resend: action('maintainer', 404) }, { fields: { id: 'none' } }),
+	...doors('/g/[slug]/members', { transfer: action('owner', 404) }, { fields: { user: 'nobody' } }),
+	...doors('/g/[slug]/settings', { GET: page('maintainer'), save: action('maintainer', 400) }),
 	...doors(
 		'/g/[slug]/members',
 		{ role: action('owner', 404) },

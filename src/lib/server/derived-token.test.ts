@@ -9,7 +9,7 @@ vi.mock('./config', () => ({ config: () => ({ secret }) }));
 function hmacByDefinition(key: string, text: string): Buffer {
 	const block = Buffer.alloc(64);
 	block.write(key);
-	const sha256 = (...parts: (Buffer | string)[]) => {
+	const sha256 = (...parts: (Uint8Array | string)[]) => {
 		const hash = createHash('sha256');
 		for (const part of parts) hash.update(part);
 		return hash.digest();

@@ -4,8 +4,8 @@ import { ServiceError } from './errors';
 import { pseudonym, securityEvent } from './log';
 
 export interface RateLimit {
-	/** Counts one more of that key. @throws ServiceError rate-limited */
-	count(key: string): Promise<void>;
+	/** Counts one more (or so many) of that key. @throws ServiceError rate-limited */
+	count(key: string, times?: number): Promise<void>;
 	/** Forgets what was counted, for tests. */
 	reset(): void;
 }
@@ -18,13 +18,13 @@ export interface RateLimit {
 export function rateLimit(kind: string, points: number, duration: number, what: string): RateLimit {
 	let limiter: RateLimiterMemory | undefined;
 	return {
-		async count(key) {
+		async count(key, times = 1) {
 			limiter ??= new RateLimiterMemory({
 				points: Math.ceil(points * config().rateFactor),
 				duration
 			});
 			try {
-				await limiter.consume(key);
+				await limiter.consume(key, times);
 			} catch (refused) {
 				if (!(refused instanceof RateLimiterRes)) throw refused;
 				refuse(kind, key, refused.msBeforeNext, what);

@@ -35,6 +35,17 @@ export function requireUser(event: RequestEvent): UserContext {
 }
 
 /**
+ * The context of the site's administrator, whom MERESTONE_ADMINS names. Anybody else is answered
+ * as if there were nothing.
+ */
+export function requireAdmin(event: RequestEvent): UserContext {
+	const ctx = requireUser(event);
+	if (ctx.actor.isAdmin) return ctx;
+	securityEvent('denied', { user: ctx.actor.id, route: event.route.id, request: ctx.requestId });
+	error(404, 'There is nothing here.');
+}
+
+/**
  * The context inside the group whose slug the route names. Someone outside learns nothing: a
  * group that is not theirs is answered like one that is not there.
  */
@@ -46,6 +57,7 @@ export async function requireRole(
 	const ctx = requireUser(event);
 	const found = await groupContext(ctx, { slug });
 	if (!found) error(404, 'There is no such group, or you are not in it.');
+	leadOn(event, slug, found.group.slug);
 	if (!hasRole(found.role, atLeast)) {
 		securityEvent('denied', {
 			user: ctx.actor.id,
@@ -56,4 +68,16 @@ export async function requireRole(
 		error(403, `This takes the role of ${atLeast} or more; yours here is ${found.role}.`);
 	}
 	return found;
+}
+
+/**
+ * From a group's former address to the page at its new one. A form sent from a page that was open
+ * when the address changed is served where it arrives, and so is the API.
+ */
+function leadOn(event: RequestEvent, asked: string, slug: string): void {
+	if (asked === slug || !['GET', 'HEAD'].includes(event.request.method)) return;
+	const { pathname, search } = event.url;
+	const former = `/g/${asked}`;
+	if (pathname !== former && !pathname.startsWith(`${former}/`)) return;
+	redirect(308, `/g/${slug}${pathname.slice(former.length)}${search}`);
 }

@@ -3,6 +3,7 @@ import { enter } from '$lib/server/auth/enter';
 import { contextOf, publicContext } from '$lib/server/auth/guards';
 import { landingPath } from '$lib/server/auth/landing';
 import { failForm } from '$lib/server/http/action-error';
+import { invitedAddress } from '$lib/server/services/invitations/find-invitation';
 import { signIn } from '$lib/server/services/users/sign-in';
 import { signUp } from '$lib/server/services/users/sign-up';
 import { fail, redirect } from '@sveltejs/kit';
@@ -11,8 +12,9 @@ import { zod4 } from 'sveltekit-superforms/adapters';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async (event) => {
-	publicContext(event);
-	const start = { next: event.url.searchParams.get('next') ?? '' };
+	const ctx = publicContext(event);
+	const next = event.url.searchParams.get('next') ?? '';
+	const start = { next, email: await invitedAddress(ctx, next) };
 	const form = await superValidate(start, zod4(signUpInput), { errors: false });
 	if (event.locals.actor) redirect(303, localPath(form.data.next) ?? (await landingPath(event)));
 	return { form };

@@ -7,14 +7,15 @@ import { claims, recomputations } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { announceQueued } from '../../jobs/signal';
 import { recordAudit } from '../audit';
-import { LONGEST_BUDGET } from '../recomputations/budget';
+import { groupBudget, LONGEST_BUDGET } from '../recomputations/budget';
 import { queueRecomputation, requeue } from '../recomputations/queue-recomputation';
 import { deriveClaim } from './derive-claim';
 import { findClaim, isOwn, type ClaimRow } from './find-claim';
 
 /**
- * Queues a claim's recomputation again: one that ended without a result as it was, one that had a
- * search in it with twice the time, any other to be done over. Failed stations are tried again too.
+ * Queues a claim's recomputation again: one that had a search in it with twice the time, any other
+ * to be done over; in the group's time where that has been raised since. Failed stations are tried
+ * again too.
  */
 export async function recomputeClaim(ctx: GroupContext, number: number): Promise<void> {
 	await ctx.db.write(async (tx) => {
@@ -52,7 +53,13 @@ async function again(
 		.where(eq(recomputations.id, id));
 	if (!row) throw new ServiceError('conflict', 'Its recomputation is gone.');
 	if (row.state === 'queued' || row.state === 'running') return id;
-	const longer = row.state === 'done' ? withMoreTime(row.problem) : null;
+	const budget = await groupBudget(tx, ctx.group.id);
+	const longer =
+		row.state === 'done'
+			? withMoreTime(row.problem, budget)
+			: budget > row.problem.seconds
+				? { ...row.problem, seconds: budget }
+				: null;
 	if (!longer) {
 		await requeue(tx, id, ctx.group.id);
 		return id;
@@ -66,8 +73,8 @@ async function again(
 }
 
 /** More time finds more only where a search is cut short by it. */
-function withMoreTime(problem: Problem): Problem | null {
-	const seconds = Math.min(problem.seconds * 2, LONGEST_BUDGET);
+function withMoreTime(problem: Problem, budget: number): Problem | null {
+	const seconds = Math.min(Math.max(problem.seconds * 2, budget), LONGEST_BUDGET);
 	if (problem.quantity === 'see-saw') {
 		return { ...problem, seconds, starts: problem.starts * 2, seed: problem.seed + 1 };
 	}

@@ -7,7 +7,7 @@ import type { claims } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import type { MapText } from '../inequalities/canonical-subject';
 import { findOrCreateInequality, queueStations } from '../inequalities/find-or-create-inequality';
-import { budgetSeconds } from '../recomputations/budget';
+import { budgetSeconds, groupBudget } from '../recomputations/budget';
 import { claimProblem } from '../recomputations/claim-problem';
 import { queueRecomputation } from '../recomputations/queue-recomputation';
 import type { ProblemSubjectData } from '../recomputations/station-problems';
@@ -92,8 +92,8 @@ async function storeSubject(
 	}
 	const placed = { functional, latex: latex ?? '', family, place };
 	const inequality = await findOrCreateInequality(tx, placed, now);
-	const seconds = budgetSeconds();
-	await queueStations(tx, inequality, ctx.group.id, seconds, now);
+	await queueStations(tx, inequality, ctx.group.id, budgetSeconds(), now);
+	const seconds = await groupBudget(tx, ctx.group.id);
 	const queue = async (about: ProblemSubjectData, inequalityId: string | null) => {
 		const found = claimProblem(input, quantity, about, seconds);
 		if ('why' in found) return null;

@@ -3,11 +3,11 @@ import { RESERVED_SLUGS, slugFromName, startGroupInput } from '../../../schemas/
 import type { GroupView } from '../../../schemas/views';
 import type { UserContext } from '../../context';
 import { groups, memberships } from '../../db/schema';
-import { isUniqueViolation } from '../../db/write';
 import { ServiceError } from '../../errors';
 import { newId } from '../../ids';
 import { recordAudit } from '../audit';
 import { parseInput } from '../parse-input';
+import { addressIsTaken, isAddressTaken } from './move-address';
 
 /**
  * Starts a group; whoever starts it is its owner.
@@ -25,24 +25,19 @@ export async function startGroup(
 	}
 	const group = { id: newId(), slug, name, description };
 	const at = ctx.now();
-	try {
-		await ctx.db.write(async (tx) => {
-			await tx.insert(groups).values({ ...group, createdBy: ctx.actor.id, createdAt: at });
-			await tx
-				.insert(memberships)
-				.values({ groupId: group.id, userId: ctx.actor.id, role: 'owner', createdAt: at });
-			await recordAudit(tx, ctx, {
-				action: 'group.started',
-				entity: 'group',
-				entityId: group.id,
-				groupId: group.id,
-				after: group
-			});
+	await ctx.db.write(async (tx) => {
+		if (await isAddressTaken(tx, slug, null)) addressIsTaken(slug);
+		await tx.insert(groups).values({ ...group, createdBy: ctx.actor.id, createdAt: at });
+		await tx
+			.insert(memberships)
+			.values({ groupId: group.id, userId: ctx.actor.id, role: 'owner', createdAt: at });
+		await recordAudit(tx, ctx, {
+			action: 'group.started',
+			entity: 'group',
+			entityId: group.id,
+			groupId: group.id,
+			after: group
 		});
-	} catch (error) {
-		if (!isUniqueViolation(error)) throw error;
-		const message = `The address /g/${slug} is taken; choose another`;
-		throw new ServiceError('conflict', message, [{ field: 'slug', message }]);
-	}
+	});
 	return { ...group, role: 'owner' };
 }

@@ -3,6 +3,7 @@ import type { UserContext } from '../../context';
 import { invitations, memberships } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { recordAudit } from '../audit';
+import { dropInvitationMail } from './drop-invitations';
 import { findInvitation, findJoinedGroup } from './find-invitation';
 
 /**
@@ -31,6 +32,7 @@ export async function acceptInvitation(
 			.update(invitations)
 			.set({ usedBy: ctx.actor.id, usedAt: at })
 			.where(eq(invitations.id, invitation.id));
+		await dropInvitationMail(tx, invitation.id);
 		await recordAudit(tx, ctx, {
 			action: 'member.joined',
 			entity: 'user',

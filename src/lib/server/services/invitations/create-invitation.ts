@@ -8,7 +8,8 @@ import { hashToken, newId, newToken } from '../../ids';
 import { recordAudit } from '../audit';
 import { parseInput } from '../parse-input';
 
-export const INVITATION_DAYS = 14;
+const INVITATION_DAYS = 14;
+export const expiryOf = (from: Date) => new Date(from.getTime() + INVITATION_DAYS * 86_400_000);
 
 export interface CreatedInvitation {
 	readonly id: string;
@@ -35,7 +36,7 @@ export async function createInvitation(
 	const id = newId();
 	const token = newToken();
 	const createdAt = ctx.now();
-	const expiresAt = new Date(createdAt.getTime() + INVITATION_DAYS * 86_400_000);
+	const expiresAt = expiryOf(createdAt);
 	await ctx.db.write(async (tx) => {
 		await tx.insert(invitations).values({
 			id,

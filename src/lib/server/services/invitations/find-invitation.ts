@@ -8,6 +8,8 @@ import { hashToken } from '../../ids';
 export interface OpenInvitation {
 	readonly id: string;
 	readonly role: Role;
+	/** Where it was mailed to; null for a link that is passed on. */
+	readonly email: string | null;
 	readonly group: { readonly id: string; readonly slug: string; readonly name: string };
 }
 
@@ -21,6 +23,7 @@ export async function findInvitation(
 		.select({
 			id: invitations.id,
 			role: invitations.role,
+			email: invitations.email,
 			group: { id: groups.id, slug: groups.slug, name: groups.name }
 		})
 		.from(invitations)
@@ -34,6 +37,12 @@ export async function findInvitation(
 			)
 		);
 	return found ?? null;
+}
+
+/** The address a mailed joining link was sent to, by the link's path; for signing up with it. */
+export async function invitedAddress(ctx: Context, path: string): Promise<string> {
+	const token = /^\/join\/([\w-]{20,100})$/.exec(path)?.[1];
+	return (token && (await findInvitation(ctx, token))?.email) ?? '';
 }
 
 /**

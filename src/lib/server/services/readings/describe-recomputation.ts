@@ -1,14 +1,17 @@
 import type { ClaimInput } from '../../../schemas/claim-input';
 import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
 import type { ReadClaimInput } from '../claims/read-claim-input';
-import { budgetSeconds } from '../recomputations/budget';
 import { claimProblem, quantityInfo } from '../recomputations/claim-problem';
 import { problemLabel } from '../recomputations/problem-label';
 
-/** `Will be recomputed by ...`, or why it can't be; null while too little is known. */
+/**
+ * `Will be recomputed by ...`, or why it can't be; null while too little is known.
+ * @param seconds computing time the group's recomputations get
+ */
 export function describeRecomputation(
 	input: ClaimInput,
-	{ subject, quantity }: ReadClaimInput
+	{ subject, quantity }: ReadClaimInput,
+	seconds: number
 ): string | null {
 	if (quantityInfo(input.quantity).solver === null) {
 		return 'No solver serves this quantity yet: the claim will be Open until a person reproduces it.';
@@ -20,7 +23,7 @@ export function describeRecomputation(
 		input,
 		quantity,
 		{ outputs, terms: termsOfFunctional(functional) },
-		budgetSeconds()
+		seconds
 	);
 	if ('why' in found) return `Will be Open: ${found.why}.`;
 	const { problem } = found;

@@ -15,6 +15,7 @@ import { scenarioSentence } from '../inequalities/scenario-words';
 import { loadStations, stationsView } from '../inequalities/stations-view';
 import { isVisibleToGroup } from '../inequalities/visibility';
 import { parseInput } from '../parse-input';
+import { groupBudget } from '../recomputations/budget';
 import { describeRecomputation } from './describe-recomputation';
 
 /**
@@ -30,6 +31,7 @@ export async function readClaim(
 	const { subject, place, stated, paper } = read;
 	const functional = subject?.functional ?? null;
 	const known = place && (await findKnown(ctx, place));
+	const seconds = await groupBudget(ctx.db.read, ctx.group.id);
 	return {
 		formulaHtml: subject?.latex ? typeset(subject.latex, true) : null,
 		latex: subject?.latex ?? null,
@@ -40,7 +42,7 @@ export async function readClaim(
 		stations: known?.stations ?? null,
 		value: stated?.text ?? null,
 		valueRange: stated && rangeOf(stated),
-		recomputedBy: describeRecomputation(input, read),
+		recomputedBy: describeRecomputation(input, read, seconds),
 		reference: paper && (paper.kind === 'known' ? paper.formatted : paper.parsed.formatted),
 		issues: [...issues, ...typedIssues(input, read)]
 	};

@@ -18,7 +18,8 @@ export const load: PageServerLoad = async (event) => {
 	return {
 		groupName: invitation.group.name,
 		role: invitation.role,
-		signedIn: actor !== null,
+		email: invitation.email,
+		signedInAs: actor && actor.email,
 		next: encodeURIComponent(event.url.pathname)
 	};
 };

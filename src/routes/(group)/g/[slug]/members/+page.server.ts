@@ -1,73 +1,54 @@
-import { mayChangeRoles, mayInvite } from '$lib/ledger/group-policy';
-import { ROLES } from '$lib/ledger/roles';
+import { readAddressList } from '$lib/schemas/address-list';
 import { requireRole } from '$lib/server/auth/guards';
-import { failWith } from '$lib/server/http/action-error';
-import { changeRole, removeMember } from '$lib/server/services/groups/change-role';
-import { listMembers } from '$lib/server/services/groups/list-members';
+import { groupAction } from '$lib/server/http/group-action';
+import { countRequest } from '$lib/server/http/request-limits';
+import { changeRole } from '$lib/server/services/groups/change-role';
+import { leaveGroup } from '$lib/server/services/groups/leave-group';
+import { removeMember } from '$lib/server/services/groups/remove-member';
+import { showMembers } from '$lib/server/services/groups/show-members';
+import { transferOwnership } from '$lib/server/services/groups/transfer-ownership';
 import { createInvitation } from '$lib/server/services/invitations/create-invitation';
-import { listInvitations } from '$lib/server/services/invitations/list-invitations';
+import { inviteByEmail } from '$lib/server/services/invitations/invite-by-email';
+import { resendInvitation } from '$lib/server/services/invitations/resend-invitation';
 import { revokeInvitation } from '$lib/server/services/invitations/revoke-invitation';
-import { redirect, type RequestEvent } from '@sveltejs/kit';
+import { redirect } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async (event) => {
 	const ctx = await requireRole(event, 'observer');
-	return {
-		group: { slug: ctx.group.slug, name: ctx.group.name },
-		members: await listMembers(ctx),
-		invitations: await listInvitations(ctx),
-		self: ctx.actor.id,
-		roles: ROLES,
-		mayChangeRoles: mayChangeRoles(ctx.role),
-		invitable: ROLES.filter((role) => mayInvite(ctx.role, role))
-	};
+	return { group: { slug: ctx.group.slug, name: ctx.group.name }, ...(await showMembers(ctx)) };
 };
 
-async function field(event: RequestEvent, ...names: string[]): Promise<string[]> {
-	const data = await event.request.formData();
-	return names.map((name) => String(data.get(name) ?? ''));
-}
+const done = async (work: Promise<unknown>, sentence: string) => (await work, { done: sentence });
 
 export const actions: Actions = {
-	invite: async (event) => {
-		const ctx = await requireRole(event, 'maintainer');
-		try {
-			const [role = ''] = await field(event, 'role');
-			const { link, expiresAt } = await createInvitation(ctx, { role });
-			return { link, until: expiresAt.toISOString() };
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-	},
-	revoke: async (event) => {
-		const ctx = await requireRole(event, 'maintainer');
-		try {
-			const [id = ''] = await field(event, 'id');
-			await revokeInvitation(ctx, id);
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-		return { done: 'The link is revoked.' };
-	},
-	role: async (event) => {
-		const ctx = await requireRole(event, 'owner');
-		try {
-			const [userId = '', role = ''] = await field(event, 'user', 'role');
-			await changeRole(ctx, { userId, role });
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-		return { done: 'The role is changed.' };
-	},
-	remove: async (event) => {
-		const ctx = await requireRole(event, 'observer');
-		const [user = ''] = await field(event, 'user');
-		try {
-			await removeMember(ctx, user);
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-		if (user === ctx.actor.id) redirect(303, '/account?left');
-		return { done: 'Removed from the group.' };
-	}
+	mail: groupAction('maintainer', async (ctx, field, event) => {
+		const emails = field('emails');
+		await countRequest(event, 'invitation', readAddressList(emails).addresses.length);
+		return { mailed: await inviteByEmail(ctx, { emails, role: field('role') }) };
+	}),
+	invite: groupAction('maintainer', async (ctx, field) => {
+		const { link, expiresAt } = await createInvitation(ctx, { role: field('role') });
+		return { link, until: expiresAt.toISOString() };
+	}),
+	resend: groupAction('maintainer', async (ctx, field, event) => {
+		await countRequest(event, 'invitation');
+		const { email } = await resendInvitation(ctx, field('id'));
+		return { done: `The invitation goes to ${email} once more.` };
+	}),
+	revoke: groupAction('maintainer', (ctx, field) =>
+		done(revokeInvitation(ctx, field('id')), 'The invitation is revoked.')
+	),
+	role: groupAction('owner', (ctx, field) =>
+		done(changeRole(ctx, { userId: field('user'), role: field('role') }), 'The role is changed.')
+	),
+	remove: groupAction('observer', async (ctx, field) => {
+		const user = field('user');
+		if (user !== ctx.actor.id) return done(removeMember(ctx, user), 'Removed from the group.');
+		await leaveGroup(ctx);
+		redirect(303, '/account?left');
+	}),
+	transfer: groupAction('owner', (ctx, field) =>
+		done(transferOwnership(ctx, field('user')), 'The group is handed over. You are a maintainer.')
+	)
 };

@@ -1,0 +1,48 @@
+import { NotationError, NotationLimitError } from '../../../nonlocality/exact/notation-error';
+import { functionalOfTerms, termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
+import type { Problem } from '../../../nonlocality/problem';
+import { IDENTITY_TEXT, readMap, type AffineMap } from '../inequalities/affine';
+import { canonicalSubject, mapBetween } from '../inequalities/canonical-subject';
+import type { InequalityRecord } from '../inequalities/inequality-rows';
+
+/** Why a certificate is not one of the claim's inequality; a sentence for its person. */
+export class OtherInequality extends Error {}
+
+/**
+ * The map from a problem's functional to the inequality's representative, when they are one
+ * inequality: value of the representative = scale * value of the problem + shift.
+ * @throws OtherInequality
+ */
+export function placeResult(problem: Problem, inequality: InequalityRecord): AffineMap {
+	const functional = functionalOfTerms({ outputs: problem.outputs }, problem.terms);
+	const representative = functionalOfTerms({ outputs: inequality.outputs }, inequality.terms);
+	const text = (f: typeof functional) => JSON.stringify([f.scenario.outputs, termsOfFunctional(f)]);
+	if (text(functional) === text(representative)) return readMap(IDENTITY_TEXT);
+	const place = canonicalSubject(functional);
+	if (place.version !== inequality.digestVersion || place.digest !== inequality.digest) {
+		throw new OtherInequality(
+			'This certificate is of another inequality than the claim: they are not the same up to ' +
+				'relabelling, a positive factor and a constant.'
+		);
+	}
+	// Irrational coefficients are compared by their digits, which proves nothing of an exact bound.
+	const isRational = functional.terms.every(({ coefficient }) => coefficient.exact !== null);
+	if (place.numerical || !isRational) {
+		throw new OtherInequality(
+			'This certificate’s functional has irrational coefficients, so that it can’t be proved to ' +
+				'be the claim’s in another form. Write its problem with the terms that the ' +
+				'inequality’s own results have, and certify that.'
+		);
+	}
+	try {
+		return readMap(mapBetween(place, inequality));
+	} catch (error) {
+		if (error instanceof NotationError || error instanceof NotationLimitError) {
+			throw new OtherInequality(
+				'The factor between this certificate’s functional and the claim’s is too long a number. ' +
+					'Certify the inequality in a simpler normalisation.'
+			);
+		}
+		throw error;
+	}
+}

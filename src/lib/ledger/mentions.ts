@@ -88,3 +88,25 @@ function longestHandle(
 	}
 	return null;
 }
+
+/** The mention that is being typed before the caret: where its `@` stands, and what follows it. */
+export function mentionTyped(
+	text: string,
+	caret: number
+): { readonly start: number; readonly typed: string } | null {
+	const match = /(?<![\p{L}\p{N}\p{M}_@./+-])@([\p{L}\p{N}\p{M}-]*)$/u.exec(text.slice(0, caret));
+	return match ? { start: match.index, typed: match[1] ?? '' } : null;
+}
+
+const MOST_SUGGESTIONS = 6;
+
+/** The handles that start as typed, or whose person has a name that does. */
+export function suggestHandles<H extends Pick<Handle, 'handle' | 'name'>>(
+	handles: readonly H[],
+	typed: string
+): readonly H[] {
+	const start = handleOf(typed);
+	return handles
+		.filter(({ handle, name }) => `-${handle}-${handleOf(name)}`.includes(`-${start}`))
+		.slice(0, MOST_SUGGESTIONS);
+}

@@ -37,7 +37,7 @@ export interface DiscussionView {
 
 /** What a page's form data says when a comment was refused: beside its form, with what was typed. */
 export interface RefusedComment {
-	/** Id of the comment; empty for a new one. */
+	/** Id of the comment; empty for a new one; `remove-` before it when it could not be removed. */
 	readonly id: string;
 	readonly body: string;
 	readonly message: string;

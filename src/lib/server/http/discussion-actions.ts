@@ -1,5 +1,6 @@
 import { fail, redirect, type RequestEvent } from '@sveltejs/kit';
 import type { CommentSubject } from '../../ledger/comments';
+import type { RefusedComment } from '../../schemas/talk-views';
 import { requireRole } from '../auth/guards';
 import type { GroupContext } from '../context';
 import { ServiceError } from '../errors';
@@ -8,14 +9,6 @@ import { editComment } from '../services/comments/edit-comment';
 import { removeComment } from '../services/comments/remove-comment';
 import { failWith } from './action-error';
 import { countRequest } from './request-limits';
-
-/** What a page's form data says when a comment was refused: beside its form, with what was typed. */
-export interface RefusedComment {
-	/** Id of the comment; empty for a new one. */
-	readonly id: string;
-	readonly body: string;
-	readonly message: string;
-}
 
 /**
  * The actions of a discussion, spread into those of the page that shows it. Each ends at the
@@ -27,7 +20,10 @@ export function discussionActions<E extends RequestEvent>(
 	idOf: (ctx: GroupContext, event: E) => Promise<string> | string
 ) {
 	const action =
-		(verb: (ctx: GroupContext, event: E, id: string, body: string) => Promise<string>) =>
+		(
+			form: string,
+			verb: (ctx: GroupContext, event: E, id: string, body: string) => Promise<string>
+		) =>
 		async (event: E) => {
 			const ctx = await requireRole(event, 'observer');
 			const data = await event.request.formData();
@@ -37,20 +33,20 @@ export function discussionActions<E extends RequestEvent>(
 				await countRequest(event, 'comment');
 				at = await verb(ctx, event, id ?? '', body ?? '');
 			} catch (thrown) {
-				return refused(thrown, id ?? '', body ?? '');
+				return refused(thrown, form + (id ?? ''), body ?? '');
 			}
 			redirect(303, `${event.url.pathname}#comment-${at}`);
 		};
 	return {
-		comment: action(async (ctx, event, _, body) => {
+		comment: action('', async (ctx, event, _, body) => {
 			const subjectId = await idOf(ctx, event);
 			return (await addComment(ctx, { subject, subjectId, body })).id;
 		}),
-		'edit-comment': action(async (ctx, _, id, body) => {
+		'edit-comment': action('', async (ctx, _, id, body) => {
 			await editComment(ctx, id, body);
 			return id;
 		}),
-		'remove-comment': action(async (ctx, _, id) => {
+		'remove-comment': action('remove-', async (ctx, _, id) => {
 			await removeComment(ctx, id);
 			return id;
 		})

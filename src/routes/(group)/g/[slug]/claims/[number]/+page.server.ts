@@ -1,8 +1,10 @@
 import { requireRole } from '$lib/server/auth/guards';
 import { failWith } from '$lib/server/http/action-error';
+import { discussionActions } from '$lib/server/http/discussion-actions';
 import { answering } from '$lib/server/http/page-errors';
 import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
+import { findClaim } from '$lib/server/services/claims/find-claim';
 import { proposeClaim } from '$lib/server/services/claims/propose-claim';
 import { publishClaim } from '$lib/server/services/claims/publish-claim';
 import { recomputeClaim } from '$lib/server/services/claims/recompute-claim';
@@ -11,6 +13,7 @@ import { showClaim } from '$lib/server/services/claims/show-claim';
 import { supersedeClaim } from '$lib/server/services/claims/supersede-claim';
 import { unpublishClaim } from '$lib/server/services/claims/unpublish-claim';
 import { withdrawClaim } from '$lib/server/services/claims/withdraw-claim';
+import { discussionView } from '$lib/server/services/comments/discussion-view';
 import { cancelRecomputation } from '$lib/server/services/recomputations/cancel-recomputation';
 import { recheckCertificate } from '$lib/server/services/recomputations/recheck-certificate';
 import type { GroupContext } from '$lib/server/context';
@@ -21,7 +24,8 @@ export const load: PageServerLoad = async (event) => {
 	event.depends('merestone:claim');
 	const number = claimNumber(event.params.number);
 	const claim = await answering(() => showClaim(ctx, number));
-	return { claim, role: ctx.role };
+	const discussion = await answering(() => discussionView(ctx, 'claim', claim.id));
+	return { claim, discussion, role: ctx.role };
 };
 
 /** `12` or `#12`; NaN for what is no number, which no claim has. */
@@ -50,6 +54,10 @@ function doing(
 }
 
 export const actions: Actions = {
+	...discussionActions('claim', async (ctx, { params }) => {
+		const claim = await findClaim(ctx.db.read, ctx, claimNumber(params.number ?? ''));
+		return claim.id;
+	}),
 	recompute: doing('Queued again.', recomputeClaim, (event) => countRequest(event, 'change')),
 	withdraw: doing('Withdrawn. It stays in the ledger, struck through.', withdrawClaim),
 	restore: doing('Restored.', restoreClaim),

@@ -68,6 +68,24 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors('/claims/[id]', { GET: same(200) }, { path: (w) => `/claims/${w.publicClaimId}` }),
 	...doors('/claims/[id]', { GET: same(404) }, { path: (w) => `/claims/${w.claimId}` }),
 	...doors(
+		'/claims/[id]/answer',
+		{ GET: same(200), default: same(400) },
+		{ path: (w) => `/claims/${w.publicClaimId}/answer` }
+	),
+	...doors(
+		'/claims/[id]/answer',
+		{ GET: same(404) },
+		{ path: (w) => `/claims/${w.claimId}/answer` }
+	),
+	...doors(
+		'/claims/[id]/answer',
+		{ default: same(404) },
+		{
+			path: (w) => `/claims/${w.claimId}/answer`,
+			fields: { name: 'Mira Arden', email: 'mira@institute.example', message: 'A misprint.' }
+		}
+	),
+	...doors(
 		'/inequalities/[id]',
 		{ GET: same(200) },
 		{ path: (w) => `/inequalities/${w.publicInequalityId}` }
@@ -99,6 +117,21 @@ export const MATRIX: readonly MatrixRow[] = [
 		password: signedIn(401, 400),
 		end: signedIn(401, 404),
 		endOthers: signedIn(401, 200)
+	}),
+	...doors('/account/notifications', { GET: signedIn(303, 200), save: signedIn(401, 200) }),
+	...doors('/news', { GET: signedIn(303, 200), open: signedIn(401, 404), all: signedIn(401, 200) }),
+	// A link of a mail, for whoever holds it; notifications.test.ts has real ones.
+	...doors(
+		'/unsubscribe/[token]',
+		{ GET: same(404), default: same(404) },
+		{ path: () => '/unsubscribe/nobody.comment.none' }
+	),
+	// Only the site's administrator, who is none of these.
+	...doors('/admin/mail', {
+		GET: signedIn(303, 404),
+		retry: signedIn(401, 404),
+		retryDead: signedIn(401, 404),
+		discard: signedIn(401, 404)
 	}),
 	...doors('/groups/new', { GET: signedIn(303, 200), default: signedIn(401, 400) }),
 	...doors('/join/[token]', { GET: same(200) }, { path: (w) => w.link }),
@@ -170,6 +203,13 @@ export const MATRIX: readonly MatrixRow[] = [
 		publish: action('maintainer'),
 		unpublish: action('maintainer')
 	}),
+	// The member entered it, so that somebody else compares it; here with questions left open.
+	...doors(claim, {
+		confirm: action('maintainer', 400),
+		attachNotice: action('member', 400)
+	}),
+	...doors(claim, { removeNotice: action('member', 404) }, { fields: { id: 'none' } }),
+	...doors(claim, { handleMessage: action('maintainer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { supersede: action('member', 400) }, { fields: { by: '999' } }),
 	...doors(claim, { cancel: action('observer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { recheck: action('observer', 404) }, { fields: { id: 'none' } }),

@@ -175,3 +175,12 @@ export interface OutboxRow {
 	readonly createdAt: string;
 	readonly notBefore: string;
 }
+
+export interface OutboxPage {
+	readonly rows: readonly OutboxRow[];
+	/** The state whose mails are shown. */
+	readonly state: OutboxRow['state'];
+	readonly counts: Readonly<Record<OutboxRow['state'], number>>;
+	readonly page: number;
+	readonly pageSize: number;
+}

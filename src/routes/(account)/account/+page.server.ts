@@ -1,6 +1,7 @@
 import { changePasswordInput } from '$lib/schemas/account';
 import { requireUser } from '$lib/server/auth/guards';
 import { failForm, failWith } from '$lib/server/http/action-error';
+import { listFeeds } from '$lib/server/services/calendar/list-feeds';
 import { listGroupsOf } from '$lib/server/services/groups/list-groups-of';
 import { changePassword } from '$lib/server/services/users/change-password';
 import { endOwnSession, endSessionsElsewhere } from '$lib/server/services/users/end-sessions';
@@ -13,9 +14,12 @@ import type { Actions, PageServerLoad } from './$types';
 export const load: PageServerLoad = async (event) => {
 	const ctx = requireUser(event);
 	return {
+		id: ctx.actor.id,
+		id: ctx.actor.id,
 		name: ctx.actor.name,
 		email: ctx.actor.email,
 		memberships: await listGroupsOf(ctx),
+		feeds: await listFeeds(ctx),
 		sessions: await listSessions(ctx, event.locals.sessionId),
 		form: await superValidate(zod4(changePasswordInput))
 	};

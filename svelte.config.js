@@ -1,8 +1,25 @@
 import adapter from '@sveltejs/adapter-node';
 import { vitePreprocess } from '@sveltejs/vite-plugin-svelte';
+import { readFileSync, writeFileSync } from 'node:fs';
 import { buildWorkers } from './src/worker/build.js';
 
 const node = adapter();
+
+/** Bytes; UPLOAD_LIMIT of src/lib/server/http/body-limit.ts, which lets only uploads use it. */
+const BODY_SIZE_LIMIT = 54_000_000;
+
+/**
+ * adapter-node reads the limit from the environment while its modules are evaluated, before any code
+ * of ours: a first import sets it, unless the operator did.
+ */
+function setBodySizeLimit() {
+	writeFileSync(
+		'build/body-size-limit.js',
+		`process.env.BODY_SIZE_LIMIT ??= '${BODY_SIZE_LIMIT}';\n`
+	);
+	const index = readFileSync('build/index.js', 'utf8');
+	writeFileSync('build/index.js', `import './body-size-limit.js';\n${index}`);
+}
 
 /** @type {import('@sveltejs/kit').Config} */
 export default {
@@ -13,6 +30,7 @@ export default {
 			name: 'merestone-node',
 			async adapt(builder) {
 				await node.adapt(builder);
+				setBodySizeLimit();
 				await buildWorkers('build/workers');
 			}
 		},

@@ -1,6 +1,7 @@
 import type { Handle, HandleServerError, ServerInit } from '@sveltejs/kit';
 import { identify } from '$lib/server/auth/session-hook';
 import { asProblem } from '$lib/server/http/api';
+import { refuseBody } from '$lib/server/http/body-limit';
 import { pageShell } from '$lib/server/http/page-shell';
 import { problemResponse } from '$lib/server/http/problem';
 import { isOneClickRoute, mayChangeState } from '$lib/server/http/same-origin';
@@ -15,7 +16,7 @@ export const handle: Handle = async ({ event, resolve }) => {
 	await identify(event);
 	const allowed = isOneClickRoute(event.route.id) || mayChangeState(event.request, event.url);
 	const response = allowed
-		? asProblem(event, await resolve(event, pageShell))
+		? asProblem(event, (await refuseBody(event)) ?? (await resolve(event, pageShell)))
 		: refuse(event.route.id, event.locals.requestId);
 	setSecurityHeaders(event, response);
 	return response;

@@ -10,6 +10,7 @@ const TITLES: Readonly<Record<number, string>> = {
 	404: 'Not found',
 	405: 'Method not allowed',
 	409: 'In conflict with the current state',
+	411: 'Length required',
 	412: 'Changed in the meantime',
 	413: 'Too large',
 	415: 'Not JSON',

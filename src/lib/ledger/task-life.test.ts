@@ -149,10 +149,10 @@ describe('the life of a task', () => {
 
 	it('keeps its state when it is assigned to the one who has it', () => {
 		const same = { kind: 'assign', to: WORKER } as const;
-		expect(nextTask(taskIn('in-progress'), same, maintainer)).toEqual({
-			state: 'in-progress',
-			assigneeId: WORKER
-		});
+		for (const state of ['in-progress', 'submitted'] as const) {
+			expect(nextTask(taskIn(state), same, maintainer)).toEqual({ state, assigneeId: WORKER });
+		}
+		expect(nextTask(taskIn('accepted'), same, maintainer)).toMatchObject({ refused: 'conflict' });
 		expect(nextTask(taskIn('in-progress'), { kind: 'assign', to: null }, maintainer)).toEqual({
 			state: 'open',
 			assigneeId: null

@@ -1,6 +1,6 @@
 import { may, type Action } from './policy';
 import type { Role } from './roles';
-import { ACTIVE_TASK_STATES, TASK_STATE_LABELS, type TaskState } from './tasks';
+import { ACTIVE_TASK_STATES, TASK_STATE_LABELS, isActiveTask, type TaskState } from './tasks';
 
 /** What decides on a task's next state. */
 export interface TaskFacts {
@@ -156,10 +156,13 @@ function roleRefusal(step: TaskStep, who: TaskActor): TaskRefusal | null {
 }
 
 /** A step that is skipped or comes too late. */
-function stateRefusal({ state }: TaskFacts, { kind }: TaskStep): TaskRefusal | null {
-	if (POSSIBLE[kind].includes(state)) return null;
+function stateRefusal({ state, assigneeId }: TaskFacts, step: TaskStep): TaskRefusal | null {
+	if (POSSIBLE[step.kind].includes(state)) return null;
+	// Leaving it with whoever has it changes nothing, also while it waits to be accepted.
+	if (step.kind === 'assign' && step.to === assigneeId && isActiveTask(state)) return null;
 	const now = TASK_STATE_LABELS[state].toLowerCase();
-	return { refused: 'conflict', message: `The task is ${now} now, so it can’t be ${WORD[kind]}.` };
+	const message = `The task is ${now} now, so it can’t be ${WORD[step.kind]}.`;
+	return { refused: 'conflict', message };
 }
 
 function ownRefusal(task: TaskFacts, step: TaskStep, who: TaskActor): TaskRefusal | null {

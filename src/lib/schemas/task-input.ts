@@ -75,6 +75,8 @@ export type TranscriptionInput = z.infer<typeof transcriptionInput>;
 export const TASK_SORTS = ['due', 'newest', 'changed', 'number'] as const;
 
 export const TASK_PAGE_SIZE = 50;
+/** A board shows its columns whole, as far as one can still look over them. */
+export const TASK_BOARD_SIZE = 200;
 
 /** State of the task table and board, all of it in the URL. */
 export const taskQuery = z.object({

@@ -1,4 +1,6 @@
 import { eq, type SQL } from 'drizzle-orm';
+import { publicVerdict } from '../../../ledger/public-verdict';
+import { dayOf } from '../../../ledger/tasks';
 import type { LedgerRow } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, inequalities, recomputations, references } from '../../db/schema';
@@ -11,6 +13,7 @@ import { isOnRule } from '../recomputations/claim-problem';
 import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view';
 import { jobsAhead } from '../recomputations/queue-order';
 import { problemLabel } from '../recomputations/problem-label';
+import { taskMarks } from '../tasks/task-marks';
 import { shortMethod } from './short-method';
 import type { Verdict } from '../../../ledger/verdict';
 
@@ -37,11 +40,16 @@ export function selectClaimRows(read: Reader, where: SQL | undefined) {
 
 export type SelectedClaim = Awaited<ReturnType<typeof selectClaimRows>>[number];
 
-/** What the table shows, for rows in the order given. */
+/**
+ * What the table shows, for rows in the order given.
+ * @param groups whose members look at it: rows of other groups, as the public sees them, show
+ * neither tasks nor people's names
+ */
 export async function claimRows(
 	read: Reader,
 	selected: readonly SelectedClaim[],
-	now: Date
+	now: Date,
+	groups: readonly string[] = []
 ): Promise<LedgerRow[]> {
 	const ids = selected.flatMap(({ claim }) => (claim.inequalityId ? [claim.inequalityId] : []));
 	const stations = await loadStations(read, ids);
@@ -51,9 +59,18 @@ export async function claimRows(
 		read,
 		selected.map(({ claim }) => claim.id)
 	);
+	const viewed = selected.filter(({ claim }) => groups.includes(claim.groupId));
+	const marks = await taskMarks(
+		read,
+		viewed.map(({ claim }) => claim.id),
+		dayOf(now)
+	);
 	const rows: LedgerRow[] = [];
 	for (const { claim, inequality, reference, run } of selected) {
 		const map = readMap(claim);
+		const isOwn = groups.includes(claim.groupId);
+		const verdict = isOwn ? claim.verdict : publicVerdict(claim.verdict);
+		const task = marks.get(claim.id) ?? null;
 		const onRule = isOnRule(claim.input);
 		const own = onRule && claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
 		rows.push({
@@ -64,19 +81,25 @@ export async function claimRows(
 			relation: claim.relation,
 			printed: claim.printed,
 			printedHtml: printedHtml(claim.printed),
-			verdict: claim.verdict,
-			recomputedBy: recomputedBy(claim.verdict) ?? (run ? problemLabel(run.problem) : ''),
+			verdict,
+			recomputedBy: recomputedBy(verdict) ?? (run ? problemLabel(run.problem) : ''),
 			stations: own.length > 0 ? stationsView(own, map) : null,
 			progress: run && progressView(run, map, now, ahead?.get(run.id)),
 			reference: { ...reference, locator: claim.locator },
 			state: claim.state,
 			visibility: claim.visibility,
 			notices: notices.get(claim.id) ?? [],
-			task: null,
-			wantsTask: false
+			task,
+			wantsTask: isOwn && task === null && wantsTask(claim)
 		});
 	}
 	return rows;
+}
+
+/** What machines do not settle, or what is to be settled with the paper. */
+function wantsTask({ state, status, verdict }: SelectedClaim['claim']): boolean {
+	if (state !== 'active') return false;
+	return status === 'discrepancy' || (status === 'open' && verdict.reasonCode === 'no-solver');
 }
 
 /** Which evidence the verdict rests on, each named once. */

@@ -11,6 +11,7 @@ import {
 	tellDiscrepancy,
 	tellSettled
 } from '../notifications/verdict-notices';
+import { contradictSubmission } from '../tasks/contradict-submission';
 import { findingsCache, type FindingsOf } from './findings';
 import { judgeClaim, type JudgedClaim } from './judge-claim';
 
@@ -72,7 +73,12 @@ async function derive(
 	now: Date,
 	findings: FindingsOf
 ): Promise<void> {
-	const verdict = await judgeClaim(tx, claim, findings);
+	const { verdict, contradicted } = await judgeClaim(tx, claim, findings);
+	if (claim.state !== 'withdrawn') {
+		for (const { submissionId, why } of contradicted) {
+			await contradictSubmission(tx, product(now), submissionId, why);
+		}
+	}
 	const before = claim.verdict;
 	if (JSON.stringify(before) === JSON.stringify(verdict)) return;
 	await tx.update(claims).set({ verdict, status: verdict.status }).where(eq(claims.id, claim.id));
@@ -106,9 +112,18 @@ async function derive(
 }
 
 /** What a reader would call a change: not that a run was queued or started, nor one more digit. */
-function changeKey({ status, reasonCode, diagnosis }: Verdict): string {
+function changeKey({ status, reasonCode, diagnosis, enclosure, contradicting }: Verdict): string {
 	const reason = reasonCode === 'not-run' || reasonCode === 'running' ? 'waiting' : reasonCode;
-	return JSON.stringify([status, reason, diagnosis.map(({ kind, value }) => [kind, value])]);
+	const byPeople = [
+		enclosure?.worth === 'person',
+		contradicting?.map((found) => found.submissionId)
+	];
+	return JSON.stringify([
+		status,
+		reason,
+		diagnosis.map(({ kind, value }) => [kind, value]),
+		byPeople
+	]);
 }
 
 async function areStationsDone(tx: Transaction, inequalityId: string): Promise<boolean> {

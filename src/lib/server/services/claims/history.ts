@@ -26,7 +26,7 @@ const ACTION_TEXT: Readonly<Record<string, string>> = {
 	'claim.transcription-voided': 'Comparison with the paper returned'
 };
 
-const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
+export const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
 	printed: 'Value',
 	relation: 'Relation',
 	reading: 'How it is printed',
@@ -48,7 +48,7 @@ const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
 };
 
 /** Not words for a person. */
-const IDS: ReadonlySet<string> = new Set(['referenceId', 'inequalityId']);
+export const IDS: ReadonlySet<string> = new Set(['referenceId', 'inequalityId']);
 
 /** What happened to a claim, newest first: what people did, and what the recomputation made of it. */
 export async function claimHistory(read: Reader, claimId: string): Promise<HistoryEntry[]> {

@@ -1,7 +1,8 @@
 import { eq } from 'drizzle-orm';
 import type { Evidence } from '../../../ledger/enclosure';
-import { evidenceOfFinding, type AffineMap } from '../../../ledger/evidence';
-import type { RecomputationState } from '../../../ledger/judgement';
+import { evidenceOfFinding, type AffineMap, type Finding } from '../../../ledger/evidence';
+import { judge, type RecomputationState } from '../../../ledger/judgement';
+import { contradictionText, heardReproductions } from '../../../ledger/reproductions';
 import { readStatedValue } from '../../../ledger/stated-value';
 import { deriveVerdict, type Verdict } from '../../../ledger/verdict';
 import type { Rational } from '../../../nonlocality/exact/rational';
@@ -10,8 +11,10 @@ import type { Transaction } from '../../db/client';
 import { inequalities, recomputations, type claims } from '../../db/schema';
 import { readMap, type AffineMap as EnclosedMap } from '../inequalities/affine';
 import { claimProblem, quantityInfo, readQuantity } from '../recomputations/claim-problem';
+import { loadSubmittedFindings } from '../submissions/load-submitted-findings';
 import { explainVerdict } from './explain-verdict';
-import type { FindingsOf, StoredFinding } from './findings';
+import type { FindingsOf } from './findings';
+import { loadReproductions, type StoredReproduction } from './reproductions';
 
 export type JudgedClaim = typeof claims.$inferSelect;
 
@@ -20,17 +23,31 @@ interface OwnRun {
 	readonly state: RecomputationState;
 }
 
+/** A verdict, and what it means for people's submissions. */
+export interface Judged {
+	readonly verdict: Verdict;
+	/** Accepted until now, but excluded by what is proved; with both numbers in a sentence. */
+	readonly contradicted: readonly { readonly submissionId: string; readonly why: string }[];
+}
+
 /** The verdict on a claim from everything that is known in this transaction. Writes nothing. */
 export async function judgeClaim(
 	tx: Transaction,
 	claim: JudgedClaim,
 	findingsOf: FindingsOf
-): Promise<Verdict> {
+): Promise<Judged> {
 	const reading = readStatedValue(claim.printed, claim.reading);
 	const own = await ownRun(tx, claim);
 	const findings = own ? await findingsOf(claim) : [];
 	const map = readMap(claim);
-	const evidence = own ? findings.flatMap((f) => evidenceIn(f, own.problem, map)) : [];
+	// What a person attached and the check accepted is a proof like the machine's.
+	const attached = own ? await loadSubmittedFindings(tx, claim) : [];
+	const computed = own
+		? [...findings, ...attached].flatMap((f) => evidenceIn(f, own.problem, map))
+		: [];
+	const found = await loadReproductions(tx, claim);
+	const heard = heardReproductions(found, computed);
+	const evidence = [...computed, ...heard.map((reproduction) => reproduction.evidence)];
 	const recomputation = own?.state ?? (await noSolver(tx, claim));
 	const input = {
 		reading,
@@ -42,7 +59,28 @@ export async function judgeClaim(
 	const diagnosis = own
 		? await explainVerdict(tx, { claim, judged: input, findings, claimed: own.problem, map })
 		: [];
-	return { ...deriveVerdict(input), diagnosis };
+	const { contradicting } = judge(input);
+	const excluded = found.filter((reproduction) => contradicting.includes(reproduction.evidence));
+	return {
+		verdict: { ...deriveVerdict(input), ...contradictionsOf(excluded), diagnosis },
+		contradicted: excluded
+			.filter(({ state }) => state === 'accepted')
+			.map((reproduction) => ({
+				submissionId: reproduction.submissionId,
+				why: contradictionText(reproduction.found, computed)
+			}))
+	};
+}
+
+function contradictionsOf(excluded: readonly StoredReproduction[]): Pick<Verdict, 'contradicting'> {
+	if (excluded.length === 0) return {};
+	return {
+		contradicting: excluded.map(({ submissionId, taskNumber, evidence }) => ({
+			submissionId,
+			taskNumber,
+			label: evidence.lowerLabel
+		}))
+	};
 }
 
 async function ownRun(tx: Transaction, claim: JudgedClaim): Promise<OwnRun | null> {
@@ -86,7 +124,7 @@ async function noSolver(tx: Transaction, claim: JudgedClaim): Promise<Recomputat
  * the enclosed map allows, so that what was proved stays proved.
  */
 function evidenceIn(
-	finding: StoredFinding,
+	finding: Finding,
 	claimed: Problem,
 	{ scale, shift }: EnclosedMap
 ): readonly Evidence[] {

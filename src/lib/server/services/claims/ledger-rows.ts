@@ -14,5 +14,5 @@ export async function ledgerRows(
 		ctx.db.read,
 		and(eq(claims.groupId, ctx.group.id), inArray(claims.number, [...numbers]))
 	).orderBy(asc(claims.number));
-	return claimRows(ctx.db.read, selected, ctx.now());
+	return claimRows(ctx.db.read, selected, ctx.now(), [ctx.group.id]);
 }

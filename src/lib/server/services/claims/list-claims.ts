@@ -62,7 +62,7 @@ export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise
 		.groupBy(claims.quantity)
 		.orderBy(desc(count()), asc(claims.quantity));
 	return {
-		rows: await claimRows(read, selected, ctx.now()),
+		rows: await claimRows(read, selected, ctx.now(), [ctx.group.id]),
 		total,
 		counts,
 		page,

@@ -1,5 +1,6 @@
 import { and, eq } from 'drizzle-orm';
 import { COMPARED_BY_SECOND, PUBLIC_DISCREPANCY } from '../../../ledger/publication';
+import { publicVerdict } from '../../../ledger/public-verdict';
 import type { PublicClaimView } from '../../../schemas/views';
 import type { Context } from '../../context';
 import { claims } from '../../db/schema';
@@ -35,7 +36,7 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		state: whole.state,
 		visibility: whole.visibility,
 		supersededBy: await publicSuccessor(ctx, claim.supersededById),
-		verdict: whole.verdict,
+		verdict: publicVerdict(whole.verdict),
 		confirmed: whole.confirmed,
 		notices: publicNotices(whole.notices),
 		wording: whole.verdict.status === 'discrepancy' ? DISCREPANCY_WORDING : null,

@@ -49,7 +49,9 @@ export async function changedClaims(
 	const shown = new Map(turns.slice(0, limit));
 	if (shown.size === 0) return { rows: [], total: 0 };
 	const selected = await selectClaimRows(read, inArray(claims.id, [...shown.keys()]));
-	const rows = new Map((await claimRows(read, selected, ctx.now())).map((row) => [row.id, row]));
+	const own = selected.map(({ claim }) => claim.groupId);
+	const views = await claimRows(read, selected, ctx.now(), own);
+	const rows = new Map(views.map((row) => [row.id, row]));
 	const groupOf = await groupsOf(ctx, [...shown.keys()]);
 	return {
 		total: turns.length,

@@ -32,7 +32,8 @@ export async function standingDiscrepancies(
 	const selected = await selectClaimRows(read, standing)
 		.orderBy(desc(claims.updatedAt), desc(claims.id))
 		.limit(limit);
-	const rows = await claimRows(read, selected, ctx.now());
+	const own = groups.map(({ id }) => id);
+	const rows = await claimRows(read, selected, ctx.now(), own);
 	const groupOf = new Map(selected.map(({ claim }) => [claim.id, claim.groupId]));
 	return {
 		ofGroup: new Map(counted.map(({ groupId, total }) => [groupId, total])),

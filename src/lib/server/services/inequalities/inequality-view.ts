@@ -15,13 +15,15 @@ import { loadStations, stationSides, stationsView } from './stations-view';
 /**
  * The page of one inequality, every value in the chosen normalisation.
  * @param visible which of its claims the viewer may see
+ * @param groups whose members look at it; none: anybody
  */
 export async function inequalityView(
 	read: Reader,
 	row: InequalityRecord,
 	visible: SQL | undefined,
 	normalisation: string | undefined,
-	now: Date
+	now: Date,
+	groups: readonly string[] = []
 ): Promise<InequalityView> {
 	const stations = (await loadStations(read, [row.id])).get(row.id) ?? [];
 	const own = stationSides(stations, readMap(IDENTITY_TEXT)).local;
@@ -56,6 +58,6 @@ export async function inequalityView(
 		normalisation: { key: chosen.key, label: chosen.label },
 		normalisations: choices.map(({ key, label }) => ({ key, label })),
 		recomputations: await recomputationViews(read, runs, map, now),
-		claimRows: await claimRows(read, selected, now)
+		claimRows: await claimRows(read, selected, now, groups)
 	};
 }

@@ -19,5 +19,5 @@ export async function showInequality(
 		throw new ServiceError('not-found', 'There is no such inequality.');
 	}
 	const own = eq(claims.groupId, ctx.group.id);
-	return inequalityView(read, row, own, normalisation, ctx.now());
+	return inequalityView(read, row, own, normalisation, ctx.now(), [ctx.group.id]);
 }

@@ -1,0 +1,32 @@
+import { quantityInfo } from '../recomputations/claim-problem';
+import type { ClaimRow } from './find-claim';
+
+export type KeyedClaim = Pick<ClaimRow, 'input' | 'inequalityId' | 'scale' | 'shift' | 'subject'>;
+
+/**
+ * What a claim is about: its subject, the quantity and that quantity's parameters, in the claim's
+ * own normalisation. Evidence by people counts only while this stays the same; printed value,
+ * relation, paper and notes are not part of it. The same functional written otherwise has one key.
+ */
+export function quantityKey({ input, inequalityId, scale, shift, subject }: KeyedClaim): string {
+	const { parameters } = quantityInfo(input.quantity);
+	const of = (parameter: (typeof parameters)[number], value: string | boolean) =>
+		parameters.includes(parameter) ? value : null;
+	return JSON.stringify([
+		inequalityId === null ? ['in words', plain(subject)] : [inequalityId, scale, shift],
+		input.quantity,
+		of('sense', input.sense),
+		of('level', plain(input.level).replaceAll(' ', '').toUpperCase()),
+		of('nonNegative', input.nonNegative),
+		of('dimension', plain(input.dimension))
+	]);
+}
+
+/** Whether a key is of the same inequality: a certificate says of others of its quantities, too. */
+export function isOfInequality(key: string, { inequalityId }: KeyedClaim): boolean {
+	const parts: unknown = JSON.parse(key);
+	const subject: unknown = Array.isArray(parts) ? parts[0] : null;
+	return inequalityId !== null && Array.isArray(subject) && subject[0] === inequalityId;
+}
+
+const plain = (text: string) => text.replace(/\s+/g, ' ').trim();

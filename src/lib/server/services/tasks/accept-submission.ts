@@ -1,0 +1,55 @@
+import { eq } from 'drizzle-orm';
+import type { GroupContext } from '../../context';
+import type { Transaction } from '../../db/client';
+import { claims, submissions, tasks } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import { deriveClaim } from '../claims/derive-claim';
+import { quantityKey } from '../claims/quantity-key';
+import type { SubmissionRecord } from './find-task';
+import { changeTask } from './step-task';
+import { tell } from './tell';
+
+/**
+ * Accepts what was submitted; a value found enters the claim's verdict at once. When a certificate
+ * excludes it, it is marked as contradicted and its task reopened in the same transaction.
+ * @returns whether the task is reopened
+ */
+export async function acceptSubmission(
+	ctx: GroupContext,
+	number: number
+): Promise<{ contradicted: boolean }> {
+	let contradicted = false;
+	await changeTask(
+		ctx,
+		number,
+		{ kind: 'accept' },
+		{ audit: 'task.accepted', columns: { reason: '' } },
+		async (tx, { task, submission }) => {
+			if (!submission) throw new ServiceError('conflict', 'There is nothing to accept.');
+			await requireCurrent(tx, submission);
+			await tx
+				.update(submissions)
+				.set({ state: 'accepted', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: '' })
+				.where(eq(submissions.id, submission.id));
+			await deriveClaim(tx, task.claimId, ctx.now());
+			const [after] = await tx
+				.select({ state: tasks.state })
+				.from(tasks)
+				.where(eq(tasks.id, task.id));
+			contradicted = after?.state !== 'accepted';
+			if (!contradicted) await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy]);
+		}
+	);
+	return { contradicted };
+}
+
+/** A value that was found for something else would be accepted and count for nothing. */
+async function requireCurrent(tx: Transaction, submission: SubmissionRecord): Promise<void> {
+	if (submission.kind !== 'value') return;
+	const [claim] = await tx.select().from(claims).where(eq(claims.id, submission.claimId));
+	if (claim && quantityKey(claim) === submission.quantityKey) return;
+	throw new ServiceError(
+		'conflict',
+		'The claim was edited since and is about something else than this value: return it, so that the value is found again.'
+	);
+}

@@ -1,0 +1,103 @@
+import { eq } from 'drizzle-orm';
+import { submitInput, type SubmitInput } from '../../../schemas/task-input';
+import type { GroupContext } from '../../context';
+import type { Reader, Transaction } from '../../db/client';
+import { claims, submissions } from '../../db/schema';
+import { ServiceError } from '../../errors';
+import { newId } from '../../ids';
+import { deriveClaim } from '../claims/derive-claim';
+import type { ClaimRow } from '../claims/find-claim';
+import { quantityKey } from '../claims/quantity-key';
+import {
+	discardFiles,
+	recordFiles,
+	storeFiles,
+	type StoredFile,
+	type UploadedFile
+} from '../evidence-files/keep-files';
+import { parseInput } from '../parse-input';
+import { recordTranscriptionCheck } from '../transcriptions/record-transcription-check';
+import { findTask } from './find-task';
+import { readSubmission, type ReadSubmission } from './read-submission';
+import { asActor, refuseStep, stepTask } from './step-task';
+import { deciders, tell } from './tell';
+
+/**
+ * Hands in what was found. A certificate is judged by its check at once; anything else waits for
+ * somebody else to accept it. Nothing is kept when anything of it is refused.
+ * @throws ServiceError forbidden, conflict; invalid with an issue for each field at fault
+ */
+export async function submitTask(
+	ctx: GroupContext,
+	number: number,
+	input: Partial<SubmitInput>,
+	files: readonly UploadedFile[] = []
+): Promise<{ id: string }> {
+	const asks = parseInput(submitInput, input);
+	const { read } = ctx.db;
+	const task = await findTask(read, ctx, number);
+	// Asked again in the transaction; here so that nothing is checked or stored in vain.
+	await refuseStep(read, task, { kind: 'submit' }, asActor(ctx));
+	const claim = await claimOf(read, task.claimId);
+	const found = await readSubmission(ctx, task, claim, asks, files.length);
+	const stored = await storeFiles(ctx, files);
+	try {
+		return await ctx.db.write((tx) => write(tx, ctx, { number, claim, found, stored }));
+	} catch (error) {
+		await discardFiles(stored);
+		throw error;
+	}
+}
+
+interface Handed {
+	readonly number: number;
+	/** As it was when the submission was read. */
+	readonly claim: ClaimRow;
+	readonly found: ReadSubmission;
+	readonly stored: readonly StoredFile[];
+}
+
+async function write(
+	tx: Transaction,
+	ctx: GroupContext,
+	{ number, claim, found, stored }: Handed
+): Promise<{ id: string }> {
+	const before = await findTask(tx, ctx, number);
+	const current = await claimOf(tx, before.claimId);
+	const key = quantityKey(current);
+	if (key !== quantityKey(claim)) {
+		throw new ServiceError(
+			'conflict',
+			'The claim was edited while this was on its way, and is about something else now. Look at it again.'
+		);
+	}
+	const id = newId();
+	const { columns, comparison } = found;
+	const { kind, printed, relation } = columns;
+	const { task } = await stepTask(tx, ctx, before, { kind: 'submit' }, asActor(ctx), {
+		audit: 'task.submitted',
+		after: { submissionId: id, submission: kind, printed, relation, files: stored.length }
+	});
+	await tx.insert(submissions).values({
+		...columns,
+		id,
+		taskId: task.id,
+		claimId: claim.id,
+		quantityKey: key,
+		submittedBy: ctx.actor.id,
+		submittedAt: ctx.now()
+	});
+	await recordFiles(tx, ctx, id, stored);
+	if (comparison) {
+		await recordTranscriptionCheck(tx, ctx, current, { ...comparison, taskId: task.id });
+	}
+	if (kind === 'certificate') await deriveClaim(tx, claim.id, ctx.now());
+	await tell(tx, ctx, 'task-submitted', task, await deciders(tx, task.groupId));
+	return { id };
+}
+
+async function claimOf(read: Reader, id: string): Promise<ClaimRow> {
+	const [claim] = await read.select().from(claims).where(eq(claims.id, id));
+	if (!claim) throw new ServiceError('not-found', 'The claim of this task is gone.');
+	return claim;
+}

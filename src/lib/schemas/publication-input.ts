@@ -67,5 +67,5 @@ export type AuthorMessageInput = z.input<typeof authorMessageInput>;
 
 /** The form has one more field, which no person sees: what fills it in is a program. */
 export const authorMessageForm = authorMessageInput.extend({
-	homepage: z.string().max(10_000).default('')
+	remark: z.string().max(10_000).default('')
 });

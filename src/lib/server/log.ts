@@ -29,7 +29,8 @@ export function securityEvent(
 		| 'sign-out'
 		| 'denied'
 		| 'rate-limited'
-		| 'cross-site',
+		| 'cross-site'
+		| 'honeypot',
 	details: Readonly<Record<string, string | number | null>>
 ): void {
 	log().info({ security: event, ...details });

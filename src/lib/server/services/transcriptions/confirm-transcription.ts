@@ -3,6 +3,7 @@ import type { GroupContext } from '../../context';
 import { ServiceError } from '../../errors';
 import { findClaim } from '../claims/find-claim';
 import { parseInput } from '../parse-input';
+import { requireMayConfirm } from './may-confirm';
 import { readComparison } from './read-comparison';
 import { recordTranscriptionCheck } from './record-transcription-check';
 
@@ -18,6 +19,7 @@ export async function confirmTranscription(
 	const { version, note, ...answers } = parseInput(transcriptionInput, input);
 	return ctx.db.write(async (tx) => {
 		const claim = await findClaim(tx, ctx, number);
+		await requireMayConfirm(tx, ctx, claim);
 		if (claim.version !== version) {
 			throw new ServiceError(
 				'conflict',

@@ -1,12 +1,11 @@
 import type { GroupContext } from '../../context';
 import type { Transaction } from '../../db/client';
 import { transcriptionChecks } from '../../db/schema';
-import { ServiceError } from '../../errors';
 import { newId } from '../../ids';
 import { recordAudit } from '../audit';
 import type { ClaimRow } from '../claims/find-claim';
 import { notify } from '../notifications/notify';
-import { mayConfirm } from './may-confirm';
+import { requireMayConfirm } from './may-confirm';
 import { requireNote, type Comparison } from './read-comparison';
 import { settleConfirmation } from './settle-confirmation';
 import { editorOf } from './wrote-version';
@@ -29,15 +28,7 @@ export async function recordTranscriptionCheck(
 	claim: ClaimRow,
 	check: TranscriptionCheck
 ): Promise<{ id: string; confirmed: boolean }> {
-	if (claim.state === 'withdrawn') {
-		throw new ServiceError('conflict', 'This claim is withdrawn.');
-	}
-	if (!(await mayConfirm(tx, ctx, claim))) {
-		throw new ServiceError(
-			'forbidden',
-			'A claim is compared with its paper by a second person: a member who neither entered nor edited it.'
-		);
-	}
+	await requireMayConfirm(tx, ctx, claim);
 	requireNote(check);
 	const now = ctx.now();
 	const id = newId();

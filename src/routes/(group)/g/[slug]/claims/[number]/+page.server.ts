@@ -2,6 +2,8 @@ import { requireRole } from '$lib/server/auth/guards';
 import { failWith } from '$lib/server/http/action-error';
 import { discussionActions } from '$lib/server/http/discussion-actions';
 import { answering } from '$lib/server/http/page-errors';
+import { loadPublication } from '$lib/server/http/publication-data';
+import { publicationActions } from '$lib/server/http/publication-actions';
 import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
 import { findClaim } from '$lib/server/services/claims/find-claim';
@@ -25,7 +27,8 @@ export const load: PageServerLoad = async (event) => {
 	const number = claimNumber(event.params.number);
 	const claim = await answering(() => showClaim(ctx, number));
 	const discussion = await answering(() => discussionView(ctx, 'claim', claim.id));
-	return { claim, discussion, role: ctx.role };
+	const publication = await answering(() => loadPublication(ctx, claim));
+	return { claim, discussion, publication, role: ctx.role };
 };
 
 /** `12` or `#12`; NaN for what is no number, which no claim has. */
@@ -70,6 +73,10 @@ export const actions: Actions = {
 	cancel: doing('Cancelled.', (ctx, _number, data) =>
 		cancelRecomputation(ctx, String(data.get('id')))
 	),
+	confirm: publicationActions.confirm,
+	attachNotice: publicationActions.attachNotice,
+	removeNotice: publicationActions.removeNotice,
+	handleMessage: publicationActions.handleMessage,
 	recheck: async (event) => {
 		const ctx = await requireRole(event, 'observer');
 		const id = String((await event.request.formData()).get('id'));

@@ -1,0 +1,89 @@
+import { fail, type RequestEvent } from '@sveltejs/kit';
+import { noticeInput } from '../../schemas/publication-input';
+import { transcriptionInput } from '../../schemas/task-input';
+import { requireRole } from '../auth/guards';
+import { ServiceError } from '../errors';
+import { handleAuthorMessage } from '../services/author-messages/handle-author-message';
+import { attachNotice } from '../services/claim-notices/attach-notice';
+import { removeNotice } from '../services/claim-notices/remove-notice';
+import { parseInput } from '../services/parse-input';
+import { confirmTranscription } from '../services/transcriptions/confirm-transcription';
+import { failWith } from './action-error';
+import { countRequest } from './request-limits';
+import { claimNumber } from './route-numbers';
+
+/** Who asks, of which claim, with which fields. */
+async function asked(event: RequestEvent) {
+	const ctx = await requireRole(event, 'observer');
+	const number = claimNumber(event.params.number ?? '');
+	const data = await event.request.formData();
+	return { ctx, number, text: (name: string) => String(data.get(name) ?? '') };
+}
+
+/** What is wrong beside what was typed, which the page then shows again. */
+function failTyped<K extends string>(thrown: unknown, key: K, typed: Record<string, string>) {
+	if (!(thrown instanceof ServiceError) || thrown.code === 'not-found') return failWith(thrown);
+	const { message, issues } = thrown;
+	return fail(thrown.status, { message, issues, [key]: typed } as {
+		message: string;
+		issues: typeof issues;
+	} & Record<K, Record<string, string>>);
+}
+
+/** Actions of a claim's page: comparing it with the paper, errata, what authors write. */
+export const publicationActions = {
+	confirm: async (event: RequestEvent) => {
+		const { ctx, number, text } = await asked(event);
+		const typed = {
+			valueMatches: text('valueMatches'),
+			locatorMatches: text('locatorMatches'),
+			inequalityMatches: text('inequalityMatches'),
+			note: text('note')
+		};
+		try {
+			const input = parseInput(transcriptionInput, { ...typed, version: text('version') });
+			const { confirmed } = await confirmTranscription(ctx, number, input);
+			const message = confirmed
+				? 'Recorded: value, locator and inequality are the paper’s.'
+				: 'Recorded. Whoever entered the claim is told what is wrong.';
+			return { message };
+		} catch (thrown) {
+			return failTyped(thrown, 'comparison', typed);
+		}
+	},
+	attachNotice: async (event: RequestEvent) => {
+		const { ctx, number, text } = await asked(event);
+		const typed = {
+			kind: text('kind'),
+			referenceId: text('referenceId'),
+			bibtex: text('bibtex'),
+			note: text('note')
+		};
+		try {
+			// Reading an entry takes a thread's time.
+			await countRequest(event, 'change');
+			await attachNotice(ctx, number, parseInput(noticeInput, typed));
+			return { message: 'Attached.' };
+		} catch (thrown) {
+			return failTyped(thrown, 'notice', typed);
+		}
+	},
+	removeNotice: async (event: RequestEvent) => {
+		const { ctx, number, text } = await asked(event);
+		try {
+			await removeNotice(ctx, number, text('id'));
+			return { message: 'Removed. The paper stays among the group’s references.' };
+		} catch (thrown) {
+			return failWith(thrown);
+		}
+	},
+	handleMessage: async (event: RequestEvent) => {
+		const { ctx, text } = await asked(event);
+		try {
+			await handleAuthorMessage(ctx, text('id'));
+			return { message: 'Marked as dealt with.' };
+		} catch (thrown) {
+			return failWith(thrown);
+		}
+	}
+};

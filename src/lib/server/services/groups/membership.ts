@@ -1,5 +1,5 @@
 import { and, eq, isNull } from 'drizzle-orm';
-import { invitationStands, leavesNoOwner } from '../../../ledger/group-policy';
+import { invitationStands, leavesNoOwner, mayKeepTasks } from '../../../ledger/group-policy';
 import { may, type Action, type PolicyFacts } from '../../../ledger/policy';
 import type { Role } from '../../../ledger/roles';
 import type { GroupContext } from '../../context';
@@ -7,6 +7,7 @@ import type { Transaction } from '../../db/client';
 import { calendarFeeds, invitations, memberships } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { dropInvitations } from '../invitations/drop-invitations';
+import { releaseTasksOf } from '../tasks/release-tasks-of';
 
 /** Whose membership, in the context's group. */
 const membershipOf = (ctx: GroupContext, userId: string) =>
@@ -63,6 +64,7 @@ export async function setMembership(
 	}
 	if (role) await tx.update(memberships).set({ role }).where(membershipOf(ctx, userId));
 	else await endMembership(tx, ctx, userId);
+	if (!mayKeepTasks(role)) await releaseTasksOf(tx, ctx, userId);
 	await dropUngivable(tx, ctx, userId, role);
 	return from;
 }

@@ -4,6 +4,6 @@ import { contextOf } from './guards';
 
 /** Where someone goes who has just signed in and came from nowhere in particular. */
 export async function landingPath(event: RequestEvent): Promise<string> {
-	const [group] = await listGroupsOf(contextOf(event));
-	return group ? `/g/${group.slug}` : '/account';
+	const groups = await listGroupsOf(contextOf(event));
+	return groups.length > 0 ? '/home' : '/account';
 }

@@ -15,7 +15,6 @@ export const load: PageServerLoad = async (event) => {
 	const ctx = requireUser(event);
 	return {
 		id: ctx.actor.id,
-		id: ctx.actor.id,
 		name: ctx.actor.name,
 		email: ctx.actor.email,
 		memberships: await listGroupsOf(ctx),

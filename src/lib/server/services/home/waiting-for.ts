@@ -1,11 +1,12 @@
-import { and, count, eq, exists, inArray, ne, or } from 'drizzle-orm';
+import { and, count, eq, inArray, or } from 'drizzle-orm';
 import { may } from '../../../ledger/policy';
 import type { TaskState } from '../../../ledger/tasks';
 import type { GroupContext } from '../../context';
-import { submissions, tasks } from '../../db/schema';
+import { tasks } from '../../db/schema';
+import { waitsFor } from '../tasks/task-conditions';
 
 /** States in which the next step is the assignee's; a submitted task waits for somebody else. */
-export const ASSIGNEE_TO_ACT = [
+const ASSIGNEE_TO_ACT = [
 	'assigned',
 	'in-progress',
 	'returned'
@@ -17,29 +18,11 @@ export const ASSIGNEE_TO_ACT = [
  */
 export async function waitingFor(ctx: GroupContext): Promise<number> {
 	const { read } = ctx.db;
-	const toDecide = exists(
-		read
-			.select({ id: submissions.id })
-			.from(submissions)
-			.where(
-				and(
-					eq(submissions.taskId, tasks.id),
-					eq(submissions.state, 'waiting'),
-					ne(submissions.submittedBy, ctx.actor.id)
-				)
-			)
-	);
+	const toDo = and(eq(tasks.assigneeId, ctx.actor.id), inArray(tasks.state, [...ASSIGNEE_TO_ACT]));
+	const toDecide = may(ctx.role, 'decide-task') ? waitsFor(read, ctx.actor.id) : undefined;
 	const [row] = await read
 		.select({ total: count() })
 		.from(tasks)
-		.where(
-			and(
-				eq(tasks.groupId, ctx.group.id),
-				or(
-					and(eq(tasks.assigneeId, ctx.actor.id), inArray(tasks.state, [...ASSIGNEE_TO_ACT])),
-					may(ctx.role, 'decide-task') ? and(eq(tasks.state, 'submitted'), toDecide) : undefined
-				)
-			)
-		);
+		.where(and(eq(tasks.groupId, ctx.group.id), or(toDo, toDecide)));
 	return row?.total ?? 0;
 }

@@ -1,0 +1,79 @@
+import type { ActivityEntry } from '../../../schemas/talk-views';
+import { FIELD_WORD } from '../claims/history';
+import { isId } from './names-of';
+import { valueOf, type Recorded } from './recorded';
+
+/** What stays of a long text in a list of changes. */
+const LONGEST_TEXT = 600;
+
+const WORDS: Readonly<Record<string, string>> = {
+	...FIELD_WORD,
+	assigneeId: 'Assignee',
+	dueOn: 'Due',
+	body: 'Text',
+	budgetSeconds: 'Time for a recomputation, seconds',
+	confirmedBy: 'Compared with the paper by',
+	confirmedVersion: 'Compared version',
+	slug: 'Address',
+	supersededById: 'Superseded by',
+	publishedBy: 'Published by',
+	publishedAt: 'Published',
+	valueMatches: 'Value as printed',
+	locatorMatches: 'Locator as printed',
+	inequalityMatches: 'Inequality as printed'
+};
+
+/** The fields that say what the row itself is, or are said by it. */
+const PLUMBING: ReadonlySet<string> = new Set([
+	'number',
+	'subject',
+	'subjectId',
+	'paper',
+	'bibtex'
+]);
+
+/** What an audit row changed, field by field; ids are named, and left out where they can't be. */
+export function fieldChanges(
+	before: Recorded,
+	after: Recorded,
+	named: (id: unknown) => string | null
+): ActivityEntry['changes'] {
+	const shown = (value: unknown): string => {
+		if (value === null || value === undefined) return '';
+		if (isId(value)) return named(value) ?? '';
+		if (typeof value === 'string') {
+			return value.length > LONGEST_TEXT ? `${value.slice(0, LONGEST_TEXT)} …` : value;
+		}
+		if (typeof value === 'boolean') return value ? 'yes' : 'no';
+		if (Array.isArray(value)) return value.map(shown).join('; ');
+		if (typeof value === 'object') {
+			const parts = Object.entries(value).filter(([key]) => key !== 'id');
+			return parts
+				.flatMap(([key, part]) => shown(part) && `${words(key)}: ${shown(part)}`)
+				.join(', ');
+		}
+		return String(value);
+	};
+	const fields = [...new Set([...Object.keys(before), ...Object.keys(after)])];
+	return fields.flatMap((field) => {
+		if (PLUMBING.has(field)) return [];
+		// What only one of them has did not change, unless the other has nothing at all.
+		const whole = Object.keys(before).length === 0 || Object.keys(after).length === 0;
+		const added = !(field in before);
+		if (!whole && !(field in after)) return [];
+		const [was, is] = [shown(valueOf(before, field)), shown(valueOf(after, field))];
+		if (was === is || (added && is === '')) return [];
+		return [{ field: words(field), before: was, after: is }];
+	});
+}
+
+/** `assigneeId` -> `Assignee`, `finishedAt` -> `Finished at`. */
+function words(field: string): string {
+	const known = WORDS[field];
+	if (known) return known;
+	const spaced = field
+		.replace(/Id$/, '')
+		.replace(/([a-z])([A-Z])/g, '$1 $2')
+		.toLowerCase();
+	return spaced.charAt(0).toUpperCase() + spaced.slice(1);
+}

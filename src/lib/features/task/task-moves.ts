@@ -1,6 +1,5 @@
-import { may } from '../../ledger/policy';
 import type { Role } from '../../ledger/roles';
-import { isActiveTask } from '../../ledger/tasks';
+import { mayStep, type TaskStep } from '../../ledger/task-life';
 import type { TaskRow, TaskView } from '../../schemas/task-views';
 
 export type MoveKey = 'take' | 'start' | 'release' | 'accept' | 'return' | 'cancel';
@@ -22,26 +21,32 @@ const MOVES: readonly Move[] = [
 ];
 
 /** What the actions of a task's page are called, for those the server allows. */
-export function movesAllowed({ take, start, release, decide, cancel }: TaskView['may']): Move[] {
+export function movesAllowed({
+	take,
+	start,
+	release,
+	decide,
+	cancel
+}: Pick<TaskView['may'], 'take' | 'start' | 'release' | 'decide' | 'cancel'>): Move[] {
 	const allowed = { take, start, release, accept: decide, return: decide, cancel };
 	return MOVES.filter(({ key }) => allowed[key]);
 }
 
 /**
- * The same for a row of a list, by role and state. The server decides again: it alone knows who
- * submitted.
+ * The same for a row of a list, by role and state. Whoever has a submitted task is taken for the one
+ * who submitted; the server, which knows, decides again.
  */
-export function movesOf(row: TaskRow, role: Role, self: string): Move[] {
-	const own = row.assignee?.id === self;
-	const working = ['assigned', 'in-progress', 'returned'].includes(row.state);
-	const decide = row.state === 'submitted' && may(role, 'decide-task', { own });
+export function movesOf(row: TaskRow, role: Role, id: string): Move[] {
+	const assigneeId = row.assignee?.id ?? null;
+	const { state } = row;
+	const submittedBy = state === 'submitted' ? assigneeId : null;
+	const facts = { state, assigneeId, submittedBy, assigneeGone: false };
+	const can = (step: TaskStep) => mayStep(facts, step, { id, role });
 	return movesAllowed({
-		take: row.assignee === null && isActiveTask(row.state) && may(role, 'take-task'),
-		start: working && row.state !== 'in-progress' && may(role, 'work-on-task', { own }),
-		submit: working && may(role, 'work-on-task', { own }),
-		release: working && row.assignee !== null && may(role, 'release-task', { own }),
-		decide,
-		edit: isActiveTask(row.state) && may(role, 'edit-task'),
-		cancel: isActiveTask(row.state) && may(role, 'cancel-task')
+		take: can({ kind: 'take' }),
+		start: can({ kind: 'start' }),
+		release: can({ kind: 'release' }),
+		decide: can({ kind: 'accept' }),
+		cancel: can({ kind: 'cancel', reason: 'asked for in the form' })
 	});
 }

@@ -2,6 +2,15 @@ import { error } from '@sveltejs/kit';
 
 /** The claim's number in an address; anything else is an address at which there is nothing. */
 export function claimNumber(text: string): number {
-	if (!/^[1-9]\d{0,8}$/.test(text)) error(404, 'There is no such claim.');
+	return numberIn(text, 'There is no such claim.');
+}
+
+/** The same of a task. */
+export function taskNumber(text: string): number {
+	return numberIn(text, 'There is no such task.');
+}
+
+function numberIn(text: string, missing: string): number {
+	if (!/^[1-9]\d{0,8}$/.test(text)) error(404, missing);
 	return Number(text);
 }

@@ -1,0 +1,39 @@
+import type { SubmissionKind } from '../../ledger/tasks';
+import { submitInput, TASK_LIMITS, type SubmitInput } from '../../schemas/task-input';
+import { sizeWords } from './task-words';
+
+export const SUBMISSION_LABELS: Readonly<Record<SubmissionKind, string>> = {
+	value: 'A value found',
+	certificate: 'A strategy or certificate',
+	transcription: 'Compared with the paper',
+	statement: 'Words and files'
+};
+
+/** The three questions of a comparison, with what was entered beside each. */
+export const QUESTIONS = [
+	{ field: 'valueMatches', label: 'Value', asks: 'Is the value printed so in the paper?' },
+	{ field: 'locatorMatches', label: 'Where', asks: 'Does it stand there?' },
+	{
+		field: 'inequalityMatches',
+		label: 'Inequality',
+		asks: 'Is it about this inequality and quantity?'
+	}
+] as const;
+
+export const FILES_HINT =
+	`At most ${TASK_LIMITS.files} files of ${sizeWords(TASK_LIMITS.fileBytes)} each: ` +
+	'logs, programs, data, PDF, images. Others get them as downloads.';
+
+/** A submission's fields as a form starts with them; what was typed before comes first. */
+export function submitStart(
+	typed: Readonly<Record<string, string>> | undefined,
+	kinds: readonly SubmissionKind[]
+): Record<keyof SubmitInput, string> {
+	const blank: Record<keyof SubmitInput, string> = {
+		...submitInput.parse({}),
+		kind: kinds[0] ?? ''
+	};
+	if (!typed) return blank;
+	const fields = Object.entries(typed).filter(([field]) => field in blank);
+	return { ...blank, ...Object.fromEntries(fields) };
+}

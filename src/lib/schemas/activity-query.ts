@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { ACTIVITY_KINDS } from './talk-views';
+import { ACTIVITY_KINDS, type ActivityKind } from './talk-views';
 
 export const ACTIVITY_PAGE_SIZE = 50;
 
@@ -45,4 +45,9 @@ export function printActivityQuery(query: ActivityQuery): URLSearchParams {
 /** True when any filter is on, so that no entries means "no match" rather than "nothing yet". */
 export function isActivityFiltered(query: ActivityQuery): boolean {
 	return printActivityQuery({ ...query, page: 1 }).size > 0;
+}
+
+/** The kind that a claim's history is narrowed to; null: all of it. */
+export function parseActivityKind(text: string | null): ActivityKind | null {
+	return ACTIVITY_KINDS.find((kind) => kind === text) ?? null;
 }

@@ -34,6 +34,7 @@ export async function recomputeClaim(ctx: GroupContext, number: number): Promise
 			entity: 'claim',
 			entityId: claim.id,
 			groupId: ctx.group.id,
+			before: { recomputationId: claim.recomputationId },
 			after: { recomputationId }
 		});
 		await deriveClaim(tx, claim.id, ctx.now());

@@ -14,7 +14,11 @@ import { deriveTouchedClaims } from '../claims/derive-claim';
 export async function cancelRecomputation(ctx: GroupContext, id: string): Promise<void> {
 	await ctx.db.write(async (tx) => {
 		const [run] = await tx
-			.select({ inequalityId: recomputations.inequalityId, station: recomputations.station })
+			.select({
+				inequalityId: recomputations.inequalityId,
+				station: recomputations.station,
+				state: recomputations.state
+			})
 			.from(recomputations)
 			.where(eq(recomputations.id, id));
 		const own = eq(claims.recomputationId, id);
@@ -22,7 +26,7 @@ export async function cancelRecomputation(ctx: GroupContext, id: string): Promis
 			run?.station && run.inequalityId ? or(own, eq(claims.inequalityId, run.inequalityId)) : own;
 		const users = run
 			? await tx
-					.select({ groupId: claims.groupId, createdBy: claims.createdBy })
+					.select({ id: claims.id, groupId: claims.groupId, createdBy: claims.createdBy })
 					.from(claims)
 					.where(and(uses, ne(claims.state, 'withdrawn')))
 			: [];
@@ -57,7 +61,11 @@ export async function cancelRecomputation(ctx: GroupContext, id: string): Promis
 			action: 'recomputation.cancelled',
 			entity: 'recomputation',
 			entityId: id,
-			groupId: ctx.group.id
+			groupId: ctx.group.id,
+			// A run may serve several claims; its row stands with the first of the group's.
+			claimId: mine[0]?.id,
+			before: { state: run?.state },
+			after: { state: 'cancelled' }
 		});
 		await deriveTouchedClaims(tx, id, ctx.now());
 	});

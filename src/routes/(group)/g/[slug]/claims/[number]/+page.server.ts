@@ -1,11 +1,14 @@
+import { parseActivityKind } from '$lib/schemas/activity-query';
 import { requireRole } from '$lib/server/auth/guards';
 import { failWith } from '$lib/server/http/action-error';
+import { assignAction, claimTasks } from '$lib/server/http/claim-tasks';
 import { discussionActions } from '$lib/server/http/discussion-actions';
 import { answering } from '$lib/server/http/page-errors';
 import { loadPublication } from '$lib/server/http/publication-data';
 import { publicationActions } from '$lib/server/http/publication-actions';
 import { countRequest } from '$lib/server/http/request-limits';
 import { claimNumber } from '$lib/server/http/route-numbers';
+import { claimActivity } from '$lib/server/services/activity/claim-activity';
 import { findClaim } from '$lib/server/services/claims/find-claim';
 import { proposeClaim } from '$lib/server/services/claims/propose-claim';
 import { publishClaim } from '$lib/server/services/claims/publish-claim';
@@ -28,7 +31,10 @@ export const load: PageServerLoad = async (event) => {
 	const claim = await answering(() => showClaim(ctx, number));
 	const discussion = await answering(() => discussionView(ctx, 'claim', claim.id));
 	const publication = await answering(() => loadPublication(ctx, claim));
-	return { claim, discussion, publication, role: ctx.role };
+	const historyKind = parseActivityKind(event.url.searchParams.get('history'));
+	const tasks = await claimTasks(ctx, claim);
+	const activity = await answering(() => claimActivity(ctx, number, historyKind));
+	return { claim, discussion, publication, tasks, activity, historyKind, role: ctx.role };
 };
 
 /** `12` or `#12`; NaN for what is no number, which no claim has. */
@@ -73,6 +79,7 @@ export const actions: Actions = {
 	cancel: doing('Cancelled.', (ctx, _number, data) =>
 		cancelRecomputation(ctx, String(data.get('id')))
 	),
+	assign: assignAction,
 	confirm: publicationActions.confirm,
 	attachNotice: publicationActions.attachNotice,
 	removeNotice: publicationActions.removeNotice,

@@ -194,3 +194,155 @@ describe('roles', () => {
 		expect((await person.submit(path, { user })).status).toBe(404);
 	});
 });
+
+describe('invitations by e-mail', () => {
+	const members = (slug: string, action: string) => `/g/${slug}/members?/${action}`;
+	const mailTo = async (address: string) => {
+		for (let tries = 0; tries < 100; tries++) {
+			const mail = server.mail.caught().find(({ to }) => to.includes(address));
+			if (mail) return mail;
+			await new Promise((resolve) => setTimeout(resolve, 200));
+		}
+		throw new Error(`no mail to ${address}`);
+	};
+
+	it('lead their reader through signing up into the group', async () => {
+		const email = 'invited@reading.example';
+		const sent = await group.maintainer.submit(members(group.slug, 'mail'), {
+			emails: `${email}, reader-0@group.example`,
+			role: 'member'
+		});
+		expect(sent.status).toBe(200);
+		expect(await sent.text()).toContain('2 invitations go to');
+		const mail = await mailTo(email);
+		expect(mail.subject).toContain('Harbour Lane');
+		const link = /\/join\/[\w-]{20,}/.exec(mail.text)?.[0] ?? '';
+
+		const visitor = new Visitor(server);
+		const look = await (await visitor.get(link)).text();
+		expect(look).toContain(email);
+		const next = `?next=${encodeURIComponent(link)}`;
+		expect(look).toContain(`/sign-up${next}`);
+		for (const page of ['sign-up', 'sign-in']) {
+			const form = await (await visitor.get(`/${page}${next}`)).text();
+			expect(form).toMatch(new RegExp(`<input[^>]*name="email"[^>]*value="${email}"`));
+		}
+		const person = await newPerson(server, { email, next: link });
+		expect((await person.submit(link)).headers.get('location')).toBe(`/g/${group.slug}`);
+		expect((await person.get(`/g/${group.slug}/claims/new`)).status).toBe(200);
+	});
+
+	it('keep what was typed, and name the address at fault', async () => {
+		const emails = 'fine@reading.example, <b>wren</b>@';
+		const refused = await group.owner.submit(members(group.slug, 'mail'), {
+			emails,
+			role: 'observer'
+		});
+		expect(refused.status).toBe(400);
+		const page = await refused.text();
+		expect(page).toContain('is no e-mail address');
+		expect(page).toContain('fine@reading.example, &lt;b>wren&lt;/b>@');
+		expect(page).toMatch(/<option value="observer"[^>]*selected/);
+	});
+
+	it('show nothing of themselves to those who may not make any', async () => {
+		const page = await (await group.member.get(`/g/${group.slug}/members`)).text();
+		expect(page).not.toContain('reader-0@group.example');
+		expect(page).not.toContain('?/mail');
+		const owners = await (await group.owner.get(`/g/${group.slug}/members`)).text();
+		expect(owners).toContain('reader-0@group.example');
+	});
+});
+
+describe('handing a group over', () => {
+	it('makes the other one its owner at the next request', async () => {
+		const owner = await newPerson(server);
+		const slug = await startGroup(owner, 'Ferry Steps');
+		const heir = await newPerson(server, { email: 'heir@group.example' });
+		await heir.submit(await joiningLink(owner, slug, 'observer'));
+		const alone = await (await owner.get(`/g/${slug}/members`)).text();
+		expect(alone).toContain('Hand the group over');
+		expect(alone).toContain('before you can leave');
+
+		const user = await memberId('heir@group.example');
+		const handed = await owner.submit(`/g/${slug}/members?/transfer`, { user });
+		expect(handed.status).toBe(200);
+		expect(await handed.text()).toContain('You are a maintainer');
+		expect((await owner.submit(`/g/${slug}/members?/transfer`, { user })).status).toBe(403);
+		expect((await heir.submit(`/g/${slug}/members?/role`, { user, role: 'owner' })).status).toBe(
+			200
+		);
+	});
+});
+
+describe('settings', () => {
+	const start = async (name: string) => {
+		const owner = await newPerson(server);
+		const slug = await startGroup(owner, name);
+		const page = await (await owner.get(`/g/${slug}/settings`)).text();
+		const version = /name="version" value="([^"]+)"/.exec(page)?.[1] ?? '';
+		return { owner, slug, fields: { name, description: '', budgetSeconds: '', version } };
+	};
+
+	it('move a group to another address, to which the old one leads its members', async () => {
+		const { owner, slug, fields } = await start('Sluice Court');
+		const observer = await newPerson(server);
+		await observer.submit(await joiningLink(owner, slug, 'observer'));
+		const saved = await owner.submit(`/g/${slug}/settings?/save`, { ...fields, slug: 'sluice' });
+		expect(saved.headers.get('location')).toBe('/g/sluice/settings?saved');
+		expect(await (await owner.get('/g/sluice/settings?saved')).text()).toContain('are saved');
+
+		const old = await observer.get('/g/sluice-court/members?x=1%2F2&y');
+		expect(old.status).toBe(308);
+		expect(old.headers.get('location')).toBe('/g/sluice/members?x=1%2F2&y');
+		// Who takes the address back must not be led away by a browser that remembers.
+		expect(old.headers.get('cache-control')).toContain('no-store');
+		expect((await observer.get('/g/sluice-court')).headers.get('location')).toBe('/g/sluice');
+		expect((await observer.get('/g/sluice-court/ledger.csv')).status).toBe(308);
+		const data = await (await observer.get('/g/sluice-court/members/__data.json')).text();
+		expect(JSON.parse(data)).toEqual({ type: 'redirect', location: '/g/sluice/members' });
+		// The API answers at once, and a form sent from the old address is not lost.
+		expect((await observer.get('/api/v1/groups/sluice-court/claims')).status).toBe(200);
+		const form = await owner.submit('/g/sluice-court/members?/invite', { role: 'member' });
+		expect(form.status).toBe(200);
+		expect(await form.text()).toContain('/join/');
+
+		expect((await group.outsider.get('/g/sluice-court/members')).status).toBe(404);
+		const visitor = await new Visitor(server).get('/g/sluice-court/members');
+		expect(visitor.headers.get('location')).toContain('/sign-in?next=');
+		const taken = await group.outsider.submit('/groups/new', { name: 'X', slug: 'sluice-court' });
+		expect(taken.status).toBe(409);
+	});
+
+	it('keep what was typed, and refuse to overwrite what was not seen', async () => {
+		const { owner, slug, fields } = await start('Osier Bank');
+		const save = (over: object) =>
+			owner.submit(`/g/${slug}/settings?/save`, { ...fields, ...over });
+		const wrong = await save({ description: 'Mine', budgetSeconds: '7000' });
+		expect(wrong.status).toBe(400);
+		const page = await wrong.text();
+		expect(page).toContain('from 5 to 600');
+		expect(page).toContain('value="7000"');
+		expect((await save({ description: 'First' })).status).toBe(303);
+		const stale = await save({ description: 'Second' });
+		expect(stale.status).toBe(409);
+		const shown = await stale.text();
+		expect(shown).toContain('description “First”');
+		expect(shown).toContain('Second');
+		const version = /name="version" value="([^"]+)"/.exec(shown)?.[1] ?? '';
+		expect((await save({ description: 'Second', version })).status).toBe(303);
+	});
+
+	it('show maintainers the address without letting them change it', async () => {
+		const page = await (await group.maintainer.get(`/g/${group.slug}/settings`)).text();
+		expect(page).toContain('Only owners change it');
+		expect(page).not.toContain('name="slug"');
+		const version = /name="version" value="([^"]+)"/.exec(page)?.[1] ?? '';
+		const moved = await group.maintainer.submit(`/g/${group.slug}/settings?/save`, {
+			name: 'Harbour Lane',
+			version,
+			slug: 'harbour'
+		});
+		expect(moved.status).toBe(403);
+	});
+});

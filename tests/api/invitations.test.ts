@@ -40,7 +40,8 @@ const send = () =>
 		transport: {
 			async send(mail) {
 				sent.push(mail);
-			}
+			},
+			close: () => undefined
 		}
 	});
 

@@ -10,13 +10,10 @@ const RESERVED = /^(con|prn|aux|nul|conin\$|conout\$|com[0-9¹²³]|lpt[0-9¹²�
  * nothing is left. It never becomes a path here: the bytes stand under a generated key.
  */
 export function cleanName(given: string): string | null {
-	const last =
-		given
-			.normalize('NFC')
-			.split(/[/\\]/)
-			.findLast((part) => part.trim() !== '') ?? '';
+	const last = given.split(/[/\\]/).findLast((part) => part.trim() !== '') ?? '';
 	const plain = last
 		.replace(/[\p{Cc}\p{Cf}\p{Cs}\p{Co}\p{Cn}\p{Zl}\p{Zp}]/gu, '')
+		.normalize('NFC')
 		.replace(/[<>:"|?*]/g, '_')
 		.replace(/\p{Zs}+/gu, ' ')
 		.replace(/^[. ]+|[. ]+$/g, '');

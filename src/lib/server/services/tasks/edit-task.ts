@@ -7,6 +7,7 @@ import { ServiceError } from '../../errors';
 import { parseInput } from '../parse-input';
 import { findTask, type TaskRecord } from './find-task';
 import { TAKEN_BACK } from './release-task';
+import { requireSecondPerson } from './second-person';
 import { asActor, stepTask } from './step-task';
 import { readAssignee, readDueOn } from './task-fields';
 import { tell } from './tell';
@@ -34,6 +35,7 @@ export async function editTask(
 		const sameHands = to === before.assigneeId;
 		if (same && sameHands && instructions === before.instructions) return;
 		const change = { audit: 'task.edited', columns: { kind, dueOn, instructions } };
+		await requireSecondPerson(tx, { ...before, kind, assigneeId: to });
 		const step: TaskStep = { kind: 'assign', to };
 		const { task } = await stepTask(tx, ctx, before, step, asActor(ctx), change);
 		if (sameHands) return;

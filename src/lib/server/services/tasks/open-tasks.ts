@@ -10,6 +10,7 @@ import { newId } from '../../ids';
 import { recordAudit } from '../audit';
 import type { ClaimRow } from '../claims/find-claim';
 import { parseInput } from '../parse-input';
+import { requireSecondPerson } from './second-person';
 import { auditOf } from './step-task';
 import { readAssignee, readDueOn } from './task-fields';
 import { tell } from './tell';
@@ -35,6 +36,7 @@ export async function openTasks(
 		const now = ctx.now();
 		const numbers: number[] = [];
 		for (const [i, claim] of about.entries()) {
+			await requireSecondPerson(tx, { kind, claimId: claim.id, assigneeId });
 			const [task] = await tx
 				.insert(tasks)
 				.values({

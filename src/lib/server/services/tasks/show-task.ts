@@ -22,14 +22,18 @@ export async function showTask(ctx: GroupContext, number: number): Promise<TaskV
 	if (!selected) throw new ServiceError('not-found', `There is no task ${number} in this group.`);
 	const { task, claim } = selected;
 	const facts = await taskFacts(read, task, await latestSubmission(read, id));
+	const compares = await mayConfirm(read, ctx, claim);
+	// A comparison with the paper is not for who wrote the claim.
+	const answers = task.kind !== 'confirm-transcription' || compares;
+	const steps = allowed(ctx, facts);
 	return {
 		...taskRow(selected, ctx.now()),
 		submissions: await submissionViews(read, task, claim),
 		instructionsHtml: renderMarkdown(task.instructions),
-		may: allowed(ctx, facts),
+		may: { ...steps, take: steps.take && answers, submit: steps.submit && answers },
 		ownSubmission: facts.state === 'submitted' && facts.submittedBy === ctx.actor.id,
 		submissionKinds: SUBMISSION_KINDS_OF[task.kind],
-		mayConfirm: await mayConfirm(read, ctx, claim)
+		mayConfirm: compares
 	};
 }
 

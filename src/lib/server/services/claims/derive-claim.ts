@@ -100,7 +100,11 @@ async function derive(
 			entityId: claim.id,
 			groupId: claim.groupId,
 			before: { status: before.status },
-			after: { status: verdict.status, reason: verdict.reason }
+			after: {
+				status: verdict.status,
+				reason: verdict.reason,
+				worth: verdict.enclosure?.worth ?? null
+			}
 		});
 	}
 	if (!mailWorthy(verdict)) await dropWaitingMails(tx, claim.id);

@@ -89,7 +89,17 @@ function judgedEntries(
 ): { at: Date; who: null; text: string }[] {
 	return rows
 		.filter(({ status }, i) => status !== rows[i - 1]?.status)
-		.map(({ at, status }) => ({ at, who: null, text: `Recomputed: ${STATUS_WORD[status]}` }));
+		.map(({ at, status, verdict }) => ({
+			at,
+			who: null,
+			text: `${judgedWord(verdict)}: ${STATUS_WORD[status]}`
+		}));
+}
+
+/** A verdict that rests on a person's reproduction was not recomputed here. */
+function judgedWord({ enclosure, reasonCode }: Verdict): string {
+	if (enclosure?.worth === 'person') return 'Reproduced';
+	return reasonCode === 'no-solver' ? 'Judged' : 'Recomputed';
 }
 
 function actionText(action: string, before: unknown, after: unknown): string | undefined {

@@ -7,7 +7,8 @@ const SHORT: readonly (readonly [RegExp, string])[] = [
 	[/^(NPA level \S+) with non-negative probabilities$/, '$1, P ≥ 0'],
 	[/^(the enumeration of all|a) deterministic strateg(ies|y)$/, 'deterministic strategies'],
 	[/^(the no-signalling linear programme|a no-signalling box)$/, 'linear programme'],
-	[/^the moment-matrix relaxation$/, 'moment matrices']
+	[/^the moment-matrix relaxation$/, 'moment matrices'],
+	[/^a reproduction by (.+?)(?: \(.*\))?$/, 'reproduction by $1']
 ];
 
 /** `see-saw d=2` for `an explicit quantum strategy in dimension 2`; other labels as they are. */

@@ -55,7 +55,8 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 
 const DISCREPANCY_WORDING = `It ${PUBLIC_DISCREPANCY}. ${COMPARED_BY_SECOND}`;
 
-const PUBLIC_HISTORY = /^(Entered|Published|Recomputed: |Value changed|Marked as superseded)/;
+const PUBLIC_HISTORY =
+	/^(Entered|Published|(Recomputed|Reproduced|Judged): |Value changed|Marked as superseded)/;
 
 /** How many claims a group has is its own business. */
 const NO_NUMBER = 0;

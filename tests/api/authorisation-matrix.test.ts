@@ -24,9 +24,18 @@ function doorsInFiles(): string[] {
 		const actions = text.split(/^export const actions\b/m)[1] ?? '';
 		if (file === '+page.server.ts') {
 			for (const [, name] of actions.matchAll(/^\t(\w+)(?:: |\()/gm)) doors.add(`${name} ${route}`);
+			if (actions.includes('discussionActions(')) {
+				for (const name of discussionDoors()) doors.add(`${name} ${route}`);
+			}
 		}
 	}
 	return [...doors].sort();
+}
+
+/** The actions that a page with a discussion spreads into its own. */
+function discussionDoors(): string[] {
+	const text = readFileSync('src/lib/server/http/discussion-actions.ts', 'utf8');
+	return [...text.matchAll(/^\t\t'?([\w-]+)'?: action\(/gm)].map(([, name]) => name ?? '');
 }
 
 let server: TestServer;

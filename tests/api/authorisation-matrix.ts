@@ -45,6 +45,8 @@ const apiGroup = '/api/v1/groups/[slug]/claims';
 const apiClaim = `${apiGroup}/[number]`;
 const run = '/api/v1/recomputations/[id]';
 
+const inequalityPage = (w: MatrixWorld) => `/g/${w.slug}/inequalities/${w.inequalityId}`;
+
 function doors(
 	route: string,
 	entries: Readonly<Record<string, Answers>>,
@@ -133,6 +135,17 @@ export const MATRIX: readonly MatrixRow[] = [
 		retryDead: signedIn(401, 404),
 		discard: signedIn(401, 404)
 	}),
+	...doors('/home', { GET: signedIn(303, 200) }),
+	...doors('/home/tasks', {
+		GET: signedIn(303, 200),
+		makeCalendar: signedIn(401, 303),
+		revokeCalendar: signedIn(401, 404)
+	}),
+	...doors(
+		'/home/tasks',
+		{ makeCalendar: { ...signedIn(401, 303), outsider: 404 } },
+		{ fields: { group: 'quarry-row' } }
+	),
 	...doors('/groups/new', { GET: signedIn(303, 200), default: signedIn(401, 400) }),
 	...doors('/join/[token]', { GET: same(200) }, { path: (w) => w.link }),
 	// Joining itself is in groups.test.ts; here it would make a member of the outsider.
@@ -214,6 +227,30 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors(claim, { cancel: action('observer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { recheck: action('observer', 404) }, { fields: { id: 'none' } }),
 
+	// Talk; whose comment may be changed is in comments.test.ts.
+	...doors(claim, { comment: action('member', 303) }, { fields: { body: 'Checked by hand.' } }),
+	...doors(claim, {
+		'edit-comment': action('observer', 404),
+		'remove-comment': action('observer', 404)
+	}),
+	...doors(
+		'/g/[slug]/inequalities/[id]',
+		{ comment: action('member', 303) },
+		{ path: inequalityPage, fields: { body: 'A form that is easier to read.' } }
+	),
+	...doors(
+		'/g/[slug]/inequalities/[id]',
+		{ 'edit-comment': action('observer', 404), 'remove-comment': action('observer', 404) },
+		{ path: inequalityPage }
+	),
+	...doors(
+		'/api/v1/groups/[slug]/previews',
+		{ POST: action('member') },
+		{ json: () => ({ text: 'so $x$' }) }
+	),
+	...doors('/g/[slug]/activity', { GET: page('observer') }),
+	...doors('/g/[slug]/activity.csv', { GET: page('observer') }),
+
 	// The API.
 	...doors('/api/v1/bounds', { GET: same(200) }),
 	...doors(
@@ -239,6 +276,12 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors(apiGroup, { GET: action('observer') }),
 	...doors(apiGroup, { POST: action('member', 400) }, { json: () => ({ printed: 'no number' }) }),
 	...doors(apiClaim, { GET: action('observer') }),
+	...doors(`${apiClaim}/tasks`, { GET: action('observer') }),
+	...doors('/api/v1/groups/[slug]/activity', { GET: action('observer') }),
+	...doors('/api/v1/groups/[slug]/tasks', { GET: action('observer') }),
+	// There is no task; the answer to members differs from the one to an outsider in words only.
+	...doors('/api/v1/groups/[slug]/tasks/[number]', { GET: action('observer', 404) }),
+	...doors('/api/v1/news', { GET: signedIn(401, 200) }),
 	...doors(`${apiClaim}/progress`, { GET: action('observer') }),
 	...doors(`${apiClaim}/events`, { GET: action('observer') }),
 	...doors(`${apiClaim}/recomputations`, { POST: action('member', 202) }),

@@ -1,6 +1,7 @@
 import { parseTaskQuery } from '$lib/schemas/task-input';
 import { requireRole } from '$lib/server/auth/guards';
 import { answering } from '$lib/server/http/page-errors';
+import { listFeeds } from '$lib/server/services/calendar/list-feeds';
 import { listTasks } from '$lib/server/services/tasks/list-tasks';
 import type { PageServerLoad } from './$types';
 
@@ -8,5 +9,6 @@ export const load: PageServerLoad = async (event) => {
 	const ctx = await requireRole(event, 'observer');
 	const query = parseTaskQuery(event.url.searchParams);
 	const tasks = await answering(() => listTasks(ctx, query));
-	return { query, tasks, role: ctx.role, self: ctx.actor.id };
+	const feeds = await listFeeds(ctx);
+	return { query, tasks, feeds, role: ctx.role, self: ctx.actor.id };
 };

@@ -2,6 +2,7 @@ import { parseLedgerQuery } from '$lib/schemas/ledger-query';
 import { claimInput } from '$lib/schemas/claim-input';
 import { requireRole } from '$lib/server/auth/guards';
 import { endpoint, jsonResponse, jsonWithEtag, readJson } from '$lib/server/http/api';
+import { listResponse } from '$lib/server/http/list-response';
 import { countRequest } from '$lib/server/http/request-limits';
 import { enterClaim } from '$lib/server/services/claims/enter-claim';
 import { ledgerRows } from '$lib/server/services/claims/ledger-rows';
@@ -22,8 +23,7 @@ export const GET: RequestHandler = endpoint(async (event) => {
 			.map(Number);
 		return jsonWithEtag(event, { items: await ledgerRows(ctx, numbers) });
 	}
-	const { rows, ...page } = await listClaims(ctx, parseLedgerQuery(event.url.searchParams));
-	return jsonWithEtag(event, { items: rows, ...page });
+	return listResponse(event, await listClaims(ctx, parseLedgerQuery(event.url.searchParams)));
 });
 
 /** Enters a claim; the body holds the fields of the form. */

@@ -1,0 +1,32 @@
+import { may } from '../../ledger/policy';
+import { suggestedTask, wantsTask } from '../../ledger/suggested-task';
+import { openTasksInput } from '../../schemas/task-input';
+import type { ClaimView } from '../../schemas/views';
+import type { GroupContext } from '../context';
+import { parseInput } from '../services/parse-input';
+import { openTasks } from '../services/tasks/open-tasks';
+import { peopleForTasks } from '../services/tasks/people-for-tasks';
+import { tasksOfClaim } from '../services/tasks/tasks-of-claim';
+import { taskAction, typedIn } from './task-form';
+
+/** The tasks of a claim's page, and the form for another one where the viewer opens tasks. */
+export async function claimTasks(ctx: GroupContext, claim: ClaimView) {
+	const rows = await tasksOfClaim(ctx, claim.number);
+	const states = rows.map(({ state }) => state);
+	const mayOpen = claim.state !== 'withdrawn' && may(ctx.role, 'open-task');
+	return {
+		rows,
+		wanted: wantsTask(claim.state, claim.verdict, states),
+		suggested: suggestedTask(claim.verdict, claim.confirmed),
+		/** Null: the viewer opens none here. */
+		people: mayOpen ? await peopleForTasks(ctx.db.read, ctx.group.id) : null
+	};
+}
+
+/** Opens a task on the claim of the page. */
+export const assignAction = taskAction(
+	'assign',
+	'The task is opened; whoever it is for is told.',
+	(ctx, number, data) =>
+		openTasks(ctx, parseInput(openTasksInput, { ...typedIn(data), claims: [number] }))
+);

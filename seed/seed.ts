@@ -28,6 +28,10 @@ import { CLAIMS } from './claims';
 import type { SeedClaim } from './claims/seed-claim';
 import { PAPERS } from './papers';
 import { DEMO_PASSWORD, GROUP, PEOPLE, type Person } from './people';
+import { tellPublication } from './story/publication';
+import { storyClock } from './story/story-clock';
+import { tellTalk } from './story/talk';
+import { tellTasks } from './story/tasks';
 
 type People = Readonly<Record<Person['key'], GroupContext>>;
 
@@ -78,13 +82,17 @@ async function enter(people: People, claim: SeedClaim): Promise<number> {
 
 async function seed(marker: string): Promise<void> {
 	const { db, close } = await openDatabase(config().databaseUrl);
-	const ctx: Context = { db, actor: null, requestId: 'seed', now: () => new Date() };
+	const clock = storyClock();
+	const ctx: Context = { db, actor: null, requestId: 'seed', now: clock.now };
+	clock.set(21);
 	const people = await makePeople(ctx);
 
 	const numbers = new Map<string, number>();
-	for (const claim of CLAIMS) {
+	for (const [place, claim] of CLAIMS.entries()) {
+		clock.set(14.5 - place / 100);
 		if (!claim.leaveQueued) numbers.set(claim.key, await enter(people, claim));
 	}
+	clock.set(14);
 	for (const claim of CLAIMS) {
 		const number = numbers.get(claim.key);
 		const by = numbers.get(claim.supersededBy ?? '');
@@ -107,6 +115,13 @@ async function seed(marker: string): Promise<void> {
 		throw new Error(`${left} recomputations did not run: build the solver thread (npm run build).`);
 	}
 
+	console.log('  two weeks of tasks, comments and publications ...');
+	const story = { people, numbers, clock };
+	await tellPublication(story, ctx);
+	await tellTasks(story);
+	await tellTalk(story);
+
+	clock.set(0);
 	for (const claim of CLAIMS) {
 		if (claim.leaveQueued) await enter(people, claim);
 	}

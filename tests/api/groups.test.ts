@@ -240,7 +240,7 @@ describe('invitations by e-mail', () => {
 		});
 		expect(refused.status).toBe(400);
 		const page = await refused.text();
-		expect(page).toContain('is no e-mail address');
+		expect(page).toContain('“&lt;b>wren&lt;/b>@” is no e-mail address');
 		expect(page).toContain('fine@reading.example, &lt;b>wren&lt;/b>@');
 		expect(page).toMatch(/<option value="observer"[^>]*selected/);
 	});

@@ -16,7 +16,8 @@ describe('readAddressList', () => {
 			'Wren Adeyo <wren@x.example>, "Tam Voss" <tam@x.example>',
 			['wren@x.example', 'tam@x.example']
 		],
-		['Wren <w@x.example> Tam <t@x.example>', ['w@x.example', 't@x.example']]
+		['Wren <w@x.example> Tam <t@x.example>', ['w@x.example', 't@x.example']],
+		['a@x.example <b@x.example> c@x.example', 'abc']
 	])('reads %j', (text, expected) => {
 		const addresses =
 			typeof expected === 'string' ? [...expected].map((name) => `${name}@x.example`) : expected;
@@ -27,6 +28,10 @@ describe('readAddressList', () => {
 		expect(readAddressList('ok@x.example, wren@, Tam, <>')).toEqual({
 			addresses: ['ok@x.example'],
 			wrong: ['wren@', 'Tam', '<>']
+		});
+		expect(readAddressList('<b>wren</b>@, Wren <w@x.example> Tam')).toEqual({
+			addresses: ['w@x.example'],
+			wrong: ['<b>wren</b>@', 'Tam']
 		});
 	});
 

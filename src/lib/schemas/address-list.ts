@@ -14,12 +14,13 @@ export interface AddressList {
 
 /**
  * Addresses separated by commas, semicolons, spaces or lines; `Wren Adeyo <wren@reading.example>`
- * as mail programmes copy it counts as the address in the brackets.
+ * as mail programmes copy it counts as the address in the brackets. What is longer than the
+ * longest list is not read to its end.
  */
 export function readAddressList(text: string): AddressList {
 	const addresses = new Set<string>();
 	const wrong: string[] = [];
-	for (const part of text.split(/[,;\n\r]+/)) {
+	for (const part of text.slice(0, LONGEST_ADDRESS_LIST).split(/[,;\n\r]+/)) {
 		for (const word of wordsOf(part.trim())) {
 			const parsed = emailAddress.safeParse(word);
 			if (parsed.success) addresses.add(parsed.data);
@@ -30,9 +31,20 @@ export function readAddressList(text: string): AddressList {
 }
 
 function wordsOf(part: string): readonly string[] {
-	const bracketed = part.match(/<[^<>]*>/g);
-	if (bracketed) return bracketed.map((word) => word.slice(1, -1).trim() || word);
-	return part.split(/\s+/).filter((word) => word !== '');
+	const words = (text: string) => text.split(/\s+/).filter((word) => word !== '');
+	const [before = [], ...bracketed] = part.split('<').map((piece) => piece.split('>'));
+	const sound =
+		before.length === 1 &&
+		bracketed.every((piece) => piece.length === 2 && (piece[0] ?? '').includes('@'));
+	if (!sound) return words(part);
+	const outside = [before[0] ?? '', ...bracketed.map(([, after]) => after ?? '')];
+	const last = outside.pop() ?? '';
+	// A name is dropped, but an address where a name would stand is one more.
+	const named = outside.flatMap((name, i) => [
+		...words(name).filter((word) => word.includes('@')),
+		(bracketed[i]?.[0] ?? '').trim()
+	]);
+	return [...named, ...words(last)];
 }
 
 const SHOWN_WRONG = 3;

@@ -87,10 +87,6 @@ export const SENTENCES: Readonly<Record<string, Sentence>> = {
 		const to = named(is);
 		return to ? `assigned ${task} to ${to}` : `opened ${task} to all`;
 	}),
-	'task.assigned': tasks(({ task, after, named }) => {
-		const to = named(valueOf(after, 'assigneeId'));
-		return to ? `assigned ${task} to ${to}` : `opened ${task} to all`;
-	}),
 	'task.taken': tasks(({ task }) => `took ${task}`),
 	'task.started': tasks(({ task }) => `began ${task}`),
 	'task.released': tasks(
@@ -149,6 +145,8 @@ export const SENTENCES: Readonly<Record<string, Sentence>> = {
 	// A person's own, which belong to no group.
 	'calendar.created': settings(() => 'made a calendar address'),
 	'calendar.revoked': settings(() => 'revoked a calendar address'),
+	'mail.retried': settings(() => 'let a mail be sent again'),
+	'mail.discarded': settings(() => 'discarded a mail'),
 	'user.signed-up': people(() => 'made an account'),
 	'user.password-changed': settings(() => 'changed the password'),
 	'user.notifications-chosen': settings(() => 'chose what to be told of'),

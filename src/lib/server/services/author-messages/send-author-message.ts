@@ -1,12 +1,12 @@
-import { and, asc, count, eq, gt, inArray, min } from 'drizzle-orm';
-import { ROLES, hasRole } from '../../../ledger/roles';
+import { and, count, eq, gt, min } from 'drizzle-orm';
 import { authorMessageInput, type AuthorMessageInput } from '../../../schemas/publication-input';
 import type { Context } from '../../context';
 import type { Transaction } from '../../db/client';
-import { authorMessages, claims, memberships } from '../../db/schema';
+import { authorMessages, claims } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { newId } from '../../ids';
 import { recordAudit } from '../audit';
+import { maintainersOf } from '../groups/maintainers-of';
 import { isPublicClaim } from '../inequalities/visibility';
 import { notify } from '../notifications/notify';
 import { parseInput } from '../parse-input';
@@ -76,15 +76,4 @@ async function requireRoom(tx: Transaction, claimId: string, now: Date): Promise
 		[],
 		Math.max(1, Math.ceil(again / 1000))
 	);
-}
-
-/** Maintainers and owners, in the order they joined. */
-async function maintainersOf(tx: Transaction, groupId: string): Promise<string[]> {
-	const roles = ROLES.filter((role) => hasRole(role, 'maintainer'));
-	const rows = await tx
-		.select({ userId: memberships.userId })
-		.from(memberships)
-		.where(and(eq(memberships.groupId, groupId), inArray(memberships.role, roles)))
-		.orderBy(asc(memberships.createdAt));
-	return rows.map(({ userId }) => userId);
 }

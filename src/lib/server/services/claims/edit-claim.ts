@@ -12,6 +12,7 @@ import { deriveClaim } from './derive-claim';
 import { findClaim, isOwn } from './find-claim';
 import { readClaimInput } from './read-claim-input';
 import { requireSound, storeClaimParts } from './store-claim';
+import { tellProposed } from './tell-proposed';
 
 export const MAY_NOT_EDIT = 'Only who entered a claim and maintainers may edit it.';
 
@@ -68,6 +69,7 @@ export async function editClaim(
 			before: withPaper(current.input, current.referenceId),
 			after: withPaper(asks, columns.referenceId)
 		});
+		if (needsPublishing) await tellProposed(tx, ctx, current.id);
 		await deriveClaim(tx, current.id, ctx.now());
 		return { id: current.id, number, version: version + 1 };
 	});

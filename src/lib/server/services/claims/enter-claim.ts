@@ -12,6 +12,7 @@ import { parseInput } from '../parse-input';
 import { deriveClaim } from './derive-claim';
 import { readClaimInput } from './read-claim-input';
 import { requireSound, storeClaimParts } from './store-claim';
+import { tellProposed } from './tell-proposed';
 
 /**
  * Enters a claim: paper, inequality and recomputations are stored and queued with it.
@@ -75,6 +76,7 @@ export async function enterClaim(
 			groupId: ctx.group.id,
 			after: asks
 		});
+		if (asks.visibility === 'proposed') await tellProposed(tx, ctx, id);
 		// The inequality may have been recomputed for another claim: the verdict is then there at once.
 		await deriveClaim(tx, id, ctx.now());
 		return taken;

@@ -132,6 +132,7 @@ async function contradictedReproduction(story: Story): Promise<void> {
 		kind: 'value',
 		printed: '0.25147',
 		program: 'Own script',
+		programVersion: '25 November',
 		method: 'Moment matrix with products of one operator a party'
 	});
 	await submitTask(people.member, number, value, []);

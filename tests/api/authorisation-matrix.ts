@@ -45,6 +45,8 @@ const apiGroup = '/api/v1/groups/[slug]/claims';
 const apiClaim = `${apiGroup}/[number]`;
 const run = '/api/v1/recomputations/[id]';
 
+const task = '/g/[slug]/tasks/[number]';
+const taskPage = (w: MatrixWorld) => `/g/${w.slug}/tasks/${w.taskNumber}`;
 const inequalityPage = (w: MatrixWorld) => `/g/${w.slug}/inequalities/${w.inequalityId}`;
 
 function doors(
@@ -196,6 +198,36 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ path: (w) => `/g/${w.slug}/submissions/01890a5d-ac96-774b-bcce-b302099a8057/certificate` }
 	),
 
+	// A task open to all: the member takes it first, and whoever comes later finds it taken. Who
+	// decides on whose submission is in tasks.test.ts.
+	...doors('/g/[slug]/tasks', { GET: page('observer') }),
+	...doors('/g/[slug]/tasks/new', { GET: page('maintainer'), open: action('maintainer', 400) }),
+	...doors(task, { GET: page('observer') }, { path: taskPage }),
+	...doors(
+		task,
+		{
+			take: { ...action('member', 409), member: 200 },
+			start: { ...action('member', 409), member: 200 },
+			release: { ...action('member', 409), member: 200 },
+			submit: action('member', 400),
+			accept: action('maintainer', 409),
+			return: action('maintainer', 409),
+			cancel: action('maintainer', 400)
+		},
+		{ path: taskPage }
+	),
+	...doors(task, { edit: action('maintainer', 409) }, { path: taskPage, fields: { version: '0' } }),
+	...doors(
+		task,
+		{ comment: action('member', 303) },
+		{ path: taskPage, fields: { body: 'The authors were asked.' } }
+	),
+	...doors(
+		task,
+		{ 'edit-comment': action('observer', 404), 'remove-comment': action('observer', 404) },
+		{ path: taskPage }
+	),
+
 	// Claims. The member entered it, so that what is one's own to do is the member's too.
 	...doors('/g/[slug]/claims/new', {
 		GET: page('member'),
@@ -214,7 +246,8 @@ export const MATRIX: readonly MatrixRow[] = [
 		restore: action('member'),
 		propose: action('member'),
 		publish: action('maintainer'),
-		unpublish: action('maintainer')
+		unpublish: action('maintainer'),
+		assign: action('maintainer')
 	}),
 	// The member entered it, so that somebody else compares it; here with questions left open.
 	...doors(claim, {
@@ -279,8 +312,11 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors(`${apiClaim}/tasks`, { GET: action('observer') }),
 	...doors('/api/v1/groups/[slug]/activity', { GET: action('observer') }),
 	...doors('/api/v1/groups/[slug]/tasks', { GET: action('observer') }),
-	// There is no task; the answer to members differs from the one to an outsider in words only.
-	...doors('/api/v1/groups/[slug]/tasks/[number]', { GET: action('observer', 404) }),
+	...doors(
+		'/api/v1/groups/[slug]/tasks/[number]',
+		{ GET: action('observer') },
+		{ path: (w) => `/api/v1/groups/${w.slug}/tasks/${w.taskNumber}` }
+	),
 	...doors('/api/v1/news', { GET: signedIn(401, 200) }),
 	...doors(`${apiClaim}/progress`, { GET: action('observer') }),
 	...doors(`${apiClaim}/events`, { GET: action('observer') }),

@@ -18,6 +18,8 @@ export interface MatrixWorld extends GroupOfFour {
 	readonly publicClaimId: string;
 	readonly publicInequalityId: string;
 	readonly publicReferenceId: string;
+	/** A task on the group's own claim, open to all. */
+	readonly taskNumber: number;
 	/** A joining link that nobody has used. */
 	readonly link: string;
 }
@@ -72,8 +74,15 @@ export async function matrixWorld(server: TestServer): Promise<MatrixWorld> {
 		`/g/${group.slug}/claims/${open.number}?/publish`
 	);
 	if (published.status !== 200) throw new Error(`publishing: ${published.status}`);
+	const opened = await group.maintainer.submit(`/g/${group.slug}/tasks/new?/open`, {
+		claims: String(own.number),
+		instructions: SECRET
+	});
+	const task = /tasks\/(\d+)$/.exec(opened.headers.get('location') ?? '')?.[1];
+	if (!task) throw new Error(`opening a task: ${opened.status}`);
 	return {
 		...group,
+		taskNumber: Number(task),
 		number: own.number,
 		claimId: own.id,
 		inequalityId: own.subject.inequalityId,

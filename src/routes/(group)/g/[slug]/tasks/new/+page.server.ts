@@ -35,7 +35,7 @@ export const load: PageServerLoad = async (event) => {
 
 export const actions: Actions = {
 	open: async (event) => {
-		const ctx = await requireRole(event, 'observer');
+		const ctx = await requireRole(event, 'maintainer');
 		const data = await event.request.formData();
 		const typed = typedIn(data);
 		let numbers: number[];

@@ -185,6 +185,7 @@ describe('handing a group over', () => {
 		const member = world.as.member.actor.id;
 		const to = (by: Role, userId: string) => transferOwnership(world.as[by], userId);
 		await expect(to('maintainer', member)).rejects.toMatchObject({ code: 'forbidden' });
+		await expect(to('owner', '')).rejects.toMatchObject({ code: 'invalid' });
 		await expect(to('owner', world.as.owner.actor.id)).rejects.toMatchObject({ code: 'conflict' });
 		const stranger = world.outsider.actor.id;
 		await expect(to('owner', stranger)).rejects.toMatchObject({ code: 'not-found' });

@@ -8,10 +8,11 @@ const REFUSAL = 'Only owners hand a group over.';
 
 /**
  * Makes another member an owner and the actor a maintainer, both or neither.
- * @throws ServiceError forbidden, not-found (not in the group), conflict (oneself)
+ * @throws ServiceError forbidden, invalid (nobody chosen), not-found (not in the group), conflict (oneself)
  */
 export async function transferOwnership(ctx: GroupContext, userId: string): Promise<void> {
 	if (!may(ctx.role, 'transfer-ownership')) throw new ServiceError('forbidden', REFUSAL);
+	if (userId === '') throw new ServiceError('invalid', 'Choose who is to own the group.');
 	if (userId === ctx.actor.id) {
 		throw new ServiceError('conflict', 'You own it already: choose somebody else.');
 	}

@@ -1,7 +1,7 @@
 import { createClient } from '@libsql/client';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { hashToken } from '../../src/lib/server/ids';
-import { newPerson, PASSWORD } from '../support/people';
+import { newPerson, PASSWORD, startGroup } from '../support/people';
 import { startServer, type TestServer } from '../support/server';
 import { Visitor } from '../support/visitor';
 
@@ -131,6 +131,15 @@ describe('signing in and out', () => {
 			const response = await signIn(visitor, { email: email('next'), next });
 			expect(response.headers.get('location'), next).toBe(goes);
 		}
+	});
+
+	it('leads home once one is in a group', async () => {
+		const visitor = await newPerson(server, { email: email('home') });
+		await startGroup(visitor, 'Landing stage');
+		const response = await signIn(visitor, { email: email('home') });
+		expect(response.headers.get('location')).toBe('/home');
+		expect((await visitor.get('/sign-in')).headers.get('location')).toBe('/home');
+		expect(await (await visitor.get('/home')).text()).toContain('Landing stage');
 	});
 
 	it('forgets a cookie that means nothing', async () => {

@@ -8,6 +8,14 @@ import { EVERYONE, MATRIX, type MatrixRow, type Who } from './authorisation-matr
 
 const METHODS = ['GET', 'POST', 'PUT', 'PATCH', 'DELETE'];
 
+/** Routes that are pages. */
+function pagesInFiles(): string[] {
+	return readdirSync('src/routes', { recursive: true, encoding: 'utf8' })
+		.filter((path) => /(^|\/)\+page\.svelte$/.test(path))
+		.map((path) => `/${path.replace(/\/?\+page\.svelte$/, '')}`)
+		.map((route) => route.replace(/\/\([^)]*\)/g, '') || '/');
+}
+
 /** Every door of the routes: `GET /g/[slug]`, `invite /g/[slug]/members`, found in the files. */
 function doorsInFiles(): string[] {
 	const doors = new Set<string>();
@@ -102,10 +110,9 @@ describe('the authorisation matrix', () => {
 		expect(answers).toEqual(row.answers);
 	});
 
-	// A route that ends like a file, such as ledger.csv, is no page and has no data of its own.
-	const pages = MATRIX.filter(
-		({ door, route }) => door === 'GET' && !route.startsWith('/api/') && !/\.\w+$/.test(route)
-	);
+	// An endpoint, such as a file to download, is no page and has no data of its own.
+	const withPage = new Set(pagesInFiles());
+	const pages = MATRIX.filter(({ door, route }) => door === 'GET' && withPage.has(route));
 	it.each(pages.map((row) => [row.route, row] as const))('data of %s', async (_, row) => {
 		const answers: Partial<Record<Who, number>> = {};
 		for (const who of EVERYONE) {

@@ -4,7 +4,7 @@ import type { Figure } from '../mail-content';
 const RELATION_SIGNS = { '=': '', '<=': '≤ ', '>=': '≥ ' } as const;
 
 /** As printed, with the sign of a bound. */
-export const printedValue = ({ relation, printed }: ClaimFacts) =>
+const printedValue = ({ relation, printed }: ClaimFacts) =>
 	RELATION_SIGNS[relation] + printed;
 
 /** Claimed and recomputed under one another; a bound carries what it is worth. */
@@ -24,17 +24,24 @@ export function comparedFigures(claim: ClaimFacts): readonly Figure[] {
 	return figures;
 }
 
+type Row = readonly [label: string, value: string];
+
 /** Which claim: what, its value, and where it is printed. */
-export function claimRows(claim: ClaimFacts | null): readonly (readonly [string, string])[] {
+export function claimRows(claim: ClaimFacts | null): readonly Row[] {
 	if (!claim) return [];
+	const [what, ...where] = claimRowsWithoutValue(claim);
+	return [...(what ? [what] : []), ['Printed value', printedValue(claim)], ...where];
+}
+
+/** For a mail that has the values as figures already. */
+export function claimRowsWithoutValue(claim: ClaimFacts): readonly Row[] {
 	return [
 		[`Claim ${claim.number}`, claim.title],
-		['Printed value', printedValue(claim)],
 		['Paper', paperOf(claim)]
 	];
 }
 
-export function paperOf({ reference, locator }: ClaimFacts): string {
+function paperOf({ reference, locator }: ClaimFacts): string {
 	return [reference, locator].filter((part) => part !== '').join(', ');
 }
 

@@ -38,7 +38,7 @@ export function invitationMail(facts: InvitationFacts): MailContent {
 		],
 		action: { label: 'Join the group', address: link },
 		footer: {
-			why: 'The link lets one person join, once. If you don’t know who this is from, ignore this mail: nothing happens, and no further one follows.',
+			why: 'The link lets one person join, once. If you don’t know who this is from, ignore this mail and nothing happens.',
 			choices: null,
 			unsubscribe: null
 		}

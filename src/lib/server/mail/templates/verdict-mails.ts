@@ -1,6 +1,6 @@
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
 import type { MailContent } from '../mail-content';
-import { claimRows, comparedFigures } from './claim-parts';
+import { claimRowsWithoutValue, comparedFigures } from './claim-parts';
 
 /** What a template fills in; the rest of a mail is the same for every kind. */
 export type MailBody = Omit<MailContent, 'action' | 'footer'> & { readonly actionLabel: string };
@@ -19,7 +19,7 @@ export function discrepancyBody({ claim }: NotificationFacts): MailBody | null {
 			title: 'It would agree if',
 			items: claim.verdict.diagnosis.slice(0, MOST_DIAGNOSES).map(({ text }) => text)
 		},
-		facts: claimRows(claim),
+		facts: claimRowsWithoutValue(claim),
 		actionLabel: `Open claim ${claim.number}`
 	};
 }
@@ -35,7 +35,7 @@ export function settledBody({ claim }: NotificationFacts): MailBody | null {
 			`Claim ${claim.number} was a discrepancy when you were last told of it. It agrees now.`,
 			claim.verdict.reason
 		],
-		facts: claimRows(claim),
+		facts: claimRowsWithoutValue(claim),
 		actionLabel: `Open claim ${claim.number}`
 	};
 }

@@ -89,10 +89,10 @@ async function seed(marker: string): Promise<void> {
 
 	const numbers = new Map<string, number>();
 	for (const [place, claim] of CLAIMS.entries()) {
-		clock.set(14.5 - place / 100);
+		clock.set(15, 14 + place / 20);
 		if (!claim.leaveQueued) numbers.set(claim.key, await enter(people, claim));
 	}
-	clock.set(14);
+	clock.set(15, 17);
 	for (const claim of CLAIMS) {
 		const number = numbers.get(claim.key);
 		const by = numbers.get(claim.supersededBy ?? '');
@@ -121,7 +121,7 @@ async function seed(marker: string): Promise<void> {
 	await tellTasks(story);
 	await tellTalk(story);
 
-	clock.set(0);
+	clock.setToNow();
 	for (const claim of CLAIMS) {
 		if (claim.leaveQueued) await enter(people, claim);
 	}

@@ -26,7 +26,7 @@ export async function tellPublication(
 ): Promise<void> {
 	const number = numbers.get('i3322-level-taken-for-quantum') ?? NaN;
 	const claim = await findClaim(anonymous.db.read, people.owner, number);
-	clock.set(11);
+	clock.set(12, 17);
 	await confirmTranscription(people.maintainer, number, {
 		valueMatches: 'yes',
 		locatorMatches: 'yes',
@@ -34,16 +34,16 @@ export async function tellPublication(
 		note: '',
 		version: claim.version
 	});
-	clock.set(10.5);
+	clock.set(11, 13);
 	await publishClaim(people.owner, number);
-	clock.set(3.8);
+	clock.set(4, 10);
 	await sendAuthorMessage(anonymous, claim.id, {
 		name: 'Saga Lindmark',
 		email: 'saga@fictional.example',
 		message:
 			'You are right: the row shows the value of the relaxation with products of one operator a party, and the heading should have said so. A correction has appeared.'
 	});
-	clock.set(3.1);
+	clock.set(4, 17);
 	await attachNotice(people.owner, number, {
 		kind: 'erratum',
 		bibtex: CORRECTION,

@@ -52,9 +52,9 @@ async function acceptedReproduction(story: Story): Promise<void> {
 		instructions:
 			'Theorem 2 gives $r \\ge 1 - h(Q) - h\\!\\left(\\frac{1 + \\sqrt{(S/2)^2 - 1}}{2}\\right)$. Please evaluate it at the error rate of their Fig. 4, $Q = 3.25\\,\\%$ and $S = 2\\sqrt{2}\\,(1 - 2Q)$.'
 	});
-	clock.set(10.2);
+	clock.set(11, 16);
 	await startTask(people.member, number);
-	clock.set(9.6);
+	clock.set(10, 12);
 	const value = submitInput.parse({
 		kind: 'value',
 		printed: '0.4369',
@@ -63,20 +63,20 @@ async function acceptedReproduction(story: Story): Promise<void> {
 		method: 'Direct evaluation with 50 digits'
 	});
 	await submitTask(people.member, number, value, []);
-	clock.set(9.1);
+	clock.set(10, 17);
 	await returnSubmission(
 		people.owner,
 		number,
 		'Please add the script, so that the next one does not have to write it again.'
 	);
-	clock.set(8.4);
+	clock.set(9, 14);
 	const again = submitInput.parse({
 		...value,
 		printed: '0.436944',
 		comment: 'The script is attached; it prints $r = 0.436944$ for $S = 2.644579$.'
 	});
 	await submitTask(people.member, number, again, [file('key_rate.py', KEY_RATE_SCRIPT)]);
-	clock.set(8.1);
+	clock.set(9, 17);
 	await acceptSubmission(people.owner, number);
 }
 
@@ -104,7 +104,7 @@ async function waitingReproduction(story: Story): Promise<void> {
 		dueOn: dayFromToday(2),
 		instructions: 'Solve $2\\,I_2(E) = 1$ for the isotropic box and a noiseless channel.'
 	});
-	clock.set(2.3);
+	clock.set(3, 15);
 	const value = submitInput.parse({
 		kind: 'value',
 		printed: '0.779944',
@@ -120,14 +120,14 @@ async function waitingReproduction(story: Story): Promise<void> {
 /** Accepted by a person, then shown to contradict a certificate: its task is taken up again. */
 async function contradictedReproduction(story: Story): Promise<void> {
 	const { clock, people } = story;
-	clock.set(7.5);
+	clock.set(8, 13);
 	const number = await ask(story, people.owner, 'i3322-more-digits', {
 		kind: 'recompute',
 		assigneeId: people.member.actor.id,
 		dueOn: dayFromToday(5),
 		instructions: 'Two more digits from below would settle it.'
 	});
-	clock.set(5.5);
+	clock.set(6, 13);
 	const value = submitInput.parse({
 		kind: 'value',
 		printed: '0.25147',
@@ -136,27 +136,27 @@ async function contradictedReproduction(story: Story): Promise<void> {
 		method: 'Moment matrix with products of one operator a party'
 	});
 	await submitTask(people.member, number, value, []);
-	clock.set(5.2);
+	clock.set(6, 16);
 	await acceptSubmission(people.maintainer, number);
 }
 
 /** Returned with a reason. */
 async function returnedSearch(story: Story): Promise<void> {
 	const { clock, people } = story;
-	clock.set(6.5);
+	clock.set(7, 13);
 	const number = await ask(story, people.maintainer, 'cglmp3-taken-for-maximum', {
 		kind: 'find-code',
 		assigneeId: people.member.actor.id,
 		dueOn: dayFromToday(6),
 		instructions: 'They thank someone for a program. Is it to be had?'
 	});
-	clock.set(4.4);
+	clock.set(5, 14);
 	const found = submitInput.parse({
 		kind: 'statement',
 		comment: 'There is an archive with the thesis it comes from.'
 	});
 	await submitTask(people.member, number, found, []);
-	clock.set(4.1);
+	clock.set(5, 17);
 	await returnSubmission(people.maintainer, number, 'Which version printed the value in Table I?');
 }
 
@@ -169,7 +169,7 @@ async function disputedTranscription(story: Story): Promise<void> {
 		assigneeId: people.maintainer.actor.id,
 		dueOn: dayFromToday(-1)
 	});
-	clock.set(3.2);
+	clock.set(4, 16);
 	const compared = submitInput.parse({
 		kind: 'transcription',
 		valueMatches: 'no',
@@ -192,7 +192,7 @@ async function notBegunYet(story: Story): Promise<void> {
 		dueOn: dayFromToday(-2),
 		instructions: 'Which level was run for Table II, row 4?'
 	});
-	clock.set(7.2);
+	clock.set(8, 16);
 	await startTask(people.maintainer, overdue);
 	clock.set(4);
 	await ask(story, people.maintainer, 'chained4-mistyped', {
@@ -210,6 +210,6 @@ async function notBegunYet(story: Story): Promise<void> {
 		kind: 'other',
 		instructions: 'Look for a second printing.'
 	});
-	clock.set(3.5);
+	clock.set(3, 12);
 	await cancelTask(people.maintainer, cancelled, 'There was one printing only.');
 }

@@ -44,6 +44,14 @@ describe('a limit on requests', () => {
 		}
 	);
 
+	it('counts as many as one request asks for', async () => {
+		const invite = (times: number) => countRequest(request('ines').event, 'invitation', times);
+		await invite(20);
+		await invite(20);
+		await invite(10);
+		await expect(invite(1)).rejects.toMatchObject({ status: 429 });
+	});
+
 	it('is each person’s own, and each address’s', async () => {
 		await send(1, 'pia', 'reading');
 		await expect(

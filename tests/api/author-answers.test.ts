@@ -160,6 +160,16 @@ describe('the form for authors', () => {
 
 	it('is gone with the claim’s publication', async () => {
 		const page = `/g/${group.slug}/claims/${claim.number}`;
+		const unsaid = await group.owner.submit(`${page}?/confirm`, {
+			valueMatches: 'no',
+			locatorMatches: 'yes',
+			inequalityMatches: 'yes',
+			version: '1'
+		});
+		expect(unsaid.status).toBe(400);
+		const again = await unsaid.text();
+		expect(again).toContain('id="comparison-note-error"');
+		expect(again).toMatch(/name="valueMatches" value="no"[^>]*checked/);
 		const disputed = await group.owner.submit(`${page}?/confirm`, {
 			valueMatches: 'no',
 			locatorMatches: 'yes',

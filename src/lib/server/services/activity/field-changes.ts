@@ -54,16 +54,14 @@ export function fieldChanges(
 		}
 		return String(value);
 	};
-	const fields = [...new Set([...Object.keys(before), ...Object.keys(after)])];
-	return fields.flatMap((field) => {
-		if (PLUMBING.has(field)) return [];
-		// What only one of them has did not change, unless the other has nothing at all.
-		const whole = Object.keys(before).length === 0 || Object.keys(after).length === 0;
-		const added = !(field in before);
+	const told = (recorded: Recorded) => Object.keys(recorded).filter((key) => !PLUMBING.has(key));
+	const [was, is] = [told(before), told(after)];
+	// A field that only one side has did not change, unless the other side has none at all.
+	const whole = was.length === 0 || is.length === 0;
+	return [...new Set([...was, ...is])].flatMap((field) => {
 		if (!whole && !(field in after)) return [];
-		const [was, is] = [shown(valueOf(before, field)), shown(valueOf(after, field))];
-		if (was === is || (added && is === '')) return [];
-		return [{ field: words(field), before: was, after: is }];
+		const [old, now] = [shown(valueOf(before, field)), shown(valueOf(after, field))];
+		return old === now ? [] : [{ field: words(field), before: old, after: now }];
 	});
 }
 

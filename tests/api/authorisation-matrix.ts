@@ -47,6 +47,7 @@ const run = '/api/v1/recomputations/[id]';
 
 const task = '/g/[slug]/tasks/[number]';
 const taskPage = (w: MatrixWorld) => `/g/${w.slug}/tasks/${w.taskNumber}`;
+const NO_COMMENT = { id: 'none', body: 'Said otherwise.' };
 const inequalityPage = (w: MatrixWorld) => `/g/${w.slug}/inequalities/${w.inequalityId}`;
 
 function doors(
@@ -224,8 +225,8 @@ export const MATRIX: readonly MatrixRow[] = [
 	),
 	...doors(
 		task,
-		{ 'edit-comment': action('observer', 404), 'remove-comment': action('observer', 404) },
-		{ path: taskPage }
+		{ 'edit-comment': action('member', 404), 'remove-comment': action('member', 404) },
+		{ path: taskPage, fields: NO_COMMENT }
 	),
 
 	// Claims. The member entered it, so that what is one's own to do is the member's too.
@@ -262,10 +263,11 @@ export const MATRIX: readonly MatrixRow[] = [
 
 	// Talk; whose comment may be changed is in comments.test.ts.
 	...doors(claim, { comment: action('member', 303) }, { fields: { body: 'Checked by hand.' } }),
-	...doors(claim, {
-		'edit-comment': action('observer', 404),
-		'remove-comment': action('observer', 404)
-	}),
+	...doors(
+		claim,
+		{ 'edit-comment': action('member', 404), 'remove-comment': action('member', 404) },
+		{ fields: NO_COMMENT }
+	),
 	...doors(
 		'/g/[slug]/inequalities/[id]',
 		{ comment: action('member', 303) },
@@ -273,8 +275,8 @@ export const MATRIX: readonly MatrixRow[] = [
 	),
 	...doors(
 		'/g/[slug]/inequalities/[id]',
-		{ 'edit-comment': action('observer', 404), 'remove-comment': action('observer', 404) },
-		{ path: inequalityPage }
+		{ 'edit-comment': action('member', 404), 'remove-comment': action('member', 404) },
+		{ path: inequalityPage, fields: NO_COMMENT }
 	),
 	...doors(
 		'/api/v1/groups/[slug]/previews',

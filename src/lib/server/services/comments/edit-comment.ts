@@ -13,6 +13,8 @@ import { findComment, type CommentRow } from './find-comment';
 import { findSubject } from './find-subject';
 import { storeMentions } from './store-mentions';
 
+const REFUSAL = 'Only who wrote a comment may change it.';
+
 /** Whether an edit now leaves no trace for readers. */
 export function isFresh({ createdAt }: Pick<CommentRow, 'createdAt'>, now: Date): boolean {
 	return now.getTime() - createdAt.getTime() <= EDIT_MINUTES * 60_000;
@@ -24,11 +26,13 @@ export function isFresh({ createdAt }: Pick<CommentRow, 'createdAt'>, now: Date)
  * @throws ServiceError forbidden, invalid, not-found, conflict (it is removed)
  */
 export async function editComment(ctx: GroupContext, id: string, text: string): Promise<void> {
+	// Who may not even change a comment of their own learns no more.
+	if (!may(ctx.role, 'edit-comment', { own: true })) throw new ServiceError('forbidden', REFUSAL);
 	const { body } = parseInput(editCommentInput, { id, body: text });
 	await ctx.db.write(async (tx) => {
 		const comment = await findComment(tx, ctx, id);
 		if (!may(ctx.role, 'edit-comment', { own: comment.authorId === ctx.actor.id })) {
-			throw new ServiceError('forbidden', 'Only who wrote a comment may change it.');
+			throw new ServiceError('forbidden', REFUSAL);
 		}
 		if (comment.removedAt) throw new ServiceError('conflict', 'This comment is removed.');
 		if (comment.body === body) return;

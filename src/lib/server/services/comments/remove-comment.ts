@@ -7,18 +7,20 @@ import { recordAudit } from '../audit';
 import { findComment } from './find-comment';
 import { findSubject } from './find-subject';
 
+const REFUSAL = 'Only who wrote a comment and maintainers may remove it.';
+
 /**
  * Takes a comment's texts away, all of them; that there was one, and who removed it, stays.
  * @throws ServiceError forbidden, not-found
  */
 export async function removeComment(ctx: GroupContext, id: string): Promise<void> {
+	if (!may(ctx.role, 'remove-comment', { own: true })) {
+		throw new ServiceError('forbidden', REFUSAL);
+	}
 	await ctx.db.write(async (tx) => {
 		const comment = await findComment(tx, ctx, id);
 		if (!may(ctx.role, 'remove-comment', { own: comment.authorId === ctx.actor.id })) {
-			throw new ServiceError(
-				'forbidden',
-				'Only who wrote a comment and maintainers may remove it.'
-			);
+			throw new ServiceError('forbidden', REFUSAL);
 		}
 		if (comment.removedAt) return;
 		const { subject, subjectId, body } = comment;

@@ -251,10 +251,8 @@ export const MATRIX: readonly MatrixRow[] = [
 		assign: action('maintainer')
 	}),
 	// The member entered it, so that somebody else compares it; here with questions left open.
-	...doors(claim, {
-		confirm: action('maintainer', 400),
-		attachNotice: action('member', 400)
-	}),
+	...doors(claim, { confirm: action('maintainer', 400) }, { fields: { version: '1' } }),
+	...doors(claim, { attachNotice: action('member', 400) }, { fields: { kind: 'erratum' } }),
 	...doors(claim, { removeNotice: action('member', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { handleMessage: action('maintainer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { supersede: action('member', 400) }, { fields: { by: '999' } }),

@@ -22,7 +22,7 @@ export const QUESTIONS = [
 
 export const FILES_HINT =
 	`At most ${TASK_LIMITS.files} files of ${sizeWords(TASK_LIMITS.fileBytes)} each: ` +
-	'logs, programs, data, PDF, images. Others get them as downloads.';
+	'programs, logs, data, PDF, pictures, archives. Others get them as downloads.';
 
 /** A submission's fields as a form starts with them; what was typed before comes first. */
 export function submitStart(

@@ -13,14 +13,14 @@ describe('what a row says of its task', () => {
 		['Submitted by Mo Member', { state: 'submitted', dueOn: '2026-12-14' }],
 		['Returned to Mo Member', { state: 'returned' }]
 	] as const)('%s', (words, over) => {
-		expect(markWords(makeTaskMark(over), 2026)).toBe(words);
+		expect(markWords(makeTaskMark(over), 2026).join(' ').trim()).toBe(words);
 	});
 });
 
 describe('sizes and days', () => {
 	it('count in powers of ten', () => {
 		expect(sizeWords(812)).toBe('812\u2009bytes');
-		expect(sizeWords(10_000_000)).toBe('10.0\u2009MB');
+		expect(sizeWords(10_000_000)).toBe('10\u2009MB');
 	});
 
 	it('name the year when it is another', () => {

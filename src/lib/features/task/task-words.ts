@@ -10,17 +10,18 @@ export function dayWords(day: string, thisYear = new Date().getUTCFullYear()): s
 	return year === thisYear ? words : `${words} ${year ?? ''}`;
 }
 
-/** What a ledger's row says of its task: `Due 14 Dec, I. Okafor`, `Unassigned`. */
-export function markWords(mark: TaskMark, thisYear?: number): string {
-	const { state, assignee } = mark;
-	if (state === 'submitted') return assignee ? `Submitted by ${assignee}` : 'Submitted';
-	if (state === 'returned') return assignee ? `Returned to ${assignee}` : 'Returned';
+/** What a ledger's row says of its task, and of whom: `Due 14 Dec,` `I. Okafor`; `Unassigned`. */
+export function markWords(mark: TaskMark, thisYear?: number): readonly [string, string] {
+	const { state } = mark;
+	const who = mark.assignee ?? '';
+	if (state === 'submitted') return [who ? 'Submitted by' : 'Submitted', who];
+	if (state === 'returned') return [who ? 'Returned to' : 'Returned', who];
 	if (mark.dueOn) {
 		const due = mark.overdue ? 'Overdue since' : 'Due';
-		return `${due} ${dayWords(mark.dueOn, thisYear)}, ${assignee ?? 'unassigned'}`;
+		return [`${due} ${dayWords(mark.dueOn, thisYear)},`, who || 'unassigned'];
 	}
-	if (!assignee) return 'Unassigned';
-	return state === 'in-progress' ? `In progress, ${assignee}` : `Assigned to ${assignee}`;
+	if (!who) return ['Unassigned', ''];
+	return [state === 'in-progress' ? 'In progress,' : 'Assigned to', who];
 }
 
 /** What a task of this kind asks somebody to do, and what settles it. */
@@ -62,6 +63,6 @@ const UNITS = ['bytes', 'kB', 'MB'] as const;
 /** `812 bytes`, `1.3 MB` (powers of ten, as the limits are), with a thin space before the unit. */
 export function sizeWords(bytes: number): string {
 	const step = bytes < 1_000 ? 0 : bytes < 1_000_000 ? 1 : 2;
-	const amount = bytes / 1_000 ** step;
-	return `${step === 0 ? amount : amount.toFixed(1)}\u2009${UNITS[step] ?? ''}`;
+	const amount = (bytes / 1_000 ** step).toFixed(1).replace(/\.0$/, '');
+	return `${amount}\u2009${UNITS[step] ?? ''}`;
 }

@@ -1,6 +1,7 @@
 import type { GroupContext } from '../context';
 import { renderMarkdown } from '../markdown/render-markdown';
 import { showClaim } from '../services/claims/show-claim';
+import { ACCEPTED_NAMES } from '../services/evidence-files/file-kinds';
 import { discussionView } from '../services/comments/discussion-view';
 import { peopleForTasks } from '../services/tasks/people-for-tasks';
 import { showTask } from '../services/tasks/show-task';
@@ -12,6 +13,8 @@ export async function taskPage(ctx: GroupContext, number: number) {
 		task,
 		claim: await showClaim(ctx, task.claim.number),
 		discussion: await discussionView(ctx, 'task', task.id),
+		/** Endings of the names of files that a submission takes. */
+		accepted: ACCEPTED_NAMES,
 		people: await peopleForTasks(ctx.db.read, ctx.group.id),
 		/** The comment of each submission, in their order, as safe HTML. */
 		comments: task.submissions.map(({ comment }) => renderMarkdown(comment))

@@ -1,5 +1,6 @@
 import { eq, type SQL } from 'drizzle-orm';
 import { publicVerdict } from '../../../ledger/public-verdict';
+import { wantsTask } from '../../../ledger/suggested-task';
 import { dayOf } from '../../../ledger/tasks';
 import type { LedgerRow } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
@@ -90,16 +91,10 @@ export async function claimRows(
 			visibility: claim.visibility,
 			notices: notices.get(claim.id) ?? [],
 			task,
-			wantsTask: isOwn && task === null && wantsTask(claim)
+			wantsTask: isOwn && task === null && wantsTask(claim.state, verdict, [])
 		});
 	}
 	return rows;
-}
-
-/** What machines do not settle, or what is to be settled with the paper. */
-function wantsTask({ state, status, verdict }: SelectedClaim['claim']): boolean {
-	if (state !== 'active') return false;
-	return status === 'discrepancy' || (status === 'open' && verdict.reasonCode === 'no-solver');
 }
 
 /** Which evidence the verdict rests on, each named once. */

@@ -1,16 +1,13 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { dayOf } from '../../src/lib/ledger/tasks';
 import type { ClaimInput } from '../../src/lib/schemas/claim-input';
 import { parseLedgerQuery } from '../../src/lib/schemas/ledger-query';
 import { parseTaskQuery } from '../../src/lib/schemas/task-input';
 import type { GroupContext } from '../../src/lib/server/context';
-import { evidenceFiles, memberships, submissions } from '../../src/lib/server/db/schema';
-import { editClaim } from '../../src/lib/server/services/claims/edit-claim';
+import { memberships } from '../../src/lib/server/db/schema';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { listClaims } from '../../src/lib/server/services/claims/list-claims';
 import { restoreClaim } from '../../src/lib/server/services/claims/restore-claim';
-import { showClaim } from '../../src/lib/server/services/claims/show-claim';
 import { withdrawClaim } from '../../src/lib/server/services/claims/withdraw-claim';
 import { acceptSubmission } from '../../src/lib/server/services/tasks/accept-submission';
 import { cancelTask } from '../../src/lib/server/services/tasks/cancel-task';
@@ -27,7 +24,14 @@ import { submitTask } from '../../src/lib/server/services/tasks/submit-task';
 import { takeTask } from '../../src/lib/server/services/tasks/take-task';
 import { tasksOfClaim } from '../../src/lib/server/services/tasks/tasks-of-claim';
 import { bibtexOf, claimFields } from '../support/service';
-import { addMember, foundValue, openTaskWorld, type TaskWorld } from '../support/task-world';
+import {
+	addMember,
+	foundValue,
+	inDays,
+	issueAt,
+	openTaskWorld,
+	type TaskWorld
+} from '../support/task-world';
 
 let world: TaskWorld;
 beforeEach(async () => {
@@ -38,17 +42,6 @@ afterEach(() => world.end());
 const conflict = { code: 'conflict' };
 const forbidden = { code: 'forbidden' };
 const notFound = { code: 'not-found' };
-const issue = (field: string, message: RegExp) => ({
-	code: 'invalid',
-	issues: expect.arrayContaining([
-		expect.objectContaining({ field, message: expect.stringMatching(message) as unknown })
-	]) as unknown
-});
-const inDays = (days: number) => dayOf(new Date(Date.now() + days * 86_400_000));
-const text = (name: string, content: string) => ({
-	name,
-	bytes: new TextEncoder().encode(content)
-});
 const list = (ctx: GroupContext, query = '') =>
 	listTasks(ctx, parseTaskQuery(new URLSearchParams(query)));
 const row = async (claim: number) =>
@@ -82,10 +75,10 @@ describe('opening tasks', () => {
 		const [first] = claims;
 		await withdrawClaim(world.as.member, first ?? 0);
 		await expect(openTasks(world.as.maintainer, { claims })).rejects.toMatchObject(
-			issue('claims', /Claim 1 is withdrawn/)
+			issueAt('claims', /Claim 1 is withdrawn/)
 		);
 		await expect(openTasks(world.as.owner, { claims: [2, 99] })).rejects.toMatchObject(
-			issue('claims', /no claim 99 in this group/)
+			issueAt('claims', /no claim 99 in this group/)
 		);
 		expect((await list(world.as.observer, 'state=all')).total).toBe(3);
 	});
@@ -94,14 +87,14 @@ describe('opening tasks', () => {
 		const claims = [await world.openClaim()];
 		const open = (over: object, ctx = world.as.maintainer) => openTasks(ctx, { claims, ...over });
 		await expect(open({}, world.as.member)).rejects.toMatchObject(forbidden);
-		await expect(open({ claims: [] })).rejects.toMatchObject(issue('claims', /at least one/));
-		await expect(open({ dueOn: inDays(-1) })).rejects.toMatchObject(issue('dueOn', /is over/));
+		await expect(open({ claims: [] })).rejects.toMatchObject(issueAt('claims', /at least one/));
+		await expect(open({ dueOn: inDays(-1) })).rejects.toMatchObject(issueAt('dueOn', /is over/));
 		await expect(open({ dueOn: '2027-02-30' })).rejects.toMatchObject(
-			issue('dueOn', /year-month-day/)
+			issueAt('dueOn', /year-month-day/)
 		);
 		for (const stranger of [world.as.observer, world.outsider]) {
 			await expect(open({ assigneeId: stranger.actor.id })).rejects.toMatchObject(
-				issue('assigneeId', /at least a member/)
+				issueAt('assigneeId', /at least a member/)
 			);
 		}
 		// The member entered the claim, so the comparison is somebody else's.
@@ -159,7 +152,7 @@ describe('a task’s life', () => {
 			may: { decide: true, submit: false }
 		});
 		await expect(returnSubmission(world.as.maintainer, number, '   ')).rejects.toMatchObject(
-			issue('reason', /Give a reason/)
+			issueAt('reason', /Give a reason/)
 		);
 		await returnSubmission(world.as.maintainer, number, 'More digits, please.');
 		expect(await showTask(world.wren, number)).toMatchObject({
@@ -314,109 +307,6 @@ describe('a task’s life', () => {
 		expect(await world.toldTo(world.wren)).toEqual(['task-assigned', 'task-cancelled']);
 		await restoreClaim(world.as.member, claim);
 		expect((await row(claim))?.wantsTask).toBe(true);
-	});
-});
-
-describe('a submission', () => {
-	const submitting = async (input: object, over = {}) => {
-		const number = await world.openTask(await world.openClaim(), over);
-		return submitTask(world.wren, number, input);
-	};
-
-	it.each<[string, object, string, RegExp]>([
-		['no value', foundValue(''), 'printed', /Give the value you found/],
-		['a value that is none', foundValue('about half'), 'printed', /can't be read/],
-		['a sign against the relation', foundValue('< 3', { relation: '>=' }), 'printed', /keep one/],
-		['no method', foundValue('0.7', { program: '' }), 'program', /how the value was found/],
-		['no version', foundValue('0.7', { programVersion: '' }), 'programVersion', /version/],
-		['no words', { kind: 'statement' }, 'comment', /Say what you found/],
-		['no certificate', { kind: 'certificate' }, 'certificate', /Paste/],
-		['of another kind', { kind: 'transcription' }, 'kind', /recompute elsewhere/]
-	])('is refused at its field: %s', async (_, input, field, message) => {
-		await expect(submitting(input)).rejects.toMatchObject(issue(field, message));
-		const [task] = (await list(world.wren)).rows;
-		expect(task).toMatchObject({ state: 'open', version: 1 });
-	});
-
-	it('names the place in a value that can’t be read', async () => {
-		await expect(submitting(foundValue('2*x'))).rejects.toMatchObject({
-			issues: [{ field: 'printed', position: 2 }]
-		});
-	});
-
-	it('may be a method without a program, words, or a file alone', async () => {
-		await submitting(foundValue('0.7', { program: '', programVersion: '', method: 'by hand' }));
-		await submitting({ kind: 'statement', comment: 'They answered.' }, { kind: 'ask-authors' });
-		const number = await world.openTask(await world.openClaim());
-		await submitTask(world.wren, number, { kind: 'statement' }, [text('log.txt', 'ran')]);
-		expect((await showTask(world.wren, number)).submissions[0]?.files).toMatchObject([
-			{ name: 'log.txt', bytes: 3 }
-		]);
-	});
-
-	it('keeps its files, and nothing when anything of it is refused', async () => {
-		const number = await world.openTask(await world.openClaim());
-		const files = [text('run.log', 'eigenvalues 1 2 3'), text('matrix.csv', '1,2\n3,4')];
-		await submitTask(world.wren, number, foundValue('0.70711'), files);
-		const [submission] = (await showTask(world.as.observer, number)).submissions;
-		expect(submission?.files.map(({ name }) => name)).toEqual(['run.log', 'matrix.csv']);
-		const second = await world.openTask(await world.openClaim());
-		const bad = { name: 'tool.exe', bytes: new Uint8Array([0x4d, 0x5a, 0, 0]) };
-		await expect(
-			submitTask(world.wren, second, foundValue('0.7'), [text('run.log', 'ok'), bad])
-		).rejects.toMatchObject(issue('files', /tool\.exe/));
-		expect((await showTask(world.wren, second)).submissions).toEqual([]);
-		expect(await world.db.read.$count(evidenceFiles)).toBe(2);
-	});
-
-	it('comparing with the paper confirms the claim, and returning it takes that back', async () => {
-		const claim = await world.openClaim();
-		const number = await world.openTask(claim, { kind: 'confirm-transcription' });
-		await expect(takeTask(world.as.member, number)).rejects.toMatchObject(conflict);
-		expect((await showTask(world.as.member, number)).may).toMatchObject({
-			take: false,
-			submit: false
-		});
-		const yes = { valueMatches: 'yes', locatorMatches: 'yes', inequalityMatches: 'yes' } as const;
-		const kind = 'transcription' as const;
-		await expect(
-			submitTask(world.wren, number, { kind, ...yes, valueMatches: '' })
-		).rejects.toMatchObject(issue('valueMatches', /./));
-		await expect(
-			submitTask(world.wren, number, { kind, ...yes, valueMatches: 'no' })
-		).rejects.toMatchObject(issue('comment', /what is wrong/));
-		await submitTask(world.wren, number, { kind, ...yes });
-		expect(await showTask(world.wren, number)).toMatchObject({
-			state: 'submitted',
-			submissions: [{ kind, transcription: { current: true, valueMatches: true } }]
-		});
-		await returnSubmission(world.as.maintainer, number, 'Wrong page.');
-		await submitTask(world.wren, number, {
-			kind,
-			...yes,
-			valueMatches: 'no',
-			comment: 'It is 0.71'
-		});
-		const { submissions: tries } = await showTask(world.wren, number);
-		expect(
-			tries.map(({ transcription }) => [transcription?.current, transcription?.valueMatches])
-		).toEqual([
-			[false, true],
-			[true, false]
-		]);
-		await acceptSubmission(world.as.maintainer, number);
-	});
-
-	it('is not accepted when the claim is about something else since', async () => {
-		const claim = await world.openClaim();
-		const number = await world.openTask(claim);
-		await submitTask(world.wren, number, foundValue('0.70711'));
-		const { input } = await showClaim(world.as.member, claim);
-		await editClaim(world.as.member, claim, 1, { ...input, described: 'three qubits' });
-		expect((await showTask(world.wren, number)).submissions[0]?.current).toBe(false);
-		await expect(acceptSubmission(world.as.maintainer, number)).rejects.toMatchObject(conflict);
-		const [kept] = await world.db.read.select().from(submissions);
-		expect(kept?.state).toBe('waiting');
 	});
 });
 

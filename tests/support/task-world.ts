@@ -2,6 +2,8 @@ import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { and, asc, eq } from 'drizzle-orm';
+import { expect } from 'vitest';
+import { dayOf } from '../../src/lib/ledger/tasks';
 import type { ClaimInput } from '../../src/lib/schemas/claim-input';
 import type { OpenTasksInput, SubmitInput } from '../../src/lib/schemas/task-input';
 import type { GroupContext } from '../../src/lib/server/context';
@@ -104,3 +106,14 @@ export const foundValue = (printed: string, over: Partial<SubmitInput> = {}) =>
 		programVersion: '2.1',
 		...over
 	}) satisfies Partial<SubmitInput>;
+
+/** The error of a field, as services throw it. */
+export const issueAt = (field: string, message: RegExp) => ({
+	code: 'invalid',
+	issues: expect.arrayContaining([
+		expect.objectContaining({ field, message: expect.stringMatching(message) as unknown })
+	]) as unknown
+});
+
+/** A day so many days from now, `YYYY-MM-DD`. */
+export const inDays = (days: number) => dayOf(new Date(Date.now() + days * 86_400_000));

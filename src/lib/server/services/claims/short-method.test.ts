@@ -13,6 +13,8 @@ describe('a method under a figure', () => {
 		['the enumeration of all deterministic strategies', 'deterministic strategies'],
 		['a deterministic strategy', 'deterministic strategies'],
 		['a no-signalling box', 'linear programme'],
+		['a reproduction by Wren Aldous (own program (new) 2.1)', 'reproduction by Wren Aldous'],
+		['a person’s reproduction', 'a person’s reproduction'],
 		['evaluation', 'evaluation']
 	])('%s: %s', (label, short) => {
 		expect(shortMethod(label)).toBe(short);

@@ -108,6 +108,8 @@ describe('a calendar address', () => {
 		expect(ofGroup.address).not.toBe(made[0]?.address);
 		expect(ofGroup.address).not.toBe(ofOther.address);
 		expect(await listFeeds(member)).toEqual([made[0], ofGroup]);
+		expect(await listFeeds(member, { groupSlug: null })).toEqual([made[0]]);
+		expect(await listFeeds(member, { groupSlug: 'first' })).toEqual([ofGroup]);
 	});
 
 	it('is kept as a hash only, and its making and end are recorded without it', async () => {

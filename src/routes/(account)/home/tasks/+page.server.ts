@@ -15,7 +15,7 @@ export const load: PageServerLoad = async (event) => {
 	return {
 		query,
 		tasks: await answering(() => listOwnTasks(ctx, query)),
-		feeds: await listFeeds(ctx)
+		feeds: await listFeeds(ctx, { groupSlug: null })
 	};
 };
 

@@ -9,6 +9,6 @@ export const load: PageServerLoad = async (event) => {
 	const ctx = await requireRole(event, 'observer');
 	const query = parseTaskQuery(event.url.searchParams);
 	const tasks = await answering(() => listTasks(ctx, query));
-	const feeds = await listFeeds(ctx);
+	const feeds = await listFeeds(ctx, { groupSlug: ctx.group.slug });
 	return { query, tasks, feeds, role: ctx.role, self: ctx.actor.id };
 };

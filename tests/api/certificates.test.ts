@@ -1,6 +1,4 @@
-import { spawnSync } from 'node:child_process';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import type { Finding } from '../../src/lib/ledger/evidence';
 import { submissions, tasks } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
 import { createInProcessPool } from '../../src/lib/server/jobs/in-process-pool';
@@ -10,9 +8,8 @@ import { findClaim, type ClaimRow } from '../../src/lib/server/services/claims/f
 import { downloadCertificate } from '../../src/lib/server/services/submissions/download-certificate';
 import { loadSubmittedFindings } from '../../src/lib/server/services/submissions/load-submitted-findings';
 import { readCertificate } from '../../src/lib/server/services/submissions/read-certificate';
-import { solve } from '../../src/lib/nonlocality';
 import type { ClaimInput } from '../../src/lib/schemas/claim-input';
-import { parseProblem } from '../../src/lib/schemas/problem';
+import { CH, TSIRELSON, certify, sidesOf, solved } from '../support/certificates';
 import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
 
 /**
@@ -21,17 +18,9 @@ import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../s
  * ; level 2 of the NPA hierarchy 0.250939722 (Navascués, Pironio and Acín
  * 2008 print 0.2509).
  */
-const TSIRELSON = 2 * Math.SQRT2;
 const CH_MAXIMUM = (Math.SQRT2 - 1) / 2;
 const I3322_UPPER = 0.2508753846;
 
-const CH = {
-	collinsGisin: [
-		[0, -1, 0],
-		[-1, 1, 1],
-		[0, 1, -1]
-	]
-};
 /** I3322 with its parties exchanged, the second's outputs turned round, doubled, and 3 added. */
 const I3322_ELSEWHERE = {
 	expression:
@@ -53,27 +42,6 @@ afterAll(async () => {
 	world.close();
 });
 
-/** What our own command line prints. */
-function certify(problem: object): string {
-	const { status, stdout, stderr } = spawnSync('node_modules/.bin/tsx', ['src/cli/bound.ts', '-'], {
-		input: JSON.stringify(problem),
-		encoding: 'utf8',
-		timeout: 60_000
-	});
-	if (status !== 0) throw new Error(stderr);
-	return stdout;
-}
-
-/** The same without a process of its own, which takes seconds to start. */
-async function solved(problem: object): Promise<string> {
-	const control = {
-		now: () => performance.now(),
-		shouldStop: () => false,
-		report: () => undefined
-	};
-	return JSON.stringify(await solve(parseProblem(problem), control));
-}
-
 let papers = 0;
 async function claimOf(fields: Partial<ClaimInput> = {}): Promise<ClaimRow> {
 	papers++;
@@ -85,11 +53,6 @@ async function claimOf(fields: Partial<ClaimInput> = {}): Promise<ClaimRow> {
 }
 
 const read = (claim: ClaimRow, text: string) => readCertificate(world.as.member, claim, text);
-
-function sidesOf({ check }: Finding) {
-	if (!check?.checked) throw new Error('not checked');
-	return check;
-}
 
 describe('a certificate of the command line', () => {
 	it('of CHSH’s level 1 says what it proves, rounded outward', async () => {
@@ -294,76 +257,6 @@ describe('what is refused, with a sentence', () => {
 			quantity: 'local'
 		});
 		await expect(read(claim, near)).rejects.toThrow(/can’t be proved|another inequality/);
-	});
-});
-
-/** Every place of a JSON value where a number or a fraction stands. */
-function placesOf(value: unknown, path: readonly (string | number)[] = []): (string | number)[][] {
-	if (typeof value === 'number' || (typeof value === 'string' && /^-?\d+(\/\d+)?$/.test(value)))
-		return [[...path]];
-	if (Array.isArray(value)) return value.flatMap((entry, i) => placesOf(entry, [...path, i]));
-	if (typeof value !== 'object' || value === null) return [];
-	return Object.entries(value).flatMap(([key, entry]) => placesOf(entry, [...path, key]));
-}
-
-function changed(
-	value: unknown,
-	[key, ...rest]: readonly (string | number)[],
-	how: number
-): unknown {
-	if (key === undefined) {
-		if (typeof value === 'string') return String(Number.parseInt(value, 10) + Math.round(how * 10));
-		return Number(value) + how;
-	}
-	const copy: unknown = structuredClone(value);
-	const entry: unknown = Reflect.get(Object(copy), key);
-	Reflect.set(Object(copy), key, changed(entry, rest, how));
-	return copy;
-}
-
-describe('a changed certificate', () => {
-	it.each([
-		['level 1 of CHSH', { ...CH, quantity: 'npa', level: 1 }, TSIRELSON],
-		['a strategy for CHSH', { ...CH, quantity: 'see-saw', dimension: 2 }, TSIRELSON],
-		['the local maximum', { ...CH, quantity: 'local' }, 2],
-		['the no-signalling maximum', { ...CH, quantity: 'no-signalling' }, 4]
-	] as const)('of %s is refused, or what it proves is still true', async (_, problem, truth) => {
-		const claim = await claimOf();
-		const whole: Record<string, unknown> = JSON.parse(await solved(problem));
-		const places = placesOf(whole['certificate']);
-		expect(places.length).toBeGreaterThan(3);
-		let refused = 0;
-		// Small enough to stay a certificate, or large enough to be none; both directions.
-		for (const [i, path] of places.entries()) {
-			const how = [0.3, -0.3, 1e-3, -2][i % 4] ?? 1;
-			const certificate = changed(whole['certificate'], path, how);
-			const text = JSON.stringify({ ...whole, certificate });
-			const result = await read(claim, text).catch((error: unknown) => {
-				expect(error).toMatchObject({ code: 'invalid' });
-				return null;
-			});
-			if (!result?.accepted) {
-				refused++;
-				continue;
-			}
-			const { lower, upper } = sidesOf(result.finding);
-			if (lower !== null) expect(lower).toBeLessThanOrEqual(truth);
-			if (upper !== null) expect(upper).toBeGreaterThanOrEqual(truth);
-		}
-		expect(refused).toBeGreaterThan(0);
-	});
-
-	it('gains nothing from what its person prints', async () => {
-		const claim = await claimOf();
-		const whole = JSON.parse(await solved({ ...CH, quantity: 'npa', level: 1 }));
-		const looser = JSON.stringify({ ...whole, upper: 0.9, optimum: 7, method: { level: 'faith' } });
-		const { finding, accepted } = await read(claim, looser);
-		expect(accepted).toBe(true);
-		expect(finding.result).toMatchObject({ value: null, optimum: null, method: {} });
-		expect(sidesOf(finding).upper).toBeLessThan(TSIRELSON + 1e-6);
-		const tighter = await read(claim, JSON.stringify({ ...whole, upper: 0.2 }));
-		expect(tighter).toMatchObject({ accepted: false });
-		expect(tighter.note).toMatch(/^The check refuses it: the printed upper side 0\.2 is below/);
 	});
 });
 

@@ -129,6 +129,16 @@ describe('a server that stalls', () => {
 	});
 });
 
+describe('a server of ours that stops', () => {
+	it('begins no further mail, and sends them all after its next start', async () => {
+		await waiting([world.as.member.actor.id, owner().id]);
+		const good = await catcher();
+		expect(await sendTo(world, good.url, { signal: AbortSignal.abort() })).toBe(0);
+		expect(await rows()).toMatchObject([{ attempts: 0 }, { attempts: 0 }]);
+		expect(await sendTo(world, good.url)).toBe(2);
+	});
+});
+
 describe('what is sent twice', () => {
 	it('when the server dies between the mail and its answer bears the same Message-ID', async () => {
 		await waiting();

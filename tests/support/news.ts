@@ -150,17 +150,24 @@ export interface SendOptions {
 	readonly at?: Date;
 	readonly silenceMs?: number;
 	readonly wholeMs?: number;
+	readonly signal?: AbortSignal;
 }
 
 /** One turn of the sender against that server. */
 export async function sendTo(
 	world: Pick<ServiceWorld, 'db'>,
 	url: string,
-	{ at = new Date(), ...limits }: SendOptions = {}
+	{ at = new Date(), signal, ...limits }: SendOptions = {}
 ): Promise<number> {
 	const transport = createSmtpTransport(url, FROM, limits);
 	try {
-		return await sendDueMails({ db: world.db, transport, origin: ORIGIN, now: () => at });
+		return await sendDueMails({
+			db: world.db,
+			transport,
+			origin: ORIGIN,
+			now: () => at,
+			...(signal && { signal })
+		});
 	} finally {
 		transport.close();
 	}

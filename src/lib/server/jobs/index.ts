@@ -130,12 +130,14 @@ async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promi
 	}
 	if (!url) return { stop: closeSink };
 	const transport: MailTransport = createSmtpTransport(url, mailFrom);
+	const stopping = new AbortController();
 	const timer = every(MAIL_EVERY_MS, 'sending mail', async () => {
 		await sendDueMails({
 			db,
 			transport,
 			origin,
 			now,
+			signal: stopping.signal,
 			onFailure: (messageId, error, dead) =>
 				log()[dead ? 'error' : 'warn'](
 					{ messageId, err: error },
@@ -145,6 +147,7 @@ async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promi
 	});
 	return {
 		async stop() {
+			stopping.abort();
 			await timer.stop();
 			transport.close();
 			await closeSink();

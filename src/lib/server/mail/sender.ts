@@ -21,6 +21,8 @@ export interface SenderOptions {
 	/** Address of the site, for links. */
 	readonly origin: string;
 	now(): Date;
+	/** The server stops: what is under way ends, nothing more is begun. */
+	readonly signal?: AbortSignal;
 	/** Called with what went wrong; the mail stays in the outbox. */
 	onFailure?(messageId: string, error: Error, dead: boolean): void;
 }
@@ -34,7 +36,7 @@ export async function sendDueMails(options: SenderOptions): Promise<number> {
 	const due = [...(await dueMails(options.db.read, options.now()))];
 	let sent = 0;
 	const lane = async () => {
-		for (let row = due.shift(); row; row = due.shift()) {
+		for (let row = due.shift(); row && !options.signal?.aborted; row = due.shift()) {
 			if (await sendOne(options, row)) sent++;
 		}
 	};

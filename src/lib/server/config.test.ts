@@ -19,6 +19,15 @@ describe('readConfig', () => {
 		});
 	});
 
+	it('takes administrators by account id, never by address', () => {
+		const ids = ['01a23203-b04c-7054-a22f-8ef2f364b646', '01a23203-d9e8-731b-aa76-862ffee23bb9'];
+		const read = (text: string) =>
+			readConfig({ MERESTONE_SECRET: secret, MERESTONE_ADMINS: text }).admins;
+		expect(read(` ${ids.join(' , ')},`)).toEqual(ids);
+		expect(read('')).toEqual([]);
+		expect(() => read('wren@reading.example')).toThrow(/MERESTONE_ADMINS: expected account ids/);
+	});
+
 	it('needs no secret in the demo only', () => {
 		expect(() => readConfig({})).toThrow(/MERESTONE_SECRET: expected at least 32 characters/);
 		expect(() => readConfig({ MERESTONE_SECRET: 'short' })).toThrow(/MERESTONE_SECRET/);

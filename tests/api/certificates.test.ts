@@ -13,7 +13,7 @@ import { CH, TSIRELSON, certify, sidesOf, solved } from '../support/certificates
 import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
 
 /**
- * Published values. CHSH: Tsirelson 1980, 2 sqrt 2. CH (Clauser and Horne 1974) is (CHSH - 2)/4, so
+ * Published values, quoted from memory of the papers. CHSH: Tsirelson 1980, 2 sqrt 2. CH (Clauser and Horne 1974) is (CHSH - 2)/4, so
  * that its quantum maximum is (sqrt 2 - 1)/2. I3322: Pál and Vértesi 2010, 0.250875384514 from above
  * ; level 2 of the NPA hierarchy 0.250939722 (Navascués, Pironio and Acín
  * 2008 print 0.2509).

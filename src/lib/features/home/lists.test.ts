@@ -18,7 +18,7 @@ describe('tasks of several groups', () => {
 		expect(screen.getByRole('table', { name: 'My tasks' })).toBeTruthy();
 		expect(href('Recompute elsewhere')).toBe('/g/quarry/tasks/4');
 		expect(href('Find the code')).toBe('/g/quarry/tasks/5');
-		expect(screen.getByText('Overdue since 14 Dec 2020')).toBeTruthy();
+		expect(screen.getByText('14 Dec 2020, overdue')).toBeTruthy();
 		expect(screen.getByText('no date')).toBeTruthy();
 		expect(screen.getAllByRole('link', { name: /Quantum maximum/ })[0]).toHaveProperty(
 			'pathname',

@@ -11,8 +11,10 @@ import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { listClaims } from '../../src/lib/server/services/claims/list-claims';
 import { publishClaim } from '../../src/lib/server/services/claims/publish-claim';
 import { recomputeClaim } from '../../src/lib/server/services/claims/recompute-claim';
+import { restoreClaim } from '../../src/lib/server/services/claims/restore-claim';
 import { showClaim } from '../../src/lib/server/services/claims/show-claim';
 import { showPublicClaim } from '../../src/lib/server/services/claims/show-public-claim';
+import { withdrawClaim } from '../../src/lib/server/services/claims/withdraw-claim';
 import { showInequality } from '../../src/lib/server/services/inequalities/show-inequality';
 import { showPublicInequality } from '../../src/lib/server/services/inequalities/show-public-inequality';
 import { showPublicReference } from '../../src/lib/server/services/references/show-public-reference';
@@ -181,6 +183,16 @@ describe('a reproduction that contradicts a certificate', () => {
 		// While it is computed once more, what was contradicted settles nothing.
 		await recomputeClaim(world.as.member, claim);
 		expect((await claimOf(claim)).verdict.enclosure?.worth).not.toBe('person');
+	});
+
+	it('found out while the claim is withdrawn is reopened once it is restored', async () => {
+		const claim = await enter('2.9');
+		const { task } = await reproduced(claim, '2.9');
+		await withdrawClaim(world.as.member, claim);
+		await world.recompute();
+		expect((await showTask(world.wren, task)).state).toBe('accepted');
+		await restoreClaim(world.as.member, claim);
+		expect((await showTask(world.wren, task)).state).toBe('returned');
 	});
 });
 

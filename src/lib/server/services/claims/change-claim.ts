@@ -19,13 +19,15 @@ export interface ClaimChange {
 	readonly refusal: string;
 	/** The columns to change; null: nothing to do. @throws ServiceError when it can't be done */
 	change(tx: Transaction, claim: ClaimRow): Promise<Change | null> | Change | null;
+	/** What follows from it, in the same transaction. */
+	afterwards?(tx: Transaction, claim: ClaimRow): Promise<void>;
 }
 
 /** A change of a claim's state or visibility: policy, check and write, with its audit row. */
 export async function changeClaim(
 	ctx: GroupContext,
 	number: number,
-	{ action, audit, refusal, change }: ClaimChange
+	{ action, audit, refusal, change, afterwards }: ClaimChange
 ): Promise<void> {
 	await ctx.db.write(async (tx) => {
 		const claim = await findClaim(tx, ctx, number);
@@ -48,5 +50,6 @@ export async function changeClaim(
 			before: { state, supersededById, visibility },
 			after: values
 		});
+		await afterwards?.(tx, claim);
 	});
 }

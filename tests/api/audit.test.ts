@@ -130,7 +130,8 @@ async function rowsAfter(id: string) {
 const newest = async () => (await rowsAfter('')).at(-1)?.id ?? '';
 
 describe('each verb writes exactly one row, with who, when, in which request, before and after', () => {
-	it.each(STEPS)('%s: %s', async (_, action, run, made) => {
+	it.each(STEPS.map(([what, ...step]) => [what, step] as const))('%s', async (_, step) => {
+		const [action, run, made] = step;
 		const last = await newest();
 		await run();
 		// What the product derives from a change is its own.

@@ -111,7 +111,7 @@ test('public pages are accessible, at both widths and in both modes', async ({ p
 });
 
 test('a group’s pages are accessible, at both widths and in both modes', async ({ page }) => {
-	test.setTimeout(420_000);
+	test.setTimeout(600_000);
 	await signIn(page, 'ines@harrow.example');
 	const base = `/g/${GROUP.slug}`;
 	const rows = await ledgerOf(page);
@@ -130,6 +130,16 @@ test('a group’s pages are accessible, at both widths and in both modes', async
 		`${base}/references`,
 		`${base}/references/${rows[0]?.reference.id}`,
 		`${base}/members`,
+		`${base}/tasks`,
+		`${base}/tasks?view=board`,
+		`${base}/tasks/1`,
+		`${base}/tasks/new?claims=1`,
+		`${base}/activity`,
+		`${base}/settings`,
+		'/home',
+		'/home/tasks',
+		'/news',
+		'/account/notifications',
 		'/account',
 		'/groups/new'
 	];

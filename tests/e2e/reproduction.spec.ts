@@ -235,8 +235,8 @@ test('what no solver settles is assigned, reproduced, returned, accepted; an aut
 
 	await test.step('the activity tells all of it', async () => {
 		await owner.goto(`${server.origin}${GROUP}/activity`);
-		for (const said of [/returned/i, /accepted/i, /published/i]) {
-			await expect(owner.getByText(said).first()).toBeVisible();
+		for (const said of ['returned', 'accepted', 'published claim 2', 'answered claim 2']) {
+			await expect(owner.getByRole('link', { name: said }).first()).toBeVisible();
 		}
 	});
 	expect(complaints).toEqual([]);

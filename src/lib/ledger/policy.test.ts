@@ -29,7 +29,6 @@ const TABLE: Readonly<Record<Action, readonly [own: string, others: string]>> = 
 	'change-settings': [MAINTAINER_UP, MAINTAINER_UP],
 	'change-address': [OWNER, OWNER],
 	'transfer-ownership': [OWNER, OWNER],
-	'delete-group': [OWNER, OWNER],
 	'open-task': [MAINTAINER_UP, MAINTAINER_UP],
 	'edit-task': [MAINTAINER_UP, MAINTAINER_UP],
 	'cancel-task': [MAINTAINER_UP, MAINTAINER_UP],

@@ -10,7 +10,13 @@ import type { Problem } from '../../../nonlocality/problem';
 import type { Transaction } from '../../db/client';
 import { inequalities, recomputations, type claims } from '../../db/schema';
 import { readMap, type AffineMap as EnclosedMap } from '../inequalities/affine';
-import { claimProblem, quantityInfo, readQuantity } from '../recomputations/claim-problem';
+import {
+	claimProblem,
+	quantityInfo,
+	quantityProblem,
+	readQuantity
+} from '../recomputations/claim-problem';
+import type { ProblemSubjectData } from '../recomputations/station-problems';
 import { loadSubmittedFindings } from '../submissions/load-submitted-findings';
 import { explainVerdict } from './explain-verdict';
 import type { FindingsOf } from './findings';
@@ -40,10 +46,12 @@ export async function judgeClaim(
 	const own = await ownRun(tx, claim);
 	const findings = own ? await findingsOf(claim) : [];
 	const map = readMap(claim);
-	// What a person attached and the check accepted is a proof like the machine's.
-	const attached = own ? await loadSubmittedFindings(tx, claim) : [];
-	const computed = own
-		? [...findings, ...attached].flatMap((f) => evidenceIn(f, own.problem, map))
+	// What a person attached and the check accepted is a proof like the machine's, also where no
+	// run of ours could start.
+	const attached = await loadSubmittedFindings(tx, claim);
+	const claimed = own?.problem ?? (attached.length > 0 ? await claimedProblem(tx, claim) : null);
+	const computed = claimed
+		? [...findings, ...attached].flatMap((f) => evidenceIn(f, claimed, map))
 		: [];
 	const found = await loadReproductions(tx, claim);
 	const heard = heardReproductions(found, computed);
@@ -107,16 +115,31 @@ async function ownRun(tx: Transaction, claim: JudgedClaim): Promise<OwnRun | nul
 
 /** Why nothing recomputes the claim: no solver for the quantity, or a limit of the one there is. */
 async function noSolver(tx: Transaction, claim: JudgedClaim): Promise<RecomputationState> {
-	if (claim.inequalityId === null || quantityInfo(claim.input.quantity).solver === null) {
-		return { kind: 'no-solver' };
-	}
+	const subject = await servedSubject(tx, claim);
+	if (!subject) return { kind: 'no-solver' };
+	const found = claimProblem(claim.input, readQuantity(claim.input), subject, 1);
+	return { kind: 'no-solver', ...('why' in found ? { why: found.why } : {}) };
+}
+
+/** What is claimed, for comparison only; null where its sets have no place among the others. */
+async function claimedProblem(tx: Transaction, claim: JudgedClaim): Promise<Problem | null> {
+	const subject = await servedSubject(tx, claim);
+	if (!subject) return null;
+	const found = quantityProblem(claim.input, readQuantity(claim.input), subject, 1);
+	return 'problem' in found ? found.problem : null;
+}
+
+/** The inequality of a claim whose quantity has a solver. */
+async function servedSubject(
+	tx: Transaction,
+	{ inequalityId, input }: JudgedClaim
+): Promise<ProblemSubjectData | null> {
+	if (inequalityId === null || quantityInfo(input.quantity).solver === null) return null;
 	const [subject] = await tx
 		.select({ outputs: inequalities.outputs, terms: inequalities.terms })
 		.from(inequalities)
-		.where(eq(inequalities.id, claim.inequalityId));
-	const reading = readQuantity(claim.input);
-	const found = subject && claimProblem(claim.input, reading, subject, 1);
-	return { kind: 'no-solver', ...(found && 'why' in found ? { why: found.why } : {}) };
+		.where(eq(inequalities.id, inequalityId));
+	return subject ?? null;
 }
 
 /**

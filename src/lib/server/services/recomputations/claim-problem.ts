@@ -117,6 +117,21 @@ export function claimProblem(
 	subject: ProblemSubjectData,
 	seconds: number
 ): { readonly problem: Problem } | { readonly why: string } {
+	const found = quantityProblem(choice, reading, subject, seconds);
+	const lacking = 'problem' in found ? lackingMoments(found.problem) : null;
+	return lacking === null ? found : { why: lacking };
+}
+
+/**
+ * The claimed quantity as a problem, also where solving it would be in vain: what others prove of
+ * nested sets is compared with it.
+ */
+export function quantityProblem(
+	choice: QuantityChoice,
+	reading: QuantityReading,
+	subject: ProblemSubjectData,
+	seconds: number
+): { readonly problem: Problem } | { readonly why: string } {
 	const info = quantityInfo(choice.quantity);
 	const base = problemBase(subject, seconds, choice.sense);
 	const parties = subject.outputs.length;
@@ -167,7 +182,5 @@ function npaProblem(
 	if (level === '1+AB' && parties !== 2) {
 		return { why: 'level 1+AB is for two parties; take 1 per party' };
 	}
-	const problem = { ...base, quantity: 'npa', level, nonNegative } as const;
-	const lacking = lackingMoments(problem);
-	return lacking === null ? { problem } : { why: lacking };
+	return { problem: { ...base, quantity: 'npa', level, nonNegative } };
 }

@@ -16,7 +16,7 @@ import { runShortTask } from '../../jobs/current-pool';
 import type { ClaimRow } from '../claims/find-claim';
 import { mapSides, readMap, showSides } from '../inequalities/affine';
 import { findInequality, type InequalityRecord } from '../inequalities/inequality-rows';
-import { claimProblem, readQuantity } from '../recomputations/claim-problem';
+import { quantityProblem, readQuantity } from '../recomputations/claim-problem';
 import { problemLabel } from '../recomputations/problem-label';
 import { certifiedFinding } from './certified-finding';
 import { OtherInequality, placeResult } from './place-result';
@@ -131,7 +131,7 @@ function noteOf(finding: Finding, claim: ClaimRow, inequality: InequalityRecord)
 		? `exactly ${lower}`
 		: [lower && `at least ${lower}`, upper && `at most ${upper}`].filter(Boolean).join(' and ');
 	const proved = sides ? `Proves ${sides} in the claim’s normalisation` : 'Proves neither side';
-	const claimed = claimProblem(claim.input, readQuantity(claim.input), inequality, 1);
+	const claimed = quantityProblem(claim.input, readQuantity(claim.input), inequality, 1);
 	const silent =
 		'problem' in claimed &&
 		evidenceOfFinding(finding, claimed.problem, IDENTITY_MAP).length === 0 &&

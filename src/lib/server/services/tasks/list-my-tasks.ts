@@ -1,4 +1,5 @@
 import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import { rolesFrom } from '../../../ledger/roles';
 import type { TaskRow } from '../../../schemas/task-views';
 import type { UserContext } from '../../context';
 import { memberships, tasks } from '../../db/schema';
@@ -19,7 +20,7 @@ export async function listMyTasks(
 	const decidesIn = read
 		.select({ id: memberships.groupId })
 		.from(memberships)
-		.where(and(eq(memberships.userId, me), inArray(memberships.role, ['maintainer', 'owner'])));
+		.where(and(eq(memberships.userId, me), inArray(memberships.role, rolesFrom('maintainer'))));
 	const mine = await selectTaskRows(
 		read,
 		and(tasksOfPerson(me), inArray(tasks.groupId, memberOf))

@@ -1,4 +1,5 @@
-import { and, asc, eq, ne } from 'drizzle-orm';
+import { and, asc, eq, inArray } from 'drizzle-orm';
+import { rolesFrom } from '../../../ledger/roles';
 import type { PersonView } from '../../../schemas/task-views';
 import type { Reader } from '../../db/client';
 import { memberships, users } from '../../db/schema';
@@ -12,6 +13,6 @@ export async function peopleForTasks(
 		.select({ id: users.id, name: users.name })
 		.from(memberships)
 		.innerJoin(users, eq(users.id, memberships.userId))
-		.where(and(eq(memberships.groupId, groupId), ne(memberships.role, 'observer')))
+		.where(and(eq(memberships.groupId, groupId), inArray(memberships.role, rolesFrom('member'))))
 		.orderBy(asc(users.name), asc(users.id));
 }

@@ -15,12 +15,13 @@ import {
 	type StoredFile,
 	type UploadedFile
 } from '../evidence-files/keep-files';
+import { maintainersOf } from '../groups/maintainers-of';
 import { parseInput } from '../parse-input';
 import { recordTranscriptionCheck } from '../transcriptions/record-transcription-check';
 import { findTask } from './find-task';
 import { readSubmission, type ReadSubmission } from './read-submission';
 import { asActor, refuseStep, stepTask } from './step-task';
-import { deciders, tell } from './tell';
+import { tell } from './tell';
 
 /**
  * Hands in what was found. A certificate is judged by its check at once; anything else waits for
@@ -92,7 +93,7 @@ async function write(
 		await recordTranscriptionCheck(tx, ctx, current, { ...comparison, taskId: task.id });
 	}
 	if (kind === 'certificate') await deriveClaim(tx, claim.id, ctx.now());
-	await tell(tx, ctx, 'task-submitted', task, await deciders(tx, task.groupId));
+	await tell(tx, ctx, 'task-submitted', task, await maintainersOf(tx, task.groupId));
 	return { id };
 }
 

@@ -1,8 +1,6 @@
-import { and, eq, inArray } from 'drizzle-orm';
 import type { NotificationKind } from '../../../ledger/notifications';
 import type { Context } from '../../context';
 import type { Transaction } from '../../db/client';
-import { memberships } from '../../db/schema';
 import { notify } from '../notifications/notify';
 import type { TaskRecord } from './find-task';
 
@@ -24,15 +22,4 @@ export async function tell(
 		taskId: task.id,
 		text
 	});
-}
-
-/** Those who accept or return what is submitted. */
-export async function deciders(tx: Transaction, groupId: string): Promise<string[]> {
-	const rows = await tx
-		.select({ userId: memberships.userId })
-		.from(memberships)
-		.where(
-			and(eq(memberships.groupId, groupId), inArray(memberships.role, ['maintainer', 'owner']))
-		);
-	return rows.map(({ userId }) => userId);
 }

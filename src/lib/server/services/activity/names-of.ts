@@ -1,4 +1,4 @@
-import { and, eq, inArray } from 'drizzle-orm';
+import { and, inArray, sql, type Column } from 'drizzle-orm';
 import type { GroupContext } from '../../context';
 import type { Reader } from '../../db/client';
 import {
@@ -33,11 +33,12 @@ export async function namesOf(
 ): Promise<ReadonlyMap<string, Named>> {
 	const named = new Map<string, Named>();
 	const first = [...new Set(ids)].filter(isId);
-	const here = ctx.group.id;
+	// The plus keeps SQLite to the ids: without it, it reads all rows of the group.
+	const isHere = (groupId: Column) => sql`+${groupId} = ${ctx.group.id}`;
 	const talk = await read
 		.select()
 		.from(comments)
-		.where(and(eq(comments.groupId, here), inArray(comments.id, first)));
+		.where(and(isHere(comments.groupId), inArray(comments.id, first)));
 	const handed = await read
 		.select({ id: submissions.id, taskId: submissions.taskId })
 		.from(submissions)
@@ -52,12 +53,12 @@ export async function namesOf(
 	const work = await read
 		.select({ id: tasks.id, number: tasks.number, claimId: tasks.claimId })
 		.from(tasks)
-		.where(and(eq(tasks.groupId, here), inArray(tasks.id, known)));
+		.where(and(isHere(tasks.groupId), inArray(tasks.id, known)));
 	const aims = [...known, ...work.map(({ claimId }) => claimId)];
 	for (const { id, number } of await read
 		.select({ id: claims.id, number: claims.number })
 		.from(claims)
-		.where(and(eq(claims.groupId, here), inArray(claims.id, aims)))) {
+		.where(and(isHere(claims.groupId), inArray(claims.id, aims)))) {
 		named.set(id, { words: `claim ${number}`, path: `/claims/${number}` });
 	}
 	for (const { id, number, claimId } of work) {
@@ -72,7 +73,7 @@ export async function namesOf(
 	for (const { id, short } of await read
 		.select({ id: references.id, short: references.short })
 		.from(references)
-		.where(and(eq(references.groupId, here), inArray(references.id, known)))) {
+		.where(and(isHere(references.groupId), inArray(references.id, known)))) {
 		named.set(id, { words: short, path: `/references/${id}` });
 	}
 	for (const { id, name, scenario } of await read

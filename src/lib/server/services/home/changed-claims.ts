@@ -1,4 +1,4 @@
-import { and, asc, eq, gte, inArray } from 'drizzle-orm';
+import { and, desc, eq, gte, inArray, sql } from 'drizzle-orm';
 import type { VerdictStatus } from '../../../ledger/claim';
 import type { ChangedClaim } from '../../../schemas/talk-views';
 import type { UserContext } from '../../context';
@@ -6,11 +6,15 @@ import { claims, groups, memberships, verdicts } from '../../db/schema';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
 
 /** So long a change is news. Common practice, no source. */
-export const NEWS_DAYS = 30;
+const NEWS_DAYS = 30;
 
-interface Change {
+interface Turn {
+	readonly claimId: string;
 	readonly at: Date;
+	/** The status before; null: the first one, which was not Open. */
 	readonly before: VerdictStatus | null;
+	readonly groupSlug: string;
+	readonly groupName: string;
 }
 
 /**
@@ -22,69 +26,70 @@ export async function changedClaims(
 	limit: number
 ): Promise<{ readonly rows: readonly ChangedClaim[]; readonly total: number }> {
 	const { read } = ctx.db;
-	const since = new Date(ctx.now().getTime() - NEWS_DAYS * 86_400_000);
-	const judged = read
-		.select({ id: verdicts.claimId })
-		.from(verdicts)
-		.where(gte(verdicts.at, since));
-	const history = await read
-		.select({ claimId: verdicts.claimId, status: verdicts.status, at: verdicts.at })
-		.from(verdicts)
-		.innerJoin(claims, eq(claims.id, verdicts.claimId))
-		.innerJoin(
-			memberships,
-			and(eq(memberships.groupId, claims.groupId), eq(memberships.userId, ctx.actor.id))
-		)
-		.where(
-			and(
-				eq(claims.createdBy, ctx.actor.id),
-				eq(claims.state, 'active'),
-				inArray(verdicts.claimId, judged)
-			)
-		)
-		.orderBy(asc(verdicts.at), asc(verdicts.id));
-	const turns = [...lastTurns(history)]
-		.filter(([, { at }]) => at >= since)
-		.sort(([, a], [, b]) => b.at.getTime() - a.at.getTime());
-	const shown = new Map(turns.slice(0, limit));
-	if (shown.size === 0) return { rows: [], total: 0 };
-	const selected = await selectClaimRows(read, inArray(claims.id, [...shown.keys()]));
+	const turns = await lastTurns(ctx);
+	const shown = turns.slice(0, limit);
+	if (shown.length === 0) return { rows: [], total: 0 };
+	const ids = shown.map(({ claimId }) => claimId);
+	const selected = await selectClaimRows(read, inArray(claims.id, ids));
 	const own = selected.map(({ claim }) => claim.groupId);
-	const views = await claimRows(read, selected, ctx.now(), own);
-	const rows = new Map(views.map((row) => [row.id, row]));
-	const groupOf = await groupsOf(ctx, [...shown.keys()]);
+	const rows = new Map(
+		(await claimRows(read, selected, ctx.now(), own)).map((row) => [row.id, row])
+	);
 	return {
 		total: turns.length,
-		rows: [...shown].flatMap(([id, { at, before }]): ChangedClaim[] => {
-			const [row, group] = [rows.get(id), groupOf.get(id)];
-			if (!row || !group) return [];
-			const { slug, name } = group;
-			return [{ row, groupSlug: slug, groupName: name, at: at.toISOString(), before }];
+		rows: shown.flatMap(({ claimId, at, ...turn }): ChangedClaim[] => {
+			const row = rows.get(claimId);
+			return row ? [{ ...turn, row, at: at.toISOString() }] : [];
 		})
 	};
 }
 
-/** When each claim's status changed last, from verdicts in their order. */
-function lastTurns(
-	history: readonly { claimId: string; status: VerdictStatus; at: Date }[]
-): ReadonlyMap<string, Change> {
-	const latest = new Map<string, VerdictStatus>();
-	const turns = new Map<string, Change>();
-	for (const { claimId, status, at } of history) {
-		const before = latest.get(claimId) ?? null;
-		latest.set(claimId, status);
-		if (status !== before && (before !== null || status !== 'open')) {
-			turns.set(claimId, { at, before });
-		}
-	}
-	return turns;
-}
-
-async function groupsOf(ctx: UserContext, claimIds: readonly string[]) {
-	const rows = await ctx.db.read
-		.select({ id: claims.id, slug: groups.slug, name: groups.name })
-		.from(claims)
-		.innerJoin(groups, eq(groups.id, claims.groupId))
-		.where(inArray(claims.id, [...claimIds]));
-	return new Map(rows.map((row) => [row.id, row]));
+/** When the status of each claim changed last, of those where that is news. */
+function lastTurns(ctx: UserContext): Promise<Turn[]> {
+	const { read } = ctx.db;
+	const me = ctx.actor.id;
+	const since = new Date(ctx.now().getTime() - NEWS_DAYS * 86_400_000);
+	// From the groups to the claims to their verdicts: each step has an index.
+	const history = read.$with('history').as(
+		read
+			.select({
+				claimId: verdicts.claimId,
+				groupId: claims.groupId,
+				id: verdicts.id,
+				status: verdicts.status,
+				at: verdicts.at,
+				before: sql<VerdictStatus | null>`lag(${verdicts.status}) over (
+					partition by ${verdicts.claimId} order by ${verdicts.at}, ${verdicts.id})`.as('before')
+			})
+			.from(memberships)
+			.innerJoin(claims, eq(claims.groupId, memberships.groupId))
+			.innerJoin(verdicts, eq(verdicts.claimId, claims.id))
+			.where(and(eq(memberships.userId, me), eq(claims.createdBy, me), eq(claims.state, 'active')))
+	);
+	const turns = read.$with('turns').as(
+		read
+			.select({
+				claimId: history.claimId,
+				groupId: history.groupId,
+				at: history.at,
+				before: history.before,
+				place: sql<number>`row_number() over (
+					partition by ${history.claimId} order by ${history.at} desc, ${history.id} desc)`.as('place')
+			})
+			.from(history)
+			.where(sql`${history.status} <> coalesce(${history.before}, 'open')`)
+	);
+	return read
+		.with(history, turns)
+		.select({
+			claimId: turns.claimId,
+			at: turns.at,
+			before: turns.before,
+			groupSlug: groups.slug,
+			groupName: groups.name
+		})
+		.from(turns)
+		.innerJoin(groups, eq(groups.id, turns.groupId))
+		.where(and(eq(turns.place, 1), gte(turns.at, since)))
+		.orderBy(desc(turns.at), desc(turns.claimId));
 }

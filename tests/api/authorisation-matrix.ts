@@ -255,6 +255,7 @@ export const MATRIX: readonly MatrixRow[] = [
 	...doors(claim, { attachNotice: action('member', 400) }, { fields: { kind: 'erratum' } }),
 	...doors(claim, { removeNotice: action('member', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { handleMessage: action('maintainer', 404) }, { fields: { id: 'none' } }),
+	...doors(claim, { reopenMessage: action('maintainer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { supersede: action('member', 400) }, { fields: { by: '999' } }),
 	...doors(claim, { cancel: action('observer', 404) }, { fields: { id: 'none' } }),
 	...doors(claim, { recheck: action('observer', 404) }, { fields: { id: 'none' } }),

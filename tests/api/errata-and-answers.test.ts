@@ -3,6 +3,7 @@ import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import type { GroupContext } from '../../src/lib/server/context';
 import { audit, authorMessages, memberships, notifications } from '../../src/lib/server/db/schema';
 import { handleAuthorMessage } from '../../src/lib/server/services/author-messages/handle-author-message';
+import { reopenAuthorMessage } from '../../src/lib/server/services/author-messages/reopen-author-message';
 import { listAuthorMessages } from '../../src/lib/server/services/author-messages/list-author-messages';
 import {
 	MESSAGES_A_DAY,
@@ -188,6 +189,36 @@ describe('what an author writes', () => {
 			.from(audit)
 			.where(eq(audit.action, 'author-message.handled'));
 		expect(rows).toHaveLength(1);
+	});
+
+	it('is taken up again by a maintainer, and dealt with anew', async () => {
+		const { number, id } = await published();
+		await sendAuthorMessage(world.anonymous, id, MESSAGE);
+		const [message] = await listAuthorMessages(world.as.owner, number);
+		const messageId = message?.id ?? '';
+		await reopenAuthorMessage(world.as.maintainer, messageId);
+		await handleAuthorMessage(world.as.maintainer, messageId);
+		await expect(reopenAuthorMessage(world.as.member, messageId)).rejects.toMatchObject(forbidden);
+		await expect(reopenAuthorMessage(world.outsider, messageId)).rejects.toMatchObject(notFound);
+		await reopenAuthorMessage(world.as.owner, messageId);
+		expect((await listAuthorMessages(world.as.owner, number))[0]).toMatchObject({
+			handledBy: null,
+			handledAt: null
+		});
+		await handleAuthorMessage(world.as.owner, messageId);
+		expect((await listAuthorMessages(world.as.owner, number))[0]).toMatchObject({
+			handledBy: { name: 'Olin Owner' }
+		});
+		const rows = await world.db.read
+			.select({ action: audit.action })
+			.from(audit)
+			.where(eq(audit.entityId, messageId));
+		expect(rows.map(({ action }) => action).sort()).toEqual([
+			'author-message.handled',
+			'author-message.handled',
+			'author-message.received',
+			'author-message.reopened'
+		]);
 	});
 
 	it(`is taken ${MESSAGES_A_DAY} times a day for one claim`, async () => {

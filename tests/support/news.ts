@@ -4,7 +4,13 @@ import { simpleParser, type ParsedMail } from 'mailparser';
 import { SMTPServer, type SMTPServerOptions } from 'smtp-server';
 import type { NotificationKind } from '../../src/lib/ledger/notifications';
 import type { Context } from '../../src/lib/server/context';
-import { authorMessages, claims, comments, tasks } from '../../src/lib/server/db/schema';
+import {
+	authorMessages,
+	claims,
+	commentMentions,
+	comments,
+	tasks
+} from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
 import { sendDueMails } from '../../src/lib/server/mail/sender';
 import { createSmtpTransport } from '../../src/lib/server/mail/transport';
@@ -63,6 +69,9 @@ export async function newsRows(
 			body: text,
 			createdAt: at
 		});
+		await tx
+			.insert(commentMentions)
+			.values({ commentId, userId: member.actor.id, handle: 'mo.member' });
 		await tx.insert(authorMessages).values({
 			id: messageId,
 			claimId: claim.id,

@@ -3,6 +3,7 @@ import { superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { authorMessageForm } from '../../schemas/publication-input';
 import { publicContext } from '../auth/guards';
+import { clientAddress } from '../client-address';
 import { ServiceError } from '../errors';
 import { securityEvent } from '../log';
 import { rateLimit } from '../rate-limit';
@@ -35,7 +36,7 @@ export async function takeAuthorAnswer(event: RequestEvent, claimId: string) {
 	}
 	if (!form.valid) return fail(400, { form });
 	try {
-		await messages.count(event.getClientAddress());
+		await messages.count(clientAddress(event));
 		await sendAuthorMessage(ctx, claimId, message);
 	} catch (thrown) {
 		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {

@@ -1,6 +1,7 @@
 import { fail, type RequestEvent } from '@sveltejs/kit';
 import { setError, superValidate, type SuperValidated } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
+import { clientAddress } from '../client-address';
 import type { ClaimFormMessage } from '../../features/claim-form/form-message';
 import { claimInput, type ClaimInput } from '../../schemas/claim-input';
 import type { InequalityRow, ReadingView } from '../../schemas/views';
@@ -86,7 +87,7 @@ export async function signInWithinForm(event: RequestEvent, data: FormData) {
 	const text = (name: string) => String(data.get(name) ?? '');
 	try {
 		const credentials = { email: text('signInEmail'), password: text('signInPassword') };
-		await enter(event, await signIn(contextOf(event), credentials, event.getClientAddress()));
+		await enter(event, await signIn(contextOf(event), credentials, clientAddress(event)));
 	} catch (thrown) {
 		if (!(thrown instanceof ServiceError)) throw thrown;
 		return sendBack(form, thrown.status, { text: thrown.message, issues: [], signedOut: true });

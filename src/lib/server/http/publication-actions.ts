@@ -4,6 +4,7 @@ import { transcriptionInput } from '../../schemas/task-input';
 import { requireRole } from '../auth/guards';
 import { ServiceError } from '../errors';
 import { handleAuthorMessage } from '../services/author-messages/handle-author-message';
+import { reopenAuthorMessage } from '../services/author-messages/reopen-author-message';
 import { attachNotice } from '../services/claim-notices/attach-notice';
 import { removeNotice } from '../services/claim-notices/remove-notice';
 import { parseInput } from '../services/parse-input';
@@ -82,6 +83,15 @@ export const publicationActions = {
 		try {
 			await handleAuthorMessage(ctx, text('id'));
 			return { message: 'Marked as dealt with.' };
+		} catch (thrown) {
+			return failWith(thrown);
+		}
+	},
+	reopenMessage: async (event: RequestEvent) => {
+		const { ctx, text } = await asked(event);
+		try {
+			await reopenAuthorMessage(ctx, text('id'));
+			return { message: 'Taken up again.' };
 		} catch (thrown) {
 			return failWith(thrown);
 		}

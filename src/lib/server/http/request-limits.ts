@@ -1,4 +1,5 @@
 import type { RequestEvent } from '@sveltejs/kit';
+import { clientAddress } from '../client-address';
 import { ServiceError } from '../errors';
 import { rateLimit } from '../rate-limit';
 
@@ -30,7 +31,7 @@ export async function countRequest(
 	times = 1
 ): Promise<void> {
 	try {
-		await LIMITS[kind].count(event.locals.actor?.id ?? event.getClientAddress(), times);
+		await LIMITS[kind].count(event.locals.actor?.id ?? clientAddress(event), times);
 	} catch (thrown) {
 		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {
 			event.setHeaders({ 'Retry-After': String(thrown.retryAfterSeconds) });

@@ -1,5 +1,6 @@
 import { changePasswordInput } from '$lib/schemas/account';
 import { requireUser } from '$lib/server/auth/guards';
+import { clientAddress } from '$lib/server/client-address';
 import { failForm, failWith } from '$lib/server/http/action-error';
 import { listFeeds } from '$lib/server/services/calendar/list-feeds';
 import { listGroupsOf } from '$lib/server/services/groups/list-groups-of';
@@ -33,7 +34,7 @@ export const actions: Actions = {
 		if (!form.valid) return fail(400, { form });
 		const sessionId = event.locals.sessionId ?? '';
 		try {
-			await changePassword(ctx, data, { sessionId, address: event.getClientAddress() });
+			await changePassword(ctx, data, { sessionId, address: clientAddress(event) });
 		} catch (thrown) {
 			return failForm(form, thrown);
 		}

@@ -1,5 +1,6 @@
 import { localPath, signUpInput } from '$lib/schemas/account';
 import { enter } from '$lib/server/auth/enter';
+import { clientAddress } from '$lib/server/client-address';
 import { contextOf, publicContext } from '$lib/server/auth/guards';
 import { landingPath } from '$lib/server/auth/landing';
 import { failForm } from '$lib/server/http/action-error';
@@ -28,7 +29,7 @@ export const actions: Actions = {
 		// A password never travels back to the page.
 		form.data = { ...data, password: '' };
 		if (!form.valid) return fail(400, { form });
-		const address = event.getClientAddress();
+		const address = clientAddress(event);
 		try {
 			await signUp(ctx, data, address);
 			await enter(event, await signIn(ctx, data, address));

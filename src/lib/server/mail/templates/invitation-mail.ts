@@ -17,7 +17,7 @@ const ROLE_WORDS: Readonly<Record<Role, string>> = {
 	owner: 'also changes roles and settings'
 };
 
-/** To somebody who may have no account: no link turns it off, since it is sent once. */
+/** To somebody who may have no account, so that no link turns it off. */
 export function invitationMail(facts: InvitationFacts): MailContent {
 	const { invitedBy, groupName, role, expiresAt, link } = facts;
 	const until = `${expiresAt.toISOString().slice(0, 16).replace('T', ' ')} UTC`;
@@ -38,7 +38,7 @@ export function invitationMail(facts: InvitationFacts): MailContent {
 		],
 		action: { label: 'Join the group', address: link },
 		footer: {
-			why: 'The link lets one person join, once. If you don’t know who this is from, ignore this mail and nothing happens.',
+			why: 'The link lets one person join, once. If you don’t know who this is from, ignore this mail: nothing happens unless you open the link and join.',
 			choices: null,
 			unsubscribe: null
 		}

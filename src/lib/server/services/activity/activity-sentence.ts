@@ -120,7 +120,10 @@ export const SENTENCES: Readonly<Record<string, Sentence>> = {
 		({ claim }) => `answered ${claim} as its author`,
 		({ claim }) => `Somebody answered ${claim} as an author of its paper`
 	),
-	'author-message.handled': talk(({ claim }) => `marked an author’s answer on ${claim} as handled`),
+	'author-message.handled': talk(
+		({ claim }) => `marked an author’s answer on ${claim} as dealt with`
+	),
+	'author-message.reopened': talk(({ claim }) => `took up an author’s answer on ${claim} again`),
 
 	'member.joined': people(({ after }) => `joined as ${role(after)}`),
 	'member.left': people(() => 'left the group'),

@@ -1,9 +1,10 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import { may } from '../../../ledger/policy';
 import type { GroupContext } from '../../context';
-import { authorMessages, claims } from '../../db/schema';
+import { authorMessages } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { recordAudit } from '../audit';
+import { findAuthorMessage } from './find-author-message';
 
 /** Marks an author's message as dealt with; once more changes nothing. */
 export async function handleAuthorMessage(ctx: GroupContext, id: string): Promise<void> {
@@ -11,12 +12,7 @@ export async function handleAuthorMessage(ctx: GroupContext, id: string): Promis
 		throw new ServiceError('forbidden', 'Only maintainers deal with what authors write.');
 	}
 	await ctx.db.write(async (tx) => {
-		const [found] = await tx
-			.select({ id: authorMessages.id, claimId: claims.id })
-			.from(authorMessages)
-			.innerJoin(claims, eq(claims.id, authorMessages.claimId))
-			.where(and(eq(authorMessages.id, id), eq(claims.groupId, ctx.group.id)));
-		if (!found) throw new ServiceError('not-found', 'There is no such message in this group.');
+		const found = await findAuthorMessage(tx, ctx, id);
 		const handled = { handledBy: ctx.actor.id, handledAt: ctx.now() };
 		const [changed] = await tx
 			.update(authorMessages)

@@ -1,4 +1,4 @@
-import { eq } from 'drizzle-orm';
+import { and, eq, inArray } from 'drizzle-orm';
 import { z } from 'zod';
 import {
 	DEFAULT_DELIVERY,
@@ -11,7 +11,7 @@ import {
 import type { NotificationChoice } from '../../../schemas/talk-views';
 import type { Context, UserContext } from '../../context';
 import type { Reader, Transaction } from '../../db/client';
-import { notificationChoices as choiceRows } from '../../db/schema';
+import { notificationChoices as choiceRows, notifications, outbox } from '../../db/schema';
 import { recordAudit } from '../audit';
 import { parseInput } from '../parse-input';
 
@@ -78,6 +78,7 @@ export async function storeChoices(
 				target: [choiceRows.userId, choiceRows.kind],
 				set: { delivery }
 			});
+		if (current[kind] === 'at-once' && delivery === 'daily') await moveToDigest(tx, userId, kind);
 	}
 	if (Object.keys(after).length === 0) return;
 	await recordAudit(tx, ctx, {
@@ -87,4 +88,20 @@ export async function storeChoices(
 		before,
 		after
 	});
+}
+
+/** Mails of that kind that have not been sent yet come with the next digest instead. */
+async function moveToDigest(
+	tx: Transaction,
+	userId: string,
+	kind: NotificationKind
+): Promise<void> {
+	const moved = await tx
+		.update(outbox)
+		.set({ state: 'dropped' })
+		.where(and(eq(outbox.userId, userId), eq(outbox.kind, kind), eq(outbox.state, 'waiting')))
+		.returning({ id: outbox.notificationId });
+	const ids = moved.flatMap(({ id }) => id ?? []);
+	if (ids.length === 0) return;
+	await tx.update(notifications).set({ forDigest: true }).where(inArray(notifications.id, ids));
 }

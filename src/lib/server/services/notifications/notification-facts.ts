@@ -14,6 +14,7 @@ import type { Reader } from '../../db/client';
 import {
 	authorMessages,
 	claims,
+	commentMentions,
 	comments,
 	groups,
 	inequalities,
@@ -56,6 +57,8 @@ export interface CommentFacts {
 	readonly inequality: string | null;
 	readonly body: string;
 	readonly removed: boolean;
+	/** Its text, as it is now, mentions the recipient. */
+	readonly mentions: boolean;
 }
 
 export interface MessageFacts {
@@ -109,6 +112,7 @@ export function selectFacts(read: Reader) {
 			task: tasks,
 			comment: comments,
 			talkedOf: talkedOf.name,
+			mentioned: commentMentions.userId,
 			message: authorMessages
 		})
 		.from(notifications)
@@ -134,6 +138,13 @@ export function selectFacts(read: Reader) {
 		.leftJoin(references, eq(references.id, claims.referenceId))
 		.leftJoin(inequalities, eq(inequalities.id, claims.inequalityId))
 		.leftJoin(comments, eq(comments.id, notifications.commentId))
+		.leftJoin(
+			commentMentions,
+			and(
+				eq(commentMentions.commentId, notifications.commentId),
+				eq(commentMentions.userId, notifications.userId)
+			)
+		)
 		.leftJoin(
 			talkedOf,
 			and(eq(talkedOf.id, comments.subjectId), eq(comments.subject, 'inequality'))
@@ -166,7 +177,8 @@ export function factsOf(row: Row): NotificationFacts {
 		comment: comment && {
 			...comment,
 			inequality: row.talkedOf,
-			removed: comment.removedAt !== null
+			removed: comment.removedAt !== null,
+			mentions: row.mentioned !== null
 		},
 		message: message && { ...message, handled: message.handledAt !== null }
 	};

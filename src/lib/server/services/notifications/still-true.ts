@@ -33,6 +33,7 @@ export function isStillTrue(facts: NotificationFacts): boolean {
 		case 'task-overdue':
 			return task !== null && isDue(facts, task);
 		case 'mention':
+			return comment !== null && !comment.removed && comment.mentions;
 		case 'comment':
 			return comment !== null && !comment.removed;
 		case 'author-message':

@@ -84,6 +84,7 @@ export const actions: Actions = {
 	attachNotice: publicationActions.attachNotice,
 	removeNotice: publicationActions.removeNotice,
 	handleMessage: publicationActions.handleMessage,
+	reopenMessage: publicationActions.reopenMessage,
 	recheck: async (event) => {
 		const ctx = await requireRole(event, 'observer');
 		const id = String((await event.request.formData()).get('id'));

@@ -12,18 +12,20 @@ import { tell } from './tell';
 /**
  * Accepts what was submitted; a value found enters the claim's verdict at once. When a certificate
  * excludes it, it is marked as contradicted and its task reopened in the same transaction.
+ * @param seen the task's version on the page it was decided on: what came later is not accepted unread
  * @returns whether the task is reopened
  */
 export async function acceptSubmission(
 	ctx: GroupContext,
-	number: number
+	number: number,
+	seen?: number
 ): Promise<{ contradicted: boolean }> {
 	let contradicted = false;
 	await changeTask(
 		ctx,
 		number,
 		{ kind: 'accept' },
-		{ audit: 'task.accepted', columns: { reason: '' } },
+		{ audit: 'task.accepted', columns: { reason: '' }, seen },
 		async (tx, { task, submission }) => {
 			if (!submission) throw new ServiceError('conflict', 'There is nothing to accept.');
 			await requireCurrent(tx, submission);

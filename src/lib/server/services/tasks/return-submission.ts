@@ -8,18 +8,22 @@ import { readReason } from './read-reason';
 import { changeTask } from './step-task';
 import { tell } from './tell';
 
-/** Sends a submission back with a reason; its task is the submitter's again. */
+/**
+ * Sends a submission back with a reason; its task is the submitter's again.
+ * @param seen the task's version on the page it was decided on: what came later is not returned unread
+ */
 export async function returnSubmission(
 	ctx: GroupContext,
 	number: number,
-	reason: string
+	reason: string,
+	seen?: number
 ): Promise<void> {
 	const why = readReason(reason);
 	await changeTask(
 		ctx,
 		number,
 		{ kind: 'return', reason: why },
-		{ audit: 'task.returned', columns: { reason: why } },
+		{ audit: 'task.returned', columns: { reason: why }, seen },
 		async (tx, { task, submission }) => {
 			if (!submission) throw new ServiceError('conflict', 'There is nothing to return.');
 			await tx

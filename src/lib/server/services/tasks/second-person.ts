@@ -3,7 +3,7 @@ import type { TaskKind } from '../../../ledger/tasks';
 import type { Reader } from '../../db/client';
 import { claims } from '../../db/schema';
 import { ServiceError } from '../../errors';
-import { wroteVersion } from '../transcriptions/wrote-version';
+import { wroteAny } from '../transcriptions/wrote-any';
 
 interface Asked {
 	readonly kind: TaskKind;
@@ -12,7 +12,7 @@ interface Asked {
 }
 
 /**
- * A comparison with the paper is not given to who entered or last edited the claim: they could
+ * A comparison with the paper is not given to who entered or edited the claim: they could
  * never hand it in.
  * @throws ServiceError conflict, with an issue of the assignee's field
  */
@@ -22,7 +22,7 @@ export async function requireSecondPerson(
 ): Promise<void> {
 	if (kind !== 'confirm-transcription' || assigneeId === null) return;
 	const [claim] = await read.select().from(claims).where(eq(claims.id, claimId));
-	if (!claim || !(await wroteVersion(read, claim, assigneeId))) return;
+	if (!claim || !(await wroteAny(read, claim, assigneeId))) return;
 	const message = `Claim ${claim.number} is compared with its paper by somebody who neither entered nor edited it.`;
 	throw new ServiceError('conflict', message, [{ field: 'assigneeId', message }]);
 }

@@ -29,6 +29,8 @@ export interface TaskChange {
 	readonly audit: string;
 	/** Columns beside state and assignee. */
 	readonly columns?: Partial<Pick<TaskRecord, 'kind' | 'dueOn' | 'instructions' | 'reason'>>;
+	/** The version that whoever takes the step had before them; undefined: not said. */
+	readonly seen?: number | undefined;
 	/** What the audit says beyond the task's own columns. */
 	readonly after?: Readonly<Record<string, unknown>>;
 }
@@ -110,6 +112,12 @@ export async function changeTask(
 ): Promise<void> {
 	await ctx.db.write(async (tx) => {
 		const task = await findTask(tx, ctx, number);
+		if (change.seen !== undefined && change.seen !== task.version) {
+			throw new ServiceError(
+				'conflict',
+				'Somebody has changed this task since you opened it. Look at it again, as it is now.'
+			);
+		}
 		await also(tx, await stepTask(tx, ctx, task, step, asActor(ctx), change));
 	});
 }

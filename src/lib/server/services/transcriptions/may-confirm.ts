@@ -3,16 +3,16 @@ import type { GroupContext } from '../../context';
 import type { Reader } from '../../db/client';
 import { ServiceError } from '../../errors';
 import type { ClaimRow } from '../claims/find-claim';
-import { wroteVersion } from './wrote-version';
+import { wroteAny } from './wrote-any';
 
-/** Whether the person may compare the claim with its paper: a member who did not write it. */
+/** Whether the person may compare the claim with its paper: a member who wrote none of it. */
 export async function mayConfirm(
 	read: Reader,
 	ctx: GroupContext,
 	claim: ClaimRow
 ): Promise<boolean> {
 	if (claim.state === 'withdrawn') return false;
-	const own = await wroteVersion(read, claim, ctx.actor.id);
+	const own = await wroteAny(read, claim, ctx.actor.id);
 	return may(ctx.role, 'confirm-transcription', { own });
 }
 

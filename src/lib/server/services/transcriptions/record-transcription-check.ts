@@ -8,7 +8,7 @@ import { notify } from '../notifications/notify';
 import { requireMayConfirm } from './may-confirm';
 import { requireNote, type Comparison } from './read-comparison';
 import { settleConfirmation } from './settle-confirmation';
-import { editorOf } from './wrote-version';
+import { editorOf } from './wrote-any';
 
 export interface TranscriptionCheck extends Comparison {
 	/** The task it was done for; null: done from the claim's page. */

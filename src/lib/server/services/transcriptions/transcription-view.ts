@@ -5,7 +5,7 @@ import type { GroupContext } from '../../context';
 import type { Reader } from '../../db/client';
 import { claims, transcriptionChecks, users } from '../../db/schema';
 import type { ClaimRow } from '../claims/find-claim';
-import { wroteVersion } from './wrote-version';
+import { wroteAny } from './wrote-any';
 
 /** Older comparisons of a claim are of no interest on its page; the audit has them all. */
 const SHOWN = 20;
@@ -19,7 +19,7 @@ export async function transcriptionView(
 	return {
 		confirmed: isConfirmed(claim),
 		checks: await transcriptionChecksWhere(read, eq(transcriptionChecks.claimId, claim.id)),
-		ownClaim: await wroteVersion(read, claim, ctx.actor.id)
+		ownClaim: await wroteAny(read, claim, ctx.actor.id)
 	};
 }
 

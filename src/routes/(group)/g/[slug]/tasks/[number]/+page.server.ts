@@ -25,6 +25,8 @@ export const load: PageServerLoad = async (event) => {
 	return answering(() => taskPage(ctx, number));
 };
 
+/** The version of the task that the page showed; undefined for a form that does not say. */
+const seenIn = (data: FormData) => (data.has('version') ? Number(data.get('version')) : undefined);
 const reasonIn = (data: FormData) => String(data.get('reason') ?? '');
 
 export const actions: Actions = {
@@ -34,9 +36,11 @@ export const actions: Actions = {
 	take: taskAction('take', 'It is yours now.', takeTask),
 	start: taskAction('start', 'Begun. Submit what you find below.', startTask),
 	release: taskAction('release', 'Given back: any member can take it.', releaseTask),
-	accept: taskAction('accept', 'Accepted.', acceptSubmission),
+	accept: taskAction('accept', 'Accepted.', (ctx, number, data) =>
+		acceptSubmission(ctx, number, seenIn(data))
+	),
 	return: taskAction('return', 'Returned, with your reason.', (ctx, number, data) =>
-		returnSubmission(ctx, number, reasonIn(data))
+		returnSubmission(ctx, number, reasonIn(data), seenIn(data))
 	),
 	cancel: taskAction('cancel', 'Cancelled.', (ctx, number, data) =>
 		cancelTask(ctx, number, reasonIn(data))

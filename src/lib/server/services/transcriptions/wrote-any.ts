@@ -13,13 +13,15 @@ export async function editorOf(read: Reader, claim: ClaimRow): Promise<string | 
 }
 
 /**
- * Whether this person entered the claim or wrote the version it now has: then somebody else has to
- * compare it with the paper.
+ * Whether this person entered the claim or wrote any of its versions: then somebody else has to
+ * compare it with the paper. Not the present version alone: a word that another one changed in the
+ * note would make the value that somebody typed theirs to confirm.
  */
-export async function wroteVersion(
-	read: Reader,
-	claim: ClaimRow,
-	userId: string
-): Promise<boolean> {
-	return claim.createdBy === userId || (await editorOf(read, claim)) === userId;
+export async function wroteAny(read: Reader, claim: ClaimRow, userId: string): Promise<boolean> {
+	if (claim.createdBy === userId) return true;
+	const versions = await read.$count(
+		claimVersions,
+		and(eq(claimVersions.claimId, claim.id), eq(claimVersions.changedBy, userId))
+	);
+	return versions > 0;
 }

@@ -7,6 +7,7 @@ import { proposeClaim } from '../../src/lib/server/services/claims/propose-claim
 import { publishClaim } from '../../src/lib/server/services/claims/publish-claim';
 import { restoreClaim } from '../../src/lib/server/services/claims/restore-claim';
 import { showClaim } from '../../src/lib/server/services/claims/show-claim';
+import { showPublicClaim } from '../../src/lib/server/services/claims/show-public-claim';
 import { supersedeClaim } from '../../src/lib/server/services/claims/supersede-claim';
 import { unpublishClaim } from '../../src/lib/server/services/claims/unpublish-claim';
 import { withdrawClaim } from '../../src/lib/server/services/claims/withdraw-claim';
@@ -90,6 +91,31 @@ describe('the history', () => {
 		await editClaim(world.as.member, number, 1, { ...known, reading: 'truncated' });
 		const { history } = await showClaim(world.as.member, number);
 		expect(history[0]?.text).toBe('How it is printed changed from as-printed to truncated');
+	});
+
+	it('tells everybody of a changed value, and of nothing that was changed with it', async () => {
+		const { number } = await enterClaim(world.as.member, claimFields({ printed: '2.83' }));
+		const { id, reference } = await showClaim(world.as.member, number);
+		const fields = claimFields({ paper: 'known', referenceId: reference.id, bibtex: '' });
+		await editClaim(world.as.member, number, 1, { ...fields, note: 'ask Tam' });
+		await editClaim(world.as.member, number, 2, {
+			...fields,
+			printed: '2.828',
+			note: 'told by Tam'
+		});
+		await editClaim(world.as.member, number, 3, { ...fields, printed: '2.828', note: '' });
+		await publishClaim(world.as.maintainer, number);
+		const texts = ({ history }: { readonly history: readonly { readonly text: string }[] }) =>
+			history.map(({ text }) => text);
+		expect(texts(await showClaim(world.as.member, number))).toContain(
+			'Value changed from 2.8284 to 2.828; Note changed from ask Tam to told by Tam'
+		);
+		expect(texts(await showPublicClaim(world.anonymous, id))).toEqual([
+			'Published',
+			'Value changed from 2.8284 to 2.828',
+			'Value changed from 2.83 to 2.8284',
+			'Entered'
+		]);
 	});
 
 	it('has entering before a verdict that was there at once', async () => {

@@ -8,6 +8,12 @@ export type ReadingChoice = (typeof READINGS)[number];
 export const VERDICT_STATUSES = ['agreement', 'discrepancy', 'open'] as const;
 export type VerdictStatus = (typeof VERDICT_STATUSES)[number];
 
+export const STATUS_LABELS: Readonly<Record<VerdictStatus, string>> = {
+	agreement: 'Agreement',
+	discrepancy: 'Discrepancy',
+	open: 'Open'
+};
+
 export const CLAIM_STATES = ['active', 'superseded', 'withdrawn'] as const;
 export type ClaimState = (typeof CLAIM_STATES)[number];
 

@@ -1,7 +1,33 @@
-import { FIELD_WORD, IDS } from '../claims/history';
+import type { ClaimInput } from '../../../schemas/claim-input';
 import { textOf, type Recorded } from './recorded';
 
+/** The words of the claim's form. */
+export const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
+	printed: 'Value',
+	relation: 'Relation',
+	reading: 'How it is printed',
+	quantity: 'Quantity',
+	level: 'Level',
+	expression: 'Expression',
+	table: 'Table',
+	locator: 'Locator',
+	method: 'Method',
+	note: 'Note',
+	sense: 'Sense',
+	dimension: 'Dimension',
+	family: 'Family',
+	familyParameter: 'Parameter of the family',
+	described: 'Subject',
+	inequalityId: 'Inequality',
+	// The row of the paper; however it was named in the form, as known or pasted, it is one row.
+	referenceId: 'Paper'
+};
+
+/** Not words for a person. */
+const IDS: ReadonlySet<string> = new Set(['referenceId', 'inequalityId']);
+
 export interface ChangedField {
+	readonly field: string;
 	/** `Value`. */
 	readonly word: string;
 	readonly was: string;
@@ -20,6 +46,6 @@ export function changedClaimFields(before: Recorded, after: Recorded): readonly 
 		if (was === is || seen.has(word)) return [];
 		seen.add(word);
 		const fits = was !== '' && is !== '' && was.length <= SHORT && is.length <= SHORT;
-		return [{ word, was, is, short: fits && !IDS.has(field) }];
+		return [{ field, word, was, is, short: fits && !IDS.has(field) }];
 	});
 }

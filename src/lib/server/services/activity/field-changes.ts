@@ -1,5 +1,5 @@
 import type { ActivityEntry } from '../../../schemas/talk-views';
-import { FIELD_WORD } from '../claims/history';
+import { FIELD_WORD } from './claim-fields';
 import { isId } from './names-of';
 import { valueOf, type Recorded } from './recorded';
 

@@ -15,14 +15,13 @@ import { jobsAhead } from '../recomputations/queue-order';
 import { recomputationViews, stationsAnd } from '../recomputations/recomputation-view';
 import { referenceView } from '../references/reference-view';
 import type { ClaimRow } from './find-claim';
-import { claimHistory } from './history';
 
 /** The whole page of one claim, in the normalisation it was entered in. */
 export async function claimView(
 	read: Reader,
 	claim: ClaimRow,
 	now: Date
-): Promise<Omit<ClaimView, 'own'>> {
+): Promise<Omit<ClaimView, 'own' | 'history'>> {
 	const [joined] = await read
 		.select({
 			group: { slug: groups.slug, name: groups.name },
@@ -81,7 +80,6 @@ export async function claimView(
 		recomputationId: claim.recomputationId,
 		recomputations: await recomputationViews(read, stationsAnd(inequalityId, own), map, now),
 		reference: referenceView(joined.reference),
-		history: await claimHistory(read, claim.id),
 		input: claim.input,
 		caution: info.caution,
 		enteredBy: joined.enteredBy,

@@ -1,16 +1,12 @@
-import { asc, eq } from 'drizzle-orm';
+import { and, asc, eq } from 'drizzle-orm';
+import { STATUS_LABELS } from '../../../ledger/claim';
 import { NOTICE_KINDS, NOTICE_LABELS } from '../../../ledger/notices';
 import type { Verdict } from '../../../ledger/verdict';
-import type { ClaimInput } from '../../../schemas/claim-input';
 import type { HistoryEntry } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { audit, users, verdicts } from '../../db/schema';
-
-const STATUS_WORD = {
-	agreement: 'Agreement',
-	discrepancy: 'Discrepancy',
-	open: 'Open'
-} as const;
+import { changedClaimFields, type ChangedField } from '../activity/claim-fields';
+import { asRecorded, textOf, type Recorded } from '../activity/recorded';
 
 const ACTION_TEXT: Readonly<Record<string, string>> = {
 	'claim.entered': 'Entered',
@@ -26,32 +22,36 @@ const ACTION_TEXT: Readonly<Record<string, string>> = {
 	'claim.transcription-voided': 'Comparison with the paper returned'
 };
 
-export const FIELD_WORD: Partial<Record<keyof ClaimInput, string>> = {
-	printed: 'Value',
-	relation: 'Relation',
-	reading: 'How it is printed',
-	quantity: 'Quantity',
-	level: 'Level',
-	expression: 'Expression',
-	table: 'Table',
-	locator: 'Locator',
-	method: 'Method',
-	note: 'Note',
-	sense: 'Sense',
-	dimension: 'Dimension',
-	family: 'Family',
-	familyParameter: 'Parameter of the family',
-	described: 'Subject',
-	inequalityId: 'Inequality',
-	// The row of the paper; however it was named in the form, as known or pasted, it is one row.
-	referenceId: 'Paper'
-};
+/** Of these everybody may know; what else people do with a claim is their group's matter. */
+const PUBLIC_ACTIONS: ReadonlySet<string> = new Set([
+	'claim.entered',
+	'claim.published',
+	'claim.superseded'
+]);
 
-/** Not words for a person. */
-export const IDS: ReadonlySet<string> = new Set(['referenceId', 'inequalityId']);
+interface Entry {
+	readonly at: Date;
+	readonly who: string | null;
+	readonly text: string;
+	/** What everybody may read of it; null: nothing. */
+	readonly publicText: string | null;
+}
 
 /** What happened to a claim, newest first: what people did, and what the recomputation made of it. */
 export async function claimHistory(read: Reader, claimId: string): Promise<HistoryEntry[]> {
+	const entries = await entriesOf(read, claimId);
+	return entries.map(({ at, who, text }) => ({ at: at.toISOString(), who, text }));
+}
+
+/** The same for everybody: no names, and of an edit only what became of the value. */
+export async function publicHistory(read: Reader, claimId: string): Promise<HistoryEntry[]> {
+	const entries = await entriesOf(read, claimId);
+	return entries.flatMap(({ at, publicText }) =>
+		publicText === null ? [] : [{ at: at.toISOString(), who: null, text: publicText }]
+	);
+}
+
+async function entriesOf(read: Reader, claimId: string): Promise<readonly Entry[]> {
 	const actions = await read
 		.select({
 			at: audit.at,
@@ -62,7 +62,7 @@ export async function claimHistory(read: Reader, claimId: string): Promise<Histo
 		})
 		.from(audit)
 		.leftJoin(users, eq(users.id, audit.actorId))
-		.where(eq(audit.entityId, claimId))
+		.where(and(eq(audit.entity, 'claim'), eq(audit.entityId, claimId)))
 		.orderBy(asc(audit.at), asc(audit.id));
 	const judged = await read
 		.select({ at: verdicts.at, status: verdicts.status, verdict: verdicts.verdict })
@@ -70,30 +70,28 @@ export async function claimHistory(read: Reader, claimId: string): Promise<Histo
 		.where(eq(verdicts.claimId, claimId))
 		.orderBy(asc(verdicts.at), asc(verdicts.id));
 	const entries = [
-		...actions.flatMap(({ at, action, before, after, who }) => {
-			const text = actionText(action, before, after);
-			return text === undefined ? [] : [{ at, who, text }];
+		...actions.flatMap(({ at, who, action, before, after }): Entry[] => {
+			const texts = textsOf(action, asRecorded(before), asRecorded(after));
+			return texts ? [{ at, who, ...texts }] : [];
 		}),
 		...judgedEntries(judged)
 	];
 	// Where the result was there already, entering and judging have one time: then by kind.
 	return entries
 		.map((entry, place) => ({ ...entry, place }))
-		.sort((a, b) => b.at.getTime() - a.at.getTime() || b.place - a.place)
-		.map(({ at, who, text }) => ({ at: at.toISOString(), who, text }));
+		.sort((a, b) => b.at.getTime() - a.at.getTime() || b.place - a.place);
 }
 
 /** One entry per change of status: how the explanation grew in between is of no interest later. */
 function judgedEntries(
 	rows: readonly { at: Date; status: Verdict['status']; verdict: Verdict }[]
-): { at: Date; who: null; text: string }[] {
+): Entry[] {
 	return rows
 		.filter(({ status }, i) => status !== rows[i - 1]?.status)
-		.map(({ at, status, verdict }) => ({
-			at,
-			who: null,
-			text: `${judgedWord(verdict)}: ${STATUS_WORD[status]}`
-		}));
+		.map(({ at, status, verdict }) => {
+			const text = `${judgedWord(verdict)}: ${STATUS_LABELS[status]}`;
+			return { at, who: null, text, publicText: text };
+		});
 }
 
 /** A verdict that rests on a person's reproduction was not recomputed here. */
@@ -102,31 +100,34 @@ function judgedWord({ enclosure, reasonCode }: Verdict): string {
 	return reasonCode === 'no-solver' ? 'Judged' : 'Recomputed';
 }
 
-function actionText(action: string, before: unknown, after: unknown): string | undefined {
-	if (action === 'claim.edited') return editText(before, after);
-	if (action === 'claim.unpublished' && fieldOf(before, 'visibility') === 'proposed')
+function textsOf(
+	action: string,
+	before: Recorded,
+	after: Recorded
+): Pick<Entry, 'text' | 'publicText'> | null {
+	if (action === 'claim.edited') {
+		const changed = changedClaimFields(before, after);
+		const value = changed.find(({ field }) => field === 'printed');
+		const text = changed.map(changeText).join('; ') || 'Edited';
+		return { text, publicText: value ? changeText(value) : null };
+	}
+	const text = actionText(action, before, after);
+	if (text === undefined) return null;
+	return { text, publicText: PUBLIC_ACTIONS.has(action) ? text : null };
+}
+
+function actionText(action: string, before: Recorded, after: Recorded): string | undefined {
+	if (action === 'claim.unpublished' && textOf(before, 'visibility') === 'proposed')
 		return 'Proposal taken back';
 	if (action === 'claim.notice-attached') return `${noticeWord(after)} attached`;
 	if (action === 'claim.notice-removed') return `${noticeWord(before)} removed`;
 	return ACTION_TEXT[action];
 }
 
-function editText(before: unknown, after: unknown): string {
-	const changed = Object.entries(FIELD_WORD).flatMap(([field, word]) => {
-		const [was, is] = [fieldOf(before, field), fieldOf(after, field)];
-		if (was === is) return [];
-		const short = !IDS.has(field) && was && is && was.length <= 40 && is.length <= 40;
-		return [short ? `${word} changed from ${was} to ${is}` : `${word} changed`];
-	});
-	return changed.length > 0 ? [...new Set(changed)].join('; ') : 'Edited';
-}
+const changeText = ({ word, was, is, short }: ChangedField) =>
+	short ? `${word} changed from ${was} to ${is}` : `${word} changed`;
 
-function noticeWord(notice: unknown): string {
-	const kind = NOTICE_KINDS.find((kind) => kind === fieldOf(notice, 'kind'));
+function noticeWord(notice: Recorded): string {
+	const kind = NOTICE_KINDS.find((kind) => kind === textOf(notice, 'kind'));
 	return kind ? NOTICE_LABELS[kind] : 'Notice';
-}
-
-function fieldOf(input: unknown, field: string): string {
-	const value: unknown = typeof input === 'object' && input ? Reflect.get(input, field) : '';
-	return typeof value === 'string' ? value : '';
 }

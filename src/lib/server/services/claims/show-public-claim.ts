@@ -9,6 +9,7 @@ import { publicNotices } from '../claim-notices/public-notices';
 import { isPublicClaim } from '../inequalities/visibility';
 import { publicReference } from '../references/public-reference';
 import { claimView } from './claim-view';
+import { publicHistory } from './history';
 
 /** @throws ServiceError not-found for a claim that is not public, as if it did not exist */
 export async function showPublicClaim(ctx: Context, id: string): Promise<PublicClaimView> {
@@ -45,18 +46,13 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		recomputationId: whole.recomputationId,
 		recomputations: whole.recomputations,
 		reference: publicReference(whole.reference),
-		history: whole.history
-			.filter(({ text }) => PUBLIC_HISTORY.test(text))
-			.map(({ at, text }) => ({ at, who: null, text })),
+		history: await publicHistory(read, claim.id),
 		caution: whole.caution,
 		enteredAt: whole.enteredAt
 	};
 }
 
 const DISCREPANCY_WORDING = `It ${PUBLIC_DISCREPANCY}. ${COMPARED_BY_SECOND}`;
-
-const PUBLIC_HISTORY =
-	/^(Entered|Published|(Recomputed|Reproduced|Judged): |Value changed|Marked as superseded)/;
 
 /** How many claims a group has is its own business. */
 const NO_NUMBER = 0;

@@ -125,3 +125,57 @@ describe('a submission', () => {
 		expect(kept?.state).toBe('waiting');
 	});
 });
+
+describe('a submission for a claim that was edited since its form was opened', () => {
+	const edited = async (kind: 'recompute' | 'confirm-transcription') => {
+		const claim = await world.openClaim();
+		const number = await world.openTask(claim, { kind });
+		const { input } = await showClaim(world.as.member, claim);
+		await editClaim(world.as.member, claim, 1, { ...input, printed: '0.7072', locator: 'eq. (8)' });
+		return { claim, number, input };
+	};
+
+	it('is refused with what was changed, and nothing of it is kept', async () => {
+		const { claim, number } = await edited('recompute');
+		const found = foundValue('0.70711', { claimVersion: 1 });
+		await expect(
+			submitTask(world.wren, number, found, [text('log.txt', 'ran')])
+		).rejects.toMatchObject({
+			...conflict,
+			message: `Claim ${claim} was edited since you opened this form: value 0.7071 is now 0.7072; locator eq. (7) is now eq. (8). Your text is kept; look at the claim as it is now, and submit again what still holds.`
+		});
+		expect(await world.db.read.select().from(submissions)).toEqual([]);
+		expect(await world.db.read.select().from(evidenceFiles)).toEqual([]);
+		await submitTask(world.wren, number, { ...found, claimVersion: 2 });
+		expect((await showTask(world.wren, number)).state).toBe('submitted');
+	});
+
+	it('names changes over several edits once, from the version that was seen', async () => {
+		const { claim, number, input } = await edited('recompute');
+		await editClaim(world.as.member, claim, 2, { ...input, printed: '0.7071', note: 'as printed' });
+		await expect(
+			submitTask(world.wren, number, foundValue('0.7', { claimVersion: 1 }))
+		).rejects.toMatchObject({ message: expect.stringContaining('form: note. Your') });
+		await expect(
+			submitTask(world.wren, number, foundValue('0.7', { claimVersion: 2 }))
+		).rejects.toMatchObject({
+			message: expect.stringContaining('value 0.7072 is now 0.7071; locator eq. (8) is now eq. (7)')
+		});
+	});
+
+	it('is refused for a comparison with the paper, too', async () => {
+		const { claim, number } = await edited('confirm-transcription');
+		const compared = {
+			kind: 'transcription',
+			valueMatches: 'yes',
+			locatorMatches: 'yes',
+			inequalityMatches: 'yes'
+		} as const;
+		await expect(
+			submitTask(world.wren, number, { ...compared, claimVersion: 1 })
+		).rejects.toMatchObject(conflict);
+		expect((await showClaim(world.as.member, claim)).confirmed).toBe(false);
+		await submitTask(world.wren, number, { ...compared, claimVersion: 2 });
+		expect((await showTask(world.wren, number)).state).toBe('submitted');
+	});
+});

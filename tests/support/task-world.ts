@@ -5,7 +5,7 @@ import { and, asc, eq } from 'drizzle-orm';
 import { expect } from 'vitest';
 import { dayOf } from '../../src/lib/ledger/tasks';
 import type { ClaimInput } from '../../src/lib/schemas/claim-input';
-import type { OpenTasksInput, SubmitInput } from '../../src/lib/schemas/task-input';
+import type { OpenTasksInput, SubmissionInput } from '../../src/lib/schemas/task-input';
 import type { GroupContext } from '../../src/lib/server/context';
 import { audit, memberships, notifications, users } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
@@ -98,14 +98,14 @@ export async function addMember(world: ServiceWorld, name: string): Promise<Grou
 }
 
 /** A value found with a program of one's own. */
-export const foundValue = (printed: string, over: Partial<SubmitInput> = {}) =>
+export const foundValue = (printed: string, over: Partial<SubmissionInput> = {}) =>
 	({
 		kind: 'value',
 		printed,
 		program: 'own program',
 		programVersion: '2.1',
 		...over
-	}) satisfies Partial<SubmitInput>;
+	}) satisfies Partial<SubmissionInput>;
 
 /** The error of a field, as services throw it. */
 export const issueAt = (field: string, message: RegExp) => ({

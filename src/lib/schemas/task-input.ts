@@ -66,6 +66,12 @@ export const submitInput = z.object({
 });
 export type SubmitInput = z.infer<typeof submitInput>;
 
+export const submissionInput = submitInput.extend({
+	/** The version of the claim that the form stood beside; left out by who has seen none. */
+	claimVersion: z.coerce.number().int().optional()
+});
+export type SubmissionInput = z.infer<typeof submissionInput>;
+
 /** A comparison with the paper, from a claim's page. */
 export const transcriptionInput = submitInput
 	.pick({ valueMatches: true, locatorMatches: true, inequalityMatches: true })

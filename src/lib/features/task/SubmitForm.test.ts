@@ -37,6 +37,17 @@ describe('SubmitForm', () => {
 		});
 	});
 
+	it('says which version of the claim it was opened beside, whatever the page hears of later', async () => {
+		const { container, rerender } = render(SubmitForm, {
+			task,
+			claim: { ...claim, version: 3 }
+		});
+		const seen = () => container.querySelector<HTMLInputElement>('[name=claimVersion]')?.value;
+		expect(seen()).toBe('3');
+		await rerender({ claim: { ...claim, version: 4 } });
+		expect(seen()).toBe('3');
+	});
+
 	it('keeps everything typed and puts each sentence at its field', () => {
 		const message = 'Give the program’s version, or the day or commit where it has none.';
 		const { getByLabelText, getByRole } = render(SubmitForm, {

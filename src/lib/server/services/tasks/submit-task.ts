@@ -1,5 +1,5 @@
 import { eq } from 'drizzle-orm';
-import { submitInput, type SubmitInput } from '../../../schemas/task-input';
+import { submissionInput, type SubmissionInput } from '../../../schemas/task-input';
 import type { GroupContext } from '../../context';
 import type { Reader, Transaction } from '../../db/client';
 import { claims, submissions } from '../../db/schema';
@@ -19,6 +19,7 @@ import { maintainersOf } from '../groups/maintainers-of';
 import { parseInput } from '../parse-input';
 import { recordTranscriptionCheck } from '../transcriptions/record-transcription-check';
 import { findTask } from './find-task';
+import { requireClaimAsSeen } from './require-claim-as-seen';
 import { readSubmission, type ReadSubmission } from './read-submission';
 import { asActor, refuseStep, stepTask } from './step-task';
 import { tell } from './tell';
@@ -26,20 +27,22 @@ import { tell } from './tell';
 /**
  * Hands in what was found. A certificate is judged by its check at once; anything else waits for
  * somebody else to accept it. Nothing is kept when anything of it is refused.
- * @throws ServiceError forbidden, conflict; invalid with an issue for each field at fault
+ * @throws ServiceError forbidden; conflict, also when the claim was edited meanwhile; invalid with an
+ *   issue for each field at fault
  */
 export async function submitTask(
 	ctx: GroupContext,
 	number: number,
-	input: Partial<SubmitInput>,
+	input: Partial<SubmissionInput>,
 	files: readonly UploadedFile[] = []
 ): Promise<{ id: string }> {
-	const asks = parseInput(submitInput, input);
+	const { claimVersion, ...asks } = parseInput(submissionInput, input);
 	const { read } = ctx.db;
 	const task = await findTask(read, ctx, number);
 	// Asked again in the transaction; here so that nothing is checked or stored in vain.
 	await refuseStep(read, task, { kind: 'submit' }, asActor(ctx));
 	const claim = await claimOf(read, task.claimId);
+	await requireClaimAsSeen(read, claim, claimVersion ?? claim.version);
 	const found = await readSubmission(ctx, task, claim, asks, files.length);
 	const stored = await storeFiles(ctx, files);
 	try {
@@ -65,13 +68,7 @@ async function write(
 ): Promise<{ id: string }> {
 	const before = await findTask(tx, ctx, number);
 	const current = await claimOf(tx, before.claimId);
-	const key = quantityKey(current);
-	if (key !== quantityKey(claim)) {
-		throw new ServiceError(
-			'conflict',
-			'The claim was edited while this was on its way, and is about something else now. Look at it again.'
-		);
-	}
+	await requireClaimAsSeen(tx, current, claim.version);
 	const id = newId();
 	const { columns, comparison } = found;
 	const { kind, printed, relation } = columns;
@@ -84,7 +81,7 @@ async function write(
 		id,
 		taskId: task.id,
 		claimId: claim.id,
-		quantityKey: key,
+		quantityKey: quantityKey(current),
 		submittedBy: ctx.actor.id,
 		submittedAt: ctx.now()
 	});

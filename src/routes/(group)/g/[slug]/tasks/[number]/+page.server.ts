@@ -1,4 +1,4 @@
-import { editTaskInput, submitInput } from '$lib/schemas/task-input';
+import { editTaskInput, submissionInput } from '$lib/schemas/task-input';
 import { requireRole } from '$lib/server/auth/guards';
 import { discussionActions } from '$lib/server/http/discussion-actions';
 import { answering } from '$lib/server/http/page-errors';
@@ -52,7 +52,7 @@ export const actions: Actions = {
 		'submit',
 		'Submitted. Somebody else accepts it or returns it.',
 		async (ctx, number, data) => {
-			const input = parseInput(submitInput, await submissionFields(data));
+			const input = parseInput(submissionInput, await submissionFields(data));
 			return submitTask(ctx, number, input, await readUploads(data));
 		},
 		(event) => countRequest(event, 'change')

@@ -2,6 +2,7 @@ import type { Handle, HandleServerError, ServerInit } from '@sveltejs/kit';
 import { identify } from '$lib/server/auth/session-hook';
 import { asProblem } from '$lib/server/http/api';
 import { refuseBody } from '$lib/server/http/body-limit';
+import { guardForms } from '$lib/server/http/guard-forms';
 import { pageShell } from '$lib/server/http/page-shell';
 import { problemResponse } from '$lib/server/http/problem';
 import { isOneClickRoute, mayChangeState } from '$lib/server/http/same-origin';
@@ -14,6 +15,7 @@ export const init: ServerInit = startServer;
 
 export const handle: Handle = async ({ event, resolve }) => {
 	await identify(event);
+	guardForms(event);
 	const allowed = isOneClickRoute(event.route.id) || mayChangeState(event.request, event.url);
 	const response = allowed
 		? asProblem(event, (await refuseBody(event)) ?? (await resolve(event, pageShell)))

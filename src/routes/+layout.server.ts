@@ -9,6 +9,7 @@ export const load: LayoutServerLoad = async (event) => {
 	const { actor } = ctx;
 	// Loaded again with every page, so that the number does not grow old on the way.
 	void event.url.pathname;
+	event.depends('merestone:news');
 	const [groups, unread] = await Promise.all([
 		listGroupsOf(ctx),
 		actor ? unreadCount({ ...ctx, actor }) : 0

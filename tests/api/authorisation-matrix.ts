@@ -124,7 +124,12 @@ export const MATRIX: readonly MatrixRow[] = [
 		endOthers: signedIn(401, 200)
 	}),
 	...doors('/account/notifications', { GET: signedIn(303, 200), save: signedIn(401, 200) }),
-	...doors('/news', { GET: signedIn(303, 200), open: signedIn(401, 404), all: signedIn(401, 200) }),
+	...doors('/news', {
+		GET: signedIn(303, 200),
+		open: signedIn(401, 404),
+		read: signedIn(401, 200),
+		all: signedIn(401, 200)
+	}),
 	// A link of a mail, for whoever holds it; notifications.test.ts has real ones.
 	...doors(
 		'/unsubscribe/[token]',

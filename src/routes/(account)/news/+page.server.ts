@@ -23,6 +23,12 @@ export const actions: Actions = {
 		}
 		redirect(303, href);
 	},
+	/** What a page's script says when a mail led to it. */
+	read: async (event) => {
+		const ctx = requireUser(event);
+		const data = await event.request.formData();
+		return { read: await markRead(ctx, [String(data.get('id') ?? '')]) };
+	},
 	all: async (event) => {
 		const marked = await markRead(requireUser(event), 'all');
 		return { marked };

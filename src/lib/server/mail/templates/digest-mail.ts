@@ -1,6 +1,6 @@
 import { NOTIFICATION_KINDS, type NotificationKind } from '../../../ledger/notifications';
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
-import { notificationText } from '../../services/notifications/notification-text';
+import { mailedAddress, notificationText } from '../../services/notifications/notification-text';
 import type { MailContent, MailSection } from '../mail-content';
 import { footerFor } from './mail-links';
 
@@ -66,8 +66,8 @@ function sectionsOf(facts: readonly NotificationFacts[], origin: string): MailSe
 			items: ofGroup
 				.filter((each) => each.kind === kind)
 				.map((each) => {
-					const { text, detail, href } = notificationText(each);
-					return { text, detail, address: origin + href };
+					const { text, detail } = notificationText(each);
+					return { text, detail, address: origin + mailedAddress(each) };
 				})
 		})).filter(({ items }) => items.length > 0)
 	}));

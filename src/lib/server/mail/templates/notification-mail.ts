@@ -1,5 +1,5 @@
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
-import { notificationText } from '../../services/notifications/notification-text';
+import { mailedAddress } from '../../services/notifications/notification-text';
 import type { MailContent } from '../mail-content';
 import { footerFor } from './mail-links';
 import { authorMessageBody, commentBody, proposedBody, transcriptionBody } from './talk-mails';
@@ -15,7 +15,7 @@ export function notificationMail(facts: NotificationFacts, origin: string): Mail
 	const { kind, group, recipient } = facts;
 	return {
 		...rest,
-		action: { label, address: origin + notificationText(facts).href },
+		action: { label, address: origin + mailedAddress(facts) },
 		footer: footerFor(origin, recipient.id, kind, whyYou(kind, group.name))
 	};
 }

@@ -1,3 +1,4 @@
+import { dayWords } from '../../../ledger/day-words';
 import { TASK_KIND_LABELS } from '../../../ledger/tasks';
 import type { NotificationFacts } from './notification-facts';
 
@@ -47,9 +48,9 @@ function sentence(facts: NotificationFacts): string {
 				? `${who} cancelled ${theTask} on ${theClaim}.`
 				: `${who} took back ${theTask} on ${theClaim}.`;
 		case 'task-due-soon':
-			return `${capital(own ? `your ${theTask}` : theTask)} on ${theClaim} is due on ${text}.`;
+			return `${capital(own ? `your ${theTask}` : theTask)} on ${theClaim} is due on ${dayWords(text)}.`;
 		case 'task-overdue':
-			return `${capital(own ? `your ${theTask}` : theTask)} on ${theClaim} was due on ${text}.`;
+			return `${capital(own ? `your ${theTask}` : theTask)} on ${theClaim} was due on ${dayWords(text)}.`;
 		case 'mention':
 			return `${who} mentions you in a comment on ${placeOf(facts)}.`;
 		case 'comment':
@@ -99,6 +100,12 @@ function addressOf({ kind, group, claim, task, comment }: NotificationFacts): st
 	const onTask = comment ? comment.subject === 'task' : kind.startsWith('task-');
 	if (task && onTask) return `${base}/tasks/${task.number}${anchor}`;
 	return claim ? `${base}/claims/${claim.number}${anchor}` : base;
+}
+
+/** The path for a mail: the page that opens marks this news as read. */
+export function mailedAddress(facts: NotificationFacts): string {
+	const [path = '', anchor] = addressOf(facts).split('#');
+	return `${path}?news=${facts.id}${anchor ? `#${anchor}` : ''}`;
 }
 
 function shorten(text: string): string {

@@ -177,7 +177,8 @@ describe('comparing a claim with its paper', () => {
 		};
 		await world.db.write((tx) => recordTranscriptionCheck(tx, world.as.maintainer, claim, dispute));
 		expect(await confirmedOf(number)).toBe(false);
-		await world.db.write((tx) => voidCheckOfTask(tx, world.as.owner, taskId));
+		const task = { id: taskId, claimId: claim.id };
+		await world.db.write((tx) => voidCheckOfTask(tx, world.as.owner, task));
 		expect(await showTranscription(world.as.member, number)).toMatchObject({
 			confirmed: true,
 			checks: [{ current: false }, { current: true }]

@@ -1,4 +1,4 @@
-import { and, desc, eq, gt, inArray, isNull, notExists, or } from 'drizzle-orm';
+import { and, desc, eq, gt, inArray, isNull, notExists, or, sql } from 'drizzle-orm';
 import { hasRole } from '../../../ledger/roles';
 import type { Transaction } from '../../db/client';
 import { memberships, notifications, outbox } from '../../db/schema';
@@ -93,7 +93,8 @@ export async function dropWaitingMails(tx: Transaction, claimId: string): Promis
 		.from(outbox)
 		.where(
 			and(
-				eq(outbox.state, 'sent'),
+				// The plus keeps SQLite to the ids: without it, it reads every mail that was ever sent.
+				sql`+${outbox.state} = 'sent'`,
 				or(eq(outbox.notificationId, notifications.id), eq(outbox.id, notifications.digestId))
 			)
 		);

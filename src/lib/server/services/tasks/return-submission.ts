@@ -30,7 +30,7 @@ export async function returnSubmission(
 				.update(submissions)
 				.set({ state: 'returned', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: why })
 				.where(eq(submissions.id, submission.id));
-			if (submission.kind === 'transcription') await voidCheckOfTask(tx, ctx, task.id);
+			if (submission.kind === 'transcription') await voidCheckOfTask(tx, ctx, task);
 			await deriveClaim(tx, task.claimId, ctx.now());
 			await tell(tx, ctx, 'task-returned', task, [submission.submittedBy], why);
 		}

@@ -1,4 +1,4 @@
-import { asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
 import { readStatedValue } from '../../../ledger/stated-value';
 import type { EvidenceFileView, SubmissionView } from '../../../schemas/task-views';
@@ -32,7 +32,10 @@ export async function submissionViews(
 	);
 	// Newest first; each comparison was written with one submission of this task, in that order.
 	const checks = [
-		...(await transcriptionChecksWhere(read, eq(transcriptionChecks.taskId, task.id)))
+		...(await transcriptionChecksWhere(
+			read,
+			and(eq(transcriptionChecks.claimId, claim.id), eq(transcriptionChecks.taskId, task.id))
+		))
 	];
 	const views = [...rows].reverse().map(({ submission, by, decider }): SubmissionView => {
 		const { kind, decidedBy } = submission;

@@ -3,23 +3,29 @@ import type { GroupContext } from '../../context';
 import type { Transaction } from '../../db/client';
 import { claims, transcriptionChecks } from '../../db/schema';
 import { recordAudit } from '../audit';
+import type { TaskRecord } from '../tasks/find-task';
 import { settleConfirmation } from './settle-confirmation';
 
 /** The comparison handed in for a task counts no more: the task was returned. */
 export async function voidCheckOfTask(
 	tx: Transaction,
 	ctx: GroupContext,
-	taskId: string
+	{ id: taskId, claimId }: Pick<TaskRecord, 'id' | 'claimId'>
 ): Promise<void> {
 	const now = ctx.now();
 	const voided = await tx
 		.update(transcriptionChecks)
 		.set({ voidedAt: now })
-		.where(and(eq(transcriptionChecks.taskId, taskId), isNull(transcriptionChecks.voidedAt)))
-		.returning({ id: transcriptionChecks.id, claimId: transcriptionChecks.claimId });
-	const [check] = voided;
-	if (!check) return;
-	const [claim] = await tx.select().from(claims).where(eq(claims.id, check.claimId));
+		.where(
+			and(
+				eq(transcriptionChecks.claimId, claimId),
+				eq(transcriptionChecks.taskId, taskId),
+				isNull(transcriptionChecks.voidedAt)
+			)
+		)
+		.returning({ id: transcriptionChecks.id });
+	if (voided.length === 0) return;
+	const [claim] = await tx.select().from(claims).where(eq(claims.id, claimId));
 	if (!claim) return;
 	const after = await settleConfirmation(tx, claim, now);
 	const { confirmedBy, confirmedVersion } = claim;

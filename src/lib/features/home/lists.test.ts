@@ -44,7 +44,8 @@ describe('claims of several groups', () => {
 		const at = '2026-11-20T10:00:00.000Z';
 		render(ClaimList, {
 			entries: [{ row, ...group, at, before: 'discrepancy' }],
-			caption: 'Changed'
+			caption: 'Changed',
+			groups: true
 		});
 		const [first] = within(screen.getByRole('table', { name: 'Changed' })).getAllByRole('cell');
 		expect(first?.textContent?.replace(/\s+/g, ' ')).toMatch(

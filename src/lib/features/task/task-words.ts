@@ -1,13 +1,11 @@
 import type { TaskKind, TaskState } from '../../ledger/tasks';
 import type { TaskMark } from '../../schemas/task-views';
-
-const MONTHS = 'Jan Feb Mar Apr May Jun Jul Aug Sep Oct Nov Dec'.split(' ');
+import { dayWords as fullDay } from '../../ledger/day-words';
 
 /** `14 Dec`; with its year when that is not this one. */
 export function dayWords(day: string, thisYear = new Date().getUTCFullYear()): string {
-	const [year, month, date] = day.split('-').map(Number);
-	const words = `${date ?? ''} ${MONTHS[(month ?? 1) - 1] ?? ''}`;
-	return year === thisYear ? words : `${words} ${year ?? ''}`;
+	const words = fullDay(day);
+	return words.endsWith(` ${thisYear}`) ? words.slice(0, -5) : words;
 }
 
 /** What a ledger's row says of its task, and of whom: `Due 14 Dec,` `I. Okafor`; `Unassigned`. */

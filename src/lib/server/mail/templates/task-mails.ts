@@ -1,3 +1,4 @@
+import { dayWords } from '../../../ledger/day-words';
 import { TASK_KIND_LABELS } from '../../../ledger/tasks';
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
 import { notificationText } from '../../services/notifications/notification-text';
@@ -51,13 +52,13 @@ function wordsOf({ kind, task }: NotificationFacts): TaskWords | null {
 			};
 		case 'task-due-soon':
 			return {
-				state: `due on ${task?.dueOn ?? ''}`,
+				state: `due on ${dayWords(task?.dueOn ?? '')}`,
 				tone: 'open',
 				next: 'Hand in what you found, or give the task back if you can’t see to it.'
 			};
 		case 'task-overdue':
 			return {
-				state: `overdue since ${task?.dueOn ?? ''}`,
+				state: `overdue since ${dayWords(task?.dueOn ?? '')}`,
 				tone: 'discrepancy',
 				next: 'Hand in what was found, move the date, or give the task to somebody else.'
 			};
@@ -80,7 +81,7 @@ export function taskBody(facts: NotificationFacts): MailBody | null {
 		quote: quoted && text ? { title: quoted, text } : instructionsOf(facts),
 		facts: [
 			['Task', `${task.number}: ${kind}`],
-			...(task.dueOn ? [['Due', `${task.dueOn} (UTC)`] as const] : []),
+			...(task.dueOn ? [['Due', `${dayWords(task.dueOn)} (UTC)`] as const] : []),
 			...claimRows(claim)
 		],
 		actionLabel: `Open task ${task.number}`

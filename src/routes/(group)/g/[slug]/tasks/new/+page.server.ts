@@ -46,6 +46,10 @@ export const actions: Actions = {
 			return refuseTyped('open', thrown, typed);
 		}
 		const [first] = numbers;
-		redirect(303, `/g/${ctx.group.slug}/tasks${numbers.length === 1 ? `/${first ?? ''}` : ''}`);
+		const list = `/g/${ctx.group.slug}/tasks`;
+		redirect(
+			303,
+			numbers.length > 1 || !first ? `${list}?opened=${numbers.length}` : `${list}/${first}`
+		);
 	}
 };

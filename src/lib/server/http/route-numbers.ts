@@ -10,6 +10,12 @@ export function taskNumber(text: string): number {
 	return numberIn(text, 'There is no such task.');
 }
 
+/** A claim's number as a person types it, `12` or `#12`; NaN for what is none, which no claim has. */
+export function typedNumber(text: string): number {
+	const digits = /^#?([1-9]\d{0,8})$/.exec(text.trim())?.[1];
+	return digits ? Number(digits) : NaN;
+}
+
 function numberIn(text: string, missing: string): number {
 	if (!/^[1-9]\d{0,8}$/.test(text)) error(404, missing);
 	return Number(text);

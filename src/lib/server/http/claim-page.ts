@@ -1,0 +1,26 @@
+import { parseActivityKind } from '../../schemas/activity-query';
+import type { GroupContext } from '../context';
+import { claimActivity } from '../services/activity/claim-activity';
+import { showClaim } from '../services/claims/show-claim';
+import { discussionView } from '../services/comments/discussion-view';
+import { claimTasks } from './claim-tasks';
+import { loadPublication } from './publication-data';
+
+/**
+ * What a claim's page shows: the claim, its way to the public, its tasks, and what is said and was
+ * done about it.
+ * @param history the kind of activity asked for; null: all
+ */
+export async function claimPage(ctx: GroupContext, number: number, history: string | null) {
+	const claim = await showClaim(ctx, number);
+	const historyKind = parseActivityKind(history);
+	return {
+		claim,
+		publication: await loadPublication(ctx, claim),
+		tasks: await claimTasks(ctx, claim),
+		discussion: await discussionView(ctx, 'claim', claim.id),
+		activity: await claimActivity(ctx, number, historyKind),
+		historyKind,
+		role: ctx.role
+	};
+}

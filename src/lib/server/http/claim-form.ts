@@ -1,4 +1,4 @@
-import { fail, type RequestEvent } from '@sveltejs/kit';
+import { fail, type ActionFailure, type RequestEvent } from '@sveltejs/kit';
 import { setError, superValidate, type SuperValidated } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { clientAddress } from '../client-address';
@@ -9,6 +9,7 @@ import { enter } from '../auth/enter';
 import { contextOf } from '../auth/guards';
 import type { GroupContext } from '../context';
 import { ServiceError } from '../errors';
+import { showClaim } from '../services/claims/show-claim';
 import { searchInequalities } from '../services/inequalities/search-inequalities';
 import { readClaim } from '../services/readings/read-claim';
 import { listReferences } from '../services/references/list-references';
@@ -38,6 +39,28 @@ export async function claimFormOf(start: Partial<ClaimInput>): Promise<ClaimForm
 		id: FORM_ID,
 		errors: false
 	});
+}
+
+/**
+ * What the address asks the form to start from: another claim's paper and inequality, or either.
+ * @throws ServiceError not-found when there is no such claim
+ */
+export async function claimFormStart(
+	ctx: GroupContext,
+	asked: URLSearchParams
+): Promise<Partial<ClaimInput>> {
+	const from = Number(asked.get('from'));
+	if (Number.isInteger(from) && from > 0) {
+		const { input, reference } = await showClaim(ctx, from);
+		const kept = { paper: 'known' as const, referenceId: reference.id };
+		return { ...input, ...kept, bibtex: '', printed: '', locator: '', note: '' };
+	}
+	const inequalityId = asked.get('inequality');
+	const referenceId = asked.get('paper');
+	return {
+		...(inequalityId ? { subjectKind: 'known', inequalityId } : {}),
+		...(referenceId ? { paper: 'known', referenceId } : {})
+	};
 }
 
 export async function claimFormChoices(
@@ -79,6 +102,11 @@ export function askToSignIn(form: ClaimForm) {
 	const text =
 		'Your session has ended, so nothing was entered yet. Sign in, then send the form again.';
 	return sendBack(form, 401, { text, issues: [], signedOut: true });
+}
+
+/** The version the person started from goes back with the form, so that a later one is noticed. */
+export function keepVersion<T extends object>(answer: ActionFailure<T>, version: number) {
+	return fail(answer.status, { ...answer.data, version });
 }
 
 /** Signs in from within a claim's form; what was typed stays. */

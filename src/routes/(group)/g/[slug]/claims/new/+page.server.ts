@@ -1,10 +1,9 @@
-import type { ClaimInput } from '$lib/schemas/claim-input';
 import { requireRole } from '$lib/server/auth/guards';
-import type { GroupContext } from '$lib/server/context';
 import {
 	askToSignIn,
 	claimFormChoices,
 	claimFormOf,
+	claimFormStart,
 	NO_CHOICES,
 	readClaimForm,
 	refuseClaim,
@@ -15,30 +14,13 @@ import { answering } from '$lib/server/http/page-errors';
 import { countRequest } from '$lib/server/http/request-limits';
 import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
 import { enterClaim } from '$lib/server/services/claims/enter-claim';
-import { showClaim } from '$lib/server/services/claims/show-claim';
 import { redirect } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
-
-/** What the address asks the form to start from: another claim's paper and inequality, or either. */
-async function startFrom(ctx: GroupContext, asked: URLSearchParams): Promise<Partial<ClaimInput>> {
-	const from = Number(asked.get('from'));
-	if (Number.isInteger(from) && from > 0) {
-		const { input, reference } = await answering(() => showClaim(ctx, from));
-		const kept = { paper: 'known' as const, referenceId: reference.id };
-		return { ...input, ...kept, bibtex: '', printed: '', locator: '', note: '' };
-	}
-	const inequalityId = asked.get('inequality');
-	const referenceId = asked.get('paper');
-	return {
-		...(inequalityId ? { subjectKind: 'known', inequalityId } : {}),
-		...(referenceId ? { paper: 'known', referenceId } : {})
-	};
-}
 
 export const load: PageServerLoad = async (event) => {
 	if (isFormSentBySignedOut(event)) return { form: await claimFormOf({}), ...NO_CHOICES };
 	const ctx = await requireRole(event, 'member');
-	const start = await startFrom(ctx, event.url.searchParams);
+	const start = await answering(() => claimFormStart(ctx, event.url.searchParams));
 	const form = await claimFormOf(start);
 	const choices = await answering(() =>
 		claimFormChoices(ctx, form.data, Object.keys(start).length > 0)

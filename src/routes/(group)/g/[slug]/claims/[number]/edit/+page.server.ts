@@ -3,6 +3,7 @@ import {
 	askToSignIn,
 	claimFormChoices,
 	claimFormOf,
+	keepVersion,
 	NO_CHOICES,
 	readClaimForm,
 	refuseClaim,
@@ -16,7 +17,7 @@ import { isFormSentBySignedOut } from '$lib/server/http/signed-out-form';
 import { editClaim, MAY_NOT_EDIT } from '$lib/server/services/claims/edit-claim';
 import { showClaim } from '$lib/server/services/claims/show-claim';
 import { may } from '$lib/ledger/policy';
-import { error, fail, redirect, type ActionFailure } from '@sveltejs/kit';
+import { error, redirect } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async (event) => {
@@ -26,20 +27,11 @@ export const load: PageServerLoad = async (event) => {
 	const ctx = await requireRole(event, 'member');
 	const { input, version, reference, own } = await answering(() => showClaim(ctx, number));
 	if (!may(ctx.role, 'edit-claim', { own })) error(403, MAY_NOT_EDIT);
-	const form = await claimFormOf({
-		...input,
-		paper: 'known',
-		referenceId: reference.id,
-		bibtex: ''
-	});
+	const paper = { paper: 'known', referenceId: reference.id, bibtex: '' } as const;
+	const form = await claimFormOf({ ...input, ...paper });
 	const choices = await answering(() => claimFormChoices(ctx, form.data, true));
 	return { form, ...choices, number, version };
 };
-
-/** The version the person started from goes back with the form, so that a later one is noticed. */
-function keepVersion<T extends object>(answer: ActionFailure<T>, version: number) {
-	return fail(answer.status, { ...answer.data, version });
-}
 
 export const actions: Actions = {
 	save: async (event) => {

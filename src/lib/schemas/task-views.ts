@@ -95,6 +95,11 @@ export interface SubmissionView {
 	readonly current: boolean;
 }
 
+/** A submission that a claim's verdict rests on, or rested on, with the task it was for. */
+export interface ClaimReproduction extends SubmissionView {
+	readonly taskNumber: number;
+}
+
 /** A task's page: its row, its tries (oldest first), and what the viewer may do. */
 export interface TaskView extends TaskRow {
 	readonly submissions: readonly SubmissionView[];

@@ -3,19 +3,29 @@ import { suggestedTask, wantsTask } from '../../ledger/suggested-task';
 import { openTasksInput } from '../../schemas/task-input';
 import type { ClaimView } from '../../schemas/views';
 import type { GroupContext } from '../context';
+import { renderMarkdown } from '../markdown/render-markdown';
+import { findClaim } from '../services/claims/find-claim';
 import { parseInput } from '../services/parse-input';
 import { openTasks } from '../services/tasks/open-tasks';
 import { peopleForTasks } from '../services/tasks/people-for-tasks';
+import { claimReproductions } from '../services/tasks/submission-views';
 import { tasksOfClaim } from '../services/tasks/tasks-of-claim';
 import { taskAction, typedIn } from './task-form';
 
 /** The tasks of a claim's page, and the form for another one where the viewer opens tasks. */
 export async function claimTasks(ctx: GroupContext, claim: ClaimView) {
 	const rows = await tasksOfClaim(ctx, claim.number);
+	const row = await findClaim(ctx.db.read, ctx, claim.number);
+	const reproductions = await claimReproductions(ctx.db.read, row);
 	const states = rows.map(({ state }) => state);
 	const mayOpen = claim.state !== 'withdrawn' && may(ctx.role, 'open-task');
 	return {
 		rows,
+		/** With each comment as safe HTML. */
+		reproductions: reproductions.map((found) => ({
+			...found,
+			commentHtml: renderMarkdown(found.comment)
+		})),
 		wanted: wantsTask(claim.state, claim.verdict, states),
 		suggested: suggestedTask(claim.verdict, claim.confirmed),
 		/** Null: the viewer opens none here. */

@@ -7,7 +7,7 @@ const REASONS: Readonly<Record<NotificationKind, (group: string) => string>> = {
 	transcription: (group) => `you entered or edited the claim, in ${group}`,
 	'task-assigned': (group) => `the task is yours, in ${group}`,
 	'task-submitted': (group) => `you can decide on submissions in ${group}`,
-	'task-returned': (group) => `you submitted the task, in ${group}`,
+	'task-returned': (group) => `you submitted or accepted what was found, in ${group}`,
 	'task-accepted': (group) => `you submitted the task, in ${group}`,
 	'task-cancelled': (group) => `the task was yours, in ${group}`,
 	'task-due-soon': (group) => `the task is yours, or you opened it and nobody has it, in ${group}`,

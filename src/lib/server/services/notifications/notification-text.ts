@@ -70,6 +70,7 @@ export function placeOf({ claim, task, comment }: NotificationFacts): string {
 
 function detail({ kind, claim, task, comment, message, text }: NotificationFacts): string {
 	const about = claim ? claim.title : '';
+	const asked = task ? `${TASK_KIND_LABELS[task.kind]}: ${about}` : about;
 	switch (kind) {
 		case 'mention':
 		case 'comment':
@@ -84,8 +85,9 @@ function detail({ kind, claim, task, comment, message, text }: NotificationFacts
 		case 'task-overdue':
 		case 'task-assigned':
 		case 'task-submitted':
+			return asked;
 		case 'task-accepted':
-			return task ? `${TASK_KIND_LABELS[task.kind]}: ${about}` : about;
+			return text || asked;
 		default:
 			return about;
 	}

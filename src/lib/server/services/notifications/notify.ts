@@ -21,6 +21,8 @@ export interface Notice {
 	readonly text?: string;
 	/** No mail before this time. */
 	readonly notBefore?: Date;
+	/** Good to know, and no mail, whatever the person has chosen. */
+	readonly listOnly?: boolean;
 }
 
 /**
@@ -47,7 +49,7 @@ export async function notify(
 	const now = ctx.now();
 	let told = 0;
 	for (const { userId, delivery } of people) {
-		const chosen = delivery ?? DEFAULT_DELIVERY[kind];
+		const chosen = notice.listOnly ? 'never' : (delivery ?? DEFAULT_DELIVERY[kind]);
 		const dedupeKey = `${kind}:${notice.event}:${userId}`;
 		const [row] = await tx
 			.insert(notifications)

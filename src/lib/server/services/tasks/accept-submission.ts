@@ -4,7 +4,9 @@ import type { Transaction } from '../../db/client';
 import { claims, submissions, tasks } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { deriveClaim } from '../claims/derive-claim';
+import type { ClaimRow } from '../claims/find-claim';
 import { quantityKey } from '../claims/quantity-key';
+import { notify } from '../notifications/notify';
 import type { SubmissionRecord } from './find-task';
 import { changeTask } from './step-task';
 import { tell } from './tell';
@@ -33,23 +35,45 @@ export async function acceptSubmission(
 				.update(submissions)
 				.set({ state: 'accepted', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: '' })
 				.where(eq(submissions.id, submission.id));
+			const before = await findAbout(tx, task.claimId);
 			await deriveClaim(tx, task.claimId, ctx.now());
 			const [after] = await tx
 				.select({ state: tasks.state })
 				.from(tasks)
 				.where(eq(tasks.id, task.id));
 			contradicted = after?.state !== 'accepted';
-			if (!contradicted) await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy]);
+			if (contradicted) return;
+			await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy]);
+			const now = await findAbout(tx, task.claimId);
+			if (before.status !== 'open' || now.status !== 'agreement') return;
+			if (now.createdBy === submission.submittedBy) return;
+			await notify(tx, ctx, {
+				kind: 'task-accepted',
+				groupId: task.groupId,
+				recipients: [now.createdBy],
+				event: `${task.id}:${task.version}`,
+				claimId: task.claimId,
+				taskId: task.id,
+				text: `Claim ${now.number} agrees now, with what was found.`,
+				// A discrepancy and its end are mailed; that an open claim agrees calls for nothing.
+				listOnly: true
+			});
 		}
 	);
 	return { contradicted };
 }
 
+async function findAbout(tx: Transaction, claimId: string): Promise<ClaimRow> {
+	const [claim] = await tx.select().from(claims).where(eq(claims.id, claimId));
+	if (!claim) throw new ServiceError('not-found', 'The claim of this task is gone.');
+	return claim;
+}
+
 /** A value that was found for something else would be accepted and count for nothing. */
 async function requireCurrent(tx: Transaction, submission: SubmissionRecord): Promise<void> {
 	if (submission.kind !== 'value') return;
-	const [claim] = await tx.select().from(claims).where(eq(claims.id, submission.claimId));
-	if (claim && quantityKey(claim) === submission.quantityKey) return;
+	const claim = await findAbout(tx, submission.claimId);
+	if (quantityKey(claim) === submission.quantityKey) return;
 	throw new ServiceError(
 		'conflict',
 		'The claim was edited since and is about something else than this value: return it, so that the value is found again.'

@@ -29,5 +29,6 @@ export async function contradictSubmission(
 		columns: { reason: why },
 		after: { submissionId }
 	});
-	await tell(tx, ctx, 'task-returned', stepped.task, [row.submittedBy], why);
+	// Who accepted it vouched for it, too.
+	await tell(tx, ctx, 'task-returned', stepped.task, [row.submittedBy, row.decidedBy], why);
 }

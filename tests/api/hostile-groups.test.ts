@@ -69,7 +69,7 @@ function doors({ ids, claim, task }: HostileWorld): readonly Door[] {
 		onClaim('comment', { body: 'I was here.' }),
 		onClaim('edit-comment', { id: ids.comment, body: 'I was here.' }),
 		onClaim('remove-comment', { id: ids.comment }),
-		{ path: `/claims/${claim}/edit?/save`, fields: { ...claimFields(), version: '1' } as Fields },
+		{ path: `/claims/${claim}/edit?/save`, fields: { version: '1', printed: '3' } },
 		{ path: '/tasks/new?/open', fields: asks },
 		{ path: `/inequalities/${ids.inequality}?/comment`, fields: { body: 'I was here.' } },
 		onMembers('mail', { emails: 'more@elsewhere.example', role: 'observer' }),

@@ -125,7 +125,7 @@ describe('files', () => {
 				if (/^(utils?|helpers?|common|misc)\./.test(name)) return true;
 				return name.endsWith('.svelte')
 					? !/^[A-Z][A-Za-z0-9]*\.svelte$/.test(name)
-					: !/^[a-z0-9]+(-[a-z0-9]+)*(\.(server|svelte))?\.(ts|js)$/.test(name);
+					: !/^[a-z0-9]+(-[a-z0-9]+)*(\.(server|client|svelte))?\.(ts|js)$/.test(name);
 			});
 		expect(odd).toEqual([]);
 	});

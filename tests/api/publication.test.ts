@@ -75,7 +75,7 @@ describe('comparing a claim with its paper', () => {
 			mayConfirm: false
 		});
 		expect(await told('member')).toMatchObject([
-			{ claimId: id, text: 'Value, locator and inequality are as in the paper.' }
+			{ claimId: id, text: 'As in the paper: value, locator and inequality.' }
 		]);
 		const [row] = await world.db.read
 			.select()
@@ -133,7 +133,7 @@ describe('comparing a claim with its paper', () => {
 			[true, '']
 		]);
 		expect((await told('member')).map(({ text }) => text)).toContain(
-			'Not as in the paper: the value. It prints 2.8284.'
+			'Not as in the paper: value. It prints 2.8284.'
 		);
 		await expect(publishClaim(world.as.owner, number)).rejects.toMatchObject(conflict);
 	});

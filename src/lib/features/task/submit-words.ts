@@ -9,17 +9,6 @@ export const SUBMISSION_LABELS: Readonly<Record<SubmissionKind, string>> = {
 	statement: 'Words and files'
 };
 
-/** The three questions of a comparison, with what was entered beside each. */
-export const QUESTIONS = [
-	{ field: 'valueMatches', label: 'Value', asks: 'Is the value printed so in the paper?' },
-	{ field: 'locatorMatches', label: 'Where', asks: 'Does it stand there?' },
-	{
-		field: 'inequalityMatches',
-		label: 'Inequality',
-		asks: 'Is it about this inequality and quantity?'
-	}
-] as const;
-
 export const FILES_HINT =
 	`At most ${TASK_LIMITS.files} files of ${sizeWords(TASK_LIMITS.fileBytes)} each: ` +
 	'programs, logs, data, PDF, pictures, archives. Others get them as downloads.';

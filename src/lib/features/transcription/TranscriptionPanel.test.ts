@@ -3,7 +3,6 @@ import { describe, expect, it } from 'vitest';
 import type { TranscriptionCheckView } from '../../schemas/task-views';
 import type { ClaimView } from '../../schemas/views';
 import { makeLedgerRow, makeVerdict } from '../../../../tests/factories/views';
-import { foundWords } from './found-words';
 import TranscriptionPanel from './TranscriptionPanel.svelte';
 
 type PanelClaim = Pick<
@@ -83,9 +82,9 @@ const panel = (over: {
 };
 
 describe('TranscriptionPanel', () => {
-	it('asks three questions, each under what was entered', () => {
+	it('asks three questions, each beside what was entered', () => {
 		const { getByRole, container } = panel({});
-		for (const question of ['this value', 'stand there', 'this inequality']) {
+		for (const question of ['value printed so', 'stand there', 'this inequality']) {
 			expect(getByRole('group', { name: new RegExp(question) })).toBeTruthy();
 		}
 		expect(container.textContent).toContain('eq. (7)');
@@ -122,18 +121,5 @@ describe('TranscriptionPanel', () => {
 		expect(container.querySelector('details')?.open).toBe(true);
 		expect(container.querySelector('[name=valueMatches][value=no]:checked')).toBeTruthy();
 		expect(getByLabelText('What is wrong').getAttribute('aria-invalid')).toBe('true');
-	});
-});
-
-describe('what was found', () => {
-	it.each([
-		[check(), 'As in the paper: value, locator and inequality.'],
-		[check({ valueMatches: false }), 'Not as in the paper: value.'],
-		[
-			check({ valueMatches: false, locatorMatches: false, inequalityMatches: false }),
-			'Not as in the paper: value, locator and inequality.'
-		]
-	])('is one sentence', (found, words) => {
-		expect(foundWords(found)).toBe(words);
 	});
 });

@@ -1,27 +1,24 @@
+import { COMPARED, type Compared } from '../../../ledger/comparison';
 import { ServiceError, type FieldIssue } from '../../errors';
 
-export interface Comparison {
-	readonly valueMatches: boolean;
-	readonly locatorMatches: boolean;
-	readonly inequalityMatches: boolean;
+export interface Comparison extends Readonly<Record<Compared, boolean>> {
 	/** What is wrong, where something is. */
 	readonly note: string;
 }
 
 type Answer = '' | 'yes' | 'no';
 
-const QUESTIONS = {
+const UNANSWERED: Readonly<Record<Compared, string>> = {
 	valueMatches: 'Say whether the value is the paper’s.',
 	locatorMatches: 'Say whether it stands there in the paper.',
 	inequalityMatches: 'Say whether it is the paper’s inequality and quantity.'
-} as const;
+};
 
 const SAY_WHAT = 'Say what is wrong, so that it can be put right.';
 
 /** Where something is wrong, words have to say what. @throws ServiceError invalid */
 export function requireNote(comparison: Comparison, noteField = 'note'): void {
-	const { valueMatches, locatorMatches, inequalityMatches, note } = comparison;
-	if ((valueMatches && locatorMatches && inequalityMatches) || note.trim()) return;
+	if (COMPARED.every((part) => comparison[part]) || comparison.note.trim()) return;
 	throw new ServiceError('invalid', SAY_WHAT, [{ field: noteField, message: SAY_WHAT }]);
 }
 
@@ -31,18 +28,16 @@ export function requireNote(comparison: Comparison, noteField = 'note'): void {
  * @throws ServiceError invalid, with an issue per field
  */
 export function readComparison(
-	answers: Readonly<Record<keyof typeof QUESTIONS, Answer>>,
+	answers: Readonly<Record<Compared, Answer>>,
 	note: string,
 	noteField = 'note'
 ): Comparison {
-	const issues: FieldIssue[] = [];
-	for (const [field, message] of Object.entries(QUESTIONS)) {
-		if (answers[field as keyof typeof QUESTIONS] === '') issues.push({ field, message });
-	}
-	const wrong = Object.keys(QUESTIONS).some(
-		(field) => answers[field as keyof typeof QUESTIONS] === 'no'
-	);
-	if (wrong && !note.trim()) issues.push({ field: noteField, message: SAY_WHAT });
+	const issues: FieldIssue[] = COMPARED.filter((field) => answers[field] === '').map((field) => ({
+		field,
+		message: UNANSWERED[field]
+	}));
+	if (COMPARED.some((field) => answers[field] === 'no') && !note.trim())
+		issues.push({ field: noteField, message: SAY_WHAT });
 	const [first] = issues;
 	if (first) throw new ServiceError('invalid', first.message, issues);
 	return {

@@ -1,3 +1,4 @@
+import { comparisonWords } from '../../../ledger/comparison';
 import type { GroupContext } from '../../context';
 import type { Transaction } from '../../db/client';
 import { transcriptionChecks } from '../../db/schema';
@@ -65,21 +66,7 @@ export async function recordTranscriptionCheck(
 		event: id,
 		claimId: claim.id,
 		...(taskId ? { taskId } : {}),
-		text: comparisonText({ ...check, note })
+		text: [comparisonWords(check), note].filter(Boolean).join(' ')
 	});
 	return { id, confirmed };
-}
-
-/** `Not as in the paper: the value, the locator. It is table 2.` */
-function comparisonText(check: Comparison): string {
-	const wrong = [
-		...(check.valueMatches ? [] : ['the value']),
-		...(check.locatorMatches ? [] : ['the locator']),
-		...(check.inequalityMatches ? [] : ['the inequality'])
-	];
-	const found =
-		wrong.length === 0
-			? 'Value, locator and inequality are as in the paper.'
-			: `Not as in the paper: ${wrong.join(', ')}.`;
-	return [found, check.note].filter(Boolean).join(' ');
 }

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { TASK_LIMITS } from '../../src/lib/schemas/task-input';
+import { submittedWords } from '../../src/lib/server/http/task-form';
 import { evidenceFiles, submissions } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
@@ -96,6 +97,13 @@ describe('files handed in', () => {
 		expect(one).toMatchObject({ name: '_CON.txt', calledBefore: '..\\secret\\CON.txt' });
 		const [same] = await storeFiles(world.as.member, [file('run.py')]);
 		expect(same).toMatchObject({ name: 'run.py', calledBefore: null });
+	});
+
+	it('that keep another name are told of once they are handed in', async () => {
+		const handed = await submit([file('..\\secret\n\\run.py'), file('same.py')]);
+		expect(handed.renamed).toEqual([{ from: '..\\secret \\run.py', to: 'run.py' }]);
+		expect(submittedWords(handed)).toContain('“..\\secret \\run.py” is kept as “run.py”.');
+		expect(submittedWords({ renamed: [] })).not.toContain('kept');
 	});
 
 	it('that changed in the storage are not given out', async () => {

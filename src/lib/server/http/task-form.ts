@@ -3,6 +3,7 @@ import { TASK_LIMITS } from '../../schemas/task-input';
 import { requireRole } from '../auth/guards';
 import type { GroupContext } from '../context';
 import { ServiceError } from '../errors';
+import type { RenamedFile } from '../services/tasks/submit-task';
 import { failWith } from './action-error';
 import { taskNumber } from './route-numbers';
 
@@ -21,12 +22,12 @@ export function refuseTyped(door: string, thrown: unknown, typed: Record<string,
 
 /**
  * An action of a task's page: guards, does it, and answers with the sentence that says so, or sends
- * the form back.
+ * the form back. What the verb answers may add to the sentence.
  */
-export function taskAction(
+export function taskAction<Answer>(
 	door: string,
-	done: string,
-	verb: (ctx: GroupContext, number: number, data: FormData) => Promise<unknown>,
+	done: string | ((answer: Answer) => string),
+	verb: (ctx: GroupContext, number: number, data: FormData) => Promise<Answer>,
 	before?: (event: RequestEvent) => Promise<void>
 ) {
 	return async (event: RequestEvent) => {
@@ -35,12 +36,18 @@ export function taskAction(
 		const data = await event.request.formData();
 		try {
 			await before?.(event);
-			await verb(ctx, number, data);
+			const answer = await verb(ctx, number, data);
+			return { message: typeof done === 'string' ? done : done(answer) };
 		} catch (thrown) {
 			return refuseTyped(door, thrown, typedIn(data));
 		}
-		return { message: done };
 	};
+}
+
+/** What is said once something was handed in; a file that keeps another name is told of. */
+export function submittedWords({ renamed }: { readonly renamed: readonly RenamedFile[] }): string {
+	const names = renamed.map(({ from, to }) => `“${from}” is kept as “${to}”.`);
+	return ['Submitted. Somebody else accepts it or returns it.', ...names].join(' ');
 }
 
 /** The fields of a submission; a certificate's file counts where nothing is pasted. */

@@ -35,7 +35,7 @@ export async function submitTask(
 	number: number,
 	input: Partial<SubmissionInput>,
 	files: readonly UploadedFile[] = []
-): Promise<{ id: string }> {
+): Promise<{ id: string; renamed: RenamedFile[] }> {
 	const { claimVersion, ...asks } = parseInput(submissionInput, input);
 	const { read } = ctx.db;
 	const task = await findTask(read, ctx, number);
@@ -46,11 +46,25 @@ export async function submitTask(
 	const found = await readSubmission(ctx, task, claim, asks, files.length);
 	const stored = await storeFiles(ctx, files);
 	try {
-		return await ctx.db.write((tx) => write(tx, ctx, { number, claim, found, stored }));
+		const { id } = await ctx.db.write((tx) => write(tx, ctx, { number, claim, found, stored }));
+		return { id, renamed: stored.flatMap(renamedFrom) };
 	} catch (error) {
 		await discardFiles(stored);
 		throw error;
 	}
+}
+
+/** A file that could not keep the name it came with. */
+export interface RenamedFile {
+	readonly from: string;
+	readonly to: string;
+}
+
+/** What it was called, on one line and no longer than a name may be: it goes back into a page. */
+function renamedFrom({ calledBefore, name }: StoredFile): RenamedFile[] {
+	if (calledBefore === null) return [];
+	const from = Array.from(calledBefore.replace(/[\p{C}\s]+/gu, ' ').trim());
+	return [{ from: from.length > 100 ? `${from.slice(0, 99).join('')}…` : from.join(''), to: name }];
 }
 
 interface Handed {

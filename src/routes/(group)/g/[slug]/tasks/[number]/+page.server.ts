@@ -5,7 +5,7 @@ import { answering } from '$lib/server/http/page-errors';
 import { readUploads } from '$lib/server/http/read-uploads';
 import { countRequest } from '$lib/server/http/request-limits';
 import { taskNumber } from '$lib/server/http/route-numbers';
-import { submissionFields, taskAction, typedIn } from '$lib/server/http/task-form';
+import { submissionFields, submittedWords, taskAction, typedIn } from '$lib/server/http/task-form';
 import { taskPage } from '$lib/server/http/task-page';
 import { parseInput } from '$lib/server/services/parse-input';
 import { acceptSubmission } from '$lib/server/services/tasks/accept-submission';
@@ -50,7 +50,7 @@ export const actions: Actions = {
 	),
 	submit: taskAction(
 		'submit',
-		'Submitted. Somebody else accepts it or returns it.',
+		submittedWords,
 		async (ctx, number, data) => {
 			const input = parseInput(submissionInput, await submissionFields(data));
 			return submitTask(ctx, number, input, await readUploads(data));

@@ -1,21 +1,22 @@
 import { and, eq } from 'drizzle-orm';
 import fc from 'fast-check';
 import { afterAll, beforeAll, expect, it } from 'vitest';
-import { isActiveTask, type TaskState } from '../../src/lib/ledger/tasks';
+import type { TaskState } from '../../src/lib/ledger/tasks';
 import type { GroupContext } from '../../src/lib/server/context';
 import { audit, submissions, tasks } from '../../src/lib/server/db/schema';
-import { ServiceError } from '../../src/lib/server/errors';
-import { acceptSubmission } from '../../src/lib/server/services/tasks/accept-submission';
-import { cancelTask } from '../../src/lib/server/services/tasks/cancel-task';
-import { editTask } from '../../src/lib/server/services/tasks/edit-task';
 import { openTasks } from '../../src/lib/server/services/tasks/open-tasks';
-import { releaseTask } from '../../src/lib/server/services/tasks/release-task';
-import { returnSubmission } from '../../src/lib/server/services/tasks/return-submission';
-import { startTask } from '../../src/lib/server/services/tasks/start-task';
-import { submitTask } from '../../src/lib/server/services/tasks/submit-task';
-import { takeTask } from '../../src/lib/server/services/tasks/take-task';
 import '../support/fast-check';
-import { foundValue, openTaskWorld, type TaskWorld } from '../support/task-world';
+import {
+	DOINGS,
+	PEOPLE,
+	stepped,
+	type Doing,
+	type Known,
+	type Step,
+	type Who
+} from '../support/task-model';
+import { attemptStep } from '../support/task-steps';
+import { openTaskWorld, type TaskWorld } from '../support/task-world';
 
 /** Runs of up to this many steps each; a step is a transaction. */
 const RUNS = 30;
@@ -29,106 +30,11 @@ beforeAll(async () => {
 });
 afterAll(() => world.end());
 
-const PEOPLE = ['observer', 'member', 'wren', 'maintainer', 'owner'] as const;
-type Who = (typeof PEOPLE)[number];
 const contextOf = (who: Who): GroupContext => (who === 'wren' ? world.wren : world.as[who]);
 const idOf = (who: Who) => contextOf(who).actor.id;
-const leads = (who: Who) => who === 'maintainer' || who === 'owner';
 
-/** What the test knows of a task; written down apart from the product's own rule. */
-interface Known {
-	state: TaskState;
-	holder: Who | null;
-	submitter: Who | null;
-	/** Changes that were let through, opening included. */
-	changes: number;
-}
-
-const DOINGS = [
-	'take',
-	'start',
-	'release',
-	'submit',
-	'accept',
-	'return',
-	'cancel',
-	'give'
-] as const;
-type Doing = (typeof DOINGS)[number];
-
-interface Step {
-	readonly doing: Doing;
-	readonly who: Who;
-	readonly to: Who | null;
-	/** Which of the run's tasks. */
-	readonly pick: number;
-}
-
-/** The task afterwards; null: it has to be refused. */
-function after(task: Known, { doing, who, to }: Step): Omit<Known, 'changes'> | null {
-	const { state, holder, submitter } = task;
-	const held = state === 'assigned' || state === 'in-progress' || state === 'returned';
-	const mine = holder === who;
-	switch (doing) {
-		case 'take':
-			return state === 'open' && who !== 'observer'
-				? { state: 'assigned', holder: who, submitter: null }
-				: null;
-		case 'start':
-			return mine && (state === 'assigned' || state === 'returned')
-				? { state: 'in-progress', holder, submitter: null }
-				: null;
-		case 'release':
-			return held && (mine || leads(who)) ? { state: 'open', holder: null, submitter: null } : null;
-		case 'submit':
-			return (held && mine) || (state === 'open' && who !== 'observer')
-				? { state: 'submitted', holder: who, submitter: who }
-				: null;
-		case 'accept':
-			return state === 'submitted' && leads(who) && submitter !== who
-				? { state: 'accepted', holder, submitter }
-				: null;
-		case 'return':
-			return state === 'submitted' && leads(who) && submitter !== who
-				? { state: 'returned', holder, submitter: null }
-				: null;
-		case 'cancel':
-			return isActiveTask(state) && leads(who)
-				? { state: 'cancelled', holder, submitter: null }
-				: null;
-		case 'give': {
-			if (!leads(who) || !isActiveTask(state) || to === 'observer') return null;
-			if (to === holder) return { state, holder, submitter };
-			if (state === 'submitted') return null;
-			return { state: to === null ? 'open' : 'assigned', holder: to, submitter: null };
-		}
-	}
-}
-
-async function attempt(number: number, { doing, who, to }: Step): Promise<boolean> {
-	const ctx = contextOf(who);
-	const verbs: Record<Doing, () => Promise<unknown>> = {
-		take: () => takeTask(ctx, number),
-		start: () => startTask(ctx, number),
-		release: () => releaseTask(ctx, number),
-		submit: () => submitTask(ctx, number, foundValue('0.70711')),
-		accept: () => acceptSubmission(ctx, number),
-		return: () => returnSubmission(ctx, number, 'Once more, please.'),
-		cancel: () => cancelTask(ctx, number, 'It is not needed.'),
-		give: async () => {
-			const [task] = await world.db.read.select().from(tasks).where(byNumber(number));
-			const assigneeId = to === null ? '' : idOf(to);
-			return editTask(ctx, number, { version: task?.version ?? 0, assigneeId });
-		}
-	};
-	try {
-		await verbs[doing]();
-		return true;
-	} catch (error) {
-		if (error instanceof ServiceError && error.status < 500) return false;
-		throw error;
-	}
-}
+const attempt = (number: number, { doing, who, to }: Step) =>
+	attemptStep(contextOf(who), number, doing, to && idOf(to), '0.70711');
 
 const byNumber = (number: number) =>
 	and(eq(tasks.groupId, world.as.owner.group.id), eq(tasks.number, number));
@@ -200,7 +106,7 @@ it('over any steps by anyone is legal, recorded step by step, and never self-acc
 					const picked = all[each.pick % all.length] ?? 0;
 					const known = run.get(picked);
 					if (!known) continue;
-					const expected = after(known, each);
+					const expected = stepped(known, each);
 					expect([each, await attempt(picked, each)]).toEqual([each, expected !== null]);
 					if (expected) {
 						const same = each.doing === 'give' && each.to === known.holder;

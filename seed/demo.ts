@@ -3,13 +3,14 @@
  * then runs the production server with a local mail sink. Nothing of it leaves this machine.
  */
 import { spawn, spawnSync } from 'node:child_process';
-import { existsSync, readdirSync, rmSync, statSync } from 'node:fs';
+import { existsSync, readdirSync, readFileSync, rmSync, statSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { join } from 'node:path';
 import { DEMO_PASSWORD, GROUP, PEOPLE } from './people';
 
 const FOLDER = 'data/demo';
 const DATABASE = `${FOLDER}/merestone.db`;
+/** Made when the seed is done; holds the account id of the demo's administrator. */
 const SEEDED = `${FOLDER}/seeded`;
 /** What the build is made of. */
 const SOURCES = ['src', 'static', 'svelte.config.js', 'vite.config.ts', 'package-lock.json'];
@@ -79,7 +80,7 @@ if (!existsSync(SEEDED)) {
 
 const server = spawn(node, ['build'], {
 	stdio: ['ignore', 'inherit', 'inherit'],
-	env: environment
+	env: { MERESTONE_ADMINS: readFileSync(SEEDED, 'utf8').trim(), ...environment }
 });
 for (const signal of ['SIGINT', 'SIGTERM'] as const) process.on(signal, () => server.kill(signal));
 server.on('exit', (code) => process.exit(code ?? 0));
@@ -103,6 +104,7 @@ Merestone is running at ${origin}
 
   ${GROUP.name}: ${origin}/g/${GROUP.slug}
   Mail it sent:  ${origin}/demo/mail
+  Outbox:        ${origin}/admin/mail (as the owner, who administers this site)
 
   Demo accounts, all with the password "${DEMO_PASSWORD}":
 ${accounts}

@@ -1,10 +1,12 @@
 import AxeBuilder from '@axe-core/playwright';
 import { expect, test, type Page } from '@playwright/test';
 import { spawnSync } from 'node:child_process';
-import { mkdtempSync } from 'node:fs';
+import { mkdtempSync, readFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { DEMO_PASSWORD, GROUP } from '../../seed/people';
+import { TASK_STATES } from '../../src/lib/ledger/tasks';
+import type { TaskRow } from '../../src/lib/schemas/task-views';
 import type { BoundsRow, LedgerRow } from '../../src/lib/schemas/views';
 import { startServer, type TestServer } from '../support/server';
 
@@ -29,7 +31,9 @@ test.beforeAll(async () => {
 		{ env, encoding: 'utf8', timeout: SEED_LIMIT_MS }
 	);
 	if (seeded.status !== 0) throw new Error(`The seed failed:\n${seeded.stdout}\n${seeded.stderr}`);
-	server = await startServer({ folder, env: { MERESTONE_DEMO: '1' } });
+	const administrator = readFileSync(join(folder, 'seeded'), 'utf8').trim();
+	const demo = { MERESTONE_DEMO: '1', MERESTONE_ADMINS: administrator };
+	server = await startServer({ folder, env: demo });
 });
 test.afterAll(async () => {
 	await server.stop();
@@ -100,6 +104,25 @@ test('the seed shows each status, each reason for Open and each diagnosis', asyn
 	]);
 });
 
+test('the seed shows tasks in every state, talk, and what became of it', async ({ page }) => {
+	await signIn(page, 'ines@harrow.example');
+	const group = `${server.origin}/api/v1/groups/${GROUP.slug}`;
+	const { items } = (await (await page.request.get(`${group}/tasks?state=all`)).json()) as {
+		items: TaskRow[];
+	};
+	expect(new Set(items.map(({ state }) => state))).toEqual(new Set(TASK_STATES));
+	expect(items.some(({ overdue }) => overdue)).toBe(true);
+	const reproduced = (await ledgerOf(page)).find(
+		({ quantityLabel }) => quantityLabel === 'Key rate'
+	);
+	expect(reproduced?.verdict.status).toBe('agreement');
+	expect(reproduced?.verdict.enclosure?.worth).toBe('person');
+	const contradicted = items.find(({ reason }) => reason.includes('contradict'));
+	expect(contradicted?.state).toBe('returned');
+	await page.goto(`${server.origin}/g/${GROUP.slug}/activity?kind=talk`);
+	await expect(page.getByText(/commented on claim/).first()).toBeVisible();
+});
+
 test('public pages are accessible, at both widths and in both modes', async ({ page }) => {
 	test.setTimeout(300_000);
 	const bounds = await page.request.get(`${server.origin}/api/v1/bounds`);
@@ -107,6 +130,7 @@ test('public pages are accessible, at both widths and in both modes', async ({ p
 	const claim = rows.map((row) => row.claimedLower ?? row.claimedUpper).find((found) => found);
 	const paths = ['/', '/method', '/sign-in', '/sign-up', '/no-such-page', '/demo/mail'];
 	paths.push(`/inequalities/${rows[0]?.inequality.id}`, `/claims/${claim?.claimId}`);
+	paths.push(`/claims/${claim?.claimId}/answer`);
 	for (const path of paths) await lookAt(page, path);
 });
 
@@ -140,6 +164,7 @@ test('a group’s pages are accessible, at both widths and in both modes', async
 		'/home/tasks',
 		'/news',
 		'/account/notifications',
+		'/admin/mail',
 		'/account',
 		'/groups/new'
 	];

@@ -11,7 +11,7 @@ import {
 	rewrittenByNoSignalling
 } from '../../../../tests/factories/random-functional';
 import { lehmer } from '../../../../tests/factories/solver-problem';
-import { affineMap, canonicalForm } from './equivalence';
+import { affineMap, canonicalForm, looseForm } from './equivalence';
 import { familyFunctional, type FamilySpec } from './families';
 import { makeFunctional, scaleFunctional, type Functional } from './functional';
 import { functionalOfTerms } from './problem-terms';
@@ -84,6 +84,7 @@ describe('canonical form', () => {
 					randomRelabelling(f, random)
 				);
 				expect(canonicalForm(g).digest).toBe(canonicalForm(f).digest);
+				expect(looseForm(g)).toBe(looseForm(f));
 				const map = affineMap(g, f);
 				expect(map?.scale.exact?.equals(factor.exact ?? 0)).toBe(true);
 				const moved = factor.exact?.mul(localMaximumOf(f)).add(map?.shift.exact ?? 0);
@@ -142,6 +143,34 @@ describe('canonical form', () => {
 			}))
 		]);
 		expect(canonicalForm(wider)).toEqual(canonicalForm(chsh));
+	});
+
+	it('is not searched for to tell that two functionals differ in a coefficient or a scenario', () => {
+		const chsh = [
+			[1, 1],
+			[1, -1]
+		];
+		const loose = (matrix: number[][]) => looseForm(familyFunctional({ name: 'xor-game', matrix }));
+		expect(loose([chsh[1] ?? [], chsh[0] ?? []])).toBe(loose(chsh));
+		expect(
+			loose([
+				[1, 1, 0],
+				[1, -1, 0]
+			])
+		).toBe(loose(chsh));
+		expect(
+			loose([
+				[1, 1],
+				[1, -2]
+			])
+		).not.toBe(loose(chsh));
+		expect(
+			loose([
+				[1, 1, 1],
+				[1, -1, 1]
+			])
+		).not.toBe(loose(chsh));
+		expect(loose([[0]])).toBe('constant');
 	});
 
 	it('falls back to an invariant digest when the search is cut short', () => {

@@ -51,25 +51,15 @@ export function canonicalForm(
 	functional: Functional,
 	workLimit: number = WORK_LIMIT
 ): CanonicalForm {
-	const zeroSum = zeroSumForm(functional);
-	const shift = zeroSum.constant;
-	const whole = functionalOfZeroSumForm({ ...zeroSum, constant: COEFFICIENT_ZERO });
-	const expanded = { ...whole, terms: whole.terms.filter(isKnownNonzero) };
+	const { shift, parts } = partsOf(functional);
 	const version = DIGEST_VERSION;
-	if (expanded.terms.length === 0) {
+	if (!parts) {
 		const canonical = makeFunctional({ outputs: [] }, []);
 		const digest = sha256(`${version} constant`);
 		const scale = COEFFICIENT_ONE;
 		return { digest, version, numerical: false, canonical, scale, shift, complete: true };
 	}
-	const form = integerForm(expanded.terms.map((term) => term.coefficient));
-	const { scale, numerical } = form;
-	const terms = expanded.terms.flatMap(({ events }, i) => {
-		const integer = form.integers[i] ?? 0n;
-		const coefficient = form.normalised[i];
-		return integer === 0n || !coefficient ? [] : [{ events, integer, coefficient }];
-	});
-	const used = dropUnused(expanded.scenario, terms);
+	const { scale, numerical, used } = parts;
 	const { relabelling, complete, invariant } = canonicalLabelling(
 		equivalenceGraph(used.scenario, withRanks(used.terms)),
 		workLimit
@@ -84,6 +74,45 @@ export function canonicalForm(
 	const body = complete ? printForm(relabelled(integers)) : printInvariant(used, invariant);
 	const digest = sha256(`${version} ${kind} ${body}`);
 	return { digest, version, numerical, canonical: relabelled(used.terms), scale, shift, complete };
+}
+
+/**
+ * What equivalent functionals have in common, found without the search for a representative: two
+ * that differ in it are not equivalent. It costs little for a functional of any size.
+ */
+export function looseForm(functional: Functional): string {
+	const { parts } = partsOf(functional);
+	if (!parts) return 'constant';
+	const { numerical, used } = parts;
+	const counts = (list: readonly number[]) => [...list].sort((a, b) => a - b).join(' ');
+	const parties = used.scenario.outputs.map(counts).sort();
+	// Of irrational coefficients a digit may differ, and an error may hide a zero.
+	const integers = numerical ? [] : used.terms.map(({ integer }) => String(integer)).sort();
+	return JSON.stringify([numerical, parties, integers]);
+}
+
+/** The constant, and what is left of the functional; null when nothing is. */
+function partsOf(functional: Functional): {
+	readonly shift: Coefficient;
+	readonly parts: {
+		readonly scale: Coefficient;
+		readonly numerical: boolean;
+		readonly used: UsedTerms;
+	} | null;
+} {
+	const zeroSum = zeroSumForm(functional);
+	const shift = zeroSum.constant;
+	const whole = functionalOfZeroSumForm({ ...zeroSum, constant: COEFFICIENT_ZERO });
+	const expanded = { ...whole, terms: whole.terms.filter(isKnownNonzero) };
+	if (expanded.terms.length === 0) return { shift, parts: null };
+	const form = integerForm(expanded.terms.map((term) => term.coefficient));
+	const { scale, numerical } = form;
+	const terms = expanded.terms.flatMap(({ events }, i) => {
+		const integer = form.integers[i] ?? 0n;
+		const coefficient = form.normalised[i];
+		return integer === 0n || !coefficient ? [] : [{ events, integer, coefficient }];
+	});
+	return { shift, parts: { scale, numerical, used: dropUnused(expanded.scenario, terms) } };
 }
 
 /** Irrational forms count as the same only when they agree to this, beside the digest. */

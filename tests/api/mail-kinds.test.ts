@@ -108,7 +108,9 @@ describe('the mail of every kind', () => {
 		expect(html).toContain('&lt;script&gt;alert(1)');
 		const link = task ? '/g/first/tasks/4' : '/g/first/claims/1';
 		expect(text).toContain(ORIGIN + link);
-		expect(html).toContain(`href="${ORIGIN}${link}`);
+		// Opening it marks the news as read, and leads to the same place.
+		const news = `?news=${row?.notificationId ?? ''}`;
+		expect(html).toContain(`href="${ORIGIN}${link}${news}`);
 		// Short lines, but for addresses and what can't be broken.
 		for (const line of (mail?.text ?? '').split('\n')) {
 			expect(line.length <= 72 || !line.trim().includes(' '), line).toBe(true);

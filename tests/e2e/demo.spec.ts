@@ -117,7 +117,7 @@ test('the seed shows tasks in every state, talk, and what became of it', async (
 	);
 	expect(reproduced?.verdict.status).toBe('agreement');
 	expect(reproduced?.verdict.enclosure?.worth).toBe('person');
-	const contradicted = items.find(({ reason }) => reason.includes('contradict'));
+	const contradicted = items.find(({ reason }) => reason.startsWith('Contradicts the certificate'));
 	expect(contradicted?.state).toBe('returned');
 	await page.goto(`${server.origin}/g/${GROUP.slug}/activity?kind=talk`);
 	await expect(page.getByText(/commented on claim/).first()).toBeVisible();

@@ -1,3 +1,4 @@
+import type { SortLink } from '$lib/components/sort-link';
 import { printLedgerQuery, type LedgerQuery, type LedgerSort } from '../../schemas/ledger-query';
 
 /** The ledger's address with part of its state changed; any change but of the page goes to page 1. */
@@ -11,14 +12,6 @@ export function quantityHref(base: string, query: LedgerQuery, quantity: string)
 	const search = printLedgerQuery({ ...query, page: 1, quantity: '' });
 	search.set('quantity', quantity);
 	return `${base}?${search}`;
-}
-
-export interface SortLink {
-	readonly href: string;
-	/** What the column is sorted by now. */
-	readonly direction: 'ascending' | 'descending' | null;
-	/** What a click does, for a screen reader. */
-	readonly action: string;
 }
 
 /** The sorts a column's heading steps through; after the last it returns to newest first. */

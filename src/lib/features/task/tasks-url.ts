@@ -1,3 +1,4 @@
+import type { SortLink } from '$lib/components/sort-link';
 import { printTaskQuery, type TaskQuery } from '../../schemas/task-input';
 
 /** The tasks' address with part of its state changed; any change but of the page goes to page 1. */
@@ -13,12 +14,6 @@ export function isTaskFiltered(query: TaskQuery): boolean {
 	);
 }
 
-export interface TaskSortLink {
-	readonly href: string;
-	readonly direction: 'ascending' | 'descending' | null;
-	readonly action: string;
-}
-
 const COLUMN_SORTS = {
 	number: { sort: 'number', direction: 'ascending', again: 'due' },
 	due: { sort: 'due', direction: 'ascending', again: 'newest' },
@@ -26,7 +21,7 @@ const COLUMN_SORTS = {
 } as const;
 
 /** Where a column's heading leads; null for a column that can't be sorted by. */
-export function taskSortLink(base: string, query: TaskQuery, column: string): TaskSortLink | null {
+export function taskSortLink(base: string, query: TaskQuery, column: string): SortLink | null {
 	const entry = Object.entries(COLUMN_SORTS).find(([name]) => name === column)?.[1];
 	if (!entry) return null;
 	const on = query.sort === entry.sort;

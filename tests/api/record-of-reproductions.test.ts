@@ -132,6 +132,22 @@ describe('who entered a claim', () => {
 		expect((await listNews(world.as.member, 1)).items).toHaveLength(1);
 	});
 
+	it('reads so when a certificate settled it, once', async () => {
+		const fields = { relation: '<=', printed: '2.9', quantity: 'npa', level: '1' } as const;
+		const { number } = await enterClaim(world.as.member, claimFields(fields));
+		const task = await world.openTask(number);
+		const certificate = await solved({ family: { name: 'chsh' }, quantity: 'npa', level: 1 });
+		await submitTask(world.wren, task, { kind: 'certificate', certificate });
+		await acceptSubmission(world.as.maintainer, task);
+		const { items } = await listNews(world.as.member, 1);
+		expect(items.map(({ text, detail }) => [text, detail])).toEqual([
+			[
+				`Wren Aldous submitted task ${task} on claim ${number}.`,
+				`Claim ${number} agrees now, with what was found.`
+			]
+		]);
+	});
+
 	it('is told once when it was their own reproduction', async () => {
 		const claim = await world.openClaim();
 		await accepted(claim, '0.70711', world.as.member);

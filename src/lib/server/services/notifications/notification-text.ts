@@ -85,7 +85,6 @@ function detail({ kind, claim, task, comment, message, text }: NotificationFacts
 		case 'task-overdue':
 		case 'task-assigned':
 		case 'task-submitted':
-			return asked;
 		case 'task-accepted':
 			return text || asked;
 		default:

@@ -6,10 +6,10 @@ import { ServiceError } from '../../errors';
 import { deriveClaim } from '../claims/derive-claim';
 import type { ClaimRow } from '../claims/find-claim';
 import { quantityKey } from '../claims/quantity-key';
-import { notify } from '../notifications/notify';
 import type { SubmissionRecord } from './find-task';
 import { changeTask } from './step-task';
 import { tell } from './tell';
+import { tellAgreement } from './tell-agreement';
 
 /**
  * Accepts what was submitted; a value found enters the claim's verdict at once. When a certificate
@@ -44,20 +44,7 @@ export async function acceptSubmission(
 			contradicted = after?.state !== 'accepted';
 			if (contradicted) return;
 			await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy]);
-			const now = await findAbout(tx, task.claimId);
-			if (before.status !== 'open' || now.status !== 'agreement') return;
-			if (now.createdBy === submission.submittedBy) return;
-			await notify(tx, ctx, {
-				kind: 'task-accepted',
-				groupId: task.groupId,
-				recipients: [now.createdBy],
-				event: `${task.id}:${task.version}`,
-				claimId: task.claimId,
-				taskId: task.id,
-				text: `Claim ${now.number} agrees now, with what was found.`,
-				// A discrepancy and its end are mailed; that an open claim agrees calls for nothing.
-				listOnly: true
-			});
+			await tellAgreement(tx, ctx, 'task-accepted', task, before, submission.submittedBy);
 		}
 	);
 	return { contradicted };

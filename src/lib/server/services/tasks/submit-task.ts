@@ -23,6 +23,7 @@ import { requireClaimAsSeen } from './require-claim-as-seen';
 import { readSubmission, type ReadSubmission } from './read-submission';
 import { asActor, refuseStep, stepTask } from './step-task';
 import { tell } from './tell';
+import { tellAgreement } from './tell-agreement';
 
 /**
  * Hands in what was found. A certificate is judged by its check at once; anything else waits for
@@ -105,6 +106,7 @@ async function write(
 	}
 	if (kind === 'certificate') await deriveClaim(tx, claim.id, ctx.now());
 	await tell(tx, ctx, 'task-submitted', task, await maintainersOf(tx, task.groupId));
+	await tellAgreement(tx, ctx, 'task-submitted', task, current, ctx.actor.id);
 	return { id };
 }
 

@@ -1,3 +1,4 @@
+import { STATUS_LABELS, VERDICT_STATUSES } from '../../../ledger/claim';
 import { NOTICE_KINDS, NOTICE_LABELS } from '../../../ledger/notices';
 import type { ActivityKind } from '../../../schemas/talk-views';
 import { changedClaimFields } from './claim-fields';
@@ -28,12 +29,6 @@ interface Sentence {
 	/** The whole sentence where the product itself did it; else it is named as who did. */
 	readonly happened?: Did;
 }
-
-const STATUS: Readonly<Record<string, string>> = {
-	agreement: 'Agreement',
-	discrepancy: 'Discrepancy',
-	open: 'Open'
-};
 
 const claims = (did: Did, happened?: Did): Sentence => ({ kind: 'claims', did, happened });
 const tasks = (did: Did, happened?: Did): Sentence => ({ kind: 'tasks', did, happened });
@@ -223,7 +218,10 @@ function settingWords(before: Recorded, after: Recorded): string {
 	return changed.length > 0 ? list(changed) : 'settings';
 }
 
-const statusOf = (recorded: Recorded) => STATUS[textOf(recorded, 'status')] ?? 'another one';
+function statusOf(recorded: Recorded): string {
+	const status = VERDICT_STATUSES.find((known) => known === textOf(recorded, 'status'));
+	return status ? STATUS_LABELS[status] : 'another one';
+}
 
 /** `a member`, `an owner`. */
 function role(recorded: Recorded, instead = 'a member'): string {

@@ -22,9 +22,18 @@ describe('localPath', () => {
 });
 
 describe('fields that reach a mail', () => {
-	it.each(['a\nb', 'a\r\nBcc: x@y.example', 'a\u2028b', 'a\0b'])('refuse %j', (text) => {
-		expect(oneLine(80, 'missing').safeParse(text).success).toBe(false);
-		expect(emailAddress.safeParse(`${text}@y.example`).success).toBe(false);
+	it.each(['a\nb', 'a\r\nBcc: x@y.example', 'a\u2028b', 'a\0b', 'a\u202eb', 'a\u2067b'])(
+		'refuse %j',
+		(text) => {
+			expect(oneLine(80, 'missing').safeParse(text).success).toBe(false);
+			expect(emailAddress.safeParse(`${text}@y.example`).success).toBe(false);
+		}
+	);
+
+	it('take a name in whatever script', () => {
+		for (const name of ['Ines Harrow', 'أمل', 'נועה', '明', "O'Neill-Źdźbło"]) {
+			expect(oneLine(80, 'missing').parse(name)).toBe(name);
+		}
 	});
 
 	it('keep an address in lower case', () => {

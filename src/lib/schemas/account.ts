@@ -15,14 +15,20 @@ const anyPassword = z
 	.min(1, 'Give your password')
 	.max(1_024, `No password here has more than ${PASSWORD_LENGTH.max} characters`);
 
-/** One line of text without control characters, so that it is safe in a mail's header. */
+/**
+ * One line of text without control characters, so that it is safe in a mail's header; and without
+ * those that turn the writing direction around, which would turn the words beside it, too.
+ */
 export const oneLine = (limit: number, missing: string) =>
 	z
 		.string()
 		.trim()
 		.min(1, missing)
 		.max(limit, `At most ${limit} characters`)
-		.regex(/^[^\p{Cc}\u2028\u2029]*$/u, 'Only one line of text, without control characters');
+		.regex(
+			/^[^\p{Cc}\u2028\u2029\u202a-\u202e\u2066-\u2069]*$/u,
+			'Only one line of text, without control characters'
+		);
 
 /** Where to go afterwards; read with `localPath`. */
 const next = z.string().max(2_000).default('');

@@ -7,6 +7,12 @@ import {
 } from 'sveltekit-superforms';
 import { ServiceError, type FieldIssue } from '../errors';
 
+/** Lets pass what an action answers itself; the rest goes on to the error page. */
+export function assertAnswerable(thrown: unknown): asserts thrown is ServiceError {
+	if (!(thrown instanceof ServiceError)) throw thrown;
+	if (thrown.code === 'not-found') error(404, thrown.message);
+}
+
 /**
  * For actions without a Superforms form: `{ message, issues }` beside what was typed.
  * Errors that are not a service's go on to the error page.
@@ -14,8 +20,7 @@ import { ServiceError, type FieldIssue } from '../errors';
 export function failWith(
 	thrown: unknown
 ): ActionFailure<{ message: string; issues: readonly FieldIssue[] }> {
-	if (!(thrown instanceof ServiceError)) throw thrown;
-	if (thrown.code === 'not-found') error(404, thrown.message);
+	assertAnswerable(thrown);
 	return fail(thrown.status, { message: thrown.message, issues: thrown.issues });
 }
 

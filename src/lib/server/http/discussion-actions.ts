@@ -3,11 +3,10 @@ import type { CommentSubject } from '../../ledger/comments';
 import type { RefusedComment } from '../../schemas/talk-views';
 import { requireRole } from '../auth/guards';
 import type { GroupContext } from '../context';
-import { ServiceError } from '../errors';
 import { addComment } from '../services/comments/add-comment';
 import { editComment } from '../services/comments/edit-comment';
 import { removeComment } from '../services/comments/remove-comment';
-import { failWith } from './action-error';
+import { assertAnswerable } from './action-error';
 import { countRequest } from './request-limits';
 
 /**
@@ -54,7 +53,7 @@ export function discussionActions<E extends RequestEvent>(
 }
 
 function refused(thrown: unknown, id: string, body: string) {
-	if (!(thrown instanceof ServiceError) || thrown.code === 'not-found') return failWith(thrown);
+	assertAnswerable(thrown);
 	const discussion: RefusedComment = { id, body, message: thrown.message };
 	return fail(thrown.status, { discussion });
 }

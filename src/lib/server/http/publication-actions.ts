@@ -2,14 +2,13 @@ import { fail, type RequestEvent } from '@sveltejs/kit';
 import { noticeInput } from '../../schemas/publication-input';
 import { transcriptionInput } from '../../schemas/task-input';
 import { requireRole } from '../auth/guards';
-import { ServiceError } from '../errors';
 import { handleAuthorMessage } from '../services/author-messages/handle-author-message';
 import { reopenAuthorMessage } from '../services/author-messages/reopen-author-message';
 import { attachNotice } from '../services/claim-notices/attach-notice';
 import { removeNotice } from '../services/claim-notices/remove-notice';
 import { parseInput } from '../services/parse-input';
 import { confirmTranscription } from '../services/transcriptions/confirm-transcription';
-import { failWith } from './action-error';
+import { assertAnswerable, failWith } from './action-error';
 import { countRequest } from './request-limits';
 import { claimNumber } from './route-numbers';
 
@@ -23,7 +22,7 @@ async function asked(event: RequestEvent) {
 
 /** What is wrong beside what was typed, which the page then shows again. */
 function failTyped<K extends string>(thrown: unknown, key: K, typed: Record<string, string>) {
-	if (!(thrown instanceof ServiceError) || thrown.code === 'not-found') return failWith(thrown);
+	assertAnswerable(thrown);
 	const { message, issues } = thrown;
 	return fail(thrown.status, { message, issues, [key]: typed } as {
 		message: string;

@@ -10,7 +10,8 @@ import { openTasks } from '../services/tasks/open-tasks';
 import { peopleForTasks } from '../services/tasks/people-for-tasks';
 import { claimReproductions } from '../services/tasks/submission-views';
 import { tasksOfClaim } from '../services/tasks/tasks-of-claim';
-import { taskAction, typedIn } from './task-form';
+import { taskAction } from './task-form';
+import { typedIn } from './typed-in';
 
 /** The tasks of a claim's page, and the form for another one where the viewer opens tasks. */
 export async function claimTasks(ctx: GroupContext, claim: ClaimView) {

@@ -3,6 +3,7 @@ import type { Role } from '../../ledger/roles';
 import { requireRole } from '../auth/guards';
 import type { GroupContext } from '../context';
 import { failWith } from './action-error';
+import { typedIn } from './typed-in';
 
 /** The text of a field; empty when the form has none of that name. */
 type ReadField = (name: string) => string;
@@ -17,9 +18,7 @@ export function groupAction<T>(
 ) {
 	return async (event: RequestEvent) => {
 		const ctx = await requireRole(event, atLeast);
-		const data = await event.request.formData();
-		const typed: Record<string, string> = {};
-		for (const [name, value] of data) if (typeof value === 'string') typed[name] = value;
+		const typed = typedIn(await event.request.formData());
 		try {
 			return await work(ctx, (name) => typed[name] ?? '', event);
 		} catch (thrown) {

@@ -6,13 +6,7 @@ import { ServiceError } from '../errors';
 import type { RenamedFile } from '../services/tasks/submit-task';
 import { failWith } from './action-error';
 import { taskNumber } from './route-numbers';
-
-/** A form's text fields by name; of several with one name the last. */
-export function typedIn(data: FormData): Record<string, string> {
-	const typed: Record<string, string> = {};
-	for (const [name, value] of data) if (typeof value === 'string') typed[name] = value;
-	return typed;
-}
+import { typedIn } from './typed-in';
 
 /** What a page says of a form it sends back: which of its forms, what is wrong, what was typed. */
 export function refuseTyped(door: string, thrown: unknown, typed: Record<string, string>) {
@@ -42,6 +36,16 @@ export function taskAction<Answer>(
 			return refuseTyped(door, thrown, typedIn(data));
 		}
 	};
+}
+
+/** The version of the task that the page showed; undefined for a form that does not say. */
+export function seenIn(data: FormData): number | undefined {
+	return data.has('version') ? Number(data.get('version')) : undefined;
+}
+
+/** Why it is returned or cancelled. */
+export function reasonIn(data: FormData): string {
+	return String(data.get('reason') ?? '');
 }
 
 /** What is said once something was handed in; a file that keeps another name is told of. */

@@ -5,8 +5,15 @@ import { answering } from '$lib/server/http/page-errors';
 import { readUploads } from '$lib/server/http/read-uploads';
 import { countRequest } from '$lib/server/http/request-limits';
 import { taskNumber } from '$lib/server/http/route-numbers';
-import { submissionFields, submittedWords, taskAction, typedIn } from '$lib/server/http/task-form';
+import {
+	reasonIn,
+	seenIn,
+	submissionFields,
+	submittedWords,
+	taskAction
+} from '$lib/server/http/task-form';
 import { taskPage } from '$lib/server/http/task-page';
+import { typedIn } from '$lib/server/http/typed-in';
 import { parseInput } from '$lib/server/services/parse-input';
 import { acceptSubmission } from '$lib/server/services/tasks/accept-submission';
 import { cancelTask } from '$lib/server/services/tasks/cancel-task';
@@ -24,10 +31,6 @@ export const load: PageServerLoad = async (event) => {
 	const number = taskNumber(event.params.number);
 	return answering(() => taskPage(ctx, number));
 };
-
-/** The version of the task that the page showed; undefined for a form that does not say. */
-const seenIn = (data: FormData) => (data.has('version') ? Number(data.get('version')) : undefined);
-const reasonIn = (data: FormData) => String(data.get('reason') ?? '');
 
 export const actions: Actions = {
 	...discussionActions('task', async (ctx, { params }) => {

@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { TASK_LIMITS } from '../../src/lib/schemas/task-input';
-import { submittedWords } from '../../src/lib/server/http/task-form';
+import { submittedWords } from '../../src/lib/server/http/submit-action';
 import { evidenceFiles, submissions } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';

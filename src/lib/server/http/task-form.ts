@@ -1,9 +1,6 @@
 import { fail, type RequestEvent } from '@sveltejs/kit';
-import { TASK_LIMITS } from '../../schemas/task-input';
 import { requireRole } from '../auth/guards';
 import type { GroupContext } from '../context';
-import { ServiceError } from '../errors';
-import type { RenamedFile } from '../services/tasks/submit-task';
 import { failWith } from './action-error';
 import { taskNumber } from './route-numbers';
 import { typedIn } from './typed-in';
@@ -46,24 +43,4 @@ export function seenIn(data: FormData): number | undefined {
 /** Why it is returned or cancelled. */
 export function reasonIn(data: FormData): string {
 	return String(data.get('reason') ?? '');
-}
-
-/** What is said once something was handed in; a file that keeps another name is told of. */
-export function submittedWords({ renamed }: { readonly renamed: readonly RenamedFile[] }): string {
-	const names = renamed.map(({ from, to }) => `“${from}” is kept as “${to}”.`);
-	return ['Submitted. Somebody else accepts it or returns it.', ...names].join(' ');
-}
-
-/** The fields of a submission; a certificate's file counts where nothing is pasted. */
-export async function submissionFields(data: FormData): Promise<Record<string, string>> {
-	const typed = typedIn(data);
-	const file = data.get('certificateFile');
-	if (typed.kind !== 'certificate' || typed.certificate?.trim() || !(file instanceof File)) {
-		return typed;
-	}
-	if (file.size > TASK_LIMITS.certificate) {
-		const message = `A certificate has at most ${TASK_LIMITS.certificate.toLocaleString('en')} bytes.`;
-		throw new ServiceError('too-large', message, [{ field: 'certificate', message }]);
-	}
-	return { ...typed, certificate: await file.text() };
 }

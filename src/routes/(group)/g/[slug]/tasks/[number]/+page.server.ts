@@ -1,17 +1,10 @@
-import { editTaskInput, submissionInput } from '$lib/schemas/task-input';
+import { editTaskInput } from '$lib/schemas/task-input';
 import { requireRole } from '$lib/server/auth/guards';
 import { discussionActions } from '$lib/server/http/discussion-actions';
 import { answering } from '$lib/server/http/page-errors';
-import { readUploads } from '$lib/server/http/read-uploads';
-import { countRequest } from '$lib/server/http/request-limits';
 import { taskNumber } from '$lib/server/http/route-numbers';
-import {
-	reasonIn,
-	seenIn,
-	submissionFields,
-	submittedWords,
-	taskAction
-} from '$lib/server/http/task-form';
+import { submitAction } from '$lib/server/http/submit-action';
+import { reasonIn, seenIn, taskAction } from '$lib/server/http/task-form';
 import { taskPage } from '$lib/server/http/task-page';
 import { typedIn } from '$lib/server/http/typed-in';
 import { parseInput } from '$lib/server/services/parse-input';
@@ -22,7 +15,6 @@ import { findTask } from '$lib/server/services/tasks/find-task';
 import { releaseTask } from '$lib/server/services/tasks/release-task';
 import { returnSubmission } from '$lib/server/services/tasks/return-submission';
 import { startTask } from '$lib/server/services/tasks/start-task';
-import { submitTask } from '$lib/server/services/tasks/submit-task';
 import { takeTask } from '$lib/server/services/tasks/take-task';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -51,13 +43,5 @@ export const actions: Actions = {
 	edit: taskAction('edit', 'Saved.', (ctx, number, data) =>
 		editTask(ctx, number, parseInput(editTaskInput, typedIn(data)))
 	),
-	submit: taskAction(
-		'submit',
-		submittedWords,
-		async (ctx, number, data) => {
-			const input = parseInput(submissionInput, await submissionFields(data));
-			return submitTask(ctx, number, input, await readUploads(data));
-		},
-		(event) => countRequest(event, 'change')
-	)
+	submit: submitAction
 };

@@ -21,13 +21,13 @@ async function asked(event: RequestEvent) {
 }
 
 /** What is wrong beside what was typed, which the page then shows again. */
-function failTyped<K extends string>(thrown: unknown, key: K, typed: Record<string, string>) {
+function failTyped<K extends string, T>(thrown: unknown, key: K, typed: T) {
 	assertAnswerable(thrown);
 	const { message, issues } = thrown;
 	return fail(thrown.status, { message, issues, [key]: typed } as {
 		message: string;
 		issues: typeof issues;
-	} & Record<K, Record<string, string>>);
+	} & Record<K, T>);
 }
 
 /** Actions of a claim's page: comparing it with the paper, errata, what authors write. */

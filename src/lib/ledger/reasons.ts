@@ -31,7 +31,7 @@ export function showAtMost(distance: Rational): string {
 }
 
 /** `the quantum maximum`; an abbreviation keeps its capitals. */
-export function inSentence(quantity: string | undefined): string {
+function inSentence(quantity: string | undefined): string {
 	if (!quantity) return 'the quantity';
 	const keep = /^[A-Z][A-Z0-9]/.test(quantity);
 	return `the ${keep ? quantity : quantity.charAt(0).toLowerCase() + quantity.slice(1)}`;

@@ -6,7 +6,7 @@ export const ACTIVITY_PAGE_SIZE = 50;
 const day = z.union([z.literal(''), z.iso.date()]).catch('');
 
 /** What of a group's activity is shown, all of it in the URL. A part that can't be read is no filter. */
-export const activityQuery = z.object({
+const activityQuery = z.object({
 	kind: z.enum(['all', ...ACTIVITY_KINDS]).catch('all'),
 	/** A person's id; empty: anybody's. */
 	person: z.string().max(64).catch(''),

@@ -4,7 +4,7 @@ import { TASK_STATES, type TaskState } from '../ledger/tasks';
 export const OWN_TASKS_PAGE_SIZE = 50;
 
 /** State of the table of a person's own tasks, all of it in the URL. */
-export const ownTasksQuery = z.object({
+const ownTasksQuery = z.object({
 	/** `active`: all that are neither accepted nor cancelled. */
 	state: z
 		.enum(['active', 'all', ...TASK_STATES] as ['active', 'all', ...TaskState[]])

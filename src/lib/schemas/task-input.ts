@@ -85,7 +85,7 @@ export const TASK_PAGE_SIZE = 50;
 export const TASK_BOARD_SIZE = 200;
 
 /** State of the task table and board, all of it in the URL. */
-export const taskQuery = z.object({
+const taskQuery = z.object({
 	view: z.enum(['table', 'board']).catch('table'),
 	/** `active`: all that are neither accepted nor cancelled. */
 	state: z

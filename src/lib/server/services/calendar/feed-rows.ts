@@ -9,7 +9,7 @@ import { hashToken } from '../../ids';
 const PURPOSE = 'calendar';
 
 /** What stands in a feed's address, and what the database keeps of it. */
-export const feedToken = (id: string) => derivedToken(PURPOSE, id);
+const feedToken = (id: string) => derivedToken(PURPOSE, id);
 export const feedTokenHash = (id: string) => hashToken(feedToken(id));
 
 /** A person's standing addresses, their own tasks' first; those of groups they left are dead. */

@@ -17,7 +17,7 @@ const TEXT = [
 ];
 
 /** Text is never sent as what its ending says: a browser would run some of it. */
-export const TEXT_TYPE = 'text/plain; charset=utf-8';
+const TEXT_TYPE = 'text/plain; charset=utf-8';
 
 export type FileKind =
 	| { readonly kind: 'text'; readonly mediaType: typeof TEXT_TYPE }

@@ -7,7 +7,7 @@ import { ServiceError } from '../../errors';
 const MOST_FORMER = 10;
 
 /** @throws ServiceError conflict, beside the field `slug` */
-export function refuseAddress(message: string): never {
+function refuseAddress(message: string): never {
 	throw new ServiceError('conflict', message, [{ field: 'slug', message }]);
 }
 

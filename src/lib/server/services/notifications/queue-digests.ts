@@ -6,7 +6,7 @@ import { newId } from '../../ids';
 import { messageIdOf } from '../../mail/message-id';
 
 /** Early enough for the morning in Europe, after midnight in the Americas. Common practice, no source. */
-export const DIGEST_HOUR_UTC = 6;
+const DIGEST_HOUR_UTC = 6;
 
 /**
  * Puts what waits for a digest into one mail for each person: once a day, from six in the morning

@@ -4,8 +4,7 @@ import type { Figure } from '../mail-content';
 const RELATION_SIGNS = { '=': '', '<=': '≤ ', '>=': '≥ ' } as const;
 
 /** As printed, with the sign of a bound. */
-const printedValue = ({ relation, printed }: ClaimFacts) =>
-	RELATION_SIGNS[relation] + printed;
+const printedValue = ({ relation, printed }: ClaimFacts) => RELATION_SIGNS[relation] + printed;
 
 /** Claimed and recomputed under one another; a bound carries what it is worth. */
 export function comparedFigures(claim: ClaimFacts): readonly Figure[] {

@@ -23,6 +23,8 @@ const environment = {
 	PORT: String(port),
 	ORIGIN: origin,
 	DATABASE_URL: `file:${DATABASE}`,
+	// The demo's accounts and its mail are open to whoever reaches it.
+	HOST: process.env.HOST ?? '127.0.0.1',
 	MERESTONE_DEMO: '1',
 	MERESTONE_LOG: process.env.MERESTONE_LOG ?? 'warn'
 };

@@ -121,4 +121,31 @@ describe('compareDigits', () => {
 			)
 		);
 	});
+
+	it('shows no digit of an exact value that is not a digit of it', () => {
+		const printed = fc.constantFrom('0.3333', '33.3', '-0.6667', '0.999999999999', '1', '0.5(1)');
+		fc.assert(
+			fc.property(
+				printed,
+				fc.bigInt(-(10n ** 12n), 10n ** 12n),
+				fc.bigInt(1n, 10n ** 12n),
+				(text, n, d) => {
+					const found = comparisonOf(text, `${n}/${d}`, `${n}/${d}`);
+					const shown = (found.value ?? []).map((run) => run.text).join('');
+					const [, sign, whole = '', behind = ''] =
+						/^(\u2212?)(\d+)(?:\.(\d+))?$/.exec(shown) ?? [];
+					// Long division, on integers: an independent way to the same digits.
+					const size = n < 0n ? -n : n;
+					expect(sign).toBe(n < 0n ? '\u2212' : '');
+					expect(whole).toBe(String(size / d));
+					let rest = size % d;
+					for (const digit of behind) {
+						expect(digit).toBe(String((rest * 10n) / d));
+						rest = (rest * 10n) % d;
+					}
+					expect(found.goesOn).toBe(rest !== 0n);
+				}
+			)
+		);
+	});
 });

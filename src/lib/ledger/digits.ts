@@ -1,7 +1,7 @@
 import { parseRational, toDecimal, type Rational } from '../nonlocality/exact/rational';
 import type { VerdictStatus } from './claim';
 import { readDecimalForm } from './decimal-form';
-import { sharedDigits, withMinusSign } from './figures';
+import { BOUND_PLACES, cutDecimal, sharedDigits, withMinusSign, type CutDecimal } from './figures';
 import { plainText, sliceText } from './printed-text';
 import type { Verdict } from './verdict';
 
@@ -18,6 +18,8 @@ export interface DigitComparison {
 	readonly upper: readonly DigitRun[] | null;
 	/** The recomputed digits that are known: where it is exact, or both sides share them. */
 	readonly value: readonly DigitRun[] | null;
+	/** `value` is exact and has further digits: it was cut, never rounded. */
+	readonly goesOn: boolean;
 	/** In Agreement: the recomputed value rounded to the digits of the claim, when that is one. */
 	readonly rounded: string | null;
 }
@@ -43,19 +45,20 @@ export function compareDigits(input: DigitInput): DigitComparison {
 	const { printed, status, enclosure } = input;
 	const shownPrinted = withMinusSign(printed.trim());
 	const claim = claimDigits(input);
+	const { digits: known, goesOn } = knownDigits(enclosure, claim?.places ?? 0);
 	const whole = (tone: DigitRun['tone']): DigitRun[] => [{ text: shownPrinted, tone }];
 	if (!enclosure || !claim) {
 		return {
 			claimed: whole(status === 'discrepancy' ? 'differs' : 'same'),
 			lower: enclosure && quiet(enclosure.lower),
 			upper: enclosure && quiet(enclosure.upper),
-			value: enclosure && quiet(knownDigits(enclosure)),
+			value: quiet(known),
+			goesOn,
 			rounded: null
 		};
 	}
 	const shared = status === 'discrepancy' ? sharedLength(claim, enclosure) : claim.decimal.length;
 	const same = claim.decimal.slice(0, shared);
-	const known = knownDigits(enclosure);
 	// Where rounding changes a digit the full value follows the rounded one, all of it quiet.
 	const rounded = status === 'agreement' ? roundedAlike(enclosure, claim) : null;
 	const against = (text: string | null) => (text === null ? null : matchRuns(text, same));
@@ -69,6 +72,7 @@ export function compareDigits(input: DigitInput): DigitComparison {
 		lower: against(enclosure.lower),
 		upper: against(enclosure.upper),
 		value: known?.startsWith(rounded ?? '') ? against(known) : quiet(known),
+		goesOn,
 		rounded: rounded === null ? null : withMinusSign(rounded)
 	};
 }
@@ -111,8 +115,23 @@ function readForm(number: ReturnType<typeof plainText>) {
 	}
 }
 
-function knownDigits({ lower, upper }: NonNullable<Verdict['enclosure']>): string | null {
-	return lower !== null && upper !== null ? sharedDigits(lower, upper) : null;
+/** An exact value's digits come from the fraction itself, not from its ends rounded outward. */
+function knownDigits(
+	enclosure: Verdict['enclosure'],
+	claimPlaces: number
+): { readonly digits: string | null; readonly goesOn: boolean } {
+	if (!enclosure) return NOTHING_KNOWN;
+	const { lower, upper, exact } = enclosure;
+	if (exact !== null) return exactDigits(exact, claimPlaces) ?? NOTHING_KNOWN;
+	if (lower === null || upper === null) return NOTHING_KNOWN;
+	return { digits: sharedDigits(lower, upper), goesOn: false };
+}
+
+const NOTHING_KNOWN = { digits: null, goesOn: false } as const;
+
+function exactDigits(exact: string, claimPlaces: number): CutDecimal | null {
+	const value = parseRational(exact);
+	return value && cutDecimal(value, Math.max(BOUND_PLACES, claimPlaces + 1));
 }
 
 /** Leading digits that agree with `same`, then the rest. */
@@ -123,10 +142,10 @@ function matchRuns(text: string, same: string): DigitRun[] {
 }
 
 function roundedAlike(
-	{ lower, upper }: NonNullable<Verdict['enclosure']>,
+	{ lower, upper, exact }: NonNullable<Verdict['enclosure']>,
 	claim: ClaimDigits
 ): string | null {
-	const [low, high] = [toRational(lower), toRational(upper)];
+	const [low, high] = [toRational(exact ?? lower), toRational(exact ?? upper)];
 	if (!low || !high) return null;
 	const sides = [low, high].map((side) => toDecimal(side, claim.places, 'nearest'));
 	return sides.every((side) => side === claim.decimal) ? claim.decimal : null;

@@ -106,13 +106,27 @@ export function sharedDigits(a: string, b: string): string | null {
 	return /\.\d/.test(known) ? known : null;
 }
 
+export interface CutDecimal {
+	readonly digits: string;
+	/** Further digits follow. */
+	readonly goesOn: boolean;
+}
+
+/** The first digits of an exact value, cut and not rounded: every one of them is a digit of it. */
+export function cutDecimal(exact: string | Rational, places: number): CutDecimal {
+	const value = rationalOf(exact);
+	const whole = finiteDecimal(value, places);
+	if (whole !== null) return { digits: whole, goesOn: false };
+	const size = toDecimal(value.abs(), places, 'down');
+	return { digits: value.s < 0n ? `-${size}` : size, goesOn: true };
+}
+
 /** A fraction with its decimal: `4/3 = 1.333333333...`; an integer or short decimal as it is. */
 export function showExact(exact: string | Rational, places: number = BOUND_PLACES): string {
 	const value = rationalOf(exact);
-	const whole = finiteDecimal(value, places);
-	if (whole !== null) return whole;
-	const towardsZero = value.s < 0n ? 'up' : 'down';
-	return `${typeof exact === 'string' ? exact : value.toFraction()} = ${toDecimal(value, places, towardsZero)}…`;
+	const { digits, goesOn } = cutDecimal(value, places);
+	if (!goesOn) return digits;
+	return `${typeof exact === 'string' ? exact : value.toFraction()} = ${digits}…`;
 }
 
 /** For reading: a true minus sign instead of a hyphen in front of a digit or between spaces. */

@@ -79,4 +79,40 @@ describe('DigitByDigit', () => {
 		const { container } = render(DigitByDigit, { printed: '2', relation: '=', verdict });
 		expect(rowsOf(container)).toHaveLength(2);
 	});
+
+	it('shows a fraction as the fraction, its digits cut where they go on', () => {
+		const verdict = makeVerdict({
+			status: 'discrepancy',
+			reading: { printed: '33.3', low: '33.25', high: '33.35', exact: false, text: '' },
+			enclosure: {
+				lower: '0.33333333333333',
+				upper: '0.33333333333334',
+				exact: '1/3',
+				worth: 'guaranteed',
+				lowerLabel: 'an exact linear programme',
+				upperLabel: 'an exact linear programme'
+			}
+		});
+		const { container } = render(DigitByDigit, { printed: '33.3', relation: '=', verdict });
+		const rows = rowsOf(container);
+		expect(rows[1]).toContain('Recomputed (exact) 0.333333333… = 1/3');
+		expect(container.textContent).not.toContain('34');
+	});
+
+	it('shows a fraction that ends whole, beside it', () => {
+		const verdict = makeVerdict({
+			reading: { printed: '0.75', low: '0.745', high: '0.755', exact: false, text: '' },
+			enclosure: {
+				lower: '0.75',
+				upper: '0.75',
+				exact: '3/4',
+				worth: 'guaranteed',
+				lowerLabel: 'a deterministic strategy',
+				upperLabel: 'all deterministic strategies'
+			}
+		});
+		const { container } = render(DigitByDigit, { printed: '0.75', relation: '=', verdict });
+		expect(rowsOf(container)).toHaveLength(2);
+		expect(rowsOf(container)[1]).toContain('Recomputed 0.75 = 3/4');
+	});
 });

@@ -61,15 +61,16 @@ const quietRest = (text: string): DigitRun[] => (text === '' ? [] : [{ text, ton
 function exactShown(
 	printed: string,
 	exact: string,
-	{ rounded, value }: ReturnType<typeof compareDigits>
+	{ rounded, value, goesOn }: ReturnType<typeof compareDigits>
 ): RecomputedShown {
 	const decimal = value ?? [];
 	if (!exact.includes('/')) return only(rounded === null ? decimal : bold(rounded));
 	const shown = textOf(decimal);
-	const cut = shown.length > SHOWN_OF_FRACTION ? `${shown.slice(0, SHOWN_OF_FRACTION)}…` : shown;
+	const isCut = goesOn || shown.length > SHOWN_OF_FRACTION;
+	const cut = isCut ? `${shown.slice(0, SHOWN_OF_FRACTION)}…` : shown;
 	if (printed.trim() === exact) return only(bold(exact), [cut]);
 	return rounded === null
-		? only(shown === cut ? decimal : cutRuns(decimal), [exact])
+		? only(isCut ? cutRuns(decimal) : decimal, [exact])
 		: only(bold(rounded), [exact]);
 }
 

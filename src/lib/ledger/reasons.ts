@@ -2,8 +2,16 @@ import { toDecimal, type Rational } from '../nonlocality/exact/rational';
 import { sizeOf, type ReadInterval } from './accepted-set';
 import type { Relation } from './claim';
 import { isExact, type Enclosure } from './enclosure';
-import { placesOfGap, rationalOf, showEnclosure, showExact, withMinusSign } from './figures';
+import {
+	finiteDecimal,
+	placesOfGap,
+	rationalOf,
+	showEnclosure,
+	showExact,
+	withMinusSign
+} from './figures';
 import { isNamedReproduction } from './reproductions';
+import { LONGEST_PRINTED } from './stated-value';
 import { NO_SOLVER, distanceTo, type Judgement, type RecomputationState } from './judgement';
 
 export interface ReasonInput {
@@ -110,14 +118,36 @@ function agreement(enclosure: Enclosure, input: ReasonInput): string {
 	const worth = worthOf(enclosure);
 	const fact = `${capital} ${range(enclosure)}`;
 	if (relation !== '=') {
-		const slack = slackOf(enclosure, input);
-		const loose = slack ? `, with a slack of ${showMoreThan(slack)}` : '';
-		return `${fact}, so the claimed ${relation === '<=' ? 'upper' : 'lower'} bound holds${loose}.${worth}`;
+		const side = relation === '<=' ? 'upper' : 'lower';
+		return `${fact}, so the claimed ${side} bound holds${howWell(enclosure, reading, relation)}.${worth}`;
 	}
 	if (reading.exact && isExact(enclosure)) return `${fact}, as claimed: proved.`;
 	if (!reading.exact) return `${fact}, within what the printed digits allow.${worth}`;
 	const relative = sizeOf(reading.value).equals(1) ? '' : ' of its size';
 	return `${fact}, which is the claimed value to 1e-7${relative}.${worth}`;
+}
+
+/** A printed number has at most so many digits. */
+const inFull = (printed: Rational) => finiteDecimal(printed, LONGEST_PRINTED) ?? showExact(printed);
+
+/**
+ * How well a claimed bound holds: with slack, as printed, or only because its last digit may have
+ * been rounded. The last is said with both numbers, since the printed one by itself would not hold.
+ */
+function howWell(enclosure: Enclosure, reading: ReadInterval, relation: '<=' | '>='): string {
+	const slack = slackOf(enclosure, { reading, relation });
+	if (slack) return `, with a slack of ${showMoreThan(slack)}`;
+	const { value } = reading;
+	const known = relation === '<=' ? enclosure.upper : enclosure.lower;
+	if (!known || (relation === '<=' ? known.compare(value) : value.compare(known)) <= 0) return '';
+	if (reading.exact) return ` to 1e-7${sizeOf(value).equals(1) ? '' : ' of its size'}`;
+	const printed = inFull(value);
+	const end = inFull(relation === '<=' ? reading.high : reading.low);
+	const stands = `${printed} stands for ${end} or ${relation === '<=' ? 'less' : 'more'}`;
+	const beyond = distanceTo({ ...reading, low: value, high: value }, relation, enclosure);
+	return beyond
+		? ` to the digits printed (${stands}); exactly ${printed} is ${showMoreThan(beyond)} too ${relation === '<=' ? 'low' : 'high'}`
+		: ` to the digits printed (${stands}); whether exactly ${printed} holds is not settled`;
 }
 
 /** By how much at least a claimed bound is looser than what is known; null when by nothing. */

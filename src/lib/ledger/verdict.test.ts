@@ -120,6 +120,61 @@ describe('deriveVerdict', () => {
 		expect(verdictOf('0.2509', '<=', [I3322]).slack).toBeUndefined();
 	});
 
+	it.each<[string, Relation, Evidence, string]>([
+		[
+			'0.437',
+			'>=',
+			evidence('0.4369435', '0.4369445'),
+			'lies between 0.4369435 and 0.4369445, so the claimed lower bound holds to the digits printed (0.437 stands for 0.4365 or more); exactly 0.437 is more than 0.00005 too high.'
+		],
+		[
+			'2.83',
+			'>=',
+			CHSH,
+			'holds to the digits printed (2.83 stands for 2.825 or more); exactly 2.83 is more than 0.001 too high.'
+		],
+		[
+			'2.828',
+			'<=',
+			CHSH,
+			'holds to the digits printed (2.828 stands for 2.8285 or less); exactly 2.828 is more than 0.0004 too low.'
+		],
+		[
+			'0.2509',
+			'<=',
+			I3322,
+			'holds to the digits printed (0.2509 stands for 0.25095 or less); whether exactly 0.2509 holds is not settled.'
+		],
+		['2.82843', '<=', CHSH, 'so the claimed upper bound holds.'],
+		['2.8284', '>=', CHSH, 'so the claimed lower bound holds.'],
+		['2*sqrt(2)', '<=', CHSH, 'so the claimed upper bound holds to 1e-7 of its size.']
+	])('says how well %s as %s holds', (printed, relation, known, ending) => {
+		const { status, reason } = verdictOf(printed, relation, [known]);
+		expect(status).toBe('agreement');
+		expect(reason.endsWith(ending) ? ending : reason).toBe(ending);
+	});
+
+	it('never says a bound simply holds that the printed number would not', () => {
+		fc.assert(
+			fc.property(
+				fc.integer({ min: -9999, max: 9999 }),
+				fc.integer({ min: -99_999_999, max: 99_999_999 }),
+				fc.integer({ min: 0, max: 50_000 }),
+				fc.constantFrom<Relation>('<=', '>='),
+				(printed, lower, width, relation) => {
+					const text = (printed / 1000).toFixed(3);
+					const known = evidence(`${lower}/10000000`, `${lower + width}/10000000`);
+					const { status, reason } = verdictOf(text, relation, [known]);
+					if (status !== 'agreement') return;
+					// In integers of the seventh place.
+					const value = printed * 10_000;
+					const strictly = relation === '<=' ? lower + width <= value : lower >= value;
+					expect(reason.includes('to the digits printed')).toBe(!strictly);
+				}
+			)
+		);
+	});
+
 	it.each<[RecomputationState, string, RegExp]>([
 		[{ kind: 'not-run' }, 'not-run', /Not recomputed yet/],
 		[{ kind: 'running' }, 'running', /is running/],

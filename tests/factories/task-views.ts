@@ -78,6 +78,7 @@ export function makeSubmission(over: Partial<SubmissionView> = {}): SubmissionVi
 		decidedBy: null,
 		decidedAt: null,
 		decision: '',
+		decisionHtml: '',
 		current: true,
 		...over
 	};
@@ -88,6 +89,8 @@ export function makeTaskView(over: Partial<TaskView> = {}): TaskView {
 		...makeTaskRow(),
 		submissions: [],
 		instructionsHtml: '<p>Level 3 with another solver.</p>',
+		reasonHtml: '',
+		own: false,
 		may: {
 			take: false,
 			start: false,

@@ -10,3 +10,8 @@ export function hasRole(role: Role | null | undefined, atLeast: Role): boolean {
 export function rolesFrom(atLeast: Role): Role[] {
 	return ROLES.filter((role) => hasRole(role, atLeast));
 }
+
+/** `an observer`, `a member`. */
+export function roleWithArticle(role: Role): string {
+	return `${/^[aeiou]/.test(role) ? 'an' : 'a'} ${role}`;
+}

@@ -90,7 +90,10 @@ export interface SubmissionView {
 	readonly at: string;
 	readonly decidedBy: PersonView | null;
 	readonly decidedAt: string | null;
+	/** Why it was returned, or what convinced whoever accepted it. */
 	readonly decision: string;
+	/** The same as safe HTML. */
+	readonly decisionHtml: string;
 	/** False when the claim is about something else since. */
 	readonly current: boolean;
 }
@@ -100,11 +103,17 @@ export interface ClaimReproduction extends SubmissionView {
 	readonly taskNumber: number;
 }
 
-/** A task's page: its row, its tries (oldest first), and what the viewer may do. */
-export interface TaskView extends TaskRow {
-	readonly submissions: readonly SubmissionView[];
-	/** Formulas and Markdown of the instructions, safe HTML made by the server. */
+/** A task as a claim's page shows it: what is asked and why it came back, as safe HTML. */
+export interface ClaimTask extends TaskRow {
 	readonly instructionsHtml: string;
+	readonly reasonHtml: string;
+}
+
+/** A task's page: its row, its tries (oldest first), and what the viewer may do. */
+export interface TaskView extends ClaimTask {
+	readonly submissions: readonly SubmissionView[];
+	/** The viewer has it. */
+	readonly own: boolean;
 	readonly may: {
 		readonly take: boolean;
 		readonly start: boolean;
@@ -170,6 +179,8 @@ export interface AuthorMessageView {
 	readonly name: string;
 	readonly email: string;
 	readonly message: string;
+	/** The same as safe HTML. */
+	readonly messageHtml: string;
 	readonly at: string;
 	readonly handledBy: PersonView | null;
 	readonly handledAt: string | null;

@@ -44,4 +44,22 @@ describe('Submission', () => {
 		expect(getByRole('link', { name: 'log.txt' }).getAttribute('href')).toBe('/g/a/files/f1');
 		expect(container.textContent).toMatch(/812\u2009bytes[\s\S]*ab12/);
 	});
+
+	it('has no empty list beside words only, and shows what was said on accepting', () => {
+		const { container } = render(Submission, {
+			...props,
+			submission: makeSubmission({
+				kind: 'statement',
+				state: 'accepted',
+				program: '',
+				programVersion: '',
+				method: '',
+				decidedBy: { id: 'mae', name: 'Mae Maintainer' },
+				decision: '*Same* digits',
+				decisionHtml: '<p><em>Same</em> digits</p>'
+			})
+		});
+		expect(container.querySelector('dl')).toBeNull();
+		expect(container.querySelector('em')?.textContent).toBe('Same');
+	});
 });

@@ -40,7 +40,7 @@ export function seenIn(data: FormData): number | undefined {
 	return data.has('version') ? Number(data.get('version')) : undefined;
 }
 
-/** Why it is returned or cancelled. */
+/** Why it is returned, cancelled or accepted. */
 export function reasonIn(data: FormData): string {
 	return String(data.get('reason') ?? '');
 }

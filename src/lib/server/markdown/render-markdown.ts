@@ -1,11 +1,10 @@
 import { createHash } from 'node:crypto';
-import { LONGEST_COMMENT } from '../../ledger/comments';
 import { findMentions, type Handle, type Mention } from '../../ledger/mentions';
 import { Recent } from '../recent';
 import { finishHtml } from './finish-html';
 import { htmlTree, printHtml } from './html-tree';
-import { isWithinBudget } from './markup-budget';
 import { markdownTree, plainTexts } from './markdown-tree';
+import { isReadable } from './readable';
 
 const cache = new Recent<string>(500);
 
@@ -40,10 +39,6 @@ function render(text: string, mentions: readonly Handle[]): string {
 		return asTyped(text);
 	}
 	return printHtml({ ...tree, children: finishHtml(tree.children, mentions) });
-}
-
-function isReadable(text: string): boolean {
-	return text.length <= LONGEST_COMMENT && isWithinBudget(text);
 }
 
 function asTyped(value: string): string {

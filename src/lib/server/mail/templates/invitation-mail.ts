@@ -1,4 +1,4 @@
-import type { Role } from '../../../ledger/roles';
+import { roleWithArticle, type Role } from '../../../ledger/roles';
 import type { MailContent } from '../mail-content';
 
 export interface InvitationFacts {
@@ -21,14 +21,13 @@ const ROLE_WORDS: Readonly<Record<Role, string>> = {
 export function invitationMail(facts: InvitationFacts): MailContent {
 	const { invitedBy, groupName, role, expiresAt, link } = facts;
 	const until = `${expiresAt.toISOString().slice(0, 16).replace('T', ' ')} UTC`;
-	const article = /^[aeiou]/.test(role) ? 'an' : 'a';
 	return {
 		subject: `${invitedBy} invites you to ${groupName}`,
 		tag: { text: 'Invitation', tone: 'plain' },
 		heading: `Join ${groupName}`,
 		paragraphs: [
 			`${invitedBy} invites you to the reading group ${groupName} on Merestone, a ledger of bounds that papers claim for Bell inequalities, each recomputed by the server.`,
-			`You would join as ${article} ${role}, who ${ROLE_WORDS[role]}.`
+			`You would join as ${roleWithArticle(role)}, who ${ROLE_WORDS[role]}.`
 		],
 		quote: facts.description ? { title: 'About the group', text: facts.description } : null,
 		facts: [

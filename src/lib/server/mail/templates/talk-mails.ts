@@ -1,3 +1,4 @@
+import { plainText } from '../../markdown/plain-text';
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
 import { notificationText, placeOf } from '../../services/notifications/notification-text';
 import { claimName, claimRows } from './claim-parts';
@@ -14,7 +15,7 @@ export function commentBody(facts: NotificationFacts): MailBody | null {
 		tag: { text: mention ? 'Mention' : 'Comment', tone: 'plain' },
 		heading: mention ? `${who} mentions you on ${place}` : `${who} commented on ${place}`,
 		paragraphs: [],
-		quote: { title: who, text: comment.body },
+		quote: { title: who, text: plainText(comment.body) },
 		facts: claimRows(claim),
 		actionLabel: 'Read and answer'
 	};
@@ -28,7 +29,7 @@ export function transcriptionBody(facts: NotificationFacts): MailBody | null {
 		tag: { text: 'Transcription', tone: 'plain' },
 		heading: claim.title,
 		paragraphs: [notificationText(facts).text],
-		quote: facts.text.trim() ? { title: 'What was found', text: facts.text } : null,
+		quote: facts.text.trim() ? { title: 'What was found', text: plainText(facts.text) } : null,
 		facts: claimRows(claim),
 		actionLabel: `Open claim ${claim.number}`
 	};
@@ -60,7 +61,7 @@ export function authorMessageBody(facts: NotificationFacts): MailBody | null {
 		paragraphs: [
 			`${message.name} <${message.email}> wrote about the published claim. Nobody has verified the name or the address.`
 		],
-		quote: { title: 'The message', text: message.message },
+		quote: { title: 'The message', text: plainText(message.message) },
 		facts: claimRows(claim),
 		actionLabel: claim ? `Open claim ${claim.number}` : 'Open the group'
 	};

@@ -1,5 +1,6 @@
 import { dayWords } from '../../../ledger/day-words';
 import { TASK_KIND_LABELS } from '../../../ledger/tasks';
+import { plainText } from '../../markdown/plain-text';
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
 import { notificationText } from '../../services/notifications/notification-text';
 import type { Tone } from '../mail-content';
@@ -41,7 +42,8 @@ function wordsOf({ kind, task }: NotificationFacts): TaskWords | null {
 			return {
 				state: 'accepted',
 				tone: 'agreement',
-				next: 'What was found counts towards the claim’s verdict where the task asked for a value.'
+				next: 'What was found counts towards the claim’s verdict where the task asked for a value.',
+				quoted: 'What convinced whoever accepted it'
 			};
 		case 'task-cancelled':
 			return {
@@ -72,7 +74,7 @@ export function taskBody(facts: NotificationFacts): MailBody | null {
 	const words = wordsOf(facts);
 	if (!task || !words) return null;
 	const kind = TASK_KIND_LABELS[task.kind];
-	const { text, quoted } = { text: facts.text.trim(), quoted: words.quoted };
+	const { text, quoted } = { text: plainText(facts.text), quoted: words.quoted };
 	return {
 		subject: `Task ${task.number} ${words.state}: ${kind}, ${claimName(claim)}`,
 		tag: { text: `Task ${task.number}: ${words.state}`, tone: words.tone },
@@ -91,5 +93,7 @@ export function taskBody(facts: NotificationFacts): MailBody | null {
 /** Whoever has to do it reads what is to do. */
 function instructionsOf({ kind, task }: NotificationFacts): MailBody['quote'] {
 	const wanted = kind === 'task-assigned' || kind === 'task-due-soon';
-	return wanted && task?.instructions ? { title: 'Instructions', text: task.instructions } : null;
+	return wanted && task?.instructions
+		? { title: 'Instructions', text: plainText(task.instructions) }
+		: null;
 }

@@ -4,6 +4,7 @@ import type { AuthorMessageView } from '../../../schemas/task-views';
 import type { GroupContext } from '../../context';
 import { authorMessages, users } from '../../db/schema';
 import { ServiceError } from '../../errors';
+import { renderMarkdown } from '../../markdown/render-markdown';
 import { findClaim } from '../claims/find-claim';
 
 /** More than a claim has room for; the oldest are dealt with long before. */
@@ -30,6 +31,7 @@ export async function listAuthorMessages(
 		name: message.name,
 		email: message.email,
 		message: message.message,
+		messageHtml: renderMarkdown(message.message),
 		at: message.sentAt.toISOString(),
 		handledBy: message.handledBy ? { id: message.handledBy, name: handler ?? '' } : null,
 		handledAt: message.handledAt?.toISOString() ?? null

@@ -1,5 +1,6 @@
 import { dayWords } from '../../../ledger/day-words';
 import { TASK_KIND_LABELS } from '../../../ledger/tasks';
+import { plainText } from '../../markdown/plain-text';
 import type { NotificationFacts } from './notification-facts';
 
 export interface NotificationText {
@@ -74,19 +75,21 @@ function detail({ kind, claim, task, comment, message, text }: NotificationFacts
 	switch (kind) {
 		case 'mention':
 		case 'comment':
-			return comment === null || comment.removed ? 'The comment was removed.' : comment.body;
+			return comment === null || comment.removed
+				? 'The comment was removed.'
+				: plainText(comment.body);
 		case 'author-message':
-			return message?.message ?? '';
+			return plainText(message?.message ?? '');
 		case 'task-returned':
 		case 'task-cancelled':
 		case 'transcription':
-			return text || about;
+			return plainText(text) || about;
 		case 'task-due-soon':
 		case 'task-overdue':
 		case 'task-assigned':
 		case 'task-submitted':
 		case 'task-accepted':
-			return text || asked;
+			return plainText(text) || asked;
 		default:
 			return about;
 	}

@@ -7,6 +7,7 @@ import { deriveClaim } from '../claims/derive-claim';
 import type { ClaimRow } from '../claims/find-claim';
 import { quantityKey } from '../claims/quantity-key';
 import type { SubmissionRecord } from './find-task';
+import { readReason } from './read-reason';
 import { changeTask } from './step-task';
 import { tell } from './tell';
 import { tellAgreement } from './tell-agreement';
@@ -15,25 +16,28 @@ import { tellAgreement } from './tell-agreement';
  * Accepts what was submitted; a value found enters the claim's verdict at once. When a certificate
  * excludes it, it is marked as contradicted and its task reopened in the same transaction.
  * @param seen the task's version on the page it was decided on: what came later is not accepted unread
+ * @param comment what convinced whoever accepts; may be empty
  * @returns whether the task is reopened
  */
 export async function acceptSubmission(
 	ctx: GroupContext,
 	number: number,
-	seen?: number
+	seen?: number,
+	comment = ''
 ): Promise<{ contradicted: boolean }> {
+	const said = readReason(comment);
 	let contradicted = false;
 	await changeTask(
 		ctx,
 		number,
 		{ kind: 'accept' },
-		{ audit: 'task.accepted', columns: { reason: '' }, seen },
+		{ audit: 'task.accepted', columns: { reason: '' }, seen, after: said ? { comment: said } : {} },
 		async (tx, { task, submission }) => {
 			if (!submission) throw new ServiceError('conflict', 'There is nothing to accept.');
 			await requireCurrent(tx, submission);
 			await tx
 				.update(submissions)
-				.set({ state: 'accepted', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: '' })
+				.set({ state: 'accepted', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: said })
 				.where(eq(submissions.id, submission.id));
 			const before = await findAbout(tx, task.claimId);
 			await deriveClaim(tx, task.claimId, ctx.now());
@@ -43,7 +47,7 @@ export async function acceptSubmission(
 				.where(eq(tasks.id, task.id));
 			contradicted = after?.state !== 'accepted';
 			if (contradicted) return;
-			await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy]);
+			await tell(tx, ctx, 'task-accepted', task, [submission.submittedBy], said);
 			await tellAgreement(tx, ctx, 'task-accepted', task, before, submission.submittedBy);
 		}
 	);

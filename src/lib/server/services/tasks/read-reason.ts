@@ -6,6 +6,6 @@ export function readReason(reason: string): string {
 	const text = reason.trim();
 	if (text.length <= TASK_LIMITS.instructions) return text;
 	const limit = TASK_LIMITS.instructions.toLocaleString('en');
-	const message = `A reason has at most ${limit} characters; this one has ${text.length.toLocaleString('en')}.`;
+	const message = `At most ${limit} characters fit here; this text has ${text.length.toLocaleString('en')}.`;
 	throw new ServiceError('invalid', message, [{ field: 'reason', message }]);
 }

@@ -7,12 +7,11 @@ import type { TaskView } from '../../../schemas/task-views';
 import type { GroupContext } from '../../context';
 import { tasks } from '../../db/schema';
 import { ServiceError } from '../../errors';
-import { renderMarkdown } from '../../markdown/render-markdown';
 import { mayConfirm } from '../transcriptions/may-confirm';
 import { findTask, latestSubmission, taskFacts } from './find-task';
 import { asActor } from './step-task';
 import { submissionViews } from './submission-views';
-import { selectTaskRows, taskRow } from './task-rows';
+import { claimTask, selectTaskRows } from './task-rows';
 
 /** A task's page. @throws ServiceError not-found, also for a task of another group */
 export async function showTask(ctx: GroupContext, number: number): Promise<TaskView> {
@@ -27,9 +26,9 @@ export async function showTask(ctx: GroupContext, number: number): Promise<TaskV
 	const answers = task.kind !== 'confirm-transcription' || compares;
 	const steps = allowed(ctx, facts);
 	return {
-		...taskRow(selected, ctx.now()),
+		...claimTask(selected, ctx.now()),
 		submissions: await submissionViews(read, task, claim),
-		instructionsHtml: renderMarkdown(task.instructions),
+		own: task.assigneeId === ctx.actor.id,
 		may: { ...steps, take: steps.take && answers, submit: steps.submit && answers },
 		ownSubmission: facts.state === 'submitted' && facts.submittedBy === ctx.actor.id,
 		submissionKinds: SUBMISSION_KINDS_OF[task.kind],

@@ -8,6 +8,7 @@ import type {
 } from '../../../schemas/task-views';
 import type { Reader } from '../../db/client';
 import { evidenceFiles, submissions, tasks, transcriptionChecks, users } from '../../db/schema';
+import { renderMarkdown } from '../../markdown/render-markdown';
 import type { ClaimRow } from '../claims/find-claim';
 import { isOfInequality, quantityKey } from '../claims/quantity-key';
 import { exactText, mapSides, readMap, showSides } from '../inequalities/affine';
@@ -110,6 +111,7 @@ function viewOf(
 		decidedBy: decidedBy === null ? null : { id: decidedBy, name: decider ?? '' },
 		decidedAt: submission.decidedAt?.toISOString() ?? null,
 		decision: submission.decision,
+		decisionHtml: renderMarkdown(submission.decision),
 		current
 	};
 }

@@ -1,9 +1,10 @@
 import { eq, type SQL } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
 import { dayOf, isOverdue } from '../../../ledger/tasks';
-import type { TaskRow } from '../../../schemas/task-views';
+import type { ClaimTask, TaskRow } from '../../../schemas/task-views';
 import type { Reader } from '../../db/client';
 import { claims, groups, inequalities, references, tasks, users } from '../../db/schema';
+import { renderMarkdown } from '../../markdown/render-markdown';
 import { claimSubject } from '../inequalities/subject-view';
 
 export const assignees = alias(users, 'assignees');
@@ -68,5 +69,15 @@ export function taskRow(selected: SelectedTask, now: Date): TaskRow {
 			reference,
 			locator: claim.locator
 		}
+	};
+}
+
+/** The same with its texts set, for pages that show few. */
+export function claimTask(selected: SelectedTask, now: Date): ClaimTask {
+	const row = taskRow(selected, now);
+	return {
+		...row,
+		instructionsHtml: renderMarkdown(row.instructions),
+		reasonHtml: renderMarkdown(row.reason)
 	};
 }

@@ -32,7 +32,7 @@ export const actions: Actions = {
 	start: taskAction('start', 'Begun. Submit what you find below.', startTask),
 	release: taskAction('release', 'Given back: any member can take it.', releaseTask),
 	accept: taskAction('accept', 'Accepted.', (ctx, number, data) =>
-		acceptSubmission(ctx, number, seenIn(data))
+		acceptSubmission(ctx, number, seenIn(data), reasonIn(data))
 	),
 	return: taskAction('return', 'Returned, with your reason.', (ctx, number, data) =>
 		returnSubmission(ctx, number, reasonIn(data), seenIn(data))

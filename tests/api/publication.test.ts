@@ -6,17 +6,19 @@ import { audit, notifications, tasks } from '../../src/lib/server/db/schema';
 import { editClaim } from '../../src/lib/server/services/claims/edit-claim';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { findClaim } from '../../src/lib/server/services/claims/find-claim';
+import { ledgerRows } from '../../src/lib/server/services/claims/ledger-rows';
 import { proposeClaim } from '../../src/lib/server/services/claims/propose-claim';
 import { publishClaim } from '../../src/lib/server/services/claims/publish-claim';
 import { showClaim } from '../../src/lib/server/services/claims/show-claim';
 import { showPublicClaim } from '../../src/lib/server/services/claims/show-public-claim';
 import { unpublishClaim } from '../../src/lib/server/services/claims/unpublish-claim';
 import { withdrawClaim } from '../../src/lib/server/services/claims/withdraw-claim';
+import { showHome } from '../../src/lib/server/services/home/show-home';
 import { confirmTranscription } from '../../src/lib/server/services/transcriptions/confirm-transcription';
 import { recordTranscriptionCheck } from '../../src/lib/server/services/transcriptions/record-transcription-check';
 import { showTranscription } from '../../src/lib/server/services/transcriptions/show-transcription';
 import { voidCheckOfTask } from '../../src/lib/server/services/transcriptions/void-check-of-task';
-import { claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
+import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
 import { addMember } from '../support/task-world';
 
 let world: ServiceWorld;
@@ -115,6 +117,30 @@ describe('comparing a claim with its paper', () => {
 		// Both who entered it and who last wrote it are told.
 		expect(await told('member')).toHaveLength(1);
 		expect(await told('owner')).toHaveLength(1);
+	});
+
+	it('that finds something wrong is seen in the lists of the group until it is corrected', async () => {
+		const { number } = await discrepancy(world.as.member);
+		const other = await discrepancy(
+			world.as.member,
+			claimFields({ printed: '2.8248', bibtex: bibtexOf(2) })
+		);
+		const rowOf = async (n = number) => (await ledgerRows(world.as.observer, [n]))[0];
+		expect(await rowOf()).toMatchObject({ disputed: false, wantsTask: true });
+		await wrong(world.as.owner, number, 'It prints 2.8284.');
+		expect(await rowOf()).toMatchObject({ disputed: true, wantsTask: false });
+		expect(await rowOf(other.number)).toMatchObject({ disputed: false, wantsTask: true });
+		// Changed last, yet behind what may be a real discrepancy.
+		const { discrepancies } = await showHome(world.as.member);
+		expect(discrepancies.map(({ row }) => [row.number, row.disputed])).toEqual([
+			[other.number, false],
+			[number, true]
+		]);
+		await compare(world.as.maintainer, number);
+		expect((await rowOf())?.disputed).toBe(false);
+		await wrong(world.as.owner, number, 'It prints 2.8284.');
+		await editClaim(world.as.member, number, 1, { ...SWAPPED, locator: 'eq. (8)' });
+		expect(await rowOf()).toMatchObject({ disputed: false, wantsTask: true });
 	});
 
 	it('that finds something wrong says what, and takes a confirmation back', async () => {

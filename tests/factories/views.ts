@@ -57,6 +57,7 @@ export function makeLedgerRow(over: Partial<LedgerRow> = {}): LedgerRow {
 		verdict: makeVerdict(),
 		recomputedBy: 'NPA level 1, see-saw d=2',
 		stations: makeStations(),
+		disputed: false,
 		task: null,
 		wantsTask: false,
 		progress: null,

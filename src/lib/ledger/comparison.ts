@@ -8,6 +8,21 @@ const WORDS: Readonly<Record<Compared, string>> = {
 	inequalityMatches: 'inequality'
 };
 
+/** What lists say of a claim whose newest comparison found something not as in the paper. */
+export const ENTRY_DIFFERS = 'entry differs from the paper';
+
+/**
+ * The comparison by which the entry differs from its paper; null when none that counts, or the
+ * newest of them, finds anything wrong.
+ * @param checks newest first
+ */
+export function disputing<T extends Readonly<Record<Compared, boolean>> & { current: boolean }>(
+	checks: readonly T[]
+): T | null {
+	const latest = checks.find(({ current }) => current);
+	return latest && COMPARED.some((part) => !latest[part]) ? latest : null;
+}
+
 /** `As in the paper: value, locator and inequality.` or `Not as in the paper: value.` */
 export function comparisonWords(found: Readonly<Record<Compared, boolean>>): string {
 	const wrong = COMPARED.filter((part) => !found[part]).map((part) => WORDS[part]);

@@ -18,6 +18,12 @@ describe('wantsTask', () => {
 	});
 });
 
+it('is for nobody to reproduce what is to be corrected first', () => {
+	expect(wantsTask('active', discrepancy, [], true)).toBe(false);
+	expect(wantsTask('active', unserved, [], true)).toBe(false);
+	expect(suggestedTask(discrepancy, false, true)).toBe('other');
+});
+
 describe('suggestedTask', () => {
 	it('compares with the paper before it asks the authors', () => {
 		expect(suggestedTask(discrepancy, false)).toBe('confirm-transcription');

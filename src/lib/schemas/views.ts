@@ -75,6 +75,8 @@ export interface LedgerRow {
 	readonly visibility: Visibility;
 	/** What is attached to it after its paper appeared. */
 	readonly notices: readonly NoticeKind[];
+	/** Compared with its paper and found to differ; never on public pages. */
+	readonly disputed: boolean;
 	/** The task that waits on it and was changed last; null on public pages and without any. */
 	readonly task: TaskMark | null;
 	/** Machines do not settle it and no task is under way: one should be opened. */

@@ -1,3 +1,4 @@
+import { disputing } from '../../ledger/comparison';
 import { parseActivityKind } from '../../schemas/activity-query';
 import type { GroupContext } from '../context';
 import { claimActivity } from '../services/activity/claim-activity';
@@ -14,10 +15,14 @@ import { loadPublication } from './publication-data';
 export async function claimPage(ctx: GroupContext, number: number, history: string | null) {
 	const claim = await showClaim(ctx, number);
 	const historyKind = parseActivityKind(history);
+	const publication = await loadPublication(ctx, claim);
+	const disputed = disputing(publication.transcription.checks);
 	return {
 		claim,
-		publication: await loadPublication(ctx, claim),
-		tasks: await claimTasks(ctx, claim),
+		publication,
+		/** The comparison that found it to differ from its paper; null: none does. */
+		disputed,
+		tasks: await claimTasks(ctx, claim, disputed !== null),
 		discussion: await discussionView(ctx, 'claim', claim.id),
 		activity: await claimActivity(ctx, number, historyKind),
 		historyKind,

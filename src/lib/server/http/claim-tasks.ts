@@ -14,7 +14,7 @@ import { taskAction } from './task-form';
 import { typedIn } from './typed-in';
 
 /** The tasks of a claim's page, and the form for another one where the viewer opens tasks. */
-export async function claimTasks(ctx: GroupContext, claim: ClaimView) {
+export async function claimTasks(ctx: GroupContext, claim: ClaimView, disputed: boolean) {
 	const rows = await tasksOfClaim(ctx, claim.number);
 	const row = await findClaim(ctx.db.read, ctx, claim.number);
 	const reproductions = await claimReproductions(ctx.db.read, row);
@@ -27,8 +27,8 @@ export async function claimTasks(ctx: GroupContext, claim: ClaimView) {
 			...found,
 			commentHtml: renderMarkdown(found.comment)
 		})),
-		wanted: wantsTask(claim.state, claim.verdict, states),
-		suggested: suggestedTask(claim.verdict, claim.confirmed),
+		wanted: wantsTask(claim.state, claim.verdict, states, disputed),
+		suggested: suggestedTask(claim.verdict, claim.confirmed, disputed),
 		/** Null: the viewer opens none here. */
 		people: mayOpen ? await peopleForTasks(ctx.db.read, ctx.group.id) : null
 	};

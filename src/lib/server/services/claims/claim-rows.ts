@@ -15,6 +15,7 @@ import { PROGRESS_COLUMNS, progressView } from '../recomputations/progress-view'
 import { jobsAhead } from '../recomputations/queue-order';
 import { problemLabel } from '../recomputations/problem-label';
 import { taskMarks } from '../tasks/task-marks';
+import { isDisputedClaim } from '../transcriptions/disputed-claims';
 import { shortMethod } from './short-method';
 import type { Verdict } from '../../../ledger/verdict';
 
@@ -29,7 +30,8 @@ export function selectClaimRows(read: Reader, where: SQL | undefined) {
 				scenario: inequalities.scenario
 			},
 			reference: { id: references.id, short: references.short, doi: references.doi },
-			run: { ...PROGRESS_COLUMNS, problem: recomputations.problem }
+			run: { ...PROGRESS_COLUMNS, problem: recomputations.problem },
+			differs: isDisputedClaim
 		})
 		.from(claims)
 		.innerJoin(references, eq(references.id, claims.referenceId))
@@ -44,7 +46,7 @@ export type SelectedClaim = Awaited<ReturnType<typeof selectClaimRows>>[number];
 /**
  * What the table shows, for rows in the order given.
  * @param groups whose members look at it: rows of other groups, as the public sees them, show
- * neither tasks nor people's names
+ * neither tasks nor comparisons nor people's names
  */
 export async function claimRows(
 	read: Reader,
@@ -67,10 +69,11 @@ export async function claimRows(
 		dayOf(now)
 	);
 	const rows: LedgerRow[] = [];
-	for (const { claim, inequality, reference, run } of selected) {
+	for (const { claim, inequality, reference, run, differs } of selected) {
 		const map = readMap(claim);
 		const isOwn = groups.includes(claim.groupId);
 		const verdict = isOwn ? claim.verdict : publicVerdict(claim.verdict);
+		const disputed = isOwn && differs;
 		const task = marks.get(claim.id) ?? null;
 		const onRule = isOnRule(claim.input);
 		const own = onRule && claim.inequalityId ? (stations.get(claim.inequalityId) ?? []) : [];
@@ -90,8 +93,9 @@ export async function claimRows(
 			state: claim.state,
 			visibility: claim.visibility,
 			notices: notices.get(claim.id) ?? [],
+			disputed,
 			task,
-			wantsTask: isOwn && task === null && wantsTask(claim.state, verdict, [])
+			wantsTask: isOwn && task === null && wantsTask(claim.state, verdict, [], disputed)
 		});
 	}
 	return rows;

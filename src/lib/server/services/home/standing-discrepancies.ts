@@ -1,11 +1,15 @@
-import { and, count, desc, eq, inArray } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray } from 'drizzle-orm';
 import type { HomeView } from '../../../schemas/talk-views';
 import type { GroupView } from '../../../schemas/views';
 import type { UserContext } from '../../context';
 import { claims } from '../../db/schema';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
+import { isDisputedClaim } from '../transcriptions/disputed-claims';
 
-/** Claims of these groups that disagree with what was recomputed, the last changed first. */
+/**
+ * Claims of these groups that disagree with what was recomputed, the last changed first; those
+ * whose entry differs from the paper last, since there the paper may well be right.
+ */
 export async function standingDiscrepancies(
 	ctx: UserContext,
 	groups: readonly GroupView[],
@@ -30,7 +34,7 @@ export async function standingDiscrepancies(
 		.where(standing)
 		.groupBy(claims.groupId);
 	const selected = await selectClaimRows(read, standing)
-		.orderBy(desc(claims.updatedAt), desc(claims.id))
+		.orderBy(asc(isDisputedClaim), desc(claims.updatedAt), desc(claims.id))
 		.limit(limit);
 	const own = groups.map(({ id }) => id);
 	const rows = await claimRows(read, selected, ctx.now(), own);

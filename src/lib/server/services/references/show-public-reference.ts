@@ -64,6 +64,7 @@ function publicRow(row: LedgerRow): LedgerRow {
 		state: row.state,
 		visibility: row.visibility,
 		notices: row.notices,
+		disputed: false,
 		task: null,
 		wantsTask: false
 	};

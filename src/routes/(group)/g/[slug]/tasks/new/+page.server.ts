@@ -23,7 +23,9 @@ export const load: PageServerLoad = async (event) => {
 	const [first] = claims;
 	const single = first && claims.length === 1 ? await showClaim(ctx, first.number) : null;
 	const kinds = new Set(
-		claims.map(({ verdict }) => suggestedTask(verdict, single?.confirmed ?? false))
+		claims.map(({ verdict, disputed }) =>
+			suggestedTask(verdict, single?.confirmed ?? false, disputed)
+		)
 	);
 	return {
 		claims,

@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm';
 import type { SMTPServerOptions } from 'smtp-server';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { outbox } from '../../src/lib/server/db/schema';
+import { commentMentions, outbox } from '../../src/lib/server/db/schema';
 import { MOST_ATTEMPTS, retryDelay, sendDueMails } from '../../src/lib/server/mail/sender';
 import { createSmtpTransport } from '../../src/lib/server/mail/transport';
 import { discardMail } from '../../src/lib/server/services/outbox/discard-mail';
@@ -32,6 +32,12 @@ const owner = () => world.as.owner.actor;
 /** A mail to the member, and one to the owner where a second one is wanted. */
 async function waiting(recipients = [world.as.member.actor.id]): Promise<void> {
 	const { claimId, taskId, commentId } = await newsRows(world, { text: 'see eq. (7)' });
+	await world.db.write((tx) =>
+		tx
+			.insert(commentMentions)
+			.values(recipients.map((userId) => ({ commentId, userId, handle: userId })))
+			.onConflictDoNothing()
+	);
 	await tell(world, 'mention', { claimId, taskId, commentId, recipients });
 }
 

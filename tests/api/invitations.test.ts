@@ -18,6 +18,8 @@ import { revokeInvitation } from '../../src/lib/server/services/invitations/revo
 import { signUp } from '../../src/lib/server/services/users/sign-up';
 import { openServiceWorld, type ServiceWorld } from '../support/service';
 
+const START = Date.parse('2026-12-01T10:00:00Z');
+
 let world: ServiceWorld;
 let sent: OutgoingMail[];
 beforeEach(async () => {
@@ -63,7 +65,7 @@ describe('inviting by e-mail', () => {
 			role: 'member'
 		});
 		const emails = ['new@reading.example', 'second@reading.example'];
-		expect(done).toEqual({ invited: emails, members: [], replaced: [] });
+		expect(done).toEqual({ invited: emails, members: [], replaced: [], again: [] });
 		expect(await send()).toBe(2);
 		expect(recipients()).toEqual(emails);
 
@@ -125,6 +127,36 @@ describe('inviting by e-mail', () => {
 		expect(await outboxStates()).toEqual(['waiting', 'dropped', 'waiting']);
 		expect((await listInvitations(world.as.owner)).map(({ role }) => role)).toEqual(['observer']);
 		expect(await listInvitations(world.outsider)).toHaveLength(1);
+	});
+
+	it('leaves the first standing when the same is sent once more within a minute', async () => {
+		const emails = 'new@reading.example';
+		const at = (ctx: GroupContext, seconds: number): GroupContext => ({
+			...ctx,
+			now: () => new Date(START + seconds * 1000)
+		});
+		const invite = (ctx: GroupContext, seconds: number, to = emails) =>
+			inviteByEmail(at(ctx, seconds), { emails: to, role: 'member' });
+		await invite(world.as.owner, 0);
+		const [first] = await world.db.read.select().from(invitations);
+
+		const second = await invite(world.as.owner, 59, `${emails}, second@reading.example`);
+		expect(second).toMatchObject({ invited: ['second@reading.example'], replaced: [] });
+		expect(second.again).toEqual([emails]);
+		const standing = await world.db.read.select().from(invitations);
+		expect(standing.filter(({ email }) => email === emails)).toEqual([first]);
+
+		// Somebody else who invites means it, and so does whoever comes back to it later.
+		expect(await invite(world.as.maintainer, 59)).toMatchObject({ replaced: [emails], again: [] });
+		expect(await invite(world.as.maintainer, 119)).toMatchObject({ replaced: [emails], again: [] });
+	});
+
+	it('lets two presses at once send one mail', async () => {
+		const invite = () =>
+			inviteByEmail(world.as.owner, { emails: 'new@reading.example', role: 'member' });
+		const both = await Promise.all([invite(), invite()]);
+		expect(both.map(({ invited }) => invited.length).sort()).toEqual([0, 1]);
+		expect(await outboxStates()).toEqual(['waiting']);
 	});
 
 	it.each([

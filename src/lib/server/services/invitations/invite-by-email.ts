@@ -21,11 +21,16 @@ export interface InvitedByEmail {
 	readonly members: readonly string[];
 	/** Those of `invited` whose earlier invitation stopped working. */
 	readonly replaced: readonly string[];
+	/** Addresses the same person invited so a moment ago: that invitation stands. */
+	readonly again: readonly string[];
 }
+
+/** Sent twice by a second press, a form that was sent again, or a slow answer. */
+const A_MOMENT_MS = 60_000;
 
 /**
  * Mails each address a joining link of its own, good for fourteen days; an invitation that stood
- * for the address is replaced.
+ * for the address is replaced, but for the same one that the same person made a moment ago.
  * @throws ServiceError forbidden; invalid, naming the addresses that are none
  */
 export async function inviteByEmail(
@@ -41,8 +46,12 @@ export async function inviteByEmail(
 	}
 	return ctx.db.write(async (tx) => {
 		const members = await addressesOfMembers(tx, ctx, emails);
-		const invited = emails.filter((email) => !members.includes(email));
-		const standing = await standingTo(tx, ctx, invited);
+		const outside = emails.filter((email) => !members.includes(email));
+		const before = await standingTo(tx, ctx, outside);
+		const recent = before.filter((one) => isJustMade(ctx, one, role));
+		const isAgain = (email: string) => recent.some((one) => one.email === email);
+		const invited = outside.filter((email) => !isAgain(email));
+		const standing = before.filter(({ email }) => email !== null && !isAgain(email));
 		await dropInvitations(
 			tx,
 			ctx,
@@ -50,7 +59,7 @@ export async function inviteByEmail(
 		);
 		for (const email of invited) await mailInvitation(tx, ctx, email, role);
 		const replaced = invited.filter((email) => standing.some((one) => one.email === email));
-		return { invited, members, replaced };
+		return { invited, members, replaced, again: outside.filter(isAgain) };
 	});
 }
 
@@ -70,7 +79,13 @@ async function addressesOfMembers(
 
 function standingTo(tx: Transaction, ctx: GroupContext, emails: readonly string[]) {
 	return tx
-		.select({ id: invitations.id, email: invitations.email })
+		.select({
+			id: invitations.id,
+			email: invitations.email,
+			role: invitations.role,
+			createdBy: invitations.createdBy,
+			createdAt: invitations.createdAt
+		})
 		.from(invitations)
 		.where(
 			and(
@@ -81,6 +96,15 @@ function standingTo(tx: Transaction, ctx: GroupContext, emails: readonly string[
 				gt(invitations.expiresAt, ctx.now())
 			)
 		);
+}
+
+function isJustMade(
+	ctx: GroupContext,
+	made: { readonly role: Role; readonly createdBy: string; readonly createdAt: Date },
+	role: Role
+): boolean {
+	if (made.createdBy !== ctx.actor.id || made.role !== role) return false;
+	return ctx.now().getTime() - made.createdAt.getTime() < A_MOMENT_MS;
 }
 
 async function mailInvitation(

@@ -4,11 +4,18 @@ import type { ClaimInput } from '../../src/lib/schemas/claim-input';
 import { parseLedgerQuery } from '../../src/lib/schemas/ledger-query';
 import { parseTaskQuery } from '../../src/lib/schemas/task-input';
 import type { GroupContext } from '../../src/lib/server/context';
-import { memberships } from '../../src/lib/server/db/schema';
+import { memberships, notifications } from '../../src/lib/server/db/schema';
+import { notificationMail } from '../../src/lib/server/mail/templates/notification-mail';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { listClaims } from '../../src/lib/server/services/claims/list-claims';
 import { restoreClaim } from '../../src/lib/server/services/claims/restore-claim';
 import { withdrawClaim } from '../../src/lib/server/services/claims/withdraw-claim';
+import { listNews } from '../../src/lib/server/services/notifications/list-news';
+import {
+	factsOf,
+	selectFacts
+} from '../../src/lib/server/services/notifications/notification-facts';
+import { isStillTrue } from '../../src/lib/server/services/notifications/still-true';
 import { acceptSubmission } from '../../src/lib/server/services/tasks/accept-submission';
 import { cancelTask } from '../../src/lib/server/services/tasks/cancel-task';
 import { editTask } from '../../src/lib/server/services/tasks/edit-task';
@@ -71,7 +78,22 @@ describe('opening tasks', () => {
 			may: { take: false, start: true, submit: true, release: true, decide: false, edit: false }
 		});
 		expect(task.instructionsHtml).toContain('<strong>another</strong>');
-		expect(await world.toldTo(world.wren)).toEqual(Array(3).fill('task-assigned'));
+		expect(await world.toldTo(world.wren)).toEqual(['task-assigned']);
+		const [news] = (await listNews(world.wren, 1)).items;
+		expect(news).toMatchObject({
+			text: 'Mae Maintainer assigned 3 tasks to you.',
+			detail: expect.stringMatching(/^Task 1 on claim 1, due .*; Task 3 on claim 3, due [^;]*\.$/),
+			href: expect.stringMatching(/\/tasks\?assignee=me$/)
+		});
+		// One mail with all of them.
+		const [facts] = await selectFacts(world.wren.db.read).where(
+			eq(notifications.userId, world.wren.actor.id)
+		);
+		const mail = facts && notificationMail(factsOf(facts), 'https://merestone.example');
+		expect(mail?.subject).toMatch(/^3 tasks are assigned to you/);
+		expect(mail?.list?.items).toHaveLength(3);
+		expect(mail?.action.address).toMatch(/\/tasks\?assignee=me&news=/);
+		expect(facts && isStillTrue(factsOf(facts))).toBe(true);
 		const [first] = claims;
 		await withdrawClaim(world.as.member, first ?? 0);
 		await expect(openTasks(world.as.maintainer, { claims })).rejects.toMatchObject(
@@ -89,6 +111,9 @@ describe('opening tasks', () => {
 		await expect(open({}, world.as.member)).rejects.toMatchObject(forbidden);
 		await expect(open({ claims: [] })).rejects.toMatchObject(issueAt('claims', /at least one/));
 		await expect(open({ dueOn: inDays(-1) })).rejects.toMatchObject(issueAt('dueOn', /is over/));
+		await expect(open({ dueOn: inDays(5 * 366 + 2) })).rejects.toMatchObject(
+			issueAt('dueOn', /more than 5 years ahead/)
+		);
 		await expect(open({ dueOn: '2027-02-30' })).rejects.toMatchObject(
 			issueAt('dueOn', /year-month-day/)
 		);
@@ -105,6 +130,34 @@ describe('opening tasks', () => {
 		});
 		expect((await list(world.as.observer, 'state=all')).total).toBe(0);
 		expect((await open({ dueOn: inDays(0) })).numbers).toEqual([1]);
+	});
+
+	it('names every claim that the person may not compare, and opens none', async () => {
+		const claims = [await world.openClaim(), await world.openClaim(), await world.openClaim()];
+		const [first = 0, second = 0] = claims;
+		const entered = await enterClaim(
+			world.wren,
+			claimFields({ printed: '2.8284', bibtex: bibtexOf(77) })
+		);
+		const asked = {
+			kind: 'confirm-transcription',
+			claims: [first, entered.number, second]
+		} as const;
+		const refused = await openTasks(world.as.maintainer, {
+			...asked,
+			claims: [...asked.claims],
+			assigneeId: world.as.member.actor.id
+		}).catch((error: unknown) => error);
+		expect(refused).toMatchObject({
+			...conflict,
+			message: expect.stringMatching(/^Nothing is opened: 2 of these 3 claims/),
+			issues: [
+				{ field: 'assigneeId' },
+				{ field: `claim-${first}`, message: expect.stringContaining(`Claim ${first} `) },
+				{ field: `claim-${second}` }
+			]
+		});
+		expect((await list(world.as.observer, 'state=all')).total).toBe(0);
 	});
 
 	it('shows in the ledger, which asks for one where machines can’t settle a claim', async () => {

@@ -80,6 +80,16 @@ export type SubmissionState = (typeof SUBMISSION_STATES)[number];
  */
 export const DUE_SOON_DAYS = 3;
 
+/** Further ahead than any reading group plans: beyond it a date is a slip of the keys (2062 for 2026). */
+export const DUE_WITHIN_YEARS = 5;
+
+/** The last day that a task may be due on, when opened today. */
+export function lastDueDay(today: string): string {
+	const year = String(Number(today.slice(0, 4)) + DUE_WITHIN_YEARS);
+	// What 29 February becomes in a year without it.
+	return `${year.padStart(4, '0')}${today.slice(4)}`.replace(/-02-29$/, '-02-28');
+}
+
 /** Dates without a time, `YYYY-MM-DD`: something is overdue the day after, in UTC. */
 export function isOverdue(dueOn: string | null, state: TaskState, today: string): boolean {
 	return dueOn !== null && dueOn < today && isActiveTask(state) && state !== 'submitted';

@@ -1,6 +1,7 @@
 import { render } from '@testing-library/svelte';
 import { describe, expect, it } from 'vitest';
 import { makeTaskView } from '../../../../tests/factories/task-views';
+import DecideSubmission from './DecideSubmission.svelte';
 import TaskStanding from './TaskStanding.svelte';
 
 const none = makeTaskView().may;
@@ -13,17 +14,22 @@ describe('TaskStanding', () => {
 		expect(queryByRole('button', { name: 'Accept' })).toBeNull();
 	});
 
-	it('lets a maintainer accept, or return with a reason', () => {
+	it('lets a maintainer accept, or return with a reason, below what was found', () => {
 		const task = makeTaskView({ state: 'submitted', may: { ...none, decide: true } });
-		const { container, getByRole } = render(TaskStanding, { task });
+		const { container: above } = render(TaskStanding, { task });
+		expect(above.querySelector('form')).toBeNull();
+		expect(above.querySelector('a[href="#decide"]')).not.toBeNull();
+		const { container, getByRole } = render(DecideSubmission, { task });
 		expect(getByRole('button', { name: 'Accept' }).className).toContain('bg-accent');
+		const words = container.querySelector('form[action="?/accept"] textarea[name=reason]');
+		expect(words?.hasAttribute('required')).toBe(false);
 		const back = container.querySelector('form[action="?/return"]');
 		expect(back?.querySelector('textarea[name=reason]')?.hasAttribute('required')).toBe(true);
 	});
 
 	it('keeps a reason that was refused, unfolded', () => {
 		const task = makeTaskView({ state: 'submitted', may: { ...none, decide: true } });
-		const { container } = render(TaskStanding, {
+		const { container } = render(DecideSubmission, {
 			task,
 			refused: {
 				door: 'return',
@@ -38,9 +44,18 @@ describe('TaskStanding', () => {
 	});
 
 	it('shows why it came back', () => {
-		const task = makeTaskView({ state: 'returned', reason: 'The log stops early.' });
+		const reasonHtml = '<p>The log stops early.</p>';
+		const task = makeTaskView({ state: 'returned', reason: 'x', reasonHtml });
 		const { container } = render(TaskStanding, { task });
 		expect(container.textContent).toContain('Why it was returned');
 		expect(container.textContent).toContain('The log stops early.');
+	});
+
+	it('names whom a maintainer takes a task back from, and lets its holder give it back', () => {
+		const asked = { state: 'in-progress', may: { ...none, release: true } } as const;
+		const theirs = render(TaskStanding, { task: makeTaskView({ ...asked, own: false }) });
+		expect(theirs.container.textContent).toContain('Take it back from Mo Member');
+		const own = render(TaskStanding, { task: makeTaskView({ ...asked, own: true }) });
+		expect(own.container.textContent).toContain('Give it back');
 	});
 });

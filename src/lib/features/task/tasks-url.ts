@@ -1,10 +1,16 @@
 import type { SortLink } from '$lib/components/sort-link';
-import { printTaskQuery, type TaskQuery } from '../../schemas/task-input';
+import { printTaskQuery, TASK_LIMITS, type TaskQuery } from '../../schemas/task-input';
 
 /** The tasks' address with part of its state changed; any change but of the page goes to page 1. */
 export function tasksHref(base: string, query: TaskQuery, change: Partial<TaskQuery>): string {
 	const search = printTaskQuery({ ...query, page: 1, ...change }).toString();
 	return search ? `${base}?${search}` : base;
+}
+
+/** Numbers of the tasks that were opened just now, as `opened=10,11` says. */
+export function openedIn(parameters: URLSearchParams): ReadonlySet<number> {
+	const numbers = (parameters.get('opened') ?? '').split(',').slice(0, TASK_LIMITS.claims);
+	return new Set(numbers.filter((text) => /^[1-9]\d{0,8}$/.test(text)).map(Number));
 }
 
 /** True when any filter is on, so that no rows means "no match" rather than "nothing yet". */

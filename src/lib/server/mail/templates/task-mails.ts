@@ -2,7 +2,7 @@ import { dayWords } from '../../../ledger/day-words';
 import { TASK_KIND_LABELS } from '../../../ledger/tasks';
 import { plainText } from '../../markdown/plain-text';
 import type { NotificationFacts } from '../../services/notifications/notification-facts';
-import { notificationText } from '../../services/notifications/notification-text';
+import { isBundle, notificationText } from '../../services/notifications/notification-text';
 import type { Tone } from '../mail-content';
 import { claimName, claimRows } from './claim-parts';
 import type { MailBody } from './verdict-mails';
@@ -71,6 +71,7 @@ function wordsOf({ kind, task }: NotificationFacts): TaskWords | null {
 
 export function taskBody(facts: NotificationFacts): MailBody | null {
 	const { task, claim } = facts;
+	if (isBundle(facts)) return bundleBody(facts);
 	const words = wordsOf(facts);
 	if (!task || !words) return null;
 	const kind = TASK_KIND_LABELS[task.kind];
@@ -87,6 +88,22 @@ export function taskBody(facts: NotificationFacts): MailBody | null {
 			...claimRows(claim)
 		],
 		actionLabel: `Open task ${task.number}`
+	};
+}
+
+/** Several tasks that were given to one person in one go. */
+function bundleBody(facts: NotificationFacts): MailBody {
+	const items = facts.text.split('\n');
+	return {
+		subject: `${items.length} tasks are assigned to you in ${facts.group.name}`,
+		tag: { text: `${items.length} tasks: assigned to you`, tone: 'plain' },
+		heading: `${items.length} tasks are assigned to you`,
+		paragraphs: [
+			notificationText(facts).text,
+			'Each has its page, with what is asked; start it and hand in there what you find.'
+		],
+		list: { title: 'The tasks', items },
+		actionLabel: 'Open your tasks'
 	};
 }
 

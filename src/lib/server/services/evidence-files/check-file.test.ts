@@ -23,6 +23,14 @@ const ZIP = bytes(
 	...[0, 0, 0, 0, 5, 0, 0, 0, 0x61, 0x2e, 0x74, 0x78, 0x74]
 );
 const GZIP = new Uint8Array(gzipSync('0.25\n'));
+// NumPy's NPY format, MathWorks' MAT-File Format (level 5 header text), the HDF5 file format
+// specification (signature), the .xz file format 1.2 and bzip2's magic.
+const NPY = bytes(0x93, 0x4e, 0x55, 0x4d, 0x50, 0x59, 1, 0, 0x76, 0);
+const MAT = text('MATLAB 5.0 MAT-file, Platform: GLNXA64'.padEnd(128));
+const HDF5 = bytes(0x89, 0x48, 0x44, 0x46, 0x0d, 0x0a, 0x1a, 0x0a, 0, 0, 0, 0);
+const MAT73 = new Uint8Array([...text('MATLAB 7.3 MAT-file'.padEnd(512)), ...HDF5]);
+const XZ = bytes(0xfd, 0x37, 0x7a, 0x58, 0x5a, 0x00, 0, 4, 0xe6, 0xd6, 0xb4, 0x46);
+const BZIP2 = bytes(0x42, 0x5a, 0x68, 0x39, 0x31, 0x41, 0x59, 0x26, 0x53, 0x59);
 const EXE = bytes(0x4d, 0x5a, 0x90, 0, 3, 0, 0, 0, 4, 0, 0, 0, 0xff, 0xff, 0, 0);
 
 const problemOf = async (name: string, content: Uint8Array) => {
@@ -38,6 +46,17 @@ describe('checkFile', () => {
 		['run.log.gz', GZIP, 'application/gzip'],
 		['all.zip', ZIP, 'application/zip'],
 		['run.py', text('print(0.25)\n'), 'text/plain; charset=utf-8'],
+		['a.npy', NPY, 'application/octet-stream'],
+		['a.npz', ZIP, 'application/zip'],
+		['a.mat', MAT, 'application/octet-stream'],
+		['b.mat', MAT73, 'application/octet-stream'],
+		['a.h5', HDF5, 'application/octet-stream'],
+		['a.HDF5', HDF5, 'application/octet-stream'],
+		['all.tar.xz', XZ, 'application/x-xz'],
+		['all.tar.bz2', BZIP2, 'application/x-bzip2'],
+		['set.yaml', text('level: 3'), 'text/plain; charset=utf-8'],
+		['set.yml', text('level: 3'), 'text/plain; charset=utf-8'],
+		['set.toml', text('level = 3'), 'text/plain; charset=utf-8'],
 		['level2.dat-s', text('1\n1\n1\n1.0\n'), 'text/plain; charset=utf-8'],
 		['fit.R', text('x <- 1'), 'text/plain; charset=utf-8'],
 		['Überprüfung.ipynb', text('{"cells": []}'), 'text/plain; charset=utf-8']
@@ -57,6 +76,13 @@ describe('checkFile', () => {
 		['paper.pdf', text('<html>'), 'holds something else'],
 		['plot.png', JPEG, 'holds image/jpeg'],
 		['all.zip', GZIP, 'holds application/gzip'],
+		['a.npy', EXE, 'is not an array of NumPy'],
+		['a.npz', NPY, 'although its ending says application/zip'],
+		['a.mat', HDF5, 'is not a MAT-file'],
+		['b.mat', text('MATLAB 7.3 MAT-file'), 'is not a MAT-file'],
+		['a.h5', text('HDF'), 'is not an HDF5 file'],
+		['a.xz', BZIP2, 'holds application/x-bzip2'],
+		['set.yaml', NPY, 'holds a NUL'],
 		['run.py', bytes(0x61, 0, 0x62), 'holds a NUL'],
 		['run.py', bytes(0xff, 0xfe, 0x61), 'is not in UTF-8'],
 		['...', text('x'), 'File 1 has no usable name'],
@@ -140,6 +166,7 @@ describe('cleanName', () => {
 
 it('a stored file is sent as what runs nothing', () => {
 	expect(servedType('application/pdf')).toBe('application/octet-stream');
+	expect(servedType('application/x-xz')).toBe('application/octet-stream');
 	expect(servedType('text/html')).toBe('application/octet-stream');
 	expect(servedType('image/png')).toBe('image/png');
 });

@@ -1,7 +1,8 @@
 import { fileTypeFromBuffer } from 'file-type';
 import { TASK_LIMITS } from '../../../schemas/task-input';
 import { cleanName } from './clean-name';
-import { ACCEPTED_NAMES, extensionOf, kindOfName } from './file-kinds';
+import { DATA_NAMES, isDataOf } from './data-signatures';
+import { ACCEPTED_NAMES, extensionOf, kindOfName, type FileKind } from './file-kinds';
 
 export interface UploadedFile {
 	/** As the browser sent it; may be anything. */
@@ -48,8 +49,20 @@ export async function checkFile(
 		const what = ending ? `ends in .${ending}, which is not taken` : 'has no ending';
 		return { problem: `${called} ${what}. Taken are ${ACCEPTED_NAMES}; others in a .zip.` };
 	}
-	const problem = kind.kind === 'text' ? textProblem(bytes) : await binaryProblem(bytes, kind);
+	const problem = await problemOf(bytes, kind);
 	return problem ? { problem: `${called} ${problem}` } : { name, mediaType: kind.mediaType, bytes };
+}
+
+function problemOf(bytes: Uint8Array, kind: FileKind): string | null | Promise<string | null> {
+	switch (kind.kind) {
+		case 'text':
+			return textProblem(bytes);
+		case 'binary':
+			return binaryProblem(bytes, kind);
+		case 'data':
+			if (isDataOf(kind.format, bytes)) return null;
+			return `is not ${DATA_NAMES[kind.format]}, although its ending says so: give it the ending of what it is.`;
+	}
 }
 
 /** A text is read as UTF-8 by whoever opens it, or it is no text. */

@@ -1,3 +1,5 @@
+import type { DataFormat } from './data-signatures';
+
 /**
  * What may be handed in as evidence: papers, pictures, archives, and the text that programs and
  * their output are. Nothing that a browser would run as a page.
@@ -8,27 +10,43 @@ const SNIFFED: Readonly<Record<string, string>> = {
 	jpg: 'image/jpeg',
 	jpeg: 'image/jpeg',
 	gz: 'application/gzip',
-	zip: 'application/zip'
+	zip: 'application/zip',
+	/** NumPy's archive of arrays is a zip. */
+	npz: 'application/zip',
+	xz: 'application/x-xz',
+	bz2: 'application/x-bzip2'
+};
+
+/** Data of numerical programs, recognised by `data-signatures.ts`. */
+const DATA: Readonly<Record<string, DataFormat>> = {
+	npy: 'npy',
+	mat: 'mat',
+	h5: 'hdf5',
+	hdf5: 'hdf5'
 };
 
 const TEXT = [
-	...['txt', 'md', 'log', 'csv', 'tsv', 'json', 'tex', 'bib', 'dat-s'],
+	...['txt', 'md', 'log', 'csv', 'tsv', 'json', 'yaml', 'yml', 'toml', 'tex', 'bib', 'dat-s'],
 	...['py', 'jl', 'm', 'c', 'cpp', 'h', 'rs', 'f90', 'ipynb', 'sage', 'mpl', 'nb', 'r']
 ];
 
 /** Text is never sent as what its ending says: a browser would run some of it. */
 const TEXT_TYPE = 'text/plain; charset=utf-8';
+const BYTES = 'application/octet-stream';
 
 export type FileKind =
 	| { readonly kind: 'text'; readonly mediaType: typeof TEXT_TYPE }
 	/** The media type that the content has to be recognised as. */
-	| { readonly kind: 'binary'; readonly mediaType: string };
+	| { readonly kind: 'binary'; readonly mediaType: string }
+	| { readonly kind: 'data'; readonly format: DataFormat; readonly mediaType: typeof BYTES };
 
 /** By the part of a name after its last dot; null: not taken. */
 export function kindOfName(name: string): FileKind | null {
 	const extension = extensionOf(name);
 	const mediaType = Object.hasOwn(SNIFFED, extension) ? SNIFFED[extension] : undefined;
 	if (mediaType) return { kind: 'binary', mediaType };
+	const format = Object.hasOwn(DATA, extension) ? DATA[extension] : undefined;
+	if (format) return { kind: 'data', format, mediaType: BYTES };
 	return TEXT.includes(extension) ? { kind: 'text', mediaType: TEXT_TYPE } : null;
 }
 
@@ -38,7 +56,7 @@ export function extensionOf(name: string): string {
 }
 
 /** `.pdf, .png, ...`: for errors and for a form's `accept`. */
-export const ACCEPTED_NAMES: string = [...Object.keys(SNIFFED), ...TEXT]
+export const ACCEPTED_NAMES: string = [...Object.keys(SNIFFED), ...Object.keys(DATA), ...TEXT]
 	.map((extension) => `.${extension}`)
 	.join(', ');
 
@@ -48,5 +66,5 @@ export const ACCEPTED_NAMES: string = [...Object.keys(SNIFFED), ...TEXT]
  */
 export function servedType(mediaType: string): string {
 	const harmless = [TEXT_TYPE, 'image/png', 'image/jpeg'];
-	return harmless.includes(mediaType) ? mediaType : 'application/octet-stream';
+	return harmless.includes(mediaType) ? mediaType : BYTES;
 }

@@ -35,6 +35,7 @@ function sentence(facts: NotificationFacts): string {
 		case 'claim-proposed':
 			return `${who} proposes ${theClaim} for publication.`;
 		case 'task-assigned':
+			if (isBundle(facts)) return `${who} assigned ${text.split('\n').length} tasks to you.`;
 			return `${who} assigned ${theTask} on ${theClaim} to you.`;
 		case 'task-submitted':
 			return `${who} submitted ${theTask} on ${theClaim}.`;
@@ -61,6 +62,11 @@ function sentence(facts: NotificationFacts): string {
 	}
 }
 
+/** Several tasks given to one person in one go: their list is its text, a line for each. */
+export function isBundle({ kind, task, text }: NotificationFacts): boolean {
+	return kind === 'task-assigned' && task === null && text !== '';
+}
+
 /** What a comment is on: `claim 7`, `task 4`, `CHSH`. */
 export function placeOf({ claim, task, comment }: NotificationFacts): string {
 	if (comment?.subject === 'inequality') return comment.inequality ?? 'an inequality';
@@ -69,7 +75,9 @@ export function placeOf({ claim, task, comment }: NotificationFacts): string {
 	return claim ? `claim ${claim.number}` : 'a claim';
 }
 
-function detail({ kind, claim, task, comment, message, text }: NotificationFacts): string {
+function detail(facts: NotificationFacts): string {
+	const { kind, claim, task, comment, message, text } = facts;
+	if (isBundle(facts)) return `${text.split('\n').join('; ')}.`;
 	const about = claim ? claim.title : '';
 	const asked = task ? `${TASK_KIND_LABELS[task.kind]}: ${about}` : about;
 	switch (kind) {
@@ -95,8 +103,10 @@ function detail({ kind, claim, task, comment, message, text }: NotificationFacts
 	}
 }
 
-function addressOf({ kind, group, claim, task, comment }: NotificationFacts): string {
+function addressOf(facts: NotificationFacts): string {
+	const { kind, group, claim, task, comment } = facts;
 	const base = `/g/${group.slug}`;
+	if (isBundle(facts)) return `${base}/tasks?assignee=me`;
 	const anchor = comment ? `#comment-${comment.id}` : '';
 	if (comment?.subject === 'inequality') {
 		return `${base}/inequalities/${encodeURIComponent(comment.subjectId)}${anchor}`;
@@ -109,7 +119,7 @@ function addressOf({ kind, group, claim, task, comment }: NotificationFacts): st
 /** The path for a mail: the page that opens marks this news as read. */
 export function mailedAddress(facts: NotificationFacts): string {
 	const [path = '', anchor] = addressOf(facts).split('#');
-	return `${path}?news=${facts.id}${anchor ? `#${anchor}` : ''}`;
+	return `${path}${path.includes('?') ? '&' : '?'}news=${facts.id}${anchor ? `#${anchor}` : ''}`;
 }
 
 function shorten(text: string): string {

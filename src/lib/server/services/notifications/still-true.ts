@@ -1,6 +1,7 @@
 import { isActiveTask } from '../../../ledger/tasks';
 import { mailWorthy } from '../../../ledger/verdict';
 import type { NotificationFacts, TaskFacts } from './notification-facts';
+import { isBundle } from './notification-text';
 
 /**
  * Whether a notification still has something to tell that person: the claim stands, the task is
@@ -20,7 +21,7 @@ export function isStillTrue(facts: NotificationFacts): boolean {
 		case 'claim-proposed':
 			return claim !== null && claim.state !== 'withdrawn' && claim.visibility === 'proposed';
 		case 'task-assigned':
-			return task !== null && isToDo(task) && task.assigneeId === recipient.id;
+			return isBundle(facts) || (task !== null && isToDo(task) && task.assigneeId === recipient.id);
 		case 'task-submitted':
 			return task?.state === 'submitted';
 		case 'task-returned':

@@ -10,10 +10,10 @@ import { newId } from '../../ids';
 import { recordAudit } from '../audit';
 import type { ClaimRow } from '../claims/find-claim';
 import { parseInput } from '../parse-input';
-import { requireSecondPerson } from './second-person';
+import { requireSecondPersons } from './second-person';
 import { auditOf } from './step-task';
 import { readAssignee, readDueOn } from './task-fields';
-import { tell } from './tell';
+import { tellAssigned, type OpenedTask } from './tell-assigned';
 
 /**
  * Opens a task on each of some claims, all or none.
@@ -32,11 +32,11 @@ export async function openTasks(
 	return ctx.db.write(async (tx) => {
 		const about = await findClaims(tx, ctx, wanted);
 		const assigneeId = await readAssignee(tx, ctx, asks.assigneeId, null);
+		await requireSecondPersons(tx, { kind, assigneeId }, about);
 		const first = await takeNumbers(tx, ctx, about.length);
 		const now = ctx.now();
-		const numbers: number[] = [];
+		const opened: OpenedTask[] = [];
 		for (const [i, claim] of about.entries()) {
-			await requireSecondPerson(tx, { kind, claimId: claim.id, assigneeId });
 			const [task] = await tx
 				.insert(tasks)
 				.values({
@@ -55,7 +55,7 @@ export async function openTasks(
 				})
 				.returning();
 			if (!task) throw new ServiceError('conflict', 'The task could not be written.');
-			numbers.push(task.number);
+			opened.push({ task, claimNumber: claim.number });
 			await recordAudit(tx, ctx, {
 				action: 'task.opened',
 				entity: 'task',
@@ -64,9 +64,9 @@ export async function openTasks(
 				claimId: task.claimId,
 				after: auditOf(task)
 			});
-			await tell(tx, ctx, 'task-assigned', task, [assigneeId]);
 		}
-		return { numbers };
+		await tellAssigned(tx, ctx, opened);
+		return { numbers: opened.map(({ task }) => task.number) };
 	});
 }
 
@@ -75,7 +75,7 @@ async function findClaims(
 	tx: Transaction,
 	ctx: GroupContext,
 	numbers: readonly number[]
-): Promise<readonly Pick<ClaimRow, 'id'>[]> {
+): Promise<readonly Pick<ClaimRow, 'id' | 'number'>[]> {
 	const rows = await tx
 		.select({ id: claims.id, number: claims.number, state: claims.state })
 		.from(claims)

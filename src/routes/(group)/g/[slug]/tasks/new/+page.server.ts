@@ -52,7 +52,9 @@ export const actions: Actions = {
 		const list = `/g/${ctx.group.slug}/tasks`;
 		redirect(
 			303,
-			numbers.length > 1 || !first ? `${list}?opened=${numbers.length}` : `${list}/${first}`
+			numbers.length > 1 || !first
+				? `${list}?sort=newest&opened=${numbers.join(',')}`
+				: `${list}/${first}`
 		);
 	}
 };

@@ -201,7 +201,9 @@ describe('the administrator', () => {
 
 	it('sees what is dead and why, and sends it again', async () => {
 		const id = await dead();
+		const beyond = await listOutbox(admin(), { state: 'dead', page: 99 });
 		const page = await listOutbox(admin(), { state: 'dead', page: 1 });
+		expect(beyond).toEqual(page);
 		expect(page.counts).toEqual({ waiting: 0, sent: 0, dropped: 0, dead: 1 });
 		expect(page.rows).toMatchObject([
 			{ id, kind: 'mention', to: 'mo.member@reading.example', attempts: 1 }

@@ -128,6 +128,16 @@ describe('selecting claims', () => {
 		expect(getByRole('status').textContent).toBe('2 selected');
 	});
 
+	it('leads from a ticked box to the selection, which takes the focus', async () => {
+		const { getByRole, queryByRole } = render(LedgerTable, { ...props, rows, tasks });
+		expect(queryByRole('link', { name: 'Go to the selection' })).toBeNull();
+		await fireEvent.click(getByRole('checkbox', { name: 'Select claim 5' }));
+		const link = getByRole('link', { name: 'Go to the selection' });
+		const target = document.querySelector(link.getAttribute('href') ?? 'none');
+		expect(target).toBe(getByRole('form', { name: 'Selection' }));
+		expect(target?.getAttribute('tabindex')).toBe('-1');
+	});
+
 	it('ticks the page at once and clears it', async () => {
 		const { container, getByRole } = render(LedgerTable, { ...props, rows, tasks });
 		const all = getByRole('checkbox', { name: 'Select all claims on this page' });

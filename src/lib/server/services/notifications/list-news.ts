@@ -1,5 +1,6 @@
 import { and, count, desc, eq, isNull } from 'drizzle-orm';
 import type { NewsPage } from '../../../schemas/talk-views';
+import { pageWithin } from '../../../schemas/page-within';
 import type { UserContext } from '../../context';
 import { memberships, notifications } from '../../db/schema';
 import { factsOf, selectFacts } from './notification-facts';
@@ -11,7 +12,8 @@ const PAGE_SIZE = 30;
 export async function listNews(ctx: UserContext, page: number): Promise<NewsPage> {
 	const { read } = ctx.db;
 	const own = eq(notifications.userId, ctx.actor.id);
-	const wanted = Number.isSafeInteger(page) && page > 0 ? page : 1;
+	const total = await countOf(ctx, false);
+	const wanted = pageWithin(page, total, PAGE_SIZE);
 	const rows = await selectFacts(read)
 		.where(own)
 		.orderBy(desc(notifications.createdAt), desc(notifications.id))
@@ -27,7 +29,7 @@ export async function listNews(ctx: UserContext, page: number): Promise<NewsPage
 			...notificationText(facts)
 		})),
 		unread: await unreadCount(ctx),
-		total: await countOf(ctx, false),
+		total,
 		page: wanted,
 		pageSize: PAGE_SIZE
 	};

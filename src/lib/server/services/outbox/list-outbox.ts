@@ -1,5 +1,6 @@
 import { count, desc, eq, sql } from 'drizzle-orm';
 import type { OutboxPage } from '../../../schemas/talk-views';
+import { pageWithin } from '../../../schemas/page-within';
 import type { UserContext } from '../../context';
 import { OUTBOX_STATES, invitations, outbox, users } from '../../db/schema';
 import { administer } from './administer';
@@ -13,13 +14,13 @@ export async function listOutbox(
 ): Promise<OutboxPage> {
 	administer(ctx);
 	const state = OUTBOX_STATES.find((known) => known === query.state) ?? 'dead';
-	const page = Number.isSafeInteger(query.page) && query.page > 0 ? query.page : 1;
 	const { read } = ctx.db;
 	const counted = await read
 		.select({ state: outbox.state, total: count() })
 		.from(outbox)
 		.groupBy(outbox.state);
 	const totalOf = (each: string) => counted.find((row) => row.state === each)?.total ?? 0;
+	const page = pageWithin(query.page, totalOf(state), PAGE_SIZE);
 	const rows = await read
 		.select({
 			id: outbox.id,

@@ -201,8 +201,9 @@ describe('who is told of a comment', () => {
 describe('a preview', () => {
 	it('is what the comment will look like, and writes nothing', async () => {
 		const before = await world.db.read.$count(audit);
-		const { html, mentions } = await previewText(world.as.member, '*so* @mae <b>');
-		expect(html).toBe('<p><em>so</em> <span class="mention">@mae</span> &#x3C;b></p>');
+		const { html, mentions, warnings } = await previewText(world.as.member, '*so* @mae @nob <b>');
+		expect(warnings).toEqual([expect.stringContaining('called @nob,')]);
+		expect(html).toBe('<p><em>so</em> <span class="mention">@mae</span> @nob &#x3C;b></p>');
 		expect(mentions).toEqual(['Mae Maintainer']);
 		expect(await world.db.read.$count(audit)).toBe(before);
 	});

@@ -75,6 +75,17 @@ export function findMentions(text: string, handles: readonly Handle[]): readonly
 	});
 }
 
+/** What was typed as mentions and names nobody, each once, as it was typed. */
+export function unknownMentions(text: string, handles: readonly Handle[]): readonly string[] {
+	const known = new Map(handles.map((handle) => [handle.handle, handle]));
+	const unknown = [...text.matchAll(MENTION)].flatMap((match) => {
+		const typed = match[1] ?? '';
+		const elsewhere = text[match.index + 1 + typed.length] === '@';
+		return elsewhere || longestHandle(typed, known) ? [] : [`@${typed}`];
+	});
+	return [...new Set(unknown)];
+}
+
 /** `@wren-aldous-style` mentions wren-aldous: what is typed may go on with a hyphen. */
 function longestHandle(
 	typed: string,

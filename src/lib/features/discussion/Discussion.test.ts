@@ -154,6 +154,15 @@ describe('the preview', () => {
 		expect(queryByText('set')).toBeNull();
 	});
 
+	it('warns of a mention of nobody', async () => {
+		const answer = { html: '<p>@nob</p>', warnings: ['Nobody is called @nob.'] };
+		vi.stubGlobal('fetch', () => Promise.resolve(Response.json(answer)));
+		const { getByLabelText, findByText, getByRole } = show({ comments: [] });
+		await type(getByLabelText('Your comment'), '@nob');
+		await fireEvent.click(getByRole('button', { name: 'Preview' }));
+		expect(await findByText('Nobody is called @nob.')).toBeTruthy();
+	});
+
 	it('says when there is none', async () => {
 		vi.stubGlobal('fetch', () => Promise.reject(new TypeError('offline')));
 		const { getByLabelText, findByText, getByRole } = show({ comments: [] });

@@ -2,6 +2,8 @@
 export class Preview {
 	html = $state<string | null>(null);
 	message = $state<string | null>(null);
+	/** What the writer may not have meant. */
+	warnings = $state<readonly string[]>([]);
 	loading = $state(false);
 	#of = '';
 	#asked = 0;
@@ -11,6 +13,7 @@ export class Preview {
 		if (text === this.#of) return;
 		this.#asked++;
 		this.html = null;
+		this.warnings = [];
 		this.message = null;
 		this.loading = false;
 	}
@@ -21,6 +24,7 @@ export class Preview {
 		this.loading = true;
 		this.message = null;
 		let html: string | null = null;
+		let warnings: readonly string[] = [];
 		let message: string | null;
 		try {
 			const response = await fetch(`/api/v1/groups/${group}/previews`, {
@@ -28,8 +32,9 @@ export class Preview {
 				headers: { 'content-type': 'application/json' },
 				body: JSON.stringify({ text })
 			});
-			const answer: { html?: string; detail?: string } = await response.json();
+			const answer: { html?: string; warnings?: string[]; detail?: string } = await response.json();
 			html = answer.html ?? null;
+			warnings = answer.warnings ?? [];
 			message = response.ok ? null : (answer.detail ?? 'There is no preview right now.');
 		} catch {
 			message = 'There is no preview: the server can’t be reached. Your text is kept here.';
@@ -37,6 +42,7 @@ export class Preview {
 		if (asked !== this.#asked) return;
 		this.loading = false;
 		this.html = html;
+		this.warnings = warnings;
 		this.message = message;
 	}
 }

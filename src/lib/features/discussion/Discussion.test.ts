@@ -60,6 +60,20 @@ describe('Discussion', () => {
 		expect(observer.container.querySelector('form')).toBeNull();
 	});
 
+	it('takes back what was said of a text once it is changed', async () => {
+		const message = 'Write something first.';
+		const { getByText, queryByText, container } = show(
+			{},
+			{ refused: { id: '', body: '', message } }
+		);
+		expect(getByText(message)).toBeTruthy();
+		const area = container.querySelector<HTMLTextAreaElement>('#comment-body-new');
+		if (!area) throw new Error('no field');
+		await type(area, 'The');
+		expect(queryByText(message)).toBeNull();
+		expect(area.getAttribute('aria-invalid')).toBeNull();
+	});
+
 	it('has forms that work by themselves, each with ids of its own', () => {
 		const { container } = show({ comments: [comment(), comment({ id: 'c2' })] });
 		const forms = [...container.querySelectorAll('form')];

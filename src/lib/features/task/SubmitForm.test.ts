@@ -1,6 +1,6 @@
 import { fireEvent, render, waitFor, within } from '@testing-library/svelte';
 import { afterEach, describe, expect, it, vi } from 'vitest';
-import { makeTaskView } from '../../../../tests/factories/task-views';
+import { makeSubmission, makeTaskView } from '../../../../tests/factories/task-views';
 import { makeClaimView } from '../../../../tests/factories/claim-view';
 import SubmitForm from './SubmitForm.svelte';
 
@@ -64,6 +64,28 @@ describe('SubmitForm', () => {
 		expect(getByLabelText('Comment')).toHaveProperty('value', 'As told.');
 		expect(getByLabelText('Version').getAttribute('aria-invalid')).toBe('true');
 		expect(getByRole('alert').textContent).toContain('marked below');
+	});
+
+	it('starts a further try with how the one before was made, not with its value', () => {
+		const again = makeTaskView({
+			state: 'returned',
+			submissions: [
+				makeSubmission({ state: 'returned', relation: '<=', comment: 'Seeds 1 to 20.' })
+			]
+		});
+		const value = (form: typeof again, label: string) => {
+			const { getByLabelText, unmount } = render(SubmitForm, { task: form, claim });
+			const field = getByLabelText(label);
+			unmount();
+			return 'value' in field ? field.value : null;
+		};
+		const labels = ['Program', 'Version', 'Method', 'Relation', 'Comment', 'Value you found'];
+		expect(labels.map((label) => value(again, label))).toEqual([
+			...['Own script', '1.2', 'level 3', '<=', 'Seeds 1 to 20.', '']
+		]);
+		// Somebody else begins afresh.
+		const theirs = { ...again, assignee: { id: 'ida', name: 'Ida Member' } };
+		expect(labels.map((label) => value(theirs, label))).toEqual(['', '', '', '=', '', '']);
 	});
 
 	it('asks three questions beside what was entered', () => {

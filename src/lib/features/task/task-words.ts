@@ -1,4 +1,4 @@
-import type { TaskKind, TaskState } from '../../ledger/tasks';
+import type { SubmissionKind, TaskKind, TaskState } from '../../ledger/tasks';
 import type { TaskMark } from '../../schemas/task-views';
 import { dayWords as fullDay } from '../../ledger/day-words';
 
@@ -33,8 +33,20 @@ export const KIND_HINTS: Readonly<Record<TaskKind, string>> = {
 	other: 'Say in the instructions what is to be done.'
 };
 
+/** What became of a submission once it was accepted. */
+const ACCEPTED_WORDS: Readonly<Record<SubmissionKind, string>> = {
+	value: 'Done. What was accepted counts for the claim’s verdict where machines leave it open.',
+	certificate: 'Done. The certificate counts since its check accepted it.',
+	transcription: 'Done. What the comparison found stands on the claim’s page.',
+	statement: 'Done. What was found stands on the claim’s page.'
+};
+
 /** What happens next in each state, for whoever reads the page. */
-export function nextStep(state: TaskState, assignee: string | null): string {
+export function nextStep(
+	state: TaskState,
+	assignee: string | null,
+	accepted: SubmissionKind | null = null
+): string {
 	const who = assignee ?? 'Nobody';
 	switch (state) {
 		case 'open':
@@ -50,7 +62,7 @@ export function nextStep(state: TaskState, assignee: string | null): string {
 				? `${who} looks at it again and submits anew.`
 				: 'It came back and waits for somebody to take it.';
 		case 'accepted':
-			return 'Done. What was accepted counts for the claim’s verdict where machines leave it open.';
+			return accepted ? ACCEPTED_WORDS[accepted] : 'Done. What was accepted stands with the claim.';
 		case 'cancelled':
 			return 'It was called off. Nothing is to be done.';
 	}

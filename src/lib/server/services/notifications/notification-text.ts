@@ -94,6 +94,8 @@ function detail(facts: NotificationFacts): string {
 			return plainText(text) || about;
 		case 'task-due-soon':
 		case 'task-overdue':
+			// Its text is the date, which the sentence says.
+			return asked;
 		case 'task-assigned':
 		case 'task-submitted':
 		case 'task-accepted':

@@ -210,6 +210,8 @@ export interface PublicClaimView extends SharedClaimView {
 	readonly notices: readonly PublicNoticeView[];
 	/** How a discrepancy is to be read; null for other verdicts. */
 	readonly wording: string | null;
+	/** When what a person found was accepted, where the verdict rests on it; never who. */
+	readonly reproducedAt: string | null;
 }
 
 /** What a page that watches a claim polls or streams; the page reloads its data when it changes. */

@@ -10,6 +10,7 @@ import { isPublicClaim } from '../inequalities/visibility';
 import { publicReference } from '../references/public-reference';
 import { claimView } from './claim-view';
 import { publicHistory } from './history';
+import { reproducedAt } from './reproduced-at';
 
 /** @throws ServiceError not-found for a claim that is not public, as if it did not exist */
 export async function showPublicClaim(ctx: Context, id: string): Promise<PublicClaimView> {
@@ -41,6 +42,7 @@ export async function showPublicClaim(ctx: Context, id: string): Promise<PublicC
 		confirmed: whole.confirmed,
 		notices: publicNotices(whole.notices),
 		wording: whole.verdict.status === 'discrepancy' ? DISCREPANCY_WORDING : null,
+		reproducedAt: await reproducedAt(read, claim),
 		stations: whole.stations,
 		progress: whole.progress,
 		recomputationId: whole.recomputationId,

@@ -96,6 +96,9 @@ describe('the record of a claim', () => {
 		const { id } = await showClaim(world.as.member, claim);
 		const shown = await showPublicClaim(world.anonymous, id);
 		expect(shown.verdict.reason).toContain('rests on an accepted reproduction');
+		const [record] = await recordOf(claim);
+		expect(shown.reproducedAt).toBe(record?.decidedAt);
+		expect(shown.reproducedAt).not.toBeNull();
 		expect(JSON.stringify(shown)).not.toMatch(/Wren|Mae |run\.log|own program/);
 	});
 });

@@ -1,5 +1,5 @@
 import { expect, test, type Browser, type Locator, type Page } from '@playwright/test';
-import type { CaughtMailView } from '../../src/lib/schemas/views';
+import type { CaughtMailView } from '../../src/lib/schemas/mail-views';
 import { startServer, type TestServer } from '../support/server';
 
 /**

@@ -243,16 +243,6 @@ export interface PublicReferencePage extends ReferenceView {
 	readonly claimRows: readonly LedgerRow[];
 }
 
-/** A mail that the local sink caught; demo and tests only. */
-export interface CaughtMailView {
-	readonly id: string;
-	readonly at: string;
-	readonly from: string;
-	readonly to: string;
-	readonly subject: string;
-	readonly text: string;
-}
-
 export interface InequalityRow {
 	readonly id: string;
 	readonly subject: SubjectView;

@@ -1,4 +1,4 @@
-import type { CaughtMailView } from '../../schemas/views';
+import type { CaughtMailView } from '../../schemas/mail-views';
 import type { MailSink } from './sink';
 
 /** On globalThis, because the development server evaluates this module anew after a change. */

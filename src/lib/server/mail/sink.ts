@@ -2,7 +2,7 @@ import { mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { simpleParser } from 'mailparser';
 import { SMTPServer } from 'smtp-server';
-import type { CaughtMailView } from '../../schemas/views';
+import type { CaughtMailView } from '../../schemas/mail-views';
 import { newId } from '../ids';
 
 const LARGEST_MAIL = 1_000_000;

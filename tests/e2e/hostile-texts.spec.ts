@@ -99,7 +99,7 @@ async function fill(owner: Visitor): Promise<{ pages: string[]; visitor: string[
 	const opened = await send(owner, `${at}/tasks/new?/open`, {
 		claims: String(number),
 		kind: 'recompute',
-		dueOn: '2090-01-01',
+		dueOn: new Date(Date.now() + 30 * 86_400_000).toISOString().slice(0, 10),
 		instructions: `${MARK}\n\n${XSS_PAYLOADS.slice(0, 20).join('\n\n')}`,
 		assigneeId: await look(`SELECT id FROM users WHERE email = 'guest@slate.example'`)
 	});

@@ -1,6 +1,12 @@
 export const RELATIONS = ['=', '<=', '>='] as const;
 export type Relation = (typeof RELATIONS)[number];
 
+export const RELATION_SIGNS: Readonly<Record<Relation, string>> = {
+	'=': '=',
+	'<=': '≤',
+	'>=': '≥'
+};
+
 export const READINGS = ['as-printed', 'rounded', 'truncated', 'exact'] as const;
 /** How the printed value is to be read; `as-printed` lets its form decide. */
 export type ReadingChoice = (typeof READINGS)[number];

@@ -57,6 +57,15 @@ export function isActiveTask(state: TaskState): boolean {
 	return ACTIVE_TASK_STATES.some((active) => active === state);
 }
 
+/** Whether it waits for whoever has it or takes it; what is submitted waits for somebody else. */
+export function isToDo(state: TaskState): boolean {
+	return isActiveTask(state) && state !== 'submitted';
+}
+
+/** What a list of tasks may be narrowed to; `active`: all that are neither accepted nor cancelled. */
+export const TASK_STATE_FILTERS = ['active', 'all', ...TASK_STATES] as const;
+export type TaskStateFilter = (typeof TASK_STATE_FILTERS)[number];
+
 /** How a submission answers its task. */
 export const SUBMISSION_KINDS = [
 	/** A value found elsewhere, with the program or derivation it came from. */
@@ -92,7 +101,7 @@ export function lastDueDay(today: string): string {
 
 /** Dates without a time, `YYYY-MM-DD`: something is overdue the day after, in UTC. */
 export function isOverdue(dueOn: string | null, state: TaskState, today: string): boolean {
-	return dueOn !== null && dueOn < today && isActiveTask(state) && state !== 'submitted';
+	return dueOn !== null && dueOn < today && isToDo(state);
 }
 
 /** `2026-12-14` of a time, in UTC. */

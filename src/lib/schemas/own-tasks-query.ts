@@ -1,14 +1,11 @@
 import { z } from 'zod';
-import { TASK_STATES, type TaskState } from '../ledger/tasks';
+import { TASK_STATE_FILTERS } from '../ledger/tasks';
 
 export const OWN_TASKS_PAGE_SIZE = 50;
 
 /** State of the table of a person's own tasks, all of it in the URL. */
 const ownTasksQuery = z.object({
-	/** `active`: all that are neither accepted nor cancelled. */
-	state: z
-		.enum(['active', 'all', ...TASK_STATES] as ['active', 'all', ...TaskState[]])
-		.catch('active'),
+	state: z.enum(TASK_STATE_FILTERS).catch('active'),
 	/** A group's slug; empty: all groups. */
 	group: z.string().max(60).catch(''),
 	overdue: z.boolean().catch(false),

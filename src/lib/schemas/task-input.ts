@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { RELATIONS } from '../ledger/claim';
-import { SUBMISSION_KINDS, TASK_KINDS, TASK_STATES, type TaskState } from '../ledger/tasks';
+import { SUBMISSION_KINDS, TASK_KINDS, TASK_STATE_FILTERS } from '../ledger/tasks';
 
 export const TASK_LIMITS = {
 	instructions: 4_000,
@@ -87,10 +87,7 @@ export const TASK_BOARD_SIZE = 200;
 /** State of the task table and board, all of it in the URL. */
 const taskQuery = z.object({
 	view: z.enum(['table', 'board']).catch('table'),
-	/** `active`: all that are neither accepted nor cancelled. */
-	state: z
-		.enum(['active', 'all', ...TASK_STATES] as ['active', 'all', ...TaskState[]])
-		.catch('active'),
+	state: z.enum(TASK_STATE_FILTERS).catch('active'),
 	kind: z.enum(['', ...TASK_KINDS]).catch(''),
 	/** `me`, `nobody`, a person's id; empty: anyone. */
 	assignee: z.string().max(40).catch(''),

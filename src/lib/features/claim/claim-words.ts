@@ -3,12 +3,6 @@ import { withMinusSign } from '../../ledger/figures';
 import type { ProgressView, RecomputationView } from '../../schemas/views';
 import { knownSides } from '../digits/shown-between';
 
-export const RELATION_SIGNS: Readonly<Record<Relation, string>> = {
-	'=': '=',
-	'<=': '≤',
-	'>=': '≥'
-};
-
 const RELATION_WORDS: Readonly<Record<Relation, string>> = {
 	'=': 'is',
 	'<=': 'is at most',

@@ -1,5 +1,5 @@
 import { escape, ICalCalendar, ICalEventTransparency } from 'ical-generator';
-import type { Relation } from '../../ledger/claim';
+import { RELATION_SIGNS, type Relation } from '../../ledger/claim';
 import {
 	TASK_KIND_LABELS,
 	TASK_STATE_LABELS,
@@ -41,8 +41,6 @@ export interface DueDates {
 
 /** How often a calendar program is asked to look again; many look less often whatever is asked. */
 const REFRESH_SECONDS = 3_600;
-
-const RELATION_SIGNS: Readonly<Record<Relation, string>> = { '=': '=', '<=': '≤', '>=': '≥' };
 
 /**
  * Due dates as iCalendar text (RFC 5545; REFRESH-INTERVAL and NAME of RFC 7986): whole days, each

@@ -4,11 +4,11 @@ import { zod4 } from 'sveltekit-superforms/adapters';
 import { authorMessageForm } from '../../schemas/publication-input';
 import { publicContext } from '../auth/guards';
 import { clientAddress } from '../client-address';
-import { ServiceError } from '../errors';
 import { securityEvent } from '../log';
 import { rateLimit } from '../rate-limit';
 import { sendAuthorMessage } from '../services/author-messages/send-author-message';
 import { failForm } from './action-error';
+import { countOrSayWhen } from './request-limits';
 
 /**
  * Of one address, signed in or not: each message is mailed to several people who did not ask for
@@ -36,12 +36,9 @@ export async function takeAuthorAnswer(event: RequestEvent, claimId: string) {
 	}
 	if (!form.valid) return fail(400, { form });
 	try {
-		await messages.count(clientAddress(event));
+		await countOrSayWhen(event, () => messages.count(clientAddress(event)));
 		await sendAuthorMessage(ctx, claimId, message);
 	} catch (thrown) {
-		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {
-			event.setHeaders({ 'Retry-After': String(thrown.retryAfterSeconds) });
-		}
 		return failForm(form, thrown);
 	}
 	redirect(303, `${event.url.pathname}?sent=1`);

@@ -8,7 +8,8 @@ import { attachNotice } from '../services/claim-notices/attach-notice';
 import { removeNotice } from '../services/claim-notices/remove-notice';
 import { parseInput } from '../services/parse-input';
 import { confirmTranscription } from '../services/transcriptions/confirm-transcription';
-import { assertAnswerable, failWith } from './action-error';
+import { assertAnswerable } from './action-error';
+import { claimAction } from './claim-action';
 import { countRequest } from './request-limits';
 import { claimNumber } from './route-numbers';
 
@@ -19,6 +20,8 @@ async function asked(event: RequestEvent) {
 	const data = await event.request.formData();
 	return { ctx, number, text: (name: string) => String(data.get(name) ?? '') };
 }
+
+const idOf = (data: FormData) => String(data.get('id') ?? '');
 
 /** What is wrong beside what was typed, which the page then shows again. */
 function failTyped<K extends string, T>(thrown: unknown, key: K, typed: T) {
@@ -68,31 +71,14 @@ export const publicationActions = {
 			return failTyped(thrown, 'notice', typed);
 		}
 	},
-	removeNotice: async (event: RequestEvent) => {
-		const { ctx, number, text } = await asked(event);
-		try {
-			await removeNotice(ctx, number, text('id'));
-			return { message: 'Removed. The paper stays among the group’s references.' };
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-	},
-	handleMessage: async (event: RequestEvent) => {
-		const { ctx, text } = await asked(event);
-		try {
-			await handleAuthorMessage(ctx, text('id'));
-			return { message: 'Marked as dealt with.' };
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-	},
-	reopenMessage: async (event: RequestEvent) => {
-		const { ctx, text } = await asked(event);
-		try {
-			await reopenAuthorMessage(ctx, text('id'));
-			return { message: 'Taken up again.' };
-		} catch (thrown) {
-			return failWith(thrown);
-		}
-	}
+	removeNotice: claimAction(
+		'Removed. The paper stays among the group’s references.',
+		(ctx, number, data) => removeNotice(ctx, number, idOf(data))
+	),
+	handleMessage: claimAction('Marked as dealt with.', (ctx, _number, data) =>
+		handleAuthorMessage(ctx, idOf(data))
+	),
+	reopenMessage: claimAction('Taken up again.', (ctx, _number, data) =>
+		reopenAuthorMessage(ctx, idOf(data))
+	)
 };

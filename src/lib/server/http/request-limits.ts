@@ -30,8 +30,17 @@ export async function countRequest(
 	kind: keyof typeof LIMITS,
 	times = 1
 ): Promise<void> {
+	const who = event.locals.actor?.id ?? clientAddress(event);
+	await countOrSayWhen(event, () => LIMITS[kind].count(who, times));
+}
+
+/** Counts; a refusal's answer says when to come again. */
+export async function countOrSayWhen(
+	event: RequestEvent,
+	count: () => Promise<unknown>
+): Promise<void> {
 	try {
-		await LIMITS[kind].count(event.locals.actor?.id ?? clientAddress(event), times);
+		await count();
 	} catch (thrown) {
 		if (thrown instanceof ServiceError && thrown.retryAfterSeconds !== null) {
 			event.setHeaders({ 'Retry-After': String(thrown.retryAfterSeconds) });

@@ -4,7 +4,7 @@ import type { HtmlNode } from './html-tree';
 import { safeLink } from './safe-link';
 
 /** Enough for a derivation; KaTeX takes up to a millisecond for each. The others stay as typed. */
-const MOST_FORMULAS = 40;
+export const MOST_FORMULAS = 40;
 const MOST_FORMULA_TEXT = 4_000;
 
 /** Nobody's link here is a recommendation, and where it leads learns nothing of the page. */

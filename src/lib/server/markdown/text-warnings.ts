@@ -1,12 +1,11 @@
 import { unknownMentions, type Handle } from '../../ledger/mentions';
 import { typeset } from '../math/typeset';
+import { MOST_FORMULAS } from './finish-html';
 import { markdownTree, plainTexts, type Tree, type TreeNode } from './markdown-tree';
 import { isReadable } from './readable';
 
 /** Enough to see what is wrong; a text with more has one cause for most of them. */
 const MOST_WARNINGS = 6;
-/** As many as are set at all. */
-const MOST_FORMULAS = 40;
 const SHOWN_OF_FORMULA = 60;
 
 /** What its writer may not have meant: mentions of nobody, formulas that can't be set. */

@@ -1,5 +1,8 @@
 import { STATUS_LABELS, VERDICT_STATUSES } from '../../../ledger/claim';
+import { COMPARED, COMPARED_WORDS } from '../../../ledger/comparison';
+import { listed } from '../../../ledger/listed';
 import { NOTICE_KINDS, NOTICE_LABELS } from '../../../ledger/notices';
+import { ROLES, roleWithArticle } from '../../../ledger/roles';
 import type { ActivityKind } from '../../../schemas/talk-views';
 import { changedClaimFields } from './claim-fields';
 import { textOf, valueOf, type Recorded } from './recorded';
@@ -187,15 +190,14 @@ function edited(claim: string, before: Recorded, after: Recorded): string {
 	const changed = changedClaimFields(before, after);
 	const [only] = changed;
 	if (!only) return `edited ${claim}`;
-	const words = list(changed.map(({ word }) => word.toLowerCase()));
+	const words = listed(changed.map(({ word }) => word.toLowerCase()));
 	const shown = changed.length === 1 && only.short ? ` from ${only.was} to ${only.is}` : '';
 	return `changed the ${words} of ${claim}${shown}`;
 }
 
 function disputed(after: Recorded): string {
-	const parts = ['value', 'locator', 'inequality'] as const;
-	const wrong = parts.filter((part) => valueOf(after, `${part}Matches`) === false);
-	return wrong.length > 0 ? list(wrong) : 'something';
+	const wrong = COMPARED.filter((part) => valueOf(after, part) === false);
+	return listed(wrong.map((part) => COMPARED_WORDS[part])) || 'something';
 }
 
 function notice(recorded: Recorded): string {
@@ -215,7 +217,7 @@ function settingWords(before: Recorded, after: Recorded): string {
 	const changed = Object.entries(SETTINGS).flatMap(([key, word]) =>
 		valueOf(before, key) === valueOf(after, key) ? [] : [word]
 	);
-	return changed.length > 0 ? list(changed) : 'settings';
+	return changed.length > 0 ? listed(changed) : 'settings';
 }
 
 function statusOf(recorded: Recorded): string {
@@ -225,15 +227,8 @@ function statusOf(recorded: Recorded): string {
 
 /** `a member`, `an owner`. */
 function role(recorded: Recorded, instead = 'a member'): string {
-	const name = textOf(recorded, 'role');
-	if (!name) return instead;
-	return `${/^[aeiou]/.test(name) ? 'an' : 'a'} ${name}`;
-}
-
-function list(words: readonly string[]): string {
-	return words.length < 2
-		? (words[0] ?? '')
-		: `${words.slice(0, -1).join(', ')} and ${words[words.length - 1] ?? ''}`;
+	const name = ROLES.find((known) => known === textOf(recorded, 'role'));
+	return name ? roleWithArticle(name) : instead;
 }
 
 const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);

@@ -1,4 +1,5 @@
 import { and, asc, eq, gte, inArray, lt } from 'drizzle-orm';
+import { pageWithin } from '../../../schemas/page-within';
 import { ACTIVITY_PAGE_SIZE, type ActivityQuery } from '../../../schemas/activity-query';
 import type { ActivityPage } from '../../../schemas/talk-views';
 import type { GroupContext } from '../../context';
@@ -25,7 +26,7 @@ export async function listActivity(ctx: GroupContext, query: ActivityQuery): Pro
 		query.to ? lt(audit.at, new Date(Date.parse(query.to) + DAY_MS)) : undefined
 	);
 	const total = await read.$count(audit, which);
-	const page = Math.min(query.page, Math.max(1, Math.ceil(total / ACTIVITY_PAGE_SIZE)));
+	const page = pageWithin(query.page, total, ACTIVITY_PAGE_SIZE);
 	const people = await read
 		.selectDistinct({ id: users.id, name: users.name })
 		.from(audit)

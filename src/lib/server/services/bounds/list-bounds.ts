@@ -1,4 +1,5 @@
 import { and, asc, count, eq, gt, inArray, or, sql, type SQL } from 'drizzle-orm';
+import { pageWithin } from '../../../schemas/page-within';
 import { BOUNDS_PAGE_SIZE, type BoundsQuery } from '../../../schemas/bounds-query';
 import type { BoundsPage, BoundsRow } from '../../../schemas/views';
 import type { Context } from '../../context';
@@ -36,7 +37,7 @@ export async function listBounds(ctx: Context, query: BoundsQuery): Promise<Boun
 	);
 	const [counted] = await read.select({ total: count() }).from(inequalities).where(where);
 	const total = counted?.total ?? 0;
-	const page = Math.min(query.page, Math.max(1, Math.ceil(total / BOUNDS_PAGE_SIZE)));
+	const page = pageWithin(query.page, total, BOUNDS_PAGE_SIZE);
 	const rows = await read
 		.select()
 		.from(inequalities)

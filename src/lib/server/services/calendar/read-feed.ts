@@ -1,5 +1,4 @@
-import { and, asc, eq, inArray, isNotNull, isNull } from 'drizzle-orm';
-import { ACTIVE_TASK_STATES } from '../../../ledger/tasks';
+import { and, asc, eq, isNotNull, isNull } from 'drizzle-orm';
 import { dueDatesCalendar } from '../../calendar/due-dates-calendar';
 import { config } from '../../config';
 import type { Context } from '../../context';
@@ -16,6 +15,7 @@ import {
 } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { hashToken } from '../../ids';
+import { activeTask } from '../tasks/task-conditions';
 
 /** Due dates a calendar holds, the soonest: a year of them in a large group is far from this. */
 const MOST_DUE_DATES = 1_000;
@@ -95,7 +95,7 @@ function dueTasks(
 		.where(
 			and(
 				groupId === null ? eq(tasks.assigneeId, userId) : eq(tasks.groupId, groupId),
-				inArray(tasks.state, [...ACTIVE_TASK_STATES]),
+				activeTask,
 				isNotNull(tasks.dueOn)
 			)
 		)

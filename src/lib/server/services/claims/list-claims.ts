@@ -1,6 +1,7 @@
 import { and, asc, count, desc, eq, or, sql, type SQL } from 'drizzle-orm';
 import { VERDICT_STATUSES } from '../../../ledger/claim';
 import { QUANTITIES } from '../../../ledger/quantities';
+import { pageWithin } from '../../../schemas/page-within';
 import { PAGE_SIZE, type LedgerQuery, type LedgerSort } from '../../../schemas/ledger-query';
 import type { LedgerPage, StatusCounts } from '../../../schemas/views';
 import type { GroupContext } from '../../context';
@@ -32,7 +33,7 @@ export async function listClaims(ctx: GroupContext, query: LedgerQuery): Promise
 		.groupBy(claims.status);
 	const counts = statusCounts(byStatus);
 	const total = query.status === 'all' ? counts.all : counts[query.status];
-	const page = Math.min(query.page, Math.max(1, Math.ceil(total / PAGE_SIZE)));
+	const page = pageWithin(query.page, total, PAGE_SIZE);
 	const selected = await selectClaimRows(
 		read,
 		and(base, search, status, scenario, quantity, proposed)

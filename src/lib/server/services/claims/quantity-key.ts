@@ -1,3 +1,4 @@
+import { oneLine } from '../../../ledger/one-line';
 import { quantityInfo } from '../recomputations/claim-problem';
 import type { ClaimRow } from './find-claim';
 
@@ -13,12 +14,12 @@ export function quantityKey({ input, inequalityId, scale, shift, subject }: Keye
 	const of = (parameter: (typeof parameters)[number], value: string | boolean) =>
 		parameters.includes(parameter) ? value : null;
 	return JSON.stringify([
-		inequalityId === null ? ['in words', plain(subject)] : [inequalityId, scale, shift],
+		inequalityId === null ? ['in words', oneLine(subject)] : [inequalityId, scale, shift],
 		input.quantity,
 		of('sense', input.sense),
-		of('level', plain(input.level).replaceAll(' ', '').toUpperCase()),
+		of('level', oneLine(input.level).replaceAll(' ', '').toUpperCase()),
 		of('nonNegative', input.nonNegative),
-		of('dimension', plain(input.dimension))
+		of('dimension', oneLine(input.dimension))
 	]);
 }
 
@@ -28,5 +29,3 @@ export function isOfInequality(key: string, { inequalityId }: KeyedClaim): boole
 	const subject: unknown = Array.isArray(parts) ? parts[0] : null;
 	return inequalityId !== null && Array.isArray(subject) && subject[0] === inequalityId;
 }
-
-const plain = (text: string) => text.replace(/\s+/g, ' ').trim();

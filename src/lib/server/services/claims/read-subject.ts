@@ -9,6 +9,7 @@ import {
 } from '../../../nonlocality/scenario/families';
 import { collinsGisinForm, type Functional } from '../../../nonlocality/scenario/functional';
 import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
+import { RELATION_SIGNS } from '../../../ledger/claim';
 import type { ClaimInput } from '../../../schemas/claim-input';
 import type { Reader } from '../../db/client';
 import { inequalities } from '../../db/schema';
@@ -96,7 +97,7 @@ function readExpression(input: ClaimInput): SubjectReading {
 		family: null,
 		inequalityId: null,
 		indexBase: indexBase === null ? null : { base: indexBase, chosen },
-		besideIt: claimedBound && `${RELATION_SIGN[claimedBound.relation]} ${claimedBound.text}`,
+		besideIt: claimedBound && `${RELATION_SIGNS[claimedBound.relation]} ${claimedBound.text}`,
 		otherBase: indexBase === null ? null : readWithOtherBase(input.expression, indexBase, given)
 	});
 }
@@ -118,8 +119,6 @@ function readWithOtherBase(
 		throw error;
 	}
 }
-
-const RELATION_SIGN = { '<=': '≤', '>=': '≥', '=': '=' } as const;
 
 const CONSTANT = 'This is the same number for every behaviour: everything else cancels.';
 

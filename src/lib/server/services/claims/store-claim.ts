@@ -1,3 +1,4 @@
+import { oneLine } from '../../../ledger/one-line';
 import type { ClaimInput } from '../../../schemas/claim-input';
 import { toDouble } from '../../../nonlocality/exact/rational';
 import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
@@ -32,9 +33,6 @@ type ClaimColumns = Omit<
 	typeof claims.$inferInsert,
 	'id' | 'groupId' | 'number' | 'createdBy' | 'createdAt' | 'verdict'
 >;
-
-/** Text for one line: what a paste brings of line breaks becomes a space. */
-const oneLine = (text: string) => text.replace(/\s+/g, ' ').trim();
 
 /**
  * Writes what a claim rests on (paper, inequality with its stations, recomputation) and returns

@@ -1,11 +1,12 @@
 import { and, asc, desc, eq, inArray, sql } from 'drizzle-orm';
 import { dayOf } from '../../../ledger/tasks';
+import { pageWithin } from '../../../schemas/page-within';
 import { OWN_TASKS_PAGE_SIZE, type OwnTasksQuery } from '../../../schemas/own-tasks-query';
 import type { OwnTasksPage } from '../../../schemas/talk-views';
 import type { UserContext } from '../../context';
 import { tasks } from '../../db/schema';
 import { listGroupsOf } from '../groups/list-groups-of';
-import { activeTask, overdueTask } from '../tasks/task-conditions';
+import { activeTask, overdueTask, taskInState } from '../tasks/task-conditions';
 import { selectTaskRows, taskRow } from '../tasks/task-rows';
 
 /** One page of the actor's tasks over all their groups, active ones first, soonest due first. */
@@ -25,14 +26,10 @@ export async function listOwnTasks(ctx: UserContext, query: OwnTasksQuery): Prom
 		own,
 		query.group ? eq(tasks.groupId, asked?.id ?? '') : undefined,
 		query.overdue ? overdue : undefined,
-		query.state === 'all'
-			? undefined
-			: query.state === 'active'
-				? activeTask
-				: eq(tasks.state, query.state)
+		taskInState(query.state)
 	);
 	const total = await read.$count(tasks, where);
-	const page = Math.min(query.page, Math.max(1, Math.ceil(total / OWN_TASKS_PAGE_SIZE)));
+	const page = pageWithin(query.page, total, OWN_TASKS_PAGE_SIZE);
 	const selected = await selectTaskRows(read, where)
 		.orderBy(
 			desc(activeTask),

@@ -1,12 +1,11 @@
 import { and, eq, inArray, isNotNull, isNull, lte, max, or, sql } from 'drizzle-orm';
-import { ACTIVE_TASK_STATES, DUE_SOON_DAYS, dayOf } from '../../../ledger/tasks';
+import { DUE_SOON_DAYS, dayOf } from '../../../ledger/tasks';
 import type { Database, Transaction } from '../../db/client';
 import { audit, notifications, tasks } from '../../db/schema';
+import { taskToDo } from '../tasks/task-conditions';
 import { notify } from './notify';
 
 const DAY_MS = 86_400_000;
-/** What is submitted waits for somebody else than the one who would be reminded. */
-const REMINDED_STATES = ACTIVE_TASK_STATES.filter((state) => state !== 'submitted');
 
 type Task = typeof tasks.$inferSelect;
 
@@ -18,11 +17,7 @@ type Task = typeof tasks.$inferSelect;
 export async function sendDueReminders(db: Database, now: Date): Promise<number> {
 	const today = dayOf(now);
 	const soon = dayOf(new Date(now.getTime() + DUE_SOON_DAYS * DAY_MS));
-	const wanted = and(
-		inArray(tasks.state, REMINDED_STATES),
-		isNotNull(tasks.dueOn),
-		lte(tasks.dueOn, soon)
-	);
+	const wanted = and(taskToDo, isNotNull(tasks.dueOn), lte(tasks.dueOn, soon));
 	// Most of the time nothing is due, and then nothing waits for the queue of writes.
 	const [any] = await db.read.select({ id: tasks.id }).from(tasks).where(wanted).limit(1);
 	if (!any) return 0;

@@ -1,4 +1,4 @@
-import { isActiveTask } from '../../../ledger/tasks';
+import { isToDo } from '../../../ledger/tasks';
 import { mailWorthy } from '../../../ledger/verdict';
 import type { NotificationFacts, TaskFacts } from './notification-facts';
 import { isBundle } from './notification-text';
@@ -21,7 +21,9 @@ export function isStillTrue(facts: NotificationFacts): boolean {
 		case 'claim-proposed':
 			return claim !== null && claim.state !== 'withdrawn' && claim.visibility === 'proposed';
 		case 'task-assigned':
-			return isBundle(facts) || (task !== null && isToDo(task) && task.assigneeId === recipient.id);
+			return (
+				isBundle(facts) || (task !== null && isToDo(task.state) && task.assigneeId === recipient.id)
+			);
 		case 'task-submitted':
 			return task?.state === 'submitted';
 		case 'task-returned':
@@ -42,10 +44,8 @@ export function isStillTrue(facts: NotificationFacts): boolean {
 	}
 }
 
-const isToDo = ({ state }: TaskFacts) => isActiveTask(state) && state !== 'submitted';
-
 /** Still on the date the reminder is about, and still this person's to see to. */
 function isDue({ text, recipient }: NotificationFacts, task: TaskFacts): boolean {
 	const theirs = task.assigneeId === recipient.id || task.createdBy === recipient.id;
-	return isToDo(task) && task.dueOn === text && theirs;
+	return isToDo(task.state) && task.dueOn === text && theirs;
 }

@@ -1,7 +1,7 @@
 import { and, desc, eq, gt, inArray, isNull, notExists, or, sql } from 'drizzle-orm';
-import { hasRole } from '../../../ledger/roles';
 import type { Transaction } from '../../db/client';
-import { memberships, notifications, outbox } from '../../db/schema';
+import { notifications, outbox } from '../../db/schema';
+import { maintainersOf } from '../groups/maintainers-of';
 import { notify } from './notify';
 
 /** Stations explain most discrepancies: the mail waits for them, but not longer than this. */
@@ -28,17 +28,10 @@ export async function tellDiscrepancy(
 	now: Date,
 	stationsDone: boolean
 ): Promise<number> {
-	const people = await tx
-		.select({ userId: memberships.userId, role: memberships.role })
-		.from(memberships)
-		.where(eq(memberships.groupId, claim.groupId));
-	const recipients = people
-		.filter(({ userId, role }) => userId === claim.createdBy || hasRole(role, 'maintainer'))
-		.map(({ userId }) => userId);
 	return notify(tx, product(now), {
 		kind: 'discrepancy',
 		groupId: claim.groupId,
-		recipients,
+		recipients: [claim.createdBy, ...(await maintainersOf(tx, claim.groupId))],
 		event: verdictId,
 		claimId: claim.id,
 		notBefore: stationsDone ? now : new Date(now.getTime() + MAIL_WAIT_MS)

@@ -1,3 +1,4 @@
+import { oneLine } from '../../../ledger/one-line';
 import { NO_SOLVER } from '../../../ledger/judgement';
 import { QUANTITIES, type QuantityInfo, type QuantityKey } from '../../../ledger/quantities';
 import type { Level, Problem } from '../../../nonlocality/problem';
@@ -36,7 +37,7 @@ const LARGEST_DIMENSION = 20;
 
 /** `1`, `2` ..., `1+AB`, `1 per party`; or what is wrong with it. */
 export function readLevel(text: string): { level: Level; label: string } | FieldIssue {
-	const plain = text.replace(/\s+/g, ' ').trim();
+	const plain = oneLine(text);
 	if (/^1 ?\+ ?AB$/i.test(plain)) return { level: '1+AB', label: 'level 1+AB' };
 	const perParty = /^([1-9]) per party$/i.exec(plain);
 	if (perParty) {

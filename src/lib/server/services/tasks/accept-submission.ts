@@ -1,12 +1,11 @@
 import { eq } from 'drizzle-orm';
 import type { GroupContext } from '../../context';
-import type { Transaction } from '../../db/client';
-import { claims, submissions, tasks } from '../../db/schema';
+import { submissions, tasks } from '../../db/schema';
 import { ServiceError } from '../../errors';
 import { deriveClaim } from '../claims/derive-claim';
 import type { ClaimRow } from '../claims/find-claim';
 import { quantityKey } from '../claims/quantity-key';
-import type { SubmissionRecord } from './find-task';
+import { claimOfTask, type SubmissionRecord } from './find-task';
 import { readReason } from './read-reason';
 import { changeTask } from './step-task';
 import { tell } from './tell';
@@ -34,12 +33,12 @@ export async function acceptSubmission(
 		{ audit: 'task.accepted', columns: { reason: '' }, seen, after: said ? { comment: said } : {} },
 		async (tx, { task, submission }) => {
 			if (!submission) throw new ServiceError('conflict', 'There is nothing to accept.');
-			await requireCurrent(tx, submission);
+			const before = await claimOfTask(tx, task);
+			requireCurrent(submission, before);
 			await tx
 				.update(submissions)
 				.set({ state: 'accepted', decidedBy: ctx.actor.id, decidedAt: ctx.now(), decision: said })
 				.where(eq(submissions.id, submission.id));
-			const before = await findAbout(tx, task.claimId);
 			await deriveClaim(tx, task.claimId, ctx.now());
 			const [after] = await tx
 				.select({ state: tasks.state })
@@ -54,16 +53,9 @@ export async function acceptSubmission(
 	return { contradicted };
 }
 
-async function findAbout(tx: Transaction, claimId: string): Promise<ClaimRow> {
-	const [claim] = await tx.select().from(claims).where(eq(claims.id, claimId));
-	if (!claim) throw new ServiceError('not-found', 'The claim of this task is gone.');
-	return claim;
-}
-
 /** A value that was found for something else would be accepted and count for nothing. */
-async function requireCurrent(tx: Transaction, submission: SubmissionRecord): Promise<void> {
+function requireCurrent(submission: SubmissionRecord, claim: ClaimRow): void {
 	if (submission.kind !== 'value') return;
-	const claim = await findAbout(tx, submission.claimId);
 	if (quantityKey(claim) === submission.quantityKey) return;
 	throw new ServiceError(
 		'conflict',

@@ -1,10 +1,10 @@
-import { and, asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq } from 'drizzle-orm';
 import { PRODUCT } from '../../../ledger/task-life';
-import { ACTIVE_TASK_STATES } from '../../../ledger/tasks';
 import type { Transaction } from '../../db/client';
 import { tasks } from '../../db/schema';
 import { endTask } from './cancel-task';
 import { stepTask, type Actor } from './step-task';
+import { activeTask } from './task-conditions';
 
 /** Ends what is still to be done about a claim, in the transaction that ends the claim. */
 export async function cancelTasksOfClaim(
@@ -16,7 +16,7 @@ export async function cancelTasksOfClaim(
 	const active = await tx
 		.select()
 		.from(tasks)
-		.where(and(eq(tasks.claimId, claimId), inArray(tasks.state, [...ACTIVE_TASK_STATES])))
+		.where(and(eq(tasks.claimId, claimId), activeTask))
 		.orderBy(asc(tasks.number));
 	for (const task of active) {
 		const change = { audit: 'task.cancelled', columns: { reason } };

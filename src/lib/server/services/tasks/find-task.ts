@@ -3,8 +3,9 @@ import { hasRole } from '../../../ledger/roles';
 import type { TaskFacts } from '../../../ledger/task-life';
 import type { GroupContext } from '../../context';
 import type { Reader } from '../../db/client';
-import { memberships, submissions, tasks } from '../../db/schema';
+import { claims, memberships, submissions, tasks } from '../../db/schema';
 import { ServiceError } from '../../errors';
+import type { ClaimRow } from '../claims/find-claim';
 
 export type TaskRecord = typeof tasks.$inferSelect;
 export type SubmissionRecord = typeof submissions.$inferSelect;
@@ -23,6 +24,16 @@ export async function findTask(
 		: [];
 	if (!row) throw new ServiceError('not-found', `There is no task ${number} in this group.`);
 	return row;
+}
+
+/** @throws ServiceError not-found */
+export async function claimOfTask(
+	read: Reader,
+	{ claimId }: Pick<TaskRecord, 'claimId'>
+): Promise<ClaimRow> {
+	const [claim] = await read.select().from(claims).where(eq(claims.id, claimId));
+	if (!claim) throw new ServiceError('not-found', 'The claim of this task is gone.');
+	return claim;
 }
 
 /** The try a decision is about: the newest. */

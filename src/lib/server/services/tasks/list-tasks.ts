@@ -1,6 +1,7 @@
 import { and, asc, count, desc, eq, isNull, or, sql, type SQL } from 'drizzle-orm';
 import { may } from '../../../ledger/policy';
 import { TASK_STATES, dayOf, isActiveTask, type TaskState } from '../../../ledger/tasks';
+import { pageWithin } from '../../../schemas/page-within';
 import {
 	TASK_BOARD_SIZE,
 	TASK_PAGE_SIZE,
@@ -11,7 +12,7 @@ import type { TasksPage } from '../../../schemas/task-views';
 import type { GroupContext } from '../../context';
 import { claims, inequalities, references, tasks } from '../../db/schema';
 import { contains, searchWords } from '../search-words';
-import { activeTask, overdueTask, tasksOfPerson, waitsFor } from './task-conditions';
+import { overdueTask, taskInState, tasksOfPerson, waitsFor } from './task-conditions';
 import { peopleForTasks } from './people-for-tasks';
 import { assignees, selectTaskRows, taskRow } from './task-rows';
 
@@ -42,8 +43,8 @@ export async function listTasks(ctx: GroupContext, query: TaskQuery): Promise<Ta
 		0
 	);
 	const pageSize = query.view === 'board' ? TASK_BOARD_SIZE : TASK_PAGE_SIZE;
-	const page = Math.min(query.page, Math.max(1, Math.ceil(total / pageSize)));
-	const selected = await selectTaskRows(read, and(filters, inState(query.state)))
+	const page = pageWithin(query.page, total, pageSize);
+	const selected = await selectTaskRows(read, and(filters, taskInState(query.state)))
 		.orderBy(...ORDERS[query.sort])
 		.limit(pageSize)
 		.offset((page - 1) * pageSize);
@@ -63,11 +64,6 @@ export async function listTasks(ctx: GroupContext, query: TaskQuery): Promise<Ta
 
 function isListed(asked: TaskQuery['state'], state: TaskState): boolean {
 	return asked === 'all' || (asked === 'active' ? isActiveTask(state) : asked === state);
-}
-
-function inState(asked: TaskQuery['state']): SQL | undefined {
-	if (asked === 'all') return undefined;
-	return asked === 'active' ? activeTask : eq(tasks.state, asked);
 }
 
 function assigned(ctx: GroupContext, asked: string): SQL | undefined {

@@ -1,3 +1,4 @@
+import { oneLine } from '../../../ledger/one-line';
 import { SUBMISSION_KINDS_OF } from '../../../ledger/task-submissions';
 import { StatedValueError, claimedRelation, readStatedValue } from '../../../ledger/stated-value';
 import { TASK_KIND_LABELS, type TaskKind } from '../../../ledger/tasks';
@@ -59,8 +60,6 @@ export async function readSubmission(
 }
 
 const NO_METHOD = { program: '', programVersion: '', method: '' } as const;
-
-const oneLine = (text: string) => text.replace(/\s+/g, ' ').trim();
 
 const methodOf = ({ program, programVersion, method }: SubmitInput) => ({
 	program: oneLine(program),

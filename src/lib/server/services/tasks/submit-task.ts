@@ -1,9 +1,7 @@
-import { eq } from 'drizzle-orm';
 import { submissionInput, type SubmissionInput } from '../../../schemas/task-input';
 import type { GroupContext } from '../../context';
-import type { Reader, Transaction } from '../../db/client';
-import { claims, submissions } from '../../db/schema';
-import { ServiceError } from '../../errors';
+import type { Transaction } from '../../db/client';
+import { submissions } from '../../db/schema';
 import { newId } from '../../ids';
 import { deriveClaim } from '../claims/derive-claim';
 import type { ClaimRow } from '../claims/find-claim';
@@ -18,7 +16,7 @@ import {
 import { maintainersOf } from '../groups/maintainers-of';
 import { parseInput } from '../parse-input';
 import { recordTranscriptionCheck } from '../transcriptions/record-transcription-check';
-import { findTask } from './find-task';
+import { claimOfTask, findTask } from './find-task';
 import { requireClaimAsSeen } from './require-claim-as-seen';
 import { readSubmission, type ReadSubmission } from './read-submission';
 import { asActor, refuseStep, stepTask } from './step-task';
@@ -42,7 +40,7 @@ export async function submitTask(
 	const task = await findTask(read, ctx, number);
 	// Asked again in the transaction; here so that nothing is checked or stored in vain.
 	await refuseStep(read, task, { kind: 'submit' }, asActor(ctx));
-	const claim = await claimOf(read, task.claimId);
+	const claim = await claimOfTask(read, task);
 	await requireClaimAsSeen(read, claim, claimVersion ?? claim.version);
 	const found = await readSubmission(ctx, task, claim, asks, files.length);
 	const stored = await storeFiles(ctx, files);
@@ -82,7 +80,7 @@ async function write(
 	{ number, claim, found, stored }: Handed
 ): Promise<{ id: string }> {
 	const before = await findTask(tx, ctx, number);
-	const current = await claimOf(tx, before.claimId);
+	const current = await claimOfTask(tx, before);
 	await requireClaimAsSeen(tx, current, claim.version);
 	const id = newId();
 	const { columns, comparison } = found;
@@ -108,10 +106,4 @@ async function write(
 	await tell(tx, ctx, 'task-submitted', task, await maintainersOf(tx, task.groupId));
 	await tellAgreement(tx, ctx, 'task-submitted', task, current, ctx.actor.id);
 	return { id };
-}
-
-async function claimOf(read: Reader, id: string): Promise<ClaimRow> {
-	const [claim] = await read.select().from(claims).where(eq(claims.id, id));
-	if (!claim) throw new ServiceError('not-found', 'The claim of this task is gone.');
-	return claim;
 }

@@ -1,18 +1,27 @@
-import { and, eq, inArray, isNotNull, lt, ne, notExists, sql, type SQL } from 'drizzle-orm';
-import { ACTIVE_TASK_STATES } from '../../../ledger/tasks';
+import { and, eq, inArray, isNotNull, lt, notExists, sql, type SQL } from 'drizzle-orm';
+import {
+	ACTIVE_TASK_STATES,
+	TASK_STATES,
+	isToDo,
+	type TaskStateFilter
+} from '../../../ledger/tasks';
 import type { Reader } from '../../db/client';
 import { submissions, tasks } from '../../db/schema';
 
+export const activeTask = inArray(tasks.state, [...ACTIVE_TASK_STATES]);
+
+/** As `isToDo` of the ledger says it. */
+export const taskToDo = inArray(tasks.state, TASK_STATES.filter(isToDo));
+
 /** As `isOverdue` of the ledger says it. */
 export const overdueTask = (today: string): SQL | undefined =>
-	and(
-		isNotNull(tasks.dueOn),
-		lt(tasks.dueOn, today),
-		inArray(tasks.state, [...ACTIVE_TASK_STATES]),
-		ne(tasks.state, 'submitted')
-	);
+	and(isNotNull(tasks.dueOn), lt(tasks.dueOn, today), taskToDo);
 
-export const activeTask = inArray(tasks.state, [...ACTIVE_TASK_STATES]);
+/** The tasks that a list narrowed to this shows. */
+export function taskInState(asked: TaskStateFilter): SQL | undefined {
+	if (asked === 'all') return undefined;
+	return asked === 'active' ? activeTask : eq(tasks.state, asked);
+}
 
 /** What somebody has that has not come to its end. */
 export const tasksOfPerson = (userId: string): SQL | undefined =>

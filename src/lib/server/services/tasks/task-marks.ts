@@ -1,8 +1,9 @@
 import { and, asc, desc, eq, inArray } from 'drizzle-orm';
-import { ACTIVE_TASK_STATES, isOverdue } from '../../../ledger/tasks';
+import { isOverdue } from '../../../ledger/tasks';
 import type { TaskMark } from '../../../schemas/task-views';
 import type { Reader } from '../../db/client';
 import { tasks, users } from '../../db/schema';
+import { activeTask } from './task-conditions';
 
 /**
  * Per claim the task that waits on it and was changed last, with how many more there are.
@@ -19,9 +20,7 @@ export async function taskMarks(
 		.select({ task: tasks, assignee: users.name })
 		.from(tasks)
 		.leftJoin(users, eq(users.id, tasks.assigneeId))
-		.where(
-			and(inArray(tasks.claimId, [...claimIds]), inArray(tasks.state, [...ACTIVE_TASK_STATES]))
-		)
+		.where(and(inArray(tasks.claimId, [...claimIds]), activeTask))
 		.orderBy(desc(tasks.updatedAt), asc(tasks.number));
 	for (const { task, assignee } of rows) {
 		const { claimId, number, kind, state, dueOn } = task;

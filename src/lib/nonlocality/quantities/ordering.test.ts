@@ -1,6 +1,5 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import '../../../../tests/support/fast-check';
 import { randomFunctional } from '../../../../tests/factories/random-functional';
 import { lehmer, quietControl } from '../../../../tests/factories/solver-problem';
 import type { DoneResult, Level, Problem } from '../problem';

@@ -20,7 +20,15 @@ const outside = ['$lib', '$lib/**', '$app/**', '$env/**'];
 
 export default ts.config(
 	{
-		ignores: ['build/', '.svelte-kit/', 'node_modules/', 'data/', 'drizzle/', 'coverage/']
+		ignores: [
+			'build/',
+			'.svelte-kit/',
+			'node_modules/',
+			'data/',
+			'drizzle/',
+			'coverage/',
+			'src/lib/nonlocality/linalg/kernels/assembly/' // AssemblyScript, not TypeScript
+		]
 	},
 	js.configs.recommended,
 	...ts.configs.strict,

@@ -39,6 +39,8 @@ export default {
 		typescript: {
 			config(config) {
 				config.include.push('../seed/**/*.ts', '../*.config.ts');
+				// AssemblyScript: looks like TypeScript, has other types.
+				config.exclude.push('../src/lib/nonlocality/linalg/kernels/assembly/**');
 			}
 		},
 		csp: {

@@ -3,37 +3,42 @@
 const MOST_SWEEPS = 60;
 
 /**
- * Smallest eigenvalue of a symmetric tridiagonal matrix, to about 1e-15 of its norm, by bisection
- * on the number of negative pivots (Sturm's theorem).
- * @param diagonal `n` entries; @param offDiagonal `n - 1` entries.
+ * Smallest eigenvalue of a symmetric tridiagonal matrix, from below, by bisection on the number of
+ * negative pivots (Sturm's theorem).
+ * @param diagonal `n` entries; @param offDiagonal `n - 1` entries; more are not looked at.
+ * @param precision of the result, relative to the distances from 0 of the interval around it.
  */
 export function smallestTridiagonalEigenvalue(
-	diagonal: readonly number[],
-	offDiagonal: readonly number[]
+	diagonal: ArrayLike<number>,
+	offDiagonal: ArrayLike<number>,
+	n = diagonal.length,
+	precision = 1e-15
 ): number {
 	let low = Infinity;
 	let high = Infinity;
-	diagonal.forEach((value, i) => {
-		const radius = Math.abs(offDiagonal[i - 1] ?? 0) + Math.abs(offDiagonal[i] ?? 0);
-		low = Math.min(low, value - radius);
-		high = Math.min(high, value);
-	});
-	while (high - low > 1e-15 * (Math.abs(low) + Math.abs(high))) {
+	for (let i = 0; i < n; i++) {
+		const before = i > 0 ? Math.abs(offDiagonal[i - 1] ?? 0) : 0;
+		const after = i + 1 < n ? Math.abs(offDiagonal[i] ?? 0) : 0;
+		low = Math.min(low, (diagonal[i] ?? 0) - before - after);
+		high = Math.min(high, diagonal[i] ?? 0);
+	}
+	while (high - low > precision * (Math.abs(low) + Math.abs(high))) {
 		const middle = low + (high - low) / 2;
 		if (middle <= low || middle >= high) break;
-		if (hasEigenvalueBelow(diagonal, offDiagonal, middle)) high = middle;
+		if (hasEigenvalueBelow(diagonal, offDiagonal, n, middle)) high = middle;
 		else low = middle;
 	}
 	return low;
 }
 
 function hasEigenvalueBelow(
-	diagonal: readonly number[],
-	offDiagonal: readonly number[],
+	diagonal: ArrayLike<number>,
+	offDiagonal: ArrayLike<number>,
+	n: number,
 	shift: number
 ): boolean {
 	let pivot = 1;
-	for (let i = 0; i < diagonal.length; i++) {
+	for (let i = 0; i < n; i++) {
 		const off = i > 0 ? (offDiagonal[i - 1] ?? 0) : 0;
 		pivot = (diagonal[i] ?? 0) - shift - (off === 0 ? 0 : (off * off) / pivot);
 		if (pivot < 0) return true;

@@ -1,5 +1,5 @@
-import { factorCholesky, invertFactor, inverseFromFactor } from '../linalg/cholesky';
 import { addScaled, dot, largestMagnitude } from '../linalg/dense';
+import type { Kernels } from '../linalg/kernels/kernels';
 import {
 	addInnerProducts,
 	addRows,
@@ -9,7 +9,7 @@ import {
 	type MomentProgramme
 } from './moment-programme';
 import type { Direction, NewtonState } from './newton-system';
-import { largestStep } from './step-length';
+import { StepLength } from './step-length';
 
 /** A primal point y with Gamma(y) > 0 and a multiplier; arrays are the solver's own, copy to keep. */
 export interface Iterate {
@@ -49,18 +49,25 @@ export class InteriorPoint implements NewtonState {
 	readonly rowMultipliers: Float64Array;
 	readonly equalityMultipliers: Float64Array;
 	readonly #programme: MomentProgramme;
+	readonly #kernels: Kernels;
+	readonly #stepLength: StepLength;
 	readonly #n: number;
 	readonly #cells: Int32Array;
 	readonly #s: Float64Array;
 	readonly #factor: Float64Array;
 	readonly #inverseS: Float64Array;
 	readonly #inverseX: Float64Array;
+	/** X before a move, and before its projection. */
+	readonly #before: Float64Array;
+	readonly #unprojected: Float64Array;
 
 	/** @param start moments with Gamma > 0, `start[0] = 1`. */
-	constructor(programme: MomentProgramme, start: Float64Array) {
+	constructor(programme: MomentProgramme, start: Float64Array, kernels: Kernels) {
 		const n = programme.size;
-		const square = () => new Float64Array(n * n);
+		const square = () => kernels.doubles(n * n);
 		this.#programme = programme;
+		this.#kernels = kernels;
+		this.#stepLength = new StepLength(n, kernels);
 		this.#n = n;
 		this.#cells = countCells(programme);
 		this.y = start.slice();
@@ -70,6 +77,8 @@ export class InteriorPoint implements NewtonState {
 		this.#factor = square();
 		this.#inverseS = square();
 		this.#inverseX = square();
+		this.#before = square();
+		this.#unprojected = square();
 		this.rowSlack = new Float64Array(programme.rows.length);
 		this.rowResidual = new Float64Array(programme.rows.length);
 		this.rowMultipliers = new Float64Array(programme.rows.length);
@@ -83,8 +92,8 @@ export class InteriorPoint implements NewtonState {
 		if (!this.#factorSlack()) return false;
 		this.x.set(this.w);
 		this.#factor.set(this.x);
-		if (!factorCholesky(this.#factor, n)) return false;
-		invertFactor(this.#factor, n, this.#inverseX);
+		if (!this.#kernels.factorCholesky(this.#factor, n)) return false;
+		this.#kernels.invertFactor(this.#factor, n, this.#inverseX);
 		this.#programme.rows.forEach((row, j) => {
 			const value = evaluateRow(row, this.y);
 			const slack = Math.max(value, FIRST_SLACK);
@@ -98,9 +107,9 @@ export class InteriorPoint implements NewtonState {
 	/** Cholesky of S, its inverse factor and W = S^-1. */
 	#factorSlack(): boolean {
 		this.#factor.set(this.#s);
-		if (!factorCholesky(this.#factor, this.#n)) return false;
-		invertFactor(this.#factor, this.#n, this.#inverseS);
-		inverseFromFactor(this.#inverseS, this.#n, this.w);
+		if (!this.#kernels.factorCholesky(this.#factor, this.#n)) return false;
+		this.#kernels.invertFactor(this.#factor, this.#n, this.#inverseS);
+		this.#kernels.inverseFromFactor(this.#inverseS, this.#n, this.w);
 		return true;
 	}
 
@@ -129,12 +138,12 @@ export class InteriorPoint implements NewtonState {
 	}
 
 	complementarity(): number {
-		const products = dot(this.x, this.#s) + dot(this.rowMultipliers, this.rowSlack);
+		const products = this.#kernels.dot(this.x, this.#s) + dot(this.rowMultipliers, this.rowSlack);
 		return products / (this.#n + this.rowSlack.length);
 	}
 
 	multiplierStep(direction: Direction): number {
-		let step = largestStep(this.#inverseX, direction.dx, this.#n);
+		let step = this.#stepLength.find(this.#inverseX, direction.dx);
 		this.rowMultipliers.forEach((z, j) => {
 			const dz = direction.rowMultipliers[j] ?? 0;
 			if (dz < 0) step = Math.min(step, -z / dz);
@@ -143,7 +152,7 @@ export class InteriorPoint implements NewtonState {
 	}
 
 	slackStep(direction: Direction): number {
-		let step = largestStep(this.#inverseS, direction.ds, this.#n);
+		let step = this.#stepLength.find(this.#inverseS, direction.ds);
 		this.rowSlack.forEach((s, j) => {
 			const ds = direction.rowSlack[j] ?? 0;
 			if (ds < 0) step = Math.min(step, -s / ds);
@@ -153,11 +162,12 @@ export class InteriorPoint implements NewtonState {
 
 	complementarityAfter(direction: Direction, primalStep: number, dualStep: number): number {
 		const { dx, ds } = direction;
+		const kernels = this.#kernels;
 		let sum =
-			dot(this.x, this.#s) +
-			primalStep * dot(dx, this.#s) +
-			dualStep * dot(this.x, ds) +
-			primalStep * dualStep * dot(dx, ds);
+			kernels.dot(this.x, this.#s) +
+			primalStep * kernels.dot(dx, this.#s) +
+			dualStep * kernels.dot(this.x, ds) +
+			primalStep * dualStep * kernels.dot(dx, ds);
 		this.rowSlack.forEach((s, j) => {
 			sum +=
 				(s + dualStep * (direction.rowSlack[j] ?? 0)) *
@@ -169,25 +179,27 @@ export class InteriorPoint implements NewtonState {
 	/** Returns the step taken; 0 leaves everything as it was. */
 	moveMultiplier(direction: Direction, wanted: number): number {
 		const n = this.#n;
-		const before = this.x.slice();
+		const kernels = this.#kernels;
+		const before = this.#before;
+		before.set(this.x);
 		const rowsBefore = this.rowMultipliers.slice();
 		const equalitiesBefore = this.equalityMultipliers.slice();
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
 			this.x.set(before);
-			addScaled(this.x, step, direction.dx);
+			kernels.addScaled(this.x, step, direction.dx);
 			this.rowMultipliers.set(rowsBefore);
 			addScaled(this.rowMultipliers, step, direction.rowMultipliers);
 			this.equalityMultipliers.set(equalitiesBefore);
 			addScaled(this.equalityMultipliers, step, direction.equalityMultipliers);
-			const unprojected = this.x.slice();
+			this.#unprojected.set(this.x);
 			this.#project();
 			this.#factor.set(this.x);
-			if (!factorCholesky(this.#factor, n)) {
-				this.x.set(unprojected);
-				this.#factor.set(unprojected);
-				if (!factorCholesky(this.#factor, n)) continue;
+			if (!kernels.factorCholesky(this.#factor, n)) {
+				this.x.set(this.#unprojected);
+				this.#factor.set(this.x);
+				if (!kernels.factorCholesky(this.#factor, n)) continue;
 			}
-			invertFactor(this.#factor, n, this.#inverseX);
+			kernels.invertFactor(this.#factor, n, this.#inverseX);
 			return step;
 		}
 		this.x.set(before);

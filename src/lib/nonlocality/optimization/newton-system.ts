@@ -1,5 +1,6 @@
 import { factorCholesky, solveFactored } from '../linalg/cholesky';
-import { addScaled, dot, multiply, symmetrise } from '../linalg/dense';
+import { addScaled, dot } from '../linalg/dense';
+import type { Kernels } from '../linalg/kernels/kernels';
 import {
 	addInnerProducts,
 	addRows,
@@ -32,6 +33,18 @@ export interface Direction {
 	readonly equalityMultipliers: Float64Array;
 }
 
+export function makeDirection(programme: MomentProgramme, kernels: Kernels): Direction {
+	const { size: n, unknowns: m, rows, equalities } = programme;
+	return {
+		dy: kernels.doubles(m + 1),
+		dx: kernels.doubles(n * n),
+		ds: kernels.doubles(n * n),
+		rowSlack: new Float64Array(rows.length),
+		rowMultipliers: new Float64Array(rows.length),
+		equalityMultipliers: new Float64Array(equalities.length)
+	};
+}
+
 /**
  * Additions to the diagonal of the Schur complement, tried when it is not positive: relative to each
  * entry, then to the largest. The latter is the size of the rounding errors, under which entries
@@ -57,12 +70,15 @@ const BORDER_REGULARISATIONS = [0, 1e-14, 1e-12, 1e-10];
  */
 export class NewtonSystem {
 	readonly #programme: MomentProgramme;
+	readonly #kernels: Kernels;
 	readonly #schur: SchurComplement;
 	/** Lower triangle: the factor; strict upper: the matrix itself, its diagonal in `#diagonal`. */
 	readonly #matrix: Float64Array;
 	readonly #diagonal: Float64Array;
 	readonly #first: Float64Array;
 	readonly #second: Float64Array;
+	readonly #solution: Float64Array;
+	readonly #rest: Float64Array;
 	readonly #poll: () => void;
 	#border: Border | null = null;
 	/** Place in ADDITIONS. */
@@ -70,15 +86,18 @@ export class NewtonSystem {
 	#altered = false;
 
 	/** @param poll called at least every few milliseconds of work. */
-	constructor(programme: MomentProgramme, poll: () => void) {
+	constructor(programme: MomentProgramme, kernels: Kernels, poll: () => void) {
 		const { size: n, unknowns: m } = programme;
 		this.#poll = poll;
 		this.#programme = programme;
-		this.#schur = new SchurComplement(programme);
-		this.#matrix = new Float64Array(m * m);
-		this.#diagonal = new Float64Array(m);
-		this.#first = new Float64Array(n * n);
-		this.#second = new Float64Array(n * n);
+		this.#kernels = kernels;
+		this.#schur = new SchurComplement(programme, kernels);
+		this.#matrix = kernels.doubles(m * m);
+		this.#diagonal = kernels.doubles(m);
+		this.#first = kernels.doubles(n * n);
+		this.#second = kernels.doubles(n * n);
+		this.#solution = kernels.doubles(m);
+		this.#rest = kernels.doubles(m);
 	}
 
 	/** Builds and factorises; false when the matrix is singular to working precision. */
@@ -103,7 +122,7 @@ export class NewtonSystem {
 			const { own, largest } = ADDITIONS[this.#addition] ?? NO_ADDITION;
 			if (this.#altered || this.#addition > 0) this.#restore(own, largest);
 			this.#altered = true;
-			if (factorCholesky(this.#matrix, this.#programme.unknowns, this.#poll)) {
+			if (this.#kernels.factorCholesky(this.#matrix, this.#programme.unknowns, this.#poll)) {
 				this.#border = this.#makeBorder();
 				return this.#border !== null;
 			}
@@ -114,32 +133,24 @@ export class NewtonSystem {
 
 	#keepCopy(): void {
 		const m = this.#programme.unknowns;
-		const tile = 32; // both triangles of a tile stay in the cache
-		for (let i0 = 0; i0 < m; i0 += tile) {
-			this.#poll();
-			for (let j0 = 0; j0 <= i0; j0 += tile)
-				for (let i = i0; i < Math.min(i0 + tile, m); i++)
-					for (let j = j0; j < Math.min(j0 + tile, i); j++)
-						this.#matrix[j * m + i] = this.#matrix[i * m + j] ?? 0;
-		}
+		this.#kernels.mirror(this.#matrix, m, 'upper');
 		for (let i = 0; i < m; i++) this.#diagonal[i] = this.#matrix[i * m + i] ?? 0;
 	}
 
 	#restore(own: number, largest: number): void {
 		const m = this.#programme.unknowns;
 		const added = largest * this.#diagonal.reduce((a, value) => Math.max(a, value), 0);
-		for (let i = 0; i < m; i++) {
-			for (let j = 0; j < i; j++) this.#matrix[i * m + j] = this.#matrix[j * m + i] ?? 0;
+		this.#kernels.mirror(this.#matrix, m, 'lower');
+		for (let i = 0; i < m; i++)
 			this.#matrix[i * m + i] = (this.#diagonal[i] ?? 0) * (1 + own) + added;
-		}
 	}
 
 	#makeBorder(): Border | null {
 		const { equalities, unknowns: m } = this.#programme;
 		const solved = equalities.map((row) => {
-			const vector = this.#ranked(row);
-			solveFactored(this.#matrix, m, vector);
-			return vector;
+			this.#solution.set(this.#ranked(row));
+			this.#kernels.solveFactored(this.#matrix, m, this.#solution);
+			return this.#solution.slice();
 		});
 		const k = equalities.length;
 		const matrix = new Float64Array(k * k);
@@ -159,23 +170,22 @@ export class NewtonSystem {
 	#ranked(row: SparseRow): Float64Array {
 		const vector = new Float64Array(this.#programme.unknowns);
 		row.columns.forEach((column, at) => {
-			if (column > 0) vector[this.#schur.rank[column] ?? 0] = row.values[at] ?? 0;
+			if (column > 0) vector[this.#schur.supports.rank[column] ?? 0] = row.values[at] ?? 0;
 		});
 		return vector;
 	}
 
-	/** @param target sigma mu; @param predictor adds Mehrotra's second-order correction. */
-	solve(state: NewtonState, target: number, predictor: Direction | null): Direction {
-		const { size: n, objective, rows, equalities, unknowns: m } = this.#programme;
-		const fixed = new Float64Array(n * n);
-		for (let cell = 0; cell < fixed.length; cell++) fixed[cell] = target * (state.w[cell] ?? 0);
-		if (predictor) {
-			multiply(predictor.dx, predictor.ds, this.#first, n);
-			multiply(this.#first, state.w, this.#second, n);
-			symmetrise(this.#second, n);
-			for (let cell = 0; cell < fixed.length; cell++)
-				fixed[cell] = (fixed[cell] ?? 0) - (this.#second[cell] ?? 0);
-		}
+	/**
+	 * @param target sigma mu
+	 * @param predictor adds Mehrotra's second-order correction
+	 * @param into another direction, which the result is written to
+	 */
+	solve(state: NewtonState, target: number, predictor: Direction | null, into: Direction): void {
+		const { objective, rows, equalities } = this.#programme;
+		const fixed = into.dx;
+		fixed.set(state.w);
+		for (let cell = 0; cell < fixed.length; cell++) fixed[cell] = target * (fixed[cell] ?? 0);
+		if (predictor) this.#addProduct(fixed, predictor.dx, predictor.ds, state.w);
 		const rowFixed = state.rowSlack.map((s, j) => {
 			const z = state.rowMultipliers[j] ?? 0;
 			const correction = predictor
@@ -187,46 +197,47 @@ export class NewtonSystem {
 		addInnerProducts(this.#programme, fixed, 1, rhs);
 		addRows(rows, rowFixed, 1, rhs);
 		addRows(equalities, state.equalityMultipliers, 1, rhs);
-		const { dy, equalityMultipliers } = this.#solveLinear(rhs, state.y, m);
+		this.#solveLinear(rhs, state.y, into.dy, into.equalityMultipliers);
 
-		const ds = new Float64Array(n * n);
-		fillDirection(this.#programme, dy, ds);
-		multiply(state.x, ds, this.#first, n);
-		multiply(this.#first, state.w, this.#second, n);
-		symmetrise(this.#second, n);
-		const dx = fixed;
-		for (let cell = 0; cell < dx.length; cell++)
-			dx[cell] = (dx[cell] ?? 0) - (state.x[cell] ?? 0) - (this.#second[cell] ?? 0);
-		const linear = Float64Array.from(rows, (row) => evaluateRow(row, dy));
-		return {
-			dy,
-			dx,
-			ds,
-			rowSlack: linear.map((value, j) => value + (state.rowResidual[j] ?? 0)),
-			rowMultipliers: rowFixed.map((value, j) => {
-				const z = state.rowMultipliers[j] ?? 0;
-				return value - z - (z / (state.rowSlack[j] ?? 1)) * (linear[j] ?? 0);
-			}),
-			equalityMultipliers
-		};
+		fillDirection(this.#programme, into.dy, into.ds);
+		this.#kernels.addScaled(fixed, -1, state.x);
+		this.#addProduct(fixed, state.x, into.ds, state.w);
+		rows.forEach((row, j) => {
+			const z = state.rowMultipliers[j] ?? 0;
+			const linear = evaluateRow(row, into.dy);
+			into.rowSlack[j] = linear + (state.rowResidual[j] ?? 0);
+			into.rowMultipliers[j] = (rowFixed[j] ?? 0) - z - (z / (state.rowSlack[j] ?? 1)) * linear;
+		});
+	}
+
+	/** out -= sym(a b c). */
+	#addProduct(out: Float64Array, a: Float64Array, b: Float64Array, c: Float64Array): void {
+		const { size: n } = this.#programme;
+		this.#kernels.multiply(a, b, this.#first, n);
+		this.#kernels.multiply(this.#first, c, this.#second, n);
+		this.#kernels.symmetrise(this.#second, n);
+		this.#kernels.addScaled(out, -1, this.#second);
 	}
 
 	/**
 	 * One step of iterative refinement on the linear equalities of the multiplier.
 	 * @param residuals c + <F, X + dX> + ..., what a full step along `direction` would leave.
+	 * @param scratch another direction
 	 */
-	correct(state: NewtonState, direction: Direction, residuals: Float64Array): void {
-		const { size: n, rows, unknowns: m } = this.#programme;
-		const { dy, equalityMultipliers } = this.#solveLinear(residuals, new Float64Array(m + 1), m);
-		const ds = new Float64Array(n * n);
+	correct(
+		state: NewtonState,
+		direction: Direction,
+		residuals: Float64Array,
+		scratch: Direction
+	): void {
+		const { rows, unknowns: m } = this.#programme;
+		const { dy, ds, equalityMultipliers } = scratch;
+		this.#solveLinear(residuals, new Float64Array(m + 1), dy, equalityMultipliers);
 		fillDirection(this.#programme, dy, ds);
-		multiply(state.x, ds, this.#first, n);
-		multiply(this.#first, state.w, this.#second, n);
-		symmetrise(this.#second, n);
-		addScaled(direction.dx, -1, this.#second);
+		this.#addProduct(direction.dx, state.x, ds, state.w);
 		addScaled(direction.equalityMultipliers, 1, equalityMultipliers);
 		addScaled(direction.dy, 1, dy);
-		addScaled(direction.ds, 1, ds);
+		this.#kernels.addScaled(direction.ds, 1, ds);
 		rows.forEach((row, j) => {
 			const weight = (state.rowMultipliers[j] ?? 0) / (state.rowSlack[j] ?? 1);
 			const change = evaluateRow(row, dy);
@@ -235,50 +246,44 @@ export class NewtonSystem {
 		});
 	}
 
-	/** Solves the bordered system, with one step of iterative refinement on M. */
-	#solveLinear(rhs: Float64Array, y: Float64Array, m: number) {
+	/** Solves the bordered system; writes `dy` and `equalityMultipliers`. */
+	#solveLinear(
+		rhs: Float64Array,
+		y: Float64Array,
+		dy: Float64Array,
+		equalityMultipliers: Float64Array
+	): void {
 		const { equalities } = this.#programme;
-		const ordered = new Float64Array(m);
-		this.#schur.support.order.forEach((moment, rank) => (ordered[rank] = rhs[moment] ?? 0));
-		const solution = this.#refined(ordered);
+		const { order } = this.#schur.supports;
+		const solution = this.#refined(rhs);
 		const k = equalities.length;
-		const equalityMultipliers = new Float64Array(k);
 		if (this.#border && k > 0) {
 			equalities.forEach((row, a) => {
 				equalityMultipliers[a] = -evaluateRow(row, y) - dot(this.#ranked(row), solution);
 			});
 			solveFactored(this.#border.matrix, k, equalityMultipliers);
 			this.#border.solved.forEach((vector, a) => {
-				const weight = equalityMultipliers[a] ?? 0;
-				for (let i = 0; i < m; i++) solution[i] = (solution[i] ?? 0) + weight * (vector[i] ?? 0);
+				addScaled(solution, equalityMultipliers[a] ?? 0, vector);
 			});
 		}
-		const dy = new Float64Array(m + 1);
-		this.#schur.support.order.forEach((moment, rank) => (dy[moment] = solution[rank] ?? 0));
-		return { dy, equalityMultipliers };
+		for (let rank = 0; rank < order.length; rank++) dy[order[rank] ?? 0] = solution[rank] ?? 0;
 	}
 
+	/** M^-1 rhs, with one step of iterative refinement; by rank. */
 	#refined(rhs: Float64Array): Float64Array {
-		const m = rhs.length;
+		const { order } = this.#schur.supports;
+		const m = order.length;
 		const matrix = this.#matrix;
-		const solution = rhs.slice();
-		solveFactored(matrix, m, solution);
+		const solution = this.#solution;
+		const rest = this.#rest;
+		for (let rank = 0; rank < m; rank++) rest[rank] = rhs[order[rank] ?? 0] ?? 0;
+		solution.set(rest);
+		this.#kernels.solveFactored(matrix, m, solution);
 		this.#poll();
-		const rest = rhs.slice();
-		for (let i = 0; i < m; i++) {
-			const row = i * m;
-			const value = solution[i] ?? 0;
-			let sum = (this.#diagonal[i] ?? 0) * value;
-			for (let j = i + 1; j < m; j++) {
-				const entry = matrix[row + j] ?? 0;
-				sum += entry * (solution[j] ?? 0);
-				rest[j] = (rest[j] ?? 0) - entry * value;
-			}
-			rest[i] = (rest[i] ?? 0) - sum;
-		}
+		this.#kernels.subtractProduct(matrix, this.#diagonal, solution, rest, m);
 		this.#poll();
-		solveFactored(matrix, m, rest);
-		for (let i = 0; i < m; i++) solution[i] = (solution[i] ?? 0) + (rest[i] ?? 0);
+		this.#kernels.solveFactored(matrix, m, rest);
+		this.#kernels.addScaled(solution, 1, rest);
 		return solution;
 	}
 }

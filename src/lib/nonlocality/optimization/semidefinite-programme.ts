@@ -1,7 +1,9 @@
 import { largestMagnitude } from '../linalg/dense';
+import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
 import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
-import { NewtonSystem, type Direction } from './newton-system';
+import { makeDirection, NewtonSystem, type Direction } from './newton-system';
+import { MOST_STEPS } from './step-length';
 
 export type { Iterate } from './interior-point';
 
@@ -18,6 +20,16 @@ export interface SolverOptions {
 	/** Relative gap and residual at which the iteration ends by itself. */
 	readonly tolerance: number;
 	readonly mostIterations: number;
+}
+
+/** What the solver takes of the kernels' memory, generously: n x n matrices, Lanczos' basis, lists. */
+function demandOf({ size: n, unknowns: m }: MomentProgramme): KernelDemand {
+	const square = (n + 3) ** 2;
+	return {
+		doubles: m * m + 30 * m + 30 * square + (MOST_STEPS + 10) * (n + 3),
+		arrays: 200,
+		order: Math.max(n, m)
+	};
 }
 
 /** Fraction of the way to the boundary that a step takes. */
@@ -49,17 +61,36 @@ const WORTHWHILE_REFINEMENT = 0.5;
  */
 export class SemidefiniteSolver {
 	readonly #hooks: SolverHooks;
+	readonly #kernels: Kernels;
 	readonly #point: InteriorPoint;
 	readonly #newton: NewtonSystem;
+	readonly #attempts: readonly [Attempt, Attempt];
 
 	/** @param start moments with Gamma > 0, `start[0] = 1`. */
 	constructor(programme: MomentProgramme, start: Float64Array, hooks: SolverHooks) {
+		const kernels = makeKernels(demandOf(programme));
+		const attempt = () => ({
+			direction: makeDirection(programme, kernels),
+			spare: makeDirection(programme, kernels),
+			error: Infinity
+		});
 		this.#hooks = hooks;
-		this.#point = new InteriorPoint(programme, start);
-		this.#newton = new NewtonSystem(programme, () => hooks.poll());
+		this.#kernels = kernels;
+		this.#point = new InteriorPoint(programme, start, kernels);
+		this.#newton = new NewtonSystem(programme, kernels, () => hooks.poll());
+		this.#attempts = [attempt(), attempt()];
 	}
 
+	/** Once only: the iterates' arrays are given back when it ends. */
 	run(options: SolverOptions): { ending: Ending; iterations: number } {
+		try {
+			return this.#iterate(options);
+		} finally {
+			this.#kernels.release();
+		}
+	}
+
+	#iterate(options: SolverOptions): { ending: Ending; iterations: number } {
 		if (!this.#point.begin()) return { ending: 'stalled', iterations: 0 };
 		for (let iteration = 0; ; iteration++) {
 			this.#hooks.poll();
@@ -81,11 +112,13 @@ export class SemidefiniteSolver {
 		const point = this.#point;
 		if (!this.#newton.prepare(point)) return false;
 		const tolerable = TOLERABLE_ERROR * point.complementarity();
-		let { direction, error } = this.#direction();
-		while (!(error <= tolerable) && this.#newton.regularise()) {
-			const next = this.#direction();
-			if (next.error < error || Number.isNaN(error)) ({ direction, error } = next);
+		let [best, other] = this.#attempts;
+		this.#seek(best);
+		while (!(best.error <= tolerable) && this.#newton.regularise()) {
+			this.#seek(other);
+			if (other.error < best.error || Number.isNaN(best.error)) [best, other] = [other, best];
 		}
+		const { direction } = best;
 		point.projectDirection(direction);
 		const steps = this.#steps(direction);
 		const movedX = point.moveMultiplier(direction, steps.multiplier);
@@ -93,21 +126,24 @@ export class SemidefiniteSolver {
 		return movedX > SMALLEST_STEP || movedY > SMALLEST_STEP;
 	}
 
-	/** The corrected direction, and what it leaves of the multiplier's linear equalities. */
-	#direction(): { direction: Direction; error: number } {
+	/** Fills `attempt` with the corrected direction and its error. */
+	#seek(attempt: Attempt): void {
 		const point = this.#point;
-		const predictor = this.#newton.solve(point, 0, null);
-		const target = this.#centring(predictor) * point.complementarity();
-		let direction = this.#newton.solve(point, target, predictor);
+		let { direction, spare } = attempt;
+		this.#newton.solve(point, 0, null, spare);
+		const target = this.#centring(spare) * point.complementarity();
+		this.#newton.solve(point, target, spare, direction);
 		let steps = this.#steps(direction);
 		for (let extra = 0; extra < MOST_CORRECTIONS && product(steps) < LONG_STEPS; extra++) {
-			const next = this.#newton.solve(point, target, direction);
-			const nextSteps = this.#steps(next);
+			this.#newton.solve(point, target, direction, spare);
+			const nextSteps = this.#steps(spare);
 			if (product(nextSteps) < WORTHWHILE * product(steps)) break;
-			direction = next;
+			[direction, spare] = [spare, direction];
 			steps = nextSteps;
 		}
-		return { direction, error: this.#refine(direction) };
+		attempt.direction = direction;
+		attempt.spare = spare;
+		attempt.error = this.#refine(attempt);
 	}
 
 	/**
@@ -116,7 +152,7 @@ export class SemidefiniteSolver {
 	 * moments are not unique they would end the method early.
 	 * @returns the largest residual left; NaN after a useless factorisation.
 	 */
-	#refine(direction: Direction): number {
+	#refine({ direction, spare }: Attempt): number {
 		const point = this.#point;
 		const enough = ENOUGH_ACCURACY * point.complementarity();
 		let before = Infinity;
@@ -126,7 +162,7 @@ export class SemidefiniteSolver {
 			if (error <= enough || step === MOST_REFINEMENTS) return error;
 			if (!(error <= WORTHWHILE_REFINEMENT * before)) return error;
 			before = error;
-			this.#newton.correct(point, direction, residuals);
+			this.#newton.correct(point, direction, residuals, spare);
 		}
 	}
 
@@ -147,6 +183,13 @@ export class SemidefiniteSolver {
 			moments: Math.min(1, STEP_FRACTION * this.#point.slackStep(direction))
 		};
 	}
+}
+
+/** A direction, room for another, and the largest residual it leaves of the dual's equalities. */
+interface Attempt {
+	direction: Direction;
+	spare: Direction;
+	error: number;
 }
 
 interface Steps {

@@ -42,20 +42,40 @@ export function randomFunctional(outputs: number[][], size: number, random: Rand
 	return makeFunctional({ outputs }, terms);
 }
 
-/** Adds r * (sum_a P(a b|x y) - sum_a P(a b|x' y)), which is zero on every behaviour. */
+/**
+ * Adds sums that are zero on every behaviour: r * (sum_a P(a b|x y) - sum_a P(a b|x' y)) and
+ * r * (sum_a P(a b|x y) - P(b|y)), for any party and any events b of some of the others.
+ */
 export function rewrittenByNoSignalling(f: Functional, random: Random): Functional {
+	const { outputs } = f.scenario;
 	const terms: Term[] = [...f.terms];
-	const counts = f.scenario.outputs[0] ?? [];
-	for (let times = 0; times < 4; times++) {
-		const other: Event = [1, 0, random(2)];
-		const weight = exactCoefficient(ratio(BigInt(random(9) - 4), 3n));
-		[random(counts.length), random(counts.length)].forEach((x, side) => {
-			for (let a = 0; a < (counts[x] ?? 0); a++)
-				terms.push({
-					coefficient: side === 0 ? weight : negateCoefficient(weight),
-					events: [[0, x, a], other]
-				});
+	for (let times = 0; times < 6; times++) {
+		const party = random(outputs.length);
+		const others = outputs.flatMap((counts, p): Event[] => {
+			const x = random(counts.length);
+			return p === party || random(3) === 0 ? [] : [[p, x, random(counts[x] ?? 1)]];
 		});
+		const counts = outputs[party] ?? [];
+		const weight = exactCoefficient(ratio(BigInt(random(9) - 4), 3n));
+		const addSum = (input: number, coefficient: typeof weight) => {
+			for (let a = 0; a < (counts[input] ?? 0); a++)
+				terms.push({ coefficient, events: [...others, [party, input, a]] });
+		};
+		addSum(random(counts.length), weight);
+		if (random(2) === 0) addSum(random(counts.length), negateCoefficient(weight));
+		else terms.push({ coefficient: negateCoefficient(weight), events: others });
 	}
 	return makeFunctional(f.scenario, terms);
+}
+
+/** A few terms only, with small coefficients: such functionals have many symmetries. */
+export function sparseFunctional(outputs: number[][], count: number, random: Random): Functional {
+	const terms = Array.from({ length: count }, (): Term => {
+		const events = outputs.flatMap((counts, p): Event[] => {
+			const x = random(counts.length);
+			return random(4) === 0 ? [] : [[p, x, random(counts[x] ?? 1)]];
+		});
+		return { events, coefficient: exactCoefficient(ratio(BigInt(random(3) - 1))) };
+	});
+	return makeFunctional({ outputs }, terms);
 }

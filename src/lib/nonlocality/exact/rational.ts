@@ -76,6 +76,9 @@ export function toDouble(value: Rational): number {
 }
 
 function divideToDouble(numerator: bigint, denominator: bigint): number {
+	// The division of two doubles is correctly rounded.
+	if (numerator <= LARGEST_SAFE && denominator <= LARGEST_SAFE)
+		return Number(numerator) / Number(denominator);
 	const bits = (x: bigint) => x.toString(2).length;
 	const shift = 64 - (bits(numerator) - bits(denominator));
 	const above = shift >= 0 ? numerator << BigInt(shift) : numerator;

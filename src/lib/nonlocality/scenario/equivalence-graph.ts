@@ -1,6 +1,6 @@
-import type { Scenario } from './scenario';
+import type { Event, Scenario } from './scenario';
 
-/** An integer-labelled functional without constant, as search and refinement see it. */
+/** A term of the functional as the search sees it. */
 export interface LabelledTerm {
 	/** One event per party, as indices into the graph's events. */
 	readonly events: readonly number[];
@@ -9,33 +9,36 @@ export interface LabelledTerm {
 }
 
 /**
- * Vertices: events first, then inputs, then parties. Only relabellings that respect
- * party > input > output keep it, so its symmetries are those of the functional.
+ * Vertices: events first, then inputs, then parties, then terms. An event is joined to its input
+ * and to the terms it is in, an input to its party. Colours keep the kinds apart, so its symmetries
+ * are those of the functional: they respect party > input > output.
  */
 export interface EquivalenceGraph {
 	readonly scenario: Scenario;
-	readonly events: readonly (readonly [party: number, input: number, output: number])[];
+	readonly events: readonly Event[];
 	/** Vertex of the input each event belongs to. */
 	readonly inputOfEvent: readonly number[];
 	/** Vertex of the party each input belongs to, by (input vertex - events). */
 	readonly partyOfInput: readonly number[];
-	readonly vertexCount: number;
 	readonly terms: readonly LabelledTerm[];
+	readonly vertexCount: number;
+	/** Neighbours of vertex v: neighbours[offsets[v]] up to offsets[v + 1]. */
+	readonly offsets: Int32Array;
+	readonly neighbours: Int32Array;
 	/** Colour of each vertex before any refinement; parties with more inputs and outputs first. */
-	readonly initialColours: Int32Array;
-	readonly initialCount: number;
+	readonly colours: Int32Array;
 }
 
 export function equivalenceGraph(
 	scenario: Scenario,
-	terms: readonly { readonly events: readonly (readonly number[])[]; readonly rank: number }[]
+	terms: readonly { readonly events: readonly Event[]; readonly rank: number }[]
 ): EquivalenceGraph {
-	const events: [number, number, number][] = [];
+	const events: Event[] = [];
 	const index = new Map<string, number>();
-	const inputs: [party: number, input: number, count: number][] = [];
+	const inputs: [party: number, input: number][] = [];
 	scenario.outputs.forEach((counts, p) =>
 		counts.forEach((count, x) => {
-			inputs.push([p, x, count]);
+			inputs.push([p, x]);
 			for (let a = 0; a < count; a++) {
 				index.set(`${p}.${x}.${a}`, events.length);
 				events.push([p, x, a]);
@@ -43,26 +46,55 @@ export function equivalenceGraph(
 		})
 	);
 	const inputVertex = new Map(inputs.map(([p, x], i) => [`${p}.${x}`, events.length + i]));
+	const inputOfEvent = events.map(([p, x]) => inputVertex.get(`${p}.${x}`) ?? 0);
 	const firstParty = events.length + inputs.length;
+	const partyOfInput = inputs.map(([p]) => firstParty + p);
+	const labelled = terms.map((term) => ({
+		rank: term.rank,
+		events: term.events.map((event) => index.get(event.join('.')) ?? 0)
+	}));
+	const firstTerm = firstParty + scenario.outputs.length;
+	const edges: [number, number][] = [
+		...inputOfEvent.map((input, e): [number, number] => [e, input]),
+		...partyOfInput.map((party, i): [number, number] => [events.length + i, party]),
+		...labelled.flatMap((term, t) => term.events.map((e): [number, number] => [e, firstTerm + t]))
+	];
 	const keys = [
 		...events.map(([p, x]) => `0 ${partyKey(scenario, p)} ${inputKey(scenario, p, x)}`),
 		...inputs.map(([p, x]) => `1 ${partyKey(scenario, p)} ${inputKey(scenario, p, x)}`),
-		...scenario.outputs.map((_, p) => `2 ${partyKey(scenario, p)}`)
+		...scenario.outputs.map((_, p) => `2 ${partyKey(scenario, p)}`),
+		...labelled.map((term) => `3 ${term.events.length} ${descending(term.rank)}`)
 	];
-	const distinct = [...new Set(keys)].sort();
+	const distinct = new Map([...new Set(keys)].sort().map((key, colour) => [key, colour]));
+	const vertexCount = keys.length;
 	return {
 		scenario,
 		events,
-		inputOfEvent: events.map(([p, x]) => inputVertex.get(`${p}.${x}`) ?? 0),
-		partyOfInput: inputs.map(([p]) => firstParty + p),
-		vertexCount: keys.length,
-		terms: terms.map((term) => ({
-			rank: term.rank,
-			events: term.events.map((event) => index.get(event.join('.')) ?? 0)
-		})),
-		initialColours: Int32Array.from(keys, (key) => distinct.indexOf(key)),
-		initialCount: distinct.length
+		inputOfEvent,
+		partyOfInput,
+		terms: labelled,
+		vertexCount,
+		...adjacency(vertexCount, edges),
+		colours: Int32Array.from(keys, (key) => distinct.get(key) ?? 0)
 	};
+}
+
+function adjacency(vertexCount: number, edges: readonly (readonly [number, number])[]) {
+	const offsets = new Int32Array(vertexCount + 1);
+	for (const edge of edges) for (const v of edge) offsets[v + 1] = (offsets[v + 1] ?? 0) + 1;
+	for (let v = 0; v < vertexCount; v++) offsets[v + 1] = (offsets[v + 1] ?? 0) + (offsets[v] ?? 0);
+	const next = offsets.slice();
+	const neighbours = new Int32Array(2 * edges.length);
+	const join = (v: number, w: number) => {
+		const place = next[v] ?? 0;
+		neighbours[place] = w;
+		next[v] = place + 1;
+	};
+	for (const [v, w] of edges) {
+		join(v, w);
+		join(w, v);
+	}
+	return { offsets, neighbours };
 }
 
 /** Sorts descending by number of inputs, then by the sorted numbers of outputs. */

@@ -1,5 +1,7 @@
 import type { EquivalenceGraph } from './equivalence-graph';
-import { Refiner, type Colouring } from './equivalence-refinement';
+import { compareVectors, positionsOf, relabellingOf, vectorOf } from './equivalence-leaf';
+import { Orbits } from './equivalence-orbits';
+import { Refiner, type Colouring, type Trace } from './equivalence-refinement';
 import type { Relabelling } from './relabelling';
 
 /** The relabelled functional as data: terms by position in the canonical scenario. */
@@ -9,25 +11,29 @@ export interface CanonicalLabelling {
 	readonly complete: boolean;
 	/** Set when incomplete: the same for equivalent graphs; different ones may share it. */
 	readonly invariant: string;
+	/**
+	 * Symmetries of the functional: generator[e] is the event that event e becomes, both as indices
+	 * into the graph's events. They generate the whole symmetry group when the search is complete.
+	 */
+	readonly generators: readonly Int32Array[];
 }
 
-/** Refinement work in units of one event of one term; about a second. */
-export const WORK_LIMIT = 1e8;
-/** Symmetries remembered for pruning. */
-const GENERATOR_LIMIT = 256;
+/** Refinement work in units of one vertex or edge looked at; two or three seconds. */
+export const WORK_LIMIT = 5e7;
 
 interface Leaf {
 	/** Event at each canonical position. */
 	readonly eventAt: readonly number[];
 	readonly vector: Float64Array;
 	readonly prefix: readonly number[];
-	readonly traces: readonly (readonly [number, number])[];
+	readonly traces: readonly Trace[];
 }
 
 /**
  * The canonical labelling: the smallest (traces of the refinement, then relabelled vector) over
  * all ways of telling the events apart one by one. Branches are cut when their trace is already
- * larger, and when a symmetry found on the way maps them to a branch already searched.
+ * larger, and when a symmetry found on the way maps them to a branch already searched; symmetries
+ * show where a leaf equals the first one or the best one.
  * @see McKay, Practical graph isomorphism, Congressus Numerantium 30, 45 (1981)
  */
 export function canonicalLabelling(
@@ -42,8 +48,12 @@ export function canonicalLabelling(
 class Search {
 	readonly #refiner: Refiner;
 	readonly #generators: Int32Array[] = [];
-	readonly #traces: (readonly [number, number])[] = [];
+	readonly #traces: Trace[] = [];
 	readonly #prefix: number[] = [];
+	/** By depth: how the traces so far compare with those of the first leaf and of the best one. */
+	readonly #againstFirst: number[] = [];
+	readonly #againstBest: number[] = [];
+	#first: Leaf | null = null;
 	#best: Leaf | null = null;
 	#complete = true;
 	#invariant = '';
@@ -66,15 +76,17 @@ class Search {
 		return {
 			relabelling: relabellingOf(this.graph, eventAt),
 			complete: this.#complete,
-			invariant: this.#invariant
+			invariant: this.#invariant,
+			generators: this.#generators
 		};
 	}
 
 	/** Traces at the root and below it; the latter only where they cost no more than a search. */
 	#describe(root: Colouring): string {
 		const traces = [root.trace.join(',')];
-		if (this.graph.events.length * this.#refiner.workPerPass <= WORK_LIMIT / 4) {
-			const children = this.graph.events.map((_, v) => this.#refiner.individualise(root, v));
+		const { events, vertexCount, neighbours } = this.graph;
+		if (events.length * (vertexCount + neighbours.length) <= WORK_LIMIT / 4) {
+			const children = events.map((_, v) => this.#refiner.individualise(root, v, 1));
 			traces.push(...children.map((child) => child.trace.join(',')).sort());
 		}
 		return traces.join(';');
@@ -82,143 +94,81 @@ class Search {
 
 	/** Returns the depth to go back to: a node deeper than that has nothing new below it. */
 	#explore(node: Colouring, depth: number): number {
-		const known = this.#best?.traces[depth];
-		if (this.#best) {
-			const difference = known ? compareTraces(node.trace, known) : 1;
-			if (difference > 0) return depth;
-			if (difference < 0) this.#best = null; // every leaf below is smaller
-		}
 		this.#traces[depth] = node.trace;
+		const toFirst = compareAt(this.#first, depth, node.trace, this.#againstFirst);
+		const toBest = compareAt(this.#best, depth, node.trace, this.#againstBest);
+		if (toFirst !== 0 && toBest > 0) return depth;
 		const cell = this.#targetCell(node);
 		if (!cell) return this.#visitLeaf(node, depth);
+		const orbits = new Orbits(this.#generators, this.#prefix, depth);
 		const explored: number[] = [];
 		for (const vertex of cell) {
 			if (this.#refiner.spent > this.workLimit && this.#best) {
 				this.#complete = false;
 				return depth;
 			}
-			if (explored.length > 0 && this.#isSymmetric(vertex, explored, depth)) continue;
+			if (explored.length > 0 && orbits.joins(vertex, explored)) continue;
 			this.#prefix[depth] = vertex;
-			const back = this.#explore(this.#refiner.individualise(node, vertex), depth + 1);
+			const back = this.#explore(this.#refiner.individualise(node, vertex, depth + 1), depth + 1);
 			if (back < depth) return back;
 			explored.push(vertex);
 		}
 		return depth;
 	}
 
-	/** The first of the smallest cells of events that are not yet told apart. */
-	#targetCell(node: Colouring): number[] | null {
-		const cells = new Map<number, number[]>();
-		for (let e = 0; e < this.graph.events.length; e++) {
-			const colour = node.colours[e] ?? 0;
-			const cell = cells.get(colour);
-			if (cell) cell.push(e);
-			else cells.set(colour, [e]);
+	/** The first of the largest cells of events that are not yet told apart. */
+	#targetCell({ vertices, sizes }: Colouring): number[] | null {
+		let [target, largest] = [0, 1];
+		for (let start = 0; start < this.graph.events.length; start += sizes[start] ?? 1) {
+			const size = sizes[start] ?? 1;
+			if (size > largest) [target, largest] = [start, size];
 		}
-		let target: { colour: number; cell: number[] } | null = null;
-		for (const [colour, cell] of cells) {
-			if (cell.length === 1) continue;
-			const smaller =
-				!target ||
-				cell.length < target.cell.length ||
-				(cell.length === target.cell.length && colour < target.colour);
-			if (smaller) target = { colour, cell };
-		}
-		return target?.cell ?? null;
+		return largest === 1
+			? null
+			: [...vertices.subarray(target, target + largest)].sort((a, b) => a - b);
 	}
 
 	#visitLeaf(node: Colouring, depth: number): number {
 		const eventAt = positionsOf(this.graph, node.colours);
 		const vector = vectorOf(this.graph, eventAt);
-		const order = this.#best ? compareVectors(vector, this.#best.vector) : -1;
-		if (order < 0) {
-			const prefix = this.#prefix.slice(0, depth);
-			this.#best = { eventAt, vector, prefix, traces: this.#traces.slice(0, depth + 1) };
+		const leaf = {
+			eventAt,
+			vector,
+			prefix: this.#prefix.slice(0, depth),
+			traces: this.#traces.slice(0, depth + 1)
+		};
+		if (!this.#first || !this.#best) {
+			this.#first = this.#best = leaf;
 			return depth;
 		}
-		if (order > 0 || !this.#best) return depth;
-		const symmetry = new Int32Array(eventAt.length);
-		this.#best.eventAt.forEach((e, position) => (symmetry[e] = eventAt[position] ?? 0));
-		if (this.#generators.length < GENERATOR_LIMIT) this.#generators.push(symmetry);
-		const { prefix } = this.#best;
-		let common = 0;
-		while (common < depth && prefix[common] === this.#prefix[common]) common++;
-		return common;
-	}
-
-	/** Whether a known symmetry that fixes the path so far maps the vertex to an explored one. */
-	#isSymmetric(vertex: number, explored: readonly number[], depth: number): boolean {
-		const path = this.#prefix.slice(0, depth);
-		const fixing = this.#generators.filter((g) => path.every((v) => g[v] === v));
-		if (fixing.length === 0) return false;
-		const orbit = new Set([vertex]);
-		for (const v of orbit) {
-			for (const generator of fixing) orbit.add(generator[v] ?? v);
+		const known = [
+			...(this.#againstFirst[depth] === 0 ? [this.#first] : []),
+			...(this.#againstBest[depth] === 0 ? [this.#best] : [])
+		].find((other) => compareVectors(vector, other.vector) === 0);
+		if (known) {
+			const symmetry = new Int32Array(eventAt.length);
+			known.eventAt.forEach((e, position) => (symmetry[e] = eventAt[position] ?? 0));
+			this.#generators.push(symmetry);
+			let common = 0;
+			while (common < depth && known.prefix[common] === leaf.prefix[common]) common++;
+			return common;
 		}
-		return explored.some((v) => orbit.has(v));
-	}
-}
-
-function compareTraces(a: readonly [number, number], b: readonly [number, number]): number {
-	return a[0] - b[0] || a[1] - b[1];
-}
-
-/** Events in canonical order: by party, input, output, each by colour. */
-function positionsOf(graph: EquivalenceGraph, colours: Int32Array): number[] {
-	const { events, inputOfEvent, partyOfInput } = graph;
-	const key = (e: number) => {
-		const input = inputOfEvent[e] ?? 0;
-		const party = partyOfInput[input - events.length] ?? 0;
-		return [colours[party] ?? 0, colours[input] ?? 0, colours[e] ?? 0] as const;
-	};
-	return events
-		.map((_, e) => ({ e, key: key(e) }))
-		.sort((a, b) => a.key[0] - b.key[0] || a.key[1] - b.key[1] || a.key[2] - b.key[2])
-		.map(({ e }) => e);
-}
-
-/** Sorted (place of the term, rank of its value) pairs: equal vectors are equal functionals. */
-function vectorOf(graph: EquivalenceGraph, eventAt: readonly number[]): Float64Array {
-	const position = new Int32Array(eventAt.length);
-	eventAt.forEach((e, k) => (position[e] = k));
-	const base = eventAt.length + 1;
-	const pairs = graph.terms.map(({ events, rank }) => {
-		const places = events.map((e) => position[e] ?? 0).sort((a, b) => a - b);
-		return [places.reduce((key, place) => key * base + place + 1, 0), rank] as const;
-	});
-	pairs.sort((a, b) => a[0] - b[0]);
-	return Float64Array.from(pairs.flat());
-}
-
-function compareVectors(a: Float64Array, b: Float64Array): number {
-	for (let i = 0; i < a.length; i++) {
-		const difference = (a[i] ?? 0) - (b[i] ?? 0);
-		if (difference !== 0) return difference;
-	}
-	return 0;
-}
-
-function relabellingOf(graph: EquivalenceGraph, eventAt: readonly number[]): Relabelling {
-	const { outputs } = graph.scenario;
-	const parties: number[] = [];
-	const inputs: number[][] = outputs.map(() => []);
-	const names: number[][][] = outputs.map((counts) => counts.map(() => []));
-	let partyCount = 0;
-	const inputCounts = outputs.map(() => 0);
-	const outputCounts = outputs.map((counts) => counts.map(() => 0));
-	for (const e of eventAt) {
-		const [p, x, a] = graph.events[e] ?? [0, 0, 0];
-		parties[p] ??= partyCount++;
-		const row = inputs[p];
-		const list = names[p]?.[x];
-		const counts = outputCounts[p];
-		if (!row || !list || !counts) continue;
-		if (row[x] === undefined) {
-			row[x] = inputCounts[p] ?? 0;
-			inputCounts[p] = row[x] + 1;
+		const order = this.#againstBest[depth] || compareVectors(vector, this.#best.vector);
+		if (order < 0) {
+			this.#best = leaf;
+			this.#againstBest.fill(0); // the path that led here is now the best one's
 		}
-		list[a] = counts[x] ?? 0;
-		counts[x] = list[a] + 1;
+		return depth;
 	}
-	return { parties, inputs, outputs: names };
+}
+
+/**
+ * How a path's traces compare with those on the way to a leaf, given how they do above; one longer
+ * than the leaf's is larger. Kept in `known`, by depth.
+ */
+function compareAt(leaf: Leaf | null, depth: number, trace: Trace, known: number[]): number {
+	const other = leaf?.traces[depth];
+	const here = other ? trace[0] - other[0] || trace[1] - other[1] : leaf ? 1 : 0;
+	const above = depth === 0 ? 0 : (known[depth - 1] ?? 0);
+	return (known[depth] = above || here);
 }

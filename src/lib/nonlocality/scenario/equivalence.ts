@@ -9,16 +9,16 @@ import {
 } from '../exact/coefficient';
 import { ratio } from '../exact/rational';
 import { equivalenceGraph } from './equivalence-graph';
+import { dropUnused, sparseTerms, type UsedTerms } from './equivalence-terms';
 import { WORK_LIMIT, canonicalLabelling } from './equivalence-search';
 import { eventsKey, makeFunctional, type Functional, type Term } from './functional';
 import { divide, integerForm } from './integer-form';
 import { relabelFunctional } from './relabelling';
-import { outputCount, type Event, type Scenario } from './scenario';
 import { sha256 } from './sha256';
 import { functionalOfZeroSumForm, zeroSumForm } from './zero-sum-form';
 
 /** Changes whenever the digest of any functional does. */
-export const DIGEST_VERSION = 1;
+export const DIGEST_VERSION = 2;
 
 export interface CanonicalForm {
 	/** Hexadecimal; equal for equivalent functionals. */
@@ -44,7 +44,7 @@ export interface CanonicalForm {
  *
  * Inputs and parties on which f does not depend are dropped. A functional that is constant on all
  * behaviours has an empty canonical form (no parties, no terms), scale 1, and itself as the shift.
- * @param workLimit work of the search before it is cut short; the default is about a second
+ * @param workLimit work of the search before it is cut short; the default is two or three seconds
  * @example canonicalForm(chsh).canonical // A0 B0 + A0 B1 + A1 B0 - A1 B1, up to relabelling
  */
 export function canonicalForm(
@@ -61,19 +61,20 @@ export function canonicalForm(
 	}
 	const { scale, numerical, used } = parts;
 	const { relabelling, complete, invariant } = canonicalLabelling(
-		equivalenceGraph(used.scenario, withRanks(used.terms)),
+		equivalenceGraph(used.scenario, sparseTerms(used)),
 		workLimit
 	);
 	const relabelled = (list: readonly Term[]) =>
 		relabelFunctional(makeFunctional(used.scenario, list), relabelling);
-	const integers = used.terms.map(({ events, integer }) => ({
-		events,
-		coefficient: exactCoefficient(ratio(integer))
-	}));
+	const canonical = relabelled(used.terms);
+	const inDigits = () =>
+		relabelled(used.terms.map((t) => ({ ...t, coefficient: exactCoefficient(ratio(t.integer)) })));
 	const kind = `${numerical ? 'numerical' : 'exact'} ${complete ? 'form' : 'invariant'}`;
-	const body = complete ? printForm(relabelled(integers)) : printInvariant(used, invariant);
+	const body = complete
+		? printForm(numerical ? inDigits() : canonical)
+		: printInvariant(used, invariant);
 	const digest = sha256(`${version} ${kind} ${body}`);
-	return { digest, version, numerical, canonical: relabelled(used.terms), scale, shift, complete };
+	return { digest, version, numerical, canonical, scale, shift, complete };
 }
 
 /**
@@ -151,42 +152,6 @@ export function agree(a: CanonicalForm, b: CanonicalForm): boolean {
 /** An irrational sum that cancels within its own error counts as zero. */
 function isKnownNonzero({ coefficient: c }: Term): boolean {
 	return c.exact !== null || Math.abs(c.value) > c.error;
-}
-
-interface IntegerTerm extends Term {
-	readonly integer: bigint;
-}
-
-interface UsedTerms {
-	readonly scenario: Scenario;
-	readonly terms: readonly IntegerTerm[];
-}
-
-/** Leaves out the inputs and parties that occur in no term, and renumbers the others. */
-function dropUnused(scenario: Scenario, terms: readonly IntegerTerm[]): UsedTerms {
-	const occurring = new Set(terms.flatMap((t) => t.events.map(([p, x]) => `${p}.${x}`)));
-	const inputs = scenario.outputs.map((counts, p) =>
-		counts.flatMap((_, x) => (occurring.has(`${p}.${x}`) ? [x] : []))
-	);
-	const parties = inputs.flatMap((list, p) => (list.length > 0 ? [p] : []));
-	const renumber = ([p, x, a]: Event): Event => [
-		parties.indexOf(p),
-		inputs[p]?.indexOf(x) ?? -1,
-		a
-	];
-	return {
-		scenario: {
-			outputs: parties.map((p) => (inputs[p] ?? []).map((x) => outputCount(scenario, p, x)))
-		},
-		terms: terms.map((term) => ({ ...term, events: term.events.map(renumber) }))
-	};
-}
-
-function withRanks(terms: readonly IntegerTerm[]) {
-	const values = [...new Set(terms.map((term) => term.integer))];
-	values.sort((a, b) => (a < b ? -1 : a > b ? 1 : 0));
-	const rankOf = new Map(values.map((value, rank) => [value, rank]));
-	return terms.map(({ events, integer }) => ({ events, rank: rankOf.get(integer) ?? 0 }));
 }
 
 function printForm({ scenario, terms }: Functional): string {

@@ -66,7 +66,8 @@ export function layOut(
 		const fits =
 			word.length === scenario.outputs.length &&
 			word.every((letters, party) =>
-				letters.every(([input, output]) => {
+				letters.every(([input, output, ...more]) => {
+					if (more.length > 0) return false;
 					const count = scenario.outputs[party]?.[input] ?? 0;
 					return Number.isInteger(output) && output >= 0 && output < count - 1;
 				})

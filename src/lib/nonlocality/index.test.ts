@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { problemOn, quietControl } from '../../../tests/factories/solver-problem';
+import { asJson, changedAt, pathsOf, type Json } from '../../../tests/support/changed-json';
 import { exactOfDouble, parseRational, type Rational } from './exact/rational';
 import type { DoneResult, Problem, Result } from './problem';
 import { solve, verifyResult } from './index';
@@ -12,28 +13,7 @@ async function solved(problem: Problem): Promise<DoneResult> {
 	return result;
 }
 
-/** Any JSON: what a stored file may hold. */
-type Json = null | boolean | number | string | Json[] | { [key: string]: Json };
-
-const asJson = (value: unknown): Json => JSON.parse(JSON.stringify(value));
 const asResult = (value: Json): Result => JSON.parse(JSON.stringify(value));
-
-/** Every place in a JSON value, as its path. */
-function pathsOf(value: Json, path: (string | number)[] = []): (string | number)[][] {
-	if (value === null || typeof value !== 'object') return [path];
-	const entries = Array.isArray(value) ? [...value.entries()] : Object.entries(value);
-	return [path, ...entries.flatMap(([key, inner]) => pathsOf(inner, [...path, key]))];
-}
-
-function changed(value: Json, path: readonly (string | number)[], by: (old: Json) => Json): Json {
-	const [key, ...rest] = path;
-	if (key === undefined) return by(value);
-	const inside = (list: Json[]) =>
-		list.map((inner, i) => (i === key ? changed(inner, rest, by) : inner));
-	if (Array.isArray(value)) return inside(value);
-	if (value === null || typeof value !== 'object') return value;
-	return { ...value, [key]: changed(value[key] ?? null, rest, by) };
-}
 
 const CHANGES: readonly ((old: Json) => Json)[] = [
 	() => null,
@@ -94,7 +74,7 @@ describe.each(CASES)('%o %s', (spec, quantity, truthText) => {
 			fc.property(fc.constantFrom(...paths), fc.constantFrom(...CHANGES), (path, change) => {
 				const other = asResult({
 					...(asJson(result) as { [key: string]: Json }),
-					certificate: changed(certificate, path, change)
+					certificate: changedAt(certificate, path, change)
 				});
 				const outcome = verifyResult(other);
 				if (!outcome.checked) caught++;
@@ -198,8 +178,9 @@ it('the README names the whole public surface, quantities and certificate kinds'
 	const surface = await import('./index');
 	const readme = (await import('./README.md?raw')).default;
 	for (const name of Object.keys(surface)) expect(readme).toContain(`\`${name}`);
-	const kinds = ['deterministic-strategy', 'linear-programme', 'npa-dual', 'quantum-strategy'];
-	for (const kind of [...kinds, 'enclosure']) expect(readme).toContain(`### \`${kind}\`\n`);
+	const kinds = ['deterministic-strategy', 'linear-programme', 'npa-dual', 'npa-exact'];
+	for (const kind of [...kinds, 'quantum-strategy', 'enclosure'])
+		expect(readme).toContain(`### \`${kind}\`\n`);
 	for (const quantity of ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'])
 		expect(readme).toContain(`### \`${quantity}\`: `);
 });

@@ -31,6 +31,7 @@ export type {
 	CheckOutcome,
 	DeterministicCertificate,
 	EnclosureCertificate,
+	ExactMomentCertificate,
 	LinearProgrammeCertificate,
 	MomentCertificate,
 	StrategyCertificate

@@ -29,17 +29,35 @@ const linearProgramme = z.strictObject({
 });
 
 const letter = z.tuple([place, place], kind('[input, output]'));
+const monomials = z.array(
+	z.array(z.array(letter, kind('a list of [input, output]')), kind('a list per party')),
+	kind('a list of words')
+);
 const moments = z.strictObject({
 	kind: z.literal('npa-dual'),
-	monomials: z.array(
-		z.array(z.array(letter, kind('a list of [input, output]')), kind('a list per party')),
-		kind('a list of words')
-	),
+	monomials,
 	multiplier: z.array(number, kind('a list of numbers')),
 	rowMultipliers: z.record(z.string(), number, kind('an object to numbers')),
 	constraintMultipliers: z.array(number, kind('a list of numbers')).optional(),
 	shift: number.optional(),
 	bound: number,
+	moments: z.array(number, kind('a list of numbers')).nullable(),
+	feasibleValue: nullable
+});
+
+const whole = z.union(
+	[z.int(), z.string().regex(/^-?\d{1,200}$/)],
+	kind('a whole number, as a text where it is 2^53 or more')
+);
+const exactMoments = z.strictObject({
+	kind: z.literal('npa-exact'),
+	monomials,
+	denominator: whole,
+	multiplier: z.array(whole, kind('a list of whole numbers')),
+	rowMultipliers: z.record(z.string(), whole, kind('an object to whole numbers')),
+	constraintMultipliers: z.array(whole, kind('a list of whole numbers')),
+	shift: whole,
+	bound: fraction,
 	moments: z.array(number, kind('a list of numbers')).nullable(),
 	feasibleValue: nullable
 });
@@ -72,16 +90,17 @@ const quantumStrategy = z.strictObject({
 const enclosure = z.strictObject({
 	kind: z.literal('enclosure'),
 	lower: z.discriminatedUnion('kind', [deterministic, quantumStrategy]).nullable(),
-	upper: moments.nullable(),
+	upper: z.discriminatedUnion('kind', [moments, exactMoments]).nullable(),
 	upperLevel: levelShape.nullable()
 });
 
 export const certificateShape = z.discriminatedUnion(
 	'kind',
-	[deterministic, linearProgramme, moments, quantumStrategy, enclosure],
+	[deterministic, linearProgramme, moments, exactMoments, quantumStrategy, enclosure],
 	{
 		error:
-			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure'
+			'must be one of deterministic-strategy, linear-programme, npa-dual, npa-exact, ' +
+			'quantum-strategy, enclosure'
 	}
 );
 

@@ -34,7 +34,8 @@ function withoutGaps(
 ): DoneResult['certificate'] {
 	if (certificate?.kind === 'npa-dual') return moments(certificate);
 	if (certificate?.kind !== 'enclosure') return certificate;
-	return { ...certificate, upper: certificate.upper && moments(certificate.upper) };
+	if (certificate.upper?.kind !== 'npa-dual') return { ...certificate, upper: certificate.upper };
+	return { ...certificate, upper: moments(certificate.upper) };
 }
 
 type Read = NonNullable<z.infer<typeof resultShape>['certificate']>;

@@ -2,6 +2,7 @@
 import type { Level, ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
+import { checkExactMoments } from './check-exact-moments';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
 import type { CheckOutcome, EnclosureCertificate } from './types';
@@ -27,9 +28,7 @@ export function checkEnclosure(
 	if (upper) {
 		const level = readLevel(certificate.upperLevel);
 		if (level === null) return refuse('upper side: its level cannot be read');
-		if (upper.kind !== 'npa-dual') return refuse('upper side: it is no multiplier of a relaxation');
-		const relaxation = { ...problem, quantity: 'npa', level, nonNegative: false } as const;
-		above = checkMomentCertificate(relaxation, g, { ...upper, moments: null, feasibleValue: null });
+		above = checkUpper({ ...problem, quantity: 'npa', level, nonNegative: false }, g, upper);
 		if (!above.checked) return refuse(`upper side: ${above.reason}`);
 	}
 	if (below && above && (below.lower ?? -Infinity) > (above.upper ?? Infinity))
@@ -39,6 +38,7 @@ export function checkEnclosure(
 		lower: below?.lower ?? null,
 		upper: above?.upper ?? null,
 		exact: null,
+		...(above?.exactBound !== undefined && { exactBound: above.exactBound }),
 		method: [below?.method, above?.method].filter((text) => text !== undefined).join('; ')
 	};
 }
@@ -57,6 +57,22 @@ function checkLower(
 			return checkStrategy(problem, g, lower);
 		default:
 			return refuse('it is no strategy');
+	}
+}
+
+function checkUpper(
+	relaxation: ProblemOf<'npa'>,
+	g: Functional,
+	upper: NonNullable<EnclosureCertificate['upper']>
+): CheckOutcome {
+	const none = { moments: null, feasibleValue: null };
+	switch (upper.kind) {
+		case 'npa-dual':
+			return checkMomentCertificate(relaxation, g, { ...upper, ...none });
+		case 'npa-exact':
+			return checkExactMoments(relaxation, g, { ...upper, ...none });
+		default:
+			return refuse('it is no multiplier of a relaxation');
 	}
 }
 

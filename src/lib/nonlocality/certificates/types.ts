@@ -62,6 +62,32 @@ export interface MomentCertificate {
 	readonly feasibleValue: number | null;
 }
 
+/** A whole number: as a number while it is safe (below 2^53 in size), else its decimal digits. */
+export type WholeNumber = number | string;
+
+/**
+ * Dual multiplier in rationals: every multiplier is the given whole number over `denominator`, so
+ * that the bound is a rational and its proof exact. Only for rational coefficients.
+ */
+export interface ExactMomentCertificate {
+	readonly kind: 'npa-exact';
+	readonly monomials: readonly Monomial[];
+	/** N >= 1. */
+	readonly denominator: WholeNumber;
+	/** Lower triangle, row by row, of the symmetric M; Z = M / N. */
+	readonly multiplier: readonly WholeNumber[];
+	/** As in a MomentCertificate, times N. */
+	readonly rowMultipliers: Readonly<Record<string, WholeNumber>>;
+	readonly constraintMultipliers: readonly WholeNumber[];
+	/** M + shift * 1 is positive semidefinite; the bound contains size * shift / N. */
+	readonly shift: WholeNumber;
+	/** Guaranteed bound on the functional (upper for `max`), an exact fraction. */
+	readonly bound: string;
+	/** As in a MomentCertificate: doubles. */
+	readonly moments: readonly number[] | null;
+	readonly feasibleValue: number | null;
+}
+
 /** A projective measurement: an orthonormal basis and the output that each vector belongs to. */
 export interface OutputBasis {
 	/** `vectors[k]` is the k-th basis vector. */
@@ -83,7 +109,7 @@ export interface StrategyCertificate {
 export interface EnclosureCertificate {
 	readonly kind: 'enclosure';
 	readonly lower: DeterministicCertificate | StrategyCertificate | null;
-	readonly upper: MomentCertificate | null;
+	readonly upper: MomentCertificate | ExactMomentCertificate | null;
 	/** The relaxation the upper side belongs to, as a level of the problem format. */
 	readonly upperLevel: unknown;
 }
@@ -92,6 +118,7 @@ export type Certificate =
 	| DeterministicCertificate
 	| LinearProgrammeCertificate
 	| MomentCertificate
+	| ExactMomentCertificate
 	| StrategyCertificate
 	| EnclosureCertificate;
 
@@ -103,6 +130,8 @@ export type CheckOutcome =
 			readonly lower: number | null;
 			readonly upper: number | null;
 			readonly exact: string | null;
+			/** The proved bound as a fraction (of `upper`; for `min` of `lower`) where it is rational. */
+			readonly exactBound?: string;
 			readonly method: string;
 	  }
 	| { readonly checked: false; readonly reason: string };

@@ -5,7 +5,10 @@ const UNIT_ROUNDOFF = 2 ** -53;
 /** Shifts may add at most this fraction to the trace, which the allowance below makes room for. */
 const LARGEST_SHIFT = 0.02;
 
-function traceOf(matrix: readonly Float64Array[]): number {
+/** Rows of a lower triangle: row i has at least i + 1 entries. */
+export type RealTriangle = readonly Float64Array[];
+
+function traceOf(matrix: RealTriangle): number {
 	return matrix.reduce((sum, row, i) => sum + Math.abs(row[i] ?? 0), 0);
 }
 
@@ -15,19 +18,13 @@ function traceOf(matrix: readonly Float64Array[]): number {
  * shifted diagonal (u times each entry) and for a slightly larger trace after the shift.
  * Rump, Verification of positive definiteness, BIT 46, 433 (2006).
  */
-function choleskyAllowance(matrix: readonly Float64Array[]): number {
+export function choleskyAllowance(matrix: RealTriangle): number {
 	const gamma = ((matrix.length + 3) * UNIT_ROUNDOFF) / (1 - (matrix.length + 3) * UNIT_ROUNDOFF);
 	return (1.05 * gamma * traceOf(matrix)) / (1 - gamma) + 1e-300;
 }
 
-/**
- * True when lambda_min(matrix) >= -shift is proved. The matrix is given by rows of its lower
- * triangle (row i has at least i + 1 entries), in exact doubles; an irregular one proves nothing.
- */
-export function provesPositive(matrix: readonly Float64Array[], shift: number): boolean {
-	if (!(shift >= 0) || !Number.isFinite(shift)) return false;
-	if (shift * matrix.length > LARGEST_SHIFT * traceOf(matrix)) return false;
-	const moved = shift * (1 - 4 * UNIT_ROUNDOFF) - choleskyAllowance(matrix);
+/** The Cholesky factor of matrix + moved * 1 as floating-point arithmetic finds it, or null. */
+export function choleskyFactor(matrix: RealTriangle, moved: number): Float64Array[] | null {
 	const factor: Float64Array[] = [];
 	for (const [i, source] of matrix.entries()) {
 		const row = new Float64Array(i + 1);
@@ -37,10 +34,21 @@ export function provesPositive(matrix: readonly Float64Array[], shift: number): 
 			if (j === i) rest += moved;
 			for (let k = 0; k < j; k++) rest -= (row[k] ?? NaN) * (other[k] ?? NaN);
 			if (j < i) row[j] = rest / (other[j] ?? NaN);
-			else if (!(rest > 0) || rest === Infinity) return false;
+			else if (!(rest > 0) || rest === Infinity) return null;
 			else row[i] = Math.sqrt(rest);
 		}
 		factor.push(row);
 	}
-	return true;
+	return factor;
+}
+
+/**
+ * True when lambda_min(matrix) >= -shift is proved, for exact doubles; an irregular matrix proves
+ * nothing.
+ */
+export function provesPositive(matrix: RealTriangle, shift: number): boolean {
+	if (!(shift >= 0) || !Number.isFinite(shift)) return false;
+	if (shift * matrix.length > LARGEST_SHIFT * traceOf(matrix)) return false;
+	const moved = shift * (1 - 4 * UNIT_ROUNDOFF) - choleskyAllowance(matrix);
+	return choleskyFactor(matrix, moved) !== null;
 }

@@ -8,6 +8,7 @@ import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
 import { checkEnclosure } from './check-enclosure';
+import { checkExactMoments } from './check-exact-moments';
 import { checkLinearProgramme } from './check-linear-programme';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
@@ -55,6 +56,9 @@ function checkCertificate(
 			break;
 		case 'npa-dual':
 			if (problem.quantity === 'npa') return checkMomentCertificate(problem, g, certificate);
+			break;
+		case 'npa-exact':
+			if (problem.quantity === 'npa') return checkExactMoments(problem, g, certificate);
 			break;
 		case 'enclosure':
 			if (problem.quantity === 'quantum') return checkEnclosure(problem, g, certificate);
@@ -110,10 +114,12 @@ function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | n
 
 function turnSigns(proved: Proved): Proved {
 	const exact = proved.exact === null ? null : parseRational(proved.exact);
+	const bound = proved.exactBound === undefined ? null : parseRational(proved.exactBound);
 	return {
 		...proved,
 		lower: proved.upper === null ? null : 0 - proved.upper,
 		upper: proved.lower === null ? null : 0 - proved.lower,
-		exact: exact ? printRational(exact.neg()) : null
+		exact: exact ? printRational(exact.neg()) : null,
+		...(bound && { exactBound: printRational(bound.neg()) })
 	};
 }

@@ -3,6 +3,7 @@ import { describe, expect, test } from 'vitest';
 import degenerate from '../../../../tests/vectors/degenerate-moment-problems.json';
 import vectors from '../../../../tests/vectors/vectors.json';
 import { PATIENT, npaProblem } from '../../../../tests/factories/npa-problem';
+import { checkExactMoments } from '../certificates/check-exact-moments';
 import { checkMomentCertificate } from '../certificates/check-moments';
 import { exactCoefficient } from '../exact/coefficient';
 import { ratio } from '../exact/rational';
@@ -17,8 +18,12 @@ function solveChecked(problem: ProblemOf<'npa'>) {
 	const g = functionalToMaximise(problem);
 	const outcome = npaBound(problem, g, PATIENT);
 	const { certificate } = outcome;
-	if (certificate?.kind !== 'npa-dual') throw new Error('no certificate');
-	const check = checkMomentCertificate(problem, g, certificate);
+	if (certificate?.kind !== 'npa-dual' && certificate?.kind !== 'npa-exact')
+		throw new Error('no certificate');
+	const check =
+		certificate.kind === 'npa-exact'
+			? checkExactMoments(problem, g, certificate)
+			: checkMomentCertificate(problem, g, certificate);
 	if (!check.checked) throw new Error(check.reason);
 	expect(check.upper).toBeLessThanOrEqual(outcome.upper ?? NaN);
 	if (outcome.lower !== null) expect(check.lower).toBeGreaterThanOrEqual(outcome.lower);

@@ -6,6 +6,7 @@ import {
 	type Iterate
 } from '../optimization/semidefinite-programme';
 import type { Functional } from '../scenario/functional';
+import { exactMomentBound, type ExactBound } from './exact-moments';
 import { provenFeasibleValue, provenUpperBound, type Multipliers } from './guaranteed-moments';
 import { printLevel } from './moment-level';
 import type { MomentMatrix } from './moment-matrix';
@@ -51,12 +52,13 @@ export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Cont
 	const { matrix, programme } = relaxation;
 	if (!Number.isFinite(search.upper))
 		throw new SolverStop('failed', 'the interior-point method found no bound');
+	const exact = search.exactBound(problem, g);
 	return {
 		lower: search.lower,
-		upper: search.upper,
+		upper: exact?.upper ?? search.upper,
 		value: null,
 		tolerance: null,
-		optimum: search.clippedOptimum(),
+		optimum: search.clippedOptimum(exact?.upper ?? search.upper),
 		guaranteed: { lower: search.lower !== null, upper: true },
 		exact: null,
 		method: {
@@ -76,7 +78,7 @@ export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Cont
 					'an equality leaves no moments that are exactly feasible in doubles: no lower side'
 			})
 		},
-		certificate: search.certificate()
+		certificate: exact?.certificate ?? search.certificate()
 	};
 }
 
@@ -228,9 +230,16 @@ class BoundSearch {
 	}
 
 	/** The solver's own optimum, which rounding may put outside what is proved. */
-	clippedOptimum(): number | null {
+	clippedOptimum(upper: number): number | null {
 		if (this.optimum === null) return null;
-		return Math.min(Math.max(this.optimum, this.lower ?? -Infinity), this.upper);
+		return Math.min(Math.max(this.optimum, this.lower ?? -Infinity), upper);
+	}
+
+	/** The bound once more in rationals, where the problem is rational. */
+	exactBound(problem: ProblemOf<'npa'>, g: Functional): ExactBound | null {
+		const certificate = this.certificate();
+		if (!certificate || !this.#multipliers) return null;
+		return exactMomentBound(problem, g, this.#problem, this.#multipliers, certificate);
 	}
 
 	certificate(): MomentCertificate | null {

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import { floatingCertificate } from '../../../../tests/factories/floating-certificate';
 import { PATIENT, npaProblem } from '../../../../tests/factories/npa-problem';
 import type { Level, ProblemOf } from '../problem';
 import { npaBound } from './npa-bound';
@@ -9,9 +10,11 @@ import type { MomentCertificate } from '../certificates/types';
 
 function solved(problem: ProblemOf<'npa'>) {
 	const g = functionalToMaximise(problem);
-	const { certificate, lower, upper } = npaBound(problem, g, PATIENT);
-	if (certificate?.kind !== 'npa-dual' || lower === null || upper === null)
+	const { certificate: found, lower, upper: proved } = npaBound(problem, g, PATIENT);
+	const certificate = found?.kind === 'npa-exact' ? floatingCertificate(found) : found;
+	if (certificate?.kind !== 'npa-dual' || lower === null || proved === null)
 		throw new Error('no certificate');
+	const upper = Math.max(proved, certificate.bound);
 	const check = (changed: MomentCertificate, about = problem) =>
 		checkMomentCertificate(about, g, changed);
 	return { problem, certificate, lower, upper, check };

@@ -1,6 +1,7 @@
 import type {
 	DeterministicCertificate,
 	EnclosureCertificate,
+	ExactMomentCertificate,
 	MomentCertificate,
 	StrategyCertificate
 } from '../certificates/types';
@@ -11,7 +12,7 @@ export class QuantumEnclosure {
 	lower: number | null = null;
 	upper: number | null = null;
 	#lowerCertificate: DeterministicCertificate | StrategyCertificate | null = null;
-	#upperCertificate: MomentCertificate | null = null;
+	#upperCertificate: MomentCertificate | ExactMomentCertificate | null = null;
 	#upperLevel: Level | null = null;
 
 	raise(lower: number, certificate: DeterministicCertificate | StrategyCertificate): boolean {
@@ -22,7 +23,11 @@ export class QuantumEnclosure {
 		return true;
 	}
 
-	reduce(upper: number, certificate: MomentCertificate, level: Level): boolean {
+	reduce(
+		upper: number,
+		certificate: MomentCertificate | ExactMomentCertificate,
+		level: Level
+	): boolean {
 		if (!(upper < (this.upper ?? Infinity))) return false;
 		this.upper = upper;
 		// Feasible moments bound the relaxation from below, not the quantum maximum.

@@ -149,7 +149,10 @@ class Escalation {
 					seconds
 				} as const;
 				const { upper, certificate, method } = npaBound(problem, this.#g, this.#passingOn());
-				if (upper !== null && certificate?.kind === 'npa-dual')
+				if (
+					upper !== null &&
+					(certificate?.kind === 'npa-dual' || certificate?.kind === 'npa-exact')
+				)
 					this.#enclosure.reduce(upper, certificate, level);
 				const { size, ending } = method;
 				this.#levelsDone.push({ level, upper, size, ending, seconds: elapsed() });

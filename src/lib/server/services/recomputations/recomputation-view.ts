@@ -10,6 +10,7 @@ const CERTIFICATES: Readonly<Record<string, string>> = {
 	'deterministic-strategy': 'Deterministic strategy',
 	'linear-programme': 'Primal and dual solution',
 	'npa-dual': 'Dual multiplier',
+	'npa-exact': 'Exact dual multiplier',
 	'quantum-strategy': 'State and measurements',
 	enclosure: 'State, measurements and dual multiplier'
 };

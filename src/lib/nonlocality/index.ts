@@ -13,6 +13,7 @@ export type {
 	ComplexNumber,
 	Control,
 	DoneResult,
+	HybridModel,
 	Level,
 	Problem,
 	ProblemBox,
@@ -31,6 +32,8 @@ export type {
 	CheckOutcome,
 	DeterministicCertificate,
 	EnclosureCertificate,
+	HybridBipartition,
+	HybridCertificate,
 	LinearProgrammeCertificate,
 	MomentCertificate,
 	StrategyCertificate

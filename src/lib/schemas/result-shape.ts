@@ -76,12 +76,29 @@ const enclosure = z.strictObject({
 	upperLevel: levelShape.nullable()
 });
 
+const group = z.array(place, kind('a list of parties'));
+const fractions = z.record(z.string(), fraction, kind('an object from "a,b|x,y" to a fraction'));
+const hybrid = z.strictObject({
+	kind: z.literal('hybrid'),
+	groups: z.array(group, kind('a list of groups')),
+	behaviours: z.array(fractions, kind('a list of behaviours')),
+	bipartitions: z.array(
+		z.strictObject({
+			groups: z.array(group, kind('a list of groups')),
+			listed: place,
+			branches: z.array(z.strictObject({ vertex: fractions, multipliers: fractions }))
+		}),
+		kind('a list of bipartitions')
+	),
+	value: fraction.nullable()
+});
+
 export const certificateShape = z.discriminatedUnion(
 	'kind',
-	[deterministic, linearProgramme, moments, quantumStrategy, enclosure],
+	[deterministic, linearProgramme, moments, quantumStrategy, enclosure, hybrid],
 	{
 		error:
-			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure'
+			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure, hybrid'
 	}
 );
 

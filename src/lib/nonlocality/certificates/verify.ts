@@ -5,9 +5,10 @@
 import { parseRational, printRational, toDoubleDown, toDoubleUp } from '../exact/rational';
 import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { functionalToMaximise, isEnumerated, isNegated } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
 import { checkEnclosure } from './check-enclosure';
+import { checkHybrid } from './check-hybrid';
 import { checkLinearProgramme } from './check-linear-programme';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
@@ -59,6 +60,9 @@ function checkCertificate(
 		case 'enclosure':
 			if (problem.quantity === 'quantum') return checkEnclosure(problem, g, certificate);
 			break;
+		case 'hybrid':
+			if (problem.quantity === 'hybrid') return checkHybrid(problem, g, certificate);
+			break;
 	}
 	return refuse(
 		`a certificate of the kind "${certificate.kind}" proves nothing on "${problem.quantity}"`
@@ -102,7 +106,7 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 
 /** A large enumeration is not repeated: only there may a guaranteed side go unproved. */
 function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | null {
-	if (result.quantity === 'local') return null;
+	if (isEnumerated(result.problem)) return null;
 	for (const side of ['lower', 'upper'] as const)
 		if (result.guaranteed[side] && result[side] !== null && proved[side] === null) return side;
 	return null;

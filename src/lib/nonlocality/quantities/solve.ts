@@ -10,6 +10,7 @@ import {
 } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { hybridMaximum } from './hybrid-maximum';
 import { localMaximum } from './local-maximum';
 import { noSignallingMaximum } from './no-signalling-maximum';
 import { npaBound } from './npa-bound';
@@ -76,6 +77,10 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 			return localMaximum(problem, g, control);
 		case 'no-signalling':
 			return noSignallingMaximum(problem, g, control);
+		case 'hybrid':
+			return hybridMaximum(problem, g, control);
+		case 'facet':
+			throw new SolverStop('failed', 'no facet test yet');
 		case 'npa':
 			return npaBound(problem, g, control);
 		case 'see-saw':

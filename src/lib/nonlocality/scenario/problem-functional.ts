@@ -15,3 +15,11 @@ export function functionalToMaximise(problem: Problem): Functional {
 export function isNegated(problem: Problem): boolean {
 	return problem.sense === 'min' && problem.quantity !== 'value';
 }
+
+/** Quantities whose upper side is an enumeration, which a check repeats only while it is cheap. */
+export function isEnumerated(problem: Problem): boolean {
+	return (
+		problem.quantity === 'local' ||
+		(problem.quantity === 'hybrid' && problem.model === 'svetlichny')
+	);
+}

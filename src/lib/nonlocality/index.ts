@@ -32,6 +32,7 @@ export type {
 	CheckOutcome,
 	DeterministicCertificate,
 	EnclosureCertificate,
+	FacetCertificate,
 	HybridBipartition,
 	HybridCertificate,
 	LinearProgrammeCertificate,

@@ -93,12 +93,24 @@ const hybrid = z.strictObject({
 	value: fraction.nullable()
 });
 
+const facet = z.strictObject({
+	kind: z.literal('facet'),
+	maximum: fraction,
+	strategies: z.array(strategyList, kind('a list of strategies')),
+	vanishing: z
+		.array(
+			z.tuple([fraction, z.array(z.tuple([place, place, place]))], kind('[coefficient, events]')),
+			kind('a list of [coefficient, events]')
+		)
+		.nullable()
+});
+
 export const certificateShape = z.discriminatedUnion(
 	'kind',
-	[deterministic, linearProgramme, moments, quantumStrategy, enclosure, hybrid],
+	[deterministic, linearProgramme, moments, quantumStrategy, enclosure, hybrid, facet],
 	{
 		error:
-			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure, hybrid'
+			'must be one of deterministic-strategy, linear-programme, npa-dual, quantum-strategy, enclosure, hybrid, facet'
 	}
 );
 

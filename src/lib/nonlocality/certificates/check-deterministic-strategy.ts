@@ -23,10 +23,7 @@ export function checkDeterministicStrategy(
 	const defect = strategyDefect(g, certificate.strategy);
 	if (defect) return { checked: false, reason: defect };
 	const { strategy } = certificate;
-	let value = ZERO;
-	for (const term of g.terms) {
-		if (term.events.every(([p, x, a]) => strategy[p]?.[x] === a)) value = value.add(exactOf(term));
-	}
+	const value = valueOfStrategy(g, strategy);
 	const allowance = allowanceOf(g);
 	const rational = g.terms.every((term) => term.coefficient.exact);
 	if (certificate.value !== null) {
@@ -55,7 +52,18 @@ export function checkDeterministicStrategy(
 	};
 }
 
-function strategyDefect(g: Functional, strategy: readonly (readonly number[])[]): string | null {
+/** g at a deterministic strategy; doubles stand for irrational coefficients. */
+export function valueOfStrategy(g: Functional, strategy: readonly (readonly number[])[]): Rational {
+	let value = ZERO;
+	for (const term of g.terms)
+		if (term.events.every(([p, x, a]) => strategy[p]?.[x] === a)) value = value.add(exactOf(term));
+	return value;
+}
+
+export function strategyDefect(
+	g: Functional,
+	strategy: readonly (readonly number[])[]
+): string | null {
 	const { outputs } = g.scenario;
 	if (!Array.isArray(strategy) || strategy.length !== outputs.length)
 		return `the strategy is not for ${outputs.length} parties`;

@@ -8,29 +8,75 @@ import type { Functional, Term } from '../scenario/functional';
 /** Terms looked at in all (strategies times terms): about a second in doubles, in BigInt. */
 const DOUBLE_WORK_LIMIT = 2 ** 26;
 const BIGINT_WORK_LIMIT = 2 ** 22;
+/** The same for a facet test, in BigInt: some seconds. */
+const FACET_WORK_LIMIT = 2 ** 24;
 
 /** The maximum over all strategies, or null when that takes too long here. */
 export function enumerateAgain(g: Functional): Rational | null {
-	const { outputs } = g.scenario;
-	const counts = outputs.map((row) => row.reduce((product, count) => product * count, 1));
-	const answering = counts.indexOf(Math.max(...counts));
-	const others = outputs.flatMap((row, p) =>
-		p === answering ? [] : row.map((count, x) => ({ p, x, count }))
-	);
-	const work = others.reduce((product, { count }) => product * count, g.terms.length);
+	const { answering, others, work } = planOf(g, g.terms.length);
 	if (work > DOUBLE_WORK_LIMIT) return null;
 
-	const common = g.terms.reduce((d, term) => leastCommonMultiple(d, exactOf(term).d), 1n);
-	const scaled = g.terms.map((term) => {
-		const value = exactOf(term).mul(ratio(common));
-		return value.s * value.n;
-	});
+	const { scaled, common } = scaleToIntegers(g);
 	const sum = scaled.reduce((total, c) => total + (c < 0n ? -c : c), 0n);
 	if (sum >= 2n ** 53n) {
 		if (work > BIGINT_WORK_LIMIT) return null;
 		return ratio(enumerateExactly(g, scaled, others, answering), common);
 	}
 	return ratio(BigInt(enumerateInDoubles(g, scaled, others, answering)), common);
+}
+
+/**
+ * Whether h is 0 at every deterministic strategy at which g has its maximum; null when that takes too
+ * long here. With the other parties fixed, the answering one picks any best output for each input, and
+ * h is a sum over these inputs: it vanishes for all picks when it does for one and no input's pick
+ * makes a difference.
+ */
+export function vanishesWhereBest(g: Functional, h: Functional, maximum: Rational): boolean | null {
+	const { answering, others, work } = planOf(g, g.terms.length + h.terms.length);
+	if (work > FACET_WORK_LIMIT) return null;
+	const [own, other] = [scaleToIntegers(g), scaleToIntegers(h)];
+	const most = maximum.mul(ratio(own.common));
+	const target = most.s * most.n;
+	const [layout, second] = [layOut(g, others, answering), layOut(h, others, answering)];
+	let vanishes = true;
+	forEachAssignment(others, (outputs) => {
+		const cells = cellsAt(layout, own.scaled, outputs);
+		const choices = layout.ranges.map(([first, count]) => {
+			const list = cells.slice(first, first + count);
+			const best = list.reduce((a, b) => (a > b ? a : b));
+			return { best, places: list.flatMap((value, a) => (value === best ? [first + a] : [])) };
+		});
+		if (choices.reduce((sum, { best }) => sum + best, cells[0] ?? 0n) !== target) return;
+		const values = cellsAt(second, other.scaled, outputs);
+		let sum = values[0] ?? 0n;
+		for (const { places } of choices) {
+			const [value = 0n, ...rest] = places.map((place) => values[place] ?? 0n);
+			if (rest.some((x) => x !== value)) vanishes = false;
+			sum += value;
+		}
+		if (sum !== 0n) vanishes = false;
+	});
+	return vanishes;
+}
+
+/** The party with most strategies answers; the work is assignments of the others times `terms`. */
+function planOf({ scenario: { outputs } }: Functional, terms: number) {
+	const counts = outputs.map((row) => row.reduce((product, count) => product * count, 1));
+	const answering = counts.indexOf(Math.max(...counts));
+	const others = outputs.flatMap((row, p) =>
+		p === answering ? [] : row.map((count, x) => ({ p, x, count }))
+	);
+	const work = others.reduce((product, { count }) => product * count, terms);
+	return { answering, others, work };
+}
+
+function scaleToIntegers({ terms }: Functional) {
+	const common = terms.reduce((d, term) => leastCommonMultiple(d, exactOf(term).d), 1n);
+	const scaled = terms.map((term) => {
+		const value = exactOf(term).mul(ratio(common));
+		return value.s * value.n;
+	});
+	return { scaled, common };
 }
 
 /** The coefficient, or for an irrational one the double that stands for it. */
@@ -110,18 +156,28 @@ function enumerateExactly(
 	places: readonly Place[],
 	answering: number
 ): bigint {
-	const { terms, size, ranges } = layOut(g, places, answering);
+	const layout = layOut(g, places, answering);
 	let most: bigint | null = null;
 	forEachAssignment(places, (outputs) => {
-		const cells = new Array<bigint>(size).fill(0n);
-		terms.forEach(({ cell, needed }, t) => {
-			if (needed.every(([place, a]) => outputs[place] === a))
-				cells[cell] = (cells[cell] ?? 0n) + (coefficients[t] ?? 0n);
-		});
+		const cells = cellsAt(layout, coefficients, outputs);
 		let value = cells[0] ?? 0n;
-		for (const [first, count] of ranges)
+		for (const [first, count] of layout.ranges)
 			value += cells.slice(first, first + count).reduce((a, b) => (a > b ? a : b));
 		if (most === null || value > most) most = value;
 	});
 	return most ?? 0n;
+}
+
+/** What the answering party's outputs are worth, and the constant first. */
+function cellsAt(
+	{ terms, size }: ReturnType<typeof layOut>,
+	coefficients: readonly bigint[],
+	outputs: readonly number[]
+): bigint[] {
+	const cells = new Array<bigint>(size).fill(0n);
+	terms.forEach(({ cell, needed }, t) => {
+		if (needed.every(([place, a]) => outputs[place] === a))
+			cells[cell] = (cells[cell] ?? 0n) + (coefficients[t] ?? 0n);
+	});
+	return cells;
 }

@@ -1,5 +1,5 @@
 /** What a reader needs to check a result without trusting the solver. One kind per claim proved. */
-import type { ComplexMatrix, QuantumStrategy } from '../problem';
+import type { ComplexMatrix, ProblemTerm, QuantumStrategy } from '../problem';
 
 /** A deterministic strategy `strategy[party][input] = output`; its exact value is recomputed. */
 export interface DeterministicCertificate {
@@ -89,6 +89,24 @@ export interface EnclosureCertificate {
 }
 
 /**
+ * Whether g <= maximum is a facet of the local polytope, that is, whether the deterministic
+ * strategies that reach the maximum contain as many affinely independent ones as the polytope has
+ * dimensions, prod_p (1 + sum_x (outputs - 1)) - 1.
+ */
+export interface FacetCertificate {
+	readonly kind: 'facet';
+	/** The local maximum, an exact rational. */
+	readonly maximum: string;
+	/** Affinely independent strategies that reach it, `[party][input]` = output. */
+	readonly strategies: readonly (readonly (readonly number[])[])[];
+	/**
+	 * Not a facet: the terms of a functional that is 0 at every strategy that reaches the maximum and
+	 * is no multiple of g - maximum. Null for a facet, and for a constant g.
+	 */
+	readonly vanishing: readonly ProblemTerm[] | null;
+}
+
+/**
  * Maximum over behaviours that are local across some bipartition of the parties. Tables are keyed
  * `"a,b|x,y"` by the outputs and inputs of a group's parties, in their order; entries left out are 0.
  */
@@ -129,7 +147,8 @@ export type Certificate =
 	| MomentCertificate
 	| StrategyCertificate
 	| EnclosureCertificate
-	| HybridCertificate;
+	| HybridCertificate
+	| FacetCertificate;
 
 /** The outcome of an independent check. */
 export type CheckOutcome =

@@ -5,9 +5,10 @@
 import { parseRational, printRational, toDoubleDown, toDoubleUp } from '../exact/rational';
 import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalToMaximise, isEnumerated, isNegated } from '../scenario/problem-functional';
+import { functionalToMaximise, isEnumerated, turnsSigns } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
 import { checkEnclosure } from './check-enclosure';
+import { checkFacet } from './check-facet';
 import { checkHybrid } from './check-hybrid';
 import { checkLinearProgramme } from './check-linear-programme';
 import { checkMomentCertificate } from './check-moments';
@@ -25,7 +26,7 @@ export function verifyResult(result: Result): CheckOutcome {
 		const g = functionalToMaximise(result.problem);
 		const outcome = checkCertificate(result.problem, g, result.certificate);
 		if (!outcome.checked) return outcome;
-		const proved = isNegated(result.problem) ? turnSigns(outcome) : outcome;
+		const proved = turnsSigns(result.problem) ? turnSigns(outcome) : outcome;
 		const defect = printedDefect(result, proved);
 		return defect ? { checked: false, reason: defect } : proved;
 	} catch (error) {
@@ -62,6 +63,9 @@ function checkCertificate(
 			break;
 		case 'hybrid':
 			if (problem.quantity === 'hybrid') return checkHybrid(problem, g, certificate);
+			break;
+		case 'facet':
+			if (problem.quantity === 'facet') return checkFacet(g, certificate);
 			break;
 	}
 	return refuse(

@@ -9,7 +9,8 @@ import {
 	type UnfinishedResult
 } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { functionalToMaximise, turnsSigns } from '../scenario/problem-functional';
+import { facetTest } from './facet-test';
 import { hybridMaximum } from './hybrid-maximum';
 import { localMaximum } from './local-maximum';
 import { noSignallingMaximum } from './no-signalling-maximum';
@@ -45,7 +46,7 @@ export async function solve(problem: Problem, control: Control): Promise<Result>
 		method: {}
 	});
 	try {
-		const negated = isNegated(problem);
+		const negated = turnsSigns(problem);
 		const g = functionalToMaximise(problem);
 		const outcome = await dispatch(problem, g, negated ? withSignsTurned(control) : control);
 		const numbers = [outcome.lower, outcome.upper, outcome.value, outcome.optimum];
@@ -80,7 +81,7 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 		case 'hybrid':
 			return hybridMaximum(problem, g, control);
 		case 'facet':
-			throw new SolverStop('failed', 'no facet test yet');
+			return facetTest(problem, g, control);
 		case 'npa':
 			return npaBound(problem, g, control);
 		case 'see-saw':

@@ -252,7 +252,7 @@ describe('the public', () => {
 	it('reads that a person reproduced a claim, and never who', async () => {
 		const { number, id } = await enterClaim(
 			world.as.member,
-			claimFields({ quantity: 'hybrid', printed: '2.5', relation: '<=' })
+			claimFields({ quantity: 'other', printed: '2.5', relation: '<=' })
 		);
 		const { task } = await reproduced(number, '2.41');
 		await publishClaim(world.as.maintainer, number);

@@ -7,6 +7,7 @@ import {
 	type Rational
 } from '../nonlocality/exact/rational';
 import type { DoneResult, Problem } from '../nonlocality/problem';
+import { isEnumerated } from '../nonlocality/scenario/problem-functional';
 import type { OtherValue } from './diagnosis';
 import type { Evidence } from './enclosure';
 import { methodMatches } from './method';
@@ -56,7 +57,7 @@ function provedSides({ result, check }: Finding): Sides {
 	const exact = check.exact === null ? null : parseRational(check.exact);
 	if (exact) return { lower: exact, upper: exact };
 	const proved = { lower: ofDouble(check.lower), upper: ofDouble(check.upper) };
-	return result.quantity === 'local' ? withEnumeration(result, proved) : proved;
+	return isEnumerated(result.problem) ? withEnumeration(result, proved) : proved;
 }
 
 /** A check repeats a small enumeration only: the side of a large one rests on the solver's own. */

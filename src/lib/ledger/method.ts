@@ -24,8 +24,13 @@ export function methodMatches(method: string, problem: Problem): boolean {
 			return /\blocal\b|deterministic|vertex|vertices|enumerat|hidden[\s-]*variable/i.test(method);
 		case 'no-signalling':
 			return /no[\s-]*-?signall?ing|non-?signall?ing|linear program|\bPR\b/i.test(method);
+		case 'hybrid':
+			return problem.model === 'svetlichny'
+				? /svetlichny|hybrid/i.test(method)
+				: /hybrid|bi-?local/i.test(method);
 		case 'quantum':
 		case 'value':
+		case 'facet':
 			return false;
 	}
 }

@@ -13,6 +13,7 @@ export function sameQuantity(a: Problem, b: Problem): boolean {
 		);
 	if (a.quantity === 'value' && b.quantity === 'value')
 		return JSON.stringify(a.box) === JSON.stringify(b.box);
+	if (a.quantity === 'hybrid' && b.quantity === 'hybrid') return a.model === b.model;
 	return true;
 }
 
@@ -24,20 +25,26 @@ export function comparable(a: Problem, b: Problem): boolean {
 /**
  * Whether the set behind `a` is known to lie within the one behind `b`, so that the maximum over `a`
  * is at most the one over `b`: local, quantum in a dimension, quantum, NPA (a higher level within a
- * lower), and quantum within no-signalling.
+ * lower), and quantum within no-signalling; local within the hybrid models, no-signalling groups
+ * within no-signalling and within Svetlichny's.
  */
 export function isWithin(a: Problem, b: Problem): boolean {
 	if (!comparable(a, b)) return false;
 	if (sameQuantity(a, b)) return true;
-	if (a.quantity === 'value' || b.quantity === 'value') return false;
+	if (isNoMaximum(a) || isNoMaximum(b)) return false;
 	if (a.quantity === 'local') return true;
 	if (b.quantity === 'local') return false;
+	if (a.quantity === 'hybrid')
+		return a.model === 'no-signalling' && ['hybrid', 'no-signalling'].includes(b.quantity);
+	if (b.quantity === 'hybrid') return false;
 	if (a.quantity === 'see-saw') return b.quantity !== 'see-saw' || seeSawWithin(a, b);
 	if (b.quantity === 'see-saw') return false;
 	if (a.quantity === 'quantum') return true;
 	if (b.quantity === 'quantum') return false;
 	return a.quantity === 'npa' && b.quantity === 'npa' && npaWithin(a, b);
 }
+
+const isNoMaximum = ({ quantity }: Problem) => quantity === 'value' || quantity === 'facet';
 
 type SeeSaw = Extract<Problem, { quantity: 'see-saw' }>;
 type Npa = Extract<Problem, { quantity: 'npa' }>;

@@ -28,6 +28,12 @@ function dimensionName(dimension: readonly number[]): string {
 	return new Set(dimension).size === 1 ? String(dimension[0]) : dimension.join(' x ');
 }
 
+/** What the parties of one group may share. */
+const HYBRID_MODELS = {
+	svetlichny: "Svetlichny's model",
+	'no-signalling': 'no-signalling groups'
+} as const;
+
 const extremum = (problem: Problem) => (problem.sense === 'max' ? 'maximum' : 'minimum');
 
 /** What a problem's value is, for "the paper meant ...". */
@@ -41,6 +47,10 @@ export function valueLabel(problem: Problem): string {
 			return `the no-signalling ${extremum(problem)}`;
 		case 'quantum':
 			return `the quantum ${extremum(problem)}`;
+		case 'hybrid':
+			return `the hybrid ${extremum(problem)} (${HYBRID_MODELS[problem.model]})`;
+		case 'facet':
+			return 'the facet test';
 		case 'see-saw':
 			return problem.state === 'maximally-entangled'
 				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem.dimension)} (best value found)`
@@ -64,6 +74,8 @@ export function innerLabel(problem: Problem): string {
 			return 'a deterministic strategy';
 		case 'no-signalling':
 			return 'a no-signalling box';
+		case 'hybrid':
+			return 'a strategy of two groups';
 		case 'npa':
 			return `a feasible moment matrix of ${npaName(problem.level)}`;
 		case 'see-saw':
@@ -71,6 +83,7 @@ export function innerLabel(problem: Problem): string {
 		case 'quantum':
 			return 'an explicit quantum strategy';
 		case 'value':
+		case 'facet':
 			return 'evaluation';
 	}
 }
@@ -82,6 +95,10 @@ export function outerLabel(problem: Problem): string {
 			return 'the enumeration of all deterministic strategies';
 		case 'no-signalling':
 			return 'the no-signalling linear programme';
+		case 'hybrid':
+			return problem.model === 'svetlichny'
+				? 'the enumeration of all joint strategies'
+				: 'linear programmes for every bipartition';
 		case 'npa':
 			return (
 				npaName(problem.level) + (problem.nonNegative ? ' with non-negative probabilities' : '')
@@ -90,6 +107,7 @@ export function outerLabel(problem: Problem): string {
 			return 'the moment-matrix relaxation';
 		case 'see-saw':
 		case 'value':
+		case 'facet':
 			return 'evaluation';
 	}
 }
@@ -115,5 +133,6 @@ export function fieldsOf(problem: Problem): {
 				...(problem.state === 'maximally-entangled' ? { state: problem.state } : {})
 			}
 		};
+	if (quantity === 'hybrid') return { quantity, fields: { ...sense, model: problem.model } };
 	return { quantity, fields: sense };
 }

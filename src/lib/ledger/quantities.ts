@@ -7,7 +7,7 @@ export interface QuantityInfo {
 	/** `functional`: needs an inequality; `any`: may be about a subject given in words. */
 	readonly subject: 'functional' | 'any';
 	/** The problem's quantity that recomputes it; null while no solver serves it. */
-	readonly solver: 'local' | 'no-signalling' | 'npa' | 'see-saw' | 'quantum' | null;
+	readonly solver: 'local' | 'no-signalling' | 'hybrid' | 'npa' | 'see-saw' | 'quantum' | null;
 	/** Randomness, key-rate and efficiency figures carry the caution about devices. */
 	readonly caution: boolean;
 }
@@ -32,6 +32,8 @@ export const QUANTITIES = [
 	maximum('quantum', 'Quantum maximum', 'quantum'),
 	maximum('local', 'Local maximum', 'local'),
 	maximum('no-signalling', 'No-signalling maximum', 'no-signalling'),
+	maximum('hybrid', 'Hybrid maximum (Svetlichny’s model)', 'hybrid'),
+	maximum('hybrid-no-signalling', 'Hybrid maximum (no-signalling groups)', 'hybrid'),
 	maximum('npa', 'NPA bound', 'npa', ['sense', 'level', 'nonNegative']),
 	maximum('almost-quantum', 'Almost-quantum bound', 'npa'),
 	maximum('macroscopic-locality', 'Macroscopic-locality bound', 'npa'),
@@ -52,7 +54,6 @@ export const QUANTITIES = [
 	withoutSolver('key-rate', 'Key rate', true),
 	withoutSolver('random-access-code', 'Random-access-code success'),
 	withoutSolver('box-value', 'Value of a box or strategy'),
-	withoutSolver('hybrid', 'Hybrid maximum'),
 	withoutSolver('other', 'Other quantity')
 ] as const satisfies readonly QuantityInfo[];
 

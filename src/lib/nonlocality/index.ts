@@ -13,6 +13,7 @@ export type {
 	ComplexNumber,
 	Control,
 	DoneResult,
+	HybridModel,
 	Level,
 	Problem,
 	ProblemBox,
@@ -32,6 +33,9 @@ export type {
 	DeterministicCertificate,
 	EnclosureCertificate,
 	ExactMomentCertificate,
+	FacetCertificate,
+	HybridBipartition,
+	HybridCertificate,
 	LinearProgrammeCertificate,
 	MomentCertificate,
 	StrategyCertificate

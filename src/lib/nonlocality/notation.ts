@@ -18,6 +18,7 @@ export { FORMAT } from './problem';
 export type {
 	ComplexMatrix,
 	ComplexNumber,
+	HybridModel,
 	Level,
 	Problem,
 	ProblemBox,

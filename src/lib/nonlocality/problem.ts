@@ -44,6 +44,9 @@ export interface QuantumStrategy {
 export type Level =
 	number | '1+AB' | { readonly perParty: number } | { readonly products: readonly string[] };
 
+/** What parties of one group may share: anything (also signalling), or no-signalling behaviours. */
+export type HybridModel = 'svetlichny' | 'no-signalling';
+
 interface ProblemSubject {
 	readonly format: 1;
 	readonly outputs: readonly (readonly number[])[];
@@ -60,6 +63,8 @@ export type Problem = ProblemSubject &
 		| { readonly quantity: 'value'; readonly box: ProblemBox }
 		| { readonly quantity: 'local' }
 		| { readonly quantity: 'no-signalling' }
+		| { readonly quantity: 'hybrid'; readonly model: HybridModel }
+		| { readonly quantity: 'facet' }
 		| { readonly quantity: 'npa'; readonly level: Level; readonly nonNegative: boolean }
 		| {
 				readonly quantity: 'see-saw';

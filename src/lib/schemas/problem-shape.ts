@@ -148,6 +148,9 @@ export const problemShape = z.strictObject({
 	constraints: z.array(constraintShape, kind('a list of constraints')).optional(),
 	quantity: z.string(kind('a text')),
 	sense: z.enum(SENSES, kind('max or min')).optional(),
+	model: z
+		.enum(['svetlichny', 'no-signalling'], kind('"svetlichny" or "no-signalling"'))
+		.optional(),
 	level: levelShape.optional(),
 	nonNegative: z.boolean(kind('true or false')).optional(),
 	dimension: z

@@ -3,6 +3,7 @@ import {
 	behaviourOfStrategy,
 	behaviourOfTable,
 	termsOfFunctional,
+	type HybridModel,
 	type Level,
 	type Problem,
 	type ProblemBox,
@@ -26,7 +27,19 @@ export const UNSOLVED_QUANTITIES = [
 	'random-access-code'
 ] as const;
 
-const SOLVED_QUANTITIES = ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'] as const;
+const SOLVED_QUANTITIES = [
+	'value',
+	'local',
+	'no-signalling',
+	'hybrid',
+	'facet',
+	'npa',
+	'see-saw',
+	'quantum'
+] as const;
+
+/** Quantities that extra linear constraints mean nothing to, or that no solver knows under them. */
+const UNCONSTRAINED: readonly string[] = ['value', 'quantum', 'hybrid', 'facet'];
 
 /** What a problem means when it does not say. */
 export const PROBLEM_DEFAULTS = { seconds: 30, seed: 0, starts: 20, gap: 1e-8 } as const;
@@ -59,7 +72,10 @@ export function parseProblem(json: unknown): Problem {
 			return { ...common, quantity: 'value', box };
 		case 'local':
 		case 'no-signalling':
+		case 'facet':
 			return { ...common, quantity: shape.quantity };
+		case 'hybrid':
+			return { ...common, quantity: 'hybrid', model: readModel(shape, parties) };
 		case 'npa':
 			if (shape.level === undefined)
 				throw new ProblemError('level', 'is missing: an NPA bound needs its level');
@@ -165,7 +181,7 @@ function checkBox(box: ProblemBox, outputs: Problem['outputs']): void {
 
 function readConstraints(shape: ProblemShape, outputs: Problem['outputs']): ProblemConstraint[] {
 	const { constraints = [], quantity } = shape;
-	if (constraints.length > 0 && (quantity === 'value' || quantity === 'quantum'))
+	if (constraints.length > 0 && UNCONSTRAINED.includes(quantity))
 		throw new ProblemError('constraints', `have no part in the quantity ${quantity}`);
 	return constraints.map((constraint, i) => {
 		const prefix = `constraints[${i}].`;
@@ -177,6 +193,22 @@ function readConstraints(shape: ProblemShape, outputs: Problem['outputs']): Prob
 			value: readCoefficient(`${prefix}value`, constraint.value)
 		};
 	});
+}
+
+function readModel({ model }: ProblemShape, parties: number): HybridModel {
+	if (parties < 3)
+		throw new ProblemError(
+			'quantity',
+			`hybrid needs three parties or more, not ${parties}`,
+			null,
+			'With two parties it is the local maximum: write "local".'
+		);
+	if (model === undefined)
+		throw new ProblemError(
+			'model',
+			'is missing: "svetlichny" lets the parties of a group signal, "no-signalling" does not'
+		);
+	return model;
 }
 
 function readLevel(

@@ -94,13 +94,51 @@ const enclosure = z.strictObject({
 	upperLevel: levelShape.nullable()
 });
 
+const group = z.array(place, kind('a list of parties'));
+const fractions = z.record(z.string(), fraction, kind('an object from "a,b|x,y" to a fraction'));
+const hybrid = z.strictObject({
+	kind: z.literal('hybrid'),
+	groups: z.array(group, kind('a list of groups')),
+	behaviours: z.array(fractions, kind('a list of behaviours')),
+	bipartitions: z.array(
+		z.strictObject({
+			groups: z.array(group, kind('a list of groups')),
+			listed: place,
+			branches: z.array(z.strictObject({ vertex: fractions, multipliers: fractions }))
+		}),
+		kind('a list of bipartitions')
+	),
+	value: fraction.nullable()
+});
+
+const facet = z.strictObject({
+	kind: z.literal('facet'),
+	maximum: fraction,
+	strategies: z.array(strategyList, kind('a list of strategies')),
+	vanishing: z
+		.array(
+			z.tuple([fraction, z.array(z.tuple([place, place, place]))], kind('[coefficient, events]')),
+			kind('a list of [coefficient, events]')
+		)
+		.nullable()
+});
+
 export const certificateShape = z.discriminatedUnion(
 	'kind',
-	[deterministic, linearProgramme, moments, exactMoments, quantumStrategy, enclosure],
+	[
+		deterministic,
+		linearProgramme,
+		moments,
+		exactMoments,
+		quantumStrategy,
+		enclosure,
+		hybrid,
+		facet
+	],
 	{
 		error:
 			'must be one of deterministic-strategy, linear-programme, npa-dual, npa-exact, ' +
-			'quantum-strategy, enclosure'
+			'quantum-strategy, enclosure, hybrid, facet'
 	}
 );
 

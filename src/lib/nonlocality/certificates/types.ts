@@ -1,5 +1,5 @@
 /** What a reader needs to check a result without trusting the solver. One kind per claim proved. */
-import type { ComplexMatrix, QuantumStrategy } from '../problem';
+import type { ComplexMatrix, ProblemTerm, QuantumStrategy } from '../problem';
 
 /** A deterministic strategy `strategy[party][input] = output`; its exact value is recomputed. */
 export interface DeterministicCertificate {
@@ -114,13 +114,68 @@ export interface EnclosureCertificate {
 	readonly upperLevel: unknown;
 }
 
+/**
+ * Whether g <= maximum is a facet of the local polytope, that is, whether the deterministic
+ * strategies that reach the maximum contain as many affinely independent ones as the polytope has
+ * dimensions, prod_p (1 + sum_x (outputs - 1)) - 1.
+ */
+export interface FacetCertificate {
+	readonly kind: 'facet';
+	/** The local maximum, an exact rational. */
+	readonly maximum: string;
+	/** Affinely independent strategies that reach it, `[party][input]` = output. */
+	readonly strategies: readonly (readonly (readonly number[])[])[];
+	/**
+	 * Not a facet: the terms of a functional that is 0 at every strategy that reaches the maximum and
+	 * is no multiple of g - maximum. Null for a facet, and for a constant g.
+	 */
+	readonly vanishing: readonly ProblemTerm[] | null;
+}
+
+/**
+ * Maximum over behaviours that are local across some bipartition of the parties. Tables are keyed
+ * `"a,b|x,y"` by the outputs and inputs of a group's parties, in their order; entries left out are 0.
+ */
+export interface HybridCertificate {
+	readonly kind: 'hybrid';
+	/** The bipartition of the lower side. */
+	readonly groups: readonly (readonly number[])[];
+	/** A behaviour of each group: g at their product proves the lower side. */
+	readonly behaviours: readonly Readonly<Record<string, string>>[];
+	/**
+	 * The upper side within the no-signalling model, one entry per bipartition; empty for
+	 * Svetlichny's, where the check enumerates.
+	 */
+	readonly bipartitions: readonly HybridBipartition[];
+	/** The maximum as an exact rational, or null where the two sides do not meet exactly. */
+	readonly value: string | null;
+}
+
+/**
+ * Upper side of one bipartition: for each vertex v of the no-signalling polytope of the listed
+ * group, multipliers m >= 0 of the other group's rows P >= 0. With g_v = g at v, a functional of the
+ * other group: g_v + sum m P = U + sum_i r_i y_i in Collins-Gisin coordinates, so that
+ * g_v <= U + sum_i max(0, r_i).
+ */
+export interface HybridBipartition {
+	readonly groups: readonly (readonly number[])[];
+	/** 0 or 1: the group whose vertices are listed. */
+	readonly listed: number;
+	readonly branches: readonly {
+		readonly vertex: Readonly<Record<string, string>>;
+		readonly multipliers: Readonly<Record<string, string>>;
+	}[];
+}
+
 export type Certificate =
 	| DeterministicCertificate
 	| LinearProgrammeCertificate
 	| MomentCertificate
 	| ExactMomentCertificate
 	| StrategyCertificate
-	| EnclosureCertificate;
+	| EnclosureCertificate
+	| HybridCertificate
+	| FacetCertificate;
 
 /** The outcome of an independent check. */
 export type CheckOutcome =

@@ -5,10 +5,12 @@
 import { parseRational, printRational, toDoubleDown, toDoubleUp } from '../exact/rational';
 import type { DoneResult, Problem, Result } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { functionalToMaximise, isEnumerated, turnsSigns } from '../scenario/problem-functional';
 import { checkDeterministicStrategy } from './check-deterministic-strategy';
 import { checkEnclosure } from './check-enclosure';
 import { checkExactMoments } from './check-exact-moments';
+import { checkFacet } from './check-facet';
+import { checkHybrid } from './check-hybrid';
 import { checkLinearProgramme } from './check-linear-programme';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
@@ -25,7 +27,7 @@ export function verifyResult(result: Result): CheckOutcome {
 		const g = functionalToMaximise(result.problem);
 		const outcome = checkCertificate(result.problem, g, result.certificate);
 		if (!outcome.checked) return outcome;
-		const proved = isNegated(result.problem) ? turnSigns(outcome) : outcome;
+		const proved = turnsSigns(result.problem) ? turnSigns(outcome) : outcome;
 		const defect = printedDefect(result, proved);
 		return defect ? { checked: false, reason: defect } : proved;
 	} catch (error) {
@@ -62,6 +64,12 @@ function checkCertificate(
 			break;
 		case 'enclosure':
 			if (problem.quantity === 'quantum') return checkEnclosure(problem, g, certificate);
+			break;
+		case 'hybrid':
+			if (problem.quantity === 'hybrid') return checkHybrid(problem, g, certificate);
+			break;
+		case 'facet':
+			if (problem.quantity === 'facet') return checkFacet(g, certificate);
 			break;
 	}
 	return refuse(
@@ -106,7 +114,7 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 
 /** A large enumeration is not repeated: only there may a guaranteed side go unproved. */
 function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | null {
-	if (result.quantity === 'local') return null;
+	if (isEnumerated(result.problem)) return null;
 	for (const side of ['lower', 'upper'] as const)
 		if (result.guaranteed[side] && result[side] !== null && proved[side] === null) return side;
 	return null;

@@ -8,6 +8,12 @@ export interface BestStrategy {
 	readonly digits: readonly (readonly number[])[];
 }
 
+/** Strategies that reach a value: any choice of the outputs listed by party and input. */
+export type OutputChoices = readonly (readonly (readonly number[])[])[];
+
+/** Called now and then with the strategies enumerated and a look at the best one so far. */
+export type EnumerationTick = (enumerated: number, best: () => BestStrategy) => void;
+
 /** Steps between two calls of `tick`: well below 100 ms of work each. */
 const STEPS_PER_TICK = 4096;
 
@@ -17,14 +23,29 @@ const STEPS_PER_TICK = 4096;
  * one output at a time, so that each step costs one row. Exact: all entries are integers and all
  * sums stay below 2^53 (`fitsDoubles`), or are BigInt.
  */
-export function enumerateStrategies(
+export function enumerateStrategies(tensor: StrategyTensor, tick: EnumerationTick): BestStrategy {
+	return enumerationOf(tensor, tick).run();
+}
+
+/** Visits all strategies of the given value: the maximum, so that they are best replies. */
+export function forEachBestStrategy(
 	tensor: StrategyTensor,
-	tick: (enumerated: number) => void
-): BestStrategy {
-	const enumeration = tensor.fitsDoubles
-		? new DoubleEnumeration(tensor, tick)
-		: new BigIntEnumeration(tensor, tick);
-	return enumeration.run();
+	maximum: bigint,
+	tick: EnumerationTick,
+	visit: (choices: OutputChoices) => void
+): void {
+	enumerationOf(tensor, tick, { maximum, visit }).run();
+}
+
+interface Ties {
+	readonly maximum: bigint;
+	readonly visit: (choices: OutputChoices) => void;
+}
+
+function enumerationOf(tensor: StrategyTensor, tick: EnumerationTick, ties: Ties | null = null) {
+	return tensor.fitsDoubles
+		? new DoubleEnumeration(tensor, tick, ties)
+		: new BigIntEnumeration(tensor, tick, ties);
 }
 
 abstract class Enumeration {
@@ -35,25 +56,40 @@ abstract class Enumeration {
 
 	constructor(
 		protected readonly tensor: StrategyTensor,
-		private readonly onTick: (enumerated: number) => void
+		private readonly onTick: EnumerationTick,
+		protected readonly ties: Ties | null
 	) {
 		this.parties = tensor.parties;
 	}
 
-	abstract run(): BestStrategy;
+	run(): BestStrategy {
+		this.start();
+		return this.found();
+	}
+
+	protected abstract start(): void;
+	protected abstract found(): BestStrategy;
 
 	protected countStep(): void {
-		if (++this.#steps % STEPS_PER_TICK === 0) this.onTick(this.#steps);
+		if (++this.#steps % STEPS_PER_TICK === 0) this.onTick(this.#steps, () => this.found());
 	}
 
 	/** Output of the Gray code's digit: digit 0 is the last output, whose row is zero. */
-	protected keep(reply: number[]): void {
-		this.best = this.parties
+	#outputs(): number[][] {
+		return this.parties
 			.slice(0, -1)
 			.map((party, k) =>
 				party.outputs.map((count, i) => (count - 1 + (this.codes[k]?.digits[i] ?? 0)) % count)
 			);
-		this.best.push(reply);
+	}
+
+	protected keep(reply: number[]): void {
+		this.best = [...this.#outputs(), reply];
+	}
+
+	protected visitTies(last: TensorParty, entry: (k: number) => number | bigint): void {
+		const fixed = this.#outputs().map((outputs) => outputs.map((output) => [output]));
+		this.ties?.visit([...fixed, bestReplies(last, entry)]);
 	}
 
 	protected startCode(level: number): MixedRadixGray {
@@ -69,65 +105,95 @@ function rowOf(party: TensorParty, input: number, digit: number): number {
 }
 
 class DoubleEnumeration extends Enumeration {
-	#value = -Infinity;
+	#value = this.ties ? Number(this.ties.maximum) : -Infinity;
 
-	run(): BestStrategy {
+	protected found(): BestStrategy {
+		return { value: BigInt(this.#value), digits: this.best };
+	}
+
+	protected start(): void {
 		const rows = Float64Array.from(this.tensor.entries, Number);
 		const [first] = this.parties;
-		if (this.parties.length === 1 && first) this.#consider(first, rows);
+		if (this.parties.length === 1 && first) this.#consider(first, rows, valueOf(first, rows));
 		else this.#descend(0, rows);
-		return { value: BigInt(this.#value), digits: this.best };
 	}
 
 	#descend(level: number, rows: Float64Array): void {
 		const party = this.parties[level];
 		if (!party) return;
-		const innermost = level === this.parties.length - 2;
-		const last = this.parties[level + 1];
+		const last = level === this.parties.length - 2 ? this.parties[level + 1] : undefined;
 		const width = rows.length / party.size;
 		const current = rows.slice(0, width);
+		const sums = last?.binary ? rowSums(rows, width) : null;
+		let sum = sums ? at(sums, 0) : 0;
 		const code = this.startCode(level);
 		do {
+			let modulus = 0;
 			if (code.changed >= 0) {
 				const old = rowOf(party, code.changed, code.before);
 				const now = rowOf(party, code.changed, code.digits[code.changed] ?? 0);
-				if (old >= 0) subtractRow(current, rows, old * width);
-				if (now >= 0) addRow(current, rows, now * width);
-			}
-			if (innermost && last) this.#consider(last, current);
-			else this.#descend(level + 1, current);
+				if (old >= 0) modulus = addRow(current, rows, old * width, -1);
+				if (now >= 0) modulus = addRow(current, rows, now * width, 1);
+				if (sums) sum += (now < 0 ? 0 : at(sums, now)) - (old < 0 ? 0 : at(sums, old));
+			} else if (sums) modulus = addRow(current, rows, 0, 0);
+			if (!last) this.#descend(level + 1, current);
+			// Two outputs each: entry 0 plus the positive others, max(0, c) = (c + |c|) / 2.
+			else if (sums) this.#consider(last, current, at(current, 0) + (sum + modulus) / 2);
+			else this.#consider(last, current, valueOf(last, current));
 		} while (code.step());
 	}
 
-	#consider(last: TensorParty, row: Float64Array): void {
+	#consider(last: TensorParty, row: Float64Array, value: number): void {
 		this.countStep();
-		const value = last.binary ? binaryValue(row) : replyValue(row, last.starts, last.size);
-		if (value <= this.#value) return;
+		if (value < this.#value) return;
+		if (this.ties) return this.visitTies(last, (k) => at(row, k));
+		if (value === this.#value) return;
 		this.#value = value;
 		this.keep(bestReply(last, (k) => at(row, k)));
 	}
 }
 
-function addRow(into: Float64Array, rows: Float64Array, offset: number): void {
-	for (let k = 0; k < into.length; k++) into[k] = at(into, k) + at(rows, offset + k);
+/** Of every row, the sum of its entries but the first. */
+function rowSums(rows: Float64Array, width: number): Float64Array {
+	const sums = new Float64Array(rows.length / width);
+	for (let r = 0; r < sums.length; r++)
+		for (let k = 1; k < width; k++) sums[r] = at(sums, r) + at(rows, r * width + k);
+	return sums;
 }
 
-function subtractRow(into: Float64Array, rows: Float64Array, offset: number): void {
-	for (let k = 0; k < into.length; k++) into[k] = at(into, k) - at(rows, offset + k);
-}
-
-/** Value of the best reply when every input has two outputs: one coordinate each. */
-function binaryValue(row: Float64Array): number {
-	let value = at(row, 0);
-	for (let k = 1; k < row.length; k++) {
-		const weight = at(row, k);
-		value += weight > 0 ? weight : 0;
+/**
+ * Adds sign times a row, and returns the sum of the moduli of all entries but the first. Four sums
+ * side by side do not wait for one another; integers, so that the order plays no part.
+ */
+function addRow(into: Float64Array, rows: Float64Array, offset: number, sign: number): number {
+	const width = into.length;
+	into[0] = at(into, 0) + sign * at(rows, offset);
+	let [a, b, c, d] = [0, 0, 0, 0];
+	let k = 1;
+	for (; k + 3 < width; k += 4) {
+		const p = at(into, k) + sign * at(rows, offset + k);
+		const q = at(into, k + 1) + sign * at(rows, offset + k + 1);
+		const r = at(into, k + 2) + sign * at(rows, offset + k + 2);
+		const s = at(into, k + 3) + sign * at(rows, offset + k + 3);
+		into[k] = p;
+		into[k + 1] = q;
+		into[k + 2] = r;
+		into[k + 3] = s;
+		a += Math.abs(p);
+		b += Math.abs(q);
+		c += Math.abs(r);
+		d += Math.abs(s);
 	}
-	return value;
+	for (; k < width; k++) {
+		const p = at(into, k) + sign * at(rows, offset + k);
+		into[k] = p;
+		a += Math.abs(p);
+	}
+	return a + b + (c + d);
 }
 
-/** Per input the largest coordinate, or 0 for the last output. */
-function replyValue(row: Float64Array, starts: readonly number[], size: number): number {
+/** Value of the best reply: per input the largest coordinate, or 0 for the last output. */
+function valueOf({ starts, size }: TensorParty, row: Float64Array): number {
 	let value = at(row, 0);
 	for (let i = 0; i < starts.length; i++) {
 		const end = starts[i + 1] ?? size;
@@ -140,11 +206,14 @@ function replyValue(row: Float64Array, starts: readonly number[], size: number):
 
 /** The same for integers beyond 2^53. */
 class BigIntEnumeration extends Enumeration {
-	#value: bigint | null = null;
+	#value: bigint | null = this.ties?.maximum ?? null;
 
-	run(): BestStrategy {
-		this.#descend(0, [...this.tensor.entries]);
+	protected found(): BestStrategy {
 		return { value: this.#value ?? 0n, digits: this.best };
+	}
+
+	protected start(): void {
+		this.#descend(0, [...this.tensor.entries]);
 	}
 
 	#descend(level: number, rows: readonly bigint[]): void {
@@ -176,7 +245,9 @@ class BigIntEnumeration extends Enumeration {
 		reply.forEach((output, i) => {
 			if (output < (party.outputs[i] ?? 2) - 1) value += row[(party.starts[i] ?? 0) + output] ?? 0n;
 		});
-		if (this.#value !== null && value <= this.#value) return;
+		if (this.#value !== null && value < this.#value) return;
+		if (this.ties) return this.visitTies(party, (k) => row[k] ?? 0n);
+		if (value === this.#value) return;
 		this.#value = value;
 		this.keep(reply);
 	}
@@ -196,5 +267,16 @@ function bestReply(party: TensorParty, entry: (k: number) => number | bigint): n
 			if (value > most) [output, most] = [a, value];
 		}
 		return output;
+	});
+}
+
+/** All best outputs for every input. */
+function bestReplies(party: TensorParty, entry: (k: number) => number | bigint): number[][] {
+	const best = bestReply(party, entry);
+	return party.outputs.map((count, i) => {
+		const value = (a: number) => (a < count - 1 ? entry((party.starts[i] ?? 0) + a) : 0);
+		const most = value(best[i] ?? 0);
+		// 0 and 0n are one number here: neither is above the other
+		return Array.from({ length: count }, (_, a) => a).filter((a) => value(a) >= most);
 	});
 }

@@ -1,17 +1,12 @@
-import { overCommonDenominator } from '../exact/common-denominator';
 import { printRational, ratio, toDouble, toDoubleDown, toDoubleUp } from '../exact/rational';
-import { solveLinearProgramme } from '../optimization/linear-programme';
-import { SolverStop, type Control, type ProblemOf } from '../problem';
+import type { Control, ProblemOf } from '../problem';
 import { integerFunctional } from '../scenario/fixed-point';
-import { collinsGisinForm, eventsKey, type Functional } from '../scenario/functional';
-import { bestBehaviour, bestMultipliers, type IntegerObjective } from './no-signalling-certificate';
-import { noSignallingRows, withConstraints, type NoSignallingRows } from './no-signalling-rows';
+import { collinsGisinForm, type Functional } from '../scenario/functional';
+import { maximiseOverPolytope, objectiveOf, recordOfRows } from './no-signalling-programme';
+import { noSignallingRows, withConstraints } from './no-signalling-rows';
 import type { Outcome } from './outcome';
 import { twiceTheErrors } from './strategy-tensor';
 import { WorkClock } from './work-clock';
-
-/** Larger costs are scaled down for the simplex method; multipliers are scaled back. */
-const LARGEST_COST = 2 ** 20;
 
 /**
  * Maximum of a functional over the no-signalling polytope {P(a|x) >= 0} in Collins-Gisin
@@ -43,20 +38,12 @@ export async function noSignallingMaximum(
 		upper: null
 	});
 	clock.check();
-	const largest = objective.costs.reduce((m, c) => Math.max(m, Math.abs(Number(c))), 0);
-	const scale = largest > LARGEST_COST ? largest / LARGEST_COST : 1;
-	const solution = await solveLinearProgramme(
-		programmeOf(polytope, objective, scale),
-		clock.left,
+	const { behaviour, multipliers, solution } = await maximiseOverPolytope(
+		polytope,
+		objective,
+		clock,
 		control
 	);
-	if (solution.status === 'infeasible')
-		throw new SolverStop('infeasible', 'no no-signalling behaviour meets the constraints');
-	if (solution.status !== 'optimal')
-		throw new SolverStop('failed', `the linear programme came out ${solution.status}`);
-	const tick = () => clock.check();
-	const behaviour = bestBehaviour(polytope, objective, solution, tick);
-	const multipliers = bestMultipliers(polytope, objective, solution, scale, tick);
 
 	const allowance = integers.allowance.add(twiceTheErrors(functional));
 	const unit = ratio(1n, integers.denominator);
@@ -84,58 +71,12 @@ export async function noSignallingMaximum(
 		},
 		certificate: {
 			kind: 'linear-programme',
-			primal: record(polytope, behaviour.probabilities),
-			dual: record(
+			primal: recordOfRows(polytope, behaviour.probabilities),
+			dual: recordOfRows(
 				polytope,
 				multipliers.multipliers.map((m, i) => m.mul(unit).mul(polytope.rows[i]?.scale ?? 1n))
 			),
 			value: exact
 		}
 	};
-}
-
-function objectiveOf(
-	polytope: NoSignallingRows,
-	terms: ReturnType<typeof integerFunctional>['terms']
-): IntegerObjective {
-	const costs = polytope.columns.map(() => 0n);
-	let constant = 0n;
-	for (const { coefficient, events } of terms) {
-		const column = polytope.columnOf.get(eventsKey(events));
-		if (column === undefined) constant += coefficient;
-		else costs[column] = coefficient;
-	}
-	return { costs, constant };
-}
-
-function programmeOf(polytope: NoSignallingRows, objective: IntegerObjective, scale: number) {
-	const starts = [0];
-	const indices: number[] = [];
-	const values: number[] = [];
-	for (const { entries } of polytope.rows) {
-		for (const [column, value] of entries) {
-			indices.push(column);
-			values.push(value);
-		}
-		starts.push(indices.length);
-	}
-	return {
-		costs: Float64Array.from(objective.costs, (c) => Number(c) / scale),
-		starts: Int32Array.from(starts),
-		indices: Int32Array.from(indices),
-		values: Float64Array.from(values),
-		lowerBounds: Float64Array.from(polytope.rows, ({ constant }) => 0 - constant)
-	};
-}
-
-/** Exact rationals by row key; zeros are left out. */
-function record(
-	polytope: NoSignallingRows,
-	values: Parameters<typeof overCommonDenominator>[0]
-): Record<string, string> {
-	const entries = polytope.rows.flatMap(({ key }, i) => {
-		const value = values[i];
-		return value && value.n !== 0n ? [[key, printRational(value)] as const] : [];
-	});
-	return Object.fromEntries(entries);
 }

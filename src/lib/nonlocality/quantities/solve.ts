@@ -9,7 +9,9 @@ import {
 	type UnfinishedResult
 } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalToMaximise, isNegated } from '../scenario/problem-functional';
+import { functionalToMaximise, turnsSigns } from '../scenario/problem-functional';
+import { facetTest } from './facet-test';
+import { hybridMaximum } from './hybrid-maximum';
 import { localMaximum } from './local-maximum';
 import { noSignallingMaximum } from './no-signalling-maximum';
 import { npaBound } from './npa-bound';
@@ -44,7 +46,7 @@ export async function solve(problem: Problem, control: Control): Promise<Result>
 		method: {}
 	});
 	try {
-		const negated = isNegated(problem);
+		const negated = turnsSigns(problem);
 		const g = functionalToMaximise(problem);
 		const outcome = await dispatch(problem, g, negated ? withSignsTurned(control) : control);
 		const numbers = [outcome.lower, outcome.upper, outcome.value, outcome.optimum];
@@ -76,6 +78,10 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 			return localMaximum(problem, g, control);
 		case 'no-signalling':
 			return noSignallingMaximum(problem, g, control);
+		case 'hybrid':
+			return hybridMaximum(problem, g, control);
+		case 'facet':
+			return facetTest(problem, g, control);
 		case 'npa':
 			return npaBound(problem, g, control);
 		case 'see-saw':

@@ -15,3 +15,16 @@ export function functionalToMaximise(problem: Problem): Functional {
 export function isNegated(problem: Problem): boolean {
 	return problem.sense === 'min' && problem.quantity !== 'value';
 }
+
+/** Whether the answer about g has the other sign than the one about f: a facet test has none. */
+export function turnsSigns(problem: Problem): boolean {
+	return isNegated(problem) && problem.quantity !== 'facet';
+}
+
+/** Quantities whose upper side is an enumeration, which a check repeats only while it is cheap. */
+export function isEnumerated(problem: Problem): boolean {
+	return (
+		problem.quantity === 'local' ||
+		(problem.quantity === 'hybrid' && problem.model === 'svetlichny')
+	);
+}

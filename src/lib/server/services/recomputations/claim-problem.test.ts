@@ -68,9 +68,18 @@ describe('the problem behind a claim', () => {
 		expect(problemOf({ quantity: 'npa', level: '1+AB' }, three)).toHaveProperty('why');
 	});
 
+	it('takes the model of a hybrid maximum from its name', () => {
+		const problem = (model: string) => ({ problem: { quantity: 'hybrid', model } });
+		expect(problemOf({ quantity: 'hybrid' }, three)).toMatchObject(problem('svetlichny'));
+		const found = problemOf({ quantity: 'hybrid-no-signalling' }, three);
+		expect(found).toMatchObject(problem('no-signalling'));
+		expect(problemOf({ quantity: 'hybrid' })).toHaveProperty('why');
+	});
+
 	it('is there, or a reason is, for every quantity', () => {
 		for (const { key, solver } of QUANTITIES) {
-			const found = problemOf({ quantity: key, level: '2', dimension: '2' });
+			const choice = { quantity: key, level: '2', dimension: '2' };
+			const found = problemOf(choice, solver === 'hybrid' ? three : two);
 			expect('problem' in found).toBe(solver !== null);
 		}
 	});

@@ -143,6 +143,11 @@ export function quantityProblem(
 			return { problem: { ...base, quantity: 'local' } };
 		case 'no-signalling':
 			return { problem: { ...base, quantity: 'no-signalling' } };
+		case 'hybrid': {
+			const model = choice.quantity === 'hybrid' ? 'svetlichny' : 'no-signalling';
+			if (parties < 3) return { why: 'a hybrid maximum needs three parties or more' };
+			return { problem: { ...base, quantity: 'hybrid', model } };
+		}
 		case 'quantum':
 			return {
 				problem: { ...base, quantity: 'quantum', levels: null, dimensions: null, gap: QUANTUM_GAP }

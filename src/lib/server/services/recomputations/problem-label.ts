@@ -18,6 +18,10 @@ export function problemLabel(problem: Problem): string {
 			return `Deterministic strategies${minimum}`;
 		case 'no-signalling':
 			return `No-signalling linear programme${minimum}`;
+		case 'hybrid':
+			return `Hybrid model, ${problem.model === 'svetlichny' ? 'Svetlichny’s' : 'no-signalling groups'}${minimum}`;
+		case 'facet':
+			return 'Facet test';
 		case 'npa':
 			return `NPA ${levelText(problem.level)}${problem.nonNegative ? ', P ≥ 0' : ''}${minimum}`;
 		case 'see-saw': {

@@ -120,8 +120,11 @@ function problemOf(
 			const { levels, dimensions, gap } = problem;
 			return { ...base, quantity: 'quantum', levels, dimensions, gap };
 		}
+		case 'hybrid':
+			return { ...base, quantity: 'hybrid', model: problem.model };
 		case 'local':
 		case 'no-signalling':
+		case 'facet':
 			return { ...base, quantity: problem.quantity };
 	}
 }

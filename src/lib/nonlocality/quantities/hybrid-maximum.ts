@@ -1,0 +1,69 @@
+import {
+	printRational,
+	toDouble,
+	toDoubleDown,
+	toDoubleUp,
+	type Rational
+} from '../exact/rational';
+import type { HybridCertificate } from '../certificates/types';
+import { SolverStop, type Control, type ProblemOf } from '../problem';
+import type { Functional } from '../scenario/functional';
+import { noSignallingHybrid } from './hybrid-no-signalling';
+import { svetlichnyHybrid } from './hybrid-svetlichny';
+import type { Outcome } from './outcome';
+import { WorkClock } from './work-clock';
+
+/** What one of the two models finds: exact sides, and an allowance for irrational coefficients. */
+export interface HybridFinding {
+	readonly below: Rational;
+	readonly above: Rational;
+	readonly allowance: Rational;
+	readonly groups: HybridCertificate['groups'];
+	readonly behaviours: HybridCertificate['behaviours'];
+	readonly bipartitions: HybridCertificate['bipartitions'];
+	readonly method: Readonly<Record<string, unknown>>;
+}
+
+/**
+ * Maximum of a functional over mixtures of behaviours that are each local across some bipartition of
+ * the parties: the largest over the bipartitions. Parties of one group share any behaviour, also a
+ * signalling one (`svetlichny`), or any no-signalling behaviour (`no-signalling`).
+ *
+ * Guarantee: both sides by exact arithmetic; `exact` when they meet.
+ * @throws SolverStop `failed` for fewer than three parties, or (Svetlichny's model) for a functional
+ *   with marginals; `limit` past the limits of the model's solver
+ * @see Svetlichny, Phys. Rev. D 35, 3066 (1987); Bancal, Barrett, Gisin and Pironio, Phys. Rev. A
+ *   88, 014102 (2013)
+ */
+export async function hybridMaximum(
+	problem: ProblemOf<'hybrid'>,
+	functional: Functional,
+	control: Control
+): Promise<Outcome> {
+	const parties = functional.scenario.outputs.length;
+	if (parties < 3)
+		throw new SolverStop(
+			'failed',
+			`a hybrid maximum needs three parties or more, not ${parties}: with two it is the local maximum`
+		);
+	const clock = new WorkClock(control, problem.seconds);
+	const found =
+		problem.model === 'svetlichny'
+			? svetlichnyHybrid(functional, clock, control)
+			: await noSignallingHybrid(functional, clock, control);
+	const { below, above, allowance, groups, behaviours, bipartitions, method } = found;
+	const exact = allowance.n === 0n && below.equals(above) ? printRational(below) : null;
+	const lower = toDoubleDown(below.sub(allowance));
+	const upper = toDoubleUp(above.add(allowance));
+	return {
+		lower,
+		upper,
+		value: exact === null ? (lower + upper) / 2 : toDouble(below),
+		tolerance: exact === null ? upper - lower : null,
+		optimum: null,
+		guaranteed: { lower: true, upper: true },
+		exact,
+		method: { model: problem.model, bipartition: groups, ...method },
+		certificate: { kind: 'hybrid', groups, behaviours, bipartitions, value: exact }
+	};
+}

@@ -2,6 +2,7 @@ import type { MessagePort } from 'node:worker_threads';
 import { sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
 import type { CheckOutcome } from '../lib/nonlocality/certificates/types';
 import type { Control, Problem, Progress, Result } from '../lib/nonlocality/problem';
+import { canonicalPlace, type CanonicalPlace, type PlacedFunctional } from '../lib/nonlocality/scenario/canonical-place';
 
 /** What a solver thread can be asked; plain data, so that it crosses the thread's border. */
 export type SolverTask =
@@ -13,7 +14,8 @@ export type SolverTask =
 			readonly port: MessagePort | null;
 	  }
 	| { readonly kind: 'verify'; readonly result: Result }
-	| { readonly kind: 'sdpa'; readonly problem: Problem };
+	| { readonly kind: 'sdpa'; readonly problem: Problem }
+	| { readonly kind: 'place'; readonly functional: PlacedFunctional };
 
 export type SolvedTask = { readonly result: Result; readonly check: CheckOutcome | null };
 
@@ -51,7 +53,9 @@ export function controlOf(stop: Int32Array, send: (progress: Progress) => void):
 	};
 }
 
-export async function runTask(task: SolverTask): Promise<SolvedTask | CheckOutcome | string> {
+export async function runTask(
+	task: SolverTask
+): Promise<SolvedTask | CheckOutcome | CanonicalPlace | string> {
 	switch (task.kind) {
 		case 'solve': {
 			const { port } = task;
@@ -66,5 +70,7 @@ export async function runTask(task: SolverTask): Promise<SolvedTask | CheckOutco
 			return verifyResult(task.result);
 		case 'sdpa':
 			return sdpaText(task.problem);
+		case 'place':
+			return canonicalPlace(task.functional);
 	}
 }

@@ -19,8 +19,7 @@ export function createInProcessPool(): SolverPool {
 		},
 		verify: async (result) => (await runTask({ kind: 'verify', result })) as CheckOutcome,
 		sdpa: async (problem) => String(await runTask({ kind: 'sdpa', problem })),
-		place: async (functional) =>
-			(await runTask({ kind: 'place', functional })) as CanonicalPlace,
+		place: async (functional) => (await runTask({ kind: 'place', functional })) as CanonicalPlace,
 		close: async () => undefined
 	};
 }

@@ -1,8 +1,12 @@
 import type { MessagePort } from 'node:worker_threads';
-import { sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
+import { SolverStop, sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
 import type { CheckOutcome } from '../lib/nonlocality/certificates/types';
 import type { Control, Problem, Progress, Result } from '../lib/nonlocality/problem';
-import { canonicalPlace, type CanonicalPlace, type PlacedFunctional } from '../lib/nonlocality/scenario/canonical-place';
+import {
+	canonicalPlace,
+	type CanonicalPlace,
+	type PlacedFunctional
+} from '../lib/nonlocality/scenario/canonical-place';
 
 /** What a solver thread can be asked; plain data, so that it crosses the thread's border. */
 export type SolverTask =
@@ -16,6 +20,9 @@ export type SolverTask =
 	| { readonly kind: 'verify'; readonly result: Result }
 	| { readonly kind: 'sdpa'; readonly problem: Problem }
 	| { readonly kind: 'place'; readonly functional: PlacedFunctional };
+
+/** A programme, or why there is none: an error loses what it is on its way out of a thread. */
+export type PrintedProgramme = { readonly text: string } | { readonly refused: string };
 
 export type SolvedTask = { readonly result: Result; readonly check: CheckOutcome | null };
 
@@ -53,9 +60,18 @@ export function controlOf(stop: Int32Array, send: (progress: Progress) => void):
 	};
 }
 
+function printProgramme(problem: Problem): PrintedProgramme {
+	try {
+		return { text: sdpaText(problem) };
+	} catch (error) {
+		if (error instanceof SolverStop) return { refused: error.message };
+		throw error;
+	}
+}
+
 export async function runTask(
 	task: SolverTask
-): Promise<SolvedTask | CheckOutcome | CanonicalPlace | string> {
+): Promise<SolvedTask | CheckOutcome | CanonicalPlace | PrintedProgramme> {
 	switch (task.kind) {
 		case 'solve': {
 			const { port } = task;
@@ -69,7 +85,7 @@ export async function runTask(
 		case 'verify':
 			return verifyResult(task.result);
 		case 'sdpa':
-			return sdpaText(task.problem);
+			return printProgramme(task.problem);
 		case 'place':
 			return canonicalPlace(task.functional);
 	}

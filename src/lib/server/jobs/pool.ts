@@ -6,7 +6,7 @@ import { Piscina } from 'piscina';
 import type { CheckOutcome } from '../../nonlocality/certificates/types';
 import type { Problem, Progress, Result } from '../../nonlocality/problem';
 import type { CanonicalPlace, PlacedFunctional } from '../../nonlocality/scenario/canonical-place';
-import type { SolvedTask, SolverTask } from '../../../worker/task';
+import type { PrintedProgramme, SolvedTask, SolverTask } from '../../../worker/task';
 import { findWorkerFile } from './worker-file';
 
 export interface SolveOptions {
@@ -22,7 +22,7 @@ export interface SolverPool {
 	/** @throws SolverKilled when the thread had to be ended. */
 	solve(problem: Problem, options?: SolveOptions): Promise<SolvedTask>;
 	verify(result: Result): Promise<CheckOutcome>;
-	sdpa(problem: Problem): Promise<string>;
+	sdpa(problem: Problem): Promise<PrintedProgramme>;
 	/** Where a functional belongs, by its canonical form. */
 	place(functional: PlacedFunctional): Promise<CanonicalPlace>;
 	close(): Promise<void>;
@@ -106,7 +106,7 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 	return {
 		threads,
 		verify: (result) => short<CheckOutcome>({ kind: 'verify', result }),
-		sdpa: (problem) => short<string>({ kind: 'sdpa', problem }),
+		sdpa: (problem) => short<PrintedProgramme>({ kind: 'sdpa', problem }),
 		async place(functional) {
 			const task: SolverTask = { kind: 'place', functional };
 			return places.get().run(task, { signal: AbortSignal.timeout(PLACE_LIMIT_MS) });

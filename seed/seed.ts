@@ -10,6 +10,7 @@ import { config } from '../src/lib/server/config';
 import type { Context, GroupContext, UserContext } from '../src/lib/server/context';
 import { openDatabase } from '../src/lib/server/db/client';
 import { recomputations } from '../src/lib/server/db/schema';
+import { setSolverPool } from '../src/lib/server/jobs/current-pool';
 import { createThreadPool } from '../src/lib/server/jobs/pool';
 import { startRunner } from '../src/lib/server/jobs/runner';
 import { log } from '../src/lib/server/log';
@@ -87,6 +88,8 @@ async function seed(marker: string): Promise<void> {
 	clock.set(21);
 	const people = await makePeople(ctx);
 
+	const pool = createThreadPool(cpus().length);
+	setSolverPool(pool);
 	const numbers = new Map<string, number>();
 	for (const [place, claim] of CLAIMS.entries()) {
 		clock.set(15, 14 + place / 20);
@@ -102,11 +105,9 @@ async function seed(marker: string): Promise<void> {
 	}
 	console.log(`  ${numbers.size} claims entered; recomputing ...`);
 
-	const pool = createThreadPool(cpus().length);
 	const runner = startRunner({ db, pool, log: log(), now: ctx.now });
 	await runner.idle();
 	await runner.stop();
-	await pool.close();
 	const left = await db.read.$count(
 		recomputations,
 		inArray(recomputations.state, ['queued', 'running'])
@@ -125,7 +126,7 @@ async function seed(marker: string): Promise<void> {
 	for (const claim of CLAIMS) {
 		if (claim.leaveQueued) await enter(people, claim);
 	}
-	await closeReferences();
+	await Promise.all([closeReferences(), pool.close()]);
 	close();
 	// The demo's server learns from it who looks after the site.
 	writeFileSync(marker, `${people.owner.actor.id}\n`);

@@ -3,6 +3,7 @@ import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { parseSdpa } from '../lib/nonlocality/optimization/sdpa-text';
 import { readProblem } from './problem-input';
 import { EXIT, readJson } from './read-input';
 
@@ -30,6 +31,49 @@ const file = (name: string, content: unknown) => {
 	writeFileSync(path, typeof content === 'string' ? content : JSON.stringify(content));
 	return path;
 };
+
+describe('bound', () => {
+	it(
+		'prints the programme of a relaxation instead of solving it',
+		() => {
+			const problem = { family: { name: 'chsh' }, quantity: 'npa', level: 1 };
+			const printed = run('bound', ['--sdpa', '-'], JSON.stringify(problem));
+			expect(printed).toMatchObject({ status: 0, stderr: '' });
+			// Level 1 of two inputs each: 1 and four projectors, so 5 rows and 10 free moments.
+			const { blocks, objective } = parseSdpa(printed.stdout);
+			expect(blocks).toEqual([5]);
+			expect(objective).toHaveLength(10);
+			const local = run(
+				'bound',
+				['--sdpa', '-'],
+				JSON.stringify({ ...problem, quantity: 'local' })
+			);
+			expect(local).toMatchObject({ status: EXIT.malformed, stdout: '' });
+			const mermin = { family: { name: 'mermin', n: 3 }, quantity: 'npa', level: 1 };
+			const lacking = run('bound', ['--sdpa', '-'], JSON.stringify(mermin));
+			expect(lacking).toMatchObject({ status: EXIT.unfinished, stdout: '' });
+			expect(lacking.stderr).toContain('level 2');
+		},
+		TIMEOUT
+	);
+
+	it(
+		'explains itself, with examples that work',
+		() => {
+			const { status, stdout } = run('bound', ['--help']);
+			expect(status).toBe(0);
+			const quantities = ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'];
+			for (const quantity of quantities) expect(stdout).toMatch(new RegExp(`^  ${quantity} `, 'm'));
+			for (const code of Object.values(EXIT)) {
+				if (code !== EXIT.unchecked) expect(stdout).toMatch(new RegExp(`\\b${code} `));
+			}
+			const examples = [...stdout.matchAll(/echo '([^']+)'/g)].map(([, json]) => json ?? '');
+			expect(examples.length).toBeGreaterThan(2);
+			for (const json of examples) expect(() => readProblem(JSON.parse(json))).not.toThrow();
+		},
+		TIMEOUT
+	);
+});
 
 describe('bound and verify-certificate', () => {
 	it(

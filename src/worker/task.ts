@@ -1,7 +1,12 @@
 import type { MessagePort } from 'node:worker_threads';
-import { sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
+import { SolverStop, sdpaText, solve, verifyResult } from '../lib/nonlocality/index';
 import type { CheckOutcome } from '../lib/nonlocality/certificates/types';
 import type { Control, Problem, Progress, Result } from '../lib/nonlocality/problem';
+import {
+	canonicalPlace,
+	type CanonicalPlace,
+	type PlacedFunctional
+} from '../lib/nonlocality/scenario/canonical-place';
 
 /** What a solver thread can be asked; plain data, so that it crosses the thread's border. */
 export type SolverTask =
@@ -13,7 +18,11 @@ export type SolverTask =
 			readonly port: MessagePort | null;
 	  }
 	| { readonly kind: 'verify'; readonly result: Result }
-	| { readonly kind: 'sdpa'; readonly problem: Problem };
+	| { readonly kind: 'sdpa'; readonly problem: Problem }
+	| { readonly kind: 'place'; readonly functional: PlacedFunctional };
+
+/** A programme, or why there is none: an error loses what it is on its way out of a thread. */
+export type PrintedProgramme = { readonly text: string } | { readonly refused: string };
 
 export type SolvedTask = { readonly result: Result; readonly check: CheckOutcome | null };
 
@@ -51,7 +60,18 @@ export function controlOf(stop: Int32Array, send: (progress: Progress) => void):
 	};
 }
 
-export async function runTask(task: SolverTask): Promise<SolvedTask | CheckOutcome | string> {
+function printProgramme(problem: Problem): PrintedProgramme {
+	try {
+		return { text: sdpaText(problem) };
+	} catch (error) {
+		if (error instanceof SolverStop) return { refused: error.message };
+		throw error;
+	}
+}
+
+export async function runTask(
+	task: SolverTask
+): Promise<SolvedTask | CheckOutcome | CanonicalPlace | PrintedProgramme> {
 	switch (task.kind) {
 		case 'solve': {
 			const { port } = task;
@@ -65,6 +85,8 @@ export async function runTask(task: SolverTask): Promise<SolvedTask | CheckOutco
 		case 'verify':
 			return verifyResult(task.result);
 		case 'sdpa':
-			return sdpaText(task.problem);
+			return printProgramme(task.problem);
+		case 'place':
+			return canonicalPlace(task.functional);
 	}
 }

@@ -312,6 +312,16 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ GET: action('observer') },
 		{ path: (w) => `/api/v1/inequalities?group=${w.slug}` }
 	),
+	...doors(
+		'/api/v1/inequalities/[id]/sdpa',
+		{ GET: same(200) },
+		{ path: (w) => `/api/v1/inequalities/${w.publicInequalityId}/sdpa?level=1` }
+	),
+	...doors(
+		'/api/v1/inequalities/[id]/sdpa',
+		{ GET: { ...same(200), anonymous: 404, outsider: 404 } },
+		{ path: (w) => `/api/v1/inequalities/${w.inequalityId}/sdpa?level=1` }
+	),
 	...doors(apiGroup, { GET: action('observer') }),
 	...doors(apiGroup, { POST: action('member', 400) }, { json: () => ({ printed: 'no number' }) }),
 	...doors(apiClaim, { GET: action('observer') }),

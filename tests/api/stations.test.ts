@@ -96,7 +96,9 @@ describe('a reading', () => {
 			world.as.member,
 			claimFields({ ...typed, expression: `${expression} \\leq 2` })
 		);
-		expect(bounded.besideIt).toBe('≤ 2');
-		expect({ ...bounded, besideIt: null }).toEqual(alone);
+		expect(bounded.besideIt).toEqual({ relation: '<=', text: '2' });
+		expect({ ...bounded, besideIt: null }).toEqual({ ...alone, notation: bounded.notation });
+		expect(alone.notation).toBe('Expression, in observables');
+		expect(bounded.notation).toBe('Expression pasted as LaTeX, in observables');
 	});
 });

@@ -7,6 +7,7 @@ import type { Context, GroupContext } from '../../src/lib/server/context';
 import { openDatabase, type Database } from '../../src/lib/server/db/client';
 import { groups, memberships, users } from '../../src/lib/server/db/schema';
 import { newId } from '../../src/lib/server/ids';
+import { setSolverPool } from '../../src/lib/server/jobs/current-pool';
 import { createInProcessPool } from '../../src/lib/server/jobs/in-process-pool';
 import { startRunner, type JobLog, type Runner } from '../../src/lib/server/jobs/runner';
 import { createDiskStore } from '../../src/lib/server/storage/disk-store';
@@ -46,6 +47,7 @@ export async function openServiceWorld(): Promise<ServiceWorld> {
 	process.env.MERESTONE_SECRET ??= 'a secret of the tests, of no use elsewhere';
 	const folder = mkdtempSync(join(tmpdir(), 'merestone-test-'));
 	const { db, close } = await openDatabase(`file:${join(folder, 'test.db')}`);
+	setSolverPool(createInProcessPool());
 	setFileStore(await createDiskStore(join(folder, 'files')));
 	const anonymous: Context = { db, actor: null, requestId: 'test', now: () => new Date() };
 	const at = new Date();

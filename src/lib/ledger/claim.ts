@@ -37,6 +37,7 @@ export const SUBJECT_KINDS = [
 	'expression',
 	'collins-gisin',
 	'correlators',
+	'probabilities',
 	'described'
 ] as const;
 export type SubjectKind = (typeof SUBJECT_KINDS)[number];

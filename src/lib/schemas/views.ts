@@ -318,8 +318,10 @@ export interface ReadingView {
 	readonly scenario: string | null;
 	/** 0 or 1, and whether it was read or chosen; null where indices play no part. */
 	readonly indexBase: { readonly base: 0 | 1; readonly chosen: boolean } | null;
-	/** `≤ 2` written behind the expression: not part of the functional, nor taken as the value. */
-	readonly besideIt: string | null;
+	/** How the subject is written: `Expression pasted as LaTeX, in observables`. */
+	readonly notation: string | null;
+	/** `<= 2` behind the expression: no part of the functional; offered as the value, never taken. */
+	readonly besideIt: { readonly relation: Relation; readonly text: string } | null;
 	readonly knownAs: {
 		readonly id: string;
 		readonly name: string;

@@ -8,6 +8,7 @@ export const SUBJECT_CHOICES: readonly { readonly value: SubjectKind; readonly l
 	{ value: 'expression', label: 'Write it' },
 	{ value: 'collins-gisin', label: 'Collins-Gisin table' },
 	{ value: 'correlators', label: 'Correlator table' },
+	{ value: 'probabilities', label: 'Probability table' },
 	{ value: 'described', label: 'In words' }
 ];
 

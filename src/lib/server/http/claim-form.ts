@@ -104,6 +104,28 @@ export function askToSignIn(form: ClaimForm) {
 	return sendBack(form, 401, { text, issues: [], signedOut: true });
 }
 
+/** What a button of the form asks for instead of entering it. */
+const READ_ONLY = ['read', 'take-bound'] as const;
+
+/**
+ * Sends the form back with what was understood of it, where a button asked for that only; with the
+ * bound behind the expression as its value, where a person took that over. Null: it is to be entered.
+ */
+export async function readOnly(ctx: GroupContext, form: ClaimForm, data: FormData) {
+	const asked = READ_ONLY.find((button) => button === data.get('then'));
+	if (!asked) return null;
+	let reading = await readClaim(ctx, form.data);
+	const bound = reading.besideIt;
+	if (asked === 'take-bound' && bound) {
+		form.data.printed = bound.text;
+		form.data.relation = bound.relation;
+		reading = await readClaim(ctx, form.data);
+	}
+	form.errors = {};
+	form.message = { text: '', issues: [...reading.issues], reading };
+	return { form };
+}
+
 /** The version the person started from goes back with the form, so that a later one is noticed. */
 export function keepVersion<T extends object>(answer: ActionFailure<T>, version: number) {
 	return fail(answer.status, { ...answer.data, version });
@@ -126,4 +148,12 @@ export async function signInWithinForm(event: RequestEvent, data: FormData) {
 		signedIn: true
 	};
 	return { form };
+}
+
+/** The same in the form of an edit, which keeps the version it started from. */
+export async function signInWithinEdit(event: RequestEvent) {
+	const data = await event.request.formData();
+	const version = Number(data.get('version'));
+	const answer = await signInWithinForm(event, data);
+	return 'status' in answer ? keepVersion(answer, version) : { ...answer, version };
 }

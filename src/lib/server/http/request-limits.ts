@@ -16,6 +16,8 @@ const LIMITS = {
 	comment: rateLimit('comment', 60, HOUR, 'comments in an hour'),
 	/** Of a visitor, at the API. */
 	anonymous: rateLimit('anonymous', 600, HOUR, 'requests in an hour'),
+	/** Written out by a solver thread. */
+	programme: rateLimit('programme', 120, HOUR, 'programmes in an hour'),
 	/** Of an address, at calendars: a group behind one address, whose programs ask every few minutes. */
 	calendar: rateLimit('calendar', 600, HOUR, 'requests in an hour')
 } as const;

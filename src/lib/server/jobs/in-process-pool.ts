@@ -1,4 +1,5 @@
-import { controlOf, runTask, solveAndCheck } from '../../../worker/task';
+import { controlOf, runTask, solveAndCheck, type PrintedProgramme } from '../../../worker/task';
+import type { CanonicalPlace } from '../../nonlocality/scenario/canonical-place';
 import type { CheckOutcome } from '../../nonlocality/certificates/types';
 import type { SolverPool } from './pool';
 
@@ -17,7 +18,8 @@ export function createInProcessPool(): SolverPool {
 			);
 		},
 		verify: async (result) => (await runTask({ kind: 'verify', result })) as CheckOutcome,
-		sdpa: async (problem) => String(await runTask({ kind: 'sdpa', problem })),
+		sdpa: async (problem) => (await runTask({ kind: 'sdpa', problem })) as PrintedProgramme,
+		place: async (functional) => (await runTask({ kind: 'place', functional })) as CanonicalPlace,
 		close: async () => undefined
 	};
 }

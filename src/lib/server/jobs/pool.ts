@@ -5,7 +5,8 @@ import { MessageChannel } from 'node:worker_threads';
 import { Piscina } from 'piscina';
 import type { CheckOutcome } from '../../nonlocality/certificates/types';
 import type { Problem, Progress, Result } from '../../nonlocality/problem';
-import type { SolvedTask, SolverTask } from '../../../worker/task';
+import type { CanonicalPlace, PlacedFunctional } from '../../nonlocality/scenario/canonical-place';
+import type { PrintedProgramme, SolvedTask, SolverTask } from '../../../worker/task';
 import { findWorkerFile } from './worker-file';
 
 export interface SolveOptions {
@@ -21,7 +22,9 @@ export interface SolverPool {
 	/** @throws SolverKilled when the thread had to be ended. */
 	solve(problem: Problem, options?: SolveOptions): Promise<SolvedTask>;
 	verify(result: Result): Promise<CheckOutcome>;
-	sdpa(problem: Problem): Promise<string>;
+	sdpa(problem: Problem): Promise<PrintedProgramme>;
+	/** Where a functional belongs, by its canonical form. */
+	place(functional: PlacedFunctional): Promise<CanonicalPlace>;
 	close(): Promise<void>;
 }
 
@@ -45,6 +48,8 @@ export const STOP_GRACE_MS = 2_000;
 export const hardLimitMs = (problem: Problem) => problem.seconds * 2_000 + 30_000;
 /** Checks and SDPA texts are short; one that is not is ended. */
 const CHECK_LIMIT_MS = 60_000;
+/** The canonical search bounds its own work to seconds, also on a busy machine. */
+const PLACE_LIMIT_MS = 30_000;
 const HEAP_LIMIT_MB = 2_048;
 /** A thread's own limits do not count typed arrays, so the whole process is watched. */
 const MEMORY_LIMIT = Math.max(1.5e9, totalmem() * 0.75);
@@ -91,6 +96,8 @@ function lazyThreads(maxThreads: number) {
 export function createThreadPool(threads = threadCount()): SolverPool {
 	// One more thread than solvers, so that a re-check never waits for a long computation.
 	const pool = lazyThreads(threads + 1);
+	// A form waits for its answer while it is typed: neither behind solvers nor behind checks.
+	const places = lazyThreads(1);
 
 	async function short<T>(task: SolverTask): Promise<T> {
 		return pool.get().run(task, { signal: AbortSignal.timeout(CHECK_LIMIT_MS) });
@@ -99,8 +106,14 @@ export function createThreadPool(threads = threadCount()): SolverPool {
 	return {
 		threads,
 		verify: (result) => short<CheckOutcome>({ kind: 'verify', result }),
-		sdpa: (problem) => short<string>({ kind: 'sdpa', problem }),
-		close: () => pool.close(),
+		sdpa: (problem) => short<PrintedProgramme>({ kind: 'sdpa', problem }),
+		async place(functional) {
+			const task: SolverTask = { kind: 'place', functional };
+			return places.get().run(task, { signal: AbortSignal.timeout(PLACE_LIMIT_MS) });
+		},
+		async close() {
+			await Promise.all([pool.close(), places.close()]);
+		},
 		async solve(problem, { signal, onProgress } = {}) {
 			const stop = new Int32Array(new SharedArrayBuffer(4));
 			const { port1, port2 } = new MessageChannel();

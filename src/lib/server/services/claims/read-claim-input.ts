@@ -12,7 +12,8 @@ import { references } from '../../db/schema';
 import type { FieldIssue } from '../../errors';
 import type { ParsedReference } from '../../references/parse-bibtex';
 import { readReference } from '../../references/read-reference';
-import { canonicalSubject, type CanonicalSubject } from '../inequalities/canonical-subject';
+import type { CanonicalSubject } from '../inequalities/canonical-subject';
+import { placeSubject } from '../inequalities/place-subject';
 import { isVisibleToGroup } from '../inequalities/visibility';
 import { readQuantity, type QuantityReading } from '../recomputations/claim-problem';
 import { readSubject } from './read-subject';
@@ -59,7 +60,7 @@ export async function readClaimInput(
 	const functional = subject.subject?.functional ?? null;
 	return {
 		subject: subject.subject,
-		place: functional && canonicalSubject(functional),
+		place: functional && (await placeSubject(functional)),
 		quantity,
 		relation: 'issue' in value ? input.relation : value.relation,
 		stated: 'issue' in value ? null : value.stated,

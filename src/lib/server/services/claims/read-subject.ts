@@ -9,12 +9,12 @@ import {
 } from '../../../nonlocality/scenario/families';
 import { collinsGisinForm, type Functional } from '../../../nonlocality/scenario/functional';
 import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
-import { RELATION_SIGNS } from '../../../ledger/claim';
 import type { ClaimInput } from '../../../schemas/claim-input';
 import type { Reader } from '../../db/client';
 import { inequalities } from '../../db/schema';
 import type { FieldIssue } from '../../errors';
 import { quantityInfo } from '../recomputations/claim-problem';
+import { expressionNotation } from './notation-words';
 import { readOutputs, readTable } from './read-table';
 import { latexOf, textOf } from './subject-latex';
 import { familySpec, noSubject, subjectOf, type SubjectReading } from './subject-reading';
@@ -38,6 +38,7 @@ export async function readSubject(
 			return attempt('expression', () => readExpression(input));
 		case 'collins-gisin':
 		case 'correlators':
+		case 'probabilities':
 			return attempt('table', () => readTableSubject(input));
 		case 'described':
 			return readDescribed(input);
@@ -97,7 +98,8 @@ function readExpression(input: ClaimInput): SubjectReading {
 		family: null,
 		inequalityId: null,
 		indexBase: indexBase === null ? null : { base: indexBase, chosen },
-		besideIt: claimedBound && `${RELATION_SIGNS[claimedBound.relation]} ${claimedBound.text}`,
+		notation: expressionNotation(input.expression),
+		besideIt: claimedBound,
 		otherBase: indexBase === null ? null : readWithOtherBase(input.expression, indexBase, given)
 	});
 }
@@ -129,11 +131,13 @@ function isConstant(functional: Functional): boolean {
 function readTableSubject(input: ClaimInput): SubjectReading {
 	const read = readTable(input);
 	if ('field' in read) return noSubject(read);
-	if (isConstant(read)) return noSubject({ field: 'table', message: CONSTANT });
+	const { functional, notation } = read;
+	if (isConstant(functional)) return noSubject({ field: 'table', message: CONSTANT });
 	return subjectOf({
-		functional: read,
-		text: textOf(read),
-		latex: latexOf(read, 0),
+		functional,
+		notation,
+		text: textOf(functional),
+		latex: latexOf(functional, 0),
 		family: null,
 		inequalityId: null,
 		indexBase: null

@@ -6,8 +6,10 @@ import {
 	parseCorrelators,
 	splitTable
 } from '../../../nonlocality/scenario/tables';
+
 import type { ClaimInput } from '../../../schemas/claim-input';
 import type { FieldIssue } from '../../errors';
+import { readProbabilities } from './read-probabilities';
 
 /** `2 2 / 3 3`: outputs of each input, parties separated by a slash (or on lines of their own). */
 export function readOutputs(text: string): readonly (readonly number[])[] | FieldIssue {
@@ -29,14 +31,29 @@ export function readOutputs(text: string): readonly (readonly number[])[] | Fiel
 	return parties.map((party) => party.map(Number));
 }
 
-/** @throws NotationError naming row and column */
-export function readTable(input: ClaimInput): Functional | FieldIssue {
+/** A table's functional, and the notation it was read in. */
+export interface ReadTable {
+	readonly functional: Functional;
+	readonly notation: string;
+}
+
+/** @throws NotationError naming row and column, or the line */
+export function readTable(input: ClaimInput): ReadTable | FieldIssue {
 	const { table, subjectKind } = input;
 	if (!table.trim())
 		throw new NotationError('the table is empty', null, 'Paste its rows on lines.');
-	const rows = splitTable(table);
-	if (subjectKind === 'correlators') return parseCorrelators(rows);
+	if (subjectKind === 'correlators') {
+		const rows = splitTable(table);
+		return { functional: parseCorrelators(rows), notation: `Correlator table, ${sizeOf(rows)}` };
+	}
 	const outputs = input.outputs.trim() ? readOutputs(input.outputs) : undefined;
 	if (outputs && 'field' in outputs) return outputs;
-	return parseCollinsGisin(rows, outputs);
+	if (subjectKind === 'probabilities') return readProbabilities(table, outputs);
+	const rows = splitTable(table);
+	const functional = parseCollinsGisin(rows, outputs);
+	return { functional, notation: `Collins-Gisin table, ${sizeOf(rows)}` };
 }
+
+/** Rows and columns without the margins. */
+const sizeOf = (rows: readonly (readonly string[])[]) =>
+	`${rows.length - 1} × ${(rows[0]?.length ?? 1) - 1} and its margins`;

@@ -1,3 +1,4 @@
+import type { Relation } from '../../../ledger/claim';
 import type { FamilySpec, FamilyInfo } from '../../../nonlocality/scenario/families';
 import type { Functional } from '../../../nonlocality/scenario/functional';
 import type { FieldIssue } from '../../errors';
@@ -12,8 +13,10 @@ export interface ReadSubject {
 	/** Set when the subject was picked among the known ones. */
 	readonly inequalityId: string | null;
 	readonly indexBase: { readonly base: 0 | 1; readonly chosen: boolean } | null;
+	/** How it was written, for its writer to see: `Correlator table, 3 × 3 inputs`. */
+	readonly notation?: string;
 	/** `<= 2` written behind the expression: a bound the paper claims, no part of the functional. */
-	readonly besideIt?: string | null;
+	readonly besideIt?: { readonly relation: Relation; readonly text: string } | null;
 	/** The expression with its inputs counted from the other number, where its values may differ. */
 	readonly otherBase?: Functional | null;
 }

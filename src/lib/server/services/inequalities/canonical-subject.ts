@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
+import { canonicalPlace, type CanonicalPlace } from '../../../nonlocality/scenario/canonical-place';
 import { parseCoefficient } from '../../../nonlocality/exact/expression';
-import { canonicalForm } from '../../../nonlocality/scenario/equivalence';
 import { collinsGisinForm, type Functional } from '../../../nonlocality/scenario/functional';
 import { termsOfFunctional } from '../../../nonlocality/scenario/problem-terms';
 import { Recent } from '../../recent';
@@ -21,23 +21,36 @@ export interface CanonicalSubject extends MapText {
 /** A form is read again at every pause in typing, mostly with the same subject in it. */
 const cache = new Recent<CanonicalSubject>(200);
 
-export function canonicalSubject(functional: Functional): CanonicalSubject {
-	const { outputs } = functional.scenario;
-	const text = JSON.stringify([outputs, termsOfFunctional(functional)]);
-	const key = createHash('sha256').update(text).digest('base64');
-	return cache.get(key) ?? cache.keep(key, search(functional));
+function keyOf(functional: Functional): string {
+	const text = JSON.stringify([functional.scenario.outputs, termsOfFunctional(functional)]);
+	return createHash('sha256').update(text).digest('base64');
 }
 
-function search(functional: Functional): CanonicalSubject {
-	const { digest, version, numerical, scale, shift, complete } = canonicalForm(functional);
-	return {
+/** Where it belongs, when that was worked out lately. */
+export const knownPlace = (functional: Functional) => cache.get(keyOf(functional));
+
+export function keepPlace(functional: Functional, place: CanonicalPlace): CanonicalSubject {
+	const { digest, version, numerical, scale, shift, complete } = place;
+	return cache.keep(keyOf(functional), {
 		// An invariant may be shared by inequivalent functionals: those then stay apart.
 		digest: complete ? digest : `${digest}-${ownDigest(functional)}`,
 		version,
 		numerical,
-		scale: scale.text,
-		shift: shift.text
-	};
+		scale,
+		shift
+	});
+}
+
+/**
+ * The same in this thread: for the forms of small families only. What a person wrote goes through
+ * `placeSubject`.
+ */
+export function canonicalSubject(functional: Functional): CanonicalSubject {
+	const { outputs } = functional.scenario;
+	return (
+		knownPlace(functional) ??
+		keepPlace(functional, canonicalPlace({ outputs, terms: termsOfFunctional(functional) }))
+	);
 }
 
 function ownDigest(functional: Functional): string {

@@ -1,8 +1,8 @@
 import { familyFunctional, familyLatex } from '../../../nonlocality/scenario/families';
 import type { Database } from '../../db/client';
-import { canonicalSubject } from './canonical-subject';
 import { recognisedFamilies } from './catalogue';
 import { findOrCreateInequality } from './find-or-create-inequality';
+import { placeSubject } from './place-subject';
 
 /**
  * Gives the recognised family members their rows, so that the search finds them before anyone has
@@ -11,7 +11,7 @@ import { findOrCreateInequality } from './find-or-create-inequality';
 export async function ensureCatalogue(db: Database, now = new Date()): Promise<void> {
 	for (const family of recognisedFamilies()) {
 		const functional = familyFunctional(family);
-		const place = canonicalSubject(functional);
+		const place = await placeSubject(functional);
 		const subject = { functional, latex: familyLatex(family), family, place };
 		await db.write((tx) => findOrCreateInequality(tx, subject, now));
 	}

@@ -61,10 +61,11 @@ export async function findOrCreateInequality(
 }
 
 function newRow({ functional, latex, family, place }: PlacedSubject, now: Date) {
-	const spec = familyOfDigest(place.digest) ?? family;
+	const recognised = familyOfDigest(place.digest);
+	const spec = recognised ?? family;
 	// A family's own form stands for it, whatever form somebody entered first.
-	const form = spec ? familyFunctional(spec) : functional;
-	const { scale, shift } = spec ? canonicalSubject(form) : place;
+	const form = recognised ? familyFunctional(recognised) : functional;
+	const { scale, shift } = recognised ? canonicalSubject(form) : place;
 	return {
 		id: newId(now.getTime()),
 		digest: place.digest,

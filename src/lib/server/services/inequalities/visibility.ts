@@ -1,6 +1,7 @@
 import { and, eq, ne, or } from 'drizzle-orm';
+import type { Context } from '../../context';
 import type { Reader } from '../../db/client';
-import { claims, inequalities } from '../../db/schema';
+import { claims, inequalities, memberships } from '../../db/schema';
 import { familyOfDigest } from './catalogue';
 
 /**
@@ -24,6 +25,24 @@ export async function isVisibleToGroup(
 		.where(
 			and(eq(claims.inequalityId, inequalityId), or(eq(claims.groupId, groupId), isPublicClaim))
 		)
+		.limit(1);
+	return claim !== undefined;
+}
+
+/** Whether a person, or a visitor, may see an inequality's page somewhere. */
+export async function mayViewInequality(
+	ctx: Context,
+	{ id, digest }: { readonly id: string; readonly digest: string }
+): Promise<boolean> {
+	const { read } = ctx.db;
+	if (await isPublicInequality(read, id)) return true;
+	if (!ctx.actor) return false;
+	if (familyOfDigest(digest)) return true;
+	const [claim] = await read
+		.select({ id: claims.id })
+		.from(claims)
+		.innerJoin(memberships, eq(memberships.groupId, claims.groupId))
+		.where(and(eq(claims.inequalityId, id), eq(memberships.userId, ctx.actor.id)))
 		.limit(1);
 	return claim !== undefined;
 }

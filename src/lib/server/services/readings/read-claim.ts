@@ -37,6 +37,7 @@ export async function readClaim(
 		latex: subject?.latex ?? null,
 		scenario: functional && scenarioSentence(functional.scenario.outputs),
 		indexBase: subject?.indexBase ?? null,
+		notation: subject?.notation ?? null,
 		besideIt: subject?.besideIt ?? null,
 		knownAs: known?.knownAs ?? null,
 		stations: known?.stations ?? null,

@@ -1,4 +1,5 @@
 import { eq } from 'drizzle-orm';
+import type { Problem } from '../../../nonlocality/problem';
 import type { Context } from '../../context';
 import { recomputations } from '../../db/schema';
 import { ServiceError } from '../../errors';
@@ -15,6 +16,13 @@ export async function sdpaText(ctx: Context, id: string): Promise<string> {
 	if (row?.problem.quantity !== 'npa') {
 		throw new ServiceError('not-found', 'This recomputation is no semidefinite programme.');
 	}
-	const { problem } = row;
-	return runShortTask((pool) => pool.sdpa(problem));
+	return printProgramme(row.problem);
+}
+
+/** @throws ServiceError invalid with the figure for a relaxation past the limits */
+export async function printProgramme(problem: Problem): Promise<string> {
+	const printed = await runShortTask((pool) => pool.sdpa(problem));
+	if ('text' in printed) return printed.text;
+	const message = `There is no such programme: ${printed.refused}.`;
+	throw new ServiceError('invalid', message, [{ field: 'level', message }]);
 }

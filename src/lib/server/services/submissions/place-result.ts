@@ -5,8 +5,9 @@ import { functionalOfTerms, termsOfFunctional } from '../../../nonlocality/scena
 import type { Problem } from '../../../nonlocality/problem';
 import { outputCount } from '../../../nonlocality/scenario/scenario';
 import { IDENTITY_TEXT, readMap, type AffineMap } from '../inequalities/affine';
-import { canonicalSubject, mapBetween } from '../inequalities/canonical-subject';
+import { mapBetween } from '../inequalities/canonical-subject';
 import type { InequalityRecord } from '../inequalities/inequality-rows';
+import { placeSubject } from '../inequalities/place-subject';
 
 /** Why a certificate is not one of the claim's inequality; a sentence for its person. */
 export class OtherInequality extends Error {}
@@ -31,7 +32,10 @@ const sizeOf = ({ scenario, terms }: Functional): number =>
  * inequality: value of the representative = scale * value of the problem + shift.
  * @throws OtherInequality
  */
-export function placeResult(problem: Problem, inequality: InequalityRecord): AffineMap {
+export async function placeResult(
+	problem: Problem,
+	inequality: InequalityRecord
+): Promise<AffineMap> {
 	const functional = functionalOfTerms({ outputs: problem.outputs }, problem.terms);
 	const representative = functionalOfTerms({ outputs: inequality.outputs }, inequality.terms);
 	const text = (f: typeof functional) => JSON.stringify([f.scenario.outputs, termsOfFunctional(f)]);
@@ -44,7 +48,7 @@ export function placeResult(problem: Problem, inequality: InequalityRecord): Aff
 	}
 	// The search takes seconds for some functionals: it is made for those only that may be the claim's.
 	const mayBe = looseForm(functional) === looseForm(representative);
-	const place = mayBe ? canonicalSubject(functional) : null;
+	const place = mayBe ? await placeSubject(functional) : null;
 	if (!place || place.version !== inequality.digestVersion || place.digest !== inequality.digest) {
 		throw new OtherInequality(
 			'This certificate is of another inequality than the claim: they are not the same up to ' +

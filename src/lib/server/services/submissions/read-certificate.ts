@@ -48,7 +48,7 @@ export async function readCertificate(
 		throw refusal('This claim is not about an inequality, so that no certificate speaks of it.');
 	}
 	const result = readResult(text);
-	const map = place(result.problem, inequality);
+	const map = await place(result.problem, inequality);
 	const check = await runCheck(result);
 	const finding = certifiedFinding(result, check, inequality, map, claim.input.sense);
 	const label = labelOf(result, finding.result.problem);
@@ -85,9 +85,9 @@ function readResult(text: string): DoneResult {
 	return result;
 }
 
-function place(problem: Problem, inequality: InequalityRecord) {
+async function place(problem: Problem, inequality: InequalityRecord) {
 	try {
-		return placeResult(problem, inequality);
+		return await placeResult(problem, inequality);
 	} catch (error) {
 		if (error instanceof OtherInequality) throw refusal(error.message);
 		throw error;

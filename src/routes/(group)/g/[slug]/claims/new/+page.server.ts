@@ -6,6 +6,7 @@ import {
 	claimFormStart,
 	NO_CHOICES,
 	readClaimForm,
+	readOnly,
 	refuseClaim,
 	refuseInvalid,
 	signInWithinForm
@@ -34,6 +35,8 @@ export const actions: Actions = {
 		const form = await readClaimForm(data);
 		if (!event.locals.actor) return askToSignIn(form);
 		const ctx = await requireRole(event, 'member');
+		const read = await readOnly(ctx, form, data);
+		if (read) return read;
 		if (!form.valid) return refuseInvalid(form);
 		let number: number;
 		try {

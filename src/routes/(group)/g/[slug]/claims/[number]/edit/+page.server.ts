@@ -6,9 +6,10 @@ import {
 	keepVersion,
 	NO_CHOICES,
 	readClaimForm,
+	readOnly,
 	refuseClaim,
 	refuseInvalid,
-	signInWithinForm
+	signInWithinEdit
 } from '$lib/server/http/claim-form';
 import { answering } from '$lib/server/http/page-errors';
 import { countRequest } from '$lib/server/http/request-limits';
@@ -41,6 +42,8 @@ export const actions: Actions = {
 		const form = await readClaimForm(data);
 		if (!event.locals.actor) return keepVersion(askToSignIn(form), version);
 		const ctx = await requireRole(event, 'member');
+		const read = await readOnly(ctx, form, data);
+		if (read) return { ...read, version };
 		if (!form.valid) return keepVersion(refuseInvalid(form), version);
 		try {
 			await countRequest(event, 'change');
@@ -50,10 +53,5 @@ export const actions: Actions = {
 		}
 		redirect(303, `/g/${ctx.group.slug}/claims/${number}?changed`);
 	},
-	signIn: async (event) => {
-		const data = await event.request.formData();
-		const version = Number(data.get('version'));
-		const answer = await signInWithinForm(event, data);
-		return 'status' in answer ? keepVersion(answer, version) : { ...answer, version };
-	}
+	signIn: signInWithinEdit
 };

@@ -1,108 +1,89 @@
-import { complexZeros, scaleComplex, squaredNorm } from '../linalg/complex-dense';
-import type { SeededRandom } from '../linalg/seeded-random';
 import {
-	orthonormalise,
-	randomStrategy,
-	updateElements,
-	type ProjectiveMeasurement,
+	complexZeros,
+	scaleComplex,
+	squaredNorm,
+	type ComplexArray
+} from '../linalg/complex-dense';
+import type { SeededRandom } from '../linalg/seeded-random';
+import { tensorFactors } from '../linalg/tensor-factors';
+import {
+	emptyMeasurement,
+	isProjective,
+	randomVector,
+	tidyMeasurement,
+	type Measurement,
 	type SeeSawStrategy
 } from './see-saw-strategy';
 
 /**
- * A random real strategy of chain form for two parties and two outputs: projectors of 2 x 2 blocks
- * on neighbouring basis vectors, each input's blocks beginning at 0 or 1, and a state of decaying
- * Schmidt coefficients. Two projectors always have such a form in common (Jordan's lemma); the best
- * strategies known for I3322 have it for all three.
- * @see Pal and Vertesi, Phys. Rev. A 82, 022116 (2010)
- */
-export function chainStrategy(
-	outputs: readonly (readonly number[])[],
-	dimension: number,
-	random: SeededRandom
-): SeeSawStrategy {
-	const strategy = randomStrategy(
-		outputs,
-		outputs.map(() => dimension),
-		true,
-		random
-	);
-	const { re } = strategy.state;
-	re.fill(0);
-	const decay = 0.5 + 0.45 * random.uniform();
-	for (let i = 0; i < dimension; i++)
-		re[i * dimension + i] = decay ** Math.ceil(i / 2) * (0.8 + 0.4 * random.uniform());
-	scaleComplex(strategy.state, 1 / Math.sqrt(squaredNorm(strategy.state)));
-	for (const row of strategy.measurements)
-		for (const measurement of row) makeChain(measurement, dimension, random);
-	return strategy;
-}
-
-function makeChain(measurement: ProjectiveMeasurement, size: number, random: SeededRandom) {
-	const { re } = measurement.basis;
-	re.fill(0);
-	for (let i = 0; i < size; i++) {
-		re[i * size + i] = 1;
-		measurement.labels[i] = random.integer(2);
-	}
-	for (let i = random.integer(2); i + 1 < size; i += 2) {
-		const angle = Math.PI * random.uniform();
-		const [upper, lower] = [i * size + i, (i + 1) * size + i];
-		re[upper] = Math.cos(angle);
-		re[upper + 1] = Math.sin(angle);
-		re[lower] = -Math.sin(angle);
-		re[lower + 1] = Math.cos(angle);
-		measurement.labels.set([0, 1], i);
-	}
-	updateElements(measurement, size);
-}
-
-/**
- * A real strategy in a larger local dimension: the old one on the first basis vectors, random
- * projectors on the new ones, the whole shaken by about `perturbation`.
+ * A strategy in larger local dimensions: the old one on the first basis vectors of each party,
+ * random elements on the new ones, the whole shaken by about `perturbation`.
+ * @param dimensions of each party, none smaller than before
  */
 export function paddedStrategy(
 	old: SeeSawStrategy,
-	dimension: number,
+	dimensions: readonly number[],
 	perturbation: number,
 	random: SeededRandom
 ): SeeSawStrategy {
-	const outputs = old.measurements.map((row) => row.map((measurement) => measurement.outputs));
-	const fresh = randomStrategy(
-		outputs,
-		outputs.map(() => dimension),
-		true,
-		random
-	);
-	const before = old.dimensions[0] ?? dimension;
-	fresh.state.re.set(embedded(old.state.re, before, dimension));
-	shake(fresh.state.re, perturbation / dimension, random);
-	scaleComplex(fresh.state, 1 / Math.sqrt(squaredNorm(fresh.state)));
-	fresh.measurements.forEach((row, party) => {
-		row.forEach((measurement, input) => {
-			const source = old.measurements[party]?.[input];
-			if (!source) return;
-			const { re } = measurement.basis;
-			re.set(embedded(source.basis.re, before, dimension));
-			measurement.labels.set(source.labels);
-			for (let k = before; k < dimension; k++) {
-				measurement.labels[k] = random.integer(measurement.outputs);
-				for (let i = before; i < dimension; i++) re[k * dimension + i] = random.normal();
-			}
-			shake(re, perturbation / Math.sqrt(dimension), random);
-			orthonormalise(measurement.basis, dimension);
-			updateElements(measurement, dimension);
+	const total = dimensions.reduce((product, d) => product * d, 1);
+	const state = embeddedState(old, dimensions, total);
+	shake(state, perturbation / Math.sqrt(total), random);
+	scaleComplex(state, 1 / Math.sqrt(squaredNorm(state)));
+	const measurements = old.measurements.map((row, party) => {
+		const [before, after] = [old.dimensions[party] ?? 1, dimensions[party] ?? 1];
+		return row.map((source) => {
+			const padded = paddedMeasurement(source, before, after, random);
+			shake(padded.basis, perturbation / Math.sqrt(after), random);
+			tidyMeasurement(padded, after);
+			return padded;
 		});
 	});
-	return fresh;
+	return { real: old.real, dimensions, factors: tensorFactors(dimensions), state, measurements };
 }
 
-/** A square array in the corner of a larger one of zeros. */
-function embedded(square: Float64Array, size: number, larger: number): Float64Array {
-	const { re } = complexZeros(larger * larger, true);
-	for (let i = 0; i < size; i++) re.set(square.subarray(i * size, (i + 1) * size), i * larger);
-	return re;
+function embeddedState(old: SeeSawStrategy, dimensions: readonly number[], total: number) {
+	const state = complexZeros(total, old.real);
+	for (let from = 0; from < old.state.re.length; from++) {
+		let to = 0;
+		old.factors.forEach(({ right, size }, party) => {
+			to = to * (dimensions[party] ?? 1) + (Math.floor(from / right) % size);
+		});
+		state.re[to] = old.state.re[from] ?? 0;
+		if (state.im) state.im[to] = old.state.im?.[from] ?? 0;
+	}
+	return state;
 }
 
-function shake(values: Float64Array, by: number, random: SeededRandom) {
-	for (let i = 0; i < values.length; i++) values[i] = (values[i] ?? 0) + by * random.normal();
+/** Old vectors first, then random ones on the new dimensions, as many as the kind of frame needs. */
+function paddedMeasurement(
+	source: Measurement,
+	before: number,
+	after: number,
+	random: SeededRandom
+): Measurement {
+	const { outputs, labels, basis } = source;
+	const real = basis.im === null;
+	const each = isProjective(source, before) ? 1 : outputs;
+	const fresh = each * (after - before);
+	const padded = emptyMeasurement(outputs, labels.length + fresh, after, real);
+	const into = padded.basis;
+	labels.forEach((label, k) => {
+		padded.labels[k] = label;
+		const part = (array: Float64Array) => array.subarray(k * before, (k + 1) * before);
+		into.re.set(part(basis.re), k * after);
+		if (into.im && basis.im) into.im.set(part(basis.im), k * after);
+	});
+	for (let k = labels.length; k < labels.length + fresh; k++) {
+		padded.labels[k] = random.integer(outputs);
+		const vector = randomVector(after - before, real, random);
+		into.re.set(vector.re, k * after + before);
+		if (into.im && vector.im) into.im.set(vector.im, k * after + before);
+	}
+	return padded;
+}
+
+function shake({ re, im }: ComplexArray, by: number, random: SeededRandom) {
+	for (let i = 0; i < re.length; i++) re[i] = (re[i] ?? 0) + by * random.normal();
+	if (im) for (let i = 0; i < im.length; i++) im[i] = (im[i] ?? 0) + by * random.normal();
 }

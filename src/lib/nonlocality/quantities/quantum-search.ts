@@ -45,8 +45,8 @@ export class StrategyEscalation {
 		this.#known = known;
 		this.#control = control;
 		this.#growth =
-			problem.dimensions === null && StrategyGrowth.suits(g)
-				? new StrategyGrowth(g, problem.seed)
+			problem.dimensions === null
+				? new StrategyGrowth(g, { seed: problem.seed, largest: null })
 				: null;
 		this.#visits = dimensionsToTry(problem).map((dimension) => ({
 			dimension,
@@ -97,7 +97,7 @@ export class StrategyEscalation {
 	summary(): Record<string, unknown> {
 		const growth = this.#growth;
 		return {
-			...(growth?.dimension && { grown: { dimension: growth.dimension, tries: growth.tries } }),
+			...(growth?.dimensions && { grown: { dimensions: growth.dimensions, tries: growth.tries } }),
 			dimensions: this.#visits
 				.filter(({ starts }) => starts > 0)
 				.map(({ dimension, starts, seconds, lower }) => ({ dimension, starts, seconds, lower }))

@@ -1,11 +1,6 @@
 import { improveMeasurements } from './see-saw-measurement';
 import { improveState, strategyValue } from './see-saw-state';
-import {
-	orthonormalise,
-	randomVector,
-	updateElements,
-	type SeeSawStrategy
-} from './see-saw-strategy';
+import { randomVector, tidyMeasurement, type SeeSawStrategy } from './see-saw-strategy';
 import type { SeeSawFunctional } from './see-saw-functional';
 import type { SeededRandom } from '../linalg/seeded-random';
 
@@ -96,9 +91,6 @@ const NUDGE = 1e-3;
 function cleanBases(strategy: SeeSawStrategy): void {
 	strategy.measurements.forEach((row, party) => {
 		const size = strategy.dimensions[party] ?? 1;
-		for (const measurement of row) {
-			orthonormalise(measurement.basis, size);
-			updateElements(measurement, size);
-		}
+		for (const measurement of row) tidyMeasurement(measurement, size);
 	});
 }

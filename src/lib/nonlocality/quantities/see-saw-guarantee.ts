@@ -1,128 +1,94 @@
 import type { StrategyCertificate } from '../certificates/types';
 import {
 	complexZeros,
-	copyComplex,
 	scaleComplex,
 	squaredNorm,
 	type ComplexArray
 } from '../linalg/complex-dense';
-import { applyToFactor } from '../linalg/tensor-factors';
 import type { ComplexNumber } from '../problem';
-import type { Functional, Term } from '../scenario/functional';
+import type { Functional } from '../scenario/functional';
 import {
 	addProjector,
-	orthonormalise,
 	rowOf,
-	type ProjectiveMeasurement,
+	tidyMeasurement,
+	type Measurement,
 	type SeeSawStrategy
 } from './see-saw-strategy';
+import { allElements, evaluateStrategy, type StrategyEvaluation } from './strategy-evaluation';
 
 const UNIT_ROUNDOFF = 2 ** -53;
 /** The check's own allowance comes to about half of the one taken here. */
 const SAFETY = 2;
 
-/**
- * The value that a strategy is guaranteed to have, rounded down, with its certificate. Bases are
- * orthonormalised and the state normalised first. P(a|x) is the squared norm of the part of the
- * state, written in the output bases, that belongs to those outputs: a sum of non-negative terms.
- *
- * Allowance: bases V with ||V^H V - 1|| <= eps move a projector by at most 2 eps (1 + eps), so a
- * probability of N parties by less than 4 N eps; computing it with dot products of length d_p and
- * a sum of D squares costs at most gamma_m (2 sqrt(D) + 2) (the Frobenius norm of the transform
- * being sqrt(D)); the coefficients add their own errors.
- * @see Higham, Accuracy and Stability of Numerical Algorithms (2nd ed.), sections 3.1, 3.5, 19.3
- */
+/** A functional's value on a strategy, within the allowance. */
+export interface FormValue {
+	readonly value: number;
+	readonly allowance: number;
+}
+
+/** Clears the roundings gathered on the way: exact frames, state of norm 1. */
+export function tidyStrategy({ state, measurements, dimensions }: SeeSawStrategy): void {
+	measurements.forEach((row, party) => {
+		for (const measurement of row) tidyMeasurement(measurement, dimensions[party] ?? 1);
+	});
+	scaleComplex(state, 1 / Math.sqrt(squaredNorm(state)));
+}
+
+/** Adds what sums and coefficients cost to the allowance of each probability. */
+export function formValue({ terms }: Functional, evaluation: StrategyEvaluation): FormValue {
+	let value = 0;
+	let weight = 0;
+	let errors = 0;
+	for (const { coefficient, events } of terms) {
+		value += coefficient.value * evaluation.probability(events);
+		weight += Math.abs(coefficient.value);
+		errors += coefficient.error;
+	}
+	const sums = (terms.length + 8) * UNIT_ROUNDOFF;
+	return { value, allowance: SAFETY * (weight * (evaluation.allowance + sums) + errors) };
+}
+
+/** The value that a strategy is guaranteed to have, rounded down, with its certificate. */
 export function guaranteedValue(
 	functional: Functional,
 	strategy: SeeSawStrategy
 ): StrategyCertificate {
-	const { dimensions } = strategy;
-	strategy.measurements.forEach((row, party) => {
-		for (const { basis } of row) orthonormalise(basis, dimensions[party] ?? 1);
-	});
-	scaleComplex(strategy.state, 1 / Math.sqrt(squaredNorm(strategy.state)));
-	const amplitudes = new Map<string, ComplexArray>();
-	let value = 0;
-	let weight = 0;
-	let errors = 0;
-	for (const term of functional.terms) {
-		value += term.coefficient.value * probability(strategy, term, amplitudes);
-		weight += Math.abs(term.coefficient.value);
-		errors += term.coefficient.error;
-	}
-	const total = strategy.state.re.length;
-	const operations = dimensions.reduce((sum, d) => sum + 4 * d + 4, 0) + 4 * total + 16;
-	const size = Math.max(...dimensions);
-	// Gram-Schmidt done twice leaves the rows orthonormal to a few roundings each.
-	const eps = (4 * size * size + 8) * UNIT_ROUNDOFF;
-	const rounding = operations * UNIT_ROUNDOFF * (2 * Math.sqrt(total) + 2);
-	const sums = (functional.terms.length + 8) * UNIT_ROUNDOFF;
-	const allowance = SAFETY * (weight * (4 * dimensions.length * eps + rounding + sums) + errors);
+	tidyStrategy(strategy);
+	const { dimensions, measurements } = strategy;
+	const evaluation = evaluateStrategy(strategy);
+	const { value, allowance } = formValue(functional, evaluation);
+	const { projective } = evaluation;
 	return {
 		kind: 'quantum-strategy',
 		strategy: {
 			dimensions: [...dimensions],
 			state: complexList(strategy.state),
-			measurements: strategy.measurements.map((row, party) =>
-				row.map((measurement) => elementMatrices(measurement, dimensions[party] ?? 1))
+			measurements: measurements.map((row, party) =>
+				row.map((measurement) => elementMatrices(measurement, dimensions[party] ?? 1, projective))
 			)
 		},
-		projective: true,
-		bases: strategy.measurements.map((row, party) => {
-			const d = dimensions[party] ?? 1;
-			return row.map(({ basis, labels }) => ({
-				vectors: matrixRows(basis, d),
-				outputs: [...labels]
-			}));
-		}),
+		projective,
+		bases: projective
+			? measurements.map((row, party) =>
+					row.map(({ basis, labels }) => ({
+						vectors: matrixRows(basis, dimensions[party] ?? 1),
+						outputs: [...labels]
+					}))
+				)
+			: null,
 		value: value - allowance
 	};
 }
 
-function probability(
-	strategy: SeeSawStrategy,
-	{ events }: Term,
-	known: Map<string, ComplexArray>
-): number {
-	if (events.length === 0) return 1;
-	const key = events.map(([party, input]) => `${party}.${input}`).join(' ');
-	let vector = known.get(key);
-	if (!vector) {
-		vector = strategy.state;
-		for (const [party, input] of events) {
-			const factor = strategy.factors[party];
-			const measurement = strategy.measurements[party]?.[input];
-			if (!factor || !measurement) continue;
-			const out = complexZeros(vector.re.length, strategy.real);
-			applyToFactor(conjugate(measurement.basis), factor, vector, out);
-			vector = out;
-		}
-		known.set(key, vector);
-	}
-	let sum = 0;
-	for (let i = 0; i < vector.re.length; i++) {
-		const belongs = events.every(([party, input, output]) => {
-			const factor = strategy.factors[party];
-			if (!factor) return false;
-			const at = Math.floor(i / factor.right) % factor.size;
-			return strategy.measurements[party]?.[input]?.labels[at] === output;
-		});
-		if (belongs) sum += (vector.re[i] ?? 0) ** 2 + (vector.im ? (vector.im[i] ?? 0) ** 2 : 0);
-	}
-	return sum;
-}
-
-function conjugate(matrix: ComplexArray): ComplexArray {
-	const copy = copyComplex(matrix);
-	if (copy.im) for (let i = 0; i < copy.im.length; i++) copy.im[i] = -(copy.im[i] ?? 0);
-	return copy;
-}
-
-function elementMatrices({ outputs, basis, labels }: ProjectiveMeasurement, size: number) {
+function elementMatrices(measurement: Measurement, size: number, projective: boolean) {
+	if (!projective)
+		return allElements(measurement.elements, size).map((element) => matrixRows(element, size));
+	const { outputs, basis, labels } = measurement;
 	return Array.from({ length: outputs }, (_, output) => {
 		const element = complexZeros(size * size, basis.im === null);
-		for (let k = 0; k < size; k++)
-			if (labels[k] === output) addProjector(element, rowOf(basis, size, k), size);
+		labels.forEach((label, k) => {
+			if (label === output) addProjector(element, rowOf(basis, size, k), size);
+		});
 		return matrixRows(element, size);
 	});
 }

@@ -1,14 +1,16 @@
-import { addScaled, complexZeros, copyComplex, type ComplexArray } from '../linalg/complex-dense';
+import {
+	addScaled,
+	complexZeros,
+	copyComplex,
+	fillZero,
+	squaredNorm,
+	type ComplexArray
+} from '../linalg/complex-dense';
 import { hermitianEigen } from '../linalg/hermitian-eigen';
 import { partialOuter } from '../linalg/tensor-factors';
 import type { SeeSawFunctional } from './see-saw-functional';
 import { applyLetter } from './see-saw-state';
-import {
-	rowOf,
-	updateElements,
-	type ProjectiveMeasurement,
-	type SeeSawStrategy
-} from './see-saw-strategy';
+import { rowOf, updateElements, type Measurement, type SeeSawStrategy } from './see-saw-strategy';
 
 /** Pairs of outputs are re-split until a whole sweep gains less than this share of the scale. */
 const SWEEP_GAIN = 1e-13;
@@ -73,7 +75,7 @@ function partyOperators(
 }
 
 function sweepPairs(
-	measurement: ProjectiveMeasurement,
+	measurement: Measurement,
 	forces: readonly ComplexArray[],
 	size: number,
 	scale: number
@@ -87,16 +89,28 @@ function sweepPairs(
 	}
 }
 
+/** Squared norm at which a vector of a frame is dropped: far below what the sum of all can feel. */
+const SPENT = 1e-26;
+
+/** More vectors than dimensions: a split leaves some of them at 0, where they are kept exactly. */
+function isSpent(vector: ComplexArray): boolean {
+	if (squaredNorm(vector) > SPENT) return false;
+	fillZero(vector);
+	return true;
+}
+
 /** Splits the vectors of outputs a and b anew; returns by how much the value rose. */
 function resplit(
-	{ basis, labels }: ProjectiveMeasurement,
+	{ basis, labels }: Measurement,
 	forces: readonly ComplexArray[],
 	size: number,
 	a: number,
 	b: number
 ): number {
 	const rows: number[] = [];
-	for (let k = 0; k < size; k++) if (labels[k] === a || labels[k] === b) rows.push(k);
+	labels.forEach((label, k) => {
+		if ((label === a || label === b) && !isSpent(rowOf(basis, size, k))) rows.push(k);
+	});
 	const forceA = forces[a];
 	const forceB = forces[b];
 	if (rows.length === 0 || !forceA || !forceB) return 0;

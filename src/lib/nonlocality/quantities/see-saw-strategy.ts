@@ -3,6 +3,7 @@ import {
 	fillZero,
 	removeComponent,
 	scaleComplex,
+	setComplex,
 	squaredNorm,
 	type ComplexArray
 } from '../linalg/complex-dense';
@@ -10,34 +11,42 @@ import type { SeededRandom } from '../linalg/seeded-random';
 import { tensorFactors, type TensorFactor } from '../linalg/tensor-factors';
 
 /**
- * A projective measurement: an orthonormal basis whose vectors each belong to one output. An
- * output may own no vector (a projector of rank 0), so deterministic measurements are included.
+ * A measurement as a frame: vectors v_k with sum_k |v_k><v_k| = 1, each belonging to one output, so
+ * that E_a = sum over the vectors of a of |v><v|. As many vectors as dimensions make an orthonormal
+ * basis: the measurement is projective. More of them describe general elements (Naimark's
+ * dilation). An output may own no vector, so deterministic measurements are included.
  */
-export interface ProjectiveMeasurement {
+export interface Measurement {
 	readonly outputs: number;
-	/** Row k is the k-th basis vector; size x size. */
+	/** Row k is the k-th vector; vectors x size, the columns orthonormal. */
 	readonly basis: ComplexArray;
-	/** Output of each basis vector. */
+	/** Output of each vector. */
 	readonly labels: Int32Array;
-	/** Projectors of all outputs but the last, size x size each. */
+	/** Elements of all outputs but the last, size x size each. */
 	readonly elements: readonly ComplexArray[];
 }
 
-/** A pure state (party 0 most significant) with projective measurements, all real or all complex. */
+/** A pure state (party 0 most significant) with measurements, all real or all complex. */
 export interface SeeSawStrategy {
 	readonly real: boolean;
 	readonly dimensions: readonly number[];
 	readonly factors: readonly TensorFactor[];
 	readonly state: ComplexArray;
 	/** `measurements[party][input]`. */
-	readonly measurements: readonly (readonly ProjectiveMeasurement[])[];
+	readonly measurements: readonly (readonly Measurement[])[];
 }
 
-/** Haar-random bases with their vectors shared out evenly at random, and a random state. */
+export interface StrategyKind {
+	readonly real: boolean;
+	/** Whether inputs of more than two outputs get general elements; projectors suffice for two. */
+	readonly general: boolean;
+}
+
+/** Random frames with their vectors shared out evenly at random, and a random state. */
 export function randomStrategy(
 	outputs: readonly (readonly number[])[],
 	dimensions: readonly number[],
-	real: boolean,
+	{ real, general }: StrategyKind,
 	random: SeededRandom
 ): SeeSawStrategy {
 	const total = dimensions.reduce((product, d) => product * d, 1);
@@ -46,18 +55,35 @@ export function randomStrategy(
 	const measurements = outputs.map((counts, party) =>
 		counts.map((count) => {
 			const size = dimensions[party] ?? 1;
-			const measurement: ProjectiveMeasurement = {
-				outputs: count,
-				basis: randomVector(size * size, real, random),
-				labels: randomLabels(size, count, random),
-				elements: Array.from({ length: count - 1 }, () => complexZeros(size * size, real))
-			};
-			orthonormalise(measurement.basis, size);
-			updateElements(measurement, size);
+			// an element has rank up to the dimension
+			const vectors = general && count > 2 ? count * size : size;
+			const measurement = emptyMeasurement(count, vectors, size, real);
+			setComplex(measurement.basis, randomVector(vectors * size, real, random));
+			measurement.labels.set(randomLabels(vectors, count, random));
+			tidyMeasurement(measurement, size);
 			return measurement;
 		})
 	);
 	return { real, dimensions, factors: tensorFactors(dimensions), state, measurements };
+}
+
+/** A measurement whose vectors are still to be filled in. */
+export function emptyMeasurement(
+	outputs: number,
+	vectors: number,
+	size: number,
+	real: boolean
+): Measurement {
+	return {
+		outputs,
+		basis: complexZeros(vectors * size, real),
+		labels: new Int32Array(vectors),
+		elements: Array.from({ length: outputs - 1 }, () => complexZeros(size * size, real))
+	};
+}
+
+export function isProjective({ labels }: Measurement, size: number): boolean {
+	return labels.length === size;
 }
 
 export function randomVector(length: number, real: boolean, random: SeededRandom): ComplexArray {
@@ -84,22 +110,45 @@ export function rowOf(matrix: ComplexArray, size: number, k: number): ComplexArr
 	};
 }
 
-/** Gram-Schmidt on the rows, twice: then they are orthonormal to a few roundings. */
-export function orthonormalise(basis: ComplexArray, size: number): void {
+/** Makes the frame exact to a few roundings, and the elements those of the frame. */
+export function tidyMeasurement(measurement: Measurement, size: number): void {
+	if (isProjective(measurement, size)) orthonormalise(measurement.basis, size);
+	else {
+		const columns = transposed(measurement.basis, measurement.labels.length, size);
+		orthonormalise(columns, measurement.labels.length);
+		setComplex(measurement.basis, transposed(columns, size, measurement.labels.length));
+	}
+	updateElements(measurement, size);
+}
+
+/** Gram-Schmidt on the rows of the given length, twice: then they are orthonormal to a few roundings. */
+function orthonormalise(rows: ComplexArray, length: number): void {
+	const count = rows.re.length / length;
 	for (let pass = 0; pass < 2; pass++) {
-		for (let k = 0; k < size; k++) {
-			const row = rowOf(basis, size, k);
-			for (let l = 0; l < k; l++) removeComponent(row, rowOf(basis, size, l));
+		for (let k = 0; k < count; k++) {
+			const row = rowOf(rows, length, k);
+			for (let l = 0; l < k; l++) removeComponent(row, rowOf(rows, length, l));
 			scaleComplex(row, 1 / Math.sqrt(squaredNorm(row)));
 		}
 	}
 }
 
-/** Recomputes the projectors from the basis and its labels. */
-export function updateElements(measurement: ProjectiveMeasurement, size: number): void {
+function transposed(matrix: ComplexArray, rows: number, columns: number): ComplexArray {
+	const out = complexZeros(rows * columns, matrix.im === null);
+	for (let i = 0; i < rows; i++) {
+		for (let j = 0; j < columns; j++) {
+			out.re[j * rows + i] = matrix.re[i * columns + j] ?? 0;
+			if (out.im) out.im[j * rows + i] = matrix.im?.[i * columns + j] ?? 0;
+		}
+	}
+	return out;
+}
+
+/** Recomputes the elements from the vectors and their labels. */
+export function updateElements(measurement: Measurement, size: number): void {
 	const { basis, labels, elements } = measurement;
 	for (const element of elements) fillZero(element);
-	for (let k = 0; k < size; k++) {
+	for (let k = 0; k < labels.length; k++) {
 		const element = elements[labels[k] ?? 0];
 		if (element) addProjector(element, rowOf(basis, size, k), size);
 	}

@@ -42,8 +42,8 @@ export interface SearchResult {
 }
 
 /**
- * Best of many alternating maximisations from seeded random strategies, real and complex in turn.
- * Any number of parties. Null when the budget ended before the first step.
+ * Best of many alternating maximisations from seeded random strategies, real and complex in turn,
+ * and by twos with projective and with general measurements where there are more than two outputs. Null when the budget ended before the first step.
  * @throws SolverStop `cancelled` when told to stop, `limit` for a state of more than 4096 entries
  */
 export function searchStrategies(
@@ -72,7 +72,8 @@ export function searchStrategies(
 		const start = search.firstStart + startsDone;
 		const random = seededRandom(search.seed, start);
 		const real = start % 2 === 0 && !given?.im;
-		const strategy = randomStrategy(g.scenario.outputs, dimensions, real, random);
+		const kind = { real, general: start % 4 > 1 };
+		const strategy = randomStrategy(g.scenario.outputs, dimensions, kind, random);
 		if (given) strategy.state.re.set(given.re);
 		if (given?.im) strategy.state.im?.set(given.im);
 		else if (given) strategy.state.im?.fill(0);
@@ -160,6 +161,7 @@ export function seeSaw(
 			starts: found.startsDone,
 			bestStart: found.bestStart,
 			real: found.strategy.real,
+			projective: found.certificate.projective,
 			iterations: found.iterations,
 			converged: found.converged
 		},

@@ -22,7 +22,12 @@ const QUANTITY_LINES: Readonly<Record<QuantityOfProblem, readonly string[]>> = {
 		'quantum maximum, enclosed from both sides',
 		'"levels", "dimensions": lists tried in order (default: escalating)',
 		`"gap": stop when upper - lower is at most this (default ${PROBLEM_DEFAULTS.gap})`
-	]
+	],
+	hybrid: [
+		'maximum over models that are local across some bipartition of three or four parties, exact',
+		'"model": "svetlichny" (anything within a group) or "no-signalling"'
+	],
+	facet: ['whether the inequality is a facet of the local polytope, exact (value 1 or 0)']
 };
 
 const quantities = Object.entries(QUANTITY_LINES)

@@ -1,9 +1,8 @@
-import { factorCholesky, invertFactor, inverseFromFactor, solveFactored } from '../linalg/cholesky';
-import { addScaled, dot, multiply, symmetrise } from '../linalg/dense';
+import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
 import type { Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
 import type { Ending, SolverHooks, SolverOptions } from './semidefinite-programme';
-import { largestStep } from './step-length';
+import { MOST_STEPS, StepLength } from './step-length';
 
 /** Fraction of the way to the boundary that a step takes. */
 const STEP_FRACTION = 0.95;
@@ -14,6 +13,11 @@ const SMALLEST_STEP = 1e-6;
 const LEAST_CENTRING = 1e-6;
 /** The start's diagonal exceeds what dominance needs by this share. */
 const DOMINANCE = 1.1;
+
+/** What the solver takes of the kernels' memory: n x n matrices, Lanczos' basis, a few vectors. */
+function demandOf(n: number): KernelDemand {
+	return { doubles: 16 * (n + 3) ** 2 + (MOST_STEPS + 20) * (n + 3), arrays: 60, order: n };
+}
 
 /**
  * Level 1 of the moment-matrix hierarchy where every measurement has two outcomes. In observables
@@ -31,9 +35,11 @@ const DOMINANCE = 1.1;
 export class LevelOneDual {
 	readonly #programme: MomentProgramme;
 	readonly #hooks: SolverHooks;
+	readonly #kernels: Kernels;
+	readonly #stepLength: StepLength;
 	readonly #n: number;
 	/** Value of the functional on uncorrelated coins: its constant in observables. */
-	#constant: number;
+	readonly #constant: number;
 	readonly #c: Float64Array;
 	readonly #lambda: Float64Array;
 	readonly #x: Float64Array;
@@ -42,25 +48,41 @@ export class LevelOneDual {
 	readonly #inverseX: Float64Array;
 	readonly #inverseZ: Float64Array;
 	readonly #w: Float64Array;
+	readonly #factor: Float64Array;
+	readonly #schur: Float64Array;
+	/** Scratch: a matrix before a move or a product, and a diagonal one. */
 	readonly #work: Float64Array;
+	readonly #diagonal: Float64Array;
+	readonly #predictor: Direction;
+	readonly #corrected: Direction;
 
 	/** @param programme one that `suits`, its objective scaled to entries of about 1 */
 	constructor(programme: MomentProgramme, hooks: SolverHooks) {
 		const n = programme.size;
-		const square = () => new Float64Array(n * n);
+		const kernels = makeKernels(demandOf(n));
+		const square = () => kernels.doubles(n * n);
+		const direction = () => ({ dx: square(), dLambda: kernels.doubles(n) });
+		const { constant, matrix } = inObservables(programme);
 		this.#programme = programme;
 		this.#hooks = hooks;
+		this.#kernels = kernels;
+		this.#stepLength = new StepLength(n, kernels);
 		this.#n = n;
-		const { constant, matrix } = inObservables(programme);
 		this.#constant = constant;
-		this.#c = matrix;
-		this.#lambda = new Float64Array(n);
+		this.#c = square();
+		this.#c.set(matrix);
+		this.#lambda = kernels.doubles(n);
 		this.#x = square();
 		this.#z = square();
 		this.#inverseX = square();
 		this.#inverseZ = square();
 		this.#w = square();
+		this.#factor = square();
+		this.#schur = square();
 		this.#work = square();
+		this.#diagonal = square();
+		this.#predictor = direction();
+		this.#corrected = direction();
 	}
 
 	/** Whether every cell above the diagonal is a moment of its own and nothing else is imposed. */
@@ -70,7 +92,16 @@ export class LevelOneDual {
 		return !index.includes(-1);
 	}
 
+	/** Once only: the iterates' arrays are given back when it ends. */
 	run(options: SolverOptions): { ending: Ending; iterations: number } {
+		try {
+			return this.#iterate(options);
+		} finally {
+			this.#kernels.release();
+		}
+	}
+
+	#iterate(options: SolverOptions): { ending: Ending; iterations: number } {
 		this.#begin();
 		for (let iteration = 0; ; iteration++) {
 			this.#hooks.poll();
@@ -99,9 +130,10 @@ export class LevelOneDual {
 	}
 
 	#factorX(): boolean {
-		this.#work.set(this.#x);
-		if (!factorCholesky(this.#work, this.#n)) return false;
-		invertFactor(this.#work, this.#n, this.#inverseX);
+		const n = this.#n;
+		this.#factor.set(this.#x);
+		if (!this.#kernels.factorCholesky(this.#factor, n)) return false;
+		this.#kernels.invertFactor(this.#factor, n, this.#inverseX);
 		return true;
 	}
 
@@ -109,34 +141,36 @@ export class LevelOneDual {
 		const n = this.#n;
 		for (let cell = 0; cell < n * n; cell++) this.#z[cell] = -(this.#c[cell] ?? 0);
 		for (let i = 0; i < n; i++) this.#z[i * n + i] = this.#lambda[i] ?? 0;
-		this.#work.set(this.#z);
-		if (!factorCholesky(this.#work, n)) return false;
-		invertFactor(this.#work, n, this.#inverseZ);
-		inverseFromFactor(this.#inverseZ, n, this.#w);
+		this.#factor.set(this.#z);
+		if (!this.#kernels.factorCholesky(this.#factor, n)) return false;
+		this.#kernels.invertFactor(this.#factor, n, this.#inverseZ);
+		this.#kernels.inverseFromFactor(this.#inverseZ, n, this.#w);
 		return true;
 	}
 
 	#advance(): boolean {
 		const n = this.#n;
-		const schur = new Float64Array(n * n);
 		for (let cell = 0; cell < n * n; cell++)
-			schur[cell] = (this.#w[cell] ?? 0) * (this.#x[cell] ?? 0);
-		if (!factorCholesky(schur, n)) return false;
-		const mu = dot(this.#x, this.#z) / n;
-		const predictor = this.#direction(schur, 0, null);
+			this.#schur[cell] = (this.#w[cell] ?? 0) * (this.#x[cell] ?? 0);
+		if (!this.#kernels.factorCholesky(this.#schur, n)) return false;
+		const mu = this.#kernels.dot(this.#x, this.#z) / n;
+		const predictor = this.#solve(0, null, this.#predictor);
 		this.#hooks.poll();
 		const target = this.#centring(predictor, mu) * mu;
-		const direction = this.#direction(schur, target, predictor);
+		const direction = this.#solve(target, predictor, this.#corrected);
 		this.#hooks.poll();
 		return this.#moveX(direction.dx) + this.#moveLambda(direction.dLambda) > SMALLEST_STEP;
 	}
 
-	/** dX = target W - X - sym(W D X) [- sym(W D' dX')], diag(dX) = 0, D = Diag(dLambda). */
-	#direction(schur: Float64Array, target: number, predictor: Direction | null): Direction {
+	/**
+	 * Fills `direction`: dX = target W - X - sym(W D X) [- sym(W D' dX')] with D = Diag(dLambda) such
+	 * that diag(dX) = 0.
+	 */
+	#solve(target: number, predictor: Direction | null, direction: Direction): Direction {
 		const n = this.#n;
+		const { dx, dLambda } = direction;
 		const x = this.#x;
 		const w = this.#w;
-		const dLambda = new Float64Array(n);
 		for (let i = 0; i < n; i++) {
 			let rest = target * (w[i * n + i] ?? 0) - (x[i * n + i] ?? 0);
 			if (predictor)
@@ -145,56 +179,58 @@ export class LevelOneDual {
 						(w[i * n + k] ?? 0) * (predictor.dLambda[k] ?? 0) * (predictor.dx[i * n + k] ?? 0);
 			dLambda[i] = rest;
 		}
-		solveFactored(schur, n, dLambda);
-		const scaled = new Float64Array(n * n);
+		this.#kernels.solveFactored(this.#schur, n, dLambda);
 		for (let k = 0; k < n; k++)
 			for (let j = 0; j < n; j++) {
 				const cell = k * n + j;
-				scaled[cell] = (dLambda[k] ?? 0) * (x[cell] ?? 0);
-				if (predictor)
-					scaled[cell] += (predictor.dLambda[k] ?? 0) * (predictor.dx[cell] ?? 0);
+				let value = (dLambda[k] ?? 0) * (x[cell] ?? 0);
+				if (predictor) value += (predictor.dLambda[k] ?? 0) * (predictor.dx[cell] ?? 0);
+				this.#work[cell] = value;
 			}
-		const dx = new Float64Array(n * n);
-		multiply(w, scaled, dx, n);
-		symmetrise(dx, n);
+		this.#kernels.multiply(w, this.#work, dx, n);
+		this.#kernels.symmetrise(dx, n);
 		for (let cell = 0; cell < n * n; cell++)
 			dx[cell] = target * (w[cell] ?? 0) - (x[cell] ?? 0) - (dx[cell] ?? 0);
 		for (let i = 0; i < n; i++) dx[i * n + i] = 0; // rounding must not leave the unit diagonal
-		return { dx, dLambda };
+		return direction;
 	}
 
 	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
 	#centring({ dx, dLambda }: Direction, mu: number): number {
 		const n = this.#n;
-		const stepX = Math.min(1, largestStep(this.#inverseX, dx, n));
-		const stepZ = Math.min(1, largestStep(this.#inverseZ, diagonalMatrix(dLambda), n));
-		let ahead = dot(this.#x, this.#z) + stepX * dot(dx, this.#z);
-		for (let i = 0; i < n; i++) ahead += stepZ * (dLambda[i] ?? 0); // unit diagonals
+		const stepX = Math.min(1, this.#stepLength.find(this.#inverseX, dx));
+		const stepZ = Math.min(1, this.#lambdaStep(dLambda));
+		let ahead = this.#kernels.dot(this.#x, this.#z) + stepX * this.#kernels.dot(dx, this.#z);
+		for (let i = 0; i < n; i++) ahead += stepZ * (dLambda[i] ?? 0); // X keeps its unit diagonal
 		const ratio = Math.max(0, ahead / n / mu);
 		const power = Math.max(1, 3 * Math.min(stepX, stepZ) ** 2);
 		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
 	}
 
+	#lambdaStep(dLambda: Float64Array): number {
+		for (let i = 0; i < this.#n; i++) this.#diagonal[i * this.#n + i] = dLambda[i] ?? 0;
+		return this.#stepLength.find(this.#inverseZ, this.#diagonal);
+	}
+
 	/** Returns the step taken; 0 leaves everything as it was. */
 	#moveX(dx: Float64Array): number {
-		const before = this.#x.slice();
-		const wanted = Math.min(1, STEP_FRACTION * largestStep(this.#inverseX, dx, this.#n));
+		this.#work.set(this.#x);
+		const wanted = Math.min(1, STEP_FRACTION * this.#stepLength.find(this.#inverseX, dx));
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
-			this.#x.set(before);
-			addScaled(this.#x, step, dx);
+			this.#x.set(this.#work);
+			this.#kernels.addScaled(this.#x, step, dx);
 			if (this.#factorX()) return step;
 		}
-		this.#x.set(before);
+		this.#x.set(this.#work);
 		return 0;
 	}
 
 	#moveLambda(dLambda: Float64Array): number {
 		const before = this.#lambda.slice();
-		const matrix = diagonalMatrix(dLambda);
-		const wanted = Math.min(1, STEP_FRACTION * largestStep(this.#inverseZ, matrix, this.#n));
+		const wanted = Math.min(1, STEP_FRACTION * this.#lambdaStep(dLambda));
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
 			this.#lambda.set(before);
-			addScaled(this.#lambda, step, dLambda);
+			this.#kernels.addScaled(this.#lambda, step, dLambda);
 			if (this.#factorZ()) return step;
 		}
 		this.#lambda.set(before);
@@ -210,7 +246,7 @@ export class LevelOneDual {
 			multiplier: this.#multiplierOfProjectors(),
 			rowMultipliers: empty,
 			equalityMultipliers: empty,
-			primal: this.#constant + dot(this.#c, this.#x),
+			primal: this.#constant + this.#kernels.dot(this.#c, this.#x),
 			dual: this.#constant + this.#lambda.reduce((sum, value) => sum + value, 0),
 			residual: 0
 		};
@@ -226,8 +262,7 @@ export class LevelOneDual {
 		for (let i = 1; i < n; i++) {
 			moments[index[i] ?? 0] = (1 + (x[i] ?? 0)) / 2;
 			for (let j = 1; j < i; j++)
-				moments[index[i * n + j] ?? 0] =
-					(1 + (x[i] ?? 0) + (x[j] ?? 0) + (x[i * n + j] ?? 0)) / 4;
+				moments[index[i * n + j] ?? 0] = (1 + (x[i] ?? 0) + (x[j] ?? 0) + (x[i * n + j] ?? 0)) / 4;
 		}
 		return moments;
 	}
@@ -264,13 +299,6 @@ export class LevelOneDual {
 interface Direction {
 	readonly dx: Float64Array;
 	readonly dLambda: Float64Array;
-}
-
-function diagonalMatrix(diagonal: Float64Array): Float64Array {
-	const n = diagonal.length;
-	const matrix = new Float64Array(n * n);
-	diagonal.forEach((value, i) => (matrix[i * n + i] = value));
-	return matrix;
 }
 
 /** The objective as constant + <C, G>, from coefficients of projectors: E = (1 + O) / 2. */

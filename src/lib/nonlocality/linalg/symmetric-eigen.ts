@@ -2,11 +2,14 @@
 
 const MOST_SWEEPS = 60;
 
+const MOST_LAGUERRE_STEPS = 60;
+
 /**
- * Smallest eigenvalue of a symmetric tridiagonal matrix, from below, by bisection on the number of
- * negative pivots (Sturm's theorem).
+ * Smallest eigenvalue of a symmetric tridiagonal matrix by Laguerre's method, which approaches it
+ * monotonically from below and converges cubically (Parlett, The Symmetric Eigenvalue Problem,
+ * ch. 3; derivatives of the determinant from those of the pivots).
  * @param diagonal `n` entries; @param offDiagonal `n - 1` entries; more are not looked at.
- * @param precision of the result, relative to the distances from 0 of the interval around it.
+ * @param precision where to stop: length of a step relative to the spectrum's bound
  */
 export function smallestTridiagonalEigenvalue(
 	diagonal: ArrayLike<number>,
@@ -15,36 +18,47 @@ export function smallestTridiagonalEigenvalue(
 	precision = 1e-15
 ): number {
 	let low = Infinity;
-	let high = Infinity;
+	let size = 0;
 	for (let i = 0; i < n; i++) {
 		const before = i > 0 ? Math.abs(offDiagonal[i - 1] ?? 0) : 0;
 		const after = i + 1 < n ? Math.abs(offDiagonal[i] ?? 0) : 0;
 		low = Math.min(low, (diagonal[i] ?? 0) - before - after);
-		high = Math.min(high, diagonal[i] ?? 0);
+		size = Math.max(size, Math.abs(diagonal[i] ?? 0) + before + after);
 	}
-	while (high - low > precision * (Math.abs(low) + Math.abs(high))) {
-		const middle = low + (high - low) / 2;
-		if (middle <= low || middle >= high) break;
-		if (hasEigenvalueBelow(diagonal, offDiagonal, n, middle)) high = middle;
-		else low = middle;
+	for (let step = 0; step < MOST_LAGUERRE_STEPS; step++) {
+		const length = laguerreStep(diagonal, offDiagonal, n, low);
+		if (!(length > 0)) break;
+		low += length;
+		if (length <= precision * size) break;
 	}
 	return low;
 }
 
-function hasEigenvalueBelow(
+/** From `x` below all eigenvalues; 0 when a pivot says that it is not below them. */
+function laguerreStep(
 	diagonal: ArrayLike<number>,
 	offDiagonal: ArrayLike<number>,
 	n: number,
-	shift: number
-): boolean {
-	let pivot = 1;
+	x: number
+): number {
+	let first = 0; // p'/p
+	let second = 0; // -(p'/p)'
+	let inverse = 0; // 1 / pivot
+	let u = 0; // pivot' / pivot
+	let v = 0; // pivot'' / pivot
 	for (let i = 0; i < n; i++) {
 		const off = i > 0 ? (offDiagonal[i - 1] ?? 0) : 0;
-		pivot = (diagonal[i] ?? 0) - shift - (off === 0 ? 0 : (off * off) / pivot);
-		if (pivot < 0) return true;
-		if (pivot === 0) pivot = Number.MIN_VALUE;
+		const ratio = off * off * inverse;
+		const pivot = (diagonal[i] ?? 0) - x - ratio;
+		if (!(pivot > 0)) return 0;
+		inverse = 1 / pivot;
+		v = ratio * (v - 2 * u * u) * inverse;
+		u = (ratio * u - 1) * inverse;
+		first += u;
+		second += u * u - v;
 	}
-	return false;
+	const root = Math.sqrt(Math.max(0, (n - 1) * (n * second - first * first)));
+	return n / (root - first);
 }
 
 /**

@@ -1,5 +1,6 @@
 import { addScaled, dot, largestMagnitude } from '../linalg/dense';
 import type { Kernels } from '../linalg/kernels/kernels';
+import { stepScratch } from '../linalg/kernels/plain-step';
 import {
 	addInnerProducts,
 	addRows,
@@ -9,7 +10,6 @@ import {
 	type MomentProgramme
 } from './moment-programme';
 import type { Direction, NewtonState } from './newton-system';
-import { StepLength } from './step-length';
 
 /** A primal point y with Gamma(y) > 0 and a multiplier; arrays are the solver's own, copy to keep. */
 export interface Iterate {
@@ -50,7 +50,7 @@ export class InteriorPoint implements NewtonState {
 	readonly equalityMultipliers: Float64Array;
 	readonly #programme: MomentProgramme;
 	readonly #kernels: Kernels;
-	readonly #stepLength: StepLength;
+	readonly #stepScratch: Float64Array;
 	readonly #n: number;
 	readonly #cells: Int32Array;
 	readonly #s: Float64Array;
@@ -67,7 +67,7 @@ export class InteriorPoint implements NewtonState {
 		const square = () => kernels.doubles(n * n);
 		this.#programme = programme;
 		this.#kernels = kernels;
-		this.#stepLength = new StepLength(n, kernels);
+		this.#stepScratch = kernels.doubles(stepScratch(n));
 		this.#n = n;
 		this.#cells = countCells(programme);
 		this.y = start.slice();
@@ -142,8 +142,12 @@ export class InteriorPoint implements NewtonState {
 		return products / (this.#n + this.rowSlack.length);
 	}
 
+	#largestStep(inverse: Float64Array, direction: Float64Array): number {
+		return this.#kernels.largestStep(inverse, direction, this.#stepScratch, this.#n);
+	}
+
 	multiplierStep(direction: Direction): number {
-		let step = this.#stepLength.find(this.#inverseX, direction.dx);
+		let step = this.#largestStep(this.#inverseX, direction.dx);
 		this.rowMultipliers.forEach((z, j) => {
 			const dz = direction.rowMultipliers[j] ?? 0;
 			if (dz < 0) step = Math.min(step, -z / dz);
@@ -152,7 +156,7 @@ export class InteriorPoint implements NewtonState {
 	}
 
 	slackStep(direction: Direction): number {
-		let step = this.#stepLength.find(this.#inverseS, direction.ds);
+		let step = this.#largestStep(this.#inverseS, direction.ds);
 		this.rowSlack.forEach((s, j) => {
 			const ds = direction.rowSlack[j] ?? 0;
 			if (ds < 0) step = Math.min(step, -s / ds);

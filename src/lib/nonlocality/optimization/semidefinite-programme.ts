@@ -1,9 +1,9 @@
 import { largestMagnitude } from '../linalg/dense';
 import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
+import { stepScratch } from '../linalg/kernels/plain-step';
 import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
 import { makeDirection, NewtonSystem, type Direction } from './newton-system';
-import { MOST_STEPS } from './step-length';
 
 export type { Iterate } from './interior-point';
 
@@ -26,7 +26,7 @@ export interface SolverOptions {
 function demandOf({ size: n, unknowns: m }: MomentProgramme): KernelDemand {
 	const square = (n + 3) ** 2;
 	return {
-		doubles: m * m + 30 * m + 30 * square + (MOST_STEPS + 10) * (n + 3),
+		doubles: m * m + 30 * m + 30 * square + stepScratch(n),
 		arrays: 200,
 		order: Math.max(n, m)
 	};

@@ -1,6 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { seededRandom } from '../seeded-random';
 import { makeKernels, type Kernels } from './kernels';
+import { stepScratch } from './plain-step';
 import { layOutSupports } from './supports';
 
 /** Normwise, relative: what both sides may differ by, as sums are taken in another order. */
@@ -101,19 +102,22 @@ describe('kernels in WebAssembly and in plain TypeScript agree on', () => {
 	});
 
 	test.each(SIZES)('products with vectors, n = %i', (n) => {
-		const vectors = [n, n, 2 * n, n].map((length, i) => randomMatrix(length, i));
-		const inputs = [symmetricMatrix(n, n), randomMatrix(n * n, n + 1), ...vectors];
-		expectSame(n, inputs, (kernels, arrays) => {
-			const [matrix, inverse, v, rest, scratch, out] = arrays.map((array) => array);
-			if (!matrix || !inverse || !v || !rest || !scratch || !out) return;
-			kernels.subtractProduct(matrix, v, v, rest, n);
-			for (let i = 0; i < n; i++) inverse.fill(0, i * n + i + 1, i * n + n);
-			kernels.conjugate(inverse, matrix, v, scratch, out, n);
+		const vectors = [0, 1, 2].map((i) => randomMatrix(n, i));
+		expectSame(n, [symmetricMatrix(n, n), ...vectors], (kernels, arrays) => {
+			kernels.subtractProduct(at(arrays, 0), at(arrays, 1), at(arrays, 2), at(arrays, 3), n);
 		});
-		const count = Math.min(n, 5);
-		const basis = randomMatrix(count * n, n).map((value) => value / (5 * Math.sqrt(n)));
-		expectSame(n, [basis, randomMatrix(n, n + 1)], (kernels, arrays) => {
-			kernels.orthogonalise(at(arrays, 0), count, at(arrays, 1), n);
+	});
+
+	test.each(SIZES)('the largest step, n = %i', (n) => {
+		const inputs = [positiveMatrix(n, n), new Float64Array(n * n), symmetricMatrix(n, n + 1)];
+		expectSame(n, inputs, (kernels, arrays) => {
+			const matrix = at(arrays, 0).slice();
+			kernels.factorCholesky(at(arrays, 0), n);
+			kernels.invertFactor(at(arrays, 0), n, at(arrays, 1));
+			const scratch = kernels.doubles(stepScratch(n));
+			const step = kernels.largestStep(at(arrays, 1), at(arrays, 2), scratch, n);
+			expectLargest(kernels, matrix, at(arrays, 2), n, step);
+			return Math.min(step, 1e3) / 1e3;
 		});
 	});
 
@@ -147,6 +151,23 @@ describe('kernels in WebAssembly and in plain TypeScript agree on', () => {
 		}
 	});
 });
+
+/** The matrix is still positive some per cent before the step, and no longer some after it. */
+function expectLargest(
+	kernels: Kernels,
+	matrix: Float64Array,
+	direction: Float64Array,
+	n: number,
+	step: number
+): void {
+	const positiveAfter = (length: number) => {
+		const moved = kernels.doubles(n * n);
+		moved.forEach((_, i) => (moved[i] = (matrix[i] ?? 0) + length * (direction[i] ?? 0)));
+		return kernels.factorCholesky(moved, n);
+	};
+	if (step === Infinity) expect(positiveAfter(1e6)).toBe(true);
+	else expect([positiveAfter(0.95 * step), positiveAfter(1.05 * step)]).toEqual([true, false]);
+}
 
 /** M_ij = <F_i, X F_j W> summed cell by cell, symmetrised as F_i allows. */
 function expectDefinition(

@@ -45,17 +45,18 @@ export interface Kernels {
 		rest: Float64Array,
 		n: number
 	): void;
-	/** out = L^-1 D L^-T v, `scratch` having 2 n entries. */
-	conjugate(
+	/**
+	 * Largest step t with P + t D positive semidefinite, P = L L^T, Infinity when D itself is:
+	 * estimated to a few per cent by Lanczos' method on L^-1 D L^-T (Toh, SIAM J. Optim. 13, 2002), so that
+	 * the caller still verifies the step.
+	 * @param inverse L^-1, lower triangle; @param scratch has stepScratch(n) entries
+	 */
+	largestStep(
 		inverse: Float64Array,
 		direction: Float64Array,
-		v: Float64Array,
 		scratch: Float64Array,
-		out: Float64Array,
 		n: number
-	): void;
-	/** Takes the parts along the first `count` rows of `basis` (n entries each) out of v, twice. */
-	orthogonalise(basis: Float64Array, count: number, v: Float64Array, n: number): void;
+	): number;
 	/**
 	 * M_ij = <F_i, X F_j W>, lower triangle, by rank.
 	 * After Fujisawa, Kojima, Nakata, Math. Program. 79, 235 (1997), specialised to disjoint supports:

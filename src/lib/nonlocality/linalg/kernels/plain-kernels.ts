@@ -2,6 +2,7 @@ import { factorCholesky, invertFactor, inverseFromFactor, solveFactored } from '
 import { addScaled, dot, multiply, symmetrise } from '../dense';
 import type { Kernels } from './kernels';
 import { PlainSchur } from './plain-schur';
+import { largestStep } from './plain-step';
 import type { Supports } from './supports';
 
 /** The kernels in plain TypeScript, on arrays of the ordinary heap. */
@@ -13,6 +14,7 @@ export class PlainKernels implements Kernels {
 	readonly symmetrise = symmetrise;
 	readonly factorCholesky = factorCholesky;
 	readonly solveFactored = solveFactored;
+	readonly largestStep = largestStep;
 	readonly invertFactor = invertFactor;
 	readonly inverseFromFactor = inverseFromFactor;
 	#schur: PlainSchur | null = null;
@@ -60,43 +62,6 @@ export class PlainKernels implements Kernels {
 				rest[j] = (rest[j] ?? 0) - entry * value;
 			}
 			rest[i] = (rest[i] ?? 0) - sum;
-		}
-	}
-
-	conjugate(
-		inverse: Float64Array,
-		direction: Float64Array,
-		v: Float64Array,
-		scratch: Float64Array,
-		out: Float64Array,
-		n: number
-	): void {
-		scratch.fill(0, 0, n);
-		for (let i = 0; i < n; i++) {
-			const value = v[i] ?? 0;
-			const row = i * n;
-			for (let j = 0; j <= i; j++) scratch[j] = (scratch[j] ?? 0) + value * (inverse[row + j] ?? 0);
-		}
-		for (let i = 0; i < n; i++) {
-			let sum = 0;
-			for (let j = 0; j < n; j++) sum += (direction[i * n + j] ?? 0) * (scratch[j] ?? 0);
-			scratch[n + i] = sum;
-		}
-		for (let i = 0; i < n; i++) {
-			let sum = 0;
-			for (let j = 0; j <= i; j++) sum += (inverse[i * n + j] ?? 0) * (scratch[n + j] ?? 0);
-			out[i] = sum;
-		}
-	}
-
-	/** Twice, since once loses orthogonality when the vector nearly vanishes. */
-	orthogonalise(basis: Float64Array, count: number, v: Float64Array, n: number): void {
-		for (let pass = 0; pass < 2; pass++) {
-			for (let row = 0; row < count * n; row += n) {
-				let along = 0;
-				for (let i = 0; i < n; i++) along += (v[i] ?? 0) * (basis[row + i] ?? 0);
-				for (let i = 0; i < n; i++) v[i] = (v[i] ?? 0) - along * (basis[row + i] ?? 0);
-			}
 		}
 	}
 

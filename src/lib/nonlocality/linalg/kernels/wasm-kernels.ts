@@ -24,16 +24,7 @@ interface Exports {
 	invertFactor(l: number, n: number, inverse: number): void;
 	inverseFromFactor(inverse: number, n: number, result: number): void;
 	subtractProduct(matrix: number, diagonal: number, x: number, rest: number, n: number): void;
-	conjugate(
-		inverse: number,
-		direction: number,
-		v: number,
-		first: number,
-		second: number,
-		out: number,
-		n: number
-	): void;
-	orthogonalise(basis: number, count: number, v: number, n: number): void;
+	largestStep(inverse: number, direction: number, scratch: number, n: number): number;
 	buildRows(...offsetsAndSizes: number[]): void;
 }
 
@@ -211,28 +202,13 @@ class WasmKernels implements Kernels {
 		);
 	}
 
-	conjugate(
+	largestStep(
 		inverse: Float64Array,
 		direction: Float64Array,
-		v: Float64Array,
 		scratch: Float64Array,
-		out: Float64Array,
 		n: number
-	): void {
-		const first = this.#at(scratch);
-		this.#call.conjugate(
-			this.#at(inverse),
-			this.#at(direction),
-			this.#at(v),
-			first,
-			first + 8 * n,
-			this.#at(out),
-			n
-		);
-	}
-
-	orthogonalise(basis: Float64Array, count: number, v: Float64Array, n: number): void {
-		this.#call.orthogonalise(this.#at(basis), count, this.#at(v), n);
+	): number {
+		return this.#call.largestStep(this.#at(inverse), this.#at(direction), this.#at(scratch), n);
 	}
 
 	buildSchur(

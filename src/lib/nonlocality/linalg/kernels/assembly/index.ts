@@ -2,13 +2,12 @@
 export { factorPanel, packColumns, updateColumns } from './cholesky';
 export { multiply, symmetrise, mirror } from './products';
 export { buildRows } from './schur';
+export { largestStep } from './step-length';
 export {
 	addScaled,
-	conjugate,
 	dot,
 	invertFactor,
 	inverseFromFactor,
-	orthogonalise,
 	solveFactored,
 	subtractProduct
 } from './triangular';

@@ -3,7 +3,7 @@
 import { clear } from './layout';
 
 /** to[0 .. length) += factor * from. */
-function addRow(to: usize, from: usize, factor: f64, length: i32): void {
+export function addRow(to: usize, from: usize, factor: f64, length: i32): void {
 	const f = f64x2.splat(factor);
 	const vectors = to + ((<usize>(length & ~3)) << 3);
 	while (to < vectors) {
@@ -207,15 +207,4 @@ export function conjugate(
 		store<f64>(second + ((<usize>i) << 3), dot(direction + <usize>i * stride, first, n));
 	for (let i = 0; i < n; i++)
 		store<f64>(out + ((<usize>i) << 3), dot(inverse + <usize>i * stride, second, i + 1));
-}
-
-/** Takes the parts along the first `count` rows of `basis` out of v, twice; a row has n entries. */
-export function orthogonalise(basis: usize, count: i32, v: usize, n: i32): void {
-	const stride = (<usize>n) << 3;
-	for (let pass = 0; pass < 2; pass++) {
-		for (let k = 0; k < count; k++) {
-			const row = basis + <usize>k * stride;
-			addRow(v, row, -dot(row, v, n), n);
-		}
-	}
 }

@@ -12,6 +12,8 @@ import type { MomentProblem } from './moment-problem';
 const ENTRY_BITS = 50;
 /** Coefficients over a larger common denominator get no exact certificate. */
 const MOST_DENOMINATOR_BITS = 160;
+/** Multipliers near 0 (of a constant functional) need no finer grid than 2^-160. */
+const MOST_SCALE_BITS = 160;
 /** A bound worse than the floating one by more than this (of the largest coefficient) is not worth it. */
 const NOTICEABLE = 1e-10;
 
@@ -139,7 +141,7 @@ function scaleOf(objective: RationalForm, { matrix, rows, equalities }: Multipli
 	let largest = Number.MIN_VALUE;
 	for (const list of [matrix, rows, equalities])
 		for (const value of list) largest = Math.max(largest, Math.abs(value));
-	const power = Math.min(1000, ENTRY_BITS - 1 - bits - Math.ceil(Math.log2(largest)));
+	const power = Math.min(MOST_SCALE_BITS, ENTRY_BITS - 1 - bits - Math.ceil(Math.log2(largest)));
 	const scaled = denominator << BigInt(Math.max(1, power));
 	const value = Number(scaled);
 	return Number.isFinite(value * largest) ? { denominator: scaled, value } : null;

@@ -9,12 +9,15 @@ export interface CanonicalLabelling {
 	readonly complete: boolean;
 	/** Set when incomplete: the same for equivalent graphs; different ones may share it. */
 	readonly invariant: string;
+	/**
+	 * Symmetries of the functional: generator[e] is the event that event e becomes, both as indices
+	 * into the graph's events. They generate the whole symmetry group when the search is complete.
+	 */
+	readonly generators: readonly Int32Array[];
 }
 
 /** Refinement work in units of one event of one term; about a second. */
 export const WORK_LIMIT = 1e8;
-/** Symmetries remembered for pruning. */
-const GENERATOR_LIMIT = 256;
 
 interface Leaf {
 	/** Event at each canonical position. */
@@ -66,7 +69,8 @@ class Search {
 		return {
 			relabelling: relabellingOf(this.graph, eventAt),
 			complete: this.#complete,
-			invariant: this.#invariant
+			invariant: this.#invariant,
+			generators: this.#generators
 		};
 	}
 
@@ -139,7 +143,7 @@ class Search {
 		if (order > 0 || !this.#best) return depth;
 		const symmetry = new Int32Array(eventAt.length);
 		this.#best.eventAt.forEach((e, position) => (symmetry[e] = eventAt[position] ?? 0));
-		if (this.#generators.length < GENERATOR_LIMIT) this.#generators.push(symmetry);
+		this.#generators.push(symmetry);
 		const { prefix } = this.#best;
 		let common = 0;
 		while (common < depth && prefix[common] === this.#prefix[common]) common++;

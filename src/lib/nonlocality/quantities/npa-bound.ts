@@ -8,7 +8,7 @@ import {
 import type { Functional } from '../scenario/functional';
 import { provenFeasibleValue, provenUpperBound, type Multipliers } from './guaranteed-moments';
 import { printLevel } from './moment-level';
-import type { MomentMatrix } from './moment-matrix';
+import { refuseManyMoments, type MomentMatrix } from './moment-matrix';
 import { makeMomentProblem, type MomentProblem } from './moment-problem';
 import type { Outcome } from './outcome';
 
@@ -46,6 +46,7 @@ const NEARLY = 1e-6;
 export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Control): Outcome {
 	const started = control.now();
 	const relaxation = makeMomentProblem(problem, g, () => refuseWhenCancelled(control));
+	refuseManyMoments(problem.level, relaxation.programme.unknowns);
 	const search = new BoundSearch(relaxation, control, started + 1000 * problem.seconds);
 	const run = search.run();
 	const { matrix, programme } = relaxation;

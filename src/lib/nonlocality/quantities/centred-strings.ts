@@ -29,6 +29,19 @@ export class CentredStrings {
 		});
 	}
 
+	get inputCount(): number {
+		return this.#outputs.length;
+	}
+
+	/** Centred letters of an input, and the first of them. */
+	dimensionOf(input: number): number {
+		return (this.#outputs[input] ?? 2) - 1;
+	}
+
+	firstOf(input: number): number {
+		return this.#first[input] ?? 0;
+	}
+
 	lettersOf(input: number): CentredLetters {
 		return this.#letters[input] ?? centredLetters(2);
 	}
@@ -63,8 +76,8 @@ export class CentredStrings {
 		}
 		const shorter = strings.parent(head);
 		if (last === next) this.#addProduct(shorter, tail, from + 1, weight, sums);
-		const first = this.#first[input] ?? 0;
-		const count = (this.#outputs[input] ?? 2) - 1;
+		const first = this.firstOf(input);
+		const count = this.dimensionOf(input);
 		const { products } = this.lettersOf(input);
 		const row = ((last - first) * count + (next - first)) * count;
 		for (let j = 0; j < count; j++) {
@@ -77,7 +90,7 @@ export class CentredStrings {
 	inProjectors(id: number): Combination {
 		return this.#expand(id, (input, letter) => {
 			const { outputs, weights } = this.lettersOf(input);
-			const first = this.#first[input] ?? 0;
+			const first = this.firstOf(input);
 			const row = (letter - first) * outputs;
 			const last = weights[row + outputs - 1] ?? 0;
 			return {
@@ -93,7 +106,7 @@ export class CentredStrings {
 		return this.#expand(id, (input, letter) => {
 			const { outputs, weights, products } = this.lettersOf(input);
 			const count = outputs - 1;
-			const output = letter - (this.#first[input] ?? 0);
+			const output = letter - this.firstOf(input);
 			return {
 				constant: 1 / outputs,
 				times: (place) => (weights[place * outputs + output] ?? 0) / outputs,
@@ -114,8 +127,8 @@ export class CentredStrings {
 		for (const letter of [...strings.letters(id)].reverse()) {
 			const input = strings.inputs[letter] ?? 0;
 			const { constant, times, joined } = rule(input, letter);
-			const first = this.#first[input] ?? 0;
-			const count = (this.#outputs[input] ?? 2) - 1;
+			const first = this.firstOf(input);
+			const count = this.dimensionOf(input);
 			const next = new Map<number, number>();
 			const add = (string: number, amount: number) => {
 				if (amount !== 0) next.set(string, (next.get(string) ?? 0) + amount);

@@ -7,7 +7,7 @@ export {
 	DIGEST_VERSION,
 	type CanonicalForm
 } from './scenario/equivalence';
-export { MOST_ELEMENTS, symmetryGroup, type SymmetryGroup } from './scenario/symmetry-group';
+export { symmetryGroup, type SymmetryGroup } from './scenario/symmetry-group';
 export type { Relabelling } from './scenario/relabelling';
 export { FORMAT, SolverStop } from './problem';
 export type {

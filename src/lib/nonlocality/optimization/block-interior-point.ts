@@ -7,23 +7,28 @@ import {
 	projectBlocks,
 	type BlockProgramme
 } from './block-programme';
-import { BACKTRACK, FIRST_SLACK, SMALLEST_STEP, type Iterate } from './interior-point';
+import type { Iterate } from './semidefinite-programme';
 import { addRows, evaluateRow } from './moment-programme';
-import type { Direction, NewtonState } from './newton-system';
-import { largestStep } from './step-length';
+import type { BlockDirection, BlockState } from './block-newton-system';
+import { largestStep } from './block-step-length';
+
+/** Below this step in both variables rounding has won. */
+export const SMALLEST_STEP = 1e-6;
+const BACKTRACK = 0.8;
+/** Slack given to a row that the start does not satisfy. */
+const FIRST_SLACK = 0.1;
 
 /**
  * Where the method stands on a block programme: as interior-point.ts, with X, S and W block by block
  * and the projection of X on its equalities by the Gram matrix of the B_j.
  */
-export class BlockInteriorPoint implements NewtonState {
+export class BlockInteriorPoint implements BlockState {
 	readonly y: Float64Array;
 	readonly x: Float64Array;
 	readonly w: Float64Array;
 	readonly rowSlack: Float64Array;
 	readonly rowResidual: Float64Array;
 	readonly rowMultipliers: Float64Array;
-	readonly equalityMultipliers = new Float64Array(0);
 	readonly #programme: BlockProgramme;
 	/** Rows of all blocks and of the linear block. */
 	readonly #rank: number;
@@ -104,7 +109,7 @@ export class BlockInteriorPoint implements NewtonState {
 			moments: this.y,
 			multiplier: this.x,
 			rowMultipliers: this.rowMultipliers,
-			equalityMultipliers: this.equalityMultipliers,
+			equalityMultipliers: new Float64Array(0),
 			primal: dot(this.#programme.objective, this.y),
 			dual: residuals[0] ?? 0,
 			residual: largestMagnitude(residuals.subarray(1))
@@ -125,7 +130,7 @@ export class BlockInteriorPoint implements NewtonState {
 		);
 	}
 
-	multiplierStep(direction: Direction): number {
+	multiplierStep(direction: BlockDirection): number {
 		let step = this.#blockStep(this.#inverseX, direction.dx);
 		this.rowMultipliers.forEach((z, j) => {
 			const dz = direction.rowMultipliers[j] ?? 0;
@@ -134,7 +139,7 @@ export class BlockInteriorPoint implements NewtonState {
 		return step;
 	}
 
-	slackStep(direction: Direction): number {
+	slackStep(direction: BlockDirection): number {
 		let step = this.#blockStep(this.#inverseS, direction.ds);
 		this.rowSlack.forEach((s, j) => {
 			const ds = direction.rowSlack[j] ?? 0;
@@ -143,7 +148,7 @@ export class BlockInteriorPoint implements NewtonState {
 		return step;
 	}
 
-	complementarityAfter(direction: Direction, primalStep: number, dualStep: number): number {
+	complementarityAfter(direction: BlockDirection, primalStep: number, dualStep: number): number {
 		const { dx, ds } = direction;
 		let sum =
 			dot(this.x, this.#s) +
@@ -159,7 +164,7 @@ export class BlockInteriorPoint implements NewtonState {
 	}
 
 	/** Returns the step taken; 0 leaves everything as it was. */
-	moveMultiplier(direction: Direction, wanted: number): number {
+	moveMultiplier(direction: BlockDirection, wanted: number): number {
 		const before = this.x.slice();
 		const rowsBefore = this.rowMultipliers.slice();
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
@@ -179,7 +184,7 @@ export class BlockInteriorPoint implements NewtonState {
 	}
 
 	/** c + <B, X + dX> + rows: what a full step would leave of the dual's equalities. */
-	residualsAfter(direction: Direction): Float64Array {
+	residualsAfter(direction: BlockDirection): Float64Array {
 		const residuals = this.#dualResiduals();
 		addBlockProducts(this.#programme, direction.dx, 1, residuals);
 		addRows(this.#programme.rows, direction.rowMultipliers, 1, residuals);
@@ -190,11 +195,11 @@ export class BlockInteriorPoint implements NewtonState {
 	 * Takes the rest of the rounding errors of the linear solve out of dX, so that a full step would
 	 * meet the equalities.
 	 */
-	projectDirection(direction: Direction): void {
+	projectDirection(direction: BlockDirection): void {
 		projectBlocks(this.#programme, this.residualsAfter(direction), direction.dx);
 	}
 
-	moveMoments(direction: Direction, wanted: number): number {
+	moveMoments(direction: BlockDirection, wanted: number): number {
 		const before = this.y.slice();
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
 			this.y.set(before);

@@ -2,8 +2,26 @@ import { addScaled, multiply, symmetrise } from '../linalg/dense';
 import { addBlockProducts, blocksOf, fillBlocks, type BlockProgramme } from './block-programme';
 import { BlockSchurComplement } from './block-schur-complement';
 import { addRows, evaluateRow } from './moment-programme';
-import type { Direction, NewtonState } from './newton-system';
 import { RegularisedSystem } from './regularised-system';
+
+/** Where the method stands; W = S^-1. */
+export interface BlockState {
+	readonly x: Float64Array;
+	readonly w: Float64Array;
+	readonly rowSlack: Float64Array;
+	/** rows(y) - rowSlack. */
+	readonly rowResidual: Float64Array;
+	readonly rowMultipliers: Float64Array;
+}
+
+export interface BlockDirection {
+	/** Entry 0 is 0. */
+	readonly dy: Float64Array;
+	readonly dx: Float64Array;
+	readonly ds: Float64Array;
+	readonly rowSlack: Float64Array;
+	readonly rowMultipliers: Float64Array;
+}
 
 /** The linear system of one iteration, as in newton-system.ts, block by block; no equalities. */
 export class BlockNewtonSystem {
@@ -26,7 +44,7 @@ export class BlockNewtonSystem {
 	}
 
 	/** Builds and factorises; false when the matrix is singular to working precision. */
-	prepare(state: NewtonState): boolean {
+	prepare(state: BlockState): boolean {
 		const weights = state.rowMultipliers.map((z, j) => z / (state.rowSlack[j] ?? 1));
 		this.#schur.build(state.x, state.w, weights, this.#system.matrix, this.#poll);
 		return this.#system.factorise();
@@ -53,7 +71,7 @@ export class BlockNewtonSystem {
 	}
 
 	/** @param target sigma mu; @param predictor adds Mehrotra's second-order correction. */
-	solve(state: NewtonState, target: number, predictor: Direction | null): Direction {
+	solve(state: BlockState, target: number, predictor: BlockDirection | null): BlockDirection {
 		const { objective, rows } = this.#programme;
 		const dx = state.w.map((value) => target * value);
 		if (predictor) addScaled(dx, -1, this.#scaledProduct(predictor.dx, predictor.ds, state.w));
@@ -80,8 +98,7 @@ export class BlockNewtonSystem {
 			rowMultipliers: rowFixed.map((value, j) => {
 				const z = state.rowMultipliers[j] ?? 0;
 				return value - z - (z / (state.rowSlack[j] ?? 1)) * (linear[j] ?? 0);
-			}),
-			equalityMultipliers: new Float64Array(0)
+			})
 		};
 	}
 
@@ -89,7 +106,7 @@ export class BlockNewtonSystem {
 	 * One step of iterative refinement on the linear equalities of the multiplier.
 	 * @param residuals c + <B, X + dX> + ..., what a full step along `direction` would leave.
 	 */
-	correct(state: NewtonState, direction: Direction, residuals: Float64Array): void {
+	correct(state: BlockState, direction: BlockDirection, residuals: Float64Array): void {
 		const { dy, ds } = this.#solveLinear(residuals);
 		addScaled(direction.dx, -1, this.#scaledProduct(state.x, ds, state.w));
 		addScaled(direction.dy, 1, dy);

@@ -31,9 +31,9 @@ export interface Iterate {
 
 /** Below this step in both variables rounding has won. */
 export const SMALLEST_STEP = 1e-6;
-export const BACKTRACK = 0.8;
+const BACKTRACK = 0.8;
 /** Slack given to a row that the start does not satisfy. */
-export const FIRST_SLACK = 0.1;
+const FIRST_SLACK = 0.1;
 
 /**
  * Where the interior-point method stands: y with S = Gamma(y) > 0, X > 0, the linear block, and what

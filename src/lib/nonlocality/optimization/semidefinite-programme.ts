@@ -1,7 +1,4 @@
 import { largestMagnitude } from '../linalg/dense';
-import { BlockInteriorPoint } from './block-interior-point';
-import { BlockNewtonSystem } from './block-newton-system';
-import type { BlockProgramme } from './block-programme';
 import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
 import { NewtonSystem, type Direction } from './newton-system';
@@ -21,29 +18,6 @@ export interface SolverOptions {
 	/** Relative gap and residual at which the iteration ends by itself. */
 	readonly tolerance: number;
 	readonly mostIterations: number;
-}
-
-/** What the method asks of the point where it stands, however the programme is laid out ... */
-export type MethodPoint = Pick<
-	InteriorPoint,
-	| 'begin'
-	| 'measure'
-	| 'complementarity'
-	| 'multiplierStep'
-	| 'slackStep'
-	| 'complementarityAfter'
-	| 'moveMultiplier'
-	| 'moveMoments'
-	| 'residualsAfter'
-	| 'projectDirection'
->;
-
-/** ... and of the linear system there. */
-export interface MethodNewton<Point> {
-	prepare(point: Point): boolean;
-	regularise(): boolean;
-	solve(point: Point, target: number, predictor: Direction | null): Direction;
-	correct(point: Point, direction: Direction, residuals: Float64Array): void;
 }
 
 /** Fraction of the way to the boundary that a step takes. */
@@ -73,15 +47,16 @@ const WORTHWHILE_REFINEMENT = 0.5;
  * Fujisawa, Kojima, Nakata, Yamashita, SDPA manual (2002).
  * The objective should be scaled to entries of about 1.
  */
-export class PredictorCorrector<Point extends MethodPoint> {
+export class SemidefiniteSolver {
 	readonly #hooks: SolverHooks;
-	readonly #point: Point;
-	readonly #newton: MethodNewton<Point>;
+	readonly #point: InteriorPoint;
+	readonly #newton: NewtonSystem;
 
-	constructor(point: Point, newton: MethodNewton<Point>, hooks: SolverHooks) {
+	/** @param start moments with Gamma > 0, `start[0] = 1`. */
+	constructor(programme: MomentProgramme, start: Float64Array, hooks: SolverHooks) {
 		this.#hooks = hooks;
-		this.#point = point;
-		this.#newton = newton;
+		this.#point = new InteriorPoint(programme, start);
+		this.#newton = new NewtonSystem(programme, () => hooks.poll());
 	}
 
 	run(options: SolverOptions): { ending: Ending; iterations: number } {
@@ -171,24 +146,6 @@ export class PredictorCorrector<Point extends MethodPoint> {
 			multiplier: Math.min(1, STEP_FRACTION * this.#point.multiplierStep(direction)),
 			moments: Math.min(1, STEP_FRACTION * this.#point.slackStep(direction))
 		};
-	}
-}
-
-/** The method on a moment programme. */
-export class SemidefiniteSolver extends PredictorCorrector<InteriorPoint> {
-	/** @param start moments with Gamma > 0, `start[0] = 1`. */
-	constructor(programme: MomentProgramme, start: Float64Array, hooks: SolverHooks) {
-		const newton = new NewtonSystem(programme, () => hooks.poll());
-		super(new InteriorPoint(programme, start), newton, hooks);
-	}
-}
-
-/** The method on a block programme: the iterates' matrices are its arrays of blocks. */
-export class BlockSolver extends PredictorCorrector<BlockInteriorPoint> {
-	/** @param start unknowns with B > 0, `start[0] = 1`. */
-	constructor(programme: BlockProgramme, start: Float64Array, hooks: SolverHooks) {
-		const newton = new BlockNewtonSystem(programme, () => hooks.poll());
-		super(new BlockInteriorPoint(programme, start), newton, hooks);
 	}
 }
 

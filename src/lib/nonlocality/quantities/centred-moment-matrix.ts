@@ -21,9 +21,7 @@ export interface CentredMomentMatrix {
 /** Values this small are rounding errors: the others are products of numbers of about 1. */
 const NEGLIGIBLE = 1e-13;
 
-/** Beyond this many entries the reduction would not fit in memory. */
-export class TooManyEntries extends Error {}
-
+/** @returns null when there would be more than `mostEntries`. */
 export function centredMomentMatrix(
 	parties: readonly CentredStrings[],
 	words: readonly Word[],
@@ -31,7 +29,7 @@ export function centredMomentMatrix(
 	invariants: InvariantMoments,
 	mostEntries: number,
 	poll: () => void
-): CentredMomentMatrix {
+): CentredMomentMatrix | null {
 	const tables = parties.map((party, p) => productTable(party, action, words, p));
 	const n = words.length;
 	const start = new Int32Array((n * (n + 1)) / 2 + 1);
@@ -70,7 +68,7 @@ export function centredMomentMatrix(
 			}
 			start[++cell] = moments.length;
 		}
-		if (moments.length > mostEntries) throw new TooManyEntries();
+		if (moments.length > mostEntries) return null;
 	}
 	return {
 		size: n,

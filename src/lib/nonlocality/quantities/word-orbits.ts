@@ -16,12 +16,12 @@ export interface WordOrbit {
 	readonly targets: readonly (readonly number[])[];
 }
 
-/** @throws RangeError when the words are not closed under the relabellings. */
+/** @returns null when the words are not closed under the relabellings. */
 export function wordOrbits(
 	parties: readonly CentredStrings[],
 	words: readonly Word[],
 	action: RelabellingAction
-): WordOrbit[] {
+): WordOrbit[] | null {
 	const found = new Map<number, { pattern: Pattern; words: Int32Array }>();
 	words.forEach((word, i) => {
 		const { pattern, at } = placeOfWord(parties, action, word);
@@ -45,7 +45,7 @@ export function wordOrbits(
 			const imageKey = action.keyOf(image);
 			if (members.has(imageKey)) continue;
 			const own = found.get(imageKey);
-			if (!own || own.words.includes(-1)) throw new RangeError('the words are not closed');
+			if (!own || own.words.includes(-1)) return null;
 			members.set(imageKey, {
 				pattern: image,
 				from: numbers.length,

@@ -7,6 +7,8 @@ export {
 	DIGEST_VERSION,
 	type CanonicalForm
 } from './scenario/equivalence';
+export { symmetryGroup, type SymmetryGroup } from './scenario/symmetry-group';
+export type { Relabelling } from './scenario/relabelling';
 export { FORMAT, SolverStop } from './problem';
 export type {
 	ComplexMatrix,

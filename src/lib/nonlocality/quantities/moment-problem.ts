@@ -31,7 +31,8 @@ export interface MomentProblem {
 
 /**
  * The moment-matrix relaxation of `problem` with the objective g (maximised).
- * @throws SolverStop when the level lacks a moment (naming one that has it), or past the limits.
+ * @throws SolverStop when the level lacks a moment (naming one that has it), or past the limit of
+ *   rows. How many moments a solve can have is for the solver to say.
  */
 export function makeMomentProblem(
 	problem: ProblemOf<'npa'>,
@@ -47,7 +48,7 @@ export function makeMomentProblem(
 		const row = constraintRow(matrix, constraint, place);
 		(constraint.relation === '=' ? equalities : inequalities).push(row);
 	});
-	const cache = new Map<string, number>();
+	let start: Float64Array | null = null;
 	return {
 		matrix,
 		programme: {
@@ -62,10 +63,16 @@ export function makeMomentProblem(
 		probabilities,
 		inequalities,
 		equalities,
-		start: Float64Array.from(matrix.moments, (word) =>
-			mixedStateMoment(matrix.alphabet, cache, word)
-		)
+		get start() {
+			start ??= mixedStateMoments(matrix);
+			return start;
+		}
 	};
+}
+
+function mixedStateMoments({ alphabet, moments }: MomentMatrix): Float64Array {
+	const cache = new Map<string, number>();
+	return Float64Array.from(moments, (word) => mixedStateMoment(alphabet, cache, word));
 }
 
 function linearForm(matrix: MomentMatrix, functional: Functional) {

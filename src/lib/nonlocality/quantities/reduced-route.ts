@@ -1,0 +1,70 @@
+import { addInnerProducts, addRows, countCells } from '../optimization/moment-programme';
+import type { MomentProgramme } from '../optimization/moment-programme';
+import { BlockSolver } from '../optimization/block-solver';
+import type { Iterate } from '../optimization/semidefinite-programme';
+import type { Route } from './moment-bound-search';
+import { MOST_ITERATIONS, SOLVER_TOLERANCE } from './plain-route';
+import type { SymmetryReduction } from './symmetry-reduction';
+
+/** Relative gap and residual of the reduced programme from which an iterate is worth its proof. */
+const WORTH_A_PROOF = 2e-8;
+
+/** The relaxation on its invariant moments; iterates are lifted back where they are visited. */
+export function reducedRoute(reduction: SymmetryReduction): Route {
+	const { programme, order } = reduction;
+	let lift: (() => Iterate) | null = null;
+	return {
+		method: {
+			symmetry: order,
+			blocks: programme.sizes.toSorted((a, b) => b - a),
+			invariantMoments: programme.unknowns
+		},
+		run(scaled, scale, hooks) {
+			const own = { ...programme, objective: programme.objective.map((c) => c / scale) };
+			const start = new Float64Array(programme.unknowns + 1);
+			start[0] = 1; // the maximally mixed state: every block is the unit matrix
+			const solver = new BlockSolver(own, start, {
+				poll: hooks.poll,
+				visit: (iterate) => {
+					lift = () => lifted(scaled, reduction, iterate);
+					const worth = WORTH_A_PROOF * (1 + Math.abs(iterate.primal));
+					if (Math.abs(iterate.dual - iterate.primal) + iterate.residual > worth) {
+						hooks.pass(iterate.iteration);
+						return false;
+					}
+					const visited = lift();
+					lift = null;
+					return hooks.visit(visited);
+				}
+			});
+			const end = solver.run({ tolerance: SOLVER_TOLERANCE, mostIterations: MOST_ITERATIONS });
+			if (lift) hooks.visit(lift());
+			return end;
+		},
+		unvisited: () => lift?.() ?? null
+	};
+}
+
+/** The iterate of the original programme; its multiplier meets the linear equalities there. */
+function lifted(
+	programme: MomentProgramme,
+	reduction: SymmetryReduction,
+	iterate: Iterate
+): Iterate {
+	const multiplier = reduction.liftMultiplier(iterate.multiplier);
+	const rowMultipliers = reduction.liftRowMultipliers(iterate.rowMultipliers);
+	const residuals = programme.objective.slice();
+	addInnerProducts(programme, multiplier, 1, residuals);
+	addRows(programme.rows, rowMultipliers, 1, residuals);
+	const counts = countCells(programme);
+	programme.index.forEach((moment, cell) => {
+		if (moment > 0)
+			multiplier[cell] = (multiplier[cell] ?? 0) - (residuals[moment] ?? 0) / (counts[moment] ?? 1);
+	});
+	return {
+		...iterate,
+		multiplier,
+		rowMultipliers,
+		moments: reduction.liftMoments(iterate.moments)
+	};
+}

@@ -1,8 +1,8 @@
+import { stepScratch } from '../linalg/kernels/plain-step';
 import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
 import type { Iterate } from './interior-point';
 import type { MomentProgramme } from './moment-programme';
 import type { Ending, SolverHooks, SolverOptions } from './semidefinite-programme';
-import { MOST_STEPS, StepLength } from './step-length';
 
 /** Fraction of the way to the boundary that a step takes. */
 const STEP_FRACTION = 0.95;
@@ -16,7 +16,7 @@ const DOMINANCE = 1.1;
 
 /** What the solver takes of the kernels' memory: n x n matrices, Lanczos' basis, a few vectors. */
 function demandOf(n: number): KernelDemand {
-	return { doubles: 16 * (n + 3) ** 2 + (MOST_STEPS + 20) * (n + 3), arrays: 60, order: n };
+	return { doubles: 16 * (n + 3) ** 2 + stepScratch(n) + 20 * n, arrays: 60, order: n };
 }
 
 /**
@@ -36,7 +36,7 @@ export class LevelOneDual {
 	readonly #programme: MomentProgramme;
 	readonly #hooks: SolverHooks;
 	readonly #kernels: Kernels;
-	readonly #stepLength: StepLength;
+	readonly #stepScratch: Float64Array;
 	readonly #n: number;
 	/** Value of the functional on uncorrelated coins: its constant in observables. */
 	readonly #constant: number;
@@ -66,7 +66,7 @@ export class LevelOneDual {
 		this.#programme = programme;
 		this.#hooks = hooks;
 		this.#kernels = kernels;
-		this.#stepLength = new StepLength(n, kernels);
+		this.#stepScratch = kernels.doubles(stepScratch(n));
 		this.#n = n;
 		this.#constant = constant;
 		this.#c = square();
@@ -198,7 +198,7 @@ export class LevelOneDual {
 	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
 	#centring({ dx, dLambda }: Direction, mu: number): number {
 		const n = this.#n;
-		const stepX = Math.min(1, this.#stepLength.find(this.#inverseX, dx));
+		const stepX = Math.min(1, this.#largestStep(this.#inverseX, dx));
 		const stepZ = Math.min(1, this.#lambdaStep(dLambda));
 		let ahead = this.#kernels.dot(this.#x, this.#z) + stepX * this.#kernels.dot(dx, this.#z);
 		for (let i = 0; i < n; i++) ahead += stepZ * (dLambda[i] ?? 0); // X keeps its unit diagonal
@@ -207,15 +207,19 @@ export class LevelOneDual {
 		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
 	}
 
+	#largestStep(inverse: Float64Array, direction: Float64Array): number {
+		return this.#kernels.largestStep(inverse, direction, this.#stepScratch, this.#n);
+	}
+
 	#lambdaStep(dLambda: Float64Array): number {
 		for (let i = 0; i < this.#n; i++) this.#diagonal[i * this.#n + i] = dLambda[i] ?? 0;
-		return this.#stepLength.find(this.#inverseZ, this.#diagonal);
+		return this.#largestStep(this.#inverseZ, this.#diagonal);
 	}
 
 	/** Returns the step taken; 0 leaves everything as it was. */
 	#moveX(dx: Float64Array): number {
 		this.#work.set(this.#x);
-		const wanted = Math.min(1, STEP_FRACTION * this.#stepLength.find(this.#inverseX, dx));
+		const wanted = Math.min(1, STEP_FRACTION * this.#largestStep(this.#inverseX, dx));
 		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
 			this.#x.set(this.#work);
 			this.#kernels.addScaled(this.#x, step, dx);

@@ -5,6 +5,7 @@ import { functionalOfTerms } from '../scenario/problem-terms';
 import { relabelFunctional, type Relabelling } from '../scenario/relabelling';
 import { symmetryGroup } from '../scenario/symmetry-group';
 import { functionalOfZeroSumForm, zeroSumForm } from '../scenario/zero-sum-form';
+import { LevelOneDual } from '../optimization/level-one-dual';
 import type { BlockProgramme } from '../optimization/block-programme';
 import type { MomentProblem } from './moment-problem';
 import { SymmetryReduction } from './symmetry-reduction';
@@ -25,6 +26,7 @@ export function chooseReduction(
 	poll: () => void
 ): SymmetryReduction | null {
 	const { size, unknowns } = relaxation.programme;
+	if (LevelOneDual.suits(relaxation.programme)) return null;
 	const plain = size ** 4 + unknowns ** 3 / 6;
 	if (plain < CHEAP || relaxation.equalities.length > 0) return null;
 	const group = symmetryGroup(g);

@@ -5,7 +5,7 @@ import { letterOf, makeAlphabet, type Alphabet, type Word } from './moment-words
 import { wordProducts } from './word-products';
 
 /** Named limits: past them a solve would take many minutes or more than half a gigabyte. */
-export const MOST_ROWS = 300;
+export const MOST_ROWS = 600;
 export const MOST_MOMENTS = 6000;
 
 /** The moment matrix of a level: which cell holds which moment. */

@@ -5,6 +5,7 @@ import type { DoneResult, Level, Problem } from '../nonlocality/problem';
 import { IDENTITY_MAP, evidenceOfFinding, othersOfFindings, type Finding } from './evidence';
 import { methodMatches } from './method';
 import { isWithin, sameQuantity } from './nesting';
+import { valueLabel } from './problem-labels';
 
 const r = (text: string): Rational => parseRational(text) ?? expect.fail(`${text} is no rational`);
 const SAME = { scale: ONE, shift: ZERO };
@@ -37,7 +38,10 @@ const npa = (level: Level, nonNegative = false): Problem => ({
 	level,
 	nonNegative
 });
-const seeSaw = (d: number, state: 'free' | 'maximally-entangled' = 'free'): Problem => ({
+const seeSaw = (
+	d: number,
+	state: 'free' | 'maximally-entangled' = 'free'
+): Extract<Problem, { quantity: 'see-saw' }> => ({
 	...SUBJECT,
 	quantity: 'see-saw',
 	dimension: [d, d],
@@ -208,6 +212,14 @@ describe('isWithin', () => {
 		expect(isWithin(quantum, noSignalling)).toBe(true);
 		expect(isWithin(npa(1), noSignalling)).toBe(false);
 		expect(isWithin(noSignalling, quantum)).toBe(false);
+	});
+
+	it('counts the dimension that a see-saw grows to', () => {
+		const grown = { ...seeSaw(2), grow: 8 };
+		expect(sameQuantity(grown, seeSaw(8))).toBe(true);
+		expect(isWithin(seeSaw(3), grown)).toBe(true);
+		expect(isWithin(grown, seeSaw(3))).toBe(false);
+		expect(valueLabel(grown)).toContain('in local dimension 8');
 	});
 
 	it('takes 1+AB and one operator per party for the same, positivity being implied', () => {

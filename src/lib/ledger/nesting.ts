@@ -1,4 +1,5 @@
 import type { Level, Problem } from '../nonlocality/problem';
+import { largestDimensions } from '../nonlocality/scenario/local-dimensions';
 import { isAlmostQuantum } from './problem-labels';
 
 /** The same quantity of the same functional: budgets, seeds and starts play no part. */
@@ -8,7 +9,7 @@ export function sameQuantity(a: Problem, b: Problem): boolean {
 		return sameLevel(a.level, b.level) && positivityAlike(a, b);
 	if (a.quantity === 'see-saw' && b.quantity === 'see-saw')
 		return (
-			JSON.stringify(a.dimension) === JSON.stringify(b.dimension) &&
+			JSON.stringify(dimensionsOf(a)) === JSON.stringify(dimensionsOf(b)) &&
 			JSON.stringify(a.state) === JSON.stringify(b.state)
 		);
 	if (a.quantity === 'value' && b.quantity === 'value')
@@ -50,11 +51,11 @@ type SeeSaw = Extract<Problem, { quantity: 'see-saw' }>;
 type Npa = Extract<Problem, { quantity: 'npa' }>;
 
 function seeSawWithin(a: SeeSaw, b: SeeSaw): boolean {
-	return b.state === 'free' && a.dimension.every((d, party) => d <= dimensionOf(b, party));
+	const within = dimensionsOf(b);
+	return b.state === 'free' && dimensionsOf(a).every((d, party) => d <= (within[party] ?? 0));
 }
 
-const dimensionOf = (problem: SeeSaw, party: number) =>
-	problem.dimension[party] ?? problem.dimension[0] ?? 0;
+const dimensionsOf = (problem: SeeSaw) => largestDimensions(problem, problem.outputs.length);
 
 function npaWithin(a: Npa, b: Npa): boolean {
 	const tighter = levelOrder(a.level);

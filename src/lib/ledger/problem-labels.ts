@@ -1,4 +1,5 @@
 import type { Level, Problem } from '../nonlocality/problem';
+import { largestDimensions } from '../nonlocality/scenario/local-dimensions';
 
 /** `1`, `1+AB`, `2 per party`, `the products A, B, AB`. */
 export function levelName(level: Level): string {
@@ -23,8 +24,9 @@ export function isAlmostQuantum(level: Level): boolean {
 	);
 }
 
-/** `2`, or `2 x 3` where the parties differ. */
-function dimensionName(dimension: readonly number[]): string {
+/** `2`, or `2 x 3` where the parties differ: the largest ones that are searched. */
+function dimensionName(problem: Extract<Problem, { quantity: 'see-saw' }>): string {
+	const dimension = largestDimensions(problem, problem.outputs.length);
 	return new Set(dimension).size === 1 ? String(dimension[0]) : dimension.join(' x ');
 }
 
@@ -53,8 +55,8 @@ export function valueLabel(problem: Problem): string {
 			return 'the facet test';
 		case 'see-saw':
 			return problem.state === 'maximally-entangled'
-				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem.dimension)} (best value found)`
-				: `the quantum ${extremum(problem)} in local dimension ${dimensionName(problem.dimension)} (best value found)`;
+				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem)} (best value found)`
+				: `the quantum ${extremum(problem)} in local dimension ${dimensionName(problem)} (best value found)`;
 		case 'npa': {
 			const { level, nonNegative } = problem;
 			if (isAlmostQuantum(level)) return `the almost-quantum bound (${npaName(level)})`;
@@ -79,7 +81,7 @@ export function innerLabel(problem: Problem): string {
 		case 'npa':
 			return `a feasible moment matrix of ${npaName(problem.level)}`;
 		case 'see-saw':
-			return `an explicit quantum strategy in dimension ${dimensionName(problem.dimension)}`;
+			return `an explicit quantum strategy in dimension ${dimensionName(problem)}`;
 		case 'quantum':
 			return 'an explicit quantum strategy';
 		case 'value':
@@ -130,6 +132,7 @@ export function fieldsOf(problem: Problem): {
 			fields: {
 				...sense,
 				dimension: problem.dimension,
+				...(problem.grow !== undefined && { grow: problem.grow }),
 				...(problem.state === 'maximally-entangled' ? { state: problem.state } : {})
 			}
 		};

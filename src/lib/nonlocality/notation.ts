@@ -58,6 +58,7 @@ export {
 	type Term
 } from './scenario/functional';
 export { coefficientLatex, printLatex, rationalLatex } from './scenario/latex';
+export { largestDimensions } from './scenario/local-dimensions';
 export { functionalOfTerms, termsOfFunctional } from './scenario/problem-terms';
 export { partyCount, type Event, type Scenario } from './scenario/scenario';
 export {

@@ -71,12 +71,18 @@ export type Problem = ProblemSubject &
 				readonly dimension: readonly number[];
 				readonly starts: number;
 				readonly state: 'free' | 'maximally-entangled' | readonly ComplexNumber[];
+				/** Largest local dimension to grow to. */
+				readonly grow?: number;
+				/** Where the search begins. */
+				readonly start?: QuantumStrategy;
 		  }
 		| {
 				readonly quantity: 'quantum';
 				readonly levels: readonly Level[] | null;
 				readonly dimensions: readonly number[] | null;
 				readonly gap: number;
+				/** Where the search for strategies begins. */
+				readonly start?: QuantumStrategy;
 		  }
 	);
 

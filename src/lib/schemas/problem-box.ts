@@ -1,5 +1,6 @@
 import {
 	addCoefficients,
+	behaviourOfStrategy,
 	exactCoefficient,
 	multiplyCoefficients,
 	negateCoefficient,
@@ -11,11 +12,17 @@ import {
 	type ComplexMatrix,
 	type ComplexNumber,
 	type Event,
-	type ProblemBox
+	type ProblemBox,
+	type QuantumStrategy
 } from '../nonlocality/notation';
 import { ratio } from '../nonlocality/exact/rational';
 import { ProblemError, ProblemLimitError, onField } from './problem-error';
-import { PROBLEM_LIMITS, type BoxShape, type CoefficientShape } from './problem-shape';
+import {
+	PROBLEM_LIMITS,
+	type BoxShape,
+	type CoefficientShape,
+	type StartShape
+} from './problem-shape';
 import { coefficientText, readCoefficient } from './problem-subject';
 
 type Outputs = readonly (readonly number[])[];
@@ -197,6 +204,24 @@ function readQuantum(
 	shape: StrategyShape,
 	outputs: Outputs | undefined
 ): { box: ProblemBox; outputs: Outputs } {
+	const read = readStrategy('box', shape, outputs, PROBLEM_LIMITS.dimension);
+	return { box: { kind: 'quantum', strategy: read.strategy }, outputs: read.outputs };
+}
+
+/** The strategy that a search starts from. @throws ProblemError, ProblemLimitError naming `start` */
+export function readStart(shape: StartShape, outputs: Outputs): QuantumStrategy {
+	const given = 'strategy' in shape ? shape.strategy : shape;
+	const { strategy } = readStrategy('start', given, outputs, PROBLEM_LIMITS.grow);
+	onField('start', () => behaviourOfStrategy({ outputs }, strategy));
+	return strategy;
+}
+
+function readStrategy(
+	name: string,
+	shape: StrategyShape,
+	outputs: Outputs | undefined,
+	largest: number
+): { strategy: QuantumStrategy; outputs: Outputs } {
 	const { measurements } = shape;
 	const implied = measurements.map((inputs) => inputs.map((elements) => elements.length));
 	if (
@@ -204,24 +229,24 @@ function readQuantum(
 		implied.some((inputs) => inputs.length === 0 || inputs.some((n) => n < 2))
 	)
 		throw new ProblemError(
-			'box.measurements',
+			`${name}.measurements`,
 			'must hold at least two elements for every party and input'
 		);
 	if (outputs && JSON.stringify(outputs) !== JSON.stringify(implied))
 		throw new ProblemError(
-			'box.measurements',
+			`${name}.measurements`,
 			`is for the outputs ${JSON.stringify(implied)}, not ${JSON.stringify(outputs)}`
 		);
 	const dimensions = measurements.map((inputs) => inputs[0]?.[0]?.length ?? 0);
-	if (Math.max(...dimensions) > PROBLEM_LIMITS.dimension)
+	if (Math.max(...dimensions) > largest)
 		throw new ProblemLimitError(
-			'box.measurements',
-			`matrices are at most ${PROBLEM_LIMITS.dimension} by ${PROBLEM_LIMITS.dimension}`
+			`${name}.measurements`,
+			`matrices are at most ${largest} by ${largest}`
 		);
 	const read = measurements.map((inputs, party) =>
 		inputs.map((elements, input) =>
 			elements.map((matrix, output): ComplexMatrix => {
-				const field = `box.measurements[${party}][${input}][${output}]`;
+				const field = `${name}.measurements[${party}][${input}][${output}]`;
 				const d = dimensions[party] ?? 0;
 				if (d === 0 || matrix.length !== d || matrix.some((row) => row.length !== d))
 					throw new ProblemError(
@@ -234,15 +259,12 @@ function readQuantum(
 			})
 		)
 	);
-	const state = readState('box.state', shape.state);
+	const state = readState(`${name}.state`, shape.state);
 	const size = dimensions.reduce((product, d) => product * d, 1);
 	if (state.length !== size)
 		throw new ProblemError(
-			'box.state',
+			`${name}.state`,
 			`must have ${dimensions.join(' x ')} = ${size} components, not ${state.length}`
 		);
-	return {
-		box: { kind: 'quantum', strategy: { dimensions, state, measurements: read } },
-		outputs: implied
-	};
+	return { strategy: { dimensions, state, measurements: read }, outputs: implied };
 }

@@ -3,6 +3,18 @@ import { ProblemError, ProblemLimitError, parseProblem } from './problem';
 
 const chsh = { family: { name: 'chsh' } };
 
+const seeSaw = { quantity: 'see-saw', ...chsh, dimension: 2 };
+
+/** Answers 0 always; output 1 has the given weight as well, which spoils it unless that is 0. */
+function answersZero(other: number, size = 1): object {
+	const matrix = (entry: number) =>
+		Array.from({ length: size }, (_, i) =>
+			Array.from({ length: size }, (_, j) => [i === j ? entry : 0, 0])
+		);
+	const party = [0, 1].map(() => [matrix(1), matrix(other)]);
+	return { family: 'quantum', state: [[1, 0]], measurements: [party, party] };
+}
+
 function failure(json: unknown): unknown {
 	try {
 		parseProblem(json);
@@ -97,6 +109,23 @@ describe('what is malformed names its field', () => {
 		[{ quantity: 'see-saw', ...chsh }, 'dimension', /is missing/],
 		[{ quantity: 'see-saw', ...chsh, dimension: [2] }, 'dimension', /each of the 2 parties/],
 		[{ quantity: 'see-saw', ...chsh, dimension: 2, state: [[1, 0]] }, 'state', /4 components/],
+		[{ ...seeSaw, grow: 1 }, 'grow', /at least the dimension 2/],
+		[{ ...seeSaw, grow: 'large' }, 'grow', /whole number/],
+		[{ ...seeSaw, grow: 4, state: 'maximally-entangled' }, 'grow', /state is given/],
+		[
+			{ ...seeSaw, grow: 4, constraints: [{ expression: 'A0', relation: '=', value: 0 }] },
+			'grow',
+			/constraints/
+		],
+		[{ ...seeSaw, start: { family: 'uniform' } }, 'start', /a quantum strategy such as/],
+		[{ ...seeSaw, start: answersZero(1) }, 'start', /sum to the identity/],
+		[{ ...seeSaw, start: answersZero(0, 2) }, 'start.state', /2 x 2 = 4 components, not 1/],
+		[
+			{ quantity: 'quantum', ...chsh, start: { ...answersZero(0), measurements: [] } },
+			'start.measurements',
+			/at least two elements/
+		],
+		[{ ...seeSaw, start: answersZero(0), state: 'maximally-entangled' }, 'start', /state is given/],
 		[{ quantity: 'value', ...chsh }, 'box', /is missing/],
 		[{ quantity: 'value', ...chsh, box: { '0,0|0,7': 1 } }, 'box["0,0|0,7"]', /outside/],
 		[{ quantity: 'value', ...chsh, box: { family: 'isotropic', d: 2 } }, 'box', /with its fields/],
@@ -176,6 +205,7 @@ describe('what is too large names its limit', () => {
 		[{ quantity: 'local', expression: 'A0+'.repeat(2000) }, /at most 4,000 characters/],
 		[{ quantity: 'npa', ...chsh, level: 11 }, /at most 10/],
 		[{ quantity: 'see-saw', ...chsh, dimension: 17 }, /at most 16/],
+		[{ ...seeSaw, grow: 65 }, /at most 64/],
 		[{ quantity: 'local', ...chsh, seconds: 1e6 }, /at most 3600/],
 		[{ quantity: 'value', ...chsh, box: { family: 'isotropic', d: 1000, E: 0 } }, /at most 32/]
 	])('%#', (json, message) => {

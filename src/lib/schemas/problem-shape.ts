@@ -17,6 +17,8 @@ export const PROBLEM_LIMITS = {
 	probabilities: 100_000,
 	coefficientCharacters: 1_000,
 	dimension: 16,
+	/** Largest local dimension to grow to, and of a strategy to start from. */
+	grow: 64,
 	level: 10,
 	products: 200,
 	starts: 10_000,
@@ -140,6 +142,20 @@ export const constraintShape = z.strictObject({
 	value: coefficientShape
 });
 
+/** A strategy to start from: as a box, or as results and normalised problems store it. */
+export const startShape = z.union(
+	[
+		z.strictObject({ family: z.literal('quantum'), ...strategyShape }),
+		z.strictObject({
+			kind: z.literal('quantum'),
+			strategy: z.strictObject({ dimensions: z.array(count(1)), ...strategyShape })
+		}),
+		z.strictObject({ dimensions: z.array(count(1)), ...strategyShape })
+	],
+	kind('a quantum strategy such as {"family": "quantum", "state": [...], "measurements": [...]}')
+);
+export type StartShape = z.infer<typeof startShape>;
+
 export const problemShape = z.strictObject({
 	format: z.literal(FORMAT, kind(String(FORMAT))).optional(),
 	outputs: outputsShape.optional(),
@@ -158,6 +174,7 @@ export const problemShape = z.strictObject({
 		.optional(),
 	starts: count(1).optional(),
 	grow: count(1).optional(),
+	start: startShape.optional(),
 	state: z
 		.union(
 			[z.enum(['free', 'maximally-entangled']), strategyShape.state],

@@ -2,14 +2,16 @@ import type { z } from 'zod';
 import {
 	behaviourOfStrategy,
 	behaviourOfTable,
+	largestDimensions,
 	termsOfFunctional,
 	type HybridModel,
 	type Level,
 	type Problem,
 	type ProblemBox,
-	type ProblemConstraint
+	type ProblemConstraint,
+	type QuantumStrategy
 } from '../nonlocality/notation';
-import { readBox, readState } from './problem-box';
+import { readBox, readStart, readState } from './problem-box';
 import { ProblemError, ProblemLimitError, UnsolvedQuantityError, onField } from './problem-error';
 import { PROBLEM_LIMITS, problemShape, type ProblemShape } from './problem-shape';
 import { checkOutputs, readCoefficient, readFunctional } from './problem-subject';
@@ -86,7 +88,7 @@ export function parseProblem(json: unknown): Problem {
 				nonNegative: shape.nonNegative ?? false
 			};
 		case 'see-saw':
-			return { ...common, quantity: 'see-saw', ...readSeeSaw(shape, parties) };
+			return { ...common, quantity: 'see-saw', ...readSeeSaw(shape, outputs) };
 		default:
 			return {
 				...common,
@@ -96,7 +98,8 @@ export function parseProblem(json: unknown): Problem {
 					shape.dimensions?.map((d, i) =>
 						atMost(`dimensions[${i}]`, d, PROBLEM_LIMITS.dimension)
 					) ?? null,
-				gap: shape.gap ?? PROBLEM_DEFAULTS.gap
+				gap: shape.gap ?? PROBLEM_DEFAULTS.gap,
+				...(shape.start && { start: readStart(shape.start, outputs) })
 			};
 	}
 }
@@ -239,9 +242,9 @@ function readLevel(
 	return { products: level.products };
 }
 
-function readSeeSaw(shape: ProblemShape, parties: number) {
-	if (shape.grow !== undefined) throw new UnsolvedQuantityError('see-saw with a growing dimension');
-	const { dimension, state } = shape;
+function readSeeSaw(shape: ProblemShape, outputs: Problem['outputs']) {
+	const parties = outputs.length;
+	const { dimension, state = 'free' } = shape;
 	if (dimension === undefined)
 		throw new ProblemError('dimension', 'is missing: a see-saw needs its local dimension');
 	const dimensions =
@@ -253,8 +256,8 @@ function readSeeSaw(shape: ProblemShape, parties: number) {
 		);
 	dimensions.forEach((d) => atMost('dimension', d, PROBLEM_LIMITS.dimension));
 	const starts = atMost('starts', shape.starts ?? PROBLEM_DEFAULTS.starts, PROBLEM_LIMITS.starts);
-	if (state === undefined || typeof state === 'string')
-		return { dimension: dimensions, starts, state: state ?? 'free' };
+	const common = { dimension: dimensions, starts, ...readGrowth(shape, dimensions, outputs) };
+	if (typeof state === 'string') return { ...common, state };
 	const size = dimensions.reduce((product, d) => product * d, 1);
 	const vector = readState('state', state);
 	if (vector.length !== size)
@@ -262,5 +265,35 @@ function readSeeSaw(shape: ProblemShape, parties: number) {
 			'state',
 			`must have ${dimensions.join(' x ')} = ${size} components, not ${vector.length}`
 		);
-	return { dimension: dimensions, starts, state: vector };
+	return { ...common, state: vector };
+}
+
+/** How far the strategy of a see-saw may grow, and where it starts. */
+function readGrowth(
+	{ grow, start, state = 'free', constraints = [] }: ProblemShape,
+	dimension: readonly number[],
+	outputs: Problem['outputs']
+): { grow?: number; start?: QuantumStrategy } {
+	if (state !== 'free' && (grow ?? start) !== undefined)
+		throw new ProblemError(
+			grow === undefined ? 'start' : 'grow',
+			'has no part where the state is given'
+		);
+	if (grow !== undefined) {
+		if (constraints.length > 0) throw new ProblemError('grow', 'has no part with constraints');
+		atMost('grow', grow, PROBLEM_LIMITS.grow);
+		if (grow < Math.max(...dimension))
+			throw new ProblemError('grow', `must be at least the dimension ${Math.max(...dimension)}`);
+	}
+	if (!start) return grow === undefined ? {} : { grow };
+	const strategy = readStart(start, outputs);
+	const largest = largestDimensions({ dimension, grow }, outputs.length);
+	if (strategy.dimensions.some((d, party) => d > (largest[party] ?? 0)))
+		throw new ProblemError(
+			'start',
+			`has the dimensions ${strategy.dimensions.join(' x ')}, the problem allows ${largest.join(' x ')}`,
+			null,
+			'Give a larger "dimension" or "grow".'
+		);
+	return { ...(grow !== undefined && { grow }), start: strategy };
 }

@@ -84,7 +84,8 @@ const quantumStrategy = z.strictObject({
 			kind('bases by party and input')
 		)
 		.nullable(),
-	value: number
+	value: number,
+	violation: z.number(kind('a finite number')).min(0, 'must not be negative').optional()
 });
 
 const enclosure = z.strictObject({

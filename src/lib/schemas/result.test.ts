@@ -18,6 +18,14 @@ describe('parseResult', () => {
 		{ ...chsh, quantity: 'npa', level: 1, nonNegative: true },
 		{ ...chsh, quantity: 'npa', level: '1+AB', sense: 'min' },
 		{ ...chsh, quantity: 'see-saw', dimension: 2 },
+		{
+			...chsh,
+			quantity: 'see-saw',
+			dimension: 2,
+			starts: 2,
+			constraints: [{ expression: 'A0', relation: '<=', value: 0 }]
+		},
+		{ family: { name: 'cglmp', d: 3 }, quantity: 'see-saw', dimension: 2, grow: 3, seconds: 2 },
 		{ ...chsh, quantity: 'quantum', seconds: 5 },
 		{ ...chsh, quantity: 'value', box: { family: 'uniform' } },
 		{ family: { name: 'mermin', n: 3 }, quantity: 'quantum', seconds: 5 }

@@ -4,7 +4,9 @@
  */
 import { nextDouble } from '../exact/rational';
 import type { Problem } from '../problem';
+import { constraintForm } from '../scenario/constraint-form';
 import type { Functional } from '../scenario/functional';
+import { largestDimensions } from '../scenario/local-dimensions';
 import { basisDefect, gamma, provePositive, showsItsBasis } from './measurement-defect';
 import {
 	generalProbabilities,
@@ -22,6 +24,12 @@ const WORK_LIMIT = 2 ** 31;
 /** A prescribed state must be met to this distance; what is left of it enters the allowance. */
 const STATE_TOLERANCE = 1e-9;
 
+/**
+ * A strategy counts when no constraint is violated by more than this share of its coefficients,
+ * rounding included: rounding alone leaves some 1e-13.
+ */
+const CONSTRAINT_TOLERANCE = 1e-9;
+
 interface Evaluation {
 	readonly probability: (events: Functional['terms'][number]['events']) => number;
 	/** |P as computed - P of an exact strategy| is at most this. */
@@ -30,6 +38,9 @@ interface Evaluation {
 }
 
 /**
+ * Under constraints `lower` is proved only where all are inequalities that provably hold; equations
+ * hold to rounding at best, so there the check confirms value and violation, and proves no side.
+ *
  * Proves `lower`: an exact strategy within the allowance of the given one has a value of at least
  * that. Accepts the certificate when that is no less than the value it prints.
  */
@@ -64,31 +75,78 @@ function evaluate(problem: Problem, g: Functional, certificate: StrategyCertific
 		: generalEvaluation(g, strategy);
 	if (typeof evaluation === 'string') return refuse(evaluation);
 
+	const { lower } = enclose(g, evaluation, distance);
+	if (!(lower >= certificate.value))
+		return refuse(`the strategy is proved to reach ${lower}, not ${certificate.value}`);
+	const { method } = evaluation;
+	if (problem.constraints.length === 0)
+		return { checked: true, lower, upper: null, exact: null, method };
+	const printed = certificate.violation;
+	if (typeof printed !== 'number' || !(printed >= 0))
+		return refuse('the certificate does not say how far constraints are violated');
+	const found = violationOf(problem, g, evaluation, distance);
+	if (typeof found === 'string') return refuse(found);
+	if (!(found <= printed))
+		return refuse(`constraints are proved to hold within ${found}, not within ${printed}`);
+	return found === 0
+		? { checked: true, lower, upper: null, exact: null, method: `${method}, constraints proved` }
+		: {
+				checked: true,
+				lower: null,
+				upper: null,
+				exact: null,
+				method: `${method}: it reaches ${lower} and meets the constraints within ${found}, which proves nothing on the problem itself`
+			};
+}
+
+/** Bounds on a form's value at an exact strategy within the allowance of the given one. */
+function enclose(
+	form: Functional,
+	evaluation: Evaluation,
+	distance: number
+): { lower: number; upper: number } {
 	let value = 0;
 	let weight = 0;
 	let errors = 0;
-	for (const { coefficient, events } of g.terms) {
+	for (const { coefficient, events } of form.terms) {
 		value += coefficient.value * evaluation.probability(events);
 		weight += Math.abs(coefficient.value);
 		errors += coefficient.error;
 	}
-	const sums = gamma(g.terms.length + 4);
+	const sums = gamma(form.terms.length + 4);
 	const allowance = weight * (evaluation.allowance + 2 * distance + sums) + errors;
 	// 1.01 covers the roundings of the allowance itself and the second order.
-	const lower = nextDouble(value - 1.01 * allowance, -1);
-	if (!(lower >= certificate.value))
-		return refuse(`the strategy is proved to reach ${lower}, not ${certificate.value}`);
-	return { checked: true, lower, upper: null, exact: null, method: evaluation.method };
+	return {
+		lower: nextDouble(value - 1.01 * allowance, -1),
+		upper: nextDouble(value + 1.01 * allowance, 1)
+	};
+}
+
+/** The largest violation of any constraint, 0 when all hold; in words when one is violated. */
+function violationOf(
+	problem: Problem,
+	g: Functional,
+	evaluation: Evaluation,
+	distance: number
+): number | string {
+	let worst = 0;
+	for (const [place, constraint] of problem.constraints.entries()) {
+		const { form, equality } = constraintForm(g.scenario, constraint);
+		const { lower, upper } = enclose(form, evaluation, distance);
+		const violation = equality ? Math.max(Math.abs(lower), Math.abs(upper)) : Math.max(0, upper);
+		const unit = form.terms.reduce((sum, { coefficient: c }) => sum + Math.abs(c.value), 0);
+		if (!(violation <= CONSTRAINT_TOLERANCE * Math.max(1, unit)))
+			return `constraint ${place} is violated by up to ${violation}`;
+		worst = Math.max(worst, violation);
+	}
+	return worst;
 }
 
 /** The problem's own conditions: local dimensions, and the distance to a prescribed state. */
 function prescribedDistance(problem: Problem, strategy: ReadStrategy): number | string {
 	if (problem.quantity !== 'see-saw') return 0;
 	const { dimensions } = strategy;
-	const [first] = problem.dimension;
-	const allowed = dimensions.map((_, p) =>
-		problem.dimension.length === 1 ? first : problem.dimension[p]
-	);
+	const allowed = largestDimensions(problem, dimensions.length);
 	if (dimensions.some((d, p) => d > (allowed[p] ?? 0)))
 		return `the strategy has dimensions ${dimensions.join(' x ')}, the problem allows ${allowed.join(' x ')}`;
 	if (problem.state === 'free') return 0;

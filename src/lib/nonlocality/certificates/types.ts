@@ -103,6 +103,12 @@ export interface StrategyCertificate {
 	/** `bases[party][input]` of a projective strategy, null otherwise. */
 	readonly bases: readonly (readonly OutputBasis[])[] | null;
 	readonly value: number;
+	/**
+	 * Of a problem with constraints: no constraint is violated by more, rounding included. 0: all of
+	 * them are inequalities that provably hold. Otherwise `value` is that of a strategy which meets
+	 * the constraints within this distance only, and proves nothing on the problem itself.
+	 */
+	readonly violation?: number;
 }
 
 /** A lower and an upper side, each proved on its own. */

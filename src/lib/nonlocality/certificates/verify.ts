@@ -84,6 +84,8 @@ function printedDefect(result: DoneResult, proved: Proved): string | null {
 	const { lower, upper, value, exact, tolerance } = result;
 	const slack = tolerance ?? 0;
 	const unproved = unprovedSide(result, proved);
+	const exceeded = exceededStrategy(result);
+	if (exceeded) return exceeded;
 	if (unproved) return `the ${unproved} side is printed as guaranteed, but nothing proves it`;
 	if (lower !== null && proved.lower !== null && lower > proved.lower)
 		return `the printed lower side ${lower} is above the proved ${proved.lower}`;
@@ -118,6 +120,15 @@ function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | n
 	for (const side of ['lower', 'upper'] as const)
 		if (result.guaranteed[side] && result[side] !== null && proved[side] === null) return side;
 	return null;
+}
+
+/** A strategy near its constraints proves no side, but its value is what may be printed. */
+function exceededStrategy({ problem, certificate, lower, upper }: DoneResult): string | null {
+	if (certificate?.kind !== 'quantum-strategy') return null;
+	const printed = isNegated(problem) ? (upper === null ? null : 0 - upper) : lower;
+	return printed === null || printed <= certificate.value
+		? null
+		: `the printed side is beyond the strategy's value ${certificate.value}`;
 }
 
 function turnSigns(proved: Proved): Proved {

@@ -1,7 +1,7 @@
 import { SolverStop, type Level, type ProblemOf } from '../problem';
 import type { Scenario } from '../scenario/scenario';
 import { levelWords } from './moment-level';
-import { STATE_LIMIT } from './see-saw';
+import { STATE_LIMIT } from './see-saw-dimensions';
 
 /** Rows of a moment matrix worth predicting a time for; npaBound has its own limit. */
 const ROWS_LIMIT = 600;

@@ -2,8 +2,9 @@ import type { StrategyCertificate } from '../certificates/types';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { dimensionsToTry } from './quantum-plan';
-import { partyDimensions, searchStrategies } from './see-saw';
+import { partyDimensions } from './see-saw-dimensions';
 import { StrategyGrowth } from './see-saw-growth';
+import { searchStrategies } from './strategy-search';
 
 /** Starts of the first visit to a dimension; later visits double it. */
 const FIRST_STARTS = 6;

@@ -8,7 +8,7 @@ import { termsOfFunctional } from '../scenario/problem-terms';
 import { climbChain } from './chain-climb';
 import { chainFunctional, expandChain, randomChain } from './chain-strategy';
 import { paddedStrategy } from './grown-strategy';
-import { searchStrategies } from './see-saw';
+import { searchStrategies } from './strategy-search';
 import { arrangeForSeeSaw } from './see-saw-functional';
 import { StrategyGrowth } from './see-saw-growth';
 import { guaranteedValue } from './see-saw-guarantee';

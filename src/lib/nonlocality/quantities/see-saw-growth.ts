@@ -72,6 +72,11 @@ export class StrategyGrowth {
 		this.#value = value;
 	}
 
+	/** The value of the best strategy, as computed. */
+	get value(): number {
+		return this.#value;
+	}
+
 	get tries(): number {
 		return this.#tries + (this.#chain?.starts ?? 0);
 	}

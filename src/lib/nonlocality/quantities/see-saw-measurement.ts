@@ -42,7 +42,7 @@ export function improveMeasurements(
 }
 
 /** `result[input][output]`, the last output's operator being 0; null where nothing depends on it. */
-function partyOperators(
+export function partyOperators(
 	functional: SeeSawFunctional,
 	strategy: SeeSawStrategy,
 	party: number,
@@ -134,7 +134,7 @@ function resplit(
 }
 
 /** M_kl = <v_k| matrix |v_l> over the given basis rows (the lower triangle at least). */
-function compress(
+export function compress(
 	matrix: ComplexArray,
 	basis: ComplexArray,
 	size: number,
@@ -182,7 +182,7 @@ function compress(
 }
 
 /** v_k <- sum_l w_k[l] v_l over the given rows, w_k the rows of `rotation`. */
-function rotateRows(
+export function rotateRows(
 	basis: ComplexArray,
 	size: number,
 	rows: readonly number[],

@@ -124,3 +124,36 @@ export function improveState(
 	setComplex(state, moved);
 	return values[top] ?? 0;
 }
+
+/** Entries of a state up to which its operator is written out. */
+const DENSE = 64;
+
+/** The top eigenvector of sum_j weight_j B_j; null for states of more than 64 entries. */
+export function topState(
+	functionals: readonly SeeSawFunctional[],
+	weights: readonly number[],
+	strategy: SeeSawStrategy
+): ComplexArray | null {
+	const { real } = strategy;
+	const length = strategy.state.re.length;
+	if (length > DENSE) return null;
+	const matrix = complexZeros(length * length, real);
+	for (let column = 0; column < length; column++) {
+		const unit = complexZeros(length, real);
+		unit.re[column] = 1;
+		functionals.forEach((functional, j) => {
+			const image = applyBellOperator(functional, strategy, unit);
+			for (let row = 0; row < length; row++) {
+				const at = row * length + column;
+				matrix.re[at] = (matrix.re[at] ?? 0) + (weights[j] ?? 0) * (image.re[row] ?? 0);
+				if (matrix.im && image.im)
+					matrix.im[at] = (matrix.im[at] ?? 0) + (weights[j] ?? 0) * (image.im[row] ?? 0);
+			}
+		});
+	}
+	const { values, vectors } = hermitianEigen(matrix, length);
+	let top = 0;
+	for (let i = 1; i < length; i++) if ((values[i] ?? 0) > (values[top] ?? 0)) top = i;
+	const part = (array: Float64Array) => array.slice(top * length, (top + 1) * length);
+	return { re: part(vectors.re), im: vectors.im ? part(vectors.im) : null };
+}

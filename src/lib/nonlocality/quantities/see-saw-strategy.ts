@@ -122,7 +122,7 @@ export function tidyMeasurement(measurement: Measurement, size: number): void {
 }
 
 /** Gram-Schmidt on the rows of the given length, twice: then they are orthonormal to a few roundings. */
-function orthonormalise(rows: ComplexArray, length: number): void {
+export function orthonormalise(rows: ComplexArray, length: number): void {
 	const count = rows.re.length / length;
 	for (let pass = 0; pass < 2; pass++) {
 		for (let k = 0; k < count; k++) {

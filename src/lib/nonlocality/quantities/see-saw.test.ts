@@ -9,7 +9,7 @@ import { functionalOfTerms, termsOfFunctional } from '../scenario/problem-terms'
 import { seeSaw } from './see-saw';
 import { climb } from './see-saw-climb';
 import { arrangeForSeeSaw } from './see-saw-functional';
-import { tidyStrategy } from './see-saw-guarantee';
+import { guaranteedValue, tidyStrategy } from './see-saw-guarantee';
 import { improveMeasurements } from './see-saw-measurement';
 import { strategyValue } from './see-saw-state';
 import { randomStrategy } from './see-saw-strategy';
@@ -250,12 +250,69 @@ describe('seeSaw as a search', () => {
 		expect(checkStrategy(problem, g, strategyOf(found.certificate)).checked).toBe(true);
 	});
 
-	it('obeys being told to stop, constraints and limits', () => {
+	it('obeys being told to stop, and limits', () => {
 		const { g, problem } = setUp({ name: 'chsh' }, {});
 		expect(() => seeSaw(problem, g, { ...control, shouldStop: () => true })).toThrow(SolverStop);
-		const constraints = [{ terms: problem.terms, relation: '=', value: '2' }] as const;
-		expect(() => seeSaw({ ...problem, constraints }, g, control)).toThrow(/constraints/);
 		expect(() => seeSaw({ ...problem, dimension: [65] }, g, control)).toThrow(/limit is 4096/);
+		expect(() => seeSaw({ ...problem, grow: 65 }, g, control)).toThrow(/limit is 4096/);
 		expect(() => seeSaw({ ...problem, dimension: [2, 2, 2] }, g, control)).toThrow(/3 numbers/);
+	});
+});
+
+describe('seeSaw that grows or starts from a strategy', () => {
+	const dimension = [2, 2];
+
+	it('grows past what its own dimension reaches', () => {
+		// below 0.250875384514: Pal and Vertesi, Phys. Rev. A 82, 022116 (2010)
+		const changes = { dimension, starts: 4, grow: 34, seconds: 6 };
+		const { g, problem } = setUp({ name: 'i3322' }, changes);
+		const found = seeSaw(problem, g, control, 0.2508);
+		expect(found.lower).toBeGreaterThan(0.2508 - 1e-9);
+		expect(found.lower).toBeLessThan(0.250875384514);
+		expect(found.method).toMatchObject({ grown: { dimensions: [34, 34] } });
+		const certificate = strategyOf(found.certificate);
+		const checked = checkStrategy(problem, g, certificate);
+		expect(checked).toMatchObject({ checked: true });
+		if (checked.checked) expect(checked.lower).toBeGreaterThanOrEqual(found.lower ?? Infinity);
+		// without "grow" it is no strategy of the problem
+		const qubits = setUp({ name: 'i3322' }, { dimension }).problem;
+		expect(checkStrategy(qubits, g, certificate)).toMatchObject({ checked: false });
+
+		const again = setUp({ name: 'i3322' }, { ...changes, start: certificate.strategy, seconds: 1 });
+		const resumed = seeSaw(again.problem, g, control, found.lower);
+		expect(resumed.lower).toBeGreaterThanOrEqual((found.lower ?? 0) - 1e-11);
+	});
+
+	it('begins at a stored strategy, padded to the dimension where it is smaller', () => {
+		const { g, problem } = setUp({ name: 'cglmp', d: 3 }, { dimension: [3], starts: 10 });
+		const best = seeSaw(problem, g, control);
+		const start = strategyOf(best.certificate).strategy;
+		for (const size of [3, 4]) {
+			const from = { ...problem, dimension: [size, size], starts: 1, start };
+			const found = seeSaw(from, g, control);
+			expect(found.lower).toBeGreaterThanOrEqual((best.lower ?? 0) - 1e-11);
+			expect(checkStrategy(from, g, strategyOf(found.certificate)).checked).toBe(true);
+		}
+		const small = { ...problem, dimension, start };
+		expect(() => seeSaw(small, g, control)).toThrow(/dimensions 3 x 3 exceed the problem's 2 x 2/);
+		const given = { ...problem, start, state: 'maximally-entangled' } as const;
+		expect(() => seeSaw(given, g, control)).toThrow(/start: has no part with a given state/);
+		const broken = { ...problem, start: { ...start, state: start.state.slice(1) } };
+		expect(() => seeSaw(broken, g, control)).toThrow(/start: the state has 8 entries, not 9/);
+	});
+
+	it('begins at general measurements', () => {
+		const spec = { name: 'cglmp', d: 3 } as const;
+		const { g, problem } = setUp(spec, { dimension, starts: 1 });
+		const random = seededRandom(7);
+		const kind = { real: false, general: true };
+		const certificate = guaranteedValue(
+			g,
+			randomStrategy(g.scenario.outputs, dimension, kind, random)
+		);
+		const found = seeSaw({ ...problem, start: certificate.strategy }, g, control);
+		expect(found.lower).toBeGreaterThanOrEqual(certificate.value - 1e-9);
+		expect(found.method).toMatchObject({ projective: false, bestStart: 0 });
+		expect(checkStrategy(problem, g, strategyOf(found.certificate)).checked).toBe(true);
 	});
 });

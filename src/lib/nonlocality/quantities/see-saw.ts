@@ -1,132 +1,29 @@
-import type { StrategyCertificate } from '../certificates/types';
-import { seededRandom } from '../linalg/seeded-random';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
+import { constraintForm } from '../scenario/constraint-form';
 import type { Functional } from '../scenario/functional';
+import { largestDimensions } from '../scenario/local-dimensions';
+import { givenStrategy } from './given-strategy';
 import type { Outcome } from './outcome';
-import { BudgetSpent, pollWithin } from './search-budget';
-import { climb } from './see-saw-climb';
-import { fixedState } from './see-saw-fixed-state';
-import { arrangeForSeeSaw } from './see-saw-functional';
-import { guaranteedValue } from './see-saw-guarantee';
-import { randomStrategy, type SeeSawStrategy } from './see-saw-strategy';
+import { searchUnderConstraints } from './see-saw-constrained';
+import { checkStateSize, partyDimensions } from './see-saw-dimensions';
+import { StrategyGrowth } from './see-saw-growth';
+import { searchStrategies, type SearchResult } from './strategy-search';
 
-/** Entries of the state: 64 x 64, some 50 MB of work space. */
-export const STATE_LIMIT = 4096;
-/** A gap to the target below this share of the scale is closed: the allowance is about as large. */
-const TARGET_CLOSED = 1e-11;
-
-export interface StrategySearch {
-	readonly dimensions: readonly number[];
-	readonly starts: number;
-	/** Starts of one search are the streams `firstStart`, `firstStart + 1` ... of the seed. */
-	readonly firstStart: number;
-	readonly seed: number;
-	readonly seconds: number;
-	readonly state: ProblemOf<'see-saw'>['state'];
-	/** An upper bound, or a value that is enough: no further start once it is reached. */
-	readonly target: number | null;
-	/** The best value known from elsewhere: starts that will not reach it are given up early. */
-	readonly known: number | null;
-}
-
-export interface SearchResult {
-	readonly certificate: StrategyCertificate;
-	/** As computed, before the allowance. */
-	readonly value: number;
-	readonly strategy: SeeSawStrategy;
-	readonly bestStart: number;
-	readonly startsDone: number;
-	readonly iterations: number;
-	readonly converged: boolean;
-	readonly targetReached: boolean;
-}
-
-/**
- * Best of many alternating maximisations from seeded random strategies, real and complex in turn,
- * and by twos with projective and with general measurements where there are more than two outputs. Null when the budget ended before the first step.
- * @throws SolverStop `cancelled` when told to stop, `limit` for a state of more than 4096 entries
- */
-export function searchStrategies(
-	g: Functional,
-	search: StrategySearch,
-	control: Control
-): SearchResult | null {
-	const { dimensions } = search;
-	const total = dimensions.reduce((product, d) => product * d, 1);
-	if (total > STATE_LIMIT)
-		throw new SolverStop(
-			'limit',
-			`a state in dimensions ${dimensions.join(' x ')} has ${total} entries; the limit is ${STATE_LIMIT}`
-		);
-	const functional = arrangeForSeeSaw(g);
-	const given = fixedState(search.state, dimensions);
-	const poll = pollWithin(control, search.seconds);
-	let best: Omit<
-		SearchResult,
-		'certificate' | 'startsDone' | 'targetReached' | 'iterations'
-	> | null = null;
-	let startsDone = 0;
-	let iterations = 0;
-	let targetReached = false;
-	while (startsDone < search.starts && !targetReached) {
-		const start = search.firstStart + startsDone;
-		const random = seededRandom(search.seed, start);
-		const real = start % 2 === 0 && !given?.im;
-		const kind = { real, general: start % 4 > 1 };
-		const strategy = randomStrategy(g.scenario.outputs, dimensions, kind, random);
-		if (given) strategy.state.re.set(given.re);
-		if (given?.im) strategy.state.im?.set(given.im);
-		else if (given) strategy.state.im?.fill(0);
-		let stopped = false;
-		let value: number;
-		let converged = false;
-		try {
-			const options = { moveState: given === null, random, poll };
-			const threshold = Math.max(best?.value ?? -Infinity, search.known ?? -Infinity);
-			const done = climb(functional, strategy, { ...options, best: threshold });
-			({ value, converged } = done);
-			iterations += done.iterations;
-		} catch (error) {
-			if (!(error instanceof BudgetSpent)) throw error;
-			stopped = true;
-			value = valueWhereStopped(g, strategy);
-		}
-		startsDone++;
-		if (!best || value > best.value) best = { value, strategy, bestStart: start, converged };
-		targetReached =
-			search.target !== null && best.value >= search.target - TARGET_CLOSED * functional.scale;
-		control.report({
-			stage: `see-saw, dimension ${printDimensions(dimensions)}`,
-			iteration: startsDone,
-			fraction: startsDone / search.starts,
-			lower: best.value,
-			upper: search.target
-		});
-		if (stopped) break;
-	}
-	if (!best) return null;
-	const certificate = guaranteedValue(g, best.strategy);
-	return { ...best, certificate, startsDone, iterations, targetReached };
-}
-
-function valueWhereStopped(g: Functional, strategy: SeeSawStrategy): number {
-	return guaranteedValue(g, strategy).value;
-}
-
-export function printDimensions(dimensions: readonly number[]): string {
-	const [first] = dimensions;
-	return dimensions.every((d) => d === first) ? String(first) : dimensions.join(' x ');
-}
+/** Share of the budget for starts in the given dimensions, where the strategy is to grow. */
+const START_SHARE = 0.25;
 
 /**
  * Largest value found for quantum strategies of the given local dimensions: a lower bound on the
- * quantum maximum. Measurements are projective; for the given state (`state`) only they move.
+ * quantum maximum. For the given state (`state`) only the measurements move; with `grow` the best
+ * strategy is grown up to that dimension; with `start` the search begins at that strategy.
  *
  * Guarantee: `lower` is the re-evaluated value of the strategy in the certificate, less the
- * allowance for rounding. That no better strategy exists is not claimed.
+ * allowance for rounding. That no better strategy exists is not claimed. Under constraints `lower`
+ * is guaranteed only where all of them are inequalities that provably hold: equations hold to
+ * rounding at best, so what a strategy near them reaches is numerical, with its violation beside it.
  * @param target an upper bound known already: the search ends when it is reached
- * @throws SolverStop `failed` for constraints or a state that does not fit, `limit` for a state of
- *   more than 4096 entries, `cancelled` when told to stop
+ * @throws SolverStop `failed` for a state or start that does not fit or when no strategy meets the
+ *   constraints, `limit` for a state of more than 4096 entries, `cancelled` when told to stop
  */
 export function seeSaw(
 	problem: ProblemOf<'see-saw'>,
@@ -134,27 +31,75 @@ export function seeSaw(
 	control: Control,
 	target: number | null = null
 ): Outcome {
-	if (problem.constraints.length > 0)
-		throw new SolverStop(
-			'failed',
-			'see-saw under additional constraints has no solver yet; leave out "constraints"'
-		);
-	const dimensions = partyDimensions(problem.dimension, g.scenario.outputs.length);
-	const { starts, seed, seconds, state } = problem;
-	const found = searchStrategies(
-		g,
-		{ dimensions, starts, firstStart: 0, seed, seconds, state, target, known: null },
-		control
-	);
-	if (!found) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
+	const parties = g.scenario.outputs.length;
+	const dimensions = partyDimensions(problem.dimension, parties);
+	const largest = largestDimensions(problem, parties);
+	checkStateSize(largest);
+	if (problem.grow !== undefined && (problem.state !== 'free' || problem.constraints.length > 0))
+		throw new SolverStop('failed', 'grow: has no part with a given state or with constraints');
+	const { starts, seed, seconds, state, start, grow, constraints } = problem;
+	if (start && state !== 'free')
+		throw new SolverStop('failed', 'start: has no part with a given state');
+	const from = start
+		? givenStrategy(g.scenario, start, startDimensions(start, dimensions, largest))
+		: null;
+	const common = { dimensions, starts, seed, state, from };
+	if (constraints.length > 0) {
+		const forms = constraints.map((constraint) => constraintForm(g.scenario, constraint));
+		return searchUnderConstraints(g, forms, { ...common, seconds }, control);
+	}
+	const began = control.now();
+	const search = {
+		...common,
+		// a start beyond the given dimensions is only to be grown
+		from: from?.dimensions.every((d, party) => d === dimensions[party]) ? from : null,
+		firstStart: 0,
+		seconds: grow === undefined ? seconds : START_SHARE * seconds,
+		target,
+		known: null
+	};
+	const found = searchStrategies(g, search, control);
+	if (grow === undefined) {
+		if (!found) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
+		return outcomeOf(found, dimensions);
+	}
+	const growth = new StrategyGrowth(g, { seed, largest: grow, start: from });
+	if (found) growth.growFrom(found.strategy);
+	const left = seconds - (control.now() - began) / 1000;
+	const known = found?.certificate.value ?? -Infinity;
+	const grown = left > 0 ? growth.run(left, known, control, target ?? Infinity) : null;
+	const certificate = grown ?? found?.certificate;
+	if (!certificate) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
+	const outcome = found ? outcomeOf(found, dimensions) : null;
 	return {
-		lower: found.certificate.value,
-		upper: null,
-		value: null,
-		tolerance: null,
-		optimum: found.value,
-		guaranteed: { lower: true, upper: false },
-		exact: null,
+		...plainOutcome(certificate.value, growth.value),
+		method: {
+			...(outcome?.method ?? { name: 'see-saw', dimension: dimensions }),
+			projective: certificate.projective,
+			grown: { dimensions: certificate.strategy.dimensions, tries: growth.tries }
+		},
+		certificate
+	};
+}
+
+/** A start in the given dimensions where it fits into them, else in its own, to be grown. */
+function startDimensions(
+	{ dimensions: own }: { readonly dimensions: readonly number[] },
+	dimensions: readonly number[],
+	largest: readonly number[]
+): readonly number[] {
+	if (own.every((d, party) => d <= (dimensions[party] ?? 0))) return dimensions;
+	const excess = own.find((d, party) => d > (largest[party] ?? 0));
+	if (excess === undefined) return own;
+	throw new SolverStop(
+		'failed',
+		`start: its dimensions ${own.join(' x ')} exceed the problem's ${largest.join(' x ')}`
+	);
+}
+
+function outcomeOf(found: SearchResult, dimensions: readonly number[]): Outcome {
+	return {
+		...plainOutcome(found.certificate.value, found.value),
 		method: {
 			name: 'see-saw',
 			dimension: dimensions,
@@ -169,17 +114,14 @@ export function seeSaw(
 	};
 }
 
-/** One dimension for all parties, or one per party. @throws SolverStop `failed` */
-export function partyDimensions(given: readonly number[], parties: number): number[] {
-	const list =
-		given.length === 1 ? Array.from({ length: parties }, () => given[0] ?? 1) : [...given];
-	if (list.length !== parties)
-		throw new SolverStop(
-			'failed',
-			`dimension: ${given.length} numbers for ${parties} parties; give one, or one per party`
-		);
-	const wrong = list.find((d) => !Number.isInteger(d) || d < 1);
-	if (wrong !== undefined)
-		throw new SolverStop('failed', `dimension: ${wrong} is no whole number of at least 1`);
-	return list;
+function plainOutcome(lower: number, optimum: number): Omit<Outcome, 'method' | 'certificate'> {
+	return {
+		lower,
+		upper: null,
+		value: null,
+		tolerance: null,
+		optimum,
+		guaranteed: { lower: true, upper: false },
+		exact: null
+	};
 }

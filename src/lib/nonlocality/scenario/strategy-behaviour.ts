@@ -58,7 +58,8 @@ function applyElement(
 	});
 }
 
-function strategyDefect(scenario: Scenario, strategy: QuantumStrategy): string | null {
+/** What keeps this from being a strategy for the scenario, in words; null for nothing. */
+export function strategyDefect(scenario: Scenario, strategy: QuantumStrategy): string | null {
 	const { dimensions, state, measurements } = strategy;
 	const parties = scenario.outputs.length;
 	if (dimensions.length !== parties || dimensions.some((d) => !Number.isInteger(d) || d < 1))

@@ -1,8 +1,17 @@
 import fc from 'fast-check';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { problemOn, quietControl } from '../../../tests/factories/solver-problem';
-import { exactOfDouble, parseRational, type Rational } from './exact/rational';
-import type { DoneResult, Problem, Result } from './problem';
+import {
+	CHANGES,
+	asJson,
+	asResult,
+	changed,
+	expectTrue,
+	pathsOf,
+	type Json
+} from '../../../tests/support/certificate-changes';
+import { parseRational } from './exact/rational';
+import type { DoneResult, Problem } from './problem';
 import { solve, verifyResult } from './index';
 import { familyFunctional, type FamilySpec } from './scenario/families';
 
@@ -10,51 +19,6 @@ async function solved(problem: Problem): Promise<DoneResult> {
 	const result = await solve(problem, quietControl);
 	if (result.status !== 'done') throw new Error(result.reason);
 	return result;
-}
-
-/** Any JSON: what a stored file may hold. */
-type Json = null | boolean | number | string | Json[] | { [key: string]: Json };
-
-const asJson = (value: unknown): Json => JSON.parse(JSON.stringify(value));
-const asResult = (value: Json): Result => JSON.parse(JSON.stringify(value));
-
-/** Every place in a JSON value, as its path. */
-function pathsOf(value: Json, path: (string | number)[] = []): (string | number)[][] {
-	if (value === null || typeof value !== 'object') return [path];
-	const entries = Array.isArray(value) ? [...value.entries()] : Object.entries(value);
-	return [path, ...entries.flatMap(([key, inner]) => pathsOf(inner, [...path, key]))];
-}
-
-function changed(value: Json, path: readonly (string | number)[], by: (old: Json) => Json): Json {
-	const [key, ...rest] = path;
-	if (key === undefined) return by(value);
-	const inside = (list: Json[]) =>
-		list.map((inner, i) => (i === key ? changed(inner, rest, by) : inner));
-	if (Array.isArray(value)) return inside(value);
-	if (value === null || typeof value !== 'object') return value;
-	return { ...value, [key]: changed(value[key] ?? null, rest, by) };
-}
-
-const CHANGES: readonly ((old: Json) => Json)[] = [
-	() => null,
-	() => 'x',
-	() => [],
-	() => -1,
-	(old) => (typeof old === 'number' ? old + 1 : 'Infinity'),
-	(old) => (typeof old === 'number' ? old * (1 + 1e-9) : '1e400'),
-	(old) => (typeof old === 'string' ? `-${old}` : NaN),
-	(old) => (typeof old === 'string' ? old.replace(/\d/, (d) => String((Number(d) + 1) % 10)) : 0),
-	(old) => (typeof old === 'string' ? `${old}1` : '1/3')
-];
-
-/** What is proved or printed as a number must be true of the real maximum. */
-function expectTrue(outcome: ReturnType<typeof verifyResult>, result: Result, truth: Rational) {
-	if (!outcome.checked || result.status !== 'done') return;
-	for (const { lower, upper } of [outcome, result]) {
-		if (lower !== null) expect(exactOfDouble(lower).compare(truth)).toBeLessThanOrEqual(0);
-		if (upper !== null) expect(exactOfDouble(upper).compare(truth)).toBeGreaterThanOrEqual(0);
-	}
-	if (result.exact !== null) expect(parseRational(result.exact)?.equals(truth)).toBe(true);
 }
 
 // Values: Collins et al., PRL 88, 040404 (2002); Collins, Gisin, J. Phys. A 37, 1775 (2004); Almeida
@@ -199,7 +163,9 @@ it('the README names the whole public surface, quantities and certificate kinds'
 	const readme = (await import('./README.md?raw')).default;
 	for (const name of Object.keys(surface)) expect(readme).toContain(`\`${name}`);
 	const kinds = ['deterministic-strategy', 'linear-programme', 'npa-dual', 'quantum-strategy'];
-	for (const kind of [...kinds, 'enclosure']) expect(readme).toContain(`### \`${kind}\`\n`);
-	for (const quantity of ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'])
+	for (const kind of [...kinds, 'enclosure', 'local-mixture', 'hybrid', 'facet'])
+		expect(readme).toContain(`### \`${kind}\`\n`);
+	const polytopes = ['local', 'no-signalling', 'hybrid', 'facet'];
+	for (const quantity of [...polytopes, 'value', 'npa', 'see-saw', 'quantum'])
 		expect(readme).toContain(`### \`${quantity}\`: `);
 });

@@ -36,6 +36,7 @@ export type {
 	HybridBipartition,
 	HybridCertificate,
 	LinearProgrammeCertificate,
+	LocalMixtureCertificate,
 	MomentCertificate,
 	StrategyCertificate
 } from './certificates/types';

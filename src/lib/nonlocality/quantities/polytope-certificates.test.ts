@@ -12,11 +12,11 @@ import {
 } from '../../../../tests/support/certificate-changes';
 import { parseRational } from '../exact/rational';
 import type { DoneResult, Problem } from '../problem';
-import { solve } from '../quantities/solve';
+import { solve } from './solve';
 import { parseExpression } from '../scenario/expression';
 import { familyFunctional } from '../scenario/families';
 import { termsOfFunctional } from '../scenario/problem-terms';
-import { verifyResult } from './verify';
+import { verifyResult } from '../certificates/verify';
 
 const svetlichny = problemOn('local', familyFunctional({ name: 'svetlichny', n: 3 }));
 const chsh = problemOn('local', familyFunctional({ name: 'chsh' }));

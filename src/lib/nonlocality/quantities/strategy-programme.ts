@@ -2,6 +2,7 @@ import { ZERO, type Rational } from '../exact/rational';
 import { solveExactly, type IntegerRows } from '../optimization/exact-linear-system';
 import { solveLinearProgramme } from '../optimization/linear-programme';
 import { SolverStop, type Control } from '../problem';
+import { COST_LIMIT, TOO_FAR_APART } from './no-signalling-programme';
 import type { WorkClock } from './work-clock';
 
 /** A deterministic strategy with its integer values of the objective and of every constraint. */
@@ -52,6 +53,7 @@ export async function bestMixture(
 	);
 	const scales = [1, ...sizes];
 	const largest = columns.reduce((most, c) => Math.max(most, Math.abs(Number(c.objective))), 1);
+	if (largest > COST_LIMIT) throw new SolverStop('failed', TOO_FAR_APART);
 	const scale = Math.max(1, largest / LARGEST_SIDE);
 	const width = signs.length + 1;
 	const solution = await solveLinearProgramme(

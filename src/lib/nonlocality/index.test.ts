@@ -1,9 +1,10 @@
 import fc from 'fast-check';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { problemOn, quietControl } from '../../../tests/factories/solver-problem';
+import { CHANGES, asResult, expectTrue } from '../../../tests/support/certificate-changes';
 import { asJson, changedAt, pathsOf, type Json } from '../../../tests/support/changed-json';
-import { exactOfDouble, parseRational, type Rational } from './exact/rational';
-import type { DoneResult, Problem, Result } from './problem';
+import { parseRational } from './exact/rational';
+import type { DoneResult, Problem } from './problem';
 import { solve, verifyResult } from './index';
 import { familyFunctional, type FamilySpec } from './scenario/families';
 
@@ -11,30 +12,6 @@ async function solved(problem: Problem): Promise<DoneResult> {
 	const result = await solve(problem, quietControl);
 	if (result.status !== 'done') throw new Error(result.reason);
 	return result;
-}
-
-const asResult = (value: Json): Result => JSON.parse(JSON.stringify(value));
-
-const CHANGES: readonly ((old: Json) => Json)[] = [
-	() => null,
-	() => 'x',
-	() => [],
-	() => -1,
-	(old) => (typeof old === 'number' ? old + 1 : 'Infinity'),
-	(old) => (typeof old === 'number' ? old * (1 + 1e-9) : '1e400'),
-	(old) => (typeof old === 'string' ? `-${old}` : NaN),
-	(old) => (typeof old === 'string' ? old.replace(/\d/, (d) => String((Number(d) + 1) % 10)) : 0),
-	(old) => (typeof old === 'string' ? `${old}1` : '1/3')
-];
-
-/** What is proved or printed as a number must be true of the real maximum. */
-function expectTrue(outcome: ReturnType<typeof verifyResult>, result: Result, truth: Rational) {
-	if (!outcome.checked || result.status !== 'done') return;
-	for (const { lower, upper } of [outcome, result]) {
-		if (lower !== null) expect(exactOfDouble(lower).compare(truth)).toBeLessThanOrEqual(0);
-		if (upper !== null) expect(exactOfDouble(upper).compare(truth)).toBeGreaterThanOrEqual(0);
-	}
-	if (result.exact !== null) expect(parseRational(result.exact)?.equals(truth)).toBe(true);
 }
 
 // Values: Collins et al., PRL 88, 040404 (2002); Collins, Gisin, J. Phys. A 37, 1775 (2004); Almeida
@@ -178,9 +155,11 @@ it('the README names the whole public surface, quantities and certificate kinds'
 	const surface = await import('./index');
 	const readme = (await import('./README.md?raw')).default;
 	for (const name of Object.keys(surface)) expect(readme).toContain(`\`${name}`);
-	const kinds = ['deterministic-strategy', 'linear-programme', 'npa-dual', 'npa-exact'];
-	for (const kind of [...kinds, 'quantum-strategy', 'enclosure'])
+	const moments = ['npa-dual', 'npa-exact', 'quantum-strategy', 'enclosure'];
+	const polytopes = ['deterministic-strategy', 'linear-programme', 'local-mixture'];
+	for (const kind of [...moments, ...polytopes, 'hybrid', 'facet'])
 		expect(readme).toContain(`### \`${kind}\`\n`);
-	for (const quantity of ['value', 'local', 'no-signalling', 'npa', 'see-saw', 'quantum'])
+	const exact = ['value', 'local', 'no-signalling', 'hybrid', 'facet'];
+	for (const quantity of [...exact, 'npa', 'see-saw', 'quantum'])
 		expect(readme).toContain(`### \`${quantity}\`: `);
 });

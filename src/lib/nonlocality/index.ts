@@ -39,6 +39,7 @@ export type {
 	HybridBipartition,
 	HybridCertificate,
 	LinearProgrammeCertificate,
+	LocalMixtureCertificate,
 	MomentCertificate,
 	StrategyCertificate
 } from './certificates/types';

@@ -18,7 +18,8 @@ const deterministic = z.strictObject({
 	kind: z.literal('deterministic-strategy'),
 	strategy: strategyList,
 	value: fraction.nullable(),
-	enumerated: z.string().regex(/^\d{1,200}$/, 'must be a whole number as a text')
+	enumerated: z.string().regex(/^\d{1,200}$/, 'must be a whole number as a text'),
+	complete: z.literal(false, kind('false, or left out')).optional()
 });
 
 const linearProgramme = z.strictObject({
@@ -95,6 +96,16 @@ const enclosure = z.strictObject({
 	upperLevel: levelShape.nullable()
 });
 
+const localMixture = z.strictObject({
+	kind: z.literal('local-mixture'),
+	mixture: z.array(
+		z.strictObject({ weight: fraction, strategy: strategyList }),
+		kind('a list of weighted strategies')
+	),
+	multipliers: z.array(fraction, kind('a list of fractions')),
+	value: fraction.nullable()
+});
+
 const group = z.array(place, kind('a list of parties'));
 const fractions = z.record(z.string(), fraction, kind('an object from "a,b|x,y" to a fraction'));
 const hybrid = z.strictObject({
@@ -133,13 +144,14 @@ export const certificateShape = z.discriminatedUnion(
 		exactMoments,
 		quantumStrategy,
 		enclosure,
+		localMixture,
 		hybrid,
 		facet
 	],
 	{
 		error:
 			'must be one of deterministic-strategy, linear-programme, npa-dual, npa-exact, ' +
-			'quantum-strategy, enclosure, hybrid, facet'
+			'quantum-strategy, enclosure, local-mixture, hybrid, facet'
 	}
 );
 

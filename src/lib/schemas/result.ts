@@ -32,13 +32,29 @@ export function parseResult(json: unknown): DoneResult {
 function withoutGaps(
 	certificate: z.infer<typeof resultShape>['certificate']
 ): DoneResult['certificate'] {
-	if (certificate?.kind === 'npa-dual') return moments(certificate);
-	if (certificate?.kind !== 'enclosure') return certificate;
-	if (certificate.upper?.kind !== 'npa-dual') return { ...certificate, upper: certificate.upper };
-	return { ...certificate, upper: moments(certificate.upper) };
+	switch (certificate?.kind) {
+		case 'npa-dual':
+			return moments(certificate);
+		case 'deterministic-strategy':
+			return deterministic(certificate);
+		case 'enclosure': {
+			const { lower, upper } = certificate;
+			return {
+				...certificate,
+				lower: lower?.kind === 'deterministic-strategy' ? deterministic(lower) : lower,
+				upper: upper?.kind === 'npa-dual' ? moments(upper) : upper
+			};
+		}
+		default:
+			return certificate ?? null;
+	}
 }
 
 type Read = NonNullable<z.infer<typeof resultShape>['certificate']>;
+
+function deterministic({ complete, ...rest }: Extract<Read, { kind: 'deterministic-strategy' }>) {
+	return { ...rest, ...(complete === false && { complete }) };
+}
 
 function moments({ constraintMultipliers, shift, ...rest }: Extract<Read, { kind: 'npa-dual' }>) {
 	return {

@@ -35,7 +35,8 @@ export function checkDeterministicStrategy(
 			};
 	}
 	const maximum = enumerateAgain(g);
-	if (maximum !== null && maximum.compare(value) > 0 && rational)
+	const best = certificate.complete !== false;
+	if (best && maximum !== null && maximum.compare(value) > 0 && rational)
 		return {
 			checked: false,
 			reason: `another strategy reaches ${printRational(maximum)}, more than ${printRational(value)}`
@@ -44,7 +45,7 @@ export function checkDeterministicStrategy(
 		checked: true,
 		lower: toDoubleDown(value.sub(allowance)),
 		upper: maximum === null ? null : toDoubleUp(maximum.add(allowance)),
-		exact: rational && maximum !== null ? printRational(value) : null,
+		exact: rational && maximum?.equals(value) ? printRational(value) : null,
 		method:
 			maximum === null
 				? 'value of the strategy recomputed; only the lower side is checked, the enumeration is too large to repeat here'

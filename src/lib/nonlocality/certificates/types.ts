@@ -9,6 +9,25 @@ export interface DeterministicCertificate {
 	readonly value: string | null;
 	/** How many strategies the enumeration covered (decimal string). */
 	readonly enumerated: string;
+	/** False when the budget ended before the enumeration: a lower side only. */
+	readonly complete?: false;
+}
+
+/** The local maximum under linear constraints, form_k - value_k `=`, `<=` or `>=` 0. */
+export interface LocalMixtureCertificate {
+	readonly kind: 'local-mixture';
+	/** Deterministic strategies with weights (fractions, sum 1) that together meet the constraints. */
+	readonly mixture: readonly {
+		readonly weight: string;
+		readonly strategy: readonly (readonly number[])[];
+	}[];
+	/**
+	 * A fraction m_k per constraint: >= 0 for `<=`, <= 0 for `>=`, of any sign for `=`. The upper side
+	 * is the local maximum of g - sum_k m_k (form_k - value_k).
+	 */
+	readonly multipliers: readonly string[];
+	/** The maximum as an exact rational, or null where the two sides do not meet exactly. */
+	readonly value: string | null;
 }
 
 /**
@@ -180,6 +199,7 @@ export type Certificate =
 	| ExactMomentCertificate
 	| StrategyCertificate
 	| EnclosureCertificate
+	| LocalMixtureCertificate
 	| HybridCertificate
 	| FacetCertificate;
 

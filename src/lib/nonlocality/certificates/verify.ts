@@ -12,6 +12,7 @@ import { checkExactMoments } from './check-exact-moments';
 import { checkFacet } from './check-facet';
 import { checkHybrid } from './check-hybrid';
 import { checkLinearProgramme } from './check-linear-programme';
+import { checkLocalMixture } from './check-local-mixture';
 import { checkMomentCertificate } from './check-moments';
 import { checkStrategy } from './check-quantum-strategy';
 import { checkValue } from './check-value';
@@ -48,6 +49,9 @@ function checkCertificate(
 			if (problem.quantity === 'local' && problem.constraints.length > 0)
 				return refuse('a strategy alone proves nothing on the maximum under constraints');
 			if (problem.quantity === 'local') return checkDeterministicStrategy(g, certificate);
+			break;
+		case 'local-mixture':
+			if (problem.quantity === 'local') return checkLocalMixture(problem, g, certificate);
 			break;
 		case 'linear-programme':
 			if (problem.quantity === 'no-signalling')

@@ -7,6 +7,7 @@ import {
 } from '../../../../tests/factories/random-functional';
 import { lehmer, problemOn, quietControl } from '../../../../tests/factories/solver-problem';
 import { checkDeterministicStrategy } from '../certificates/check-deterministic-strategy';
+import { verifyResult } from '../certificates/verify';
 import { parseCoefficient } from '../exact/expression';
 import { ratio } from '../exact/rational';
 import { SolverStop } from '../problem';
@@ -176,7 +177,7 @@ describe('localMaximum', () => {
 		expect(() => maximumOf(f)).toThrow(/134217728 .* limit of 67108864/);
 	});
 
-	it('stops when told to, and when its time is over', async () => {
+	it('stops when told to, and says what it knows when its time is over', async () => {
 		const outputs = [Array<number>(24).fill(2), Array<number>(24).fill(2)];
 		const f = randomFunctional(outputs, 3, lehmer(1));
 		const start = performance.now();
@@ -187,6 +188,14 @@ describe('localMaximum', () => {
 		expect(stopped).toMatchObject({ status: 'cancelled' });
 		expect(performance.now() - start).toBeLessThan(400);
 		const late = await solve(problemOn('local', f, { seconds: 0.05 }), quietControl);
-		expect(late).toMatchObject({ status: 'limit', reason: 'the budget of 0.05 s was used up' });
+		expect(late).toMatchObject({
+			status: 'done',
+			guaranteed: { lower: true, upper: false },
+			upper: null,
+			value: null,
+			exact: null,
+			method: { strategies: 2 ** 24, ended: 'the budget was used up' }
+		});
+		expect(verifyResult(late)).toMatchObject({ checked: true, upper: null });
 	});
 });

@@ -1,19 +1,13 @@
-import {
-	printRational,
-	ratio,
-	toDouble,
-	toDoubleDown,
-	toDoubleUp,
-	type Rational
-} from '../exact/rational';
+import { printRational, ratio, toDouble, toDoubleDown, toDoubleUp } from '../exact/rational';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { enumerateStrategies } from './enumerate-strategies';
+import { enumerateStrategies, type BestStrategy } from './enumerate-strategies';
 import type { Outcome } from './outcome';
 import { strategyTensor, type StrategyTensor } from './strategy-tensor';
+import { wholeStrategy } from './whole-strategy';
 import { WorkClock } from './work-clock';
 
-/** Strategies enumerated at most: 2^26, some 10 s for two parties with ten inputs. */
+/** Strategies enumerated at most: 2^26, some 8 s for two parties with 26 inputs of two outputs. */
 export const STRATEGY_LIMIT = 2 ** 26;
 
 /**
@@ -23,8 +17,9 @@ export const STRATEGY_LIMIT = 2 ** 26;
  *
  * Guarantee: exact for rational coefficients (`exact` set). Otherwise the coefficients are rounded
  * to a common grid, the maximum is exact for those, and both sides carry the sum of the rounding
- * errors, rounded outward.
- * @throws SolverStop `limit` beyond 2^26 enumerated strategies, or when told to stop.
+ * errors, rounded outward. When the budget ends first, the best strategy met is the lower side and
+ * there is no upper one.
+ * @throws SolverStop `limit` beyond 2^26 enumerated strategies, `cancelled` when told to stop
  * @see Fine, Phys. Rev. Lett. 48, 291 (1982); Werner and Wolf, Phys. Rev. A 64, 032112 (2001)
  */
 export function localMaximum(
@@ -32,71 +27,83 @@ export function localMaximum(
 	functional: Functional,
 	control: Control
 ): Outcome {
-	if (problem.constraints.length > 0)
-		throw new SolverStop(
-			'failed',
-			'the local maximum under additional constraints has no solver yet; leave out "constraints"'
-		);
 	const tensor = strategyTensor(functional);
-	if (tensor.count > STRATEGY_LIMIT)
-		throw new SolverStop(
-			'limit',
-			`${tensor.count} deterministic strategies would have to be enumerated, more than the limit of ${STRATEGY_LIMIT}`
-		);
+	refuseTooMany(tensor);
 	const clock = new WorkClock(control, problem.seconds);
-	const best = enumerateStrategies(tensor, (enumerated) => {
-		clock.check();
-		control.report({
-			stage: 'local strategies',
-			iteration: enumerated,
-			fraction: enumerated / tensor.count,
-			lower: null,
-			upper: null
+	let enumerated = tensor.count;
+	let best: BestStrategy;
+	try {
+		best = enumerateStrategies(tensor, (steps, bestSoFar) => {
+			if (clock.left === 0 && !control.shouldStop()) throw new BudgetSpent(steps, bestSoFar());
+			clock.check();
+			reportProgress(control, 'local strategies', steps, tensor.count);
 		});
-	});
-	const value = ratio(best.value, tensor.denominator);
-	const strategy = wholeStrategy(functional, tensor, best.digits);
-	return localOutcome(value, tensor, strategy);
+	} catch (error) {
+		if (!(error instanceof BudgetSpent)) throw error;
+		({ enumerated, best } = error);
+	}
+	return localOutcome(functional, tensor, best, enumerated);
 }
 
-function localOutcome(value: Rational, tensor: StrategyTensor, strategy: number[][]): Outcome {
-	const exact = tensor.allowance.n === 0n ? printRational(value) : null;
-	const lower = toDoubleDown(value.sub(tensor.allowance));
-	const upper = toDoubleUp(value.add(tensor.allowance));
+/** The budget ended in the midst of an enumeration. */
+class BudgetSpent extends Error {
+	constructor(
+		readonly enumerated: number,
+		readonly best: BestStrategy
+	) {
+		super();
+	}
+}
+
+/** @throws SolverStop `limit` with the figure */
+export function refuseTooMany({ count }: StrategyTensor): void {
+	if (count > STRATEGY_LIMIT)
+		throw new SolverStop(
+			'limit',
+			`${count} deterministic strategies would have to be enumerated, more than the limit of ${STRATEGY_LIMIT}`
+		);
+}
+
+export function reportProgress(
+	control: Control,
+	stage: string,
+	iteration: number,
+	total: number
+): void {
+	const fraction = total > 0 ? Math.min(1, iteration / total) : null;
+	control.report({ stage, iteration, fraction, lower: null, upper: null });
+}
+
+function localOutcome(
+	functional: Functional,
+	tensor: StrategyTensor,
+	best: BestStrategy,
+	enumerated: number
+): Outcome {
+	const value = ratio(best.value, tensor.denominator);
+	const rational = tensor.allowance.n === 0n ? printRational(value) : null;
+	const complete = enumerated === tensor.count;
+	const exact = complete ? rational : null;
 	return {
-		lower,
-		upper,
-		value: toDouble(value),
-		tolerance: exact === null ? toDoubleUp(tensor.allowance) : null,
+		lower: toDoubleDown(value.sub(tensor.allowance)),
+		upper: complete ? toDoubleUp(value.add(tensor.allowance)) : null,
+		value: complete ? toDouble(value) : null,
+		tolerance: complete && exact === null ? toDoubleUp(tensor.allowance) : null,
 		optimum: null,
-		guaranteed: { lower: true, upper: true },
+		guaranteed: { lower: true, upper: complete },
 		exact,
 		method: {
 			name: 'enumeration of deterministic strategies',
-			enumerated: tensor.count,
+			enumerated,
+			...(complete ? {} : { strategies: tensor.count, ended: 'the budget was used up' }),
 			bestReplyOfParty: tensor.parties.at(-1)?.party ?? 0
 		},
 		certificate: {
 			kind: 'deterministic-strategy',
-			strategy,
-			value: exact,
-			enumerated: String(tensor.count)
+			strategy: wholeStrategy(functional, tensor, best.digits),
+			value: rational,
+			enumerated: String(enumerated),
+			...(complete ? {} : { complete: false })
 		}
 	};
-}
-
-/** Output 0 for every input on which the functional does not depend. */
-function wholeStrategy(
-	functional: Functional,
-	tensor: StrategyTensor,
-	digits: readonly (readonly number[])[]
-): number[][] {
-	const strategy = functional.scenario.outputs.map((counts) => counts.map(() => 0));
-	tensor.parties.forEach(({ party, inputs }, k) => {
-		inputs.forEach((input, i) => {
-			const row = strategy[party];
-			if (row) row[input] = digits[k]?.[i] ?? 0;
-		});
-	});
-	return strategy;
 }

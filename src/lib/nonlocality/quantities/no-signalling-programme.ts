@@ -20,6 +20,11 @@ import type { WorkClock } from './work-clock';
 /** Larger costs are scaled down for the simplex method; multipliers are scaled back. */
 const LARGEST_COST = 2 ** 20;
 
+/** Largest coefficient once all are integers: a double holds no more. */
+export const COST_LIMIT = 1e300;
+export const TOO_FAR_APART =
+	'the coefficients are too far apart for the linear programme: as integers they have more than 300 digits';
+
 export interface PolytopeMaximum {
 	readonly behaviour: ExactBehaviour;
 	readonly multipliers: ExactMultipliers;
@@ -38,6 +43,7 @@ export async function maximiseOverPolytope(
 	control: Control
 ): Promise<PolytopeMaximum> {
 	const largest = objective.costs.reduce((m, c) => Math.max(m, Math.abs(Number(c))), 0);
+	if (largest > COST_LIMIT) throw new SolverStop('failed', TOO_FAR_APART);
 	const scale = largest > LARGEST_COST ? largest / LARGEST_COST : 1;
 	const solution = await solveLinearProgramme(
 		programmeOf(polytope, objective, scale),

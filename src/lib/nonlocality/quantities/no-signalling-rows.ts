@@ -1,8 +1,7 @@
 import { SolverStop, type ProblemConstraint } from '../problem';
-import { integerFunctional } from '../scenario/fixed-point';
-import { collinsGisinForm, eventsKey, isRational } from '../scenario/functional';
-import { functionalOfTerms } from '../scenario/problem-terms';
+import { eventsKey } from '../scenario/functional';
 import type { Event, Scenario } from '../scenario/scenario';
+import { integerConstraints } from './integer-constraints';
 
 /**
  * A row P(a|x) >= 0, or a constraint, in Collins-Gisin coordinates: constant + sum of
@@ -116,9 +115,6 @@ function combine(
 	});
 }
 
-/** Larger coefficients of a constraint would not be exact on their way through doubles. */
-const LARGEST_COEFFICIENT = 2n ** 40n;
-
 /**
  * Adds the problem's linear constraints as rows, an equality as two.
  * @throws SolverStop `failed` for an irrational constraint or one with very long coefficients
@@ -128,30 +124,22 @@ export function withConstraints(
 	scenario: Scenario,
 	constraints: readonly ProblemConstraint[]
 ): NoSignallingRows {
-	const rows = constraints.flatMap(({ terms, relation, value }, index) => {
-		const form = collinsGisinForm(
-			functionalOfTerms(scenario, [...terms, [`-(${value})`, []] as const])
-		);
-		const integers = integerFunctional(form);
-		const long = integers.terms.some(({ coefficient: c }) => c * c > LARGEST_COEFFICIENT ** 2n);
-		if (!isRational(form) || long || integers.denominator > LARGEST_COEFFICIENT)
-			throw new SolverStop(
-				'failed',
-				`constraint ${index} needs rational coefficients of at most 12 digits`
-			);
-		const sides = relation === '=' ? (['>=', '<='] as const) : [relation];
-		return sides.map((side): PolytopeRow => {
-			const sign = side === '>=' ? 1 : -1;
-			let constant = 0;
-			const entries: [number, number][] = [];
-			for (const { coefficient, events } of integers.terms) {
-				const column = polytope.columnOf.get(eventsKey(events));
-				if (column === undefined) constant = sign * Number(coefficient);
-				else entries.push([column, sign * Number(coefficient)]);
-			}
-			const scale = integers.denominator;
-			return { key: `constraint ${index} ${side}`, constant, entries, scale };
-		});
-	});
+	const rows = integerConstraints(scenario, constraints).flatMap(
+		({ relation, integers }, index) => {
+			const sides = relation === '=' ? (['>=', '<='] as const) : [relation];
+			return sides.map((side): PolytopeRow => {
+				const sign = side === '>=' ? 1 : -1;
+				let constant = 0;
+				const entries: [number, number][] = [];
+				for (const { coefficient, events } of integers.terms) {
+					const column = polytope.columnOf.get(eventsKey(events));
+					if (column === undefined) constant = sign * Number(coefficient);
+					else entries.push([column, sign * Number(coefficient)]);
+				}
+				const scale = integers.denominator;
+				return { key: `constraint ${index} ${side}`, constant, entries, scale };
+			});
+		}
+	);
 	return { ...polytope, rows: [...polytope.rows, ...rows] };
 }

@@ -10,6 +10,7 @@ import {
 } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { functionalToMaximise, turnsSigns } from '../scenario/problem-functional';
+import { constrainedLocalMaximum } from './constrained-local-maximum';
 import { facetTest } from './facet-test';
 import { hybridMaximum } from './hybrid-maximum';
 import { localMaximum } from './local-maximum';
@@ -75,7 +76,9 @@ async function dispatch(problem: Problem, g: Functional, control: Control): Prom
 		case 'value':
 			return boxValue(problem, g);
 		case 'local':
-			return localMaximum(problem, g, control);
+			return problem.constraints.length > 0
+				? constrainedLocalMaximum(problem, g, control)
+				: localMaximum(problem, g, control);
 		case 'no-signalling':
 			return noSignallingMaximum(problem, g, control);
 		case 'hybrid':

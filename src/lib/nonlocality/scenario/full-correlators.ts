@@ -13,9 +13,8 @@ export function partialMeasurement(functional: Functional): string | null {
 	const block = zeroSumForm(functional).blocks.find((b) => b.measurements.length < parties);
 	if (!block) return null;
 	const where = block.measurements.map(([p, x]) => `input ${x} of party ${p}`).join(' and ');
-	const what = block.measurements.length === 1 ? 'that party' : 'those parties';
 	return (
-		`the functional contains a marginal of ${what} alone (${where}), which is not defined when ` +
+		`the functional contains a marginal (${where}, without the others), which is not defined when ` +
 		'parties of a group signal to each other; take the model "no-signalling", or a functional of ' +
 		'correlators of all parties'
 	);

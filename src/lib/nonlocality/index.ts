@@ -1,5 +1,6 @@
 /** The public surface: solvers, checks and canonical forms, for the server, threads and commands. */
-export { sdpaText, solve, SOLVER } from './quantities/solve';
+export { sdpaText, solve } from './quantities/solve';
+export { SOLVER } from './quantities/solver-version';
 export { verifyResult } from './certificates/verify';
 export {
 	affineMap,

@@ -20,9 +20,8 @@ import { momentProblemSdpa } from './moment-problem-sdpa';
 import type { Outcome } from './outcome';
 import { quantumMaximum } from './quantum-maximum';
 import { seeSaw } from './see-saw';
+import { SOLVER } from './solver-version';
 import { boxValue } from './value';
-
-export const SOLVER = 'merestone 0.1.0';
 
 /**
  * Recomputes the quantity of a problem. Never throws and never returns NaN: what could not be

@@ -5,6 +5,7 @@ import type { DoneResult, Result } from '../../nonlocality/problem';
 import type { Database, Transaction } from '../db/client';
 import { recomputations, results } from '../db/schema';
 import { deriveTouchedClaims } from '../services/claims/derive-claim';
+import { EARLIER_COLUMNS, keepEarlier } from '../services/recomputations/earlier-results';
 import { MOST_ATTEMPTS, backoff, holdsLease, type Lease } from './lease';
 import type { JobLog } from './runner';
 
@@ -55,21 +56,20 @@ async function store(
 	{ row, whole }: Ending,
 	now: Date
 ): Promise<boolean> {
-	const [before] = await tx
-		.select({ checked: recomputations.checked })
-		.from(recomputations)
-		.where(holdsLease(lease));
+	const [before] = await tx.select(EARLIER_COLUMNS).from(recomputations).where(holdsLease(lease));
 	if (!before) return false;
 	// A repeated run that ends without a result leaves the proved one, and its check, in place.
 	const keepsResult = before.checked === true && !whole && row.state !== 'queued';
 	const { finishedAt, reason } = row;
+	if (whole && before.checked) await keepEarlier(tx, lease.id, before, row);
 	await tx
 		.update(recomputations)
 		.set({
 			...(keepsResult ? { state: 'done', finishedAt, reason } : row),
 			leaseToken: null,
 			leaseUntil: null,
-			progress: null
+			progress: null,
+			...(row.state === 'queued' ? {} : { renewal: false })
 		})
 		.where(eq(recomputations.id, lease.id));
 	if (whole) {

@@ -12,6 +12,8 @@ import { sweepOrphans } from '../services/evidence-files/sweep-orphans';
 import { queueDigests } from '../services/notifications/queue-digests';
 import { sendDueReminders } from '../services/notifications/send-due-reminders';
 import { ensureCatalogue } from '../services/inequalities/ensure-catalogue';
+import { upgradeDigests } from '../services/inequalities/upgrade-digests';
+import { renewStations } from '../services/recomputations/renew-stations';
 import { setBudgetSeconds } from '../services/recomputations/budget';
 import { closeFileStore, fileStore } from '../storage/open-store';
 import { closeSolverPool, setSolverPool, solverPool } from './current-pool';
@@ -65,7 +67,7 @@ async function start(): Promise<Background> {
 	const mail = await startMail(db, now);
 	const reminders = every(REMIND_EVERY_MS, 'reminding', () => remind(db, now()), true);
 	const sweep = every(SWEEP_EVERY_MS, 'sweeping unused files', () => sweepFiles(db, now()));
-	void warmUp(db);
+	void warmUp(db, () => runner.wake());
 	return {
 		runner,
 		async stop() {
@@ -106,13 +108,29 @@ async function remind(db: Database, now: Date): Promise<void> {
 }
 
 /** Slow beginnings, after the server has begun to answer. */
-async function warmUp(db: Database): Promise<void> {
+async function warmUp(db: Database, wake: () => void): Promise<void> {
 	try {
 		await warmReferences();
+		await bringUpToDate(db, wake);
 		await ensureCatalogue(db);
 	} catch (error) {
 		log().warn({ err: error }, 'warming up failed');
 	}
+}
+
+/**
+ * What a better digest or a newer solver asks for once. Each step is a transaction of its own, so that
+ * a start that is cut short is taken up by the next.
+ */
+async function bringUpToDate(db: Database, wake: () => void): Promise<void> {
+	const { upgraded, merged, failed } = await upgradeDigests(db, () => new Date());
+	if (upgraded + merged > 0) log().info({ upgraded, merged }, 'inequalities given a better digest');
+	if (Object.keys(failed).length > 0) {
+		log().error({ failed }, 'inequalities keep an earlier digest; the next start tries again');
+	}
+	const renewed = await renewStations(db);
+	if (renewed > 0) log().info({ renewed }, 'stations queued for the newer solver');
+	wake();
 }
 
 async function startMail(db: Database, now: () => Date): Promise<{ stop(): Promise<void> }> {

@@ -42,11 +42,15 @@ export async function takeNext(
 	onTaken?: (tx: Transaction, id: string) => Promise<void>
 ): Promise<Lease | null> {
 	return db.write(async (tx) => {
-		const waiting = await tx
-			.select({ groupId: recomputations.groupId, jobs: count() })
-			.from(recomputations)
-			.where(due(now))
-			.groupBy(recomputations.groupId);
+		// What only a newer solver asks for takes no group's turn from what somebody waits for.
+		const groupsWaiting = (renewal: boolean) =>
+			tx
+				.select({ groupId: recomputations.groupId, jobs: count() })
+				.from(recomputations)
+				.where(and(due(now), eq(recomputations.renewal, renewal)))
+				.groupBy(recomputations.groupId);
+		const asked = await groupsWaiting(false);
+		const waiting = asked.length > 0 ? asked : await groupsWaiting(true);
 		const turn = waiting
 			.map(({ groupId }) => ({ groupId, last: served.get(groupId ?? '') ?? 0 }))
 			.sort((a, b) => a.last - b.last)[0];

@@ -4,6 +4,7 @@ export * from './inequalities';
 export * from './references';
 export * from './recomputations';
 export * from './claims';
+export * from './certificates';
 export * from './tasks';
 export * from './transcriptions';
 export * from './comments';

@@ -1,4 +1,4 @@
-import { integer, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import { index, integer, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
 import type { ProblemTerm } from '../../../nonlocality/problem';
 
 /** Shared by all groups; one row per equivalence class of functionals. */
@@ -26,4 +26,28 @@ export const inequalities = sqliteTable(
 		createdAt: integer('created_at', { mode: 'timestamp_ms' }).notNull()
 	},
 	(table) => [uniqueIndex('inequalities_digest').on(table.digestVersion, table.digest)]
+);
+
+/**
+ * What became of an inequality that a better digest found to be another one: its address leads
+ * there. Its representative stays, since forms and earlier versions of claims name it by its id.
+ */
+export const inequalityRedirects = sqliteTable(
+	'inequality_redirects',
+	{
+		/** The id it had. */
+		id: text('id').primaryKey(),
+		keptId: text('kept_id')
+			.notNull()
+			.references(() => inequalities.id),
+		/** value of its representative = scale * value of the kept one's + shift. */
+		scale: text('scale').notNull(),
+		shift: text('shift').notNull(),
+		name: text('name'),
+		outputs: text('outputs', { mode: 'json' }).$type<number[][]>().notNull(),
+		terms: text('terms', { mode: 'json' }).$type<ProblemTerm[]>().notNull(),
+		latex: text('latex').notNull(),
+		mergedAt: integer('merged_at', { mode: 'timestamp_ms' }).notNull()
+	},
+	(table) => [index('inequality_redirects_kept').on(table.keptId)]
 );

@@ -48,6 +48,10 @@ export const recomputations = sqliteTable(
 		/** Whether the independent check accepted the certificate; null when there is none yet. */
 		checked: integer('checked', { mode: 'boolean' }),
 		checkNote: text('check_note'),
+		/** The solver it was queued for last; null before that was kept. */
+		solver: text('solver'),
+		/** Queued again for a newer solver, behind everything that somebody waits for. */
+		renewal: integer('renewal', { mode: 'boolean' }).notNull().default(false),
 		/** Why it failed or stopped, for a person. */
 		reason: text('reason'),
 		createdAt: integer('created_at', { mode: 'timestamp_ms' }).notNull(),
@@ -70,3 +74,27 @@ export const results = sqliteTable('results', {
 		.references(() => recomputations.id, { onDelete: 'cascade' }),
 	result: text('result', { mode: 'json' }).$type<DoneResult>().notNull()
 });
+
+/**
+ * What a run had proved before a later solver ran it again. It stays proved: verdicts and bounds take
+ * the best of all, so that a newer solver never makes one worse.
+ */
+export const earlierResults = sqliteTable(
+	'earlier_results',
+	{
+		id: text('id').primaryKey(),
+		recomputationId: text('recomputation_id')
+			.notNull()
+			.references(() => recomputations.id, { onDelete: 'cascade' }),
+		solver: text('solver').notNull(),
+		summary: text('summary', { mode: 'json' }).$type<ResultSummary>().notNull(),
+		lower: real('lower'),
+		upper: real('upper'),
+		exact: text('exact'),
+		checkNote: text('check_note'),
+		finishedAt: integer('finished_at', { mode: 'timestamp_ms' }).notNull(),
+		/** The last column, so that the others are read without it. */
+		result: text('result', { mode: 'json' }).$type<DoneResult>().notNull()
+	},
+	(table) => [index('earlier_results_run').on(table.recomputationId)]
+);

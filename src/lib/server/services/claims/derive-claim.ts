@@ -132,7 +132,7 @@ function changeKey({ status, reasonCode, diagnosis, enclosure, contradicting }: 
 
 async function areStationsDone(tx: Transaction, inequalityId: string): Promise<boolean> {
 	const rows = await tx
-		.select({ state: recomputations.state })
+		.select({ state: recomputations.state, renewal: recomputations.renewal })
 		.from(recomputations)
 		.where(and(eq(recomputations.inequalityId, inequalityId), isNotNull(recomputations.station)));
 	return stationsDone(rows);

@@ -2,6 +2,7 @@ import { and, eq, inArray, isNotNull, or } from 'drizzle-orm';
 import type { Finding } from '../../../ledger/evidence';
 import type { Transaction } from '../../db/client';
 import { claims, recomputations, type Station } from '../../db/schema';
+import { loadEarlier } from '../recomputations/earlier-results';
 
 /** A finished recomputation as verdicts see it. */
 export interface StoredFinding extends Finding {
@@ -52,9 +53,18 @@ async function loadFindings(
 		);
 	const order = (station: Station | null) =>
 		station === null ? EXPLAINING.length : EXPLAINING.indexOf(station);
+	const earlier = await loadEarlier(
+		tx,
+		rows.map(({ id }) => id)
+	);
 	return [...rows]
 		.sort((a, b) => order(a.station) - order(b.station))
-		.flatMap((row) => findingOf(row) ?? []);
+		.flatMap((row) => [
+			...[findingOf(row) ?? []].flat(),
+			...earlier
+				.filter(({ recomputationId }) => recomputationId === row.id)
+				.flatMap((before) => findingOf({ ...row, ...before, checked: true }) ?? [])
+		]);
 }
 
 const FINDING_COLUMNS = {

@@ -97,6 +97,8 @@ async function ownRun(tx: Transaction, claim: JudgedClaim): Promise<OwnRun | nul
 		.select({
 			problem: recomputations.problem,
 			state: recomputations.state,
+			renewal: recomputations.renewal,
+			checked: recomputations.checked,
 			reason: recomputations.reason
 		})
 		.from(recomputations)
@@ -110,7 +112,9 @@ async function ownRun(tx: Transaction, claim: JudgedClaim): Promise<OwnRun | nul
 		failed: { kind: 'failed', why },
 		cancelled: { kind: 'failed', why: 'it was cancelled' }
 	};
-	return { problem: row.problem, state: states[row.state] };
+	// Done over by a newer solver: what it proved stands meanwhile.
+	const stands = row.renewal && row.checked === true;
+	return { problem: row.problem, state: stands ? states.done : states[row.state] };
 }
 
 /** Why nothing recomputes the claim: no solver for the quantity, or a limit of the one there is. */

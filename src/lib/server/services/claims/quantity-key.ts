@@ -29,3 +29,19 @@ export function isOfInequality(key: string, { inequalityId }: KeyedClaim): boole
 	const subject: unknown = Array.isArray(parts) ? parts[0] : null;
 	return inequalityId !== null && Array.isArray(subject) && subject[0] === inequalityId;
 }
+
+/** The key of the same about an inequality's equivalent: another id, and its map to that. */
+export function rekeyed(
+	key: string,
+	move: (map: { readonly scale: string; readonly shift: string }) => {
+		readonly id: string;
+		readonly scale: string;
+		readonly shift: string;
+	}
+): string {
+	const parts: unknown = JSON.parse(key);
+	const subject: unknown = Array.isArray(parts) ? parts[0] : null;
+	if (!Array.isArray(parts) || !Array.isArray(subject) || subject.length !== 3) return key;
+	const { id, scale, shift } = move({ scale: String(subject[1]), shift: String(subject[2]) });
+	return JSON.stringify([[id, scale, shift], ...(parts as unknown[]).slice(1)]);
+}

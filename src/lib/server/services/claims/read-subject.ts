@@ -13,6 +13,7 @@ import type { ClaimInput } from '../../../schemas/claim-input';
 import type { Reader } from '../../db/client';
 import { inequalities } from '../../db/schema';
 import type { FieldIssue } from '../../errors';
+import { findFormer } from '../inequalities/moved-inequality';
 import { quantityInfo } from '../recomputations/claim-problem';
 import { expressionNotation } from './notation-words';
 import { readOutputs, readTable } from './read-table';
@@ -51,8 +52,11 @@ async function readKnown(
 	isVisible: (inequalityId: string) => Promise<boolean>
 ): Promise<SubjectReading> {
 	if (!inequalityId) return noSubject({ field: 'inequalityId', message: 'Choose an inequality.' });
-	const [row] = await read.select().from(inequalities).where(eq(inequalities.id, inequalityId));
-	if (!row || !(await isVisible(inequalityId))) {
+	const [present] = await read.select().from(inequalities).where(eq(inequalities.id, inequalityId));
+	// One that was merged keeps the form it had: that is what was picked.
+	const former = present ? null : await findFormer(read, inequalityId);
+	const row = present ?? former;
+	if (!row || !(await isVisible(former?.keptId ?? inequalityId))) {
 		return noSubject({ field: 'inequalityId', message: 'There is no such inequality.' });
 	}
 	const functional = functionalOfTerms(row.outputs, row.terms);

@@ -5,6 +5,7 @@ import type { Level, Problem } from '../../../nonlocality/problem';
 import type { StationsView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { recomputations, type Station } from '../../db/schema';
+import { loadEarlier } from '../recomputations/earlier-results';
 import { isSharedRun } from '../recomputations/shared-run';
 import {
 	mapSides,
@@ -23,6 +24,8 @@ export interface StationRow extends Sides {
 	readonly quantity: Problem['quantity'];
 	readonly level: Level | null;
 	readonly state: (typeof recomputations.$inferSelect)['state'];
+	/** Run again for a newer solver only: what it proved stands meanwhile. */
+	readonly renewal: boolean;
 	readonly checked: boolean | null;
 }
 
@@ -32,12 +35,12 @@ export interface StationRow extends Sides {
  * fact about the inequality, and nothing of the claim is read here.
  */
 export async function loadStations(
-	read: Reader,
+	reader: Reader,
 	inequalityIds: readonly string[]
 ): Promise<Map<string, StationRow[]>> {
 	const byInequality = new Map<string, StationRow[]>();
 	if (inequalityIds.length === 0) return byInequality;
-	const rows = await read
+	const rows = await reader
 		.select({
 			id: recomputations.id,
 			inequalityId: recomputations.inequalityId,
@@ -45,6 +48,7 @@ export async function loadStations(
 			quantity: sql<Problem['quantity']>`json_extract(${recomputations.problem}, '$.quantity')`,
 			level: sql<string | null>`${recomputations.problem} -> '$.level'`,
 			state: recomputations.state,
+			renewal: recomputations.renewal,
 			checked: recomputations.checked,
 			lower: recomputations.lower,
 			upper: recomputations.upper,
@@ -57,7 +61,22 @@ export async function loadStations(
 		const read = level === null ? null : (JSON.parse(level) as Level);
 		byInequality.set(key, [...(byInequality.get(key) ?? []), { ...row, level: read }]);
 	}
+	await addEarlier(reader, byInequality);
 	return byInequality;
+}
+
+/** What those runs had proved before a newer solver ran them again. */
+async function addEarlier(reader: Reader, found: Map<string, StationRow[]>): Promise<void> {
+	const runs = [...found.values()].flat();
+	const earlier = await loadEarlier(
+		reader,
+		runs.map(({ id }) => id)
+	);
+	for (const { recomputationId, lower, upper, exact } of earlier) {
+		const run = runs.find(({ id }) => id === recomputationId);
+		if (run)
+			found.get(run.inequalityId ?? '')?.push({ ...run, lower, upper, exact, checked: true });
+	}
 }
 
 /** The larger of two bounds, of which one may not be known. */
@@ -116,9 +135,12 @@ export function stationsView(rows: readonly StationRow[], map: AffineMap): Stati
 
 /** What claims asked for beside the stations does not keep them from being done. */
 export function stationsDone(
-	rows: readonly (Pick<StationRow, 'state'> & { readonly station?: Station | null })[]
+	rows: readonly (Pick<StationRow, 'state' | 'renewal'> & {
+		readonly station?: Station | null;
+	})[]
 ): boolean {
 	return rows.every(
-		({ state, station }) => station === null || (state !== 'queued' && state !== 'running')
+		({ state, station, renewal }) =>
+			station === null || renewal || (state !== 'queued' && state !== 'running')
 	);
 }

@@ -1,3 +1,4 @@
+import { sql } from 'drizzle-orm';
 import { showBound } from '../../../ledger/figures';
 import type { ProgressView } from '../../../schemas/views';
 import { recomputations } from '../../db/schema';
@@ -10,7 +11,10 @@ export type ProgressRow = Pick<
 
 export const PROGRESS_COLUMNS = {
 	id: recomputations.id,
-	state: recomputations.state,
+	/** One that waits to be done over by a newer solver is done for its reader. */
+	state: sql<ProgressRow['state']>`case
+		when ${recomputations.renewal} and ${recomputations.checked} and ${recomputations.state} = 'queued'
+		then 'done' else ${recomputations.state} end`,
 	progress: recomputations.progress,
 	startedAt: recomputations.startedAt,
 	finishedAt: recomputations.finishedAt

@@ -8,9 +8,10 @@ const INSTANT: readonly Station[] = ['local', 'no-signalling'];
 /**
  * What comes first within a group, smallest first: the instant stations, then what a claim itself
  * asks for, then all other stations, so that nobody's claim waits behind those of other
- * inequalities; each in the order they were queued.
+ * inequalities; each in the order they were queued. What only a newer solver asks for comes last.
  */
 export const QUEUE_ORDER = [
+	sql`${recomputations.renewal}`,
 	sql`case
 		when ${recomputations.station} in ${[...INSTANT]} then 0
 		when exists (

@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
 import { eq } from 'drizzle-orm';
+import { SOLVER } from '../../../nonlocality/quantities/solver-version';
 import type { Problem } from '../../../nonlocality/problem';
 import type { Transaction } from '../../db/client';
 import { recomputations, type Station } from '../../db/schema';
@@ -68,6 +69,7 @@ export async function queueRecomputation(
 		inequalityId,
 		station: station ?? null,
 		groupId,
+		solver: SOLVER,
 		createdAt: now
 	});
 	return id;
@@ -85,6 +87,8 @@ export async function requeue(tx: Transaction, id: string, groupId: string | nul
 			notBefore: null,
 			progress: null,
 			reason: null,
+			solver: SOLVER,
+			renewal: false,
 			...(groupId ? { groupId } : {})
 		})
 		.where(eq(recomputations.id, id));

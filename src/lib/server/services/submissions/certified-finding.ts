@@ -74,7 +74,7 @@ function sidesOf(
 	};
 }
 
-const finite = (value: number) => (Number.isFinite(value) ? value : null);
+export const finite = (value: number) => (Number.isFinite(value) ? value : null);
 
 function kindOf(certificate: Certificate | null): ResultSummary['certificate'] {
 	if (!certificate) return null;
@@ -86,7 +86,7 @@ function kindOf(certificate: Certificate | null): ResultSummary['certificate'] {
  * The same problem of the representative. Relabelling may exchange parties, so that dimensions which
  * differ become the largest for all, and a prescribed state any: less is said, and it stays proved.
  */
-function problemOf(
+export function problemOf(
 	problem: Problem,
 	{ outputs, terms }: Representative,
 	boxSense: Problem['sense']

@@ -37,6 +37,16 @@ export const CHARACTERS: Readonly<Record<string, string>> = {
 	'\u2026': '...',
 	'\u22ef': '...',
 	'\u2223': '|',
+	// Greek and Cyrillic letters that look like those of parties.
+	'\u0391': 'A',
+	'\u0392': 'B',
+	'\u0395': 'E',
+	'\u03a1': 'P',
+	'\u0410': 'A',
+	'\u0412': 'B',
+	'\u0421': 'C',
+	'\u0415': 'E',
+	'\u0420': 'P',
 	'\uff5c': '|',
 	'\u00a0': ' ',
 	'\u2002': ' ',
@@ -87,7 +97,10 @@ export const SYMBOLS: Readonly<Record<string, string>> = {
 	rvert: '|',
 	lbrace: '(',
 	rbrace: ')',
-	Pr: ' P'
+	Pr: ' P',
+	prime: '\u2032',
+	neq: '\u2260',
+	ne: '\u2260'
 };
 
 /** Commands that only change how something looks. */
@@ -132,11 +145,49 @@ export const IGNORED = new Set([
 	'it',
 	'bm',
 	'limits',
-	'thinspace'
+	'nolimits',
+	'thinspace',
+	'medspace',
+	'thickspace',
+	'negthinspace',
+	'hfill',
+	'notag',
+	'bigm',
+	'Bigm',
+	'biggm',
+	'Biggm',
+	'scriptstyle',
+	'tiny',
+	'small',
+	'footnotesize',
+	'mathopen',
+	'mathclose',
+	'mathrel',
+	'mathbin',
+	'mathord',
+	'mathscr',
+	'mathfrak',
+	'mathtt',
+	'mathnormal',
+	'textsf'
 ]);
 
 /** Commands whose braces say nothing about the formula. */
-export const DROPPED = new Set(['label', 'tag', 'hspace', 'vspace']);
+export const DROPPED = new Set([
+	'label',
+	'tag',
+	'hspace',
+	'vspace',
+	'color',
+	'textcolor',
+	'phantom',
+	'hphantom',
+	'vphantom',
+	'cite',
+	'ref',
+	'eqref',
+	'footnote'
+]);
 
 /** A relation with something written above or below it: `\overset{L}{\leq}`. */
 export const STACKED = new Set(['overset', 'underset', 'stackrel']);
@@ -155,8 +206,35 @@ export const ENVIRONMENTS = new Set([
 	'split',
 	'eqnarray',
 	'displaymath',
-	'math'
+	'math',
+	'flalign',
+	'subequations',
+	'array',
+	'alignat',
+	'alignedat',
+	'IEEEeqnarray'
 ]);
+
+/** Those of them whose columns are described in braces of their own. */
+export const COLUMNED = new Set(['array', 'alignat', 'alignedat', 'IEEEeqnarray']);
+
+/** What to say of commands that people do write in a formula, and that can't be read. */
+export const ADVICE: Readonly<Record<string, string>> = {
+	...advise('Write every term, with numbers as inputs and outputs.', 'sum prod bigotimes Sigma'),
+	...advise(
+		'Leave the state out: write <A_0 B_0>.',
+		'psi Psi phi Phi varphi rho varrho bra ket Tr tr'
+	),
+	...advise('Write the observables as A_0, B_1.', 'sigma openone mathbbm vec bar overline tilde'),
+	...advise(
+		'Put the number in its place.',
+		'alpha beta gamma delta epsilon varepsilon eta theta vartheta kappa lambda mu nu xi tau chi omega Omega'
+	)
+};
+
+function advise(advice: string, commands: string): Record<string, string> {
+	return Object.fromEntries(commands.split(' ').map((command) => [command, advice]));
+}
 
 /** Numbers printed as one character. */
 export const VULGAR_FRACTIONS: Readonly<Record<string, string>> = {

@@ -1,7 +1,9 @@
 import { NotationError } from './notation-error';
 import {
+	ADVICE,
 	BRACKETS,
 	CHARACTERS,
+	COLUMNED,
 	DROPPED,
 	ENVIRONMENTS,
 	IGNORED,
@@ -17,13 +19,16 @@ export interface PlainNotation {
 	readonly positions: readonly number[];
 }
 
-const FRACTIONS = new Set(['frac', 'tfrac', 'dfrac']);
+const FRACTIONS = new Set(['frac', 'tfrac', 'dfrac', 'cfrac', 'nicefrac', 'sfrac']);
 const MAXIMUM_NESTING = 50;
+
+/** An index of letters. */
+const STATE = /^\s*_\s*(?:\{[^{}\d]{1,40}\}|\\[A-Za-z]{1,20}|[A-Za-z])/;
 
 const FUNCTION = /^(?:cos|sin)$/;
 const POWER_OF_FUNCTION = /^\s*(?:\^\s*(?:\{\s*(\d)\s*\}|(\d))|([\u00b2\u00b3]))\s*/;
 /** What may follow a function without doubt about where its argument ends. */
-const OPENS_ARGUMENT = /^\s*(?:\\left\s*)?(?=[({]|\\[td]?frac(?![A-Za-z]))/;
+const OPENS_ARGUMENT = /^\s*(?:\\left\s*)?(?=[({]|\\(?:[tdc]?|nice|s)frac(?![A-Za-z]))/;
 
 /**
  * Rewrites pasted LaTeX and Unicode mathematics as plain text: `\frac{1}{2}` becomes `((1)/(2))`,
@@ -64,7 +69,9 @@ class Rewriter {
 			this.at += word.length;
 			return this.apply(word, word, start);
 		}
-		this.at++;
+		const point = this.source.codePointAt(start) ?? 0;
+		const whole = String.fromCodePoint(point);
+		this.at += whole.length;
 		const vulgar = VULGAR_FRACTIONS[character];
 		if (vulgar !== undefined) {
 			if (/\d\s*$/.test(this.source.slice(0, start)))
@@ -81,7 +88,8 @@ class Rewriter {
 			return this.emit(`${follows ? '' : '_'}${code - 0x2080}`, start);
 		}
 		if (character === '\u221a') return this.root(start);
-		this.emit(CHARACTERS[character] ?? character, start);
+		if (character === '\u27e9' || character === '\u3009') return this.closeBracket(start);
+		this.emit(CHARACTERS[character] ?? plainLetter(whole), start);
 	}
 
 	private command(): void {
@@ -96,6 +104,7 @@ class Rewriter {
 		}
 		this.at += 1 + name.length;
 		const symbol = Object.hasOwn(SYMBOLS, name) ? SYMBOLS[name] : undefined;
+		if (symbol === '>' && name === 'rangle') return this.closeBracket(start);
 		if (symbol !== undefined) return this.emit(symbol, start);
 		if (IGNORED.has(name)) {
 			if (this.source.charAt(this.at) === '.') this.at++; // \left.
@@ -113,6 +122,7 @@ class Rewriter {
 		}
 		if (name === 'begin' || name === 'end') {
 			const environment = this.dropArgument(start).replace(/\*$/, '');
+			if (name === 'begin' && COLUMNED.has(environment)) this.dropArgument(start);
 			if (ENVIRONMENTS.has(environment)) return;
 			throw new NotationError(
 				`\\${name}{${environment.slice(0, 20)}} is not understood`,
@@ -123,7 +133,7 @@ class Rewriter {
 		if (BRACKETS.has(name)) {
 			this.emit('<', start);
 			this.argument(start);
-			return this.emit('>', start);
+			return this.closeBracket(start);
 		}
 		if (FRACTIONS.has(name)) {
 			this.emit('((', start);
@@ -135,8 +145,16 @@ class Rewriter {
 		throw new NotationError(
 			`the command \\${name} is not understood`,
 			start,
-			'Write the formula with +, -, *, /, parentheses, \\frac, \\sqrt and indices only.'
+			(Object.hasOwn(ADVICE, name) ? ADVICE[name] : undefined) ??
+				'Write the formula with +, -, *, /, parentheses, \\frac, \\sqrt and indices only.'
 		);
+	}
+
+	/** `\\rangle_\\rho`, `\\rangle_{Q}`: the state or theory says nothing of the functional. */
+	private closeBracket(start: number): void {
+		this.emit('>', start);
+		const script = STATE.exec(this.source.slice(this.at, this.at + 100));
+		this.at += script?.[0].length ?? 0;
 	}
 
 	/** `\cos^2(\pi/8)`, `\cos\frac{\pi}{8}`: as ((cos(pi/8))^2), cos((pi)/(8)). */
@@ -218,4 +236,10 @@ class Rewriter {
 	private skipSpaces(): void {
 		while (/\s/.test(this.source.charAt(this.at))) this.at++;
 	}
+}
+
+/** Letters and digits in a font of their own, as copied from a PDF, in the usual one. */
+function plainLetter(character: string): string {
+	const plain = character > '~' ? character.normalize('NFKC') : character;
+	return /^[A-Za-z\d]$/.test(plain) ? plain : character;
 }

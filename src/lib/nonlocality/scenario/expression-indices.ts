@@ -39,10 +39,18 @@ export function readIndices(
 			reader.take();
 		}
 		const token = reader.peek();
+		if (token.kind === 'end')
+			throw new NotationError('this is never closed', position, `Write ${example}.`);
+		if (closing.includes('|') && ')]'.includes(token.text))
+			throw new NotationError(
+				'a probability needs outputs, a bar and inputs',
+				token.position,
+				`Write ${example}.`
+			);
 		if (token.kind !== 'number' || !/^\d+$/.test(token.text))
 			throw new NotationError(
 				'the indices here have to be numbers',
-				token.kind === 'end' ? position : token.position,
+				token.position,
 				token.text === '+' || token.text === '-'
 					? 'Outputs are counted from 0: write 0 for +, 1 for -.'
 					: `Write them as in ${example}.`

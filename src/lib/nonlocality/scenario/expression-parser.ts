@@ -7,18 +7,46 @@ import { EXPRESSION_LIMITS, type Token } from './expression-tokens';
 import { PARTY_LETTERS, type Node } from './expression-tree';
 import { CLOSING, TokenReader, readSubscript } from './token-reader';
 
-/** A formula's tree, and where its trailing relation stands. */
+/** A formula's tree, and the relation to a bound that stands behind it, or in front. */
 export interface ParsedExpression {
 	readonly root: Node;
 	readonly relation: {
-		readonly text: string;
-		readonly end: number;
+		/** As it is read with the formula on its left. */
+		readonly sign: '<=' | '>=' | '=';
 		readonly position: number;
+		/** Where the bound is written. */
+		readonly start: number;
+		readonly end: number | null;
 	} | null;
 }
 
+const FLIPPED = { '<=': '>=', '>=': '<=', '=': '=' } as const;
+
+function relationOf({ kind, text }: Token): '<=' | '>=' | '=' | null {
+	if (kind !== 'relation' && !(kind === 'symbol' && '<>='.includes(text))) return null;
+	return text.includes('<') ? '<=' : text.includes('>') ? '>=' : '=';
+}
+
+/** Whether nothing but numbers occurs. */
+function isNumber(node: Node): boolean {
+	switch (node.kind) {
+		case 'number':
+			return true;
+		case 'sum':
+		case 'product':
+			return node.items.every((item) => isNumber(item.node));
+		case 'power':
+			return isNumber(node.base) && isNumber(node.exponent);
+		case 'function':
+			return isNumber(node.argument);
+		case 'correlator':
+		case 'probability':
+			return false;
+	}
+}
+
 /**
- * expression := sum [relation anything]
+ * expression := sum [relation anything] | number relation sum
  * sum := ['+'|'-'] product (('+'|'-') product)*
  * product := power (['*'|'/'] power)*            (left to right; nothing between: times)
  * power := primary ['^' primary]
@@ -44,12 +72,24 @@ export class ExpressionParser {
 		const root = this.sum();
 		const token = this.reader.peek();
 		if (token.kind === 'end') return { root, relation: null };
-		if (token.kind !== 'relation' && !'<>='.includes(token.text)) throw this.unexpected(token);
+		const sign = relationOf(token);
+		if (!sign) throw this.unexpected(token);
 		this.reader.take();
-		return {
-			root,
-			relation: { text: token.text, position: token.position, end: this.reader.peek().position }
-		};
+		const { position } = token;
+		const start = this.reader.peek().position;
+		if (!isNumber(root) || !this.reader.hasObservables())
+			return { root, relation: { sign, position, start, end: null } };
+		// `2 >= A0 B0 + ...`
+		const formula = this.sum();
+		const next = this.reader.peek();
+		if (relationOf(next))
+			throw new NotationError(
+				'the expression stands between two bounds',
+				next.position,
+				'Keep one relation: the bound that is claimed.'
+			);
+		if (next.kind !== 'end') throw this.unexpected(next);
+		return { root: formula, relation: { sign: FLIPPED[sign], position, start: 0, end: position } };
 	}
 
 	private sum(): Node {
@@ -166,6 +206,12 @@ export class ExpressionParser {
 		const party = partyOf(text);
 		if (party === null) throw this.unknownLetter(text, position);
 		const index = readSubscript(this.reader, text);
+		if (this.reader.peek().text === '^')
+			throw new NotationError(
+				'an observable has no upper index and no power',
+				this.reader.peek().position,
+				'Parties are A, B, C: write A_0 B_1 for A_0^{(1)} A_1^{(2)}. The square of an observable is 1.'
+			);
 		if (index === null)
 			throw new NotationError(`${text} needs an input`, position, `Write ${text}0 or ${text}1.`);
 		return { kind: 'correlator', inputs: [{ party, index, position }], everyone: false, position };
@@ -178,6 +224,12 @@ export class ExpressionParser {
 				`${text} is not a party`,
 				position,
 				`Write ${upper}0 for the observable of party ${upper}.`
+			);
+		if (text === 'i')
+			return new NotationError(
+				'the imaginary unit has no place in a functional',
+				position,
+				'Coefficients are real: take the real part first.'
 			);
 		if (this.reader.hasRelation())
 			return new NotationError(
@@ -199,6 +251,12 @@ export class ExpressionParser {
 				'the expression ends too early',
 				position,
 				'Something is missing at its end.'
+			);
+		if (text === ',')
+			return new NotationError(
+				"a comma can't stand here",
+				position,
+				'Write a decimal as 0.5, thousands without a comma, and one formula at a time.'
 			);
 		if (text === '|')
 			return new NotationError(

@@ -1,4 +1,4 @@
-import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { NotationError } from '../exact/notation-error';
 import { plainNotation } from '../exact/plain-notation';
 
 /** Sizes past which an expression is refused before any work is done on it. */
@@ -24,7 +24,7 @@ export interface Token {
 }
 
 const PATTERNS: readonly (readonly [Token['kind'], RegExp])[] = [
-	['relation', /<=|>=|=</y],
+	['relation', /<=|>=|=<|=>/y],
 	['function', /sqrt|cos|sin|pi/y],
 	['letter', /Pr|[A-Za-z]/y],
 	// An exponent takes a lower-case e, so that 2E(0,1) is twice a correlator.
@@ -32,15 +32,11 @@ const PATTERNS: readonly (readonly [Token['kind'], RegExp])[] = [
 	['symbol', /[-+*/^()[\]{}<>|,_=]/y]
 ];
 
-/** @throws NotationError at the first character that has no meaning; NotationLimitError when too long. */
+/** @throws NotationError at the first character that has no meaning. */
 export function tokenize(source: string): Token[] {
-	if (source.length > EXPRESSION_LIMITS.characters)
-		throw new NotationLimitError(
-			`an expression has at most ${EXPRESSION_LIMITS.characters.toLocaleString('en')} characters, this one ${source.length.toLocaleString('en')}`
-		);
 	const plain = plainNotation(source);
-	// `\hat{A}_0` comes as `{A}_0`: the braces say nothing.
-	const text = plain.text.replace(/\{(\s*(?:Pr|[A-Za-z])\s*)\}/g, ' $1 ');
+	// `\hat{A}_0` comes as `{A}_0`, and there is `a{=}0`: these braces say nothing.
+	const text = plain.text.replace(/\{(\s*(?:Pr|[A-Za-z]|[-+=<>,|]|)\s*)\}/g, ' $1 ');
 	const at = (index: number) => plain.positions[index] ?? source.length;
 	const tokens: Token[] = [];
 	let index = 0;
@@ -55,6 +51,7 @@ export function tokenize(source: string): Token[] {
 		// The punctuation of the sentence it was copied from, and the dots of a bound's digits.
 		if (rest === '.' || rest === ',' || rest === ';') break;
 		if (/^\.\.\.[.,;]?$/.test(rest) && isRelation(tokens.at(-2))) break;
+		if (/^\d+(?:\.\d+)?E\d/.test(rest)) throw unclearExponent(rest, at(index));
 		const token = matchAt(text, index);
 		if (rest.startsWith('...'))
 			throw new NotationError('an ellipsis stands for terms', at(index), 'Write every term.');
@@ -78,6 +75,16 @@ function matchAt(text: string, index: number): Pick<Token, 'kind' | 'text'> | nu
 	return null;
 }
 
+/** `2E1`: the exponent of a number takes a lower-case e, and E is a party. */
+function unclearExponent(rest: string, position: number): NotationError {
+	const [, before = '', after = ''] = /^([\d.]+)E(\d+)/.exec(rest) ?? [];
+	return new NotationError(
+		`it is not clear whether ${before}E${after} is one number`,
+		position,
+		`Write ${before}e${after} for the number, ${before} E${after} for the observable of party E.`
+	);
+}
+
 function unknownCharacter(character: string, position: number): NotationError {
 	if (character === ':' || character === ';')
 		return new NotationError(
@@ -85,11 +92,19 @@ function unknownCharacter(character: string, position: number): NotationError {
 			position,
 			'Enter the formula alone.'
 		);
-	if (character === "'" || character === '\u2032')
+	if (/['`\u2018\u2019\u2032\u2033]/.test(character))
 		return new NotationError(
 			'primes are not understood',
 			position,
 			'Write A0 and A1 for A and A\u2032.'
+		);
+	if (/[\u03a3\u2211\u220f]/.test(character))
+		return new NotationError('sums have to be written out', position, 'Write every term.');
+	if (character === '\u2260')
+		return new NotationError(
+			'a probability that two outputs differ is a sum',
+			position,
+			'Write it out: P(0,1|0,0) + P(1,0|0,0).'
 		);
 	if (character === '.')
 		return new NotationError(

@@ -17,6 +17,7 @@ import {
 } from '../exact/coefficient-functions';
 import { NotationError, NotationLimitError } from '../exact/notation-error';
 import { ExpressionParser, type ParsedExpression } from './expression-parser';
+import { withoutSurroundings } from './expression-surroundings';
 import { EXPRESSION_LIMITS } from './expression-tokens';
 import { PARTY_LETTERS, type Node } from './expression-tree';
 import { readScenario } from './expression-scenario';
@@ -54,8 +55,13 @@ export interface ReadExpression {
  * @example parseExpression('A1 B1 + A1 B2 + A2 B1 - A2 B2 <= 2', { indexBase: 'read' }).indexBase // 1
  */
 export function parseExpression(source: string, options: ExpressionOptions = {}): ReadExpression {
-	const parsed = new ExpressionParser(source).parse();
-	const bound = claimedBound(source, parsed);
+	if (source.length > EXPRESSION_LIMITS.characters)
+		throw new NotationLimitError(
+			`an expression has at most ${EXPRESSION_LIMITS.characters.toLocaleString('en')} characters, this one ${source.length.toLocaleString('en')}`
+		);
+	const formula = withoutSurroundings(source);
+	const parsed = new ExpressionParser(formula).parse();
+	const bound = claimedBound(formula, parsed);
 	const wanted = options.indexBase ?? 0;
 	const { outputs, base } = readScenario(parsed.root, wanted, options.outputs);
 	const sum = new Evaluation(base ?? 0).polynomial(parsed.root);
@@ -72,26 +78,37 @@ export function parseExpression(source: string, options: ExpressionOptions = {})
 	};
 }
 
-/** What closes a pasted formula, with the full stop of its sentence; an ellipsis is kept. */
-const AFTER_BOUND =
-	/(?:\$|\\[)\],;:!]|\\q?quad|\\end\{[a-z]+\*?\}|\\right\.|\s|(?<!\.)[.,;](?!\.))*$/;
+/** What is written at the sign of the relation: `\\leq_{\\text{LHV}} 2`. */
+const AT_RELATION = /^\s*(?:[_^]\s*(?:\{(?:[^{}]|\{[^{}]{0,40}\}){0,60}\}|\\?[A-Za-z]+)\s*)+/;
+/** `= 2\\sqrt{2} \\approx 2.828`: the same number once more. */
+const ONCE_MORE = /\s*(?:\\(?:approx|simeq|sim)(?![A-Za-z])|[\u2248\u2243\u223c]).*$/s;
 
 function claimedBound(
-	source: string,
+	formula: string,
 	{ relation }: ParsedExpression
 ): ReadExpression['claimedBound'] {
 	if (!relation) return null;
-	const text = source.slice(relation.end).replace(AFTER_BOUND, '').trim();
+	const { sign, position, start } = relation;
+	const written = formula.slice(start, relation.end ?? undefined).replace(AT_RELATION, '');
+	const text = written
+		.replace(ONCE_MORE, '')
+		.replace(/[\s&]+$/, '')
+		.replace(/^[\s&$]+/, '');
 	if (text === '')
-		throw new NotationError('the bound after the relation is missing', relation.position, null);
-	if (/[A-F]\s*_?\{?\s*\d|[PE]\s*[(_]|[<>=]|\\l?geq?|\\leq?/.test(text))
+		throw new NotationError('the bound after the relation is missing', position, null);
+	if (/[A-F]\s*_?\{?\s*\d|[PE]\s*[(_]|\\[lr]angle/.test(text))
 		throw new NotationError(
 			'the right-hand side has to be a number',
-			relation.end,
+			start,
 			'Bring every observable to the left and keep one relation.'
 		);
-	const kind = relation.text.includes('<') ? '<=' : relation.text.includes('>') ? '>=' : '=';
-	return { relation: kind, text };
+	if (/[<>=\u2264\u2265\u2a7d\u2a7e]|\\(?:[lg]eq?|[lg]eqslant|[lg]t)(?![A-Za-z])/.test(text))
+		throw new NotationError(
+			'more than one bound is given',
+			start,
+			'Keep one relation: the bound that is claimed.'
+		);
+	return { relation: sign, text };
 }
 
 /** One factor of a monomial: an observable (output null) or an event. */

@@ -36,6 +36,11 @@ export class TokenReader {
 		return this.tokens.some(({ kind, text }) => kind === 'letter' && letters.includes(text));
 	}
 
+	/** Whether any is still to come. */
+	hasObservables(): boolean {
+		return this.tokens.slice(this.next).some(({ kind }) => kind === 'letter');
+	}
+
 	hasRelation(): boolean {
 		return this.tokens.some(({ kind, text }) => text === '=' || kind === 'relation');
 	}

@@ -129,7 +129,7 @@ function unprovedSide(result: DoneResult, proved: Proved): 'lower' | 'upper' | n
 /** A strategy near its constraints proves no side, but its value is what may be printed. */
 function exceededStrategy({ problem, certificate, lower, upper }: DoneResult): string | null {
 	if (certificate?.kind !== 'quantum-strategy') return null;
-	const printed = isNegated(problem) ? (upper === null ? null : 0 - upper) : lower;
+	const printed = turnsSigns(problem) ? (upper === null ? null : 0 - upper) : lower;
 	return printed === null || printed <= certificate.value
 		? null
 		: `the printed side is beyond the strategy's value ${certificate.value}`;

@@ -33,8 +33,6 @@ const TOWARDS_ITERATE = [1, 0.99, 0.95, 0.85, 0.7, 0.5, 0.25];
 const PATIENCE = 3;
 const LONG_PATIENCE = 15;
 const NEARLY = 1e-6;
-/** Below this one such iteration is enough: without rounding each gains a factor of ten or more. */
-const VERY_NEARLY = 1e-8;
 
 /**
  * Optimum of the moment-matrix relaxation for the functional g, from both sides.
@@ -212,7 +210,6 @@ class BoundSearch {
 			return false;
 		}
 		this.#idle++;
-		if (gap < VERY_NEARLY * this.#scale) return true;
 		return this.#idle >= (gap < NEARLY * this.#scale ? PATIENCE : LONG_PATIENCE);
 	}
 

@@ -21,10 +21,9 @@ export interface MomentProgramme {
 }
 
 export function evaluateRow(row: SparseRow, y: Float64Array): number {
+	const { columns, values } = row;
 	let sum = 0;
-	row.columns.forEach((column, at) => {
-		sum += (row.values[at] ?? 0) * (y[column] ?? 0);
-	});
+	for (let at = 0; at < columns.length; at++) sum += (values[at] ?? 0) * (y[columns[at] ?? 0] ?? 0);
 	return sum;
 }
 
@@ -69,9 +68,11 @@ export function addRows(
 ): void {
 	rows.forEach((row, j) => {
 		const weight = factor * (weights[j] ?? 0);
-		row.columns.forEach((column, at) => {
-			out[column] = (out[column] ?? 0) + weight * (row.values[at] ?? 0);
-		});
+		const { columns, values } = row;
+		for (let at = 0; at < columns.length; at++) {
+			const column = columns[at] ?? 0;
+			out[column] = (out[column] ?? 0) + weight * (values[at] ?? 0);
+		}
 	});
 }
 

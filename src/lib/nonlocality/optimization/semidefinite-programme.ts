@@ -32,8 +32,13 @@ function demandOf({ size: n, unknowns: m }: MomentProgramme): KernelDemand {
 	};
 }
 
-/** Fraction of the way to the boundary that a step takes. */
-const STEP_FRACTION = 0.97;
+/**
+ * Fraction of the way to the boundary that a step takes: little more than LEAST_FRACTION where the
+ * predictor is stopped early, MORE_FRACTION more where it gets all the way (Toh, Todd, Tutuncu,
+ * Optim. Methods Softw. 11, 545 (1999)).
+ */
+const LEAST_FRACTION = 0.9;
+const MORE_FRACTION = 0.09;
 /** Smallest centring: below it the corrector's second-order terms are noise. */
 const LEAST_CENTRING = 1e-6;
 /** Further corrections, each far cheaper than a new factorisation, while steps stay short ... */
@@ -72,6 +77,7 @@ export class SemidefiniteSolver {
 		const attempt = () => ({
 			direction: makeDirection(programme, kernels),
 			spare: makeDirection(programme, kernels),
+			fraction: LEAST_FRACTION,
 			error: Infinity
 		});
 		this.#hooks = hooks;
@@ -118,9 +124,9 @@ export class SemidefiniteSolver {
 			this.#seek(other);
 			if (other.error < best.error || Number.isNaN(best.error)) [best, other] = [other, best];
 		}
-		const { direction } = best;
+		const { direction, fraction } = best;
 		point.projectDirection(direction);
-		const steps = this.#steps(direction);
+		const steps = this.#steps(direction, fraction);
 		const movedX = point.moveMultiplier(direction, steps.multiplier);
 		const movedY = point.moveMoments(direction, steps.moments);
 		return movedX > SMALLEST_STEP || movedY > SMALLEST_STEP;
@@ -131,18 +137,21 @@ export class SemidefiniteSolver {
 		const point = this.#point;
 		let { direction, spare } = attempt;
 		this.#newton.solve(point, 0, null, spare);
-		const target = this.#centring(spare) * point.complementarity();
+		const ahead = this.#steps(spare, 1);
+		const fraction = LEAST_FRACTION + MORE_FRACTION * Math.min(ahead.multiplier, ahead.moments);
+		const target = this.#centring(spare, ahead) * point.complementarity();
 		this.#newton.solve(point, target, spare, direction);
-		let steps = this.#steps(direction);
+		let steps = this.#steps(direction, fraction);
 		for (let extra = 0; extra < MOST_CORRECTIONS && product(steps) < LONG_STEPS; extra++) {
 			this.#newton.solve(point, target, direction, spare);
-			const nextSteps = this.#steps(spare);
+			const nextSteps = this.#steps(spare, fraction);
 			if (product(nextSteps) < WORTHWHILE * product(steps)) break;
 			[direction, spare] = [spare, direction];
 			steps = nextSteps;
 		}
 		attempt.direction = direction;
 		attempt.spare = spare;
+		attempt.fraction = fraction;
 		attempt.error = this.#refine(attempt);
 	}
 
@@ -167,20 +176,18 @@ export class SemidefiniteSolver {
 	}
 
 	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
-	#centring(predictor: Direction): number {
+	#centring(predictor: Direction, { multiplier, moments }: Steps): number {
 		const point = this.#point;
-		const multiplierStep = Math.min(1, point.multiplierStep(predictor));
-		const momentStep = Math.min(1, point.slackStep(predictor));
-		const ahead = point.complementarityAfter(predictor, multiplierStep, momentStep);
+		const ahead = point.complementarityAfter(predictor, multiplier, moments);
 		const ratio = Math.max(0, ahead / point.complementarity());
-		const power = Math.max(1, 3 * Math.min(multiplierStep, momentStep) ** 2);
+		const power = Math.max(1, 3 * Math.min(multiplier, moments) ** 2);
 		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
 	}
 
-	#steps(direction: Direction): Steps {
+	#steps(direction: Direction, fraction: number): Steps {
 		return {
-			multiplier: Math.min(1, STEP_FRACTION * this.#point.multiplierStep(direction)),
-			moments: Math.min(1, STEP_FRACTION * this.#point.slackStep(direction))
+			multiplier: Math.min(1, fraction * this.#point.multiplierStep(direction)),
+			moments: Math.min(1, fraction * this.#point.slackStep(direction))
 		};
 	}
 }
@@ -189,6 +196,8 @@ export class SemidefiniteSolver {
 interface Attempt {
 	direction: Direction;
 	spare: Direction;
+	/** Of the way to the boundary, to be taken along it. */
+	fraction: number;
 	error: number;
 }
 

@@ -81,7 +81,8 @@ export function provenUpperBound(
 	const n = programme.size;
 	const shift = provenShift(multipliers.matrix, n, work);
 	if (shift === null) return null;
-	const sums = programme.objective.slice();
+	const { index, objective } = programme;
+	const sums = objective.slice();
 	const sizes = sums.map(Math.abs);
 	const counts = new Int32Array(sums.length).fill(2);
 	const add = (i: number, value: number) => {
@@ -89,11 +90,13 @@ export function provenUpperBound(
 		sizes[i] = (sizes[i] ?? 0) + Math.abs(value);
 		counts[i] = (counts[i] ?? 0) + 1;
 	};
-	programme.index.forEach((moment, cell) => {
+	for (let cell = 0; cell < index.length; cell++) {
+		const moment = index[cell] ?? -1;
 		if (moment >= 0) add(moment, multipliers.matrix[cell] ?? 0);
-	});
-	const addRow = (row: SparseRow, weight: number) =>
-		row.columns.forEach((column, at) => add(column, weight * (row.values[at] ?? 0)));
+	}
+	const addRow = ({ columns, values }: SparseRow, weight: number) => {
+		for (let at = 0; at < columns.length; at++) add(columns[at] ?? 0, weight * (values[at] ?? 0));
+	};
 	programme.rows.forEach((row, j) => addRow(row, multipliers.rows[j] ?? 0));
 	programme.equalities.forEach((row, k) => addRow(row, multipliers.equalities[k] ?? 0));
 
@@ -104,10 +107,11 @@ export function provenUpperBound(
 	problem.equalities.forEach(({ error }, k) => {
 		slack += error * Math.abs(multipliers.equalities[k] ?? 0);
 	});
-	sums.forEach((sum, i) => {
-		if (i > 0) slack += Math.abs(sum);
-		slack += gamma((counts[i] ?? 0) + 1) * (sizes[i] ?? 0) * (1 + 4 * U * (counts[i] ?? 0));
-	});
+	for (let i = 0; i < sums.length; i++) {
+		const count = counts[i] ?? 0;
+		if (i > 0) slack += Math.abs(sums[i] ?? 0);
+		slack += gamma(count + 1) * (sizes[i] ?? 0) * (1 + 4 * U * count);
+	}
 	slack *= 1 + 2 * gamma(sums.length + programme.rows.length + programme.equalities.length + 8);
 	const bound = nextDouble(nextDouble((sums[0] ?? 0) + slack, 1), 1);
 	return Number.isFinite(bound) ? { bound, shift } : null;
@@ -140,12 +144,14 @@ export function provenFeasibleValue(
 	let value = 0;
 	let size = 0;
 	let count = 2;
-	programme.objective.forEach((c, i) => {
-		if (c === 0) return;
-		value += c * (y[i] ?? 0);
-		size += Math.abs(c * (y[i] ?? 0));
+	for (let i = 0; i < programme.objective.length; i++) {
+		const c = programme.objective[i] ?? 0;
+		if (c === 0) continue;
+		const product = c * (y[i] ?? 0);
+		value += product;
+		size += Math.abs(product);
 		count++;
-	});
+	}
 	const slack = 1.1 * gamma(count) * size + problem.objectiveError * (1 + 4 * U);
 	return nextDouble(nextDouble(value - slack, -1), -1);
 }

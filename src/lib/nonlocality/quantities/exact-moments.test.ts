@@ -154,17 +154,20 @@ test('whatever the multipliers, the certificate made of them is checked', () => 
 	const noise = fc.array(fc.double({ min: -1, max: 1, noNaN: true }), { minLength: 5 });
 	let made = 0;
 	fc.assert(
-		fc.property(noise, fc.constantFrom(1e-9, 1, 1e6), (numbers, size) => {
+		fc.property(noise, fc.constantFrom(1e-14, 1e-9, 1e-6), (numbers, size) => {
 			const draw = (i: number) => size * (numbers[i % numbers.length] ?? 0);
 			const matrix = new Float64Array(n * n);
 			for (let i = 0; i < n; i++) {
 				for (let j = 0; j <= i; j++) {
-					matrix[i * n + j] = draw(i * j + i) + (i === j ? 2 * n * size : 0);
+					const cell = (i * (i + 1)) / 2 + j;
+					matrix[i * n + j] = (floating.multiplier[cell] ?? 0) + draw(cell);
 					matrix[j * n + i] = matrix[i * n + j] ?? 0;
 				}
 			}
-			const rows = Float64Array.from(relaxation.programme.rows, (_, j) => draw(j));
-			const equalities = Float64Array.of(draw(3));
+			const [inequality = 0, equality = 0] = floating.constraintMultipliers ?? [];
+			const weights = [...Object.values(floating.rowMultipliers), inequality];
+			const rows = Float64Array.from(weights, (weight, j) => weight + draw(j));
+			const equalities = Float64Array.of(equality + draw(3));
 			const bound = exactMomentBound(
 				problem,
 				g,

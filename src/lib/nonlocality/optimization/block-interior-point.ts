@@ -10,7 +10,7 @@ import {
 import type { Iterate } from './semidefinite-programme';
 import { addRows, evaluateRow } from './moment-programme';
 import type { BlockDirection, BlockState } from './block-newton-system';
-import { largestStep } from './block-step-length';
+import { largestBlockStep } from './block-step-length';
 
 /** Below this step in both variables rounding has won. */
 export const SMALLEST_STEP = 1e-6;
@@ -125,7 +125,7 @@ export class BlockInteriorPoint implements BlockState {
 		const directions = blocksOf(this.#programme, direction);
 		return this.#programme.sizes.reduce(
 			(step, size, b) =>
-				Math.min(step, largestStep(inverses[b] ?? inverse, directions[b] ?? direction, size)),
+				Math.min(step, largestBlockStep(inverses[b] ?? inverse, directions[b] ?? direction, size)),
 			Infinity
 		);
 	}

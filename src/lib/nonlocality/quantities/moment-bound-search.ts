@@ -18,8 +18,12 @@ const LARGEST_GAP = 2e-9;
 const ROUNDING_GAP = 1e-10;
 /** A gap smaller by less than this factor is no progress. */
 const WORTHWHILE = 0.8;
-/** How far to go from the last proved point towards an iterate that cannot be proved itself. */
-const TOWARDS_ITERATE = [1, 0.99, 0.95, 0.85, 0.7, 0.5, 0.25];
+/** How far to go from the maximally mixed state, well inside, towards an iterate ... */
+const NEARLY_THE_ITERATE = [1 - 1e-10, 1 - 1e-9, 1 - 1e-8, 1 - 1e-7];
+/** ... and from the last proved point, where the iterate cannot be proved itself. */
+const TOWARDS_ITERATE = [0.99, 0.95, 0.85, 0.7, 0.5, 0.25];
+/** Parts of an earlier multiplier to mix in where the last one cannot be proved positive. */
+const INTERIOR_PARTS = [0.01, 0.03, 0.1, 0.3];
 /**
  * Iterations without such progress after which there will be none: few where rounding is the
  * reason, more where the problem has no interior (Hardy's) and each step is short.
@@ -39,8 +43,12 @@ export function refuseWhenCancelled(control: Control): void {
 export interface RouteHooks {
 	/** Called at least every few milliseconds of work; stops the solver by throwing. */
 	poll(): void;
-	/** Sees an iterate of the original problem; true ends the iteration. */
-	visit(iterate: Iterate): boolean;
+	/**
+	 * Sees an iterate of the original problem; true ends the iteration.
+	 * @param earlier iterates that were passed, the last first, for when this one lies too near the
+	 *   boundary to be proved.
+	 */
+	visit(iterate: Iterate, earlier?: () => Iterable<Iterate>): boolean;
 	/** Told of an iterate that is not worth a proof yet. */
 	pass(iteration: number): void;
 }
@@ -84,6 +92,8 @@ export class MomentBoundSearch {
 	readonly #gamma: Float64Array;
 	#multipliers: Multipliers | null = null;
 	#shift = 0;
+	/** The last multipliers whose Z is proved positive as it is. */
+	#interior: Multipliers | null = null;
 	#moments: Float64Array | null = null;
 	#bestError = Infinity;
 	#bestGap = Infinity;
@@ -123,9 +133,9 @@ export class MomentBoundSearch {
 				refuseWhenCancelled(this.#control);
 				if (this.#control.now() > this.#deadline) throw new BudgetSpent();
 			},
-			visit: (iterate) => {
+			visit: (iterate, earlier) => {
 				iterations = iterate.iteration;
-				return this.#visit(iterate);
+				return this.#visit(iterate, earlier);
 			},
 			pass: (iteration) => {
 				iterations = iteration;
@@ -153,20 +163,14 @@ export class MomentBoundSearch {
 	}
 
 	/** Keeps the best bounds of all iterates; true when they are good enough, or stopped improving. */
-	#visit(iterate: Iterate): boolean {
+	#visit(iterate: Iterate, earlier?: () => Iterable<Iterate>): boolean {
+		const shiftless = this.#keepMultipliers(this.#scaled(iterate));
+		const feasible = this.#keepFeasible(iterate.moments);
+		if (earlier && ((!shiftless && !this.#interior) || (!feasible && !this.#moments)))
+			this.#seekInterior(earlier());
+		if (!shiftless) this.#keepMixtures(this.#scaled(iterate));
+		if (!feasible) this.#keepTowards(iterate.moments);
 		const scale = this.#scale;
-		const multipliers = {
-			matrix: iterate.multiplier.map((value) => value * scale),
-			rows: iterate.rowMultipliers.map((value) => Math.max(0, value) * scale),
-			equalities: iterate.equalityMultipliers.map((value) => value * scale)
-		};
-		const proven = provenUpperBound(this.#problem, multipliers, this.#work);
-		if (proven && proven.bound < this.upper) {
-			this.upper = proven.bound;
-			this.#shift = proven.shift;
-			this.#multipliers = multipliers;
-		}
-		this.#keepFeasible(iterate.moments);
 		const error = Math.abs(iterate.dual - iterate.primal) + iterate.residual;
 		if (error < this.#bestError) {
 			this.#bestError = error;
@@ -178,36 +182,91 @@ export class MomentBoundSearch {
 		return this.#isEnough();
 	}
 
-	/**
-	 * Keeps y when Gamma(y) is proved positive and g is larger there. Once the iterates lie too near
-	 * the boundary for that, goes as far towards them from the last good point as the proof allows.
-	 */
-	#keepFeasible(moments: Float64Array): void {
-		const { programme, start } = this.#problem;
-		const from = this.#moments ?? (programme.rows.length === 0 ? start : null);
-		for (const fraction of from ? TOWARDS_ITERATE : [1]) {
-			const candidate =
-				from && fraction < 1
-					? moments.map((value, i) => (1 - fraction) * (from[i] ?? 0) + fraction * value)
-					: moments.slice();
-			candidate[0] = 1;
-			const value = provenFeasibleValue(this.#problem, candidate, this.#work, this.#gamma);
-			if (value === null) continue;
-			if (this.lower === null || value > this.lower) {
-				this.lower = value;
-				this.#moments = candidate;
-			}
-			return;
+	#scaled(iterate: Iterate): Multipliers {
+		const scale = this.#scale;
+		return {
+			matrix: iterate.multiplier.map((value) => value * scale),
+			rows: iterate.rowMultipliers.map((value) => Math.max(0, value) * scale),
+			equalities: iterate.equalityMultipliers.map((value) => value * scale)
+		};
+	}
+
+	/** Keeps the bound they prove when it is the best; true when Z is proved positive as it is. */
+	#keepMultipliers(multipliers: Multipliers): boolean {
+		const proven = provenUpperBound(this.#problem, multipliers, this.#work);
+		if (proven && proven.bound < this.upper) {
+			this.upper = proven.bound;
+			this.#shift = proven.shift;
+			this.#multipliers = multipliers;
 		}
+		if (proven?.shift !== 0) return false;
+		this.#interior = multipliers;
+		return true;
+	}
+
+	/**
+	 * Near the optimum rounding hides whether Z is positive. A small part of an earlier multiplier,
+	 * well inside, often costs less than the shift that would cover it.
+	 */
+	#keepMixtures(multipliers: Multipliers): void {
+		const interior = this.#interior;
+		if (!interior) return;
+		for (const part of INTERIOR_PARTS) {
+			const mixed = (a: Float64Array, b: Float64Array) =>
+				a.map((value, i) => (1 - part) * value + part * (b[i] ?? 0));
+			const mixture = {
+				matrix: mixed(multipliers.matrix, interior.matrix),
+				rows: mixed(multipliers.rows, interior.rows),
+				equalities: mixed(multipliers.equalities, interior.equalities)
+			};
+			if (this.#keepMultipliers(mixture)) break;
+		}
+		this.#interior = interior;
+	}
+
+	/** Earlier iterates, the last first, until both sides have one that is proved as it is. */
+	#seekInterior(earlier: Iterable<Iterate>): void {
+		for (const iterate of earlier) {
+			if (!this.#interior) this.#keepMultipliers(this.#scaled(iterate));
+			if (!this.#moments) this.#keepFeasible(iterate.moments);
+			if (this.#interior && this.#moments) return;
+		}
+	}
+
+	/** Keeps y when Gamma(y) is proved positive; false when it is not. */
+	#keepFeasible(moments: Float64Array): boolean {
+		const candidate = moments.slice();
+		candidate[0] = 1;
+		const value = provenFeasibleValue(this.#problem, candidate, this.#work, this.#gamma);
+		if (value === null) return false;
+		if (this.lower === null || value > this.lower) {
+			this.lower = value;
+			this.#moments = candidate;
+		}
+		return true;
+	}
+
+	/** Goes from a good point towards an iterate, as far as the proof allows. */
+	#keepTowards(moments: Float64Array): void {
+		const { programme, start } = this.#problem;
+		const towards = (from: Float64Array, fractions: readonly number[]) =>
+			fractions.some((fraction) =>
+				this.#keepFeasible(
+					moments.map((value, i) => (1 - fraction) * (from[i] ?? 0) + fraction * value)
+				)
+			);
+		if (programme.rows.length === 0) towards(start, NEARLY_THE_ITERATE);
+		if (this.#moments) towards(this.#moments, TOWARDS_ITERATE);
 	}
 
 	/** Without a proved lower side the iterate itself stands in for it. */
 	#isEnough(): boolean {
 		const gap = Math.abs(this.upper - (this.lower ?? this.optimum ?? Infinity));
+		const improves = gap < WORTHWHILE * this.#bestGap;
+		if (improves) this.#bestGap = gap;
 		if (gap <= this.#target) return true;
-		if (gap < WORTHWHILE * this.#bestGap) {
+		if (improves) {
 			this.#idle = 0;
-			this.#bestGap = gap;
 			return false;
 		}
 		this.#idle++;

@@ -6,8 +6,14 @@ import type { Route } from './moment-bound-search';
 import { MOST_ITERATIONS, SOLVER_TOLERANCE } from './plain-route';
 import type { SymmetryReduction } from './symmetry-reduction';
 
-/** Relative gap and residual of the reduced programme from which an iterate is worth its proof. */
-const WORTH_A_PROOF = 2e-8;
+/** Relative gap and residual of the reduced programme from which an iterate is worth its proof ... */
+const WORTH_A_PROOF = 2e-9;
+/** ... or from here on, where they are not this much smaller than before. */
+const NEARLY = 1e-6;
+const WORTHWHILE = 0.8;
+
+/** How many passed iterates are remembered. */
+const MOST_PASSED = 5;
 
 /** The relaxation on its invariant moments; iterates are lifted back where they are visited. */
 export function reducedRoute(reduction: SymmetryReduction): Route {
@@ -23,25 +29,45 @@ export function reducedRoute(reduction: SymmetryReduction): Route {
 			const own = { ...programme, objective: programme.objective.map((c) => c / scale) };
 			const start = new Float64Array(programme.unknowns + 1);
 			start[0] = 1; // the maximally mixed state: every block is the unit matrix
+			let best = Infinity;
+			const passed: Iterate[] = [];
+			function* earlier(): Iterable<Iterate> {
+				for (const iterate of passed.toReversed()) yield lifted(scaled, reduction, iterate);
+			}
 			const solver = new BlockSolver(own, start, {
 				poll: hooks.poll,
 				visit: (iterate) => {
 					lift = () => lifted(scaled, reduction, iterate);
-					const worth = WORTH_A_PROOF * (1 + Math.abs(iterate.primal));
-					if (Math.abs(iterate.dual - iterate.primal) + iterate.residual > worth) {
+					const error =
+						(Math.abs(iterate.dual - iterate.primal) + iterate.residual) /
+						(1 + Math.abs(iterate.primal));
+					const improves = error <= WORTHWHILE * best;
+					best = Math.min(best, error);
+					if (error > NEARLY || (error > WORTH_A_PROOF && improves)) {
+						passed.push(copied(iterate));
+						if (passed.length > MOST_PASSED) passed.shift();
 						hooks.pass(iterate.iteration);
 						return false;
 					}
 					const visited = lift();
 					lift = null;
-					return hooks.visit(visited);
+					return hooks.visit(visited, earlier);
 				}
 			});
 			const end = solver.run({ tolerance: SOLVER_TOLERANCE, mostIterations: MOST_ITERATIONS });
-			if (lift) hooks.visit(lift());
+			if (lift) hooks.visit(lift(), earlier);
 			return end;
 		},
 		unvisited: () => lift?.() ?? null
+	};
+}
+
+function copied(iterate: Iterate): Iterate {
+	return {
+		...iterate,
+		moments: iterate.moments.slice(),
+		multiplier: iterate.multiplier.slice(),
+		rowMultipliers: iterate.rowMultipliers.slice()
 	};
 }
 

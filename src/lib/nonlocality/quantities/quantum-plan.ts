@@ -1,5 +1,5 @@
 import { SolverStop, type Level, type ProblemOf } from '../problem';
-import type { Scenario } from '../scenario/scenario';
+import type { Functional } from '../scenario/functional';
 import { levelWords } from './moment-level';
 import { STATE_LIMIT } from './see-saw-dimensions';
 
@@ -11,7 +11,7 @@ const ITERATIONS = 15;
 /** Moments per squared row: 1/4 to 1/9 over the levels of the usual scenarios. */
 const MOMENTS_PER_CELL = 1 / 8;
 
-/** Relaxations in the order they are tried: each costs a multiple of the one before. */
+/** Relaxations in the order they are tried: each costs a multiple of the one before, and bounds more. */
 export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
 	if (problem.levels) return problem.levels;
 	// With three parties and more the levels 1 and 2 are no cheaper, or lack a moment.
@@ -20,14 +20,23 @@ export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
 		: [{ perParty: 1 }, 3, { perParty: 2 }, 4];
 }
 
-/** A guess at the seconds that a level takes; Infinity past the limits or where it does not fit. */
-export function predictSeconds(scenario: Scenario, level: Level): number {
+/** What a level is predicted to cost; `refused` in words where it does not fit or is too large. */
+export interface LevelForecast {
+	readonly seconds: number;
+	readonly refused: string | null;
+}
+
+/**
+ * The one place that predicts a level's seconds: whatever makes levels cheaper (symmetry, faster
+ * kernels) belongs here. A forecast orders the work only; it is corrected by what levels take.
+ */
+export function predictLevel({ scenario }: Functional, level: Level): LevelForecast {
 	try {
 		const rows = levelWords(scenario, level, ROWS_LIMIT).length;
 		const moments = MOMENTS_PER_CELL * rows * rows;
-		return (ITERATIONS * (rows ** 4 + moments ** 3 / 6)) / SPEED;
+		return { seconds: (ITERATIONS * (rows ** 4 + moments ** 3 / 6)) / SPEED, refused: null };
 	} catch (error) {
-		if (error instanceof SolverStop) return Infinity;
+		if (error instanceof SolverStop) return { seconds: Infinity, refused: error.message };
 		throw error;
 	}
 }

@@ -3,7 +3,7 @@ import type { ChainFunctional, ChainMeasurement, ChainStrategy } from './chain-s
 /** Power steps towards the top of the state's matrix in each iteration. */
 const POWER_STEPS = 8;
 /** Gains are looked at once in so many iterations: single ones are too small to tell from rounding. */
-const LOOK_EVERY = 100;
+const LOOK_EVERY = 50;
 /** A climb is given up when so many times its last gain would not reach the best value known. */
 const OPTIMISM = 20;
 const MAX_ITERATIONS = 40_000;
@@ -12,7 +12,7 @@ const MAX_ITERATIONS = 40_000;
  * Alternating maximisation within chain form, in place: each measurement is set to the projector on
  * the positive part of its operator's blocks (the optimum among those of its form), then the state
  * moves towards the top of its matrix by power steps. The value never falls.
- * @param tolerance gain of 100 iterations at which the climb ends
+ * @param tolerance gain of 50 iterations at which the climb ends
  * @returns the value reached
  */
 export function climbChain(

@@ -12,14 +12,14 @@ import { BudgetSpent } from './search-budget';
 import type { SeeSawStrategy } from './see-saw-strategy';
 
 /** Patterns are tried in this local dimension: long enough to tell them apart, and quick. */
-const EXPLORED_DIMENSION = 20;
+const EXPLORED_DIMENSION = 16;
 /** Starts without a pattern worth growing after which none is expected. */
 const MOST_EXPLORED = 1500;
 /** Starts in the largest dimension without a better value after which the pattern is spent. */
 const MOST_FRUITLESS = 60;
 /** One start in so many still tries another pattern. */
 const EXPLORE_EVERY = 4;
-/** Gain of 100 iterations, as a share of the scale, at which a climb ends. */
+/** Gain of 50 iterations, as a share of the scale, at which a climb ends. */
 const CONVERGED = 1e-12;
 /** A start is worth growing once it exceeds what is known by this share of the scale. */
 const WORTHWHILE = 1e-6;

@@ -105,6 +105,27 @@ describe('quantumMaximum', () => {
 		expect(method['lowerFrom']).toBe('local');
 	});
 
+	it('begins at a strategy that it is given, and notes levels that are refused', () => {
+		const spec = { name: 'cglmp', d: 3 } as const;
+		const first = enclosureOf(
+			quantumMaximum(setUp(spec).problem, setUp(spec).g, control).certificate
+		);
+		if (first.lower?.kind !== 'quantum-strategy') throw new Error('no strategy');
+		// dimension 1 and a level past the limits alone would reach 2 and nothing
+		const { g, problem } = setUp(spec, {
+			dimensions: [1],
+			levels: [1, { perParty: 6 }],
+			start: first.lower.strategy
+		});
+		const { lower, method, certificate } = quantumMaximum(problem, g, control);
+		expect(lower).toBeGreaterThan(2.914854215);
+		expect(method['levels']).toMatchObject([
+			{ level: 1 },
+			{ reason: expect.stringMatching(/rows/) }
+		]);
+		expect(checkEnclosure(problem, g, enclosureOf(certificate))).toMatchObject({ checked: true });
+	});
+
 	it('uses only the levels and dimensions it is given, and ends when they are spent', () => {
 		const { g, problem } = setUp(
 			{ name: 'i3322' },

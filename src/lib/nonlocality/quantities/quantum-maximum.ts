@@ -1,33 +1,33 @@
-import { SolverStop, type Control, type Level, type ProblemOf } from '../problem';
+import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
+import { givenStrategy } from './given-strategy';
 import { localMaximum } from './local-maximum';
-import { npaBound } from './npa-bound';
 import type { Outcome } from './outcome';
 import { QuantumEnclosure } from './quantum-enclosure';
-import { levelsToTry, predictSeconds } from './quantum-plan';
-import { StrategyEscalation } from './quantum-search';
+import { LevelArm } from './quantum-levels';
+import { dimensionsToTry } from './quantum-plan';
+import { mostPromising, type Arm } from './quantum-schedule';
+import { DimensionArm, GrowthArm } from './quantum-search';
+import { StrategyGrowth } from './see-saw-growth';
+import { searchStrategies } from './strategy-search';
 
-/** Share of the time left that one relaxation may take, so that both sides get their turn. */
-const LEVEL_SHARE = 0.75;
-/** A level predicted to take more than this many times what is left is not begun. */
-const HOPELESS = 3;
-/** The local maximum is a first lower side only: a share of the budget. */
-const LOCAL_SHARE = 0.25;
-/** Between two levels see-saw gets this share of what the next level is predicted to take. */
-const SEARCH_SHARE = 0.5;
-/** A level predicted to be this cheap (s) is tried at once. */
-const CHEAP_LEVEL = 0.1;
+/** Share of the time left that one relaxation or search may take, so that all get their turn. */
+const RUN_SHARE = 0.75;
+/** The local maximum is a first lower side only, a start another: a share of the budget. */
+const FIRST_SHARE = 0.25;
 
 /**
  * Encloses the quantum maximum of g (the supremum over finite-dimensional tensor-product
- * strategies): from below by the best deterministic strategy and by see-saw in growing local
- * dimensions, from above by moment-matrix relaxations of growing level, cheap ones first.
- * Stops when upper - lower <= `gap`, when `seconds` are over, or when nothing is left to try.
+ * strategies): from below by the best deterministic strategy, by see-saw in several local
+ * dimensions and by growing strategies, from above by moment-matrix relaxations of growing level.
+ * After the local maximum and a first relaxation the next step is always the one with the largest
+ * expected gain per second (quantum-schedule.ts). Stops when upper - lower <= `gap`, when `seconds`
+ * are over, or when nothing is left to try.
  *
  * Guarantee: both sides are proved, each by its part of the certificate. The two need not meet: the
  * relaxations converge to the commuting-operator value.
- * @throws SolverStop `cancelled` when told to stop, `failed` for constraints, `limit` when neither
- *   side could be had
+ * @throws SolverStop `cancelled` when told to stop, `failed` for constraints or a start that does not
+ *   fit, `limit` when neither side could be had
  * @see Navascues, Pironio, Acin, New J. Phys. 10, 073013 (2008); Werner and Wolf, Quantum Inf.
  *   Comput. 1(3), 1 (2001)
  */
@@ -39,7 +39,7 @@ export function quantumMaximum(
 	if (problem.constraints.length > 0)
 		throw new SolverStop(
 			'failed',
-			'the quantum maximum under additional constraints has no solver yet; use "npa" with them'
+			'the quantum maximum under additional constraints has no solver yet; use "npa" or "see-saw" with them'
 		);
 	return new Escalation(problem, g, control).run();
 }
@@ -50,9 +50,10 @@ class Escalation {
 	readonly #control: Control;
 	readonly #begin: number;
 	readonly #enclosure = new QuantumEnclosure();
-	readonly #levels: Level[];
-	readonly #levelsDone: Record<string, unknown>[] = [];
-	readonly #strategies: StrategyEscalation;
+	readonly #levels: LevelArm;
+	readonly #dimensions: readonly DimensionArm[];
+	readonly #growth: StrategyGrowth;
+	readonly #grower: GrowthArm | null;
 	#local: Record<string, unknown> = {};
 
 	constructor(problem: ProblemOf<'quantum'>, g: Functional, control: Control) {
@@ -60,25 +61,44 @@ class Escalation {
 		this.#g = g;
 		this.#control = control;
 		this.#begin = control.now();
-		this.#levels = [...levelsToTry(problem)];
-		this.#strategies = new StrategyEscalation(problem, g, this.#enclosure, this.#passingOn());
+		const passingOn = this.#passingOn();
+		this.#levels = new LevelArm(problem, g, this.#enclosure, {
+			control: passingOn,
+			left: () => this.#left
+		});
+		this.#growth = new StrategyGrowth(g, { seed: problem.seed, largest: null });
+		const around = { problem, g, known: this.#enclosure, control: passingOn };
+		this.#dimensions = dimensionsToTry(problem).map(
+			(dimension, place) =>
+				new DimensionArm(dimension, place === 0, {
+					...around,
+					onBetter: (strategy) => this.#growth.growFrom(strategy)
+				})
+		);
+		// dimensions that are given are meant to be kept
+		this.#grower = problem.dimensions === null ? new GrowthArm(this.#growth, around) : null;
 	}
 
 	run(): Outcome {
 		this.#tryLocal();
-		this.#tryLevel();
-		if (!this.#closed) this.#strategies.begin(this.#left / 4);
+		this.#tryStart();
+		while (this.#enclosure.upper === null && this.#left > 0 && this.#levels.open)
+			this.#run(this.#levels);
+		const arms: readonly Arm[] = [
+			this.#levels,
+			...this.#dimensions,
+			...(this.#grower ? [this.#grower] : [])
+		];
 		while (!this.#closed && this.#left > 0) {
-			const next = this.#secondsOfNextLevel();
-			const more =
-				next === null
-					? this.#strategies.searchToTheEnd(this.#left)
-					: this.#strategies.search(this.#slice(next));
-			if (this.#closed) break;
-			const tried = this.#tryLevel();
-			if (!more && !tried) break;
+			const next = mostPromising(arms, this.#enclosure.width);
+			if (!next) break;
+			this.#run(next);
 		}
 		return this.#outcome();
+	}
+
+	#run(arm: Arm): void {
+		arm.run(RUN_SHARE * this.#left);
 	}
 
 	get #left(): number {
@@ -90,88 +110,40 @@ class Escalation {
 		return this.#enclosure.width <= this.#problem.gap;
 	}
 
-	/** Seconds of see-saw before a level of the predicted cost. */
-	#slice(levelSeconds: number): number {
-		return levelSeconds < CHEAP_LEVEL ? 0 : Math.min(SEARCH_SHARE * levelSeconds, this.#left / 2);
-	}
-
-	/** Drops the levels that have no chance within the budget; null when none is left. */
-	#secondsOfNextLevel(): number | null {
-		for (;;) {
-			const level = this.#levels[0];
-			if (level === undefined) return null;
-			const predicted = predictSeconds(this.#g.scenario, level);
-			if (predicted <= HOPELESS * this.#left || this.#enclosure.upper === null) return predicted;
-			this.#levels.shift();
-			this.#levelsDone.push({ level, reason: 'not begun: too large for the time left' });
-		}
-	}
-
 	#tryLocal(): void {
-		const { seconds } = this.#problem;
-		this.#attempt(
-			() => {
-				const problem = {
-					...this.#problem,
-					quantity: 'local',
-					seconds: LOCAL_SHARE * seconds
-				} as const;
-				const found = localMaximum(problem, this.#g, this.#passingOn());
-				const { lower, certificate } = found;
-				if (lower === null || certificate?.kind !== 'deterministic-strategy') return;
-				this.#enclosure.raise(lower, certificate);
-				this.#local = { local: lower };
-			},
-			(reason) => (this.#local = { localReason: reason })
-		);
-	}
-
-	/** Runs the next level that has a chance; false when there is none. */
-	#tryLevel(): boolean {
-		while (this.#left > 0 && this.#secondsOfNextLevel() !== null) {
-			const level = this.#levels.shift();
-			if (level !== undefined && this.#runLevel(level)) return true;
-		}
-		return false;
-	}
-
-	#runLevel(level: Level): boolean {
-		const start = this.#control.now();
-		const seconds = LEVEL_SHARE * this.#left;
-		const elapsed = () => (this.#control.now() - start) / 1000;
-		return this.#attempt(
-			() => {
-				const problem = {
-					...this.#problem,
-					quantity: 'npa',
-					level,
-					nonNegative: false,
-					seconds
-				} as const;
-				const { upper, certificate, method } = npaBound(problem, this.#g, this.#passingOn());
-				if (
-					upper !== null &&
-					(certificate?.kind === 'npa-dual' || certificate?.kind === 'npa-exact')
-				)
-					this.#enclosure.reduce(upper, certificate, level);
-				const { size, ending } = method;
-				this.#levelsDone.push({ level, upper, size, ending, seconds: elapsed() });
-			},
-			(reason) => this.#levelsDone.push({ level, reason, seconds: elapsed() })
-		);
-	}
-
-	/** A limit or failure of one part is noted, not fatal; false then. Being cancelled ends all. */
-	#attempt(work: () => void, note: (reason: string) => void): boolean {
+		const seconds = FIRST_SHARE * this.#problem.seconds;
 		try {
-			work();
-			return true;
+			const problem = { ...this.#problem, quantity: 'local', seconds } as const;
+			const { lower, certificate } = localMaximum(problem, this.#g, this.#passingOn());
+			if (lower === null || certificate?.kind !== 'deterministic-strategy') return;
+			this.#enclosure.raise(lower, certificate);
+			this.#local = { local: lower };
 		} catch (error) {
 			if (!(error instanceof SolverStop) || error.status === 'cancelled') throw error;
-			if (this.#enclosure.width < 0) throw error;
-			note(error.message);
-			return false;
+			this.#local = { localReason: error.message };
 		}
+	}
+
+	/** Climbs from the strategy given with the problem. */
+	#tryStart(): void {
+		const { start, seed, seconds } = this.#problem;
+		if (!start) return;
+		const from = givenStrategy(this.#g.scenario, start);
+		const search = {
+			dimensions: from.dimensions,
+			from,
+			starts: 1,
+			firstStart: 0,
+			seed,
+			seconds: FIRST_SHARE * seconds,
+			state: 'free',
+			target: null,
+			known: null
+		} as const;
+		const found = searchStrategies(this.#g, search, this.#passingOn());
+		if (!found) return;
+		this.#enclosure.raise(found.certificate.value, found.certificate);
+		this.#growth.growFrom(found.strategy);
 	}
 
 	/** The parts' own progress, with the enclosure so far in place of their sides. */
@@ -200,6 +172,7 @@ class Escalation {
 			: this.#left > 0
 				? 'nothing left to try'
 				: 'budget spent';
+		const grown = this.#grower?.summary();
 		return {
 			lower,
 			upper,
@@ -214,8 +187,9 @@ class Escalation {
 				lowerFrom,
 				upperLevel,
 				...this.#local,
-				levels: this.#levelsDone,
-				...this.#strategies.summary()
+				levels: this.#levels.done,
+				...(grown && { grown }),
+				dimensions: this.#dimensions.flatMap((arm) => arm.summary() ?? [])
 			},
 			certificate: this.#enclosure.certificate()
 		};

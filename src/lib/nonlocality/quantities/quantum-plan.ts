@@ -1,5 +1,5 @@
 import { SolverStop, type Level, type ProblemOf } from '../problem';
-import type { Scenario } from '../scenario/scenario';
+import type { Functional } from '../scenario/functional';
 import { levelWords } from './moment-level';
 import { STATE_LIMIT } from './see-saw-dimensions';
 
@@ -10,8 +10,14 @@ const SPEED = 1e9;
 const ITERATIONS = 15;
 /** Moments per squared row: 1/4 to 1/9 over the levels of the usual scenarios. */
 const MOMENTS_PER_CELL = 1 / 8;
+/** Products of n x n matrices that an iteration of level 1 with two-outcome inputs takes. */
+const LEVEL_ONE_PRODUCTS = 12;
+/** Seconds below which a level is solved before its symmetries are worth a look. */
+const DEAR = 0.3;
+/** A reduction by more symmetries than this is no cheaper: its set-up then counts. */
+const MOST_USED_ORDER = 64;
 
-/** Relaxations in the order they are tried: each costs a multiple of the one before. */
+/** Relaxations in the order they are tried: each costs a multiple of the one before, and bounds more. */
 export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
 	if (problem.levels) return problem.levels;
 	// With three parties and more the levels 1 and 2 are no cheaper, or lack a moment.
@@ -20,14 +26,36 @@ export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
 		: [{ perParty: 1 }, 3, { perParty: 2 }, 4];
 }
 
-/** A guess at the seconds that a level takes; Infinity past the limits or where it does not fit. */
-export function predictSeconds(scenario: Scenario, level: Level): number {
+/** What a level is predicted to cost; `refused` in words where it does not fit or is too large. */
+export interface LevelForecast {
+	readonly seconds: number;
+	readonly refused: string | null;
+}
+
+/**
+ * The one place that predicts a level's seconds: whatever makes levels cheaper belongs here. A
+ * forecast orders the work only; it is corrected by what levels take.
+ * @param orderOfSymmetries asked only where a level would be dear without them
+ */
+export function predictLevel(
+	{ scenario }: Functional,
+	level: Level,
+	orderOfSymmetries: () => number
+): LevelForecast {
 	try {
 		const rows = levelWords(scenario, level, ROWS_LIMIT).length;
+		const seconds = (cost: number) => (ITERATIONS * cost) / SPEED;
+		if (level === 1 && scenario.outputs.flat().every((count) => count === 2))
+			return { seconds: seconds(LEVEL_ONE_PRODUCTS * rows ** 3), refused: null };
 		const moments = MOMENTS_PER_CELL * rows * rows;
-		return (ITERATIONS * (rows ** 4 + moments ** 3 / 6)) / SPEED;
+		const plain = seconds(rows ** 4 + moments ** 3 / 6);
+		if (plain < DEAR) return { seconds: plain, refused: null };
+		// Each orbit of moments leaves one, and the blocks share the rows among them.
+		const order = Math.min(orderOfSymmetries(), MOST_USED_ORDER);
+		const reduced = rows ** 4 / order + (moments / order) ** 3 / 6;
+		return { seconds: seconds(reduced), refused: null };
 	} catch (error) {
-		if (error instanceof SolverStop) return Infinity;
+		if (error instanceof SolverStop) return { seconds: Infinity, refused: error.message };
 		throw error;
 	}
 }

@@ -1,27 +1,26 @@
 import type { StrategyCertificate } from '../certificates/types';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { dimensionsToTry } from './quantum-plan';
+import { ArmHistory, type Arm } from './quantum-schedule';
 import { partyDimensions } from './see-saw-dimensions';
-import { StrategyGrowth } from './see-saw-growth';
+import type { StrategyGrowth } from './see-saw-growth';
+import type { SeeSawStrategy } from './see-saw-strategy';
 import { searchStrategies } from './strategy-search';
 
 /** Starts of the first visit to a dimension; later visits double it. */
 const FIRST_STARTS = 6;
-/** Growing begins when each small dimension had this many starts. */
-const STARTS_BEFORE_GROWTH = 20;
 /** A dimension visited with this many starts in all has shown what random starts can reach. */
 const MOST_STARTS = 400;
-/** Keeps dimensions in turn where a start takes less than the clock's resolution (s). */
-const LEAST_START_SECONDS = 0.001;
-
-interface Visit {
-	readonly dimension: number;
-	starts: number;
-	batch: number;
-	seconds: number;
-	lower: number | null;
-}
+/** A visit that takes so many times what was predicted is cut short, but not before so long (s). */
+const OVERRUN = 4;
+const SHORTEST_VISIT = 0.2;
+/** Shares of the width that a first run may take off: the likeliest dimension's, the others'. */
+const LIKELIEST = 1 / 2;
+const OTHERS = 1 / 8;
+/** Seconds of the first run of growing; later ones double it. */
+const FIRST_GROWTH = 1;
+/** A guess at the seconds of a start, by the entries of its state. */
+const SECONDS_OF_START = (entries: number) => 2e-4 * entries ** 1.3;
 
 /** The sides known at present; `raise` takes a better lower one. */
 export interface KnownSides {
@@ -31,109 +30,116 @@ export interface KnownSides {
 	raise(lower: number, certificate: StrategyCertificate): boolean;
 }
 
-/** The lower side by explicit strategies: see-saw in each dimension in turn, then growing ones. */
-export class StrategyEscalation {
-	readonly #problem: ProblemOf<'quantum'>;
-	readonly #g: Functional;
-	readonly #known: KnownSides;
-	readonly #control: Control;
-	readonly #visits: Visit[];
-	readonly #growth: StrategyGrowth | null;
+interface Surroundings {
+	readonly problem: ProblemOf<'quantum'>;
+	readonly g: Functional;
+	readonly known: KnownSides;
+	readonly control: Control;
+	/** Told of every strategy that raised the lower side. */
+	readonly onBetter: (strategy: SeeSawStrategy) => void;
+}
 
-	constructor(problem: ProblemOf<'quantum'>, g: Functional, known: KnownSides, control: Control) {
-		this.#problem = problem;
-		this.#g = g;
-		this.#known = known;
-		this.#control = control;
-		this.#growth =
-			problem.dimensions === null
-				? new StrategyGrowth(g, { seed: problem.seed, largest: null })
-				: null;
-		this.#visits = dimensionsToTry(problem).map((dimension) => ({
-			dimension,
-			starts: 0,
-			batch: FIRST_STARTS,
-			seconds: 0,
-			lower: null
-		}));
+/** The lower side by see-saw from random starts in one local dimension. */
+export class DimensionArm implements Arm {
+	readonly history: ArmHistory;
+	readonly dimension: number;
+	readonly #around: Surroundings;
+	#starts = 0;
+	#batch = FIRST_STARTS;
+	#spent = 0;
+	#lower: number | null = null;
+
+	constructor(dimension: number, isLikeliest: boolean, around: Surroundings) {
+		this.dimension = dimension;
+		this.history = new ArmHistory(isLikeliest ? LIKELIEST : OTHERS);
+		this.#around = around;
 	}
 
-	/** One batch of starts in the most promising dimension. */
-	begin(seconds: number): void {
-		const first = this.#visits[0];
-		if (first) this.#visit(first, seconds);
+	get open(): boolean {
+		return this.#starts < MOST_STARTS;
 	}
 
-	/** See-saw for some seconds, least visited dimension first; false when none is left to visit. */
-	search(seconds: number, mostStarts = MOST_STARTS): boolean {
-		const end = this.#control.now() + 1000 * seconds;
-		const spent = (visit: Visit) => visit.seconds + LEAST_START_SECONDS * visit.starts;
-		for (;;) {
-			const [next] = this.#visits
-				.filter((visit) => visit.starts < mostStarts)
-				.sort((a, b) => spent(a) - spent(b));
-			if (!next) return false;
-			const left = (end - this.#control.now()) / 1000;
-			if (left <= 0 || this.#closed) return true;
-			this.#visit(next, left);
-		}
+	get seconds(): number {
+		if (this.#starts > 0) return (this.#spent / this.#starts) * this.#batch;
+		const entries = this.dimension ** this.#around.problem.outputs.length;
+		return SECONDS_OF_START(entries) * this.#batch;
 	}
 
-	/** All the time that is left; false when nothing is left to try before it is over. */
-	searchToTheEnd(seconds: number): boolean {
-		if (!this.#growth) return this.search(seconds);
-		const end = this.#control.now() + 1000 * seconds;
-		this.search(seconds / 2, STARTS_BEFORE_GROWTH);
-		const left = (end - this.#control.now()) / 1000;
-		if (left > 0 && !this.#closed) {
-			const { lower, upper } = this.#known;
-			const enough = (upper ?? Infinity) - this.#problem.gap / 2;
-			const found = this.#growth.run(left, lower ?? -Infinity, this.#control, enough);
-			if (found) this.#known.raise(found.value, found);
-		}
-		return true;
+	/** What was tried, for the result's `method`; null for nothing. */
+	summary(): Record<string, unknown> | null {
+		const { dimension } = this;
+		const [starts, seconds, lower] = [this.#starts, this.#spent, this.#lower];
+		return starts > 0 ? { dimension, starts, seconds, lower } : null;
 	}
 
-	/** What was tried, for the result's `method`. */
-	summary(): Record<string, unknown> {
-		const growth = this.#growth;
-		return {
-			...(growth?.dimensions && { grown: { dimensions: growth.dimensions, tries: growth.tries } }),
-			dimensions: this.#visits
-				.filter(({ starts }) => starts > 0)
-				.map(({ dimension, starts, seconds, lower }) => ({ dimension, starts, seconds, lower }))
-		};
-	}
-
-	get #closed(): boolean {
-		return this.#known.width <= this.#problem.gap;
-	}
-
-	#visit(visit: Visit, seconds: number): void {
-		const start = this.#control.now();
+	run(seconds: number): void {
+		const { problem, g, known, control, onBetter } = this.#around;
+		const began = control.now();
+		const before = known.lower ?? -Infinity;
 		const search = {
-			dimensions: partyDimensions([visit.dimension], this.#problem.outputs.length),
-			starts: visit.batch,
-			firstStart: visit.starts,
-			seed: this.#problem.seed,
-			seconds,
+			dimensions: partyDimensions([this.dimension], problem.outputs.length),
+			starts: this.#batch,
+			firstStart: this.#starts,
+			seed: problem.seed,
+			seconds: Math.min(seconds, Math.max(SHORTEST_VISIT, OVERRUN * this.seconds)),
 			state: 'free',
-			target: this.#known.upper,
-			known: this.#known.lower
+			target: known.upper,
+			known: known.lower
 		} as const;
 		try {
-			const found = searchStrategies(this.#g, search, this.#control);
-			visit.starts += found?.startsDone ?? visit.batch;
-			visit.batch *= 2;
+			const found = searchStrategies(g, search, control);
+			this.#starts += found?.startsDone ?? this.#batch;
+			this.#batch *= 2;
 			if (found) {
 				const { certificate } = found;
-				visit.lower = Math.max(visit.lower ?? -Infinity, certificate.value);
-				this.#known.raise(certificate.value, certificate);
+				this.#lower = Math.max(this.#lower ?? -Infinity, certificate.value);
+				if (known.raise(certificate.value, certificate)) onBetter(found.strategy);
 			}
 		} catch (error) {
 			if (!(error instanceof SolverStop) || error.status !== 'limit') throw error;
-			visit.starts = MOST_STARTS; // too large: not to be visited again
+			this.#starts = MOST_STARTS; // too large: not to be visited again
 		}
-		visit.seconds += (this.#control.now() - start) / 1000;
+		const elapsed = (control.now() - began) / 1000;
+		this.#spent += elapsed;
+		this.history.note((known.lower ?? -Infinity) - before);
+	}
+}
+
+/** The lower side by strategies that grow, the best one found in fixed dimensions among them. */
+export class GrowthArm implements Arm {
+	readonly history: ArmHistory;
+	readonly #growth: StrategyGrowth;
+	readonly #around: Omit<Surroundings, 'onBetter'>;
+	#slice = FIRST_GROWTH;
+
+	constructor(growth: StrategyGrowth, around: Omit<Surroundings, 'onBetter'>) {
+		this.#growth = growth;
+		this.#around = around;
+		this.history = new ArmHistory(growth.beginsAlone ? LIKELIEST : OTHERS);
+	}
+
+	get open(): boolean {
+		return !this.#growth.spent;
+	}
+
+	get seconds(): number {
+		return this.#slice;
+	}
+
+	/** What was tried, for the result's `method`; null for nothing. */
+	summary(): Record<string, unknown> | null {
+		const { dimensions, tries } = this.#growth;
+		return dimensions && tries > 0 ? { dimensions, tries } : null;
+	}
+
+	run(seconds: number): void {
+		const { problem, known, control } = this.#around;
+		const before = known.lower ?? -Infinity;
+		const enough = (known.upper ?? Infinity) - problem.gap / 2;
+		const slice = Math.min(seconds, this.#slice);
+		this.#slice *= 2;
+		const found = this.#growth.run(slice, before, control, enough);
+		if (found) known.raise(found.value, found);
+		this.history.note((known.lower ?? -Infinity) - before);
 	}
 }

@@ -86,6 +86,11 @@ export class StrategyGrowth {
 		return this.#current?.dimensions ?? null;
 	}
 
+	/** Whether it needs no strategy to begin with: chain form applies. */
+	get beginsAlone(): boolean {
+		return this.#chain !== null;
+	}
+
 	/** Whether nothing is left to try. */
 	get spent(): boolean {
 		const padded = !this.#current || this.#fruitless >= MOST_FRUITLESS;

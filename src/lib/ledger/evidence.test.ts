@@ -222,6 +222,34 @@ describe('isWithin', () => {
 		expect(valueLabel(grown)).toContain('in local dimension 8');
 	});
 
+	it('has the hybrid models between local and no-signalling, apart from quantum', () => {
+		const hybrid = (model: 'svetlichny' | 'no-signalling'): Problem => ({
+			...local,
+			quantity: 'hybrid',
+			model
+		});
+		const [wide, narrow] = [hybrid('svetlichny'), hybrid('no-signalling')];
+		for (const [inner, outer] of [
+			[local, narrow],
+			[local, wide],
+			[narrow, wide],
+			[narrow, noSignalling]
+		] as const) {
+			expect(isWithin(inner, outer)).toBe(true);
+			expect(isWithin(outer, inner)).toBe(false);
+		}
+		// signalling groups: the writing of a functional may exceed its no-signalling maximum
+		expect(isWithin(wide, noSignalling)).toBe(false);
+		for (const set of [wide, narrow]) {
+			expect(isWithin(quantum, set)).toBe(false);
+			expect(isWithin(set, quantum)).toBe(false);
+			expect(sameQuantity(set, { ...set })).toBe(true);
+		}
+		expect(sameQuantity(wide, narrow)).toBe(false);
+		const facet: Problem = { ...local, quantity: 'facet' };
+		expect(isWithin(local, facet) || isWithin(facet, noSignalling)).toBe(false);
+	});
+
 	it('takes 1+AB and one operator per party for the same, positivity being implied', () => {
 		expect(sameQuantity(npa('1+AB'), npa({ perParty: 1 }, true))).toBe(false);
 		expect(sameQuantity(npa('1+AB'), npa('1+AB', true))).toBe(true);

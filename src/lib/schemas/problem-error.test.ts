@@ -98,6 +98,26 @@ describe('what is malformed names its field', () => {
 		[{ quantity: 'local', ...chsh, seconds: 0 }, 'seconds', /positive/],
 		[{ quantity: 'local', ...chsh, format: 2 }, 'format', /1/],
 		[{ quantity: 'local', ...chsh, colour: 'red' }, 'colour', /not known/],
+		[
+			{ quantity: 'hybrid', ...chsh, model: 'svetlichny' },
+			'quantity',
+			/three parties or more, not 2/
+		],
+		[{ quantity: 'hybrid', family: { name: 'mermin', n: 3 } }, 'model', /is missing: "svetlichny"/],
+		[
+			{ quantity: 'hybrid', family: { name: 'mermin', n: 3 }, model: 'quantum' },
+			'model',
+			/"svetlichny" or "no-signalling"/
+		],
+		[
+			{
+				quantity: 'facet',
+				...chsh,
+				constraints: [{ expression: 'A0', relation: '<=', value: 0 }]
+			},
+			'constraints',
+			/no part in the quantity facet/
+		],
 		[{ quantity: 'npa', ...chsh }, 'level', /is missing/],
 		[{ quantity: 'npa', ...chsh, level: '2+AB' }, 'level', /1, 2, 3/],
 		[

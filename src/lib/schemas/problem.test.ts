@@ -324,6 +324,8 @@ describe('normal form', () => {
 			level: { perParty: 1 },
 			nonNegative: true
 		},
+		{ family: { name: 'mermin', n: 3 }, quantity: 'hybrid', model: 'no-signalling' },
+		{ ...chsh, quantity: 'facet' },
 		{ ...chsh, quantity: 'see-saw', dimension: [2, 3], state: 'maximally-entangled', seed: 7 },
 		{ ...chsh, quantity: 'see-saw', dimension: 2, grow: 40, start: startOf('family') },
 		{ ...chsh, quantity: 'quantum', start: startOf('kind') },

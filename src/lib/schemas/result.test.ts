@@ -9,12 +9,23 @@ async function printed(problem: object): Promise<Record<string, unknown>> {
 	return JSON.parse(JSON.stringify(await solve(parseProblem(problem), control)));
 }
 
+/** Enough strategies that the budget ends in their midst. */
+const WIDE = Array.from({ length: 16 }, (_, x) =>
+	Array.from({ length: 16 }, (_unused, y) => ((3 * x + y * y) % 5) - 2)
+);
+
 const chsh = { family: { name: 'chsh' } };
 
 describe('parseResult', () => {
 	it.each([
 		{ ...chsh, quantity: 'local' },
+		{ ...chsh, quantity: 'local', constraints: [{ expression: 'A0', relation: '<=', value: 0 }] },
+		{ family: { name: 'xor-game', matrix: WIDE }, quantity: 'local', seconds: 1e-6 },
 		{ ...chsh, quantity: 'no-signalling' },
+		{ family: { name: 'mermin', n: 3 }, quantity: 'hybrid', model: 'svetlichny' },
+		{ family: { name: 'mermin', n: 3 }, quantity: 'hybrid', model: 'no-signalling' },
+		{ ...chsh, quantity: 'facet' },
+		{ family: { name: 'elegant' }, quantity: 'facet', sense: 'min' },
 		{ ...chsh, quantity: 'npa', level: 1, nonNegative: true },
 		{ ...chsh, quantity: 'npa', level: '1+AB', sense: 'min' },
 		{ ...chsh, quantity: 'see-saw', dimension: 2 },

@@ -25,6 +25,7 @@ import {
 import { fullCorrelatorForm, partialMeasurement } from '../scenario/full-correlators';
 import {
 	collinsGisinForm,
+	eventsKey,
 	makeFunctional,
 	type Functional,
 	type Term
@@ -157,22 +158,32 @@ function boundOfBipartitions(
 	given: readonly HybridBipartition[]
 ): Rational | string {
 	let most: Rational | null = null;
+	const known: KnownVertices = new Map();
 	for (const groups of bipartitions(g.scenario.outputs.length)) {
 		const proof = given.find((p) => JSON.stringify(p.groups) === JSON.stringify(groups));
 		if (!proof) return `the bipartition ${groups.join(' | ')} is missing`;
-		const bound = boundOfBipartition(g, proof);
+		const bound = boundOfBipartition(g, proof, known);
 		if (typeof bound === 'string') return `bipartition ${groups.join(' | ')}: ${bound}`;
 		if (most === null || bound.compare(most) > 0) most = bound;
 	}
 	return most ?? 'there is no bipartition';
 }
 
-function boundOfBipartition(g: Functional, proof: HybridBipartition): Rational | string {
+/** Groups of the same outputs have the same vertices. */
+type KnownVertices = Map<string, ReturnType<typeof verticesOfGroup>>;
+
+function boundOfBipartition(
+	g: Functional,
+	proof: HybridBipartition,
+	known: KnownVertices
+): Rational | string {
 	const [own, other] = [proof.groups[proof.listed], proof.groups[1 - proof.listed]];
 	if (!own || !other) return 'it does not say whose vertices are listed';
 	const scenario = scenarioOfGroup(g.scenario, own);
 	const rest = scenarioOfGroup(g.scenario, other);
-	const vertices = verticesOfGroup(scenario);
+	const name = JSON.stringify(scenario.outputs);
+	const vertices = known.get(name) ?? verticesOfGroup(scenario);
+	known.set(name, vertices);
 	if (!vertices) return 'its group has too many vertices to list here';
 	const branches = new Map<string, Readonly<Record<string, string>>>();
 	for (const { vertex, multipliers } of proof.branches) {
@@ -180,11 +191,12 @@ function boundOfBipartition(g: Functional, proof: HybridBipartition): Rational |
 		if (typeof table === 'string') return table;
 		branches.set(keyOfTable(table.probabilities), multipliers);
 	}
+	const parts = partsOf(g, own, other);
 	let most: Rational | null = null;
 	for (const probabilities of vertices) {
 		const multipliers = branches.get(keyOfTable(probabilities));
 		if (!multipliers) return 'a vertex of the listed group is missing';
-		const bound = boundAtVertex(g, own, other, { scenario, probabilities }, rest, multipliers);
+		const bound = boundAtVertex(parts, { scenario, probabilities }, rest, multipliers);
 		if (typeof bound === 'string') return bound;
 		if (most === null || bound.compare(most) > 0) most = bound;
 	}
@@ -199,19 +211,38 @@ function keyOfTable(probabilities: ReadonlyMap<string, Rational>): string {
 		.join(' ');
 }
 
+/** The terms of g that share their events of one group. */
+interface Part {
+	readonly own: readonly Event[];
+	readonly terms: { readonly value: Rational; readonly events: readonly Event[] }[];
+}
+
+function partsOf(g: Functional, own: readonly number[], other: readonly number[]): Part[] {
+	const parts = new Map<string, Part>();
+	for (const term of g.terms) {
+		const events = eventsOfGroup(term, own);
+		const part = parts.get(eventsKey(events)) ?? { own: events, terms: [] };
+		parts.set(eventsKey(events), part);
+		part.terms.push({ value: exactOf(term), events: eventsOfGroup(term, other) });
+	}
+	return [...parts.values()];
+}
+
 /** g at the vertex, plus multiplier times probability of the other group, bounded. */
 function boundAtVertex(
-	g: Functional,
-	own: readonly number[],
-	other: readonly number[],
+	parts: readonly Part[],
 	vertex: ExactTable,
 	rest: Scenario,
 	multipliers: Readonly<Record<string, string>>
 ): Rational | string {
-	const terms: Term[] = g.terms.map((term) => ({
-		events: eventsOfGroup(term, other),
-		coefficient: exactCoefficient(exactOf(term).mul(marginalOf(vertex, eventsOfGroup(term, own))))
-	}));
+	const terms = parts.flatMap((part): Term[] => {
+		const weight = marginalOf(vertex, part.own);
+		if (weight.n === 0n) return [];
+		return part.terms.map(({ value, events }) => ({
+			events,
+			coefficient: exactCoefficient(value.mul(weight))
+		}));
+	});
 	const table = readTable(rest, multipliers);
 	if (typeof table === 'string') return `multipliers: ${table}`;
 	for (const [key, value] of table.probabilities) {

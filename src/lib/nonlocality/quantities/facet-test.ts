@@ -10,6 +10,7 @@ import {
 	forEachBestStrategy,
 	type OutputChoices
 } from './enumerate-strategies';
+import { reportProgress } from './local-maximum';
 import type { Outcome } from './outcome';
 import { strategyCoordinates, type StrategyCoordinates } from './strategy-coordinates';
 import { strategyTensor, type StrategyTensor } from './strategy-tensor';
@@ -43,15 +44,10 @@ export function facetTest(
 	const clock = new WorkClock(control, problem.seconds);
 	const coordinates = readSizes(functional);
 	const tensor = strategyTensor(functional);
-	const tick = () => {
+	const tick = (enumerated: number) => {
 		clock.check();
-		control.report({
-			stage: 'strategies that reach the local maximum',
-			iteration: 0,
-			fraction: null,
-			lower: null,
-			upper: null
-		});
+		const stage = 'strategies that reach the local maximum';
+		reportProgress(control, stage, enumerated, tensor.count);
 	};
 	const best = enumerateStrategies(tensor, tick);
 	const constant = tensor.entries.slice(1).every((entry) => entry === 0n);
@@ -80,6 +76,7 @@ export function facetTest(
 			: vanishingFunctional(functional, maximum, coordinates, basis, strategies, clock);
 	if (vanishing)
 		forEachChoice((choices) => {
+			clock.check();
 			for (const strategy of spanningStrategies(choices))
 				if (coordinates.valueAt(vanishing, strategy) !== 0n)
 					throw new SolverStop('failed', 'the strategies found span less than those there are');

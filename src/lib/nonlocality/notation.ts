@@ -57,6 +57,11 @@ export {
 	type Term
 } from './scenario/functional';
 export { coefficientLatex, printLatex, rationalLatex } from './scenario/latex';
+export {
+	parseProbabilityTable,
+	printProbabilityTable,
+	splitProbabilities
+} from './scenario/probability-table';
 export { functionalOfTerms, termsOfFunctional } from './scenario/problem-terms';
 export { partyCount, type Event, type Scenario } from './scenario/scenario';
 export {

@@ -59,6 +59,11 @@ export {
 } from './scenario/functional';
 export { coefficientLatex, printLatex, rationalLatex } from './scenario/latex';
 export { largestDimensions } from './scenario/local-dimensions';
+export {
+	parseProbabilityTable,
+	printProbabilityTable,
+	splitProbabilities
+} from './scenario/probability-table';
 export { functionalOfTerms, termsOfFunctional } from './scenario/problem-terms';
 export { partyCount, type Event, type Scenario } from './scenario/scenario';
 export {

@@ -212,13 +212,17 @@ class Rewriter {
 			// \frac12 takes one digit each; a bare root sign takes the whole number after it.
 			const digits = this.source.charAt(command) === '\\' ? /^\d/ : /^[\d.]+/;
 			const number = digits.exec(this.source.slice(start))?.[0];
-			if (number === undefined) return this.step();
+			if (number === undefined) {
+				this.descend(start);
+				this.step();
+				this.depth--;
+				return;
+			}
 			this.at += number.length;
 			for (let i = 0; i < number.length; i++) this.emit(number.charAt(i), start + i);
 			return;
 		}
-		if (++this.depth > MAXIMUM_NESTING)
-			throw new NotationError(`more than ${MAXIMUM_NESTING} levels of nesting`, start, null);
+		this.descend(start);
 		this.at++;
 		let open = 1;
 		for (;;) {
@@ -231,6 +235,11 @@ class Rewriter {
 		}
 		this.at++;
 		this.depth--;
+	}
+
+	private descend(position: number): void {
+		if (++this.depth > MAXIMUM_NESTING)
+			throw new NotationError(`more than ${MAXIMUM_NESTING} levels of nesting`, position, null);
 	}
 
 	private skipSpaces(): void {

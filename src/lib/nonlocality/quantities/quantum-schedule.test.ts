@@ -57,14 +57,27 @@ describe('mostPromising', () => {
 });
 
 describe('predictLevel', () => {
+	const order = (n: number) => () => n;
+
 	it('grows with the level, and says what is past the limits', () => {
 		const g = familyFunctional({ name: 'i3322' });
-		const [first, second, third] = ([1, 2, 3] as const).map((level) => predictLevel(g, level));
+		const [first, second, third] = ([1, 2, 3] as const).map((level) =>
+			predictLevel(g, level, order(1))
+		);
 		expect(second?.seconds).toBeGreaterThan(10 * (first?.seconds ?? 0));
 		expect(third?.seconds).toBeGreaterThan(10 * (second?.seconds ?? 0));
 		expect(third?.refused).toBeNull();
-		const large = predictLevel(familyFunctional({ name: 'cglmp', d: 6 }), 4);
+		const large = predictLevel(familyFunctional({ name: 'cglmp', d: 6 }), 4, order(1));
 		expect(large.seconds).toBe(Infinity);
 		expect(large.refused).toMatch(/rows; the limit is 600/);
+	});
+
+	it('counts on symmetries where a level is dear, and on the dual of level 1', () => {
+		const g = familyFunctional({ name: 'i3322' });
+		expect(predictLevel(g, 4, order(8)).seconds).toBeLessThan(
+			predictLevel(g, 4, order(1)).seconds / 8
+		);
+		const wide = familyFunctional({ name: 'chained', n: 60 });
+		expect(predictLevel(wide, 1, order(1)).seconds).toBeLessThan(2);
 	});
 });

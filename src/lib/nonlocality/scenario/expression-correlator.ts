@@ -8,12 +8,13 @@ const EXAMPLE = 'E(0,1)';
 /**
  * Whether the letter just taken starts a correlator of all parties: `E(0,1)`, `E[A0 B0]`, `E_{0,1}`,
  * and `E_{01}` where no party is named. A `C` does where it is the only letter of a party.
+ * @param bracketed inside < and >, where E_{10} can only be an observable
  */
-export function startsCorrelator(reader: TokenReader, letter: string): boolean {
+export function startsCorrelator(reader: TokenReader, letter: string, bracketed: boolean): boolean {
 	if (letter !== 'E' && (letter !== 'C' || reader.names('ABDEF'))) return false;
 	const { text } = reader.peek();
 	if (text === '(' || text === '[') return true;
-	if (text !== '_') return false;
+	if (text !== '_' || bracketed) return false;
 	const braced = reader.peek(1).text === '{';
 	if (braced && reader.peek(3).text === ',') return true;
 	return (

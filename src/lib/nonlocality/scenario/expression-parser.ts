@@ -57,6 +57,8 @@ function isNumber(node: Node): boolean {
 export class ExpressionParser {
 	private readonly reader: TokenReader;
 	private depth = 0;
+	/** Whether this is inside < and >. */
+	private bracketed = false;
 
 	constructor(source: string) {
 		this.reader = new TokenReader(source);
@@ -187,7 +189,10 @@ export class ExpressionParser {
 				`an expression has at most ${EXPRESSION_LIMITS.nesting} levels of parentheses`,
 				position
 			);
+		const outside = this.bracketed;
+		this.bracketed ||= opening === '<';
 		const node = this.sum();
+		this.bracketed = outside;
 		const closing = CLOSING[opening] ?? ')';
 		if (closing === '>') this.reader.splitRelation();
 		if (!this.reader.accept(closing)) {
@@ -202,7 +207,8 @@ export class ExpressionParser {
 		const { text, position } = token;
 		if (text === 'P' || text === 'p' || text === 'Pr')
 			return readProbability(this.reader, position, (letter, at) => this.unknownLetter(letter, at));
-		if (startsCorrelator(this.reader, text)) return readCorrelator(this.reader, position);
+		if (startsCorrelator(this.reader, text, this.bracketed))
+			return readCorrelator(this.reader, position);
 		const party = partyOf(text);
 		if (party === null) throw this.unknownLetter(text, position);
 		const index = readSubscript(this.reader, text);

@@ -103,12 +103,22 @@ function transform(values: Coefficient[]): void {
 	}
 }
 
+/**
+ * The letters of the parties in a probability: none where it is one of all parties, unless that is
+ * a single party with an index of two digits, which could be the indices of two.
+ */
+export function partiesNamed(events: readonly Event[], parties: number): string {
+	const isClear = parties > 1 || events.every(([, x, a]) => x < 9 && a < 10);
+	if (events.length === parties && isClear) return '';
+	return events.map(([party]) => PARTY_LETTERS[party] ?? '?').join('');
+}
+
 /** `P(0,1|1,0)` for all parties, `P_A(0|1)` for some. */
 function probabilityName(events: readonly Event[], parties: number, base: 0 | 1): string {
-	const letters = events.map(([party]) => PARTY_LETTERS[party] ?? '?').join('');
+	const letters = partiesNamed(events, parties);
 	const outputs = events.map((event) => event[2]).join(',');
 	const inputs = events.map((event) => event[1] + base).join(',');
-	return `P${events.length === parties ? '' : `_${letters}`}(${outputs}|${inputs})`;
+	return `P${letters === '' ? '' : `_${letters}`}(${outputs}|${inputs})`;
 }
 
 /** True when a coefficient prints as a sum, and needs parentheses before a product. */

@@ -307,6 +307,44 @@ describe('what cannot be read', () => {
 		expect(failure('A0 +')).not.toBeInstanceOf(NotationLimitError);
 	});
 
+	it.each([
+		'(',
+		'A0+',
+		'\\frac{',
+		'\\frac1',
+		'{',
+		'\\sqrt',
+		'\\left',
+		'<',
+		'A_{0}',
+		'P(',
+		'P(0,',
+		'1^',
+		'-',
+		' ',
+		'\\overset{',
+		'cos(',
+		'\\cos^2(',
+		'=',
+		'A0 <= ',
+		'E_{0,',
+		'\u221a',
+		'9',
+		'\\begin{align}',
+		'(A0+1)*',
+		'(pi+1)*',
+		'0.1',
+		'1/'
+	])('answers within two tenths of a second on a long run of %j', (piece) => {
+		const text = piece.repeat(4000).slice(0, 4000);
+		for (const whole of [text, `A0 + ${text}`.slice(0, 4000), `A0 <= ${text}`.slice(0, 4000)]) {
+			const before = process.cpuUsage();
+			expect(failure(whole) ?? new NotationError('')).toBeInstanceOf(NotationError);
+			const { user, system } = process.cpuUsage(before);
+			expect((user + system) / 1000).toBeLessThan(200);
+		}
+	});
+
 	it('throws nothing but NotationError on any text', () => {
 		const pieces = fc.constantFrom(
 			...'A0 B1 C2 E P ( ) | , _ { } < > <= = + - * / ^ 2 1/3 sqrt( pi \\frac \\sqrt & ~ [ ] ; x E(0,1) P(0,1|1,0) P_A(0|1) \\langle \\rangle'.split(

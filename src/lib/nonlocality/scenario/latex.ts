@@ -3,12 +3,14 @@ import { printRational, type Rational } from '../exact/rational';
 import {
 	isSum,
 	joinPieces,
+	partiesNamed,
 	printableTerms,
 	signedPiece,
 	type PrintOptions
 } from './expression-print';
 import { PARTY_LETTERS } from './expression-tree';
 import type { Functional } from './functional';
+import type { Observable } from './observables';
 import { partyCount } from './scenario';
 
 /** `\tfrac{1}{2}`, or an integer. */
@@ -59,14 +61,23 @@ export function printLatex(functional: Functional, options: PrintOptions = {}): 
 	const base = options.indexBase ?? 0;
 	const parties = partyCount(functional.scenario);
 	const index = (value: number) => (value > 9 ? `{${value}}` : String(value));
-	const pieces = printableTerms(functional).map(({ coefficient, observables, events }) => {
-		const letters = events.map(([party]) => PARTY_LETTERS[party] ?? '?').join('');
+	const terms = printableTerms(functional);
+	/** C_{10} and E_{10} alone would be correlators of inputs 1 and 0. */
+	const product = (observables: readonly Observable[]) => {
+		const text = observables
+			.map(([p, x]) => `${PARTY_LETTERS[p] ?? '?'}_${index(x + base)}`)
+			.join('');
+		return named.size === 1 && text.includes('{') ? `\\langle ${text}\\rangle ` : text;
+	};
+	const named = new Set(terms.flatMap(({ observables }) => observables.map(([party]) => party)));
+	const pieces = terms.map(({ coefficient, observables, events }) => {
+		const letters = partiesNamed(events, parties);
 		const outputs = events.map((event) => event[2]).join(',');
 		const inputs = events.map((event) => event[1] + base).join(',');
 		const name =
 			events.length > 0
-				? `P${events.length === parties ? '' : `_{${letters}}`}(${outputs}|${inputs})`
-				: observables.map(([p, x]) => `${PARTY_LETTERS[p] ?? '?'}_${index(x + base)}`).join('');
+				? `P${letters === '' ? '' : `_{${letters}}`}(${outputs}|${inputs})`
+				: product(observables);
 		const print = (size: Coefficient) =>
 			isSum(size) ? `\\left(${coefficientLatex(size)}\\right)` : coefficientLatex(size);
 		return signedPiece(coefficient, name, print, '\\,');

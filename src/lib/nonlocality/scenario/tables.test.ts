@@ -5,6 +5,11 @@ import { parseCoefficient } from '../exact/expression';
 import { NotationError, NotationLimitError } from '../exact/notation-error';
 import { ratio } from '../exact/rational';
 import { familyFunctional } from './families';
+import {
+	parseProbabilityTable,
+	printProbabilityTable,
+	splitProbabilities
+} from './probability-table';
 import { collinsGisinForm, makeFunctional, type Functional } from './functional';
 import type { Event } from './scenario';
 import {
@@ -89,13 +94,51 @@ describe('splitTable', () => {
 		'\\begin{pmatrix} 1 & 2 & 3 \\\\ 4 & 5 & 6 \\end{pmatrix}',
 		'\\begin{array}{c|cc} 1 & 2 & 3 \\\\ \\hline 4 & 5 & 6 \\end{array}',
 		'[[1,2,3],[4,5,6]]',
-		'1 | 2 3\n4 | 5 6'
+		'1 | 2 3\n4 | 5 6',
+		'1 | 2 3\n--+-----\n4 | 5 6',
+		'| 1 | 2 | 3 |\n|---|---|---|\n| 4 | 5 | 6 |',
+		'[1 2 3; 4 5 6]',
+		'{{1,2,3},{4,5,6}}',
+		'((1, 2, 3), (4, 5, 6))',
+		'[[1, 2, 3],\n [4, 5, 6]]',
+		'$$\\left(\\begin{array}{c|cc}\n1 & 2\n& 3 \\\\ \\hline\n4 & 5 & 6\n\\end{array}\\right).$$',
+		'M = \\begin{bmatrix*} 1 & 2 & 3 \\\\[2pt] 4 & 5 & 6 \\end{bmatrix*}',
+		'\\begin{equation} \\begin{tabular}{c||@{ }c|c} 1&2&3\\tabularnewline\\hline\\hline 4&5&6 \\end{tabular} \\end{equation}',
+		'1 2 3 % the first row\n4 5 6 # the second'
 	])('%j', (text) => {
 		expect(splitTable(text)).toEqual([
 			['1', '2', '3'],
 			['4', '5', '6']
 		]);
 	});
+
+	it('takes a sign to the number behind it, and nothing between commas for zero', () => {
+		expect(splitTable('0 - 1\n1 \u2212 \\frac{1}{2}')).toEqual([
+			['0', '-1'],
+			['1', '\u2212\\frac{1}{2}']
+		]);
+		expect(printCollinsGisin(parseCollinsGisin(splitTable('1,,2\n3,4,5')))).toEqual([
+			['1', '0', '2'],
+			['3', '4', '5']
+		]);
+	});
+
+	it.each([' ', '\n', '\\', '{', '[', '-', '1 ', '(1),', '\\\\', '\\begin{array}', '%', '}  '])(
+		'takes no time on a long run of %j',
+		(piece) => {
+			const text = piece.repeat(199_000 / piece.length);
+			const before = process.cpuUsage();
+			for (const whole of [text, `\\begin{array}${text}`, `{{${text}`, `((${text}`]) {
+				try {
+					splitTable(whole.slice(0, 200_000));
+				} catch (error) {
+					expect(error).toBeInstanceOf(NotationError);
+				}
+			}
+			const { user, system } = process.cpuUsage(before);
+			expect((user + system) / 1000).toBeLessThan(1500);
+		}
+	);
 
 	it('keeps expressions whole between commas', () => {
 		expect(splitTable('1/2, 2 sqrt(2)\n-1, \\frac{1}{2}')).toEqual([
@@ -108,6 +151,35 @@ describe('splitTable', () => {
 describe('what cannot be read', () => {
 	it.each<[() => unknown, RegExp]>([
 		[() => splitTable(''), /empty/],
+		[
+			() => splitTable('\\begin{matrix}1\\end{matrix} \\begin{matrix}2\\end{matrix}'),
+			/more than one table/
+		],
+		[() => splitTable('$$'), /empty/],
+		[() => parseProbabilityTable([[1], [2]]), /need even numbers/],
+		[() => parseProbabilityTable([[1, 2]], [[2]]), /two parties, not 1/],
+		[
+			() =>
+				parseProbabilityTable(
+					[
+						[1, 2],
+						[3, 4]
+					],
+					[[2], [3]]
+				),
+			/2 rows and 2 columns; these outputs need 2 and 3/
+		],
+		[
+			() =>
+				parseProbabilityTable([
+					[1, 2],
+					[3, 'x']
+				]),
+			/row 2, column 2/
+		],
+		[() => splitProbabilities(''), /empty/],
+		[() => splitProbabilities('0,1|1,0: 1\nP(0,1) = 2'), /line 2 is no probability/],
+		[() => splitProbabilities('0,1|1,0: 1\n01|10 2'), /line 2: 0,1\|1,0 occurs twice/],
 		[() => splitTable('1 2\n3'), /row 2 has 1 cells, the first row 2/],
 		[
 			() =>
@@ -150,6 +222,11 @@ describe('what cannot be read', () => {
 		const wide = Array.from({ length: 131 }, () => ['1']);
 		expect(() => parseCollinsGisin(wide)).toThrow(NotationLimitError);
 		expect(() => parseProbabilities({ '0,0|0,99': 1 })).toThrow(NotationLimitError);
+		expect(() => parseProbabilities({ '0,0,0,0,0,0,0|0,0,0,0,0,0,0': 1 })).toThrow(
+			NotationLimitError
+		);
+		expect(() => splitTable('1 '.repeat(100_001))).toThrow(NotationLimitError);
+		expect(() => splitProbabilities('1 '.repeat(100_001))).toThrow(NotationLimitError);
 	});
 });
 
@@ -174,6 +251,33 @@ const functional = (outputs: readonly (readonly number[])[], full: boolean) => {
 		.map(([c, a, b]) => ({ coefficient: c, events: [...a, ...b] }));
 	return fc.array(term, { maxLength: 8 }).map((terms) => makeFunctional({ outputs }, terms));
 };
+
+describe('tables of all probabilities', () => {
+	it('have a row and a column for every output', () => {
+		// the game of CHSH: sum over x, y of P(a + b = x y)
+		const table = [
+			[1, 0, 1, 0],
+			[0, 1, 0, 1],
+			[1, 0, 0, 1],
+			[0, 1, 1, 0]
+		];
+		const game = parseProbabilityTable(table);
+		expect(same(familyFunctional({ name: 'chsh' }), affine(game, 2, -4))).toBe(true);
+		expect(printProbabilityTable(game)).toEqual(table.map((row) => row.map(String)));
+		expect(printProbabilityTable(parseCollinsGisin(CH))).toBeNull();
+		expect(printProbabilityTable(familyFunctional({ name: 'mermin', n: 3 }))).toBeNull();
+	});
+
+	it.each([
+		'0,1|1,0: 1/2\n1,1|0,0: -sqrt(2)',
+		'P(0,1|1,0) = 1/2\np( 1, 1 | 0, 0 ) = -sqrt(2)\n',
+		'01|10 1/2\n\n11|00\t-sqrt(2)',
+		'{"0,1|1,0": "1/2", "1,1|0,0": "-sqrt(2)"}',
+		'{\n  "0,1|1,0": 1/2,\n  "1,1|0,0": "-sqrt(2)"\n}'
+	])('are read from lines: %j', (text) => {
+		expect(splitProbabilities(text)).toEqual({ '0,1|1,0': '1/2', '1,1|0,0': '-sqrt(2)' });
+	});
+});
 
 describe('round trips', () => {
 	const outputs = [

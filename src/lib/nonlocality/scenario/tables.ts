@@ -1,4 +1,4 @@
-import { COEFFICIENT_ZERO, isZero, type Coefficient } from '../exact/coefficient';
+import { isZero } from '../exact/coefficient';
 import { parseCoefficient } from '../exact/expression';
 import { NotationError, NotationLimitError } from '../exact/notation-error';
 import { observableTerms } from './expression-print';
@@ -11,90 +11,10 @@ import {
 } from './functional';
 import { correlatorTerms, type Observable } from './observables';
 import type { Event, Scenario } from './scenario';
+import { readCell } from './table-cell';
+import { TABLE_LIMITS, checkSize, type TableCell } from './table-text';
 
-export const TABLE_LIMITS = {
-	characters: 200_000,
-	rows: 130,
-	columns: 130,
-	parties: 6,
-	inputs: 64,
-	outputs: 64
-} as const;
-
-export type TableCell = string | number;
-
-/**
- * Splits pasted text into cells: rows on lines, cells separated by tabs, semicolons, commas or
- * spaces; also the body of a LaTeX matrix (`&` and `\\`) and nested brackets. @throws NotationError
- */
-export function splitTable(text: string): string[][] {
-	if (text.length > TABLE_LIMITS.characters)
-		throw new NotationLimitError(
-			`a table has at most ${TABLE_LIMITS.characters.toLocaleString('en')} characters`
-		);
-	const rows = text
-		.replace(/\\(begin|end)\{[a-z*]{1,20}\}(\{[lcr| ]{0,200}\})?/g, '\n')
-		.replace(/\\(hline|cline\{[\d-]{1,9}\}|toprule|midrule|bottomrule)/g, ' ')
-		.replace(/\\\\(\[[^\]]{0,20}\])?/g, '\n')
-		.replace(/\][\s,]*\[/g, '\n')
-		.split(/\r?\n/)
-		.map((line) => trim(line, ' \t\u00a0[],'))
-		.filter((line) => line !== '');
-	const cells = rows.map(splitRow);
-	checkSize(cells);
-	return cells;
-}
-
-function splitRow(line: string): string[] {
-	const separator = ['&', '\t', ';', ','].find((mark) => line.includes(mark));
-	return line
-		.split(separator ?? /[ \u00a0|]/)
-		.map((cell) => trim(cell, ' \t\u00a0|$'))
-		.filter((cell) => separator === '&' || separator === '\t' || cell !== '');
-}
-
-/** Takes the given characters off both ends; in linear time, which a regular expression is not. */
-function trim(text: string, characters: string): string {
-	let [start, end] = [0, text.length];
-	while (start < end && characters.includes(text.charAt(start))) start++;
-	while (end > start && characters.includes(text.charAt(end - 1))) end--;
-	return text.slice(start, end);
-}
-
-function checkSize(rows: readonly (readonly TableCell[])[]): { height: number; width: number } {
-	const height = rows.length;
-	const width = rows[0]?.length ?? 0;
-	if (height === 0 || width === 0) throw new NotationError('the table is empty', 0);
-	if (height > TABLE_LIMITS.rows || width > TABLE_LIMITS.columns)
-		throw new NotationLimitError(
-			`a table has at most ${TABLE_LIMITS.rows} rows and ${TABLE_LIMITS.columns} columns, this one ${height} and ${width}`
-		);
-	rows.forEach((row, i) => {
-		if (row.length !== width)
-			throw new NotationError(
-				`row ${i + 1} has ${row.length} cells, the first row ${width}`,
-				null,
-				'Every row has a cell for each column, zeros included.'
-			);
-	});
-	return { height, width };
-}
-
-/** Coefficient in a cell; an empty one is zero. Rows and columns count from 1 in messages. */
-function readCell(cell: TableCell, row: number, column: number): Coefficient {
-	const text = String(cell).trim();
-	if (text === '') return COEFFICIENT_ZERO;
-	try {
-		return parseCoefficient(text);
-	} catch (error) {
-		if (!(error instanceof NotationError)) throw error;
-		throw new NotationError(
-			`row ${row + 1}, column ${column + 1}: ${error.message}`,
-			null,
-			error.suggestion
-		);
-	}
-}
+export { TABLE_LIMITS, splitTable, type TableCell } from './table-text';
 
 /** The events that label the rows or columns of a Collins-Gisin table, after the marginal. */
 function labels(party: number, outputs: readonly number[]): Event[] {

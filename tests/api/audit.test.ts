@@ -4,6 +4,8 @@ import type { GroupContext } from '../../src/lib/server/context';
 import { audit, claims } from '../../src/lib/server/db/schema';
 import { recordAudit } from '../../src/lib/server/services/audit';
 import { editClaim } from '../../src/lib/server/services/claims/edit-claim';
+import { attachCertificate } from '../../src/lib/server/services/submissions/attach-certificate';
+import { solved } from '../support/certificates';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { proposeClaim } from '../../src/lib/server/services/claims/propose-claim';
 import { publishClaim } from '../../src/lib/server/services/claims/publish-claim';
@@ -68,6 +70,15 @@ const STEPS: readonly Step[] = [
 	],
 	['edit it', 'claim.edited', () => editClaim(by('member'), 1, 1, claimFields({ printed: '2.8' }))],
 	['ask to recompute', 'claim.recompute-asked', () => recomputeClaim(by('member'), 1)],
+	[
+		'attach a certificate',
+		'claim.certificate-attached',
+		async () => {
+			const certificate = await solved({ family: { name: 'chsh' }, quantity: 'local' });
+			return attachCertificate(by('member'), 1, { certificate });
+		},
+		'made'
+	],
 	['propose it', 'claim.proposed', () => proposeClaim(by('member'), 1)],
 	['publish it', 'claim.published', () => publishClaim(by('maintainer'), 1)],
 	['take it back', 'claim.unpublished', () => unpublishClaim(by('maintainer'), 1)],

@@ -322,6 +322,12 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ GET: { ...same(200), anonymous: 404, outsider: 404 } },
 		{ path: (w) => `/api/v1/inequalities/${w.inequalityId}/sdpa?level=1` }
 	),
+	...doors(claim, { attach: action('member', 400) }, { fields: { certificate: 'no JSON' } }),
+	...doors(
+		'/g/[slug]/attachments/[id]',
+		{ GET: page('observer', 404) },
+		{ path: (w) => `/g/${w.slug}/attachments/none` }
+	),
 	...doors(apiGroup, { GET: action('observer') }),
 	...doors(apiGroup, { POST: action('member', 400) }, { json: () => ({ printed: 'no number' }) }),
 	...doors(apiClaim, { GET: action('observer') }),

@@ -38,6 +38,7 @@ const TABLE: Readonly<Record<Action, readonly [own: string, others: string]>> = 
 	'decide-task': [NOBODY, MAINTAINER_UP],
 	'confirm-transcription': [NOBODY, MEMBER_UP],
 	'attach-notice': [MEMBER_UP, MAINTAINER_UP],
+	'attach-certificate': [MEMBER_UP, MEMBER_UP],
 	'handle-author-message': [MAINTAINER_UP, MAINTAINER_UP],
 	comment: [MEMBER_UP, MEMBER_UP],
 	'edit-comment': [MEMBER_UP, NOBODY],

@@ -31,6 +31,7 @@ export const ACTIONS = [
 	'decide-task',
 	'confirm-transcription',
 	'attach-notice',
+	'attach-certificate',
 	'handle-author-message',
 	'comment',
 	'edit-comment',
@@ -84,6 +85,8 @@ const RULES: Readonly<Record<Exclude<Action, PeopleAction>, Rule>> = {
 	'decide-task': { any: 'maintainer', own: null },
 	'confirm-transcription': { any: 'member', own: null },
 	'attach-notice': { any: 'maintainer', own: 'member' },
+	// The check decides on it, nobody else.
+	'attach-certificate': { any: 'member' },
 	'handle-author-message': { any: 'maintainer' },
 	comment: { any: 'member' },
 	'edit-comment': { any: null, own: 'member' },

@@ -1,9 +1,10 @@
 import type { RequestEvent } from '@sveltejs/kit';
 import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { BODY_LIMIT, UPLOAD_LIMIT, refuseBody } from './body-limit';
+import { ATTACH_LIMIT, BODY_LIMIT, UPLOAD_LIMIT, refuseBody } from './body-limit';
 
 const TASK = '/(group)/g/[slug]/tasks/[number]';
+const CLAIM = { route: '/(group)/g/[slug]/claims/[number]', query: '?/attach' };
 
 interface Sent {
 	readonly route?: string;
@@ -37,6 +38,10 @@ describe('refuseBody', () => {
 		['an upload of unknown length', { length: null }, null],
 		['an upload of nobody', { signedIn: false, length: BODY_LIMIT + 1 }, 413],
 		['an upload of nobody, of unknown length', { signedIn: false, length: null }, 411],
+		['a certificate at its limit', { ...CLAIM, length: ATTACH_LIMIT }, null],
+		['a certificate past it', { ...CLAIM, length: ATTACH_LIMIT + 1 }, 413],
+		['a certificate of nobody', { ...CLAIM, signedIn: false, length: BODY_LIMIT + 1 }, 413],
+		['a certificate of unknown length', { ...CLAIM, length: null }, 411],
 		['an upload elsewhere', { route: '/(group)/g/[slug]', length: BODY_LIMIT + 1 }, 413]
 	] satisfies [string, Sent, number | null][])('answers %s', async (_, sent, status) => {
 		expect(await statusOf(sent)).toBe(status);

@@ -12,10 +12,19 @@ export const BODY_LIMIT = 512 * 1024;
 export const UPLOAD_LIMIT =
 	TASK_LIMITS.files * TASK_LIMITS.fileBytes + TASK_LIMITS.certificate + 2_000_000;
 
-/** The one form that takes files, and only from those who have signed in. */
+/** A certificate pasted and chosen as a file, and the form around it. */
+export const ATTACH_LIMIT = 2 * TASK_LIMITS.certificate + BODY_LIMIT;
+
+/** The form that takes files, and only from those who have signed in. */
 function takesUploads({ route, url, locals }: RequestEvent): boolean {
 	const isTask = /\/g\/\[slug\]\/tasks\/\[number\]$/.test(route.id ?? '');
 	return isTask && url.searchParams.has('/submit') && locals.actor !== null;
+}
+
+/** The form of a claim's page that takes a certificate. */
+function takesCertificate({ route, url, locals }: RequestEvent): boolean {
+	const isClaim = /\/g\/\[slug\]\/claims\/\[number\]$/.test(route.id ?? '');
+	return isClaim && url.searchParams.has('/attach') && locals.actor !== null;
 }
 
 /**
@@ -32,7 +41,7 @@ export async function refuseBody(event: RequestEvent): Promise<Response | null> 
 		await readAway(request);
 		return problemResponse({ status: 411, detail: 'Send the length of the body with it.' });
 	}
-	const limit = uploads ? UPLOAD_LIMIT : BODY_LIMIT;
+	const limit = uploads ? UPLOAD_LIMIT : takesCertificate(event) ? ATTACH_LIMIT : BODY_LIMIT;
 	if (Number(length) <= limit) return null;
 	await readAway(request);
 	const detail = `The body has ${length} bytes; here it may have ${limit}.`;

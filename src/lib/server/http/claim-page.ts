@@ -1,9 +1,11 @@
+import { may } from '../../ledger/policy';
 import { disputing } from '../../ledger/comparison';
 import { parseActivityKind } from '../../schemas/activity-query';
 import type { GroupContext } from '../context';
 import { claimActivity } from '../services/activity/claim-activity';
 import { showClaim } from '../services/claims/show-claim';
 import { discussionView } from '../services/comments/discussion-view';
+import { listAttached } from '../services/submissions/list-attached';
 import { claimTasks } from './claim-tasks';
 import { loadPublication } from './publication-data';
 
@@ -22,6 +24,12 @@ export async function claimPage(ctx: GroupContext, number: number, history: stri
 		publication,
 		/** The comparison that found it to differ from its paper; null: none does. */
 		disputed,
+		/** What members attached, each accepted by its check. */
+		attached: await listAttached(ctx, claim.id),
+		mayAttach:
+			claim.state !== 'withdrawn' &&
+			claim.subject.inequalityId !== null &&
+			may(ctx.role, 'attach-certificate'),
 		tasks: await claimTasks(ctx, claim, disputed !== null),
 		discussion: await discussionView(ctx, 'claim', claim.id),
 		activity: await claimActivity(ctx, number, historyKind),

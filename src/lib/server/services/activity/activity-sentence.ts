@@ -71,6 +71,10 @@ export const SENTENCES: Readonly<Record<string, Sentence>> = {
 	'claim.transcription-voided': claims(
 		({ claim }) => `set aside the comparison of ${claim} with its paper`
 	),
+	'claim.certificate-attached': claims(
+		({ claim, after }) =>
+			`attached a certificate to ${claim}: ${textOf(after, 'label') ?? 'checked'}`
+	),
 	'claim.notice-attached': claims(({ claim, after }) => `attached ${notice(after)} to ${claim}`),
 	'claim.notice-removed': claims(({ claim, before }) => `removed ${notice(before)} from ${claim}`),
 	'recomputation.cancelled': claims(({ claim }) => `stopped a recomputation of ${claim}`),

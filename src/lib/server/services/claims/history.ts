@@ -17,6 +17,7 @@ const ACTION_TEXT: Readonly<Record<string, string>> = {
 	'claim.published': 'Published',
 	'claim.unpublished': 'Taken back from the public',
 	'claim.recompute-asked': 'Asked to recompute',
+	'claim.certificate-attached': 'Attached a certificate',
 	'claim.transcription-confirmed': 'Compared with the paper: all as printed',
 	'claim.transcription-disputed': 'Compared with the paper: not as printed',
 	'claim.transcription-voided': 'Comparison with the paper returned'

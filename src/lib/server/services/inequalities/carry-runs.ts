@@ -1,5 +1,5 @@
 import { and, eq, ne, or } from 'drizzle-orm';
-import type { Finding } from '../../../ledger/evidence';
+import type { Finding, ResultSummary } from '../../../ledger/evidence';
 import type { Transaction } from '../../db/client';
 import { claims, earlierResults, recomputations } from '../../db/schema';
 import { hashProblem } from '../recomputations/queue-recomputation';
@@ -103,7 +103,7 @@ function valuesOf(
 	const { state, summary } = run;
 	if (summary && map) {
 		const { result, check } = carryFinding(findingOf(run, summary), to, map);
-		const { problem: _, ...moved } = result;
+		const moved = withoutProblem(result);
 		const { lower, upper, exact } = check?.checked ? check : moved;
 		// A run under way is of the old form: what it had stands, and it is run again.
 		return { ...(state === 'running' ? QUEUED : {}), summary: moved, lower, upper, exact };
@@ -122,6 +122,12 @@ function findingOf(run: Run, summary: NonNullable<Run['summary']>): Finding {
 			? null
 			: ({ checked, reason: note } as const);
 	return { result: { ...summary, problem }, check };
+}
+
+function withoutProblem(result: Finding['result']): ResultSummary {
+	const { problem, ...summary } = result;
+	void problem; // it stands in a column of its own
+	return summary;
 }
 
 async function repoint(tx: Transaction, from: string, to: string): Promise<void> {
@@ -156,7 +162,7 @@ async function carryEarlier(
 			to,
 			map
 		);
-		const { problem: _, ...moved } = result;
+		const moved = withoutProblem(result);
 		if (!carried?.checked) continue;
 		const sides = { lower: carried.lower, upper: carried.upper, exact: carried.exact };
 		await tx

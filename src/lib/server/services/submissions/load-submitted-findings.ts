@@ -1,6 +1,6 @@
 import { and, asc, eq, isNotNull } from 'drizzle-orm';
 import type { Reader } from '../../db/client';
-import { inequalities, submissions, users } from '../../db/schema';
+import { attachedCertificates, inequalities, submissions, users } from '../../db/schema';
 import type { ClaimRow } from '../claims/find-claim';
 import type { StoredFinding } from '../claims/findings';
 
@@ -8,7 +8,8 @@ import type { StoredFinding } from '../claims/findings';
 export interface SubmittedFinding extends StoredFinding {
 	/** Who handed it in. */
 	readonly by: string;
-	readonly taskId: string;
+	/** The task it answers; null: attached to the claim itself. */
+	readonly taskId: string | null;
 }
 
 /**
@@ -43,8 +44,19 @@ export async function loadSubmittedFindings(
 			)
 		)
 		.orderBy(asc(submissions.submittedAt), asc(submissions.id));
+	const attached = await tx
+		.select({
+			id: attachedCertificates.id,
+			finding: attachedCertificates.finding,
+			by: users.name
+		})
+		.from(attachedCertificates)
+		.innerJoin(users, eq(users.id, attachedCertificates.attachedBy))
+		.where(eq(attachedCertificates.claimId, claim.id))
+		.orderBy(asc(attachedCertificates.attachedAt), asc(attachedCertificates.id));
+	const all = [...rows, ...attached.map((row) => ({ ...row, taskId: null }))];
 	const subject = JSON.stringify([about.outputs, about.terms]);
-	return rows.flatMap(({ finding, ...row }) => {
+	return all.flatMap(({ finding, ...row }) => {
 		if (!finding?.check?.checked) return [];
 		const { outputs, terms } = finding.result.problem;
 		if (JSON.stringify([outputs, terms]) !== subject) return [];

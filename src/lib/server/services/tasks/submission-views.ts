@@ -1,4 +1,4 @@
-import { and, asc, eq, inArray, ne, or, type SQL } from 'drizzle-orm';
+import { and, asc, eq, getTableColumns, inArray, ne, or, type SQL } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/sqlite-core';
 import { readStatedValue } from '../../../ledger/stated-value';
 import type {
@@ -65,10 +65,19 @@ export async function claimReproductions(
 		.filter(({ kind, check }) => kind !== 'certificate' || check?.accepted);
 }
 
+/** Everything but what was handed in, which may be megabytes. */
+const WITHOUT_CERTIFICATE = columnsWithoutCertificate();
+
+function columnsWithoutCertificate() {
+	const { certificate, ...columns } = getTableColumns(submissions);
+	void certificate;
+	return columns;
+}
+
 function selectSubmissions(read: Reader, where: SQL | undefined) {
 	return read
 		.select({
-			submission: submissions,
+			submission: WITHOUT_CERTIFICATE,
 			by: users.name,
 			decider: deciderNames.name,
 			taskNumber: tasks.number
@@ -118,7 +127,7 @@ function viewOf(
 
 /** What the check said of a certificate; its bounds in the claim's normalisation, rounded outward. */
 function checkView(
-	{ finding }: SubmissionRecord,
+	{ finding }: Pick<SubmissionRecord, 'finding'>,
 	claim: ClaimRow,
 	current: boolean
 ): SubmissionView['check'] {

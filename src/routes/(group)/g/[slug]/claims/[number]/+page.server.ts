@@ -1,4 +1,5 @@
 import { requireRole } from '$lib/server/auth/guards';
+import { attachAction } from '$lib/server/http/attach-action';
 import { claimAction, recheckAction } from '$lib/server/http/claim-action';
 import { claimPage } from '$lib/server/http/claim-page';
 import { assignAction } from '$lib/server/http/claim-tasks';
@@ -43,6 +44,7 @@ export const actions: Actions = {
 		cancelRecomputation(ctx, String(data.get('id')))
 	),
 	assign: assignAction,
+	attach: attachAction,
 	confirm: publicationActions.confirm,
 	attachNotice: publicationActions.attachNotice,
 	removeNotice: publicationActions.removeNotice,

@@ -339,7 +339,7 @@ describe('what is refused', () => {
 		expect(() => solve(npaProblem(family, level))).toThrow(message);
 	});
 	test('a matrix past the limit, with the figure', () => {
-		expect(() => solve(npaProblem({ name: 'i3322' }, 6))).toThrow(/rows; the limit is 300/);
+		expect(() => solve(npaProblem({ name: 'i3322' }, 6))).toThrow(/rows; the limit is 600/);
 	});
 	test('cancelling', () => {
 		const stopped = { ...PATIENT, shouldStop: () => true };

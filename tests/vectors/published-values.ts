@@ -32,9 +32,6 @@ export const SLOW_CLAIMS: Readonly<Record<string, string>> = {
 	'i3322.quantum.approx': 'needs a strategy grown past dimension 10',
 	'i3322.quantum': 'a supremum that no finite dimension reaches: 12 digits are not to be had',
 	'i3322.quantum.qubit-bound': 'needs a strategy grown past dimension 10',
-	'i3322.npa3': 'level 3: a matrix of 88 rows',
-	'i3322.npa3.printed': 'level 3: a matrix of 88 rows',
-	'ic.quantum.d4': '1+AB with 4 inputs of 4 outputs: a matrix of 91 rows'
 };
 
 const control: Control = {

@@ -40,6 +40,8 @@ export default defineConfig({
 					include: [
 						'src/**/*.test.ts',
 						'tests/architecture/**/*.test.ts',
+						'tests/certificates/**/*.test.ts',
+						'tests/bench/**/*.test.ts',
 						'tests/vectors/**/*.test.ts'
 					],
 					exclude: ['src/lib/components/**', 'src/lib/features/**']

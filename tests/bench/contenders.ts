@@ -41,7 +41,10 @@ export function ourContenders(problem: ProblemOf<'npa'>, long: boolean): Contend
 	return [
 		...(long ? [] : [inProcess(OURS.js, () => plainBounds(problem, 'plain'))]),
 		inProcess(OURS.wasm, () => plainBounds(problem, 'wasm')),
-		inProcess(OURS.cold, () => solveOnce(problem), clearPreparedRelaxations),
+		inProcess(OURS.cold, () => {
+			clearPreparedRelaxations();
+			return solveOnce(problem);
+		}),
 		inProcess(OURS.warm, () => solveOnce(problem))
 	];
 }

@@ -4,6 +4,9 @@
 export const SHORTEST_SAMPLE = 50;
 export const MOST_REPEATS = 200;
 
+/** CPU time spent on each contender before anything counts: compilers settle within it. */
+const WARM_UP = 700;
+
 /** One way to do a piece of work; the sample is milliseconds of CPU for one time. */
 export interface Contender {
 	readonly name: string;
@@ -17,19 +20,14 @@ export function cpuTime(): number {
 	return (user + system) / 1000;
 }
 
-/** A contender of this process; `before` is not measured. */
-export function inProcess(name: string, run: () => unknown, before?: () => void): Contender {
+/** A contender of this process. */
+export function inProcess(name: string, run: () => unknown): Contender {
 	return {
 		name,
 		async sample(repeats) {
-			let spent = 0;
-			for (let k = 0; k < repeats; k++) {
-				before?.();
-				const start = cpuTime();
-				await run();
-				spent += cpuTime() - start;
-			}
-			return spent / repeats;
+			const start = cpuTime();
+			for (let k = 0; k < repeats; k++) await run();
+			return (cpuTime() - start) / repeats;
 		}
 	};
 }
@@ -41,9 +39,13 @@ export function median(values: readonly number[]): number {
 	return sorted.length % 2 === 1 ? upper : (upper + (sorted[middle - 1] ?? NaN)) / 2;
 }
 
+function repeatsFor(once: number): number {
+	return Math.min(MOST_REPEATS, Math.ceil(SHORTEST_SAMPLE / Math.max(once, 0.01)));
+}
+
 /**
- * Median milliseconds by contender's name: every contender once per round, after two samples that
- * warm it up (none when there is one round only, and none after the first that was long).
+ * Median milliseconds by contender's name: every contender once per round, warmed up unless there is
+ * one round only.
  */
 export async function measureAll(
 	contenders: readonly Contender[],
@@ -54,8 +56,11 @@ export async function measureAll(
 	for (const { name, sample } of contenders) {
 		if (rounds === 1) continue;
 		let once = await sample(1);
-		if (once < 20 * SHORTEST_SAMPLE) once = await sample(3);
-		repeats.set(name, Math.min(MOST_REPEATS, Math.ceil(SHORTEST_SAMPLE / Math.max(once, 0.01))));
+		for (let spent = once, times = 2; spent < WARM_UP; times = repeatsFor(once)) {
+			once = await sample(times);
+			spent += times * Math.max(once, SHORTEST_SAMPLE / MOST_REPEATS);
+		}
+		repeats.set(name, repeatsFor(once));
 	}
 	for (let round = 0; round < rounds; round++)
 		for (const { name, sample } of contenders)

@@ -114,8 +114,7 @@ class WasmKernels implements Kernels {
 			throw new Error(
 				`the kernels were promised ${this.bytes} bytes at most, ${end} are asked for`
 			);
-		if (from < this.#untouched)
-			this.#all.fill(0, from, Math.min(end, this.#untouched));
+		if (from < this.#untouched) this.#all.fill(0, from, Math.min(end, this.#untouched));
 		this.#untouched = Math.max(this.#untouched, end);
 		this.#next = end;
 		return from;

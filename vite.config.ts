@@ -41,6 +41,7 @@ export default defineConfig({
 						'src/**/*.test.ts',
 						'tests/architecture/**/*.test.ts',
 						'tests/certificates/**/*.test.ts',
+						'tests/bench/**/*.test.ts',
 						'tests/vectors/**/*.test.ts'
 					],
 					exclude: ['src/lib/components/**', 'src/lib/features/**']

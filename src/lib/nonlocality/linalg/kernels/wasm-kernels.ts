@@ -77,6 +77,7 @@ class WasmKernels implements Kernels {
 	readonly kind = 'wasm';
 	readonly bytes: number;
 	readonly #buffer: ArrayBuffer;
+	readonly #all: Uint8Array;
 	readonly #call: Exports;
 	#next = FIRST_BYTE;
 	/** Bytes from here on were never given out: still zero. */
@@ -89,6 +90,7 @@ class WasmKernels implements Kernels {
 		const instance = new WebAssembly.Instance(module, { env: { memory } });
 		this.bytes = initial * PAGE;
 		this.#buffer = memory.buffer;
+		this.#all = new Uint8Array(this.#buffer);
 		this.#call = instance.exports as unknown as Exports;
 	}
 
@@ -112,8 +114,7 @@ class WasmKernels implements Kernels {
 			throw new Error(
 				`the kernels were promised ${this.bytes} bytes at most, ${end} are asked for`
 			);
-		if (from < this.#untouched)
-			new Uint8Array(this.#buffer, from, Math.min(end, this.#untouched) - from).fill(0);
+		if (from < this.#untouched) this.#all.fill(0, from, Math.min(end, this.#untouched));
 		this.#untouched = Math.max(this.#untouched, end);
 		this.#next = end;
 		return from;

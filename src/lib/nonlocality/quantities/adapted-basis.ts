@@ -2,7 +2,7 @@ import { seededRandom } from '../linalg/seeded-random';
 import type { CentredMomentMatrix } from './centred-moment-matrix';
 import { invariantSubspaces, type InvariantSubspace } from './invariant-subspaces';
 import type { RelabellingAction } from './relabelling-action';
-import type { WordOrbit } from './word-orbits';
+import { moveVector, type WordOrbit } from './word-orbits';
 
 /** A vector on the words of one orbit. */
 export interface AdaptedVector {
@@ -17,6 +17,11 @@ export interface AdaptedVector {
  */
 export interface AdaptedBlock {
 	readonly copies: readonly (readonly AdaptedVector[])[];
+	/**
+	 * Where equivalent subspaces could not be made alike (one copy holds all of them): the matrices
+	 * by which the group moves the vectors, row-major. A multiplier has to be averaged over them.
+	 */
+	readonly moves: readonly Float64Array[];
 }
 
 /** Couplings of a random invariant matrix below this are none, relative to its entries of about 1. */
@@ -53,7 +58,11 @@ export function adaptedBasis(
 		const [linking, checking] = couplings;
 		if (!linking || !checking) return null;
 		const blocks = alignedBlocks(spaces, linking, checking);
-		if (blocks) return blocks;
+		if (!blocks) continue;
+		return blocks.map(({ copies, whole }) => ({
+			copies,
+			moves: whole ? movesOf(action, orbits, copies[0] ?? []) : []
+		}));
 	}
 	return null;
 }
@@ -164,7 +173,7 @@ function alignedBlocks(
 	spaces: readonly Space[],
 	linking: Couplings,
 	checking: Couplings
-): AdaptedBlock[] | null {
+): { copies: AdaptedVector[][]; whole: boolean }[] | null {
 	const count = spaces.length;
 	const size = (e: number) => spaces[e]?.vectors.length ?? 0;
 	/** Orthogonal matrix by which each space's basis is turned: new basis = basis * turn^T. */
@@ -226,13 +235,36 @@ function alignedBlocks(
 		const list = ({ orbit, vectors }: (typeof bases)[number]) =>
 			vectors.map((entries) => ({ orbit, entries }));
 		// Subspaces of complex type have no basis that makes them alike: they stay together.
-		if (!splits[b]) return { copies: [bases.flatMap(list)] };
+		if (!splits[b]) return { copies: [bases.flatMap(list)], whole: true };
 		const copies = bases[0]?.vectors.length ?? 0;
 		return {
 			copies: Array.from({ length: copies }, (_, c) =>
 				bases.flatMap((basis) => list(basis).slice(c, c + 1))
-			)
+			),
+			whole: false
 		};
+	});
+}
+
+/** <u_k, g u_l> for every element g. */
+function movesOf(
+	action: RelabellingAction,
+	orbits: readonly WordOrbit[],
+	vectors: readonly AdaptedVector[]
+): Float64Array[] {
+	const n = vectors.length;
+	return Array.from({ length: action.order }, (_, g) => {
+		const matrix = new Float64Array(n * n);
+		vectors.forEach(({ orbit, entries }, l) => {
+			const image = new Float64Array(entries.length);
+			const own = orbits[orbit];
+			if (own) moveVector(action, own, g, entries, image);
+			vectors.forEach((other, k) => {
+				if (other.orbit === orbit)
+					matrix[k * n + l] = other.entries.reduce((sum, v, at) => sum + v * (image[at] ?? 0), 0);
+			});
+		});
+		return matrix;
 	});
 }
 

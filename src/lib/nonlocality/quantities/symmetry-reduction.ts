@@ -1,4 +1,4 @@
-import { multiply } from '../linalg/dense';
+import { addScaled, multiply } from '../linalg/dense';
 import type { BlockProgramme } from '../optimization/block-programme';
 import type { SparseRow } from '../optimization/moment-programme';
 import type { Relabelling } from '../scenario/relabelling';
@@ -32,6 +32,8 @@ export class SymmetryReduction {
 	readonly #inCentred: Float64Array;
 	/** One per block and copy: the basis in projector words, size x n row-major. */
 	readonly #bases: readonly (readonly Float64Array[])[];
+	/** By block, the matrices that its multiplier is averaged over. */
+	readonly #moves: readonly (readonly Float64Array[])[];
 	/** Which row of the programme each row of the original became (-1: none), and among how many. */
 	readonly #rowOf: readonly number[];
 	readonly #rowCounts: readonly number[];
@@ -44,6 +46,7 @@ export class SymmetryReduction {
 		this.#centred = parts.centred;
 		this.#inCentred = parts.inCentred;
 		this.#bases = parts.bases;
+		this.#moves = parts.moves;
 		this.#rowOf = parts.rowOf;
 		this.#rowCounts = parts.rowCounts;
 		this.#firstCell = new Int32Array(parts.matrix.moments.length).fill(-1);
@@ -80,17 +83,18 @@ export class SymmetryReduction {
 		if (!matrices) return null;
 		const forms = new InvariantForms(matrix, parties, action, invariants);
 		const objective = forms.of(denseRow(problem.programme.objective));
-		const averaged = averagedRows(problem.programme.rows.map((row) => forms.of(row)));
+		const rows = averagedRows(problem.programme.rows.map((row) => forms.of(row)));
 		if (invariants.count - 1 !== centred.unknowns) return null;
 		return new SymmetryReduction({
 			order: elements.length,
-			programme: { ...matrices, objective, rows: averaged.rows },
+			programme: { ...matrices, objective, rows: rows.rows },
 			matrix,
 			centred,
 			inCentred,
 			bases: basesInProjectors(inProjectors, orbits, blocks),
-			rowOf: averaged.rowOf,
-			rowCounts: averaged.counts
+			moves: blocks.map(({ moves }) => moves),
+			rowOf: rows.rowOf,
+			rowCounts: rows.counts
 		});
 	}
 
@@ -108,19 +112,13 @@ export class SymmetryReduction {
 		const z = new Float64Array(n * n);
 		this.#bases.forEach((copies, b) => {
 			const size = this.programme.sizes[b] ?? 0;
-			const offset = this.programme.offsets[b] ?? 0;
+			const from = this.programme.offsets[b] ?? 0;
+			const block = averaged(x.subarray(from, from + size * size), size, this.#moves[b] ?? []);
 			for (const basis of copies) {
 				const image = new Float64Array(size * n);
 				for (let k = 0; k < size; k++)
 					for (let l = 0; l < size; l++)
-						addMultiple(
-							image,
-							k * n,
-							(x[offset + k * size + l] ?? 0) / copies.length,
-							basis,
-							l * n,
-							n
-						);
+						addMultiple(image, k * n, (block[k * size + l] ?? 0) / copies.length, basis, l * n, n);
 				for (let k = 0; k < size; k++)
 					for (let i = 0; i < n; i++)
 						addMultiple(z, i * n, basis[k * n + i] ?? 0, image, k * n, i + 1);
@@ -156,8 +154,23 @@ interface Parts {
 	readonly centred: CentredMomentMatrix;
 	readonly inCentred: Float64Array;
 	readonly bases: readonly (readonly Float64Array[])[];
+	readonly moves: readonly (readonly Float64Array[])[];
 	readonly rowOf: readonly number[];
 	readonly rowCounts: readonly number[];
+}
+
+/** The mean of D X D^T over the matrices D; X itself where there are none. */
+function averaged(x: Float64Array, n: number, moves: readonly Float64Array[]): Float64Array {
+	if (moves.length === 0) return x;
+	const mean = new Float64Array(n * n);
+	const first = new Float64Array(n * n);
+	const second = new Float64Array(n * n);
+	for (const move of moves) {
+		multiply(move, x, first, n);
+		multiply(first, transposed(move, n), second, n);
+		addScaled(mean, 1 / moves.length, second);
+	}
+	return mean;
 }
 
 /** to[t ..] += factor * from[f ..], `count` entries. */

@@ -1,11 +1,13 @@
 /** Proof that a symmetric matrix of whole numbers is positive semidefinite, in whole numbers alone. */
-import { choleskyAllowance, choleskyFactor } from './verified-cholesky';
+import { choleskyAllowance, choleskyFactor, roundoffOf } from './verified-cholesky';
 
 /** Rows of the lower triangle: row i has i + 1 entries. */
 export type IntegerTriangle = readonly (readonly bigint[])[];
 
 /** The proposed factor keeps this many bits behind the point of the matrix's own unit. */
 const FACTOR_BITS = 44;
+/** Factorisations are hardly ever off by more roundoffs of the trace; their bound is about n. */
+const USUAL_ROUNDOFFS = 6;
 /** Products of 64-bit words past which the elimination is not begun: about two seconds. */
 const MOST_ELIMINATION_WORK = 2e9;
 
@@ -17,8 +19,10 @@ const MOST_ELIMINATION_WORK = 2e9;
 export function provePositivity(matrix: IntegerTriangle): 'factor' | 'elimination' | null {
 	const rows = matrix.map((row) => Float64Array.from(row, Number));
 	const allowance = choleskyAllowance(rows);
-	const proposed = choleskyFactor(rows, -allowance);
-	if (proposed && confirmsFactor(matrix, proposed, allowance)) return 'factor';
+	for (const margin of [USUAL_ROUNDOFFS * roundoffOf(rows), allowance]) {
+		const proposed = choleskyFactor(rows, -margin);
+		if (proposed && confirmsFactor(matrix, proposed, margin)) return 'factor';
+	}
 	// What is not even nearly positive needs no elimination to be refused.
 	if (!choleskyFactor(rows, 4 * allowance)) return null;
 	if (eliminationWork(matrix) > MOST_ELIMINATION_WORK) return null;
@@ -33,11 +37,11 @@ export function provePositivity(matrix: IntegerTriangle): 'factor' | 'eliminatio
 function confirmsFactor(
 	matrix: IntegerTriangle,
 	proposed: readonly Float64Array[],
-	allowance: number
+	expected: number
 ): boolean {
 	const unit = 2 ** FACTOR_BITS;
 	const factor = proposed.map((row) => Array.from(row, (x) => BigInt(Math.round(x * unit))));
-	const margin = BigInt(Math.floor(allowance * unit)) << BigInt(FACTOR_BITS);
+	const margin = BigInt(Math.floor(expected * unit)) << BigInt(FACTOR_BITS);
 	const most = margin * margin;
 	let squares = 0n;
 	for (const [i, row] of matrix.entries()) {

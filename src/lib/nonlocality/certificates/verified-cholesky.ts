@@ -12,6 +12,11 @@ function traceOf(matrix: RealTriangle): number {
 	return matrix.reduce((sum, row, i) => sum + Math.abs(row[i] ?? 0), 0);
 }
 
+/** One rounding of the trace. */
+export function roundoffOf(matrix: RealTriangle): number {
+	return UNIT_ROUNDOFF * traceOf(matrix);
+}
+
 /**
  * How far below zero an eigenvalue can be although a floating Cholesky factorisation completes:
  * gamma_{n+1} / (1 - gamma_{n+1}) * trace, with room for the rounding of this formula, of the

@@ -4,6 +4,7 @@ import { numeratorOf, printRational, ratio, toDoubleUp, type Rational } from '..
 import type { ProblemOf } from '../problem';
 import { collinsGisinForm, type Functional } from '../scenario/functional';
 import { functionalOfTerms } from '../scenario/problem-terms';
+import { confirmedShift } from './confirmed-shift';
 import { provenShift, type Multipliers } from './guaranteed-moments';
 import { momentOfEvents } from './moment-matrix';
 import type { MomentProblem } from './moment-problem';
@@ -16,6 +17,8 @@ const MOST_DENOMINATOR_BITS = 160;
 const MOST_SCALE_BITS = 160;
 /** A bound worse than the floating one by more than this (of the largest coefficient) is not worth it. */
 const NOTICEABLE = 1e-10;
+/** A shift that costs more than this (of the largest coefficient) is worth an exact confirmation. */
+const DEAR = 2e-10;
 
 export interface ExactBound {
 	/** The exact bound rounded outward. */
@@ -27,8 +30,10 @@ export interface ExactBound {
  * Turns floating multipliers into an exact certificate of nearly the same bound: they are rounded to
  * whole numbers over one denominator, what the rounding leaves over of each moment is spread over
  * its off-diagonal cells until every linear equality holds exactly, and the least eigenvalue that
- * this leaves is paid for by a shift. Costs about one Cholesky factorisation.
+ * this leaves is paid for by a shift. Costs about one Cholesky factorisation; where the a-priori
+ * bound on its rounding would be dear (hundreds of rows), the shift is confirmed exactly instead.
  *
+ * @param poll called every few milliseconds; may throw
  * Null where a coefficient is irrational, the denominators are too large, or the bound would come
  * out noticeably worse than the floating one.
  */
@@ -37,7 +42,8 @@ export function exactMomentBound(
 	g: Functional,
 	relaxation: MomentProblem,
 	multipliers: Multipliers,
-	floating: MomentCertificate
+	floating: MomentCertificate,
+	poll: () => void = () => {}
 ): ExactBound | null {
 	const forms = rationalForms(problem, g, relaxation);
 	if (!forms) return null;
@@ -60,10 +66,11 @@ export function exactMomentBound(
 	const n = programme.size;
 	const moved = provenShift(symmetric(entries, n), n, new Float64Array(n * n));
 	if (moved === null) return null;
-	const shift = BigInt(Math.ceil(moved));
+	const largest = programme.objective.subarray(1).reduce((a, c) => Math.max(a, Math.abs(c)), 0);
+	let shift = BigInt(Math.ceil(moved));
+	if ((n * moved) / scale.value > DEAR * largest) shift = confirmedShift(entries, n, poll) ?? shift;
 	const bound = ratio(rest.constant + BigInt(n) * shift, scale.denominator);
 	const upper = toDoubleUp(bound);
-	const largest = programme.objective.subarray(1).reduce((a, c) => Math.max(a, Math.abs(c)), 0);
 	if (!(upper <= floating.bound + NOTICEABLE * largest)) return null;
 	const { monomials, moments, feasibleValue } = floating;
 	return {

@@ -34,7 +34,7 @@ export function seeSaw(
 	const parties = g.scenario.outputs.length;
 	const dimensions = partyDimensions(problem.dimension, parties);
 	const largest = largestDimensions(problem, parties);
-	checkStateSize(largest);
+	checkStateSize(largest, problem.grow === undefined ? 'dimension' : 'grow');
 	if (problem.grow !== undefined && (problem.state !== 'free' || problem.constraints.length > 0))
 		throw new SolverStop('failed', 'grow: has no part with a given state or with constraints');
 	const { starts, seed, seconds, state, start, grow, constraints } = problem;

@@ -53,7 +53,7 @@ export function searchStrategies(
 	control: Control
 ): SearchResult | null {
 	const { dimensions } = search;
-	checkStateSize(dimensions);
+	checkStateSize(dimensions, 'dimension');
 	const functional = arrangeForSeeSaw(g);
 	const given = fixedState(search.state, dimensions);
 	const poll = pollWithin(control, search.seconds);

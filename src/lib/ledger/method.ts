@@ -1,4 +1,5 @@
 import type { Problem } from '../nonlocality/problem';
+import { largestDimensions } from '../nonlocality/scenario/local-dimensions';
 import { isAlmostQuantum } from './problem-labels';
 
 const NPA =
@@ -17,7 +18,8 @@ export function methodMatches(method: string, problem: Problem): boolean {
 		case 'see-saw':
 			return (
 				/see-?saw|heuristic|variational|explicit strateg|lower bound/i.test(method) ||
-				(problem.dimension.every((d) => d === 2) && /\bqubits?\b/i.test(method)) ||
+				(largestDimensions(problem, problem.outputs.length).every((d) => d === 2) &&
+					/\bqubits?\b/i.test(method)) ||
 				(problem.state === 'maximally-entangled' && /maximally[\s-]*entangled/i.test(method))
 			);
 		case 'local':

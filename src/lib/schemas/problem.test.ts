@@ -23,16 +23,6 @@ function same(a: Problem, b: Problem): boolean {
 	);
 }
 
-/** Both parties always answer 0, as a box is written or as a normalised problem stores it. */
-function startOf(form: 'family' | 'kind'): object {
-	const elements = [[[[1, 0]]], [[[0, 0]]]];
-	const party = [elements, elements];
-	const strategy = { state: [['1', 0]], measurements: [party, party] };
-	return form === 'family'
-		? { family: 'quantum', ...strategy }
-		: { kind: 'quantum', strategy: { dimensions: [1, 1], ...strategy } };
-}
-
 function failure(json: unknown): unknown {
 	try {
 		parseProblem(json);
@@ -327,14 +317,6 @@ describe('normal form', () => {
 		{ family: { name: 'mermin', n: 3 }, quantity: 'hybrid', model: 'no-signalling' },
 		{ ...chsh, quantity: 'facet' },
 		{ ...chsh, quantity: 'see-saw', dimension: [2, 3], state: 'maximally-entangled', seed: 7 },
-		{ ...chsh, quantity: 'see-saw', dimension: 2, grow: 40, start: startOf('family') },
-		{ ...chsh, quantity: 'quantum', start: startOf('kind') },
-		{
-			...chsh,
-			quantity: 'see-saw',
-			dimension: 2,
-			constraints: [{ expression: 'A0', relation: '=', value: 0 }]
-		},
 		{ ...chsh, quantity: 'value', box: { family: 'isotropic', d: 2, E: '1/sqrt(2)' } },
 		{
 			...chsh,

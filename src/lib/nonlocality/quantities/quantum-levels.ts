@@ -39,7 +39,7 @@ export class LevelArm implements Arm {
 		this.#enclosure = enclosure;
 		this.#control = control;
 		this.#left = left;
-		this.#levels = [...levelsToTry(problem)];
+		this.#levels = [...(problem.levels ?? levelsToTry(problem.outputs.length))];
 	}
 
 	/** Drops levels that are refused or have no chance within the time that is left, with a note. */

@@ -18,12 +18,9 @@ const DEAR = 0.3;
 const MOST_USED_ORDER = 64;
 
 /** Relaxations in the order they are tried: each costs a multiple of the one before, and bounds more. */
-export function levelsToTry(problem: ProblemOf<'quantum'>): readonly Level[] {
-	if (problem.levels) return problem.levels;
+export function levelsToTry(parties: number): readonly Level[] {
 	// With three parties and more the levels 1 and 2 are no cheaper, or lack a moment.
-	return problem.outputs.length === 2
-		? [1, '1+AB', 2, 3, 4]
-		: [{ perParty: 1 }, 3, { perParty: 2 }, 4];
+	return parties === 2 ? [1, '1+AB', 2, 3, 4] : [{ perParty: 1 }, 3, { perParty: 2 }, 4];
 }
 
 /** What a level is predicted to cost; `refused` in words where it does not fit or is too large. */

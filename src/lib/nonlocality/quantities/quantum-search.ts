@@ -84,6 +84,7 @@ export class DimensionArm implements Arm {
 			seconds: Math.min(seconds, Math.max(SHORTEST_VISIT, OVERRUN * this.seconds)),
 			state: 'free',
 			target: known.upper,
+			gap: problem.gap / 2,
 			known: known.lower
 		} as const;
 		try {

@@ -18,13 +18,13 @@ export function partyDimensions(given: readonly number[], parties: number): numb
 	return list;
 }
 
-/** @throws SolverStop `limit` */
-export function checkStateSize(dimensions: readonly number[]): void {
+/** @param field of the problem, for the message. @throws SolverStop `limit` */
+export function checkStateSize(dimensions: readonly number[], field: string): void {
 	const total = dimensions.reduce((product, d) => product * d, 1);
 	if (total > STATE_LIMIT)
 		throw new SolverStop(
 			'limit',
-			`a state in dimensions ${printDimensions(dimensions)} has ${total} entries; the limit is ${STATE_LIMIT}`
+			`${field}: a state in dimensions ${dimensions.join(' x ')} has ${total} entries; the limit is ${STATE_LIMIT}`
 		);
 }
 

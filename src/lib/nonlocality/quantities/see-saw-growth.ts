@@ -20,7 +20,7 @@ const ROUGH = 1e-8;
 /** Dimensions added at a time, and perturbations (drawn log-uniformly) that were seen to help. */
 const STEP = 2;
 /** Tries in the largest dimension without a gain after which padding is over. */
-const MOST_FRUITLESS = 40;
+const MOST_FRUITLESS = 12;
 const LEAST_PERTURBATION = 1e-3;
 const PERTURBATION_RANGE = 300;
 /** Streams of the seed that the searches in fixed dimensions will not reach. */

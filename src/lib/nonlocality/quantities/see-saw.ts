@@ -5,12 +5,16 @@ import { largestDimensions } from '../scenario/local-dimensions';
 import { givenStrategy } from './given-strategy';
 import type { Outcome } from './outcome';
 import { searchUnderConstraints } from './see-saw-constrained';
+import { quickUpperBound } from './quick-upper-bound';
 import { checkStateSize, partyDimensions } from './see-saw-dimensions';
 import { StrategyGrowth } from './see-saw-growth';
 import { searchStrategies, type SearchResult } from './strategy-search';
 
 /** Share of the budget for starts in the given dimensions, where the strategy is to grow. */
 const START_SHARE = 0.25;
+
+/** A search that comes so near to an upper bound is over, as for the quantum maximum. */
+const GAP = 1e-8;
 
 /**
  * Largest value found for quantum strategies of the given local dimensions: a lower bound on the
@@ -21,7 +25,8 @@ const START_SHARE = 0.25;
  * allowance for rounding. That no better strategy exists is not claimed. Under constraints `lower`
  * is guaranteed only where all of them are inequalities that provably hold: equations hold to
  * rounding at best, so what a strategy near them reaches is numerical, with its violation beside it.
- * @param target an upper bound known already: the search ends when it is reached
+ * Where a relaxation takes no time, its bound ends the search as soon as a strategy meets it.
+ * @param known an upper bound, or a value that is enough: the search ends when it is reached
  * @throws SolverStop `failed` for a state or start that does not fit or when no strategy meets the
  *   constraints, `limit` for a state of more than 4096 entries, `cancelled` when told to stop
  */
@@ -29,12 +34,12 @@ export function seeSaw(
 	problem: ProblemOf<'see-saw'>,
 	g: Functional,
 	control: Control,
-	target: number | null = null
+	known: number | null = null
 ): Outcome {
 	const parties = g.scenario.outputs.length;
 	const dimensions = partyDimensions(problem.dimension, parties);
 	const largest = largestDimensions(problem, parties);
-	checkStateSize(largest);
+	checkStateSize(largest, problem.grow === undefined ? 'dimension' : 'grow');
 	if (problem.grow !== undefined && (problem.state !== 'free' || problem.constraints.length > 0))
 		throw new SolverStop('failed', 'grow: has no part with a given state or with constraints');
 	const { starts, seed, seconds, state, start, grow, constraints } = problem;
@@ -49,6 +54,8 @@ export function seeSaw(
 		return searchUnderConstraints(g, forms, { ...common, seconds }, control);
 	}
 	const began = control.now();
+	const worthwhile = known === null && state === 'free' && (starts > 1 || grow !== undefined);
+	const target = worthwhile ? quickUpperBound(problem, g, control) : known;
 	const search = {
 		...common,
 		// a start beyond the given dimensions is only to be grown
@@ -56,18 +63,20 @@ export function seeSaw(
 		firstStart: 0,
 		seconds: grow === undefined ? seconds : START_SHARE * seconds,
 		target,
+		gap: worthwhile ? GAP : 0,
 		known: null
 	};
 	const found = searchStrategies(g, search, control);
-	if (grow === undefined) {
+	if (grow === undefined || found?.targetReached) {
 		if (!found) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
 		return outcomeOf(found, dimensions);
 	}
 	const growth = new StrategyGrowth(g, { seed, largest: grow, start: from });
 	if (found) growth.growFrom(found.strategy);
 	const left = seconds - (control.now() - began) / 1000;
-	const known = found?.certificate.value ?? -Infinity;
-	const grown = left > 0 ? growth.run(left, known, control, target ?? Infinity) : null;
+	const lower = found?.certificate.value ?? -Infinity;
+	const enough = target === null ? Infinity : target - search.gap;
+	const grown = left > 0 ? growth.run(left, lower, control, enough) : null;
 	const certificate = grown ?? found?.certificate;
 	if (!certificate) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
 	const outcome = found ? outcomeOf(found, dimensions) : null;
@@ -107,6 +116,7 @@ function outcomeOf(found: SearchResult, dimensions: readonly number[]): Outcome 
 			bestStart: found.bestStart,
 			real: found.strategy.real,
 			projective: found.certificate.projective,
+			targetReached: found.targetReached,
 			iterations: found.iterations,
 			converged: found.converged
 		},

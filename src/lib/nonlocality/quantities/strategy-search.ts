@@ -24,6 +24,8 @@ export interface StrategySearch {
 	readonly state: ProblemOf<'see-saw'>['state'];
 	/** An upper bound, or a value that is enough: no further start once it is reached. */
 	readonly target: number | null;
+	/** How near to the target is enough (default: rounding). */
+	readonly gap?: number;
 	/** The best value known from elsewhere: starts that will not reach it are given up early. */
 	readonly known: number | null;
 	/** Start 0, in place of a random one. */
@@ -53,7 +55,7 @@ export function searchStrategies(
 	control: Control
 ): SearchResult | null {
 	const { dimensions } = search;
-	checkStateSize(dimensions);
+	checkStateSize(dimensions, 'dimension');
 	const functional = arrangeForSeeSaw(g);
 	const given = fixedState(search.state, dimensions);
 	const poll = pollWithin(control, search.seconds);
@@ -64,6 +66,7 @@ export function searchStrategies(
 	let startsDone = 0;
 	let iterations = 0;
 	let targetReached = false;
+	const closed = Math.max(search.gap ?? 0, TARGET_CLOSED * functional.scale);
 	while (startsDone < search.starts && !targetReached) {
 		const start = search.firstStart + startsDone;
 		const random = seededRandom(search.seed, start);
@@ -88,8 +91,7 @@ export function searchStrategies(
 		}
 		startsDone++;
 		if (!best || value > best.value) best = { value, strategy, bestStart: start, converged };
-		targetReached =
-			search.target !== null && best.value >= search.target - TARGET_CLOSED * functional.scale;
+		targetReached = search.target !== null && best.value >= search.target - closed;
 		control.report({
 			stage: `see-saw, dimension ${printDimensions(dimensions)}`,
 			iteration: startsDone,

@@ -1,4 +1,5 @@
 import type { Level, Problem, Result } from '../../../nonlocality/problem';
+import { largestDimensions } from '../../../nonlocality/scenario/local-dimensions';
 
 function levelText(level: Level): string {
 	if (typeof level === 'number' || typeof level === 'string') return `level ${level}`;
@@ -25,7 +26,8 @@ export function problemLabel(problem: Problem): string {
 		case 'npa':
 			return `NPA ${levelText(problem.level)}${problem.nonNegative ? ', P ≥ 0' : ''}${minimum}`;
 		case 'see-saw': {
-			const dimensions = [...new Set(problem.dimension)].join(' × ');
+			const largest = largestDimensions(problem, problem.outputs.length);
+			const dimensions = [...new Set(largest)].join(' × ');
 			const state = problem.state === 'maximally-entangled' ? ', maximally entangled' : '';
 			return `See-saw, dimension ${dimensions}${state}${minimum}`;
 		}

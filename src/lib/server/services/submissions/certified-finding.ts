@@ -8,6 +8,7 @@ import type {
 	ProblemOf,
 	ProblemTerm
 } from '../../../nonlocality/problem';
+import { largestDimensions } from '../../../nonlocality/scenario/local-dimensions';
 import { mapSides, type AffineMap, type Sides } from '../inequalities/affine';
 
 /** The inequality's representative, about which every stored value speaks. */
@@ -102,12 +103,13 @@ export function problemOf(
 		case 'value':
 			return problemOfBox(problem.box, base, alike);
 		case 'see-saw': {
-			const same = new Set(problem.dimension).size === 1;
+			const dimensions = largestDimensions(problem, outputs.length);
+			const same = new Set(dimensions).size === 1;
 			const entangled = same && problem.state === 'maximally-entangled';
 			return {
 				...base,
 				quantity: 'see-saw',
-				dimension: alike(problem.dimension),
+				dimension: alike(dimensions),
 				starts: problem.starts,
 				state: entangled ? 'maximally-entangled' : 'free'
 			};

@@ -16,8 +16,8 @@ import { STRATEGY_LIMIT } from './local-maximum';
 import { strategyTensor, type StrategyTensor } from './strategy-tensor';
 import type { WorkClock } from './work-clock';
 
-/** Joint probabilities of the scenario: the functional is written out over them. */
-const TABLE_LIMIT = 100_000;
+/** Joint probabilities of the scenario, over which the functional is written out: some seconds. */
+const TABLE_LIMIT = 10_000;
 
 /**
  * Svetlichny's model: each group acts as one party with its joint inputs and outputs, so the maximum
@@ -38,10 +38,10 @@ export function svetlichnyHybrid(
 	const partial = partialMeasurement(functional);
 	if (partial) throw new SolverStop('failed', partial);
 	const written = fullCorrelatorForm(functional);
-	const splits = bipartitions(scenario.outputs.length).map((groups) => ({
-		groups,
-		tensor: strategyTensor(mergeParties(written, groups))
-	}));
+	const splits = bipartitions(scenario.outputs.length).map((groups) => {
+		clock.check();
+		return { groups, tensor: strategyTensor(mergeParties(written, groups)) };
+	});
 	const total = splits.reduce((sum, { tensor }) => sum + tensor.count, 0);
 	if (total > STRATEGY_LIMIT)
 		throw new SolverStop(

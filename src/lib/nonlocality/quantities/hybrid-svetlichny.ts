@@ -38,16 +38,20 @@ export function svetlichnyHybrid(
 	const partial = partialMeasurement(functional);
 	if (partial) throw new SolverStop('failed', partial);
 	const written = fullCorrelatorForm(functional);
-	const splits = bipartitions(scenario.outputs.length).map((groups) => {
+	const merged = bipartitions(scenario.outputs.length).map((groups) => {
 		clock.check();
-		return { groups, tensor: strategyTensor(mergeParties(written, groups)) };
+		return { groups, two: mergeParties(written, groups) };
 	});
-	const total = splits.reduce((sum, { tensor }) => sum + tensor.count, 0);
+	const total = merged.reduce((sum, { two }) => sum + strategiesOf(two), 0);
 	if (total > STRATEGY_LIMIT)
 		throw new SolverStop(
 			'limit',
 			`${total} joint strategies would have to be enumerated, more than the limit of ${STRATEGY_LIMIT}`
 		);
+	const splits = merged.map(({ groups, two }) => {
+		clock.check();
+		return { groups, tensor: strategyTensor(two) };
+	});
 	let done = 0;
 	let best: { split: (typeof splits)[number]; found: BestStrategy } | null = null;
 	for (const split of splits) {
@@ -77,6 +81,17 @@ export function svetlichnyHybrid(
 		bipartitions: [],
 		method: { name: 'enumeration of joint strategies', enumerated: total }
 	};
+}
+
+/** Functions of the joint inputs that occur, of the group with fewer of them. */
+function strategiesOf({ scenario, terms }: Functional): number {
+	const counts = scenario.outputs.map((counts, group) => {
+		const inputs = new Set(
+			terms.flatMap(({ events }) => events.filter(([g]) => g === group).map(([, x]) => x))
+		);
+		return [...inputs].reduce((product, x) => product * (counts[x] ?? 1), 1);
+	});
+	return Math.min(...counts);
 }
 
 /** A function per group as a table of ones; output 0 where the functional does not look. */

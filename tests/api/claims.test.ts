@@ -57,6 +57,25 @@ describe('a claim', () => {
 		expect(b.stations).toMatchObject({ local: '0', noSignalling: '0.5' });
 	});
 
+	it('on a hybrid maximum is recomputed in the model it names', async () => {
+		// Collins et al. 2002: Svetlichny's inequality has hybrid bound 4, quantum 4 sqrt 2
+		const svetlichny = { family: 'svetlichny', familyParameter: '3', printed: '4' } as const;
+		const claims = await Promise.all(
+			(['hybrid', 'hybrid-no-signalling'] as const).map((quantity, i) =>
+				enterClaim(
+					world.as.member,
+					claimFields({ ...svetlichny, quantity, bibtex: bibtexOf(20 + i) })
+				)
+			)
+		);
+		await world.recompute();
+		for (const { number } of claims)
+			expect((await showClaim(world.as.observer, number)).verdict).toMatchObject({
+				status: 'agreement',
+				enclosure: { worth: 'guaranteed', lower: '4', upper: '4' }
+			});
+	});
+
 	it('that disagrees says why, and agrees once it is corrected', async () => {
 		const { number } = await enterClaim(world.as.member, claimFields({ printed: '2.8248' }));
 		await world.recompute();

@@ -265,5 +265,18 @@ describe('what the models cannot take', () => {
 			status: 'limit',
 			reason: expect.stringMatching(/more than 6000 vertices/)
 		});
+		const many = await solve(hybridProblem(f(6), 'svetlichny'), quietControl);
+		expect(many).toMatchObject({
+			status: 'limit',
+			reason: expect.stringMatching(/20736 joint probabilities, more than the limit of 10000/)
+		});
+		const deep = await solve(
+			hybridProblem(familyFunctional({ name: 'svetlichny', n: 6 }), 'svetlichny'),
+			quietControl
+		);
+		expect(deep).toMatchObject({
+			status: 'limit',
+			reason: expect.stringMatching(/\d{9} joint strategies .* limit of 67108864/)
+		});
 	}, 60_000);
 });

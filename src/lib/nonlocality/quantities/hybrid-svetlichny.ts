@@ -16,8 +16,8 @@ import { STRATEGY_LIMIT } from './local-maximum';
 import { strategyTensor, type StrategyTensor } from './strategy-tensor';
 import type { WorkClock } from './work-clock';
 
-/** Joint probabilities of the scenario: the functional is written out over them. */
-const TABLE_LIMIT = 100_000;
+/** Joint probabilities of the scenario, over which the functional is written out: some seconds. */
+const TABLE_LIMIT = 10_000;
 
 /**
  * Svetlichny's model: each group acts as one party with its joint inputs and outputs, so the maximum
@@ -38,16 +38,20 @@ export function svetlichnyHybrid(
 	const partial = partialMeasurement(functional);
 	if (partial) throw new SolverStop('failed', partial);
 	const written = fullCorrelatorForm(functional);
-	const splits = bipartitions(scenario.outputs.length).map((groups) => ({
-		groups,
-		tensor: strategyTensor(mergeParties(written, groups))
-	}));
-	const total = splits.reduce((sum, { tensor }) => sum + tensor.count, 0);
+	const merged = bipartitions(scenario.outputs.length).map((groups) => {
+		clock.check();
+		return { groups, two: mergeParties(written, groups) };
+	});
+	const total = merged.reduce((sum, { two }) => sum + strategiesOf(two), 0);
 	if (total > STRATEGY_LIMIT)
 		throw new SolverStop(
 			'limit',
 			`${total} joint strategies would have to be enumerated, more than the limit of ${STRATEGY_LIMIT}`
 		);
+	const splits = merged.map(({ groups, two }) => {
+		clock.check();
+		return { groups, tensor: strategyTensor(two) };
+	});
 	let done = 0;
 	let best: { split: (typeof splits)[number]; found: BestStrategy } | null = null;
 	for (const split of splits) {
@@ -77,6 +81,17 @@ export function svetlichnyHybrid(
 		bipartitions: [],
 		method: { name: 'enumeration of joint strategies', enumerated: total }
 	};
+}
+
+/** Functions of the joint inputs that occur, of the group with fewer of them. */
+function strategiesOf({ scenario, terms }: Functional): number {
+	const counts = scenario.outputs.map((counts, group) => {
+		const inputs = new Set(
+			terms.flatMap(({ events }) => events.filter(([g]) => g === group).map(([, x]) => x))
+		);
+		return [...inputs].reduce((product, x) => product * (counts[x] ?? 1), 1);
+	});
+	return Math.min(...counts);
 }
 
 /** A function per group as a table of ones; output 0 where the functional does not look. */

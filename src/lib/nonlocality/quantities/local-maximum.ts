@@ -7,7 +7,7 @@ import { strategyTensor, type StrategyTensor } from './strategy-tensor';
 import { wholeStrategy } from './whole-strategy';
 import { WorkClock } from './work-clock';
 
-/** Strategies enumerated at most: 2^26, some 8 s for two parties with 26 inputs of two outputs. */
+/** Strategies enumerated at most: 2^26, some 6 s for two parties with 26 inputs of two outputs. */
 export const STRATEGY_LIMIT = 2 ** 26;
 
 /**

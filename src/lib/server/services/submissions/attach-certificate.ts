@@ -34,7 +34,8 @@ export async function attachCertificate(
 	if (claim.state === 'withdrawn') {
 		throw new ServiceError('conflict', 'This claim is withdrawn: nothing is attached to it.');
 	}
-	if (!certificate.trim()) throw refusal('Paste the result with its certificate, or choose its file.');
+	if (!certificate.trim())
+		throw refusal('Paste the result with its certificate, or choose its file.');
 	const { finding, label, accepted, note } = await readCertificate(ctx, claim, certificate);
 	if (!accepted) throw refusal(note);
 	const sha256 = createHash('sha256').update(certificate).digest('hex');

@@ -101,6 +101,11 @@ export const MATRIX: readonly MatrixRow[] = [
 		{ path: (w) => `/inequalities/${w.inequalityId}` }
 	),
 	...doors(
+		'/recomputations/[id]',
+		{ GET: { ...same(200), anonymous: 404, outsider: 404 } },
+		{ path: (w) => `/recomputations/${w.recomputationId}` }
+	),
+	...doors(
 		'/references/[id]',
 		{ GET: same(200) },
 		{ path: (w) => `/references/${w.publicReferenceId}` }

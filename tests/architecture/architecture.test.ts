@@ -79,6 +79,8 @@ describe('every route guards itself', () => {
 		'src/routes/(account)/join/[token]/+page.server.ts': 'shows whom a link lets in, to its holder',
 		'src/routes/api/v1/recomputations/[id]/check/+server.ts': SHARED,
 		'src/routes/api/v1/recomputations/[id]/result/+server.ts': SHARED,
+		'src/routes/(public)/recomputations/[id]/+page.server.ts': SHARED,
+		'src/routes/api/v1/inequalities/[id]/sdpa/+server.ts': SHARED,
 		'src/routes/api/v1/recomputations/[id]/sdpa/+server.ts': SHARED
 	};
 	const GUARD = /\b(requireUser|requireRole|requireAdmin|publicContext)\(/;

@@ -59,9 +59,11 @@ describe('a verb that writes', () => {
 	/** Write without a row of their own, each with its reason. */
 	const WITHOUT: Readonly<Record<string, string>> = {
 		'services/inequalities/ensure-catalogue.ts': 'the families that the product ships, at start',
+		'services/inequalities/upgrade-digests.ts': 'the same facts under a better digest, at start',
 		'services/notifications/mark-read.ts': 'what somebody has read is nobody else’s to know',
 		'services/notifications/queue-digests.ts': 'mails of what is recorded already',
 		'services/notifications/send-due-reminders.ts': 'mails that a date calls for',
+		'services/recomputations/renew-stations.ts': 'runs that a newer solver does over, at start',
 		'services/users/sign-in.ts': 'a newer hash of the same password; the security log has it'
 	};
 	/** The verbs' own ways to `recordAudit`. */

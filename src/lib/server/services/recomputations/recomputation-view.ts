@@ -1,4 +1,5 @@
 import { eq, inArray, or, sql, type SQL } from 'drizzle-orm';
+import type { Certificate } from '../../../nonlocality/certificates/types';
 import type { RecomputationView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { STATIONS, recomputations } from '../../db/schema';
@@ -6,7 +7,7 @@ import { exactText, mapSides, showSides, type AffineMap } from '../inequalities/
 import { methodDetail, problemLabel } from './problem-label';
 import { PROGRESS_COLUMNS, progressView } from './progress-view';
 
-const CERTIFICATES: Readonly<Record<string, string>> = {
+const CERTIFICATES: Readonly<Record<Certificate['kind'], string>> = {
 	'deterministic-strategy': 'Deterministic strategy',
 	'linear-programme': 'Primal and dual solution',
 	'npa-dual': 'Dual multiplier',
@@ -14,6 +15,9 @@ const CERTIFICATES: Readonly<Record<string, string>> = {
 	'quantum-strategy': 'State and measurements',
 	enclosure: 'State, measurements and dual multiplier'
 };
+
+const certificateLabel = (kind: string | undefined) =>
+	Object.entries(CERTIFICATES).find(([known]) => known === kind)?.[1] ?? null;
 
 /** Runs that match, stations first in their order, then by age, in the reader's normalisation. */
 export async function recomputationViews(
@@ -52,7 +56,7 @@ export async function recomputationViews(
 				lower: shown.lower,
 				upper: shown.upper,
 				exact: exactText(sides),
-				certificate: CERTIFICATES[row.summary?.certificate?.kind ?? ''] ?? null,
+				certificate: certificateLabel(row.summary?.certificate?.kind),
 				checked: row.checked,
 				checkNote: row.checkNote,
 				seconds: row.summary?.seconds ?? null,

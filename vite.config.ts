@@ -28,6 +28,7 @@ export default defineConfig({
 	build: { assetsInlineLimit: 0 },
 	test: {
 		expect: { requireAssertions: true },
+		coverage: { provider: 'custom', customProviderModule: './tests/support/coverage-provider.mjs' },
 		projects: [
 			{
 				extends: true,

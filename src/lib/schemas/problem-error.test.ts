@@ -148,7 +148,7 @@ describe('what is malformed names its field', () => {
 		[{ ...seeSaw, start: answersZero(0), state: 'maximally-entangled' }, 'start', /state is given/],
 		[{ quantity: 'value', ...chsh }, 'box', /is missing/],
 		[{ quantity: 'value', ...chsh, box: { '0,0|0,7': 1 } }, 'box["0,0|0,7"]', /outside/],
-		[{ quantity: 'value', ...chsh, box: { family: 'isotropic', d: 2 } }, 'box', /with its fields/],
+		[{ quantity: 'value', ...chsh, box: { family: 'isotropic', d: 2 } }, 'box.E', /is missing/],
 		[{ quantity: 'value', ...chsh, box: { family: 'isotropic', d: 2, E: 2 } }, 'box.E', /from -1/],
 		[{ quantity: 'local', ...chsh, box: { family: 'uniform' } }, 'box', /no part/],
 		[

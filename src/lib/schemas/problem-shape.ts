@@ -110,7 +110,13 @@ export const boxShape = z.union(
 	[
 		z.strictObject({ family: z.literal('isotropic'), d: count(2), E: coefficientShape }),
 		z.strictObject({ family: z.literal('uniform') }),
-		z.strictObject({ family: z.literal('deterministic'), strategy: z.array(z.array(count(0))) }),
+		z.strictObject({
+			family: z.literal('deterministic'),
+			strategy: z.array(
+				z.array(count(0), kind('a list of outputs')),
+				kind('a list of lists: the output of each input, per party')
+			)
+		}),
 		z.strictObject({ family: z.literal('quantum'), ...strategyShape }),
 		// as a normalised problem stores it
 		z.strictObject({ kind: z.literal('table'), probabilities: entriesShape }),

@@ -129,21 +129,52 @@ function checkQuantity(quantity: string): void {
 	);
 }
 
-function errorOfIssue(issue: z.core.$ZodIssue | undefined, json: object): ProblemError {
-	if (!issue) return new ProblemError('problem', 'is malformed');
-	const path = issue.path.map((key) =>
-		typeof key === 'number' ? `[${key}]` : `.${String(key).slice(0, 40)}`
-	);
-	const field = path.join('').replace(/^\./, '');
+function errorOfIssue(found: z.core.$ZodIssue | undefined, json: object): ProblemError {
+	if (!found) return new ProblemError('problem', 'is malformed');
+	const issue = chosenIssue(found);
+	const field = issue.path.map(pathPart).join('').replace(/^\./, '');
 	if (issue.code === 'unrecognized_keys') {
 		const key = (issue.keys[0] ?? '').slice(0, 40);
 		const known =
 			field === '' ? `; a problem has ${Object.keys(problemShape.shape).join(', ')}` : '';
 		return new ProblemError(field === '' ? key : `${field}.${key}`, `is not known here${known}`);
 	}
-	const [first] = issue.path;
-	const missing = issue.path.length === 1 && !Object.hasOwn(json, String(first));
-	return new ProblemError(field || 'problem', missing ? 'is missing' : issue.message);
+	if (issue.code === 'invalid_key') {
+		const message = issue.issues[0]?.message ?? issue.message;
+		return new ProblemError(field, `is no key of this object: ${message}`);
+	}
+	return new ProblemError(
+		field || 'problem',
+		isMissing(json, issue.path) ? 'is missing' : issue.message
+	);
+}
+
+function pathPart(key: PropertyKey): string {
+	if (typeof key === 'number') return `[${key}]`;
+	const name = String(key).slice(0, 40);
+	return /^\w+$/.test(name) ? `.${name}` : `[${JSON.stringify(name)}]`;
+}
+
+/**
+ * Of the ways a field can be given, the only one whose name (`family`, `kind`) is right says what is
+ * wrong; where there is none such, the union's own message does.
+ */
+function chosenIssue(issue: z.core.$ZodIssue): z.core.$ZodIssue {
+	if (issue.code !== 'invalid_union') return issue;
+	const isNamed = (options: readonly z.core.$ZodIssue[]) =>
+		options.every(({ path }) => path.length > 0 && path[0] !== 'family' && path[0] !== 'kind');
+	const [only, second] = issue.errors.filter((options) => options.length > 0 && isNamed(options));
+	const [first] = only ?? [];
+	if (!first || second) return issue;
+	return chosenIssue({ ...first, path: [...issue.path, ...first.path] });
+}
+
+/** Whether what the path leads to is not there. */
+function isMissing(json: unknown, path: readonly PropertyKey[]): boolean {
+	const [key, ...rest] = path;
+	if (key === undefined || typeof json !== 'object' || json === null) return false;
+	if (!Object.hasOwn(json, key)) return rest.length === 0;
+	return isMissing(Object.getOwnPropertyDescriptor(json, key)?.value, rest);
 }
 
 function atMost(field: string, value: number, limit: number, what = ''): number {

@@ -1,4 +1,7 @@
-/** The functionals of the named families; indices from 0, observables A_x = P(0|x) - P(1|x). */
+/**
+ * The functionals of the named families; indices from 0, observables A_x = P(0|x) - P(1|x). Each
+ * with its source, the convention and the known maxima: local, quantum, no-signalling.
+ */
 import { exactCoefficient, type Coefficient } from '../exact/coefficient';
 import { ratio } from '../exact/rational';
 import { makeFunctional, type Functional, type Term } from './functional';
@@ -13,7 +16,11 @@ const uniformScenario = (parties: number, inputs: number, outputs: number) => ({
 	outputs: Array.from({ length: parties }, () => Array.from({ length: inputs }, () => outputs))
 });
 
-/** sum M_xy A_x B_y. */
+/**
+ * sum M_xy A_x B_y. Local: max over signs; quantum: level 1 of the relaxations is exact; no-signalling:
+ * sum |M_xy|. With sum |M_xy| = 1 the XOR game of M is won with probability 1/2 + f/2.
+ * @see Cleve, Hoyer, Toner, Watrous, arXiv:quant-ph/0404076 (2004)
+ */
 export function correlatorForm(matrix: readonly (readonly Coefficient[])[]): Functional {
 	const rows = matrix.length;
 	const columns = matrix[0]?.length ?? 0;
@@ -34,15 +41,26 @@ const CHSH_MATRIX = [
 	[of(1), of(-1)]
 ];
 
+/**
+ * A0 B0 + A0 B1 + A1 B0 - A1 B1: 2; 2 sqrt(2); 4.
+ * @see Clauser, Horne, Shimony, Holt, Phys. Rev. Lett. 23, 880 (1969); Tsirelson, Lett. Math. Phys. 4,
+ * 93 (1980); Popescu, Rohrlich, Found. Phys. 24, 379 (1994)
+ */
 export const chsh = (): Functional => correlatorForm(CHSH_MATRIX);
 
-/** alpha A0 + CHSH. */
+/**
+ * alpha A0 + CHSH, alpha in [0, 2]: 2 + alpha; sqrt(8 + 2 alpha^2); 4.
+ * @see Acin, Massar, Pironio, Phys. Rev. Lett. 108, 100402 (2012)
+ */
 export function tiltedChsh(alpha: Coefficient): Functional {
 	const { scenario, terms } = chsh();
 	return makeFunctional(scenario, [...terms, ...correlatorTerms(alpha, [[0, 0]])]);
 }
 
-/** sum_{i<n} A_i B_i + sum_{i<n-1} A_{i+1} B_i - A_0 B_{n-1}. */
+/**
+ * sum_{i<n} A_i B_i + sum_{i<n-1} A_{i+1} B_i - A_0 B_{n-1}: 2n - 2; 2n cos(pi/2n); 2n.
+ * @see Braunstein, Caves, Ann. Phys. 202, 22 (1990); Wehner, Phys. Rev. A 73, 022110 (2006)
+ */
 export function chained(n: number): Functional {
 	const matrix = Array.from({ length: n }, () => Array.from({ length: n }, () => of(0)));
 	const set = (x: number, y: number, value: number) => matrix[x]?.splice(y, 1, of(value));
@@ -52,7 +70,10 @@ export function chained(n: number): Functional {
 	return correlatorForm(matrix);
 }
 
-/** Collins-Gisin table, rows party 0. */
+/**
+ * Collins-Gisin table, rows party 0, last outputs left out: 0; 0.2508753845..., no closed form known; 1.
+ * @see Collins, Gisin, J. Phys. A 37, 1775 (2004); Pal, Vertesi, Phys. Rev. A 82, 022116 (2010)
+ */
 export function i3322(): Functional {
 	const table = [
 		[0, -1, 0, 0],
@@ -73,7 +94,9 @@ export function i3322(): Functional {
 
 /**
  * The inequality of Collins, Gisin, Linden, Massar and Popescu for d outputs, with
- * P(X = Y + k) = sum_j P(X = j + k mod d, Y = j).
+ * P(X = Y + k) = sum_j P(X = j + k mod d, Y = j): 2; no closed form known, (1 + sqrt(11/3)) for d = 3;
+ * 4.
+ * @see Phys. Rev. Lett. 88, 040404 (2002); Acin, Durt, Gisin, Latorre, Phys. Rev. A 65, 052325 (2002)
  */
 export function cglmp(d: number): Functional {
 	const terms: Term[] = [];
@@ -105,6 +128,11 @@ export function cglmp(d: number): Functional {
 	return makeFunctional(uniformScenario(2, 2, d), terms);
 }
 
+/**
+ * Three inputs for party 0, four for party 1, the signs of the corners of a tetrahedron in a cube: 6;
+ * 4 sqrt(3); 12.
+ * @see Gisin, arXiv:quant-ph/0702021 (2007)
+ */
 export const elegant = (): Functional =>
 	correlatorForm(
 		[
@@ -133,15 +161,28 @@ function fullCorrelators(n: number, coefficient: (sum: number) => number): Funct
 	return makeFunctional(uniformScenario(n, 2, 2), terms);
 }
 
-/** Re prod_p (A^p_0 + i A^p_1). */
+/**
+ * Re prod_p (A^p_0 + i A^p_1), the original form and not the recursive one: 2^floor(n/2); 2^(n-1);
+ * 2^(n-1).
+ * @see Mermin, Phys. Rev. Lett. 65, 1838 (1990)
+ */
 export const mermin = (n: number): Functional =>
 	fullCorrelators(n, (sum) => (sum % 2 === 1 ? 0 : sum % 4 === 0 ? 1 : -1));
 
-/** Coefficient (-1)^floor(k/2), k the sum of the inputs. */
+/**
+ * Coefficient (-1)^floor(k/2), k the sum of the inputs: 2^ceil(n/2); 2^(n-1) sqrt(2); 2^n. The hybrid
+ * bound 2^(n-1) is another quantity.
+ * @see Svetlichny, Phys. Rev. D 35, 3066 (1987); Collins et al., Phys. Rev. Lett. 88, 170405 (2002)
+ */
 export const svetlichny = (n: number): Functional =>
 	fullCorrelators(n, (sum) => (Math.floor(sum / 2) % 2 === 0 ? 1 : -1));
 
-/** Guess your neighbour's input: everyone outputs the next one's input, under the parity promise. */
+/**
+ * Guess your neighbour's input: everyone outputs the next one's input, with uniform inputs under the
+ * parity promise x_0 + ... + x_{m-1} even, m = n or n - 1, whichever is odd: 2^-(n-1); the same; 1/3,
+ * 1/6, 1/11 for n = 3, 4, 5.
+ * @see Almeida, Bancal, Brunner, Acin, Gisin, Pironio, Phys. Rev. Lett. 104, 230404 (2010)
+ */
 export function gyni(n: number): Functional {
 	const promised = n % 2 === 1 ? n : n - 1;
 	const terms: Term[] = [];
@@ -156,7 +197,9 @@ export function gyni(n: number): Functional {
 
 /**
  * The magic square game: output k is the bits (k>>1, k&1) and a third by parity, even in party 0's
- * row and odd in party 1's column; they win when they agree where row and column meet.
+ * row and odd in party 1's column; they win when they agree where row and column meet. Winning
+ * probability under uniform questions: 8/9; 1; 1.
+ * @see Mermin, Phys. Rev. Lett. 65, 3373 (1990); Peres, Phys. Lett. A 151, 107 (1990)
  */
 export function magicSquare(): Functional {
 	const bit = (output: number, position: number, parity: number) => {

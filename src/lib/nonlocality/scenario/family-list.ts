@@ -139,7 +139,7 @@ export const FAMILIES: readonly FamilyInfo[] = [
 		name: 'gyni',
 		title: 'GYNI',
 		parameter: integer('n', 'Parties n', 3, 5, 3),
-		note: 'Guess your neighbour\u2019s input, as a winning probability under the parity promise.',
+		note: 'Guess your neighbour\u2019s input, as a winning probability under the parity promise; no-signalling maximum 1/3, 1/6, 1/11 for n = 3, 4, 5.',
 		source:
 			'Almeida, Bancal, Brunner, Ac\u00edn, Gisin, Pironio, Phys. Rev. Lett. 104, 230404 (2010)',
 		known: { local: '2^-(n-1)', quantum: '2^-(n-1)', noSignalling: null },

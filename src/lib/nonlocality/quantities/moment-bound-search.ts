@@ -297,7 +297,9 @@ export class MomentBoundSearch {
 	exactBound(problem: ProblemOf<'npa'>, g: Functional): ExactBound | null {
 		const certificate = this.certificate();
 		if (!certificate || !this.#multipliers) return null;
-		return exactMomentBound(problem, g, this.#problem, this.#multipliers, certificate);
+		return exactMomentBound(problem, g, this.#problem, this.#multipliers, certificate, () =>
+			refuseWhenCancelled(this.#control)
+		);
 	}
 
 	certificate(): MomentCertificate | null {

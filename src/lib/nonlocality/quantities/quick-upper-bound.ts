@@ -25,7 +25,7 @@ export function quickUpperBound(
 		report: () => undefined
 	};
 	for (const level of levelsToTry(problem.outputs.length)) {
-		if (predictLevel(g, level).seconds > QUICK) break;
+		if (predictLevel(g, level, () => 1).seconds > QUICK) break;
 		const seconds = SHARE * problem.seconds;
 		const relaxation = { ...problem, quantity: 'npa', level, nonNegative: false, seconds } as const;
 		try {

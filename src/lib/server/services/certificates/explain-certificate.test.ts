@@ -10,6 +10,20 @@ describe('a certificate in words', () => {
 		[{ quantity: 'local' }, 'deterministic-strategy'],
 		[{ quantity: 'no-signalling' }, 'linear-programme'],
 		[{ quantity: 'npa', level: 1, nonNegative: true }, /^npa-/],
+		[{ quantity: 'npa', level: 1 }, 'npa-exact'],
+		[
+			{ quantity: 'npa', level: 1, family: { name: 'tilted-chsh', alpha: 'sqrt(2)/2' } },
+			'npa-dual'
+		],
+		[
+			{
+				quantity: 'local',
+				constraints: [{ expression: 'A0', relation: '<=', value: 0 }]
+			},
+			'local-mixture'
+		],
+		[{ quantity: 'hybrid', model: 'no-signalling', family: { name: 'mermin', n: 3 } }, 'hybrid'],
+		[{ quantity: 'facet' }, 'facet'],
 		[{ quantity: 'see-saw', dimension: 2 }, 'quantum-strategy'],
 		[{ quantity: 'quantum', seconds: 5 }, 'enclosure']
 	])('names every field of what solves %j', async (asked, kind) => {

@@ -1,4 +1,7 @@
-import type { MomentCertificate } from '../../../nonlocality/certificates/types';
+import type {
+	ExactMomentCertificate,
+	MomentCertificate
+} from '../../../nonlocality/certificates/types';
 import type { CertificateExplanation, CertificateField } from '../../../schemas/certificate-view';
 import { counted, entries, triangle } from './counted';
 
@@ -74,6 +77,69 @@ export function explainMoments(certificate: MomentCertificate): CertificateExpla
 		proof: [
 			...MOMENT_PROOF,
 			'Z + shift × 1 ≥ 0 is proved by a Cholesky factorisation with a proved bound on its rounding; what rounding may have cost elsewhere is added to the bound. The doubles are taken as the exact numbers they are.'
+		],
+		parts: []
+	};
+}
+
+export function explainExactMoments(certificate: ExactMomentCertificate): CertificateExplanation {
+	const { monomials, denominator, rowMultipliers, constraintMultipliers, shift, bound } =
+		certificate;
+	const [products, feasible] = momentFields(certificate);
+	const nonzero = (numbers: readonly (string | number)[]) =>
+		counted(
+			numbers.filter((number) => String(number) !== '0').length,
+			'number other than 0',
+			'numbers other than 0'
+		);
+	return {
+		kind: 'npa-exact',
+		title: 'Exact dual multiplier of a moment-matrix relaxation',
+		claims:
+			'No behaviour of this relaxation, and so no quantum behaviour, exceeds the bound (falls below it, for a minimum). Every step is exact.',
+		fields: [
+			...(products ? [products] : []),
+			{
+				name: 'denominator',
+				what: 'A whole number N: every multiplier is a whole number over N.',
+				size: String(denominator),
+				numbers: 'exact'
+			},
+			{
+				name: 'multiplier',
+				what: 'The symmetric matrix N Z of whole numbers, row by row.',
+				size: triangle(monomials.length),
+				numbers: 'exact'
+			},
+			{
+				name: 'rowMultipliers',
+				what: 'N times a multiplier z ≥ 0 of each row P ≥ 0 that was imposed, by "a,b|x,y".',
+				size: nonzero(Object.values(rowMultipliers)),
+				numbers: 'exact'
+			},
+			{
+				name: 'constraintMultipliers',
+				what: 'N times a multiplier for each constraint of the problem.',
+				size: nonzero(constraintMultipliers),
+				numbers: 'exact'
+			},
+			{
+				name: 'shift',
+				what: 'N Z plus this on the diagonal is positive semidefinite; the bound contains shift / N times the number of rows.',
+				size: String(shift),
+				numbers: 'exact'
+			},
+			{
+				name: 'bound',
+				what: 'The bound as a fraction.',
+				size: bound,
+				numbers: 'exact'
+			},
+			...(feasible ? [feasible] : [])
+		],
+		proof: [
+			...MOMENT_PROOF,
+			'The bound is summed in fractions, and N Z + shift × 1 ≥ 0 is proved in whole numbers: nothing is rounded.'
 		],
 		parts: []
 	};

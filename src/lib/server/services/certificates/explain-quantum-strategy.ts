@@ -4,7 +4,8 @@ import { counted } from './counted';
 
 export function explainQuantumStrategy({
 	strategy,
-	projective
+	projective,
+	violation
 }: StrategyCertificate): CertificateExplanation {
 	const { dimensions, state, measurements } = strategy;
 	const inputs = measurements.reduce((sum, party) => sum + party.length, 0);
@@ -43,7 +44,17 @@ export function explainQuantumStrategy({
 				what: 'What is guaranteed: the functional at the strategy less what rounding may have added.',
 				size: 'one number',
 				numbers: 'floating point'
-			}
+			},
+			...(violation === undefined
+				? []
+				: [
+						{
+							name: 'violation',
+							what: 'No constraint of the problem is violated by more; above 0 the strategy is near the constraints, and proves no side.',
+							size: String(violation),
+							numbers: 'floating point'
+						} as const
+					])
 		],
 		proof: [
 			'Each probability is the mean of the product of the outputs’ matrices in the state; the functional is their sum with its coefficients.',

@@ -12,6 +12,9 @@ const CERTIFICATES: Readonly<Record<Certificate['kind'], string>> = {
 	'linear-programme': 'Primal and dual solution',
 	'npa-dual': 'Dual multiplier',
 	'npa-exact': 'Exact dual multiplier',
+	'local-mixture': 'Mixture of strategies and multipliers',
+	hybrid: 'Behaviours and multipliers of each bipartition',
+	facet: 'Strategies that reach the maximum',
 	'quantum-strategy': 'State and measurements',
 	enclosure: 'State, measurements and dual multiplier'
 };

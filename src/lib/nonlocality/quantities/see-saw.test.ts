@@ -140,6 +140,24 @@ describe('seeSaw with general measurements', () => {
 		}
 	});
 
+	it('proves no more than the maximum, whatever number of the general strategy is changed', () => {
+		const { g, outputs, terms } = tetrahedron();
+		const { problem } = setUp({ name: 'elegant' }, { outputs, terms, starts: 4 });
+		const { certificate } = seeSaw(problem, g, control);
+		const text = JSON.stringify(certificate);
+		const numbers = [...text.matchAll(/-?\d+\.\d+(e-?\d+)?/g)];
+		let refused = 0;
+		for (const [at, { 0: digits, index }] of numbers.entries()) {
+			const changed = String(Number(digits) + (at % 2 ? 1e-3 : -1e-9));
+			const mutant = text.slice(0, index) + changed + text.slice(index + digits.length);
+			const checked = checkStrategy(problem, g, JSON.parse(mutant));
+			if (checked.checked) expect(checked.lower).toBeLessThanOrEqual(4 * Math.sqrt(3));
+			else refused++;
+		}
+		expect(numbers.length).toBeGreaterThan(50);
+		expect(refused).toBeGreaterThan(numbers.length / 4);
+	});
+
 	it('never falls and stays a measurement, step by step', () => {
 		const kinds = fc.record({ real: fc.boolean(), general: fc.boolean() });
 		const dimensions = fc.tuple(fc.integer({ min: 1, max: 3 }), fc.integer({ min: 1, max: 3 }));
@@ -238,6 +256,23 @@ describe('seeSaw as a search', () => {
 	it('gives the local maximum in dimension 1', () => {
 		const { g, problem } = setUp({ name: 'chsh' }, { dimension: [1], starts: 20 });
 		expect(seeSaw(problem, g, control).lower).toBeCloseTo(2, 10);
+	});
+
+	it('takes one party and six, and a constant', () => {
+		const outputs = [[3, 2]];
+		const alone = setUp({ name: 'chsh' }, { outputs, terms: [['2', [[0, 0, 1]]], ['-1', [[0, 1, 0]]]] }); // prettier-ignore
+		const g = functionalOfTerms(outputs, alone.problem.terms);
+		expect(seeSaw(alone.problem, g, control).lower).toBeCloseTo(2, 10);
+		// Mermin, Phys. Rev. Lett. 65, 1838 (1990), from memory: 2^(n-1)
+		const six = setUp({ name: 'mermin', n: 6 }, { starts: 4 });
+		expect(seeSaw(six.problem, six.g, control, 32).lower).toBeCloseTo(32, 8);
+		const constant = functionalOfTerms(outputs, [['5', []]]);
+		expect(seeSaw({ ...alone.problem, terms: [['5', []]] }, constant, control).lower).toBeCloseTo(
+			5,
+			12
+		);
+		const grown = { ...alone.problem, terms: [['5', []]], grow: 3 } as const;
+		expect(seeSaw(grown, constant, control).lower).toBeCloseTo(5, 12);
 	});
 
 	it('takes a dimension per party', () => {

@@ -1,13 +1,12 @@
 import type { ExactMomentCertificate, MomentCertificate, WholeNumber } from '../certificates/types';
 import { overCommonDenominator } from '../exact/common-denominator';
-import { numeratorOf, printRational, ratio, toDoubleUp, type Rational } from '../exact/rational';
+import { numeratorOf, printRational, ratio, toDoubleUp } from '../exact/rational';
 import type { ProblemOf } from '../problem';
-import { collinsGisinForm, type Functional } from '../scenario/functional';
-import { functionalOfTerms } from '../scenario/problem-terms';
+import type { Functional } from '../scenario/functional';
 import { confirmedShift } from './confirmed-shift';
 import { provenShift, type Multipliers } from './guaranteed-moments';
-import { momentOfEvents } from './moment-matrix';
 import type { MomentProblem } from './moment-problem';
+import { rationalForms, type RationalForm, type RationalForms } from './rational-forms';
 
 /** Entries of the multiplier stay below 2^50: exact in doubles, plain numbers in JSON. */
 const ENTRY_BITS = 50;
@@ -90,48 +89,6 @@ export function exactMomentBound(
 			feasibleValue
 		}
 	};
-}
-
-/** A linear form on the moments, exactly; moment 0 is the constant. */
-type RationalForm = ReadonlyMap<number, Rational>;
-
-interface RationalForms {
-	readonly objective: RationalForm;
-	/** >= 0 or = 0, as in the relaxation. */
-	readonly constraints: readonly {
-		readonly place: number;
-		readonly free: boolean;
-		readonly form: RationalForm;
-		/** times `form` is integral. */
-		readonly denominator: bigint;
-	}[];
-}
-
-function rationalForms(
-	problem: ProblemOf<'npa'>,
-	g: Functional,
-	{ matrix }: MomentProblem
-): RationalForms | null {
-	const formOf = (functional: Functional, sign: 1n | -1n): RationalForm | null => {
-		const form = new Map<number, Rational>();
-		for (const { events, coefficient } of collinsGisinForm(functional).terms) {
-			const moment = momentOfEvents(matrix, events);
-			if (moment === null || !coefficient.exact) return null;
-			form.set(moment, sign < 0n ? coefficient.exact.neg() : coefficient.exact);
-		}
-		return form;
-	};
-	const objective = formOf(g, 1n);
-	if (!objective) return null;
-	const constraints: RationalForms['constraints'][number][] = [];
-	for (const [place, { terms, value, relation }] of problem.constraints.entries()) {
-		const difference = [...terms, [`-(${value})`, []] as const];
-		const form = formOf(functionalOfTerms(g.scenario, difference), relation === '<=' ? -1n : 1n);
-		if (!form) return null;
-		const { denominator } = overCommonDenominator([...form.values()]);
-		constraints.push({ place, free: relation === '=', form, denominator });
-	}
-	return { objective, constraints };
 }
 
 interface Scale {

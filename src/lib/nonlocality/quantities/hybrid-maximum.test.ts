@@ -243,6 +243,15 @@ describe('what the models cannot take', () => {
 		expect(await maximumOf(f, 'svetlichny')).toBe('2');
 	});
 
+	it('a party that plays no part', async () => {
+		const f = parseExpression('A0 B0 + A0 B1 + A1 B0 - A1 B1', { outputs: THREE, indexBase: 0 });
+		for (const model of ['svetlichny', 'no-signalling'] as const)
+			expect(await solve(hybridProblem(f.functional, model), quietControl)).toMatchObject({
+				status: 'failed',
+				reason: expect.stringContaining('does not depend on party 2')
+			});
+	});
+
 	it('two parties', async () => {
 		const result = await solve(
 			hybridProblem(familyFunctional({ name: 'chsh' }), 'svetlichny'),

@@ -7,7 +7,7 @@ import {
 } from '../exact/rational';
 import type { HybridCertificate } from '../certificates/types';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
-import type { Functional } from '../scenario/functional';
+import { collinsGisinForm, type Functional } from '../scenario/functional';
 import { noSignallingHybrid } from './hybrid-no-signalling';
 import { svetlichnyHybrid } from './hybrid-svetlichny';
 import type { Outcome } from './outcome';
@@ -30,8 +30,8 @@ export interface HybridFinding {
  * signalling one (`svetlichny`), or any no-signalling behaviour (`no-signalling`).
  *
  * Guarantee: both sides by exact arithmetic; `exact` when they meet.
- * @throws SolverStop `failed` for fewer than three parties, or (Svetlichny's model) for a functional
- *   with marginals; `limit` past the limits of the model's solver
+ * @throws SolverStop `failed` for fewer than three parties, for a party that plays no part, or
+ *   (Svetlichny's model) for a functional with marginals; `limit` past the limits of the solver
  * @see Svetlichny, Phys. Rev. D 35, 3066 (1987); Bancal, Barrett, Gisin and Pironio, Phys. Rev. A
  *   88, 014102 (2013)
  */
@@ -45,6 +45,12 @@ export async function hybridMaximum(
 		throw new SolverStop(
 			'failed',
 			`a hybrid maximum needs three parties or more, not ${parties}: with two it is the local maximum`
+		);
+	const idle = idleParty(functional);
+	if (idle !== null)
+		throw new SolverStop(
+			'failed',
+			`the functional does not depend on party ${idle}, which would leave the others one group: leave that party out`
 		);
 	const clock = new WorkClock(control, problem.seconds);
 	const found =
@@ -66,4 +72,13 @@ export async function hybridMaximum(
 		method: { model: problem.model, bipartition: groups, ...method },
 		certificate: { kind: 'hybrid', groups, behaviours, bipartitions, value: exact }
 	};
+}
+
+/** A party that no term looks at, though others are looked at; null when there is none. */
+function idleParty(functional: Functional): number | null {
+	const seen = new Set(
+		collinsGisinForm(functional).terms.flatMap(({ events }) => events.map(([party]) => party))
+	);
+	const idle = functional.scenario.outputs.findIndex((_, party) => !seen.has(party));
+	return seen.size > 0 && idle >= 0 ? idle : null;
 }

@@ -116,6 +116,15 @@ describe('a better digest', () => {
 		const page = await showInequality(observer, first.inequalityId);
 		expect(page.stations).toMatchObject({ local: '3', noSignalling: '4' });
 		expect(page.claimRows).toHaveLength(4);
+		// Every claim's own normalisation, told into the page's, and a switch to it.
+		const [as] = page.claimNormalisations.filter(({ printed }) => printed === '= 11.3246');
+		expect(as).toMatchObject({ map: '2 × it + 5', here: '= 3.162275 … 3.162325' });
+		const switched = await showInequality(observer, first.inequalityId, as?.key);
+		expect(switched.stations).toMatchObject({ local: '11', noSignalling: '13' });
+		expect(switched.normalisation.label).toContain('As in Arden');
+		const others = switched.claimNormalisations.map(({ map }) => map);
+		expect(others.filter((map) => map === '1/2 × it − 5/2')).toHaveLength(1);
+		expect(others.filter((map) => map === null)).toHaveLength(3);
 	}, 120_000);
 
 	it('leaves a claim that picked the merged one as it was, also when it is read again', async () => {

@@ -2,6 +2,7 @@
  * What pages, forms and the API get from the services: plain data, ready to show. Figures are
  * decimal strings, already rounded outward; times are ISO 8601 in UTC.
  */
+import type { ClaimNormalisationView } from './normalisation-views';
 import type { ClaimState, Relation, VerdictStatus, Visibility } from '../ledger/claim';
 import type { Role } from '../ledger/roles';
 import type { Verdict } from '../ledger/verdict';
@@ -261,7 +262,7 @@ export interface NormalisationView {
 export interface InequalityView extends InequalityRow {
 	readonly digest: string;
 	readonly latex: string;
-	/** The formula of its representative, typeset; null when it can't be. */
+	/** The formula in the normalisation shown, typeset; null when it can't be. */
 	readonly formulaHtml: string | null;
 	/** `outputs[party][input]`. */
 	readonly outputs: readonly (readonly number[])[];
@@ -269,6 +270,7 @@ export interface InequalityView extends InequalityRow {
 	readonly collinsGisin: readonly (readonly string[])[] | null;
 	readonly normalisation: NormalisationView;
 	readonly normalisations: readonly NormalisationView[];
+	readonly claimNormalisations: readonly ClaimNormalisationView[];
 	readonly recomputations: readonly RecomputationView[];
 	readonly claimRows: readonly LedgerRow[];
 }

@@ -1,5 +1,5 @@
 import { and, asc, eq, inArray, isNotNull, ne, or, type SQL } from 'drizzle-orm';
-import { collinsGisinTableOf } from './collins-gisin-table';
+import { collinsGisinTableOf, functionalIn } from './collins-gisin-table';
 import type { InequalityView } from '../../../schemas/views';
 import type { Reader } from '../../db/client';
 import { claims, recomputations } from '../../db/schema';
@@ -7,7 +7,10 @@ import { typeset } from '../../math/typeset';
 import { claimRows, selectClaimRows } from '../claims/claim-rows';
 import { recomputationViews } from '../recomputations/recomputation-view';
 import { isSharedRun } from '../recomputations/shared-run';
+import { latexOf } from '../claims/subject-latex';
 import { IDENTITY_TEXT, readMap } from './affine';
+import { isIdentity, type MapText } from './canonical-subject';
+import { claimChoices, claimNormalisations } from './claim-normalisations';
 import { inequalitySubject, type InequalityRecord } from './inequality-rows';
 import { chooseNormalisation, normalisationChoices } from './normalisations';
 import { loadStations, stationSides, stationsView } from './stations-view';
@@ -28,14 +31,16 @@ export async function inequalityView(
 	const stations = (await loadStations(read, [row.id])).get(row.id) ?? [];
 	const own = stationSides(stations, readMap(IDENTITY_TEXT)).local;
 	const local = own.lower && own.upper?.equals(own.lower) ? own.lower : null;
-	const choices = normalisationChoices(row, local);
-	const chosen = chooseNormalisation(choices, normalisation);
-	const map = readMap(chosen.map);
 	const onIt = and(eq(claims.inequalityId, row.id), ne(claims.state, 'withdrawn'), visible);
 	const selected = await selectClaimRows(read, onIt).orderBy(
 		asc(claims.quantity),
 		asc(claims.createdAt)
 	);
+	const published = normalisationChoices(row, local);
+	const choices = [...published, ...claimChoices(selected, published)];
+	const chosen = chooseNormalisation(choices, normalisation);
+	const map = readMap(chosen.map);
+	const latex = latexIn(row, chosen.map);
 	const asked = read
 		.select({ id: claims.recomputationId })
 		.from(claims)
@@ -51,13 +56,21 @@ export async function inequalityView(
 		stations: stationsView(stations, map),
 		claims: selected.length,
 		digest: row.digest,
-		latex: row.latex,
-		formulaHtml: row.latex ? typeset(row.latex, true) : null,
+		latex,
+		formulaHtml: latex ? typeset(latex, true) : null,
 		outputs: row.outputs,
 		collinsGisin: collinsGisinTableOf(row, chosen.map),
 		normalisation: { key: chosen.key, label: chosen.label },
-		normalisations: choices.map(({ key, label }) => ({ key, label })),
+		normalisations: choices
+			.filter((choice) => published.includes(choice) || choice === chosen)
+			.map(({ key, label }) => ({ key, label })),
+		claimNormalisations: claimNormalisations(selected, choices, chosen),
 		recomputations: await recomputationViews(read, runs, map, now),
 		claimRows: await claimRows(read, selected, now, groups)
 	};
+}
+
+/** The formula as the values are shown; empty where it is too long to be read. */
+function latexIn(row: InequalityRecord, map: MapText): string {
+	return isIdentity(map) ? row.latex : (latexOf(functionalIn(row, map), 0) ?? '');
 }

@@ -10,6 +10,7 @@ import { typeset } from '../../math/typeset';
 import { readClaimInput, type ReadClaimInput } from '../claims/read-claim-input';
 import { IDENTITY_TEXT, readMap } from '../inequalities/affine';
 import { isIdentity, mapBetween, type CanonicalSubject } from '../inequalities/canonical-subject';
+import { mapWords } from '../inequalities/claim-normalisations';
 import { familyOfDigest, namesOf } from '../inequalities/catalogue';
 import { scenarioSentence } from '../inequalities/scenario-words';
 import { loadStations, stationsView } from '../inequalities/stations-view';
@@ -111,16 +112,9 @@ async function findKnown(
 			id: row.id,
 			name,
 			claims: own?.claims ?? 0,
-			map: isIdentity(map) ? null : mapText(map)
+			map: isIdentity(map) ? null : mapWords(map)
 		},
 		stations:
 			stations.length > 0 ? stationsView(stations, readMap({ ...IDENTITY_TEXT, ...map })) : null
 	};
-}
-
-/** `4 × it − 2`. */
-function mapText({ scale, shift }: { scale: string; shift: string }): string {
-	const factor = scale === '1' ? 'it' : `${scale} × it`;
-	if (shift === '0') return factor;
-	return shift.startsWith('-') ? `${factor} − ${shift.slice(1)}` : `${factor} + ${shift}`;
 }

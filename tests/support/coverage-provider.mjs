@@ -7,7 +7,8 @@
 import { readFileSync } from 'node:fs';
 import v8 from '@vitest/coverage-v8';
 
-const FALLBACK = /^(?:-?\d[\w.]*|''|\[\]|null|false|[A-Z][A-Z_]*)(?![\w.([])/;
+const FALLBACK =
+	/^(?:-?\d[\w.]*|'[^'\n]*'|\[(?:(?:-?\d[\w.]*|NaN)(?:, )?)*\]|null|false|[A-Z][A-Z_]*)(?![\w.([])/;
 
 /** Where a place in the text is, given where its lines start. */
 const indexOf = (starts, { line, column }) => (starts[line - 1] ?? 0) + column;

@@ -116,3 +116,11 @@ describe('rationals', () => {
 		);
 	});
 });
+
+it('refuses what is no number, and leaves infinity where it is', () => {
+	expect(() => ratio(1n, 0n)).toThrow(RangeError);
+	expect(() => exactOfDouble(NaN)).toThrow(RangeError);
+	expect(nextDouble(Infinity, -1)).toBe(Infinity);
+	expect(toDecimal(ratio(5n, 2n), 0, 'nearest')).toBe('3');
+	expect(toDecimal(ratio(-5n, 2n), 0, 'nearest')).toBe('-3');
+});

@@ -58,6 +58,7 @@ describe('ways to write CHSH', () => {
 		'\\mathbb{E}[A_0B_0] + \\expval{A_0 B_1} + \\braket{A_1B_0} - \\bigl\\langle A_1B_1\\bigr\\rangle',
 		'E(x=0,y=0) + E(x=0,y=1) + E(x=1,y=0) - E(x=1,y=1)',
 		'C_{00}+C_{01}+C_{10}-C_{11}',
+		'2^{-1} * (2 A0 B0 + 2 A0 B1) + 2^-1 * 2 (A1 B0 - A1 B1) .',
 		'S = A_0B_0 + A_0B_1 + A_1B_0 - A_1B_1',
 		'\\mathcal{B}_{\\text{CHSH}} \\equiv A_0B_0 + A_0B_1 + A_1B_0 - A_1B_1',
 		'\\langle S \\rangle := A_0B_0 + A_0B_1 + A_1B_0 - A_1B_1 \\le 2',
@@ -137,6 +138,7 @@ describe('index base and scenario', () => {
 		['$A_0 B_0 \\leq 2\\sqrt2.$', { relation: '<=', text: '2\\sqrt2' }],
 		['\\[A_0B_0 \\stackrel{LHV}{\\le} 2, \\]', { relation: '<=', text: '2' }],
 		['2 \\ge A0 B0', { relation: '<=', text: '2' }],
+		['2^2 \\cos(\\pi/4) >= A0 B0', { relation: '<=', text: '2^2 \\cos(\\pi/4)' }],
 		['-\\frac{1}{2} \\leq A0 B0', { relation: '>=', text: '-\\frac{1}{2}' }],
 		['A0 B0 =< 2', { relation: '<=', text: '2' }],
 		['A0 B0 \u2264 2\u221a2 (5)', { relation: '<=', text: '2\u221a2 (5)' }],
@@ -208,6 +210,10 @@ describe('what cannot be read', () => {
 		['P(0,1)', {}, 5, /outputs, a bar and inputs/, null],
 		['P(0,1|A_0B_1)', {}, 6, /have to be numbers/, null],
 		['A0 ** B0', {}, 4, /can't stand here/, null],
+		['A0 . B0', {}, 3, /stray point/, null],
+		['A0 \u20ac', {}, 3, /this character has no meaning/, null],
+		['P(A_0 + 1)', {}, 2, /not understood/, null],
+		['G0 A0', {}, 0, /G is not a party/, /A, B, C, D, E and F/],
 		['0/0 A0', {}, 2, /division by zero/, null],
 		['A0 B0 \\not\\leq 2', {}, 6, /\\not/, null],
 		['\ud835\udc34\ud835\udc65', {}, 0, /A needs an input/, null],
@@ -294,6 +300,11 @@ describe('what cannot be read', () => {
 				.join(''),
 			/at most 2,000 terms/
 		],
+		[
+			[...'ABCDEF'].map((p) => `(${[0, 1, 2].map((x) => p + x).join('+')})`).join(''),
+			/at most 20,000 probabilities, this one 46,656/
+		],
+		['A_{1000000000}', /at most 12 inputs, this asks for input 1000000000/],
 		['(2^200)^6 A0', /too many digits/],
 		['(pi+sqrt(2)+cos(1)+sin(1)+cos(2)+cos(3))^200 A0', /too many irrational parts/]
 	])('stops at its limits: %s', (text, message) => {

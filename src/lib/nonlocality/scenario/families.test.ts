@@ -128,6 +128,8 @@ describe('parameters and titles', () => {
 		expect(familyTitle({ name: 'chsh' })).toBe('CHSH');
 		expect(familyTitle({ name: 'cglmp', d: 3 })).toBe('CGLMP d=3');
 		expect(familyTitle({ name: 'chained', n: 4 })).toBe('Chained n=4');
+		expect(familyTitle({ name: 'xor-game', matrix: [[1, 2, 3]] })).toBe('XOR game 1\u00d73');
+		expect(familyLatex({ name: 'tilted-chsh', alpha: '0.5' })).toMatch(/^0\.5\\,A_0/);
 		expect(familyTitle({ name: 'tilted-chsh', alpha: '1/2' })).toBe('Tilted CHSH \u03b1=1/2');
 	});
 
@@ -139,6 +141,11 @@ describe('parameters and titles', () => {
 		[{ name: 'cglmp', n: 3 }, /takes only the parameter d, not n/],
 		[{ name: 'chsh', n: 3 }, /takes no parameter, not n/],
 		[{ name: 'tilted-chsh', alpha: 3 }, /alpha must be a number from 0 to 2/],
+		[{ name: 'tilted-chsh' }, /alpha must be a number from 0 to 2/],
+		[{ name: 'tilted-chsh', alpha: ' ' }, /alpha must be a number from 0 to 2/],
+		[{ name: 'xor-game' }, /matrix of the XOR game is missing/],
+		[{ name: 'xor-game', matrix: [[]] }, /matrix of the XOR game is missing/],
+		[{ name: 'xor-game', matrix: [Array(21).fill(1)] }, /at most 20 rows and columns/],
 		[{ name: 'xor-game', matrix: [[1, 2], [3]] }, /row 2 of the matrix has 1 entries/],
 		[{ name: 'xor-game', matrix: [['1', 'x']] }, /row 1, column 2 of the matrix: x is not a number/]
 	])('refuses %j', (spec, message) => {

@@ -21,7 +21,8 @@ const QUANTITY_LINES: Readonly<Record<QuantityOfProblem, readonly string[]>> = {
 	quantum: [
 		'quantum maximum, enclosed from both sides',
 		'"levels", "dimensions": lists tried in order (default: escalating)',
-		`"gap": stop when upper - lower is at most this (default ${PROBLEM_DEFAULTS.gap})`
+		`"gap": stop when upper - lower is at most this (default ${PROBLEM_DEFAULTS.gap})`,
+		'"within": [low, high]: stop when both sides lie in it'
 	],
 	hybrid: [
 		'maximum over models that are local across some bipartition of three or four parties, exact',

@@ -1,3 +1,5 @@
+import { acceptedSet } from '../lib/ledger/accepted-set';
+import type { Relation } from '../lib/ledger/claim';
 import { correlatorGame } from '../lib/ledger/correlator-game';
 import { diagnose, type Diagnosis, type OtherValue } from '../lib/ledger/diagnosis';
 import {
@@ -14,6 +16,7 @@ import { valueLabel } from '../lib/ledger/problem-labels';
 import type { StatedValue } from '../lib/ledger/stated-value';
 import { deriveVerdict, type Verdict } from '../lib/ledger/verdict';
 import { solve, verifyResult, type Control, type Problem, type Result } from '../lib/nonlocality';
+import { toDoubleDown, toDoubleUp } from '../lib/nonlocality/exact/rational';
 import { functionalOfTerms } from '../lib/nonlocality/notation';
 import { parseProblem } from '../lib/schemas/problem';
 import type { ClaimJson } from '../lib/schemas/claim-json';
@@ -38,7 +41,7 @@ export async function judgeClaim(
 	control: Control,
 	budget = STATION_BUDGET
 ): Promise<JudgedClaim> {
-	const result = await solve(problem, control);
+	const result = await solve(endingWhenSettled(problem, reading, claim.relation), control);
 	const findings = checked(result);
 	const state: RecomputationState =
 		result.status === 'done' ? { kind: 'done' } : { kind: 'failed', why: result.reason };
@@ -78,6 +81,16 @@ export async function judgeClaim(
 			status === 'discrepancy' ? await otherIndexBase(claim, problem, control) : null
 	});
 	return { verdict: { ...deriveVerdict(input()), diagnosis }, result, others };
+}
+
+/**
+ * A quantum maximum has no end of its own: it may end where an equality agrees. Bounds are shown
+ * with their slack, and what disagrees with its reason: those take the digits that they can get.
+ */
+function endingWhenSettled(problem: Problem, reading: StatedValue, relation: Relation): Problem {
+	if (problem.quantity !== 'quantum' || relation !== '=' || problem.within) return problem;
+	const { low, high } = acceptedSet(reading, relation, false);
+	return low && high ? { ...problem, within: [toDoubleUp(low), toDoubleDown(high)] } : problem;
 }
 
 /** A finished result with its check; nothing for one that did not finish. */

@@ -81,6 +81,8 @@ export type Problem = ProblemSubject &
 				readonly levels: readonly Level[] | null;
 				readonly dimensions: readonly number[] | null;
 				readonly gap: number;
+				/** [low, high]: both sides within it are close enough, however wide they are. */
+				readonly within?: readonly [low: number, high: number];
 				/** Where the search for strategies begins. */
 				readonly start?: QuantumStrategy;
 		  }

@@ -193,6 +193,10 @@ export const problemShape = z.strictObject({
 		.min(1, 'must name a dimension')
 		.nullish(),
 	gap: z.number(kind('a number')).min(0, 'must not be negative').optional(),
+	within: z
+		.tuple([z.number(), z.number()], kind('two numbers, [low, high]'))
+		.refine(([low, high]) => low <= high, 'must have low at most high')
+		.optional(),
 	seconds: z.number(kind('a number')).positive('must be positive').optional(),
 	seed: count(0)
 		.max(2 ** 32 - 1, 'must be below 2^32')

@@ -99,6 +99,7 @@ export function parseProblem(json: unknown): Problem {
 						atMost(`dimensions[${i}]`, d, PROBLEM_LIMITS.dimension)
 					) ?? null,
 				gap: shape.gap ?? PROBLEM_DEFAULTS.gap,
+				...(shape.within && { within: shape.within }),
 				...(shape.start && { start: readStart(shape.start, outputs) })
 			};
 	}

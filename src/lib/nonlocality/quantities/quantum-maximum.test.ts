@@ -140,6 +140,18 @@ describe('quantumMaximum', () => {
 		expect(method).toMatchObject({ stopped: 'nothing left to try', upperLevel: '1+AB' });
 	});
 
+	it('ends when both sides are within what was asked, of a minimum too', () => {
+		const within = [2.82, 2.83] as const;
+		const { g, problem } = setUp({ name: 'chsh' }, { within });
+		const maximum = quantumMaximum(problem, g, control);
+		expect(maximum.lower).toBeGreaterThanOrEqual(2.82);
+		expect(maximum.upper).toBeLessThanOrEqual(2.83);
+		expect(maximum.method).toMatchObject({ stopped: 'both sides within what was asked' });
+		const turned = setUp({ name: 'chsh' }, { sense: 'min', within: [-2.83, -2.82], gap: 0 });
+		const { method } = quantumMaximum(turned.problem, turned.g, control);
+		expect(method).toMatchObject({ stopped: 'both sides within what was asked' });
+	});
+
 	it('stops at its budget with both sides, and reports on the way', () => {
 		const { g, problem } = setUp({ name: 'i3322' }, { seconds: 2 });
 		const seen: Progress[] = [];

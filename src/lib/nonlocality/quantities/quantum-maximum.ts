@@ -21,8 +21,8 @@ const FIRST_SHARE = 0.25;
  * strategies): from below by the best deterministic strategy, by see-saw in several local
  * dimensions and by growing strategies, from above by moment-matrix relaxations of growing level.
  * After the local maximum and a first relaxation the next step is always the one with the largest
- * expected gain per second (quantum-schedule.ts). Stops when upper - lower <= `gap`, when `seconds`
- * are over, or when nothing is left to try.
+ * expected gain per second (quantum-schedule.ts). Stops when upper - lower <= `gap`, when both are
+ * in `within`, when `seconds` are over, or when nothing is left to try.
  *
  * Guarantee: both sides are proved, each by its part of the certificate. The two need not meet: the
  * relaxations converge to the commuting-operator value.
@@ -107,7 +107,17 @@ class Escalation {
 	}
 
 	get #closed(): boolean {
-		return this.#enclosure.width <= this.#problem.gap;
+		return this.#enclosure.width <= this.#problem.gap || this.#isWithin;
+	}
+
+	/** Whether both sides are where the problem says that they are good enough. */
+	get #isWithin(): boolean {
+		const { within, sense } = this.#problem;
+		const { lower, upper } = this.#enclosure;
+		if (!within || lower === null || upper === null) return false;
+		// The problem speaks about f, this search about g: -f for a minimum.
+		const [low, high] = sense === 'min' ? [-within[1], -within[0]] : within;
+		return lower >= low && upper <= high;
 	}
 
 	#tryLocal(): void {
@@ -168,7 +178,9 @@ class Escalation {
 		if (lower === null && upper === null)
 			throw new SolverStop('limit', `neither side was found within ${this.#problem.seconds} s`);
 		const stopped = this.#closed
-			? 'gap closed'
+			? this.#isWithin
+				? 'both sides within what was asked'
+				: 'gap closed'
 			: this.#left > 0
 				? 'nothing left to try'
 				: 'budget spent';

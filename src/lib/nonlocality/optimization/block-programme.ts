@@ -107,10 +107,17 @@ export function factorGram(matrix: Float64Array, n: number): GramFactor | null {
 	return diagonal.every((value) => value > 0) ? { diagonal, factor: null } : null;
 }
 
-/** The blocks of an array, without copying. */
+/** Making views takes as long as a small block's arithmetic: each array's are made once. */
+const views = new WeakMap<Float64Array, Float64Array[]>();
+
+/** The blocks of an array, without copying. An array belongs to one programme. */
 export function blocksOf(programme: BlockProgramme, array: Float64Array): Float64Array[] {
-	return programme.sizes.map((size, b) => {
+	const known = views.get(array);
+	if (known) return known;
+	const blocks = programme.sizes.map((size, b) => {
 		const offset = programme.offsets[b] ?? 0;
 		return array.subarray(offset, offset + size * size);
 	});
+	views.set(array, blocks);
+	return blocks;
 }

@@ -35,16 +35,25 @@ export function centredMomentMatrix(
 	const start = new Int32Array((n * (n + 1)) / 2 + 1);
 	const moments: number[] = [];
 	const values: number[] = [];
-	const sums = new Map<number, number>();
+	let sums = new Float64Array(64);
+	let touched: number[] = [];
 	const pattern: number[] = parties.map(() => 0);
 
 	const addProducts = (i: number, j: number, p: number, at: number, weight: number): void => {
 		const table = tables[p];
 		if (!table) {
 			const { first, count, values: shares } = invariants.of(pattern, action.keyOf(pattern));
+			if (first + count > sums.length) {
+				const longer = new Float64Array(2 * (first + count));
+				longer.set(sums);
+				sums = longer;
+			}
 			for (let k = 0; k < count; k++) {
 				const amount = weight * (shares[at * count + k] ?? 0);
-				if (amount !== 0) sums.set(first + k, (sums.get(first + k) ?? 0) + amount);
+				if (amount === 0) continue;
+				const before = sums[first + k] ?? 0;
+				if (before === 0) touched.push(first + k);
+				sums[first + k] = before + amount;
 			}
 			return;
 		}
@@ -59,13 +68,15 @@ export function centredMomentMatrix(
 	for (let i = 0; i < n; i++) {
 		poll();
 		for (let j = 0; j <= i; j++) {
-			sums.clear();
 			addProducts(i, j, 0, 0, 1);
-			for (const [moment, value] of sums) {
+			for (const moment of touched) {
+				const value = sums[moment] ?? 0;
+				sums[moment] = 0; // listed twice when it was 0 in between
 				if (Math.abs(value) < NEGLIGIBLE) continue;
 				moments.push(moment);
 				values.push(value);
 			}
+			touched = [];
 			start[++cell] = moments.length;
 		}
 		if (moments.length > mostEntries) return null;
@@ -77,6 +88,24 @@ export function centredMomentMatrix(
 		moments: Int32Array.from(moments),
 		values: Float64Array.from(values)
 	};
+}
+
+/** Writes out the moment matrix of centred words, both triangles. */
+export function fillCentred(matrix: CentredMomentMatrix, eta: Float64Array): Float64Array {
+	const { size: n, start, moments, values } = matrix;
+	const filled = new Float64Array(n * n);
+	let cell = 0;
+	for (let i = 0; i < n; i++) {
+		for (let j = 0; j <= i; j++, cell++) {
+			let sum = 0;
+			const end = start[cell + 1] ?? 0;
+			for (let at = start[cell] ?? 0; at < end; at++)
+				sum += (values[at] ?? 0) * (eta[moments[at] ?? 0] ?? 0);
+			filled[i * n + j] = sum;
+			filled[j * n + i] = sum;
+		}
+	}
+	return filled;
 }
 
 interface PlacedProduct {

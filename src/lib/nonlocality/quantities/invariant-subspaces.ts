@@ -1,105 +1,112 @@
 import { hermitianEigen } from '../linalg/hermitian-eigen';
 import { seededRandom } from '../linalg/seeded-random';
 import type { RelabellingAction } from './relabelling-action';
-import { moveVector, type WordOrbit } from './word-orbits';
-
-/** A space of vectors on one orbit that the group maps to itself, by an orthonormal basis. */
-export interface InvariantSubspace {
-	readonly orbit: WordOrbit;
-	readonly vectors: readonly Float64Array[];
-}
+import { moveVectors, type WordOrbit } from './word-orbits';
 
 /** Eigenvalues of a random matrix closer than this (relative) count as one. */
 const SAME_EIGENVALUE = 1e-8;
 const SEED = 40487;
 
 /**
- * Splits the space of an orbit into invariant subspaces: the eigenspaces of a random matrix that
- * commutes with the group (Murota, Kanno, Kojima, Kojima, Jpn. J. Ind. Appl. Math. 27, 125 (2010)).
- * With probability 1 none of them can be split further. Eigenvectors carry rounding errors over the
- * gap of their eigenvalues; averaging each projector over the group takes these out again.
+ * Splits the space of an orbit into subspaces that the group maps to themselves, each given by
+ * orthonormal vectors: the eigenspaces of a random matrix that commutes with the group (Murota,
+ * Kanno, Kojima, Kojima, Jpn. J. Ind. Appl. Math. 27, 125 (2010)). With probability 1 none can be
+ * split further.
  */
 export function invariantSubspaces(
 	action: RelabellingAction,
 	orbit: WordOrbit,
 	attempt: number
-): InvariantSubspace[] {
-	const size = orbit.words.length;
-	const random = seededRandom(SEED + attempt, size);
-	const largest = Math.max(...orbit.patterns.map(({ from, to }) => to - from));
-	// Enough vectors for full rank: the group alone spans at most one pattern's share of each.
-	const sources = Array.from({ length: largest + 2 }, () =>
-		Float64Array.from({ length: size }, () => random.normal())
-	);
-	const matrix = averagedProjector(action, orbit, sources);
-	const { values, vectors } = hermitianEigen({ re: matrix, im: null }, size);
+): Float64Array[][] {
+	const n = orbit.words.length;
+	const matrix = randomInvariantMatrix(action, orbit, attempt);
+	const { values, vectors } = hermitianEigen({ re: matrix, im: null }, n);
 	const order = [...values.keys()].sort((a, b) => (values[a] ?? 0) - (values[b] ?? 0));
-	const scale = Math.max(...values.map(Math.abs));
-	const groups: Float64Array[][] = [];
-	let previous = -Infinity;
-	for (const k of order) {
-		const value = values[k] ?? 0;
-		const vector = vectors.re.slice(k * size, (k + 1) * size);
-		if (value - previous <= SAME_EIGENVALUE * scale) groups.at(-1)?.push(vector);
-		else groups.push([vector]);
-		previous = value;
-	}
+	const scale = values.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
+	const groups: number[][] = [];
+	order.forEach((k, at) => {
+		const gap = (values[k] ?? 0) - (values[order[at - 1] ?? k] ?? 0);
+		if (at > 0 && gap <= SAME_EIGENVALUE * scale) groups.at(-1)?.push(at);
+		else groups.push([at]);
+	});
+	const sorted = new Float64Array(n * n);
+	order.forEach((k, at) => {
+		for (let i = 0; i < n; i++) sorted[i * n + at] = vectors.re[k * n + i] ?? 0;
+	});
+	const cleaned = cleanedVectors(action, orbit, sorted, groups);
 	const done: Float64Array[] = [];
-	return groups.map((group) => {
-		const projector = averagedProjector(action, orbit, group);
-		const cleaned = group.map((vector) => {
-			let current = vector;
-			for (let pass = 0; pass < 2; pass++) {
-				current = product(projector, current);
-				orthonormalise(current, []);
-			}
-			return current;
-		});
-		for (const vector of cleaned) {
+	return groups.map((group) =>
+		group.map((column) => {
+			const vector = Float64Array.from({ length: n }, (_, i) => cleaned[i * n + column] ?? 0);
 			orthonormalise(vector, done);
 			done.push(vector);
-		}
-		return { orbit, vectors: cleaned };
-	});
+			return vector;
+		})
+	);
 }
 
-/** The mean over the group of sum_v v v^T. */
-function averagedProjector(
+/** The mean over the group of S S^T for random S. */
+function randomInvariantMatrix(
 	action: RelabellingAction,
 	orbit: WordOrbit,
-	vectors: readonly Float64Array[]
+	attempt: number
 ): Float64Array {
-	const size = orbit.words.length;
-	const matrix = new Float64Array(size * size);
-	const image = new Float64Array(size);
-	for (const vector of vectors) {
-		for (let g = 0; g < action.order; g++) {
-			moveVector(action, orbit, g, vector, image);
-			for (let i = 0; i < size; i++) {
-				const factor = (image[i] ?? 0) / action.order;
-				if (factor === 0) continue;
-				const row = i * size;
-				for (let j = 0; j <= i; j++)
-					matrix[row + j] = (matrix[row + j] ?? 0) + factor * (image[j] ?? 0);
+	const n = orbit.words.length;
+	const random = seededRandom(SEED + attempt, n);
+	// Enough columns for full rank: the group alone spans at most one pattern's share of each.
+	const columns = 2 + orbit.patterns.reduce((most, { from, to }) => Math.max(most, to - from), 0);
+	const sources = Float64Array.from({ length: n * columns }, () => random.normal());
+	const images = new Float64Array(n * columns);
+	const matrix = new Float64Array(n * n);
+	for (let g = 0; g < action.order; g++) {
+		moveVectors(action, orbit, g, sources, columns, images);
+		for (let i = 0; i < n; i++) {
+			for (let j = 0; j <= i; j++) {
+				let sum = 0;
+				for (let c = 0; c < columns; c++)
+					sum += (images[i * columns + c] ?? 0) * (images[j * columns + c] ?? 0);
+				matrix[i * n + j] = (matrix[i * n + j] ?? 0) + sum / action.order;
 			}
 		}
 	}
-	for (let i = 0; i < size; i++)
-		for (let j = 0; j < i; j++) matrix[j * size + i] = matrix[i * size + j] ?? 0;
+	for (let i = 0; i < n; i++)
+		for (let j = 0; j < i; j++) matrix[j * n + i] = matrix[i * n + j] ?? 0;
 	return matrix;
 }
 
-function product(matrix: Float64Array, vector: Float64Array): Float64Array {
-	const n = vector.length;
-	return vector.map((_, i) => {
-		let sum = 0;
-		for (let j = 0; j < n; j++) sum += (matrix[i * n + j] ?? 0) * (vector[j] ?? 0);
-		return sum;
-	});
+/**
+ * Eigenvectors carry rounding errors over the gap of their eigenvalues. The mean over the group of
+ * an eigenspace's projector commutes with the group and has eigenvalues near 1 and 0 only: applied
+ * to the eigenvectors it takes those errors out.
+ */
+function cleanedVectors(
+	action: RelabellingAction,
+	orbit: WordOrbit,
+	vectors: Float64Array,
+	groups: readonly (readonly number[])[]
+): Float64Array {
+	const n = orbit.words.length;
+	const images = new Float64Array(n * n);
+	const cleaned = new Float64Array(n * n);
+	for (let g = 0; g < action.order; g++) {
+		moveVectors(action, orbit, g, vectors, n, images);
+		for (const group of groups)
+			for (const column of group)
+				for (const other of group) {
+					let along = 0;
+					for (let i = 0; i < n; i++)
+						along += (images[i * n + other] ?? 0) * (vectors[i * n + column] ?? 0);
+					along /= action.order;
+					for (let i = 0; i < n; i++)
+						cleaned[i * n + column] =
+							(cleaned[i * n + column] ?? 0) + along * (images[i * n + other] ?? 0);
+				}
+	}
+	return cleaned;
 }
 
 /** Twice, since once loses digits when little is left. */
-export function orthonormalise(vector: Float64Array, others: readonly Float64Array[]): void {
+function orthonormalise(vector: Float64Array, others: readonly Float64Array[]): void {
 	for (let pass = 0; pass < 2; pass++) {
 		for (const other of others) {
 			let along = 0;
@@ -107,7 +114,9 @@ export function orthonormalise(vector: Float64Array, others: readonly Float64Arr
 			for (let i = 0; i < vector.length; i++)
 				vector[i] = (vector[i] ?? 0) - along * (other[i] ?? 0);
 		}
-		const norm = Math.hypot(...vector);
+		let squares = 0;
+		for (const value of vector) squares += value * value;
+		const norm = Math.sqrt(squares);
 		for (let i = 0; i < vector.length; i++) vector[i] = (vector[i] ?? 0) / norm;
 	}
 }

@@ -146,15 +146,27 @@ export class RelabellingAction {
 		return sign;
 	}
 
-	/** The image of a vector of a pattern, laid out as the image's pattern asks for. */
-	apply(element: number, pattern: Pattern, vector: Float64Array, reversed: boolean): Float64Array {
-		if (vector.length === 1)
-			return Float64Array.of((vector[0] ?? 0) * Math.round(this.sign(element, pattern)));
+	/**
+	 * The images of vectors of a pattern, laid out as the image's pattern asks for.
+	 * @param vectors row-major, the pattern's words by `columns`.
+	 */
+	apply(
+		element: number,
+		pattern: Pattern,
+		vectors: Float64Array,
+		reversed: boolean,
+		columns = 1
+	): Float64Array {
+		if (vectors.length === columns) {
+			const sign = Math.round(this.sign(element, pattern));
+			return vectors.map((value) => sign * value);
+		}
 		const g = this.#elements[element];
 		const dimensions = this.#dimensions(pattern);
-		const factors = tensorFactors(dimensions.flat());
-		let current = { re: vector.slice(), im: null };
-		let other = { re: new Float64Array(vector.length), im: null };
+		const sizes = [...dimensions.flat(), columns];
+		const factors = tensorFactors(sizes);
+		let current = { re: vectors.slice(), im: null };
+		let other = { re: new Float64Array(vectors.length), im: null };
 		let axis = 0;
 		pattern.forEach((part, p) => {
 			for (const x of this.#inputStrings[p]?.letters(part) ?? []) {
@@ -166,12 +178,12 @@ export class RelabellingAction {
 			}
 		});
 		let first = 0;
-		const axes = dimensions.map((sizes) => sizes.map(() => first++));
+		const axes = dimensions.map((own) => own.map(() => first++));
 		const order = (g?.sources ?? []).flatMap((source) => {
 			const own = axes[source] ?? [];
 			return reversed ? own.toReversed() : own;
 		});
-		return permuteAxes(current.re, dimensions.flat(), order);
+		return permuteAxes(current.re, sizes, [...order, first]);
 	}
 }
 

@@ -2,9 +2,13 @@ import { addScaled, multiply } from '../linalg/dense';
 import type { BlockProgramme } from '../optimization/block-programme';
 import type { SparseRow } from '../optimization/moment-programme';
 import type { Relabelling } from '../scenario/relabelling';
-import { adaptedBasis, fillCentred, type AdaptedBlock } from './adapted-basis';
+import { adaptedBasis, type AdaptedBlock } from './adapted-basis';
 import { blockMatrices } from './block-entries';
-import { centredMomentMatrix, type CentredMomentMatrix } from './centred-moment-matrix';
+import {
+	centredMomentMatrix,
+	fillCentred,
+	type CentredMomentMatrix
+} from './centred-moment-matrix';
 import { CentredStrings } from './centred-strings';
 import { changeOfWords } from './change-of-words';
 import { InvariantMoments } from './invariant-moments';

@@ -67,16 +67,21 @@ export function wordOrbits(
 	return orbits;
 }
 
-/** Writes the image of a vector of an orbit. */
-export function moveVector(
+/**
+ * Writes the images of vectors of an orbit.
+ * @param vectors row-major, the orbit's words by `columns`.
+ */
+export function moveVectors(
 	action: RelabellingAction,
 	orbit: WordOrbit,
 	element: number,
-	vector: Float64Array,
-	image: Float64Array
+	vectors: Float64Array,
+	columns: number,
+	images: Float64Array
 ): void {
 	orbit.patterns.forEach(({ pattern, from, to }, k) => {
-		const moved = action.apply(element, pattern, vector.subarray(from, to), false);
-		image.set(moved, orbit.targets[element]?.[k] ?? 0);
+		const part = vectors.subarray(from * columns, to * columns);
+		const moved = action.apply(element, pattern, part, false, columns);
+		images.set(moved, (orbit.targets[element]?.[k] ?? 0) * columns);
 	});
 }

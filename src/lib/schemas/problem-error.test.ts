@@ -198,8 +198,8 @@ describe('what is too large names its limit', () => {
 			/at most 6 parties, not 7/
 		],
 		[
-			{ quantity: 'local', outputs: [wide(65), wide(2)], terms: [] },
-			/at most 64 inputs per party, not 65/
+			{ quantity: 'local', outputs: [wide(201), wide(2)], terms: [] },
+			/at most 200 inputs per party, not 201/
 		],
 		[{ quantity: 'local', outputs: [[65]], terms: [] }, /at most 64 outputs/],
 		[
@@ -219,8 +219,8 @@ describe('what is too large names its limit', () => {
 			/at most 500000 terms without the last outputs, not 884736/
 		],
 		[
-			{ quantity: 'local', outputs: [[2]], terms: Array.from({ length: 50_001 }, () => [1, []]) },
-			/at most 50000 terms, not 50001/
+			{ quantity: 'local', outputs: [[2]], terms: Array.from({ length: 170_001 }, () => [1, []]) },
+			/at most 170000 terms, not 170001/
 		],
 		[{ quantity: 'local', expression: 'A0+'.repeat(2000) }, /at most 4,000 characters/],
 		[{ quantity: 'npa', ...chsh, level: 11 }, /at most 10/],

@@ -6,9 +6,11 @@ import { FORMAT } from '../nonlocality/notation';
 /** Sizes past which a problem is refused unread. Solvers have narrower limits of their own. */
 export const PROBLEM_LIMITS = {
 	parties: 6,
-	inputs: 64,
+	/** Level 1 with two outcomes takes hundreds; what can't be had of so many is refused by its solver. */
+	inputs: 200,
 	outputs: 64,
-	terms: 50_000,
+	/** A correlator table of two parties with all these inputs. */
+	terms: 170_000,
 	/** Terms once the last outputs are written as 1 minus the others. */
 	expandedTerms: 500_000,
 	/** Joint probabilities of the whole scenario. */

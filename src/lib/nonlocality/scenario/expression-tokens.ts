@@ -9,7 +9,7 @@ export const EXPRESSION_LIMITS = {
 	/** Probabilities after writing observables out. */
 	probabilities: 20_000,
 	parties: 6,
-	inputs: 12,
+	inputs: 64,
 	outputs: 20,
 	nesting: 50
 } as const;

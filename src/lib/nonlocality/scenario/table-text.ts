@@ -1,11 +1,12 @@
 import { NotationError, NotationLimitError } from '../exact/notation-error';
 
 export const TABLE_LIMITS = {
-	characters: 200_000,
-	rows: 130,
-	columns: 130,
+	characters: 500_000,
+	/** 200 inputs and the margin. */
+	rows: 201,
+	columns: 201,
 	parties: 6,
-	inputs: 64,
+	inputs: 200,
 	outputs: 64
 } as const;
 

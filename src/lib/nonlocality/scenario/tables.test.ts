@@ -219,14 +219,14 @@ describe('what cannot be read', () => {
 	});
 
 	it('tells too large from malformed', () => {
-		const wide = Array.from({ length: 131 }, () => ['1']);
+		const wide = Array.from({ length: 202 }, () => ['1']);
 		expect(() => parseCollinsGisin(wide)).toThrow(NotationLimitError);
-		expect(() => parseProbabilities({ '0,0|0,99': 1 })).toThrow(NotationLimitError);
+		expect(() => parseProbabilities({ '0,0|0,200': 1 })).toThrow(NotationLimitError);
 		expect(() => parseProbabilities({ '0,0,0,0,0,0,0|0,0,0,0,0,0,0': 1 })).toThrow(
 			NotationLimitError
 		);
-		expect(() => splitTable('1 '.repeat(100_001))).toThrow(NotationLimitError);
-		expect(() => splitProbabilities('1 '.repeat(100_001))).toThrow(NotationLimitError);
+		expect(() => splitTable('1 '.repeat(250_001))).toThrow(NotationLimitError);
+		expect(() => splitProbabilities('1 '.repeat(250_001))).toThrow(NotationLimitError);
 	});
 });
 

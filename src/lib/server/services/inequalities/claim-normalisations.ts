@@ -2,6 +2,7 @@ import { RELATION_SIGNS } from '../../../ledger/claim';
 import { readStatedValue } from '../../../ledger/stated-value';
 import { NotationError, NotationLimitError } from '../../../nonlocality/exact/notation-error';
 import type { ClaimNormalisationView } from '../../../schemas/normalisation-views';
+import { quantityInfo } from '../recomputations/claim-problem';
 import type { SelectedClaim } from '../claims/claim-rows';
 import { mapSide, readMap, showFigure } from './affine';
 import { isIdentity, mapBetween, type MapText } from './canonical-subject';
@@ -9,6 +10,10 @@ import type { NormalisationChoice } from './normalisations';
 
 /** Key of the normalisation that a claim is entered in. */
 const keyOf = (claimId: string) => `claim-${claimId}`;
+
+/** An efficiency or a key rate is no value of the functional: no normalisation changes it. */
+const isValueOfIt = ({ claim }: SelectedClaim) =>
+	quantityInfo(claim.input.quantity).subject === 'functional';
 
 const sourceOf = ({ claim, reference }: SelectedClaim) => `${reference.short}, ${claim.locator}`;
 
@@ -21,7 +26,7 @@ export function claimChoices(
 	known: readonly NormalisationChoice[]
 ): readonly NormalisationChoice[] {
 	const choices: NormalisationChoice[] = [];
-	for (const row of selected) {
+	for (const row of selected.filter(isValueOfIt)) {
 		const { id, scale, shift } = row.claim;
 		if ([...known, ...choices].some(({ map }) => isSame(map, { scale, shift }))) continue;
 		choices.push({ key: keyOf(id), label: `As in ${sourceOf(row)}`, map: { scale, shift } });
@@ -37,7 +42,7 @@ export function claimNormalisations(
 	choices: readonly NormalisationChoice[],
 	chosen: NormalisationChoice
 ): readonly ClaimNormalisationView[] {
-	return selected.map((row) => {
+	return selected.filter(isValueOfIt).map((row) => {
 		const { claim } = row;
 		const { id, scale, shift, printed, relation } = claim;
 		const own = choices.find(({ map }) => isSame(map, { scale, shift }));

@@ -46,8 +46,7 @@ export function adaptedBasis(
 		const orbitOf: number[] = [];
 		const basis = new Float64Array(n * n);
 		const spaces: Subspace[] = orbits.flatMap((orbit, place) => {
-			poll();
-			return invariantSubspaces(action, orbit, attempt).map((vectors) => {
+			return invariantSubspaces(action, orbit, attempt, poll).map((vectors) => {
 				const first = orbitOf.length;
 				for (const vector of vectors) {
 					const row = orbitOf.push(place) - 1;

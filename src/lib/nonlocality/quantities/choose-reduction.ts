@@ -7,11 +7,16 @@ import { symmetryGroup } from '../scenario/symmetry-group';
 import { functionalOfZeroSumForm, zeroSumForm } from '../scenario/zero-sum-form';
 import { LevelOneDual } from '../optimization/level-one-dual';
 import type { BlockProgramme } from '../optimization/block-programme';
+import { MOST_MOMENTS } from './moment-matrix';
 import type { MomentProblem } from './moment-problem';
 import { SymmetryReduction } from './symmetry-reduction';
 
 /** Multiplications an iteration below which a plain solve ends before a reduction is set up. */
-const CHEAP = 3e5;
+const CHEAP = 3e6;
+/** A group of two saves less than the set-up takes. */
+const SMALLEST_ORDER = 3;
+/** The plain route's kernels do so many multiplications in the time of one here. */
+const KERNEL_SPEED = 4;
 /** The set-up goes through all elements: a larger group is replaced by a subgroup. */
 const MOST_ELEMENTS_USED = 512;
 
@@ -33,9 +38,12 @@ export function chooseReduction(
 	if (group.order === 1n || !group.generators.every((r) => keepsConstraints(problem, r)))
 		return null;
 	const elements = group.elementsOfSubgroup(MOST_ELEMENTS_USED);
-	if (elements.length === 1) return null;
+	const plainFits = unknowns <= MOST_MOMENTS;
+	if (elements.length < (plainFits ? SMALLEST_ORDER : 2)) return null;
 	const reduction = SymmetryReduction.of(relaxation, elements, poll);
-	return reduction && iterationCost(reduction.programme) < plain ? reduction : null;
+	if (!reduction) return null;
+	const cost = KERNEL_SPEED * iterationCost(reduction.programme);
+	return cost < plain || !plainFits ? reduction : null;
 }
 
 function iterationCost({ sizes, unknowns, values }: BlockProgramme): number {

@@ -16,10 +16,11 @@ const SEED = 40487;
 export function invariantSubspaces(
 	action: RelabellingAction,
 	orbit: WordOrbit,
-	attempt: number
+	attempt: number,
+	poll: () => void
 ): Float64Array[][] {
 	const n = orbit.words.length;
-	const matrix = randomInvariantMatrix(action, orbit, attempt);
+	const matrix = randomInvariantMatrix(action, orbit, attempt, poll);
 	const { values, vectors } = hermitianEigen({ re: matrix, im: null }, n);
 	const order = [...values.keys()].sort((a, b) => (values[a] ?? 0) - (values[b] ?? 0));
 	const scale = values.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
@@ -33,7 +34,7 @@ export function invariantSubspaces(
 	order.forEach((k, at) => {
 		for (let i = 0; i < n; i++) sorted[i * n + at] = vectors.re[k * n + i] ?? 0;
 	});
-	const cleaned = cleanedVectors(action, orbit, sorted, groups);
+	const cleaned = cleanedVectors(action, orbit, sorted, groups, poll);
 	const done: Float64Array[] = [];
 	return groups.map((group) =>
 		group.map((column) => {
@@ -49,7 +50,8 @@ export function invariantSubspaces(
 function randomInvariantMatrix(
 	action: RelabellingAction,
 	orbit: WordOrbit,
-	attempt: number
+	attempt: number,
+	poll: () => void
 ): Float64Array {
 	const n = orbit.words.length;
 	const random = seededRandom(SEED + attempt, n);
@@ -59,6 +61,7 @@ function randomInvariantMatrix(
 	const images = new Float64Array(n * columns);
 	const matrix = new Float64Array(n * n);
 	for (let g = 0; g < action.order; g++) {
+		poll();
 		moveVectors(action, orbit, g, sources, columns, images);
 		for (let i = 0; i < n; i++) {
 			for (let j = 0; j <= i; j++) {
@@ -83,12 +86,14 @@ function cleanedVectors(
 	action: RelabellingAction,
 	orbit: WordOrbit,
 	vectors: Float64Array,
-	groups: readonly (readonly number[])[]
+	groups: readonly (readonly number[])[],
+	poll: () => void
 ): Float64Array {
 	const n = orbit.words.length;
 	const images = new Float64Array(n * n);
 	const cleaned = new Float64Array(n * n);
 	for (let g = 0; g < action.order; g++) {
+		poll();
 		moveVectors(action, orbit, g, vectors, n, images);
 		for (const group of groups)
 			for (const column of group)

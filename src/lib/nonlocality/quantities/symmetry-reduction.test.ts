@@ -225,6 +225,13 @@ describe('the route that npaBound takes', () => {
 		const problem = npaProblem({ name: 'chained', n: 13 }, '1+AB');
 		expect(bound(problem).method['moments']).toBeGreaterThan(6000);
 	});
+	test('I3322 at level 4, which has 4,491 moments', () => {
+		// Best known quantum value 0.250875384514: Pal, Vertesi, Phys. Rev. A 82, 022116 (2010).
+		const { upper, method } = bound(npaProblem({ name: 'i3322' }, 4));
+		expect(method).toMatchObject({ size: 244, moments: 4491, symmetry: 8, invariantMoments: 593 });
+		expect(upper).toBeGreaterThan(0.250875384514);
+		expect(upper).toBeLessThan(0.25087541);
+	}, 60_000);
 	test('a level that is not closed under relabelling is solved as it stands', () => {
 		const problem = npaProblem({ name: 'i3322' }, { products: ['A', 'AB', 'B', 'ABA', 'BAB'] });
 		expect(bound(problem).upper).toBeLessThan(0.251471);

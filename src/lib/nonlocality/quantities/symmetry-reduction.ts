@@ -20,6 +20,8 @@ import { wordOrbits, type WordOrbit } from './word-orbits';
 
 /** Entries of the invariant moment matrix: past this many its lists take a gigabyte. */
 export const MOST_ENTRIES = 2e7;
+/** Two square matrices of this many rows, the linear system and the Gram matrix: 256 MB. */
+export const MOST_INVARIANT_MOMENTS = 4000;
 /** Rows whose forms on the invariant moments differ by less are the same on average. */
 const SAME_ROW = 1e-9;
 
@@ -61,7 +63,7 @@ export class SymmetryReduction {
 
 	/**
 	 * @param elements a group of symmetries of the objective and the set of rows.
-	 * @returns null when the words are not closed under it, when there are too many entries, or when
+	 * @returns null when the words are not closed under it, when it would not fit in memory, or when
 	 *   the numerical block structure fails its check: the plain problem is to be solved then.
 	 */
 	static of(
@@ -77,7 +79,7 @@ export class SymmetryReduction {
 		const action = new RelabellingAction(parties, elements);
 		const invariants = new InvariantMoments(action);
 		const centred = centredMomentMatrix(parties, words, action, invariants, MOST_ENTRIES, poll);
-		if (!centred) return null;
+		if (!centred || centred.unknowns > MOST_INVARIANT_MOMENTS) return null;
 		const inCentred = changeOfWords(parties, words, 'inCentred');
 		const inProjectors = changeOfWords(parties, words, 'inProjectors');
 		const orbits = wordOrbits(parties, words, action);

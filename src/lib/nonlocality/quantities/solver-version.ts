@@ -1,2 +1,2 @@
 /** Name and version of the solvers, stored with every result; it changes when results may get better. */
-export const SOLVER = 'merestone 0.1.0';
+export const SOLVER = 'merestone 0.2.0';

@@ -30,7 +30,7 @@ export const publishedValues: readonly PublishedValue[] = JSON.parse(
 /** Too long for every run of the tests, with the reason; tests/bench/slow-claims.ts judges them. */
 export const SLOW_CLAIMS: Readonly<Record<string, string>> = {
 	'i3322.quantum.qubit-bound': 'a discrepancy: runs to the end of its budget for its reason',
-	'i3322.quantum': 'a supremum that no finite dimension reaches: 12 digits are not to be had',
+	'i3322.quantum': 'a supremum that no finite dimension reaches: 12 digits are not to be had'
 };
 
 const control: Control = {

@@ -100,7 +100,7 @@ interface ResultCommon {
 	readonly method: Readonly<Record<string, unknown>>;
 	readonly seconds: number;
 	readonly seed: number;
-	/** Name and version, `merestone 0.1.0`. */
+	/** Name and version, `merestone 0.2.0`. */
 	readonly solver: string;
 	readonly problem: Problem;
 }

@@ -16,13 +16,14 @@ const QUANTITY_LINES: Readonly<Record<QuantityOfProblem, readonly string[]>> = {
 	'see-saw': [
 		'the best explicit quantum strategy found in a local dimension: a lower side',
 		'"dimension": 2, or one for each party: [2, 3]',
-		`"starts": random starts (default ${PROBLEM_DEFAULTS.starts}); "state": "maximally-entangled", or a vector of [re, im]`
+		`"starts": random starts (default ${PROBLEM_DEFAULTS.starts}); "state": "maximally-entangled", or a vector of [re, im]`,
+		`"grow": the largest local dimension to grow to (at most ${PROBLEM_LIMITS.grow}); "start": a stored strategy to begin at`
 	],
 	quantum: [
 		'quantum maximum, enclosed from both sides',
 		'"levels", "dimensions": lists tried in order (default: escalating)',
 		`"gap": stop when upper - lower is at most this (default ${PROBLEM_DEFAULTS.gap})`,
-		'"within": [low, high]: stop when both sides lie in it'
+		'"within": [low, high]: stop when both sides lie in it; "start": a stored strategy to begin at'
 	],
 	hybrid: [
 		'maximum over models that are local across some bipartition of three or four parties, exact',

@@ -82,3 +82,17 @@ export function countCells(programme: MomentProgramme): Int32Array {
 	for (const moment of programme.index) if (moment >= 0) counts[moment] = (counts[moment] ?? 0) + 1;
 	return counts;
 }
+
+/** Moves a matrix to the nearest one whose <F_i, matrix> are smaller by `residuals`, i > 0. */
+export function subtractAverages(
+	{ index }: MomentProgramme,
+	cells: Int32Array,
+	residuals: Float64Array,
+	matrix: Float64Array
+): void {
+	for (let cell = 0; cell < index.length; cell++) {
+		const moment = index[cell] ?? -1;
+		if (moment > 0)
+			matrix[cell] = (matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (cells[moment] ?? 1);
+	}
+}

@@ -60,7 +60,7 @@ export class BlockCone implements MatrixCone {
 	}
 
 	addInnerProducts(matrix: Float64Array, out: Float64Array): void {
-		addBlockProducts(this.#programme, matrix, 1, out);
+		addBlockProducts(this.#programme, matrix, out);
 	}
 
 	project(residuals: Float64Array, matrix: Float64Array): void {

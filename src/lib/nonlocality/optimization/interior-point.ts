@@ -68,8 +68,8 @@ export class InteriorPoint implements NewtonState {
 		const { objective, rows, equalities } = this.#cone;
 		const residuals = objective.slice();
 		this.#cone.addInnerProducts(this.x, residuals);
-		addRows(rows, this.rows.multipliers, 1, residuals);
-		addRows(equalities, this.equalityMultipliers, 1, residuals);
+		addRows(rows, this.rows.multipliers, residuals);
+		addRows(equalities, this.equalityMultipliers, residuals);
 		return residuals;
 	}
 
@@ -143,8 +143,8 @@ export class InteriorPoint implements NewtonState {
 		const { equalities, rows } = this.#cone;
 		const residuals = this.#dualResiduals();
 		this.#cone.addInnerProducts(direction.dx, residuals);
-		addRows(rows, direction.rowMultipliers, 1, residuals);
-		addRows(equalities, direction.equalityMultipliers, 1, residuals);
+		addRows(rows, direction.rowMultipliers, residuals);
+		addRows(equalities, direction.equalityMultipliers, residuals);
 		return residuals;
 	}
 

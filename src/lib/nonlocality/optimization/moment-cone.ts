@@ -78,7 +78,7 @@ export class MomentCone implements MatrixCone {
 	}
 
 	addInnerProducts(matrix: Float64Array, out: Float64Array): void {
-		addInnerProducts(this.#programme, matrix, 1, out);
+		addInnerProducts(this.#programme, matrix, out);
 	}
 
 	project(residuals: Float64Array, matrix: Float64Array): void {

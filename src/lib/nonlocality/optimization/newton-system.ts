@@ -111,8 +111,8 @@ export class NewtonSystem {
 		const rowFixed = state.rows.fixedMultipliers(target, predictor);
 		const rhs = cone.objective.slice();
 		cone.addInnerProducts(dx, rhs);
-		addRows(cone.rows, rowFixed, 1, rhs);
-		addRows(cone.equalities, state.equalityMultipliers, 1, rhs);
+		addRows(cone.rows, rowFixed, rhs);
+		addRows(cone.equalities, state.equalityMultipliers, rhs);
 		this.#solveLinear(rhs, state.y, into);
 		cone.kernels.addScaled(dx, -1, state.x);
 		cone.subtractProduct(dx, state.x, ds, state.w);

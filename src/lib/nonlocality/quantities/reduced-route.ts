@@ -86,8 +86,8 @@ function lifted(
 	const multiplier = reduction.liftMultiplier(iterate.multiplier);
 	const rowMultipliers = reduction.liftRowMultipliers(iterate.rowMultipliers);
 	const residuals = programme.objective.slice();
-	addInnerProducts(programme, multiplier, 1, residuals);
-	addRows(programme.rows, rowMultipliers, 1, residuals);
+	addInnerProducts(programme, multiplier, residuals);
+	addRows(programme.rows, rowMultipliers, residuals);
 	subtractAverages(programme, countCells(programme), residuals, multiplier);
 	return {
 		...iterate,

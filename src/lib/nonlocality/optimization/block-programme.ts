@@ -48,11 +48,10 @@ export function fillBlocks(programme: BlockProgramme, y: Float64Array, out: Floa
 	}
 }
 
-/** out_j += factor <B_j, matrix>, B_0 included. */
+/** out_j += <B_j, matrix>, B_0 included. */
 export function addBlockProducts(
 	programme: BlockProgramme,
 	matrix: Float64Array,
-	factor: number,
 	out: Float64Array
 ): void {
 	const { start, cells, mirrors, values } = programme;
@@ -66,7 +65,7 @@ export function addBlockProducts(
 			sum += value * (matrix[cell] ?? 0);
 			if (mirror !== cell) sum += value * (matrix[mirror] ?? 0);
 		}
-		out[j] = (out[j] ?? 0) + factor * sum;
+		out[j] = (out[j] ?? 0) + sum;
 	}
 }
 

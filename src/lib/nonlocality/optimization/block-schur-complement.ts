@@ -8,9 +8,9 @@ interface BlockPart {
 }
 
 /**
- * Builds M_jk = <B_j, X B_k W> (+ the linear block's rows), lower triangle. Per unknown and block one
+ * Builds M_jk = <B_j, X B_k W>, lower triangle. Per unknown and block one
  * short product over the distinct rows of B_k, read off at the entries of the others; those with
- * most rows come first and so serve for all others (as in schur-complement.ts, where each cell
+ * most rows come first and so serve for all others (as in linalg/kernels/plain-schur.ts, where each cell
  * belongs to one moment alone).
  */
 export class BlockSchurComplement {
@@ -105,14 +105,7 @@ export class BlockSchurComplement {
 		this.#product = new Float64Array(offsets.at(-1) ?? 0);
 	}
 
-	/** @param weights z_j / s_j of the linear rows. */
-	build(
-		x: Float64Array,
-		w: Float64Array,
-		weights: Float64Array,
-		matrix: Float64Array,
-		poll: () => void
-	): void {
+	build(x: Float64Array, w: Float64Array, matrix: Float64Array, poll: () => void): void {
 		const m = this.#programme.unknowns;
 		const product = this.#product;
 		const cells = this.#cells;
@@ -142,7 +135,6 @@ export class BlockSchurComplement {
 				sinceLastPoll = 0;
 			}
 		}
-		this.#addLinearRows(weights, matrix);
 	}
 
 	/** Rows of X and of B_j W for the distinct rows of B_j, padded with zeros to a multiple of 4. */
@@ -171,24 +163,6 @@ export class BlockSchurComplement {
 		left.fill(0, to, padded * size);
 		right.fill(0, to, padded * size);
 		return padded;
-	}
-
-	#addLinearRows(weights: Float64Array, matrix: Float64Array): void {
-		const m = this.#programme.unknowns;
-		this.#programme.rows.forEach((row, j) => {
-			const weight = weights[j] ?? 0;
-			row.columns.forEach((a, atA) => {
-				if (a === 0) return;
-				const rankA = this.rank[a] ?? 0;
-				const scaled = weight * (row.values[atA] ?? 0);
-				row.columns.forEach((b, atB) => {
-					const rankB = this.rank[b] ?? 0;
-					if (b === 0 || rankB > rankA) return;
-					const at = rankA * m + rankB;
-					matrix[at] = (matrix[at] ?? 0) + scaled * (row.values[atB] ?? 0);
-				});
-			});
-		});
 	}
 }
 

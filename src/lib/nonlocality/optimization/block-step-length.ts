@@ -1,3 +1,5 @@
+import { tailOfEigenvector } from '../linalg/tridiagonal-eigen';
+
 /** Lanczos steps after which the end of the spectrum is known well enough, and between two looks. */
 const MOST_STEPS = 40;
 const STEPS_BETWEEN_LOOKS = 4;
@@ -120,26 +122,4 @@ function smallestEigenvalue(diagonal: Float64Array, off: Float64Array, count: nu
 		else low = middle;
 	}
 	return low;
-}
-
-/** |last component| of the unit eigenvector: times the next norm it bounds the eigenvalue's error. */
-function tailOfEigenvector(
-	diagonal: Float64Array,
-	off: Float64Array,
-	count: number,
-	eigenvalue: number
-): number {
-	let previous = 0;
-	let current = 1;
-	let squares = 1;
-	for (let i = 0; i + 1 < count; i++) {
-		const side = off[i] ?? 0;
-		if (side === 0) return 0;
-		const before = i > 0 ? (off[i - 1] ?? 0) * previous : 0;
-		const next = -(((diagonal[i] ?? 0) - eigenvalue) * current + before) / side;
-		previous = current;
-		current = next;
-		squares += next * next;
-	}
-	return Math.abs(current) / Math.sqrt(squares);
 }

@@ -9,7 +9,7 @@ export type IntegerRows = readonly (readonly (readonly [column: number, value: n
 const PRIME = 67_108_859;
 const PRIME_BIG = BigInt(PRIME);
 /** The inverse modulo the prime takes n^3 steps: some 3 s at this size. */
-export const SYSTEM_SIZE_LIMIT = 800;
+const SYSTEM_SIZE_LIMIT = 800;
 /** Digits in base 2^26 of the solution that are tried: numbers of up to some 6,000 bits. */
 const MOST_DIGITS = 512;
 

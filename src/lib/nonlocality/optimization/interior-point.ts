@@ -1,42 +1,12 @@
 import { addScaled, dot, largestMagnitude } from '../linalg/dense';
-import type { Kernels } from '../linalg/kernels/kernels';
-import { stepScratch } from '../linalg/kernels/plain-step';
-import {
-	addInnerProducts,
-	addRows,
-	countCells,
-	evaluateRow,
-	fillMoments,
-	type MomentProgramme
-} from './moment-programme';
+import { backtrack, type Iterate } from './interior-point-loop';
+import { LinearRows } from './linear-rows';
+import type { MatrixCone } from './matrix-cone';
+import { addRows } from './moment-programme';
 import type { Direction, NewtonState } from './newton-system';
 
-/** A primal point y with Gamma(y) > 0 and a multiplier; arrays are the solver's own, copy to keep. */
-export interface Iterate {
-	readonly iteration: number;
-	/** y[0] = 1. */
-	readonly moments: Float64Array;
-	/** X > 0, symmetric row-major. */
-	readonly multiplier: Float64Array;
-	/** z >= 0, one per row. */
-	readonly rowMultipliers: Float64Array;
-	/** Free, one per equality. */
-	readonly equalityMultipliers: Float64Array;
-	/** Objective at y, and the value the multiplier would prove were it exactly feasible. */
-	readonly primal: number;
-	readonly dual: number;
-	/** Largest |c_i + <F_i, X> + ...|. */
-	readonly residual: number;
-}
-
-/** Below this step in both variables rounding has won. */
-export const SMALLEST_STEP = 1e-6;
-const BACKTRACK = 0.8;
-/** Slack given to a row that the start does not satisfy. */
-const FIRST_SLACK = 0.1;
-
 /**
- * Where the interior-point method stands: y with S = Gamma(y) > 0, X > 0, the linear block, and what
+ * Where the interior-point method stands: y with S = F(y) > 0, X > 0, the linear block, and what
  * follows from them. Every move is verified by a Cholesky factorisation and shortened until it
  * completes.
  */
@@ -44,82 +14,62 @@ export class InteriorPoint implements NewtonState {
 	readonly y: Float64Array;
 	readonly x: Float64Array;
 	readonly w: Float64Array;
-	readonly rowSlack: Float64Array;
-	readonly rowResidual: Float64Array;
-	readonly rowMultipliers: Float64Array;
+	readonly rows: LinearRows;
 	readonly equalityMultipliers: Float64Array;
-	readonly #programme: MomentProgramme;
-	readonly #kernels: Kernels;
-	readonly #stepScratch: Float64Array;
-	readonly #n: number;
-	readonly #cells: Int32Array;
+	readonly #cone: MatrixCone;
+	/** Order of the matrices and of the linear block. */
+	readonly #rank: number;
 	readonly #s: Float64Array;
-	readonly #factor: Float64Array;
 	readonly #inverseS: Float64Array;
 	readonly #inverseX: Float64Array;
 	/** X before a move, and before its projection. */
 	readonly #before: Float64Array;
 	readonly #unprojected: Float64Array;
 
-	/** @param start moments with Gamma > 0, `start[0] = 1`. */
-	constructor(programme: MomentProgramme, start: Float64Array, kernels: Kernels) {
-		const n = programme.size;
-		const square = () => kernels.doubles(n * n);
-		this.#programme = programme;
-		this.#kernels = kernels;
-		this.#stepScratch = kernels.doubles(stepScratch(n));
-		this.#n = n;
-		this.#cells = countCells(programme);
+	/** @param start unknowns with F > 0, `start[0] = 1`. */
+	constructor(cone: MatrixCone, start: Float64Array) {
+		this.#cone = cone;
+		this.#rank = cone.order + cone.rows.length;
 		this.y = start.slice();
-		this.x = square();
-		this.w = square();
-		this.#s = square();
-		this.#factor = square();
-		this.#inverseS = square();
-		this.#inverseX = square();
-		this.#before = square();
-		this.#unprojected = square();
-		this.rowSlack = new Float64Array(programme.rows.length);
-		this.rowResidual = new Float64Array(programme.rows.length);
-		this.rowMultipliers = new Float64Array(programme.rows.length);
-		this.equalityMultipliers = new Float64Array(programme.equalities.length);
+		this.x = cone.matrix();
+		this.w = cone.matrix();
+		this.#s = cone.matrix();
+		this.#inverseS = cone.matrix();
+		this.#inverseX = cone.matrix();
+		this.#before = cone.matrix();
+		this.#unprojected = cone.matrix();
+		this.rows = new LinearRows(cone.rows);
+		this.equalityMultipliers = new Float64Array(cone.equalities.length);
 	}
 
 	/** X = S^-1, so that X S is the identity: a centred start. False when S is not positive. */
 	begin(): boolean {
-		const n = this.#n;
-		fillMoments(this.#programme, this.y, this.#s);
+		this.#cone.fill(this.y, this.#s);
 		if (!this.#factorSlack()) return false;
 		this.x.set(this.w);
-		this.#factor.set(this.x);
-		if (!this.#kernels.factorCholesky(this.#factor, n)) return false;
-		this.#kernels.invertFactor(this.#factor, n, this.#inverseX);
-		this.#programme.rows.forEach((row, j) => {
-			const value = evaluateRow(row, this.y);
-			const slack = Math.max(value, FIRST_SLACK);
-			this.rowSlack[j] = slack;
-			this.rowResidual[j] = value - slack;
-			this.rowMultipliers[j] = 1 / slack;
-		});
+		if (!this.#factorMultiplier()) return false;
+		this.rows.begin(this.y);
 		return true;
 	}
 
-	/** Cholesky of S, its inverse factor and W = S^-1. */
+	/** Inverse Cholesky factor of S, and W = S^-1. */
 	#factorSlack(): boolean {
-		this.#factor.set(this.#s);
-		if (!this.#kernels.factorCholesky(this.#factor, this.#n)) return false;
-		this.#kernels.invertFactor(this.#factor, this.#n, this.#inverseS);
-		this.#kernels.inverseFromFactor(this.#inverseS, this.#n, this.w);
+		if (!this.#cone.invertFactor(this.#s, this.#inverseS)) return false;
+		this.#cone.invert(this.#inverseS, this.w);
 		return true;
+	}
+
+	#factorMultiplier(): boolean {
+		return this.#cone.invertFactor(this.x, this.#inverseX);
 	}
 
 	/** c_i + <F_i, X> + rows + equalities, entry 0 the dual objective. */
 	#dualResiduals(): Float64Array {
-		const { objective, rows, equalities } = this.#programme;
+		const { objective, rows, equalities } = this.#cone;
 		const residuals = objective.slice();
-		addInnerProducts(this.#programme, this.x, 1, residuals);
-		addRows(rows, this.rowMultipliers, 1, residuals);
-		addRows(equalities, this.equalityMultipliers, 1, residuals);
+		this.#cone.addInnerProducts(this.x, residuals);
+		addRows(rows, this.rows.multipliers, residuals);
+		addRows(equalities, this.equalityMultipliers, residuals);
 		return residuals;
 	}
 
@@ -129,96 +79,72 @@ export class InteriorPoint implements NewtonState {
 			iteration,
 			moments: this.y,
 			multiplier: this.x,
-			rowMultipliers: this.rowMultipliers,
+			rowMultipliers: this.rows.multipliers,
 			equalityMultipliers: this.equalityMultipliers,
-			primal: dot(this.#programme.objective, this.y),
+			primal: dot(this.#cone.objective, this.y),
 			dual: residuals[0] ?? 0,
 			residual: largestMagnitude(residuals.subarray(1))
 		};
 	}
 
 	complementarity(): number {
-		const products = this.#kernels.dot(this.x, this.#s) + dot(this.rowMultipliers, this.rowSlack);
-		return products / (this.#n + this.rowSlack.length);
-	}
-
-	#largestStep(inverse: Float64Array, direction: Float64Array): number {
-		return this.#kernels.largestStep(inverse, direction, this.#stepScratch, this.#n);
-	}
-
-	multiplierStep(direction: Direction): number {
-		let step = this.#largestStep(this.#inverseX, direction.dx);
-		this.rowMultipliers.forEach((z, j) => {
-			const dz = direction.rowMultipliers[j] ?? 0;
-			if (dz < 0) step = Math.min(step, -z / dz);
-		});
-		return step;
-	}
-
-	slackStep(direction: Direction): number {
-		let step = this.#largestStep(this.#inverseS, direction.ds);
-		this.rowSlack.forEach((s, j) => {
-			const ds = direction.rowSlack[j] ?? 0;
-			if (ds < 0) step = Math.min(step, -s / ds);
-		});
-		return step;
+		return (this.#cone.kernels.dot(this.x, this.#s) + this.rows.complementarity()) / this.#rank;
 	}
 
 	complementarityAfter(direction: Direction, primalStep: number, dualStep: number): number {
 		const { dx, ds } = direction;
-		const kernels = this.#kernels;
-		let sum =
+		const { kernels } = this.#cone;
+		const sum =
 			kernels.dot(this.x, this.#s) +
 			primalStep * kernels.dot(dx, this.#s) +
 			dualStep * kernels.dot(this.x, ds) +
 			primalStep * dualStep * kernels.dot(dx, ds);
-		this.rowSlack.forEach((s, j) => {
-			sum +=
-				(s + dualStep * (direction.rowSlack[j] ?? 0)) *
-				((this.rowMultipliers[j] ?? 0) + primalStep * (direction.rowMultipliers[j] ?? 0));
-		});
-		return sum / (this.#n + this.rowSlack.length);
+		return this.rows.addComplementarityAfter(sum, direction, primalStep, dualStep) / this.#rank;
+	}
+
+	multiplierStep(direction: Direction): number {
+		const step = this.#cone.largestStep(this.#inverseX, direction.dx);
+		return Math.min(step, this.rows.multiplierStep(direction));
+	}
+
+	slackStep(direction: Direction): number {
+		const step = this.#cone.largestStep(this.#inverseS, direction.ds);
+		return Math.min(step, this.rows.slackStep(direction));
 	}
 
 	/** Returns the step taken; 0 leaves everything as it was. */
 	moveMultiplier(direction: Direction, wanted: number): number {
-		const n = this.#n;
-		const kernels = this.#kernels;
 		const before = this.#before;
 		before.set(this.x);
-		const rowsBefore = this.rowMultipliers.slice();
+		const rowsBefore = this.rows.multipliers.slice();
 		const equalitiesBefore = this.equalityMultipliers.slice();
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
+		const taken = backtrack(wanted, (step) => {
 			this.x.set(before);
-			kernels.addScaled(this.x, step, direction.dx);
-			this.rowMultipliers.set(rowsBefore);
-			addScaled(this.rowMultipliers, step, direction.rowMultipliers);
+			this.#cone.kernels.addScaled(this.x, step, direction.dx);
+			this.rows.moveMultipliers(rowsBefore, step, direction);
 			this.equalityMultipliers.set(equalitiesBefore);
 			addScaled(this.equalityMultipliers, step, direction.equalityMultipliers);
 			this.#unprojected.set(this.x);
-			this.#project();
-			this.#factor.set(this.x);
-			if (!kernels.factorCholesky(this.#factor, n)) {
-				this.x.set(this.#unprojected);
-				this.#factor.set(this.x);
-				if (!kernels.factorCholesky(this.#factor, n)) continue;
-			}
-			kernels.invertFactor(this.#factor, n, this.#inverseX);
-			return step;
+			this.#cone.project(this.#dualResiduals(), this.x);
+			if (this.#factorMultiplier()) return true;
+			this.x.set(this.#unprojected);
+			return this.#factorMultiplier();
+		});
+		if (taken === 0) {
+			this.x.set(before);
+			this.rows.multipliers.set(rowsBefore);
+			this.equalityMultipliers.set(equalitiesBefore);
 		}
-		this.x.set(before);
-		this.rowMultipliers.set(rowsBefore);
-		this.equalityMultipliers.set(equalitiesBefore);
-		return 0;
+		return taken;
 	}
 
 	/** c + <F, X + dX> + rows + equalities: what a full step would leave of the dual's equalities. */
 	residualsAfter(direction: Direction): Float64Array {
-		const { equalities, rows } = this.#programme;
+		const { equalities, rows } = this.#cone;
 		const residuals = this.#dualResiduals();
-		addInnerProducts(this.#programme, direction.dx, 1, residuals);
-		addRows(rows, direction.rowMultipliers, 1, residuals);
-		addRows(equalities, direction.equalityMultipliers, 1, residuals);
+		this.#cone.addInnerProducts(direction.dx, residuals);
+		addRows(rows, direction.rowMultipliers, residuals);
+		addRows(equalities, direction.equalityMultipliers, residuals);
 		return residuals;
 	}
 
@@ -227,42 +153,26 @@ export class InteriorPoint implements NewtonState {
 	 * meet the equalities.
 	 */
 	projectDirection(direction: Direction): void {
-		this.#subtractAverages(direction.dx, this.residualsAfter(direction));
+		this.#cone.project(this.residualsAfter(direction), direction.dx);
 	}
 
-	/** Moves X to the nearest matrix that meets the linear equalities. */
-	#project(): void {
-		this.#subtractAverages(this.x, this.#dualResiduals());
-	}
-
-	#subtractAverages(matrix: Float64Array, residuals: Float64Array): void {
-		const { index } = this.#programme;
-		for (let cell = 0; cell < index.length; cell++) {
-			const moment = index[cell] ?? -1;
-			if (moment > 0)
-				matrix[cell] = (matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (this.#cells[moment] ?? 1);
-		}
-	}
-
+	/** Returns the step taken; 0 leaves everything as it was. */
 	moveMoments(direction: Direction, wanted: number): number {
 		const before = this.y.slice();
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
+		const taken = backtrack(wanted, (step) => {
 			this.y.set(before);
 			addScaled(this.y, step, direction.dy);
-			fillMoments(this.#programme, this.y, this.#s);
-			const slacks = this.#programme.rows.map(
-				(row, j) => evaluateRow(row, this.y) - (1 - step) * (this.rowResidual[j] ?? 0)
-			);
-			if (slacks.some((slack) => !(slack > 0)) || !this.#factorSlack()) continue;
-			slacks.forEach((slack, j) => {
-				this.rowSlack[j] = slack;
-				this.rowResidual[j] = (1 - step) * (this.rowResidual[j] ?? 0);
-			});
-			return step;
+			this.#cone.fill(this.y, this.#s);
+			const keepSlack = this.rows.moveSlack(this.y, step);
+			if (!keepSlack || !this.#factorSlack()) return false;
+			keepSlack();
+			return true;
+		});
+		if (taken === 0) {
+			this.y.set(before);
+			this.#cone.fill(this.y, this.#s);
+			this.#factorSlack();
 		}
-		this.y.set(before);
-		fillMoments(this.#programme, this.y, this.#s);
-		this.#factorSlack();
-		return 0;
+		return taken;
 	}
 }

@@ -9,8 +9,9 @@ import { familyFunctional } from '../scenario/families';
 import { makeFunctional, type Functional } from '../scenario/functional';
 import { functionalToMaximise } from '../scenario/problem-functional';
 import { LevelOneDual } from './level-one-dual';
-import type { Iterate } from './interior-point';
-import { SemidefiniteSolver } from './semidefinite-programme';
+import type { Iterate } from './interior-point-loop';
+import { MomentCone } from './moment-cone';
+import { SemidefiniteSolver } from './semidefinite-solver';
 
 const OPTIONS = { tolerance: 1e-10, mostIterations: 60 };
 /** Of the optimal values of two methods that end at OPTIONS.tolerance, relative. */
@@ -50,7 +51,10 @@ const generally = (problem: MomentProblem) =>
 	solved(
 		problem,
 		(visit) =>
-			new SemidefiniteSolver(problem.programme, problem.start, { poll: () => undefined, visit })
+			new SemidefiniteSolver(new MomentCone(problem.programme), problem.start, {
+				poll: () => undefined,
+				visit
+			})
 	);
 
 describe('published values', () => {

@@ -1,16 +1,20 @@
 import { stepScratch } from '../linalg/kernels/plain-step';
 import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
-import type { Iterate } from './interior-point';
+import {
+	backtrack,
+	mehrotraCentring,
+	runInteriorPoint,
+	SMALLEST_STEP,
+	type InteriorPointMethod,
+	type Iterate,
+	type SolverEnd,
+	type SolverHooks,
+	type SolverOptions
+} from './interior-point-loop';
 import type { MomentProgramme } from './moment-programme';
-import type { Ending, SolverHooks, SolverOptions } from './semidefinite-programme';
 
 /** Fraction of the way to the boundary that a step takes. */
 const STEP_FRACTION = 0.95;
-const BACKTRACK = 0.8;
-/** Below this step in both variables rounding has won. */
-const SMALLEST_STEP = 1e-6;
-/** Smallest centring: below it the corrector's second-order terms are noise. */
-const LEAST_CENTRING = 1e-6;
 /** The start's diagonal exceeds what dominance needs by this share. */
 const DOMINANCE = 1.1;
 
@@ -32,7 +36,7 @@ function demandOf(n: number): KernelDemand {
  * Tsirelson, J. Soviet Math. 36, 557 (1987); Wehner, Phys. Rev. A 73, 022110 (2006); the method
  * after Helmberg, Rendl, Vanderbei, Wolkowicz, SIAM J. Optim. 6, 342 (1996).
  */
-export class LevelOneDual {
+export class LevelOneDual implements InteriorPointMethod {
 	readonly #programme: MomentProgramme;
 	readonly #hooks: SolverHooks;
 	readonly #kernels: Kernels;
@@ -93,29 +97,15 @@ export class LevelOneDual {
 	}
 
 	/** Once only: the iterates' arrays are given back when it ends. */
-	run(options: SolverOptions): { ending: Ending; iterations: number } {
+	run(options: SolverOptions): SolverEnd {
 		try {
-			return this.#iterate(options);
+			return runInteriorPoint(this, this.#hooks, options);
 		} finally {
 			this.#kernels.release();
 		}
 	}
 
-	#iterate(options: SolverOptions): { ending: Ending; iterations: number } {
-		this.#begin();
-		for (let iteration = 0; ; iteration++) {
-			this.#hooks.poll();
-			const iterate = this.#measure(iteration);
-			if (this.#hooks.visit(iterate)) return { ending: 'accepted', iterations: iteration };
-			if (iterate.dual - iterate.primal <= options.tolerance * (1 + Math.abs(iterate.primal)))
-				return { ending: 'converged', iterations: iteration };
-			if (iteration === options.mostIterations)
-				return { ending: 'iterations', iterations: iteration };
-			if (!this.#advance()) return { ending: 'stalled', iterations: iteration };
-		}
-	}
-
-	#begin(): void {
+	begin(): boolean {
 		const n = this.#n;
 		let scale = 0;
 		for (const value of this.#c) scale = Math.max(scale, Math.abs(value));
@@ -125,8 +115,7 @@ export class LevelOneDual {
 			this.#lambda[i] = DOMINANCE * sum + (scale || 1);
 			this.#x[i * n + i] = 1;
 		}
-		this.#factorX();
-		this.#factorZ();
+		return this.#factorX() && this.#factorZ();
 	}
 
 	#factorX(): boolean {
@@ -148,7 +137,7 @@ export class LevelOneDual {
 		return true;
 	}
 
-	#advance(): boolean {
+	advance(): boolean {
 		const n = this.#n;
 		for (let cell = 0; cell < n * n; cell++)
 			this.#schur[cell] = (this.#w[cell] ?? 0) * (this.#x[cell] ?? 0);
@@ -195,16 +184,13 @@ export class LevelOneDual {
 		return direction;
 	}
 
-	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
 	#centring({ dx, dLambda }: Direction, mu: number): number {
 		const n = this.#n;
 		const stepX = Math.min(1, this.#largestStep(this.#inverseX, dx));
 		const stepZ = Math.min(1, this.#lambdaStep(dLambda));
 		let ahead = this.#kernels.dot(this.#x, this.#z) + stepX * this.#kernels.dot(dx, this.#z);
 		for (let i = 0; i < n; i++) ahead += stepZ * (dLambda[i] ?? 0); // X keeps its unit diagonal
-		const ratio = Math.max(0, ahead / n / mu);
-		const power = Math.max(1, 3 * Math.min(stepX, stepZ) ** 2);
-		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
+		return mehrotraCentring(ahead / n / mu, Math.min(stepX, stepZ));
 	}
 
 	#largestStep(inverse: Float64Array, direction: Float64Array): number {
@@ -220,29 +206,31 @@ export class LevelOneDual {
 	#moveX(dx: Float64Array): number {
 		this.#work.set(this.#x);
 		const wanted = Math.min(1, STEP_FRACTION * this.#largestStep(this.#inverseX, dx));
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
+		const taken = backtrack(wanted, (step) => {
 			this.#x.set(this.#work);
 			this.#kernels.addScaled(this.#x, step, dx);
-			if (this.#factorX()) return step;
-		}
-		this.#x.set(this.#work);
-		return 0;
+			return this.#factorX();
+		});
+		if (taken === 0) this.#x.set(this.#work);
+		return taken;
 	}
 
 	#moveLambda(dLambda: Float64Array): number {
 		const before = this.#lambda.slice();
 		const wanted = Math.min(1, STEP_FRACTION * this.#lambdaStep(dLambda));
-		for (let step = wanted; step > SMALLEST_STEP; step *= BACKTRACK) {
+		const taken = backtrack(wanted, (step) => {
 			this.#lambda.set(before);
 			this.#kernels.addScaled(this.#lambda, step, dLambda);
-			if (this.#factorZ()) return step;
+			return this.#factorZ();
+		});
+		if (taken === 0) {
+			this.#lambda.set(before);
+			this.#factorZ();
 		}
-		this.#lambda.set(before);
-		this.#factorZ();
-		return 0;
+		return taken;
 	}
 
-	#measure(iteration: number): Iterate {
+	measure(iteration: number): Iterate {
 		const empty = new Float64Array(0);
 		return {
 			iteration,

@@ -45,29 +45,27 @@ export function fillDirection(programme: MomentProgramme, dy: Float64Array, out:
 	}
 }
 
-/** out_i += factor <F_i, matrix>, F_0 included. */
+/** out_i += <F_i, matrix>, F_0 included. */
 export function addInnerProducts(
 	programme: MomentProgramme,
 	matrix: Float64Array,
-	factor: number,
 	out: Float64Array
 ): void {
 	const { index } = programme;
 	for (let cell = 0; cell < index.length; cell++) {
 		const moment = index[cell] ?? -1;
-		if (moment >= 0) out[moment] = (out[moment] ?? 0) + factor * (matrix[cell] ?? 0);
+		if (moment >= 0) out[moment] = (out[moment] ?? 0) + (matrix[cell] ?? 0);
 	}
 }
 
-/** out += factor * sum_j weights_j row_j. */
+/** out += sum_j weights_j row_j. */
 export function addRows(
 	rows: readonly SparseRow[],
 	weights: Float64Array,
-	factor: number,
 	out: Float64Array
 ): void {
 	rows.forEach((row, j) => {
-		const weight = factor * (weights[j] ?? 0);
+		const weight = weights[j] ?? 0;
 		const { columns, values } = row;
 		for (let at = 0; at < columns.length; at++) {
 			const column = columns[at] ?? 0;
@@ -81,4 +79,18 @@ export function countCells(programme: MomentProgramme): Int32Array {
 	const counts = new Int32Array(programme.unknowns + 1);
 	for (const moment of programme.index) if (moment >= 0) counts[moment] = (counts[moment] ?? 0) + 1;
 	return counts;
+}
+
+/** Moves a matrix to the nearest one whose <F_i, matrix> are smaller by `residuals`, i > 0. */
+export function subtractAverages(
+	{ index }: MomentProgramme,
+	cells: Int32Array,
+	residuals: Float64Array,
+	matrix: Float64Array
+): void {
+	for (let cell = 0; cell < index.length; cell++) {
+		const moment = index[cell] ?? -1;
+		if (moment > 0)
+			matrix[cell] = (matrix[cell] ?? 0) - (residuals[moment] ?? 0) / (cells[moment] ?? 1);
+	}
 }

@@ -1,4 +1,4 @@
-import { factorCholesky, solveFactored } from '../linalg/cholesky';
+import type { Kernels } from '../linalg/kernels/kernels';
 
 /**
  * Additions to the diagonal of the Schur complement, tried when it is not positive: relative to each
@@ -16,7 +16,6 @@ const ADDITIONS = [
 	{ own: 0, largest: 1e-14 },
 	{ own: 0, largest: 1e-13 }
 ];
-const TILE = 32; // both triangles of a tile stay in the cache
 
 /**
  * A symmetric positive linear system that may be singular to working precision. Whoever uses it
@@ -26,29 +25,29 @@ export class RegularisedSystem {
 	/** Lower triangle: the factor; strict upper: the matrix itself, its diagonal in `#diagonal`. */
 	readonly matrix: Float64Array;
 	readonly #size: number;
-	readonly #diagonal: Float64Array;
+	readonly #kernels: Kernels;
 	readonly #poll: () => void;
+	readonly #diagonal: Float64Array;
+	readonly #solution: Float64Array;
+	readonly #rest: Float64Array;
 	/** Place in ADDITIONS. */
 	#addition = 0;
 	#altered = false;
 
-	constructor(size: number, poll: () => void) {
-		this.matrix = new Float64Array(size * size);
+	constructor(size: number, kernels: Kernels, poll: () => void) {
+		this.matrix = kernels.doubles(size * size);
 		this.#size = size;
-		this.#diagonal = new Float64Array(size);
+		this.#kernels = kernels;
 		this.#poll = poll;
+		this.#diagonal = kernels.doubles(size);
+		this.#solution = kernels.doubles(size);
+		this.#rest = kernels.doubles(size);
 	}
 
 	/** Takes over what was written; false when it is singular whatever is added. */
 	factorise(): boolean {
 		const n = this.#size;
-		for (let i0 = 0; i0 < n; i0 += TILE) {
-			this.#poll();
-			for (let j0 = 0; j0 <= i0; j0 += TILE)
-				for (let i = i0; i < Math.min(i0 + TILE, n); i++)
-					for (let j = j0; j < Math.min(j0 + TILE, i); j++)
-						this.matrix[j * n + i] = this.matrix[i * n + j] ?? 0;
-		}
+		this.#kernels.mirror(this.matrix, n, 'upper');
 		for (let i = 0; i < n; i++) this.#diagonal[i] = this.matrix[i * n + i] ?? 0;
 		this.#altered = false;
 		return this.#factor();
@@ -66,7 +65,7 @@ export class RegularisedSystem {
 			const { own, largest } = ADDITIONS[this.#addition] ?? NO_ADDITION;
 			if (this.#altered || this.#addition > 0) this.#restore(own, largest);
 			this.#altered = true;
-			if (factorCholesky(this.matrix, this.#size, this.#poll)) return true;
+			if (this.#kernels.factorCholesky(this.matrix, this.#size, this.#poll)) return true;
 		}
 		this.#addition = ADDITIONS.length - 1;
 		return false;
@@ -75,34 +74,29 @@ export class RegularisedSystem {
 	#restore(own: number, largest: number): void {
 		const n = this.#size;
 		const added = largest * this.#diagonal.reduce((a, value) => Math.max(a, value), 0);
-		for (let i = 0; i < n; i++) {
-			for (let j = 0; j < i; j++) this.matrix[i * n + j] = this.matrix[j * n + i] ?? 0;
+		this.#kernels.mirror(this.matrix, n, 'lower');
+		for (let i = 0; i < n; i++)
 			this.matrix[i * n + i] = (this.#diagonal[i] ?? 0) * (1 + own) + added;
-		}
 	}
 
-	/** Solves, with one step of iterative refinement. */
+	/** Solves roughly, with no refinement. @returns an array that the next solve overwrites. */
+	solveOnce(rhs: Float64Array): Float64Array {
+		this.#solution.set(rhs);
+		this.#kernels.solveFactored(this.matrix, this.#size, this.#solution);
+		return this.#solution;
+	}
+
+	/** Solves, with one step of iterative refinement. @returns an array as `solveOnce` does. */
 	solve(rhs: Float64Array): Float64Array {
 		const n = this.#size;
-		const { matrix } = this;
-		const solution = rhs.slice();
-		solveFactored(matrix, n, solution);
+		const rest = this.#rest;
+		const solution = this.solveOnce(rhs);
+		rest.set(rhs);
 		this.#poll();
-		const rest = rhs.slice();
-		for (let i = 0; i < n; i++) {
-			const row = i * n;
-			const value = solution[i] ?? 0;
-			let sum = (this.#diagonal[i] ?? 0) * value;
-			for (let j = i + 1; j < n; j++) {
-				const entry = matrix[row + j] ?? 0;
-				sum += entry * (solution[j] ?? 0);
-				rest[j] = (rest[j] ?? 0) - entry * value;
-			}
-			rest[i] = (rest[i] ?? 0) - sum;
-		}
+		this.#kernels.subtractProduct(this.matrix, this.#diagonal, solution, rest, n);
 		this.#poll();
-		solveFactored(matrix, n, rest);
-		for (let i = 0; i < n; i++) solution[i] = (solution[i] ?? 0) + (rest[i] ?? 0);
+		this.#kernels.solveFactored(this.matrix, n, rest);
+		this.#kernels.addScaled(solution, 1, rest);
 		return solution;
 	}
 }

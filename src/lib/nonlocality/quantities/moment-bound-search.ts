@@ -1,7 +1,7 @@
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { MomentCertificate } from '../certificates/types';
 import type { MomentProgramme } from '../optimization/moment-programme';
-import type { Ending, Iterate } from '../optimization/semidefinite-programme';
+import type { Ending, Iterate } from '../optimization/interior-point-loop';
 import type { Functional } from '../scenario/functional';
 import { exactMomentBound, type ExactBound } from './exact-moments';
 import { provenFeasibleValue, provenUpperBound, type Multipliers } from './guaranteed-moments';

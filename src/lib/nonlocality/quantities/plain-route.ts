@@ -1,4 +1,5 @@
-import { SemidefiniteSolver } from '../optimization/semidefinite-programme';
+import { MomentCone } from '../optimization/moment-cone';
+import { SemidefiniteSolver } from '../optimization/semidefinite-solver';
 import type { Route } from './moment-bound-search';
 import { refuseManyMoments } from './moment-matrix';
 import type { MomentProblem } from './moment-problem';
@@ -17,7 +18,7 @@ export function plainRoute(problem: MomentProblem): Route {
 		method: {},
 		isPlain: true,
 		run: (scaled, _scale, hooks) =>
-			new SemidefiniteSolver(scaled, problem.start, hooks).run({
+			new SemidefiniteSolver(new MomentCone(scaled), problem.start, hooks).run({
 				tolerance: SOLVER_TOLERANCE,
 				mostIterations: MOST_ITERATIONS
 			})

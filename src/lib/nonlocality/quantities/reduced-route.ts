@@ -1,7 +1,13 @@
-import { addInnerProducts, addRows, countCells } from '../optimization/moment-programme';
-import type { MomentProgramme } from '../optimization/moment-programme';
-import { BlockSolver } from '../optimization/block-solver';
-import type { Iterate } from '../optimization/semidefinite-programme';
+import { BlockCone } from '../optimization/block-cone';
+import type { Iterate } from '../optimization/interior-point-loop';
+import {
+	addInnerProducts,
+	addRows,
+	countCells,
+	subtractAverages,
+	type MomentProgramme
+} from '../optimization/moment-programme';
+import { SemidefiniteSolver } from '../optimization/semidefinite-solver';
 import type { Route } from './moment-bound-search';
 import { MOST_ITERATIONS, SOLVER_TOLERANCE } from './plain-route';
 import type { SymmetryReduction } from './symmetry-reduction';
@@ -34,7 +40,7 @@ export function reducedRoute(reduction: SymmetryReduction): Route {
 			function* earlier(): Iterable<Iterate> {
 				for (const iterate of passed.toReversed()) yield lifted(scaled, reduction, iterate);
 			}
-			const solver = new BlockSolver(own, start, {
+			const solver = new SemidefiniteSolver(new BlockCone(own), start, {
 				poll: hooks.poll,
 				visit: (iterate) => {
 					lift = () => lifted(scaled, reduction, iterate);
@@ -80,13 +86,9 @@ function lifted(
 	const multiplier = reduction.liftMultiplier(iterate.multiplier);
 	const rowMultipliers = reduction.liftRowMultipliers(iterate.rowMultipliers);
 	const residuals = programme.objective.slice();
-	addInnerProducts(programme, multiplier, 1, residuals);
-	addRows(programme.rows, rowMultipliers, 1, residuals);
-	const counts = countCells(programme);
-	programme.index.forEach((moment, cell) => {
-		if (moment > 0)
-			multiplier[cell] = (multiplier[cell] ?? 0) - (residuals[moment] ?? 0) / (counts[moment] ?? 1);
-	});
+	addInnerProducts(programme, multiplier, residuals);
+	addRows(programme.rows, rowMultipliers, residuals);
+	subtractAverages(programme, countCells(programme), residuals, multiplier);
 	return {
 		...iterate,
 		multiplier,

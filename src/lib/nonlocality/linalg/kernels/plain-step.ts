@@ -1,5 +1,5 @@
-import { smallestTridiagonalEigenvalue } from '../symmetric-eigen';
 import { dot } from '../dense';
+import { smallestTridiagonalEigenvalue, tailOfEigenvector } from '../tridiagonal-eigen';
 
 /** Enough Lanczos steps to know the end of the spectrum to a per cent; few matrices need more. */
 export const MOST_STEPS = 40;
@@ -100,28 +100,4 @@ function orthogonalise(basis: Float64Array, count: number, v: Float64Array, n: n
 			for (let i = 0; i < n; i++) v[i] = (v[i] ?? 0) - along * (basis[row + i] ?? 0);
 		}
 	}
-}
-
-/**
- * |last component| of the unit eigenvector: times the next norm it bounds the eigenvalue's error.
- */
-function tailOfEigenvector(
-	diagonal: Float64Array,
-	offDiagonal: Float64Array,
-	n: number,
-	eigenvalue: number
-): number {
-	let previous = 0;
-	let current = 1;
-	let squares = 1;
-	for (let i = 0; i + 1 < n; i++) {
-		const off = offDiagonal[i] ?? 0;
-		if (off === 0) return 0;
-		const before = i > 0 ? (offDiagonal[i - 1] ?? 0) * previous : 0;
-		const next = -(((diagonal[i] ?? 0) - eigenvalue) * current + before) / off;
-		previous = current;
-		current = next;
-		squares += next * next;
-	}
-	return Math.abs(current) / Math.sqrt(squares);
 }

@@ -1,46 +1,18 @@
 import { largestMagnitude } from '../linalg/dense';
-import { makeKernels, type KernelDemand, type Kernels } from '../linalg/kernels/kernels';
-import { stepScratch } from '../linalg/kernels/plain-step';
-import { InteriorPoint, SMALLEST_STEP, type Iterate } from './interior-point';
-import type { MomentProgramme } from './moment-programme';
+import { InteriorPoint } from './interior-point';
+import {
+	mehrotraCentring,
+	runInteriorPoint,
+	SMALLEST_STEP,
+	type InteriorPointMethod,
+	type Iterate,
+	type SolverEnd,
+	type SolverHooks,
+	type SolverOptions
+} from './interior-point-loop';
+import type { MatrixCone } from './matrix-cone';
 import { makeDirection, NewtonSystem, type Direction } from './newton-system';
 
-export type { Iterate } from './interior-point';
-
-export interface SolverHooks {
-	/** Called at least every few milliseconds of work; stops the solver by throwing. */
-	poll(): void;
-	/** Sees every iterate; true ends the iteration. */
-	visit(iterate: Iterate): boolean;
-}
-
-export type Ending = 'converged' | 'accepted' | 'stalled' | 'iterations';
-
-export interface SolverOptions {
-	/** Relative gap and residual at which the iteration ends by itself. */
-	readonly tolerance: number;
-	readonly mostIterations: number;
-}
-
-/** What the solver takes of the kernels' memory, generously: n x n matrices, Lanczos' basis, lists. */
-function demandOf({ size: n, unknowns: m }: MomentProgramme): KernelDemand {
-	const square = (n + 3) ** 2;
-	return {
-		doubles: m * m + 30 * m + 30 * square + stepScratch(n),
-		arrays: 200,
-		order: Math.max(n, m)
-	};
-}
-
-/**
- * Fraction of the way to the boundary that a step takes: little more than LEAST_FRACTION where the
- * predictor is stopped early, MORE_FRACTION more where it gets all the way (Toh, Todd, Tutuncu,
- * Optim. Methods Softw. 11, 545 (1999)).
- */
-const LEAST_FRACTION = 0.9;
-const MORE_FRACTION = 0.09;
-/** Smallest centring: below it the corrector's second-order terms are noise. */
-const LEAST_CENTRING = 1e-6;
 /** Further corrections, each far cheaper than a new factorisation, while steps stay short ... */
 const MOST_CORRECTIONS = 2;
 const LONG_STEPS = 0.95;
@@ -58,63 +30,51 @@ const WORTHWHILE_REFINEMENT = 0.5;
 /**
  * Primal-dual interior-point method: the HKM direction with Mehrotra's predictor and corrector (the
  * corrector repeated where that lengthens the steps), started from a strictly feasible y (rows may
- * start infeasible) and X = Gamma(y)^-1. The multiplier is kept on its linear equalities by
- * projection, which the disjoint supports make an average over cells.
+ * start infeasible) and X = F(y)^-1. The multiplier is kept on its linear equalities by projection.
  * Helmberg, Rendl, Vanderbei, Wolkowicz, SIAM J. Optim. 6, 342 (1996); Mehrotra's corrector as in
  * Fujisawa, Kojima, Nakata, Yamashita, SDPA manual (2002).
  * The objective should be scaled to entries of about 1.
  */
-export class SemidefiniteSolver {
+export class SemidefiniteSolver implements InteriorPointMethod {
 	readonly #hooks: SolverHooks;
-	readonly #kernels: Kernels;
+	readonly #cone: MatrixCone;
 	readonly #point: InteriorPoint;
 	readonly #newton: NewtonSystem;
 	readonly #attempts: readonly [Attempt, Attempt];
 
-	/** @param start moments with Gamma > 0, `start[0] = 1`. */
-	constructor(programme: MomentProgramme, start: Float64Array, hooks: SolverHooks) {
-		const kernels = makeKernels(demandOf(programme));
+	/** @param start unknowns with F > 0, `start[0] = 1`. */
+	constructor(cone: MatrixCone, start: Float64Array, hooks: SolverHooks) {
 		const attempt = () => ({
-			direction: makeDirection(programme, kernels),
-			spare: makeDirection(programme, kernels),
-			fraction: LEAST_FRACTION,
+			direction: makeDirection(cone),
+			spare: makeDirection(cone),
+			fraction: cone.stepFraction.least,
 			error: Infinity
 		});
 		this.#hooks = hooks;
-		this.#kernels = kernels;
-		this.#point = new InteriorPoint(programme, start, kernels);
-		this.#newton = new NewtonSystem(programme, kernels, () => hooks.poll());
+		this.#cone = cone;
+		this.#point = new InteriorPoint(cone, start);
+		this.#newton = new NewtonSystem(cone, () => hooks.poll());
 		this.#attempts = [attempt(), attempt()];
 	}
 
 	/** Once only: the iterates' arrays are given back when it ends. */
-	run(options: SolverOptions): { ending: Ending; iterations: number } {
+	run(options: SolverOptions): SolverEnd {
 		try {
-			return this.#iterate(options);
+			return runInteriorPoint(this, this.#hooks, options);
 		} finally {
-			this.#kernels.release();
+			this.#cone.kernels.release();
 		}
 	}
 
-	#iterate(options: SolverOptions): { ending: Ending; iterations: number } {
-		if (!this.#point.begin()) return { ending: 'stalled', iterations: 0 };
-		for (let iteration = 0; ; iteration++) {
-			this.#hooks.poll();
-			const iterate = this.#point.measure(iteration);
-			if (this.#hooks.visit(iterate)) return { ending: 'accepted', iterations: iteration };
-			const scale = 1 + Math.abs(iterate.primal);
-			if (
-				Math.abs(iterate.dual - iterate.primal) <= options.tolerance * scale &&
-				iterate.residual <= options.tolerance
-			)
-				return { ending: 'converged', iterations: iteration };
-			if (iteration === options.mostIterations)
-				return { ending: 'iterations', iterations: iteration };
-			if (!this.#advance()) return { ending: 'stalled', iterations: iteration };
-		}
+	begin(): boolean {
+		return this.#point.begin();
 	}
 
-	#advance(): boolean {
+	measure(iteration: number): Iterate {
+		return this.#point.measure(iteration);
+	}
+
+	advance(): boolean {
 		const point = this.#point;
 		if (!this.#newton.prepare(point)) return false;
 		const tolerable = TOLERABLE_ERROR * point.complementarity();
@@ -138,7 +98,8 @@ export class SemidefiniteSolver {
 		let { direction, spare } = attempt;
 		this.#newton.solve(point, 0, null, spare);
 		const ahead = this.#steps(spare, 1);
-		const fraction = LEAST_FRACTION + MORE_FRACTION * Math.min(ahead.multiplier, ahead.moments);
+		const { least, more } = this.#cone.stepFraction;
+		const fraction = least + more * Math.min(ahead.multiplier, ahead.moments);
 		const target = this.#centring(spare, ahead) * point.complementarity();
 		this.#newton.solve(point, target, spare, direction);
 		let steps = this.#steps(direction, fraction);
@@ -175,13 +136,10 @@ export class SemidefiniteSolver {
 		}
 	}
 
-	/** Mehrotra's choice: little centring when the predictor gets far by itself. */
 	#centring(predictor: Direction, { multiplier, moments }: Steps): number {
 		const point = this.#point;
 		const ahead = point.complementarityAfter(predictor, multiplier, moments);
-		const ratio = Math.max(0, ahead / point.complementarity());
-		const power = Math.max(1, 3 * Math.min(multiplier, moments) ** 2);
-		return Math.min(1, Math.max(LEAST_CENTRING, ratio ** power));
+		return mehrotraCentring(ahead / point.complementarity(), Math.min(multiplier, moments));
 	}
 
 	#steps(direction: Direction, fraction: number): Steps {

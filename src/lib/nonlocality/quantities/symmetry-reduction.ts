@@ -21,7 +21,7 @@ import { wordOrbits, type WordOrbit } from './word-orbits';
 /** Entries of the invariant moment matrix: past this many its lists take a gigabyte. */
 export const MOST_ENTRIES = 2e7;
 /** Two square matrices of this many rows, the linear system and the Gram matrix: 256 MB. */
-export const MOST_INVARIANT_MOMENTS = 4000;
+const MOST_INVARIANT_MOMENTS = 4000;
 /** Rows whose forms on the invariant moments differ by less are the same on average. */
 const SAME_ROW = 1e-9;
 

@@ -1,7 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { exactCoefficient, multiplyCoefficients, negateCoefficient } from '../exact/coefficient';
-import { parseCoefficient } from '../exact/expression';
 import { NotationError, NotationLimitError } from '../exact/notation-error';
 import { ratio } from '../exact/rational';
 import { familyFunctional } from './families';
@@ -11,14 +10,12 @@ import {
 	splitProbabilities
 } from './probability-table';
 import { collinsGisinForm, makeFunctional, type Functional } from './functional';
-import type { Event } from './scenario';
 import {
 	parseCollinsGisin,
 	parseCorrelators,
 	parseProbabilities,
 	printCollinsGisin,
 	printCorrelators,
-	printProbabilities,
 	splitTable
 } from './tables';
 

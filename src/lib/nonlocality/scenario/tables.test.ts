@@ -212,6 +212,9 @@ describe('what cannot be read', () => {
 				]),
 			/row 1, column 1/
 		],
+		[() => parseCorrelators([[1, 2]]), /at least two rows and two columns/],
+		[() => parseProbabilities({}), /table of probabilities is empty/],
+		[() => parseProbabilities({ '0|0': 1 }, [[2], [2]]), /"0\|0" is for 1 parties, not 2/],
 		[() => parseProbabilities({ 'a|b': 1 }), /names no probability/],
 		[() => parseProbabilities({ '0,0|0': 1 }), /names no probability/],
 		[() => parseProbabilities({ '0,0|0,0': 1, '0|0': 1 }), /is for 1 parties, the others for 2/],

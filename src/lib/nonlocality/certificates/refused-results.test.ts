@@ -149,7 +149,7 @@ describe('a strategy in a prescribed state', () => {
 
 	it('is not grown, nor begun from another', async () => {
 		const fixed = { ...seeSaw, state: 'maximally-entangled' } as const;
-		expect(await solve({ ...fixed, grow: [2, 2] }, quietControl)).toMatchObject({
+		expect(await solve({ ...fixed, grow: 2 }, quietControl)).toMatchObject({
 			status: 'failed',
 			reason: 'grow: has no part with a given state or with constraints'
 		});

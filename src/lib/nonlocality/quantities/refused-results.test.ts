@@ -4,10 +4,10 @@ import { CHSH_STRATEGY } from '../../../../tests/factories/chsh-strategy';
 import { problemOn, quietControl } from '../../../../tests/factories/solver-problem';
 import { asResult } from '../../../../tests/support/certificate-changes';
 import { asJson } from '../../../../tests/support/changed-json';
+import { verifyResult } from '../certificates/verify';
 import type { DoneResult, Problem } from '../problem';
-import { solve } from '../quantities/solve';
 import { familyFunctional } from '../scenario/families';
-import { verifyResult } from './verify';
+import { solve } from './solve';
 
 const chsh = problemOn('local', familyFunctional({ name: 'chsh' }));
 

@@ -28,7 +28,13 @@ export default defineConfig({
 	build: { assetsInlineLimit: 0 },
 	test: {
 		expect: { requireAssertions: true },
-		coverage: { provider: 'custom', customProviderModule: './tests/support/coverage-provider.mjs' },
+		coverage: {
+			provider: 'custom',
+			customProviderModule: './tests/support/coverage-provider.mjs',
+			include: ['src/lib/nonlocality/**/*.ts'],
+			// Compiled to WebAssembly, never run as JavaScript; its tests compare it with the plain kernels.
+			exclude: ['**/*.test.ts', 'src/lib/nonlocality/linalg/kernels/assembly/**']
+		},
 		projects: [
 			{
 				extends: true,

@@ -9,6 +9,7 @@ import { downloadCertificate } from '../../src/lib/server/services/submissions/d
 import { loadSubmittedFindings } from '../../src/lib/server/services/submissions/load-submitted-findings';
 import { readCertificate } from '../../src/lib/server/services/submissions/read-certificate';
 import type { ClaimInput } from '../../src/lib/schemas/claim-input';
+import { CHSH_STRATEGY } from '../factories/chsh-strategy';
 import { CH, TSIRELSON, certify, sidesOf, solved } from '../support/certificates';
 import { bibtexOf, claimFields, openServiceWorld, type ServiceWorld } from '../support/service';
 
@@ -132,45 +133,8 @@ describe('a certificate of the command line', () => {
 });
 
 describe('a strategy of one’s own', () => {
-	const half = Math.SQRT1_2;
-	const projector = (angle: number) => {
-		const [c, s] = [Math.cos(angle / 2), Math.sin(angle / 2)];
-		const plus = [
-			[
-				[c * c, 0],
-				[c * s, 0]
-			],
-			[
-				[c * s, 0],
-				[s * s, 0]
-			]
-		];
-		const minus = [
-			[
-				[s * s, 0],
-				[-c * s, 0]
-			],
-			[
-				[-c * s, 0],
-				[c * c, 0]
-			]
-		];
-		return [plus, minus];
-	};
-	// The textbook's: the singlet-like state, Alice at 0 and pi/2, Bob at pi/4 and -pi/4.
-	const box = {
-		family: 'quantum',
-		state: [
-			[half, 0],
-			[0, 0],
-			[0, 0],
-			[half, 0]
-		],
-		measurements: [
-			[projector(0), projector(Math.PI / 2)],
-			[projector(Math.PI / 4), projector(-Math.PI / 4)]
-		]
-	};
+	const { state, measurements } = CHSH_STRATEGY;
+	const box = { family: 'quantum', state, measurements };
 
 	it('evaluated by the command line bounds the maximum from below', async () => {
 		const claim = await claimOf();

@@ -1,4 +1,5 @@
 /** Random single changes of a certificate: each must be caught, or leave a true statement. */
+import fc from 'fast-check';
 import { expect } from 'vitest';
 import type { CheckOutcome } from '../../src/lib/nonlocality/certificates/types';
 import {
@@ -6,8 +7,9 @@ import {
 	parseRational,
 	type Rational
 } from '../../src/lib/nonlocality/exact/rational';
-import type { Result } from '../../src/lib/nonlocality/problem';
-import type { Json } from './changed-json';
+import { verifyResult } from '../../src/lib/nonlocality/certificates/verify';
+import type { DoneResult, Result } from '../../src/lib/nonlocality/problem';
+import { asJson, changedAt, pathsOf, type Json } from './changed-json';
 
 export const asResult = (value: Json): Result => JSON.parse(JSON.stringify(value));
 
@@ -31,4 +33,28 @@ export function expectTrue(outcome: CheckOutcome, result: Result, truth: Rationa
 		if (upper !== null) expect(exactOfDouble(upper).compare(truth)).toBeGreaterThanOrEqual(0);
 	}
 	if (result.exact !== null) expect(parseRational(result.exact)?.equals(truth)).toBe(true);
+}
+
+/** Makes single changes of the result's certificate; more than `least` of them must be caught. */
+export function expectChangesCaught(
+	result: DoneResult,
+	truth: Rational,
+	{ numRuns, seed, least }: { numRuns: number; seed: number; least: number }
+) {
+	const certificate = asJson(result.certificate);
+	const paths = pathsOf(certificate);
+	let caught = 0;
+	fc.assert(
+		fc.property(fc.constantFrom(...paths), fc.constantFrom(...CHANGES), (path, change) => {
+			const other = asResult({
+				...(asJson(result) as { [key: string]: Json }),
+				certificate: changedAt(certificate, path, change)
+			});
+			const outcome = verifyResult(other);
+			if (!outcome.checked) caught++;
+			expectTrue(outcome, other, truth);
+		}),
+		{ numRuns, seed }
+	);
+	expect(caught).toBeGreaterThan(least);
 }

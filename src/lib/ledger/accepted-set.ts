@@ -4,9 +4,9 @@ import type { Enclosure } from './enclosure';
 import type { StatedValue } from './stated-value';
 
 /** An exact value is compared with a computed one to this, relative above 1: what solvers reach. */
-export const EXACT_TOLERANCE: Rational = ratio(1n, 10n ** 7n);
+const EXACT_TOLERANCE: Rational = ratio(1n, 10n ** 7n);
 /** A rounded value is given at most this part of its half-width on top: a solver's own last digit. */
-export const ROUNDED_SHARE: Rational = ratio(1n, 10n);
+const ROUNDED_SHARE: Rational = ratio(1n, 10n);
 
 /** Where the quantity may lie for the claim to hold; null: no end. */
 export interface AcceptedSet {

@@ -35,7 +35,7 @@ export function finiteDecimal(value: Rational, places: number): string | null {
 }
 
 /** The places, at most `places`, that keep a decimal within what a double reads back exactly. */
-export function placesFor(value: Rational, places: number): number {
+function placesFor(value: Rational, places: number): number {
 	const whole = value.abs().floor().n.toString().length;
 	return Math.max(0, Math.min(places, MOST_DIGITS - whole));
 }
@@ -132,11 +132,4 @@ export function showExact(exact: string | Rational, places: number = BOUND_PLACE
 /** For reading: a true minus sign instead of a hyphen in front of a digit or between spaces. */
 export function withMinusSign(text: string): string {
 	return text.replace(/(?<!\de)-(?=[\d.])|(?<= )-(?= )/g, '\u2212');
-}
-
-/** For reading: a thin space between every three digits behind the point (of more than four). */
-export function withThinSpaces(text: string): string {
-	return text.replace(/\.(\d{5,})/g, (_, digits: string) => {
-		return `.${digits.replace(/\d{3}(?=\d)/g, '$&\u2009')}`;
-	});
 }

@@ -19,7 +19,7 @@ export function sameQuantity(a: Problem, b: Problem): boolean {
 }
 
 /** Same sense and constraints; that the functional is the same is the caller's to know. */
-export function comparable(a: Problem, b: Problem): boolean {
+function comparable(a: Problem, b: Problem): boolean {
 	return a.sense === b.sense && JSON.stringify(a.constraints) === JSON.stringify(b.constraints);
 }
 

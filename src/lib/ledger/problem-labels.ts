@@ -2,7 +2,7 @@ import type { Level, Problem } from '../nonlocality/problem';
 import { largestDimensions } from '../nonlocality/scenario/local-dimensions';
 
 /** `1`, `1+AB`, `2 per party`, `the products A, B, AB`. */
-export function levelName(level: Level): string {
+function levelName(level: Level): string {
 	if (typeof level === 'number' || typeof level === 'string') return String(level);
 	if ('perParty' in level)
 		return level.perParty === 1

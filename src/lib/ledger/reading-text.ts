@@ -2,7 +2,7 @@ import { toDecimal, type Rational } from '../nonlocality/exact/rational';
 import { finiteDecimal, showExact, withMinusSign } from './figures';
 
 /** Digits of an end that does not end: as many as a double holds. */
-export const READING_PLACES = 16;
+const READING_PLACES = 16;
 /** A printed value has at most this many digits behind the point, so its ends are finite. */
 const MOST_PLACES = 640;
 

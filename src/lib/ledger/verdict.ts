@@ -95,7 +95,7 @@ function withoutNames(enclosure: Enclosure): Enclosure {
 	};
 }
 
-export function storeReading(reading: StatedValue): Verdict['reading'] {
+function storeReading(reading: StatedValue): Verdict['reading'] {
 	return {
 		printed: reading.printed,
 		low: readingEnd(reading.low, 'lower'),

@@ -3,7 +3,7 @@ import { z } from 'zod';
 export const BOUNDS_PAGE_SIZE = 50;
 
 /** State of the public table of bounds, all of it in the URL. */
-export const boundsQuery = z.object({
+const boundsQuery = z.object({
 	search: z.string().trim().max(200).catch(''),
 	parties: z.enum(['any', '2', '3', 'more']).catch('any'),
 	scenario: z.string().max(200).catch(''),

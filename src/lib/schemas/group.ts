@@ -26,7 +26,7 @@ export const startGroupInput = z.object({
 });
 
 /** Seconds: below, no search gets anywhere; above, one recomputation holds up everybody's. */
-export const GROUP_BUDGET = { least: 5, most: 600 } as const;
+const GROUP_BUDGET = { least: 5, most: 600 } as const;
 
 export const groupSettingsInput = z.object({
 	name: groupName,

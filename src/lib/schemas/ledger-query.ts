@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { VERDICT_STATUSES } from '../ledger/claim';
 import { QUANTITIES, type QuantityKey } from '../ledger/quantities';
 
-export const LEDGER_SORTS = [
+const LEDGER_SORTS = [
 	'newest',
 	'oldest',
 	'number',
@@ -18,7 +18,7 @@ export const PAGE_SIZE = 25;
 const LONGEST_SEARCH = 200;
 
 /** State of the ledger's table, all of it in the URL. A part that can't be read takes its default. */
-export const ledgerQuery = z.object({
+const ledgerQuery = z.object({
 	search: z.string().trim().max(LONGEST_SEARCH).catch(''),
 	status: z.enum(['all', ...VERDICT_STATUSES]).catch('all'),
 	/** As `inequalities.scenario` words it; empty: any. */

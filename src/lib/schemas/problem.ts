@@ -20,7 +20,7 @@ export { ProblemError, ProblemLimitError, UnsolvedQuantityError } from './proble
 export { PROBLEM_LIMITS } from './problem-shape';
 
 /** Quantities of the format that no solver serves yet. */
-export const UNSOLVED_QUANTITIES = [
+const UNSOLVED_QUANTITIES = [
 	'visibility',
 	'efficiency',
 	'information-causality',

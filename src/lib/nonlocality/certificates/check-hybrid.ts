@@ -5,15 +5,7 @@
  * listed anew here.
  */
 import { exactCoefficient } from '../exact/coefficient';
-import {
-	ONE,
-	ZERO,
-	parseRational,
-	printRational,
-	toDoubleDown,
-	toDoubleUp,
-	type Rational
-} from '../exact/rational';
+import { ONE, ZERO, printRational, type Rational } from '../exact/rational';
 import type { ProblemOf } from '../problem';
 import {
 	marginalOf,
@@ -41,6 +33,7 @@ import { digitsOf } from '../scenario/zero-sum-form';
 import { allowanceOf } from './check-deterministic-strategy';
 import { enumerateAgain, exactOf } from './enumerate-again';
 import { verticesOfGroup } from './group-vertices';
+import { outcomeOfTwoSides } from './two-sides';
 import type { CheckOutcome, HybridBipartition, HybridCertificate } from './types';
 
 const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
@@ -65,21 +58,11 @@ export function checkHybrid(
 		? enumerateBipartitions(written)
 		: boundOfBipartitions(written, certificate.bipartitions);
 	if (typeof above === 'string') return refuse(`upper side: ${above}`);
-	const rational = allowance.n === 0n;
-	if (certificate.value !== null) {
-		const stated = parseRational(certificate.value);
-		if (!rational || !stated?.equals(below) || (above && !stated.equals(above)))
-			return refuse(
-				`the lower side is ${printRational(below)}, the upper ${above ? printRational(above) : 'unproved'}, not ${certificate.value}`
-			);
-	}
-	return {
-		checked: true,
-		lower: toDoubleDown(below.sub(allowance)),
-		upper: above && toDoubleUp(above.add(allowance)),
-		exact: rational && above?.equals(below) ? printRational(below) : null,
-		method: methodOf(signalling, above !== null)
-	};
+	return outcomeOfTwoSides(
+		certificate.value,
+		{ below, above, allowance, rational: allowance.n === 0n },
+		methodOf(signalling, above !== null)
+	);
 }
 
 function methodOf(signalling: boolean, bounded: boolean): string {

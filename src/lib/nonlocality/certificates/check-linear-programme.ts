@@ -4,26 +4,19 @@
  * Collins-Gisin coordinates, where what is left over is bounded by its positive entries.
  */
 import { exactCoefficient, multiplyCoefficients, negateCoefficient } from '../exact/coefficient';
-import {
-	ONE,
-	ZERO,
-	exactOfDouble,
-	parseRational,
-	printRational,
-	toDoubleDown,
-	toDoubleUp,
-	type Rational
-} from '../exact/rational';
+import { ONE, ZERO, exactOfDouble, parseRational, type Rational } from '../exact/rational';
 import {
 	collinsGisinForm,
 	makeFunctional,
 	type Functional,
 	type Term
 } from '../scenario/functional';
-import type { Problem, ProblemConstraint } from '../problem';
-import { functionalOfTerms } from '../scenario/problem-terms';
+import type { Problem } from '../problem';
 import type { Event, Scenario } from '../scenario/scenario';
 import { readTable, tableDefect, marginalOf, type ExactTable } from '../scenario/exact-table';
+import { allowanceOf } from './check-deterministic-strategy';
+import { firstIrrational, isBroken, readConstraint, type ReadConstraint } from './read-constraint';
+import { outcomeOfTwoSides } from './two-sides';
 import type { CheckOutcome, LinearProgrammeCertificate } from './types';
 
 const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
@@ -35,11 +28,6 @@ export function checkLinearProgramme(
 	certificate: LinearProgrammeCertificate
 ): CheckOutcome {
 	const rational = g.terms.every(({ coefficient }) => coefficient.exact);
-	// Every probability is at most 1: the doubles of g are off by no more than this in all.
-	const allowance = g.terms.reduce(
-		(sum, { coefficient: c }) => (c.exact ? sum : sum.add(exactOfDouble(c.error))),
-		ZERO
-	);
 	const terms = g.terms.map(({ coefficient: c, events }) => ({
 		events,
 		coefficient: c.exact ? c : exactCoefficient(exactOfDouble(c.value))
@@ -52,32 +40,22 @@ export function checkLinearProgramme(
 	const constraints = problem.constraints.map((constraint) =>
 		readConstraint(g.scenario, constraint)
 	);
-	for (const [k, { form, relation }] of constraints.entries()) {
-		if (form.some(({ coefficient }) => !coefficient.exact))
-			return refuse(`constraint ${k} is irrational`);
-		const sign = valueOf(form, primal).compare(0);
-		if ((relation !== '<=' && sign < 0) || (relation !== '>=' && sign > 0))
-			return refuse(`primal: constraint ${k} is violated`);
-	}
+	const irrational = firstIrrational(constraints);
+	if (irrational >= 0) return refuse(`constraint ${irrational} is irrational`);
+	const broken = constraints.findIndex(({ form, relation }) =>
+		isBroken(relation, valueOf(form.terms, primal))
+	);
+	if (broken >= 0) return refuse(`primal: constraint ${broken} is violated`);
 	const below = valueOf(terms, primal);
 
 	const above = boundOf(g.scenario, terms, constraints, certificate.dual);
 	if (typeof above === 'string') return refuse(`dual: ${above}`);
 
-	if (certificate.value !== null) {
-		const stated = parseRational(certificate.value);
-		if (!rational || !stated?.equals(below) || !stated.equals(above))
-			return refuse(
-				`the two sides are ${printRational(below)} and ${printRational(above)}, not ${certificate.value}`
-			);
-	}
-	return {
-		checked: true,
-		lower: toDoubleDown(below.sub(allowance)),
-		upper: toDoubleUp(above.add(allowance)),
-		exact: rational && below.equals(above) ? printRational(below) : null,
-		method: 'no-signalling behaviour and multipliers evaluated in exact rationals'
-	};
+	return outcomeOfTwoSides(
+		certificate.value,
+		{ below, above, allowance: allowanceOf(g), rational },
+		'no-signalling behaviour and multipliers evaluated in exact rationals'
+	);
 }
 
 function valueOf(terms: readonly Term[], table: ExactTable): Rational {
@@ -121,18 +99,6 @@ function boundOf(
 	return bound;
 }
 
-/** form >= 0, form <= 0 or form = 0. */
-interface ReadConstraint {
-	readonly form: readonly Term[];
-	readonly relation: ProblemConstraint['relation'];
-}
-
-function readConstraint(scenario: Scenario, constraint: ProblemConstraint): ReadConstraint {
-	const { terms, value, relation } = constraint;
-	const form = functionalOfTerms(scenario, [...terms, [`-(${value})`, []] as const]).terms;
-	return { form, relation };
-}
-
 /** The terms that `constraint 0 >=` or `constraint 0 <=` says are non-negative in sum. */
 function readRow(key: string, constraints: readonly ReadConstraint[]): readonly Term[] | null {
 	const match = /^constraint (\d+) (>=|<=)$/.exec(key);
@@ -140,8 +106,8 @@ function readRow(key: string, constraints: readonly ReadConstraint[]): readonly 
 	if (!constraint) return null;
 	const { form, relation } = constraint;
 	if (relation !== '=' && relation !== match?.[2]) return null;
-	if (match?.[2] === '>=') return form;
-	return form.map((term) => ({ ...term, coefficient: negateCoefficient(term.coefficient) }));
+	if (match?.[2] === '>=') return form.terms;
+	return form.terms.map((term) => ({ ...term, coefficient: negateCoefficient(term.coefficient) }));
 }
 
 /** `"a,b|x,y"` as events. */

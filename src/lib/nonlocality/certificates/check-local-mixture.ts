@@ -4,28 +4,16 @@
  * g - sum m_k (form_k - value_k) over all strategies, enumerated again while that is cheap.
  */
 import { exactCoefficient, multiplyCoefficients } from '../exact/coefficient';
-import {
-	ZERO,
-	parseRational,
-	printRational,
-	toDoubleDown,
-	toDoubleUp,
-	type Rational
-} from '../exact/rational';
-import type { ProblemConstraint, ProblemOf } from '../problem';
+import { ZERO, parseRational, printRational, type Rational } from '../exact/rational';
+import type { ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { functionalOfTerms } from '../scenario/problem-terms';
 import { allowanceOf, strategyDefect, valueOfStrategy } from './check-deterministic-strategy';
 import { enumerateAgain } from './enumerate-again';
+import { firstIrrational, isBroken, readConstraint, type ReadConstraint } from './read-constraint';
+import { outcomeOfTwoSides } from './two-sides';
 import type { CheckOutcome, LocalMixtureCertificate } from './types';
 
 const refuse = (reason: string): CheckOutcome => ({ checked: false, reason });
-
-/** form = 0, form <= 0 or form >= 0. */
-interface ReadConstraint {
-	readonly form: Functional;
-	readonly relation: ProblemConstraint['relation'];
-}
 
 /** Proves both sides (the upper of a large enumeration excepted). */
 export function checkLocalMixture(
@@ -33,13 +21,10 @@ export function checkLocalMixture(
 	g: Functional,
 	certificate: LocalMixtureCertificate
 ): CheckOutcome {
-	const constraints = problem.constraints.map(({ terms, relation, value }): ReadConstraint => {
-		const form = functionalOfTerms(g.scenario, [...terms, [`-(${value})`, []] as const]);
-		return { form, relation };
-	});
-	const irrational = constraints.findIndex(({ form }) =>
-		form.terms.some(({ coefficient }) => !coefficient.exact)
+	const constraints = problem.constraints.map((constraint) =>
+		readConstraint(g.scenario, constraint)
 	);
+	const irrational = firstIrrational(constraints);
 	if (irrational >= 0) return refuse(`constraint ${irrational} is irrational`);
 	const below = valueOfMixture(g, constraints, certificate);
 	if (typeof below === 'string') return refuse(`mixture: ${below}`);
@@ -49,22 +34,13 @@ export function checkLocalMixture(
 
 	const allowance = allowanceOf(g);
 	const rational = allowance.n === 0n && g.terms.every(({ coefficient }) => coefficient.exact);
-	if (certificate.value !== null) {
-		const stated = parseRational(certificate.value);
-		if (!rational || !stated?.equals(below) || (above && !stated.equals(above)))
-			return refuse(
-				`the lower side is ${printRational(below)}, the upper ${above ? printRational(above) : 'unproved'}, not ${certificate.value}`
-			);
-	}
-	return {
-		checked: true,
-		lower: toDoubleDown(below.sub(allowance)),
-		upper: above && toDoubleUp(above.add(allowance)),
-		exact: rational && above?.equals(below) ? printRational(below) : null,
-		method: above
+	return outcomeOfTwoSides(
+		certificate.value,
+		{ below, above, allowance, rational },
+		above
 			? 'mixture and multipliers evaluated in exact rationals, all strategies enumerated again'
 			: 'mixture evaluated in exact rationals; only the lower side is checked, the enumeration is too large to repeat here'
-	};
+	);
 }
 
 /** g on the mixture, or what is wrong with it. */
@@ -88,10 +64,7 @@ function valueOfMixture(
 		});
 	}
 	if (!total.equals(1)) return `the weights sum to ${printRational(total)}, not 1`;
-	const broken = constraints.findIndex(({ relation }, k) => {
-		const sign = (sums[k] ?? ZERO).compare(0);
-		return (relation !== '<=' && sign < 0) || (relation !== '>=' && sign > 0);
-	});
+	const broken = constraints.findIndex(({ relation }, k) => isBroken(relation, sums[k] ?? ZERO));
 	return broken < 0 ? value : `constraint ${broken} is violated`;
 }
 

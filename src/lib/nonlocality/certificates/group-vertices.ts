@@ -25,7 +25,7 @@ interface Ray {
 }
 
 /** Every P(a|x) of the scenario, and the number of coordinates, the constant counted. */
-export function probabilityForms(scenario: Scenario): {
+function probabilityForms(scenario: Scenario): {
 	readonly forms: readonly ProbabilityForm[];
 	readonly size: number;
 } {

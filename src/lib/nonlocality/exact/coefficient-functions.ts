@@ -17,8 +17,8 @@ import { ONE, ZERO, numeratorOf, ratio, type Rational } from './rational';
 /** Past these, a short text would make an enormous number, or take a long time. */
 export const LARGEST_EXPONENT = 200;
 export const LARGEST_BITS = 1_100;
-export const LARGEST_PARTS = 16;
-export const LARGEST_FACTORS = 8;
+const LARGEST_PARTS = 16;
+const LARGEST_FACTORS = 8;
 
 const UNIT_ROUNDOFF = 2 ** -53;
 

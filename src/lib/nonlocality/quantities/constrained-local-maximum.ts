@@ -1,6 +1,5 @@
 import { exactCoefficient } from '../exact/coefficient';
-import { ZERO, printRational, ratio, toDouble, toDoubleDown, toDoubleUp } from '../exact/rational';
-import type { Rational } from '../exact/rational';
+import { ZERO, printRational, ratio, type Rational } from '../exact/rational';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import { absoluteSum, integerFunctional, type IntegerFunctional } from '../scenario/fixed-point';
 import {
@@ -10,6 +9,7 @@ import {
 	type Term
 } from '../scenario/functional';
 import { enumerateStrategies } from './enumerate-strategies';
+import { outcomeOfSides } from './exact-sides';
 import { integerConstraints, type IntegerConstraint } from './integer-constraints';
 import { refuseTooMany, reportProgress } from './local-maximum';
 import type { Outcome } from './outcome';
@@ -128,18 +128,10 @@ class MixtureSearch {
 		const unit = ratio(1n, denominator);
 		const [below, above] = [this.#below.value.mul(unit), this.#above.bound.mul(unit)];
 		const allowance = this.#objective.allowance.add(twiceTheErrors(this.#functional));
-		const exact = allowance.n === 0n && below.equals(above) ? printRational(below) : null;
-		const lower = toDoubleDown(below.sub(allowance));
-		const upper = toDoubleUp(above.add(allowance));
+		const sides = outcomeOfSides(below, above, allowance);
 		const { weights } = this.#below;
 		return {
-			lower,
-			upper,
-			value: exact === null ? (lower + upper) / 2 : toDouble(below),
-			tolerance: exact === null ? upper - lower : null,
-			optimum: null,
-			guaranteed: { lower: true, upper: true },
-			exact,
+			...sides,
 			method: {
 				name: 'linear programme over deterministic strategies, by column generation',
 				strategies: this.#columns.length,
@@ -155,7 +147,7 @@ class MixtureSearch {
 				multipliers: this.#above.multipliers.map((m, k) =>
 					printRational(m.mul(ratio(this.#constraints[k]?.integers.denominator ?? 1n, denominator)))
 				),
-				value: exact
+				value: sides.exact
 			}
 		};
 	}

@@ -17,7 +17,7 @@ import { strategyTensor, type StrategyTensor } from './strategy-tensor';
 import { WorkClock } from './work-clock';
 
 /** Coordinates of the scenario: a dense rank of this size takes some seconds. */
-export const COORDINATE_LIMIT = 800;
+const COORDINATE_LIMIT = 800;
 /**
  * Strategies of all parties but one times the terms of the functional and of a second one, as the
  * check enumerates them again in BigInt: some seconds.

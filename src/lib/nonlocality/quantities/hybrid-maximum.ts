@@ -1,13 +1,8 @@
-import {
-	printRational,
-	toDouble,
-	toDoubleDown,
-	toDoubleUp,
-	type Rational
-} from '../exact/rational';
 import type { HybridCertificate } from '../certificates/types';
+import type { Rational } from '../exact/rational';
 import { SolverStop, type Control, type ProblemOf } from '../problem';
 import { collinsGisinForm, type Functional } from '../scenario/functional';
+import { outcomeOfSides } from './exact-sides';
 import { noSignallingHybrid } from './hybrid-no-signalling';
 import { svetlichnyHybrid } from './hybrid-svetlichny';
 import type { Outcome } from './outcome';
@@ -58,19 +53,11 @@ export async function hybridMaximum(
 			? svetlichnyHybrid(functional, clock, control)
 			: await noSignallingHybrid(functional, clock, control);
 	const { below, above, allowance, groups, behaviours, bipartitions, method } = found;
-	const exact = allowance.n === 0n && below.equals(above) ? printRational(below) : null;
-	const lower = toDoubleDown(below.sub(allowance));
-	const upper = toDoubleUp(above.add(allowance));
+	const sides = outcomeOfSides(below, above, allowance);
 	return {
-		lower,
-		upper,
-		value: exact === null ? (lower + upper) / 2 : toDouble(below),
-		tolerance: exact === null ? upper - lower : null,
-		optimum: null,
-		guaranteed: { lower: true, upper: true },
-		exact,
+		...sides,
 		method: { model: problem.model, bipartition: groups, ...method },
-		certificate: { kind: 'hybrid', groups, behaviours, bipartitions, value: exact }
+		certificate: { kind: 'hybrid', groups, behaviours, bipartitions, value: sides.exact }
 	};
 }
 

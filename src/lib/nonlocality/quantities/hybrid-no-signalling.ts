@@ -15,7 +15,7 @@ import { twiceTheErrors } from './strategy-tensor';
 import type { WorkClock } from './work-clock';
 
 /** Linear programmes over all bipartitions: a millisecond or more each. */
-export const PROGRAMME_LIMIT = 20_000;
+const PROGRAMME_LIMIT = 20_000;
 
 /**
  * No-signalling groups: the maximum is at a vertex of each group's polytope. The vertices of the

@@ -1,7 +1,8 @@
-import { printRational, ratio, toDouble, toDoubleDown, toDoubleUp } from '../exact/rational';
+import { ratio } from '../exact/rational';
 import type { Control, ProblemOf } from '../problem';
 import { integerFunctional } from '../scenario/fixed-point';
 import { collinsGisinForm, type Functional } from '../scenario/functional';
+import { outcomeOfSides } from './exact-sides';
 import { maximiseOverPolytope, objectiveOf, recordOfRows } from './no-signalling-programme';
 import { noSignallingRows, withConstraints } from './no-signalling-rows';
 import type { Outcome } from './outcome';
@@ -49,17 +50,9 @@ export async function noSignallingMaximum(
 	const unit = ratio(1n, integers.denominator);
 	const below = behaviour.value.mul(unit);
 	const above = multipliers.bound.mul(unit);
-	const exact = allowance.n === 0n && below.equals(above) ? printRational(below) : null;
-	const lower = toDoubleDown(below.sub(allowance));
-	const upper = toDoubleUp(above.add(allowance));
+	const sides = outcomeOfSides(below, above, allowance);
 	return {
-		lower,
-		upper,
-		value: exact === null ? (lower + upper) / 2 : toDouble(below),
-		tolerance: exact === null ? upper - lower : null,
-		optimum: null,
-		guaranteed: { lower: true, upper: true },
-		exact,
+		...sides,
 		method: {
 			name: 'linear programme over the no-signalling polytope',
 			inequalities: polytope.probabilityCount,
@@ -76,7 +69,7 @@ export async function noSignallingMaximum(
 				polytope,
 				multipliers.multipliers.map((m, i) => m.mul(unit).mul(polytope.rows[i]?.scale ?? 1n))
 			),
-			value: exact
+			value: sides.exact
 		}
 	};
 }

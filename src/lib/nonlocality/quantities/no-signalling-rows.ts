@@ -27,7 +27,7 @@ export interface NoSignallingRows {
 }
 
 /** Rows of the programme, and entries in all of them: some minutes of simplex beyond. */
-export const ROW_LIMIT = 20_000;
+const ROW_LIMIT = 20_000;
 export const ENTRY_LIMIT = 1_000_000;
 
 /** @throws SolverStop `limit` naming the figure. */

@@ -20,8 +20,8 @@ import { preparedRelaxation, type PreparedRelaxation } from './relaxation-cache'
  * an exact certificate.
  * Cost: plain, about n^4 + m^3/6 operations an iteration, n rows and m moments; 8 to 20 iterations.
  * What was prepared is kept for the next solve of the same problem.
- * @throws SolverStop `limit` past the size limits, `failed` for a level that lacks a moment,
- *   `cancelled` when told to stop. When the budget runs out the bounds proved so far are returned.
+ * @throws SolverStop `limit` past the size limits or where the budget allows no bound, `failed` for
+ *   a level that lacks a moment, `cancelled` when told to stop. When the budget runs out the bounds proved so far are returned.
  * Source: Navascues, Pironio, Acin, Phys. Rev. Lett. 98, 010401 (2007).
  */
 export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Control): Outcome {
@@ -36,6 +36,8 @@ export function npaBound(problem: ProblemOf<'npa'>, g: Functional, control: Cont
 		run = search.run(route);
 	}
 	const { matrix, programme } = relaxation;
+	if (!Number.isFinite(search.upper) && run.ending === 'budget')
+		throw new SolverStop('limit', `no bound was proved within ${problem.seconds} s`);
 	if (!Number.isFinite(search.upper))
 		throw new SolverStop('failed', 'the interior-point method found no bound');
 	const exact = search.exactBound(problem, g);

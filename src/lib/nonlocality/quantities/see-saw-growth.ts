@@ -12,7 +12,7 @@ import { strategyValue } from './see-saw-state';
 import type { SeeSawStrategy } from './see-saw-strategy';
 
 /** Largest local dimension of chains by default: 64 x 64 is the largest state of a see-saw. */
-export const CHAIN_LIMIT = 64;
+const CHAIN_LIMIT = 64;
 /** Largest state of padded strategies by default: the certificate takes a megabyte of JSON then. */
 const PADDED_ENTRIES = 1600;
 /** A grown strategy is grown again soon: only the last one is worth converging. */

@@ -1,5 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { CHSH_STRATEGY, qubitMeasurement } from '../../../../tests/factories/chsh-strategy';
+import { uniformBehaviour } from '../../../../tests/factories/uniform-behaviour';
 import {
 	randomFunctional,
 	rewrittenByNoSignalling
@@ -7,8 +9,8 @@ import {
 import { lehmer, quietControl } from '../../../../tests/factories/solver-problem';
 import { verifyResult } from '../certificates/verify';
 import { ZERO, printRational, ratio } from '../exact/rational';
-import type { ComplexMatrix, Problem, ProblemBox } from '../problem';
-import { behaviourOfTable, uniformBehaviour, valueOnBehaviour } from '../scenario/behaviour';
+import type { Problem, ProblemBox } from '../problem';
+import { behaviourOfTable, valueOnBehaviour } from '../scenario/behaviour';
 import { familyFunctional } from '../scenario/families';
 import type { Functional } from '../scenario/functional';
 import { termsOfFunctional } from '../scenario/problem-terms';
@@ -131,38 +133,11 @@ describe('the value on a table', () => {
 });
 
 describe('the value of a quantum strategy', () => {
-	const real = (rows: number[][]): ComplexMatrix => rows.map((row) => row.map((x) => [x, 0]));
-	/** Projectors of cos(t) Z + sin(t) X. */
-	const qubit = (t: number) => {
-		const [c, s] = [Math.cos(t) / 2, Math.sin(t) / 2];
-		return [
-			real([
-				[0.5 + c, s],
-				[s, 0.5 - c]
-			]),
-			real([
-				[0.5 - c, -s],
-				[-s, 0.5 + c]
-			])
-		];
-	};
-	const half = Math.SQRT1_2;
-	const strategy = {
-		dimensions: [2, 2],
-		state: [
-			[half, 0],
-			[0, 0],
-			[0, 0],
-			[half, 0]
-		] as const,
-		measurements: [
-			[qubit(0), qubit(Math.PI / 2)],
-			[qubit(Math.PI / 4), qubit(-Math.PI / 4)]
-		]
-	};
-
 	it('is evaluated, and the check proves both sides', async () => {
-		const result = await solve(valueProblem(CHSH, { kind: 'quantum', strategy }), quietControl);
+		const result = await solve(
+			valueProblem(CHSH, { kind: 'quantum', strategy: CHSH_STRATEGY }),
+			quietControl
+		);
 		if (result.status !== 'done') throw new Error(result.reason);
 		// Cirel'son, Lett. Math. Phys. 4, 93 (1980): 2 sqrt 2
 		expect(result.value).toBeCloseTo(2 * Math.SQRT2, 12);
@@ -176,11 +151,15 @@ describe('the value of a quantum strategy', () => {
 	});
 
 	it.each([
-		['a state too short', { ...strategy, state: strategy.state.slice(1) }, /3 entries, not 4/],
+		[
+			'a state too short',
+			{ ...CHSH_STRATEGY, state: CHSH_STRATEGY.state.slice(1) },
+			/3 entries, not 4/
+		],
 		[
 			'a state not normalised',
 			{
-				...strategy,
+				...CHSH_STRATEGY,
 				state: [
 					[1, 0],
 					[0, 0],
@@ -193,8 +172,11 @@ describe('the value of a quantum strategy', () => {
 		[
 			'elements that do not sum to 1',
 			{
-				...strategy,
-				measurements: [[[qubit(0)[0], qubit(1)[0]], qubit(1)], strategy.measurements[1]]
+				...CHSH_STRATEGY,
+				measurements: [
+					[[qubitMeasurement(0)[0], qubitMeasurement(1)[0]], qubitMeasurement(1)],
+					CHSH_STRATEGY.measurements[1]
+				]
 			},
 			/party 0, input 0: the elements do not sum/
 		]

@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
+import { CHSH_STRATEGY, realMatrix } from '../../../../tests/factories/chsh-strategy';
+import { uniformBehaviour } from '../../../../tests/factories/uniform-behaviour';
 import type { ComplexMatrix, QuantumStrategy } from '../problem';
-import { behaviourOfTable, uniformBehaviour, valueOnBehaviour } from './behaviour';
+import { behaviourOfTable, valueOnBehaviour } from './behaviour';
 import { marginalOf, readTable } from './exact-table';
 import { familyFunctional } from './families';
 import { behaviourOfStrategy } from './strategy-behaviour';
@@ -43,42 +45,16 @@ describe('behaviours of tables', () => {
 	});
 });
 
-const real = (rows: readonly (readonly number[])[]): ComplexMatrix =>
-	rows.map((row) => row.map((value) => [value, 0] as const));
-/** Projectors on the eigenvectors of cos(t) Z + sin(t) X. */
-const along = (angle: number) =>
-	[1, -1].map((sign) => {
-		const [c, s] = [sign * Math.cos(angle), sign * Math.sin(angle)];
-		return real([
-			[(1 + c) / 2, s / 2],
-			[s / 2, (1 - c) / 2]
-		]);
-	});
-const half = Math.SQRT1_2;
-const BEST: QuantumStrategy = {
-	dimensions: [2, 2],
-	state: [
-		[half, 0],
-		[0, 0],
-		[0, 0],
-		[half, 0]
-	],
-	measurements: [
-		[along(0), along(Math.PI / 2)],
-		[along(Math.PI / 4), along(-Math.PI / 4)]
-	]
-};
-
 describe('behaviours of strategies', () => {
 	it('reach 2 sqrt(2)', () => {
-		const { value, error } = valueOnBehaviour(chsh, behaviourOfStrategy(TWO, BEST));
+		const { value, error } = valueOnBehaviour(chsh, behaviourOfStrategy(TWO, CHSH_STRATEGY));
 		expect(Math.abs(value - 2 * Math.SQRT2)).toBeLessThanOrEqual(error + 1e-15);
 		expect(error).toBeLessThan(1e-12);
 	});
 
-	const [first = [], second = []] = BEST.measurements;
+	const [first = [], second = []] = CHSH_STRATEGY.measurements;
 	const withFirst = (elements: readonly ComplexMatrix[]) => [[elements, ...first.slice(1)], second];
-	const identity = real([
+	const identity = realMatrix([
 		[1, 0],
 		[0, 1]
 	]);
@@ -87,19 +63,19 @@ describe('behaviours of strategies', () => {
 		[{ dimensions: [2, 0] }, /at least 1/],
 		[{ dimensions: [100, 100] }, /10000 entries is past the limit of 4096/],
 		[{ state: [[1, 0]] }, /1 entries, not 4/],
-		[{ state: BEST.state.map(([re]) => [2 * re, 0] as const) }, /squared length 4/],
+		[{ state: CHSH_STRATEGY.state.map(([re]) => [2 * re, 0] as const) }, /squared length 4/],
 		[{ measurements: [] }, /party 0, input 0: 2 measurement elements are needed/],
 		[{ measurements: withFirst([identity]) }, /2 measurement elements are needed/],
-		[{ measurements: withFirst([real([[1]]), real([[0]])]) }, /no 2 x 2 matrix/],
+		[{ measurements: withFirst([realMatrix([[1]]), realMatrix([[0]])]) }, /no 2 x 2 matrix/],
 		[{ measurements: withFirst([identity, identity]) }, /sum to the identity/],
 		[
 			{
 				measurements: withFirst([
-					real([
+					realMatrix([
 						[1, 1],
 						[0, 0]
 					]),
-					real([
+					realMatrix([
 						[0, -1],
 						[0, 1]
 					])
@@ -110,11 +86,11 @@ describe('behaviours of strategies', () => {
 		[
 			{
 				measurements: withFirst([
-					real([
+					realMatrix([
 						[2, 0],
 						[0, 1]
 					]),
-					real([
+					realMatrix([
 						[-1, 0],
 						[0, 0]
 					])
@@ -123,6 +99,6 @@ describe('behaviours of strategies', () => {
 			/not positive/
 		]
 	])('refuse what does not fit: %#', (change, message) => {
-		expect(() => behaviourOfStrategy(TWO, { ...BEST, ...change })).toThrow(message);
+		expect(() => behaviourOfStrategy(TWO, { ...CHSH_STRATEGY, ...change })).toThrow(message);
 	});
 });

@@ -1,13 +1,11 @@
 import {
-	COEFFICIENT_ONE,
 	COEFFICIENT_ZERO,
 	addCoefficients,
-	exactCoefficient,
 	multiplyCoefficients,
 	type Coefficient
 } from '../exact/coefficient';
 import { parseCoefficient } from '../exact/expression';
-import { ZERO, exactOfDouble, ratio } from '../exact/rational';
+import { ZERO, exactOfDouble } from '../exact/rational';
 import { marginalEntries, readTable, tableDefect } from './exact-table';
 import { collinsGisinForm, eventsKey, type Functional } from './functional';
 import type { Event, Scenario } from './scenario';
@@ -20,7 +18,7 @@ export interface Behaviour {
 }
 
 /** Irrational entries: a table printed with nine decimals or more passes. */
-export const TABLE_TOLERANCE = 1e-9;
+const TABLE_TOLERANCE = 1e-9;
 
 /**
  * A behaviour from its table, `"a,b|x,y"` to a number as a coefficient is written; entries left
@@ -52,22 +50,6 @@ export function behaviourOfTable(
 				COEFFICIENT_ZERO
 			);
 		}
-	};
-}
-
-/** Product of 1/outputs: every party answers at random. */
-export function uniformBehaviour(scenario: Scenario): Behaviour {
-	return {
-		scenario,
-		probability: (events) =>
-			events.reduce(
-				(product, [p, x]) =>
-					multiplyCoefficients(
-						product,
-						exactCoefficient(ratio(1n, BigInt(scenario.outputs[p]?.[x] ?? 1)))
-					),
-				COEFFICIENT_ONE
-			)
 	};
 }
 

@@ -17,7 +17,7 @@ export interface FamilySpec {
 }
 
 /** Largest matrix of an XOR game. */
-export const XOR_GAME_LIMIT = 20;
+const XOR_GAME_LIMIT = 20;
 
 /** @throws NotationError when there is no family of that name. */
 export function familyInfo(name: string): FamilyInfo {

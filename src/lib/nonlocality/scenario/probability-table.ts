@@ -2,7 +2,7 @@ import { NotationError, NotationLimitError } from '../exact/notation-error';
 import { makeFunctional, eventsKey, type Functional, type Term } from './functional';
 import type { Event, Scenario } from './scenario';
 import { readCell } from './table-cell';
-import { TABLE_LIMITS, checkSize, type TableCell } from './table-text';
+import { TABLE_LIMITS, checkSize, trimText, type TableCell } from './table-text';
 
 /** The events that label rows or columns: every output of every input, in order. */
 function labels(party: number, outputs: readonly number[]): Event[] {
@@ -64,7 +64,7 @@ export function printProbabilityTable({ scenario, terms }: Functional): string[]
 }
 
 const LINE =
-	/^\s*(?:[Pp]\s*\(\s*)?"?(\d+(?:\s*,\s*\d+)*)\s*\|\s*(\d+(?:\s*,\s*\d+)*)"?\s*\)?(?:\s*[:=]\s*|\s+)(\S.*)$/;
+	/^\s*(?:[Pp]\s*\(\s*)?"?(\d+(?:\s*,\s*\d+)*)\s*\|\s*(\d+(?:\s*,\s*\d+)*)"?\s*\)?(?:\s*[:=]\s*|\s+)(\S[^]*)$/;
 
 /**
  * Probabilities written on lines of their own: `0,1|1,0: 1/2`, `P(0,1|1,0) = 1/2`, `01|10 0.5`; or
@@ -82,7 +82,7 @@ export function splitProbabilities(text: string): Record<string, string> {
 		const position = start;
 		start += whole.length + 1;
 		// Braces, quotes and commas are those of JSON.
-		const line = whole.replace(/^[\s{]+/, '').replace(/[\s},;]+$/, '');
+		const line = trimText(whole, ' \t\r\u00a0{},;');
 		if (line === '') continue;
 		for (const piece of line.split(/,\s*(?=")/)) {
 			const [, outputs = '', inputs = '', value = ''] = LINE.exec(piece.trim()) ?? [];

@@ -12,7 +12,7 @@ export function functionalToMaximise(problem: Problem): Functional {
 	return isNegated(problem) ? scaleFunctional(f, negateCoefficient(COEFFICIENT_ONE)) : f;
 }
 
-export function isNegated(problem: Problem): boolean {
+function isNegated(problem: Problem): boolean {
 	return problem.sense === 'min' && problem.quantity !== 'value';
 }
 

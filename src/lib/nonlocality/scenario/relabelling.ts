@@ -22,7 +22,7 @@ export function relabelEvent(event: Event, relabelling: Relabelling): Event {
 	return [party, input, output];
 }
 
-export function relabelScenario(scenario: Scenario, relabelling: Relabelling): Scenario {
+function relabelScenario(scenario: Scenario, relabelling: Relabelling): Scenario {
 	const outputs: number[][] = scenario.outputs.map(() => []);
 	scenario.outputs.forEach((counts, p) =>
 		counts.forEach((_, x) => {

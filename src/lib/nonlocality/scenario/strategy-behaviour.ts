@@ -4,7 +4,7 @@ import type { Behaviour } from './behaviour';
 import type { Event, Scenario } from './scenario';
 
 /** How far elements may be from Hermitian and from summing to 1, and the state from length 1. */
-export const STRATEGY_TOLERANCE = 1e-9;
+const STRATEGY_TOLERANCE = 1e-9;
 /** Entries of the state. */
 const STATE_LIMIT = 4096;
 

@@ -7,7 +7,7 @@ import type { Scenario } from './scenario';
 import { functionalOfZeroSumForm, zeroSumForm } from './zero-sum-form';
 
 /** Work of the search for symmetries, in the search's units; some 0.2 s. */
-export const SYMMETRY_WORK_LIMIT = 5e6;
+const SYMMETRY_WORK_LIMIT = 5e6;
 /** Past this many elements a group is not listed. */
 export const MOST_ELEMENTS = 2048;
 

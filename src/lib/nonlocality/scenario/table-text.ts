@@ -23,7 +23,7 @@ export function splitTable(text: string): string[][] {
 			`a table has at most ${TABLE_LIMITS.characters.toLocaleString('en')} characters`
 		);
 	const lines = rowsOf(bodyOf(text.replace(/(?<!\\)[%#].*$/gm, '')))
-		.map((line) => trim(line, ' \t\u00a0[],'))
+		.map((line) => trimText(line, ' \t\u00a0[],'))
 		.filter((line) => line !== '' && !isRule(line));
 	const cells = lines.map(splitRow);
 	checkSize(cells);
@@ -59,12 +59,12 @@ function rowsOf(body: string): string[] {
 		return list
 			.slice(1, -1)
 			.split(/[})]\s*,?\s*[{(]/)
-			.map((row) => trim(row, ' \n\t{}()'));
+			.map((row) => trimText(row, ' \n\t{}()'));
 	const lines = rows.replace(/\][\s,]*\[/g, '\n').split(/\r?\n/);
 	const [only, more] = lines.filter((line) => line.trim() !== '');
 	// [1 2; 3 4]
 	if (only !== undefined && more === undefined && /[^\s;,&\t][\s,&\t]+[^\s;,&\t]/.test(only))
-		return trim(only, ' []').split(';');
+		return trimText(only, ' []').split(';');
 	return lines;
 }
 
@@ -76,12 +76,12 @@ function splitRow(line: string): string[] {
 	const whole = separator ? line : line.replace(/(^|\s)([-+\u2212])\s+(?=[\d.\\])/g, '$1$2');
 	return whole
 		.split(separator ?? /[ \u00a0|]/)
-		.map((cell) => trim(cell, ' \t\u00a0|$'))
+		.map((cell) => trimText(cell, ' \t\u00a0|$'))
 		.filter((cell) => separator === '&' || separator === '\t' || separator === ',' || cell !== '');
 }
 
 /** Takes the given characters off both ends; in linear time, which a regular expression is not. */
-function trim(text: string, characters: string): string {
+export function trimText(text: string, characters: string): string {
 	let [start, end] = [0, text.length];
 	while (start < end && characters.includes(text.charAt(start))) start++;
 	while (end > start && characters.includes(text.charAt(end - 1))) end--;

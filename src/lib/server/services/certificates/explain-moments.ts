@@ -6,7 +6,7 @@ import type { CertificateExplanation, CertificateField } from '../../../schemas/
 import { counted, entries, triangle } from './counted';
 
 /** Fields that the floating and the exact certificate share. */
-export function momentFields(certificate: {
+function momentFields(certificate: {
 	readonly monomials: readonly unknown[];
 	readonly moments: readonly unknown[] | null;
 }): readonly CertificateField[] {
@@ -27,7 +27,7 @@ export function momentFields(certificate: {
 	];
 }
 
-export const MOMENT_PROOF = [
+const MOMENT_PROOF = [
 	'The moment matrix Γ has a row and a column for each product; its entry is the mean of the adjoint of one times the other. In quantum mechanics Γ is positive semidefinite, and each of its moments is at most 1 in size.',
 	'So ⟨Γ, Z⟩ ≥ 0 for the positive semidefinite multiplier Z. Adding it to the functional cancels every free moment up to a residual, and leaves a constant: that constant, plus the sizes of all residuals, is the bound.'
 ];

@@ -40,11 +40,11 @@ describe('a full probability table', () => {
 	});
 
 	it.each([
-		['0,1|1,0', /line 1: the coefficient is missing/],
-		['0,1|1,0 1\n0,1|1 2', /line 2: 2 outputs need as many inputs/],
-		['0,1|1,0 1\nnothing', /line 2: no probability is named/],
-		['0,1|1,0 1\n0,1|1,0 2', /line 2: .*already/],
-		['1 0 1\n0 1 1\n1 1 1', /3 rows and 3 columns/]
+		['0,1|1,0', /line 1 is no probability with its coefficient/],
+		['0,1|1,0 1\n0,1|1 2', /"0,1\|1" names no probability/],
+		['0,1|1,0 1\nnothing', /line 2 is no probability with its coefficient/],
+		['0,1|1,0 1\n0,1|1,0 2', /line 2: 0,1\|1,0 occurs twice/],
+		['1 0 1\n0 1 1\n1 1 1', /3 rows and 3 columns, and inputs of two outputs need even numbers/]
 	])('says of %j what is wrong', (text, message) => {
 		expect(() => readProbabilities(text, undefined)).toThrow(message);
 	});

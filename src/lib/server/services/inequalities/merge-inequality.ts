@@ -18,7 +18,7 @@ import { carryRuns } from './carry-runs';
 import type { InequalityRecord } from './inequality-rows';
 
 /** value = outer.scale * (inner.scale * x + inner.shift) + outer.shift. */
-export function composeMaps(outer: MapText, inner: MapText): MapText {
+function composeMaps(outer: MapText, inner: MapText): MapText {
 	return {
 		scale: parseCoefficient(`(${outer.scale})*(${inner.scale})`).text,
 		shift: parseCoefficient(`(${outer.scale})*(${inner.shift})+(${outer.shift})`).text

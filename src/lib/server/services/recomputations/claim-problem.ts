@@ -54,7 +54,7 @@ export function readLevel(text: string): { level: Level; label: string } | Field
 	};
 }
 
-export function readDimension(text: string): number | FieldIssue {
+function readDimension(text: string): number | FieldIssue {
 	const value = /^\d{1,4}$/.test(text.trim()) ? Number(text.trim()) : NaN;
 	if (value >= 1 && value <= LARGEST_DIMENSION) return value;
 	return {

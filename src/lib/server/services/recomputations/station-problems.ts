@@ -11,11 +11,11 @@ export interface ProblemSubjectData {
 }
 
 /** The quantum maximum escalates as long as it is given: as a station it is cut short. */
-export const QUANTUM_STATION_SECONDS = 10;
+const QUANTUM_STATION_SECONDS = 10;
 export const SEE_SAW_STARTS = 20;
 /** The two sides of a quantum maximum are taken for closed at this distance. */
 export const QUANTUM_GAP = 1e-8;
-export const DEFAULT_SEED = 0;
+const DEFAULT_SEED = 0;
 
 export function problemBase(
 	{ outputs, terms }: ProblemSubjectData,

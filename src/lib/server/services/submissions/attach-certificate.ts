@@ -14,7 +14,7 @@ import { parseInput } from '../parse-input';
 import { requireClaimAsSeen } from '../tasks/require-claim-as-seen';
 import { readCertificate } from './read-certificate';
 
-export const MAY_NOT_ATTACH = 'Attaching a certificate takes the role of a member.';
+const MAY_NOT_ATTACH = 'Attaching a certificate takes the role of a member.';
 
 /**
  * Attaches a strategy or certificate to a claim, without a task. The independent check decides at

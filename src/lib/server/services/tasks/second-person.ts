@@ -16,7 +16,7 @@ interface Asked {
  * never hand it in.
  * @returns the sentence that says so; null when the claim may be given to them
  */
-export async function whyNotSecond(
+async function whyNotSecond(
 	read: Reader,
 	{ kind, claimId, assigneeId }: Asked
 ): Promise<string | null> {

@@ -3,7 +3,7 @@ import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { parseSdpa } from '../../tests/support/parse-sdpa';
+import { parseSdpa } from '../lib/nonlocality/optimization/sdpa-text';
 import { readProblem } from './problem-input';
 import { EXIT, readJson } from './read-input';
 

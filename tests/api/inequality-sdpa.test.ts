@@ -1,5 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { parseSdpa } from '../support/parse-sdpa';
+import { parseSdpa } from '../../src/lib/nonlocality/optimization/sdpa-text';
 import { enterClaim } from '../../src/lib/server/services/claims/enter-claim';
 import { findClaim } from '../../src/lib/server/services/claims/find-claim';
 import { inequalitySdpa } from '../../src/lib/server/services/inequalities/inequality-sdpa';

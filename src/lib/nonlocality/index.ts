@@ -1,6 +1,7 @@
 /** The public surface: solvers, checks and canonical forms, for the server, threads and commands. */
 export { sdpaText, solve } from './quantities/solve';
 export { SOLVER } from './quantities/solver-version';
+export { parseSdpa, SdpaError } from './optimization/sdpa-text';
 export { verifyResult } from './certificates/verify';
 export {
 	affineMap,

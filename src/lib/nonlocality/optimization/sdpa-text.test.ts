@@ -1,7 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { parseSdpa, SdpaError } from '../../../../tests/support/parse-sdpa';
-import { printSdpa, type SdpaProgramme } from './sdpa-text';
+import { SdpaError, parseSdpa, printSdpa, type SdpaProgramme } from './sdpa-text';
 
 /** Any programme that the format can say. */
 const programmes: fc.Arbitrary<SdpaProgramme> = fc

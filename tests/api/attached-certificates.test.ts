@@ -38,7 +38,9 @@ describe('a certificate attached to a claim', () => {
 		// In the form of Clauser and Horne: CHSH = 4 CH + 2.
 		const upper = certify({ ...CH, quantity: 'npa', level: 1 });
 		const note = await attachCertificate(member, number, { certificate: upper, source: 'eq. (3)' });
-		expect(note).toMatch(/^Proves at least .* and at most 2\.8284\d* in the claim’s normalisation/);
+		expect(note).toMatch(
+			/^Proves that the bound of NPA level 1 without .* is at least .* and at most 2\.8284\d*, in the claim’s normalisation/
+		);
 		expect(await statusOf(number)).toBe('open');
 		const lower = await solved({ ...CH, quantity: 'see-saw', dimension: 2 });
 		await attachCertificate(member, number, { certificate: lower });

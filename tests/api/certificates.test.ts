@@ -67,7 +67,9 @@ describe('a certificate of the command line', () => {
 		const { upper } = sidesOf(finding);
 		expect(upper).toBeGreaterThanOrEqual(TSIRELSON);
 		expect(upper).toBeLessThan(TSIRELSON + 1e-7);
-		expect(note).toMatch(/^Proves at least 2\.8284271\d* and at most 2\.82842\d* in the claim’s/);
+		expect(note).toMatch(
+			/^Proves that the bound of NPA level 1 without non-negative probabilities is at least 2\.8284271\d* and at most 2\.82842\d*, in the claim’s/
+		);
 		// Only the upper side of a relaxation speaks of the quantum maximum.
 		expect(note).not.toContain('says nothing');
 	});
@@ -103,7 +105,7 @@ describe('a certificate of the command line', () => {
 			claim,
 			await solved({ family: { name: 'chsh' }, quantity: 'quantum', seconds: 10 })
 		);
-		const [, lower, upper] = /at least ([\d.]+) and at most ([\d.]+) in/.exec(note) ?? [];
+		const [, lower, upper] = /at least ([\d.]+) and at most ([\d.]+), in/.exec(note) ?? [];
 		expect(Number(lower)).toBeLessThanOrEqual(CH_MAXIMUM);
 		expect(Number(upper)).toBeGreaterThanOrEqual(CH_MAXIMUM);
 		expect(Number(upper) - Number(lower)).toBeLessThan(1e-6);

@@ -117,7 +117,7 @@ describe('a better digest', () => {
 		expect(page.stations).toMatchObject({ local: '3', noSignalling: '4' });
 		expect(page.claimRows).toHaveLength(4);
 		// Every claim's own normalisation, told into the page's, and a switch to it.
-		const [as] = page.claimNormalisations.filter(({ printed }) => printed === '= 11.3246');
+		const [as] = page.claimNormalisations.filter(({ printed }) => printed === '11.3246');
 		expect(as).toMatchObject({ map: '2 × it + 5', here: '= 3.162275 … 3.162325' });
 		const switched = await showInequality(observer, first.inequalityId, as?.key);
 		expect(switched.stations).toMatchObject({ local: '11', noSignalling: '13' });

@@ -61,6 +61,10 @@ test('a wrong claim is found, explained, mailed, corrected, published and read b
 	await test.step('enter a claim as printed', async () => {
 		await page.getByRole('link', { name: 'Enter a claim' }).first().click();
 		await page.waitForURL(at('/claims/new'));
+		// As fast as it can be typed: what was read must follow the last key all the same.
+		await page.getByText('Correlator table', { exact: true }).first().click();
+		await page.locator('[name=table]').fill('0 0 0\n0 1 1\n0 1 -1');
+		await expect(page.getByText('Correlator table, 2 × 2 and its margins')).toBeVisible();
 		await page.getByText('Family', { exact: true }).first().click();
 		await page.getByRole('combobox', { name: 'Family' }).selectOption('chained');
 		await page.locator('[name=familyParameter]').fill('4');

@@ -40,6 +40,12 @@ const extremum = (problem: Problem) => (problem.sense === 'max' ? 'maximum' : 'm
 
 /** What a problem's value is, for "the paper meant ...". */
 export function valueLabel(problem: Problem): string {
+	const sought = soughtLabel(problem);
+	return problem.quantity === 'see-saw' ? `${sought} (best value found)` : sought;
+}
+
+/** The quantity that a problem asks for, whether it is found or only bounded. */
+export function soughtLabel(problem: Problem): string {
 	switch (problem.quantity) {
 		case 'value':
 			return 'the value of the given box';
@@ -55,8 +61,8 @@ export function valueLabel(problem: Problem): string {
 			return 'the facet test';
 		case 'see-saw':
 			return problem.state === 'maximally-entangled'
-				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem)} (best value found)`
-				: `the quantum ${extremum(problem)} in local dimension ${dimensionName(problem)} (best value found)`;
+				? `the ${extremum(problem)} with a maximally entangled state of local dimension ${dimensionName(problem)}`
+				: `the quantum ${extremum(problem)} in local dimension ${dimensionName(problem)}`;
 		case 'npa': {
 			const { level, nonNegative } = problem;
 			if (isAlmostQuantum(level)) return `the almost-quantum bound (${npaName(level)})`;

@@ -27,6 +27,8 @@ export interface CertificateView {
 	readonly id: string;
 	/** `NPA level 2`. */
 	readonly label: string;
+	/** `the bound of NPA level 2`: the quantity that it bounds. */
+	readonly quantity: string;
 	readonly formulaHtml: string | null;
 	readonly formula: string;
 	/** In the normalisation of its own problem: `at least 2 and at most 3`. */

@@ -266,6 +266,8 @@ export interface InequalityView extends InequalityRow {
 	readonly formulaHtml: string | null;
 	/** `outputs[party][input]`. */
 	readonly outputs: readonly (readonly number[])[];
+	/** The most parties in one of its terms: a relaxation of level k has moments of 2 k. */
+	readonly degree: number;
 	/** Collins-Gisin table of a two-party inequality, exact entries as text. */
 	readonly collinsGisin: readonly (readonly string[])[] | null;
 	readonly normalisation: NormalisationView;

@@ -18,8 +18,9 @@ export class Reading {
 		this.current = start;
 	}
 
+	/** Asks when nothing more was typed for a moment; an answer to what was typed before is dropped. */
 	ask(input: ClaimInput): void {
-		clearTimeout(this.#waiting);
+		this.stop();
 		this.#waiting = setTimeout(() => void this.#send(input), DEBOUNCE_MS);
 	}
 

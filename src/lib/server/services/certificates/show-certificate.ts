@@ -1,3 +1,4 @@
+import { soughtLabel } from '../../../ledger/problem-labels';
 import { parseRational } from '../../../nonlocality/exact/rational';
 import { functionalOfTerms } from '../../../nonlocality/scenario/problem-terms';
 import type { DoneResult } from '../../../nonlocality/problem';
@@ -37,6 +38,7 @@ export async function showCertificate(ctx: Context, id: string): Promise<Certifi
 	return {
 		id,
 		label: problemLabel(problem),
+		quantity: soughtLabel(problem),
 		formulaHtml: latex === null ? null : typeset(latex, true),
 		formula: textOf(functional),
 		proves: provedWords(result),

@@ -2,6 +2,7 @@ import { RELATION_SIGNS } from '../../../ledger/claim';
 import { readStatedValue } from '../../../ledger/stated-value';
 import { NotationError, NotationLimitError } from '../../../nonlocality/exact/notation-error';
 import type { ClaimNormalisationView } from '../../../schemas/normalisation-views';
+import { printedHtml } from '../../math/printed-html';
 import { quantityInfo } from '../recomputations/claim-problem';
 import type { SelectedClaim } from '../claims/claim-rows';
 import { mapSide, readMap, showFigure } from './affine';
@@ -46,14 +47,15 @@ export function claimNormalisations(
 		const { claim } = row;
 		const { id, scale, shift, printed, relation } = claim;
 		const own = choices.find(({ map }) => isSame(map, { scale, shift }));
-		const sign = RELATION_SIGNS[relation];
 		const there = mapOrNull(chosen.map, { scale, shift });
 		return {
 			claimId: id,
 			key: own?.key ?? keyOf(id),
 			source: sourceOf(row),
 			quantityLabel: claim.quantityLabel,
-			printed: `${sign} ${printed}`,
+			printed,
+			printedHtml: printedHtml(printed),
+			sign: RELATION_SIGNS[relation],
 			map: there === null ? 'too long a number' : isIdentity(there) ? null : mapWords(there),
 			here: claimedHere(row, chosen.map)
 		};

@@ -59,6 +59,7 @@ export async function inequalityView(
 		latex,
 		formulaHtml: latex ? typeset(latex, true) : null,
 		outputs: row.outputs,
+		degree: Math.max(0, ...row.terms.map(([, events]) => events.length)),
 		collinsGisin: collinsGisinTableOf(row, chosen.map),
 		normalisation: { key: chosen.key, label: chosen.label },
 		normalisations: choices

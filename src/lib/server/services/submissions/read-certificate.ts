@@ -1,4 +1,5 @@
 import { evidenceOfFinding, IDENTITY_MAP, type Finding } from '../../../ledger/evidence';
+import { soughtLabel } from '../../../ledger/problem-labels';
 import { parseRational } from '../../../nonlocality/exact/rational';
 import type { CheckOutcome } from '../../../nonlocality/certificates/types';
 import type { DoneResult, Problem } from '../../../nonlocality/problem';
@@ -130,7 +131,9 @@ function noteOf(finding: Finding, claim: ClaimRow, inequality: InequalityRecord)
 	const sides = exact
 		? `exactly ${lower}`
 		: [lower && `at least ${lower}`, upper && `at most ${upper}`].filter(Boolean).join(' and ');
-	const proved = sides ? `Proves ${sides} in the claim’s normalisation` : 'Proves neither side';
+	const proved = sides
+		? `Proves that ${soughtLabel(finding.result.problem)} is ${sides}, in the claim’s normalisation`
+		: 'Proves neither side';
 	const claimed = quantityProblem(claim.input, readQuantity(claim.input), inequality, 1);
 	const silent =
 		'problem' in claimed &&

@@ -10,7 +10,7 @@ const QUANTITY_LINES: Readonly<Record<QuantityOfProblem, readonly string[]>> = {
 	'no-signalling': ['maximum over all no-signalling boxes, exact'],
 	npa: [
 		'bound of a moment-matrix relaxation; its upper side bounds the quantum maximum',
-		'"level": 1, 2, 3 ..., "1+AB" (two parties), {"perParty": k} or {"products": ["A", "AB"]}',
+		'"level": 1, 2, 3 ..., "1+AB" (two parties), {"perParty": k} or {"products": ["A", "B", "AB"]}',
 		'"nonNegative": true imposes P >= 0 (default false)'
 	],
 	'see-saw': [
@@ -26,8 +26,8 @@ const QUANTITY_LINES: Readonly<Record<QuantityOfProblem, readonly string[]>> = {
 		'"within": [low, high]: stop when both sides lie in it; "start": a stored strategy to begin at'
 	],
 	hybrid: [
-		'maximum over models that are local across some bipartition of three or four parties, exact',
-		'"model": "svetlichny" (anything within a group) or "no-signalling"'
+		'maximum over models that are local across some bipartition of three parties or more, exact',
+		'"model" (required): "svetlichny" (anything within a group) or "no-signalling"'
 	],
 	facet: ['whether the inequality is a facet of the local polytope, exact (value 1 or 0)']
 };
@@ -77,13 +77,13 @@ A coefficient is a number or a text: "1/2", "0.25", "sqrt(2)", "2*cos(pi/8)". Te
 "quantity", with its own fields:
 ${quantities}
 
-"box" (alone or beside a functional): {"a,b|x,y": probability, ...}, or {"family": "isotropic", "d": 2,
+"box" (for "value", beside a functional): {"a,b|x,y": probability, ...}, or {"family": "isotropic", "d": 2,
 "E": "sqrt(1/2)"}, {"family": "uniform"}, {"family": "deterministic", "strategy": [[output for each input]
 for each party]}, {"family": "quantum", "state": [[re, im], ...], "measurements": [party][input][output] as
 matrices of [re, im]}.
 
-For all: "sense": "max" (default) or "min"; "constraints": [{"terms" or "expression", "relation": "=", "<="
-or ">=", "value"}]; "seconds": budget (default ${PROBLEM_DEFAULTS.seconds}, at most ${PROBLEM_LIMITS.seconds.toLocaleString('en')}); "seed" (default ${PROBLEM_DEFAULTS.seed}).
+For all: "sense": "max" (default) or "min"; "constraints" (local, no-signalling, npa, see-saw; give
+"outputs" where they name more inputs): [{"terms" or "expression", "relation": "=", "<=" or ">=", "value"}]; "seconds": budget (default ${PROBLEM_DEFAULTS.seconds}, at most ${PROBLEM_LIMITS.seconds.toLocaleString('en')}); "seed" (default ${PROBLEM_DEFAULTS.seed}).
 
 In the result, "lower" and "upper" enclose the quantity; "guaranteed" says which of the two are proved,
 "exact" is a fraction where the value is known exactly, "certificate" is what proves it. Check it again,

@@ -17,7 +17,30 @@ import { CommandError, EXIT, printJson, readJson, runCommand } from './read-inpu
 
 const USAGE = 'usage: npm run --silent check-claim -- CLAIM.json   (- for standard input)';
 
+const HELP = `Recomputes one claim and judges it as the ledger does.
+
+${USAGE}
+
+CLAIM.json is one object:
+  "problem"    the subject and quantity, as \`bound -- --help\` describes them
+  "value"      as printed, best as text: "7.3190", "2*sqrt(2)", "82.8 %", "0.25088(2)", "4/3"
+  "relation"   "=" (default), "<=" or ">="
+  "reading"    "rounded", "truncated" or "exact"; left out, the printed form decides
+  "method"     the method the paper used, in its words
+
+It prints "status" (agreement, discrepancy or open), "reason", the interval that the value is read as, the
+enclosure it is compared with, "diagnosis" (changes under which the claim would agree) and the result with
+its certificate. Exit codes are those of \`bound\`: ${EXIT.done} whenever the claim could be judged, whatever the verdict.
+
+Example:
+  echo '{"problem": {"family": {"name": "i3322"}, "quantity": "quantum"}, "value": "0.2509"}' | npm run --silent check-claim -- -
+`;
+
 await runCommand(async () => {
+	if (process.argv[2] === '--help') {
+		process.stdout.write(HELP);
+		return EXIT.done;
+	}
 	const written = readClaim(readJson(USAGE));
 	const reading = readValue(written);
 	const claim = { ...written, relation: readRelation(written, reading) };

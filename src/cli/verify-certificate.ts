@@ -5,9 +5,24 @@ import { EXIT, messageOf, printJson, readJson, runCommand } from './read-input';
 
 const USAGE = 'usage: npm run --silent verify-certificate -- RESULT.json   (- for standard input)';
 
+const HELP = `Checks the certificate of a result that \`bound\` printed, without solving again: each printed side that is
+called guaranteed must follow from the problem and the certificate alone.
+
+${USAGE}
+
+It prints {"checked": true, "quantity", "lower", "upper", "exact", "method"} with what the certificate proves
+and how (exit ${EXIT.done}), or {"checked": false, "reason"} (exit ${EXIT.unchecked}). What each kind holds and how it proves its bound is
+described in src/lib/nonlocality/README.md.
+`;
+
 await runCommand(async () => {
-	const outcome = check(readJson(USAGE));
-	printJson(outcome);
+	if (process.argv[2] === '--help') {
+		process.stdout.write(HELP);
+		return EXIT.done;
+	}
+	const json = readJson(USAGE);
+	const outcome = check(json);
+	printJson(outcome.checked ? { ...outcome, quantity: quantityOf(json) } : outcome);
 	if (outcome.checked) return EXIT.done;
 	process.stderr.write(`not checked: ${outcome.reason}\n`);
 	return EXIT.unchecked;
@@ -27,4 +42,8 @@ function check(json: unknown): CheckOutcome {
 	} catch (error) {
 		return refuse(`the result is malformed: ${messageOf(error)}`);
 	}
+}
+
+function quantityOf(json: unknown): unknown {
+	return typeof json === 'object' && json !== null && 'quantity' in json ? json.quantity : null;
 }

@@ -1,3 +1,4 @@
+import { toleranceFor } from './accepted-set';
 import type { Relation, VerdictStatus } from './claim';
 import type { Diagnosis, OtherValue } from './diagnosis';
 import { complement, logarithmBase, percent, sign, slips } from './diagnosis-slips';
@@ -81,9 +82,10 @@ function truncations(
 		return roundedInstead(new Trial(rounded, relation, enclosure));
 	}
 	if (reading.choice === 'exact') return [];
-	const trial = new Trial(readStatedValue(reading.printed, 'truncated'), relation, enclosure, true);
+	const cut = withoutFarEnd(readStatedValue(reading.printed, 'truncated'));
+	const trial = new Trial(cut, relation, enclosure, true);
 	const together = [
-		...solverTolerance(trial),
+		...(isNearer(cut, enclosure) ? solverTolerance(trial) : []),
 		...otherQuantities(trial, input.others),
 		...otherNormalisations(trial, input.normalisations)
 	];
@@ -91,6 +93,23 @@ function truncations(
 		...truncated(trial),
 		...together.filter((found) => !without.some((before) => sameSuggestion(before, found)))
 	];
+}
+
+/**
+ * A truncated value without the end away from zero: 2 itself, known to rounding, is never cut off to
+ * 1.9. The tolerance counts twice, as the accepted set gives it back once.
+ */
+function withoutFarEnd(reading: StatedValue): StatedValue {
+	const margin = toleranceFor(reading, false).mul(2);
+	return reading.value.s < 0n
+		? { ...reading, low: reading.low.add(margin) }
+		: { ...reading, high: reading.high.sub(margin) };
+}
+
+/** Whether what was computed lies nearer to 0 than the value: beyond its far end nothing is cut off. */
+function isNearer({ value }: StatedValue, { lower, upper }: Ends): boolean {
+	if (value.s < 0n) return lower !== null && lower.compare(value) > 0;
+	return upper !== null && upper.compare(value) < 0;
 }
 
 function sameSuggestion(a: Diagnosis, b: Diagnosis): boolean {

@@ -99,7 +99,7 @@ export function relationReversed(trial: Trial): Diagnosis[] {
 	const { reading, relation } = trial;
 	if (relation === '=' || !trial.agrees(reading, OPPOSITE[relation])) return [];
 	const words = relation === '<=' ? 'at least' : 'at most';
-	const printed = reading.printed.trim();
+	const printed = reading.printed.trim().replace(/^(?:[<>]=?|[≤≥=])\s*/, '');
 	const text = `the relation is meant the other way: ${words} ${printed}`;
 	return [trial.make('relation-reversed', printed, text)];
 }

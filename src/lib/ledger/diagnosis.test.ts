@@ -93,6 +93,24 @@ describe('diagnose', () => {
 		expect(diagnosisOf(c).map((d) => [d.kind, d.value])).toContainEqual([kind, value]);
 	});
 
+	it.each([
+		['1.9', ['2', '2']],
+		['1.9', ['1.9999999999', '2.0000000001']],
+		['-0.9', ['-1', '-1']],
+		['0.9', ['0.9999999999', '1']]
+	] as const)('a whole number is never cut off to %s', (printed, between) => {
+		const kinds = diagnosisOf({ printed, between }).map(({ kind }) => kind);
+		expect(kinds).not.toContain('truncated');
+		expect(kinds).not.toContain('solver-tolerance');
+	});
+
+	it('names the bound alone where the relation is meant the other way', () => {
+		const found = diagnosisOf({ printed: '>= 2.8285', relation: '>=', between: CHSH });
+		expect(found.find(({ kind }) => kind === 'relation-reversed')?.text).toBe(
+			'the relation is meant the other way: at most 2.8285'
+		);
+	});
+
 	it('completes "It would agree if" with the arithmetic', () => {
 		const [quantity] = diagnosisOf({ printed: '0.2515', between: I3322, others: [ALMOST] });
 		expect(quantity?.text).toBe(

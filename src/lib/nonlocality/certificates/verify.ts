@@ -24,6 +24,11 @@ type Proved = Extract<CheckOutcome, { checked: true }>;
 export function verifyResult(result: Result): CheckOutcome {
 	if (result.status !== 'done')
 		return { checked: false, reason: `the result is not done: ${result.status}` };
+	if (result.quantity !== result.problem.quantity)
+		return {
+			checked: false,
+			reason: `the result says "${result.quantity}", its problem "${result.problem.quantity}"`
+		};
 	try {
 		const g = functionalToMaximise(result.problem);
 		const outcome = checkCertificate(result.problem, g, result.certificate);

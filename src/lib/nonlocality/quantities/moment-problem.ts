@@ -82,20 +82,25 @@ function linearForm(matrix: MomentMatrix, functional: Functional) {
 	for (const { events, coefficient } of terms) {
 		const moment = momentOfEvents(matrix, events);
 		if (moment === null)
-			throw missingMoment(matrix, Math.max(...terms.map((term) => term.events.length)));
+			throw missingMoment(
+				matrix,
+				events.length,
+				Math.max(...terms.map((term) => term.events.length))
+			);
 		form[moment] = coefficient.value;
 		error += coefficient.error;
 	}
 	return { form, error };
 }
 
-function missingMoment(matrix: MomentMatrix, degree: number): SolverStop {
+/** @param degree of the moment that is missing; @param largest of all that the problem needs */
+function missingMoment(matrix: MomentMatrix, degree: number, largest: number): SolverStop {
 	const parties = matrix.alphabet.scenario.outputs.length;
-	const enough = Math.ceil(degree / 2);
+	const enough = Math.ceil(largest / 2);
 	const local = parties === 2 ? '1+AB' : '1 per party ({"perParty": 1})';
 	return new SolverStop(
 		'failed',
-		`level ${printLevel(matrix.level)} lacks a moment of ${degree} parties that the problem ` +
+		`level ${printLevel(matrix.level)} lacks a moment of ${degree === 1 ? 'one party' : `${degree} parties`} that the problem ` +
 			`needs; level ${enough} or ${local} has it`
 	);
 }

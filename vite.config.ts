@@ -32,6 +32,7 @@ export default defineConfig({
 			provider: 'custom',
 			customProviderModule: './tests/support/coverage-provider.mjs',
 			include: ['src/lib/nonlocality/**/*.ts'],
+			thresholds: { branches: 95 },
 			// Compiled to WebAssembly, never run as JavaScript; its tests compare it with the plain kernels.
 			exclude: ['**/*.test.ts', 'src/lib/nonlocality/linalg/kernels/assembly/**']
 		},

@@ -2,7 +2,8 @@
  * Coverage by V8, without the fallbacks that only the type checker asks for: an index into a list may
  * be undefined to it (`noUncheckedIndexedAccess`), so the code says `list[i] ?? 0`, and where i is in
  * range the 0 is no branch that a test could take. What counts as one is narrow: the left side ends
- * in `]`, the right side is a literal or a name in capitals, and no test took it.
+ * in `]`, `]?.length` or `.at(-1)`, the right side is a literal or a name in capitals, and no test
+ * took it.
  */
 import { readFileSync } from 'node:fs';
 import v8 from '@vitest/coverage-v8';
@@ -19,7 +20,8 @@ function withoutFallbacks(coverage, text) {
 	const isFallback = ({ start }) => {
 		const at = indexOf(starts, start);
 		return (
-			/\]\s*\?\?\s*$/.test(text.slice(Math.max(0, at - 80), at)) && FALLBACK.test(text.slice(at))
+			/(?:\](?:\?\.length)?|\.at\(-1\))\s*\?\?\s*$/.test(text.slice(Math.max(0, at - 80), at)) &&
+			FALLBACK.test(text.slice(at))
 		);
 	};
 	for (const [id, branch] of Object.entries(coverage.branchMap)) {

@@ -162,6 +162,13 @@ describe('checkStrategy', () => {
 		});
 		const entangled = { ...problem, state: 'maximally-entangled' } as const;
 		expect(checkStrategy(entangled, g, optimal()).checked).toBe(true);
+		expect(checkStrategy({ ...entangled, dimension: [3] }, g, optimal())).toMatchObject({
+			reason: 'the strategy does not have the dimensions of the prescribed state'
+		});
+		const short = { ...problem, state: [[1, 0]] } as const;
+		expect(checkStrategy(short, g, optimal())).toMatchObject({
+			reason: 'the prescribed state does not fit the dimensions'
+		});
 		const product = {
 			...problem,
 			state: [

@@ -28,21 +28,24 @@ export function choleskyAllowance(matrix: RealTriangle): number {
 	return (1.05 * gamma * traceOf(matrix)) / (1 - gamma) + 1e-300;
 }
 
+/** Entry of an irregular matrix: no comparison with it holds, so that nothing is proved. */
+const MISSING = NaN;
+
 /** The Cholesky factor of matrix + moved * 1 as floating-point arithmetic finds it, or null. */
 export function choleskyFactor(matrix: RealTriangle, moved: number): Float64Array[] | null {
 	const factor: Float64Array[] = [];
 	for (const [i, source] of matrix.entries()) {
 		const row = new Float64Array(i + 1);
+		factor.push(row);
 		for (let j = 0; j <= i; j++) {
-			const other = j < i ? (factor[j] ?? row) : row;
-			let rest = source[j] ?? NaN;
+			const other = factor[j] ?? [];
+			let rest = source[j] ?? MISSING;
 			if (j === i) rest += moved;
-			for (let k = 0; k < j; k++) rest -= (row[k] ?? NaN) * (other[k] ?? NaN);
-			if (j < i) row[j] = rest / (other[j] ?? NaN);
+			for (let k = 0; k < j; k++) rest -= (row[k] ?? MISSING) * (other[k] ?? MISSING);
+			if (j < i) row[j] = rest / (other[j] ?? MISSING);
 			else if (!(rest > 0) || rest === Infinity) return null;
 			else row[i] = Math.sqrt(rest);
 		}
-		factor.push(row);
 	}
 	return factor;
 }

@@ -92,7 +92,11 @@ describe('parseCoefficient', () => {
 		['constructor', 0],
 		['[1,2]', 0],
 		['{}', 0],
-		['cos(1e300)', 0]
+		['cos(1e300)', 0],
+		['sqrt()', 0],
+		['pi(2)', 3],
+		['2 sqrt', 0],
+		['1/pi sqrt(2)', 0]
 	])('refuses %j at position %i', (text, position) => {
 		let caught: unknown;
 		try {
@@ -107,6 +111,14 @@ describe('parseCoefficient', () => {
 	it('refuses texts past its limits', () => {
 		expect(() => parseCoefficient(`1${'+1'.repeat(300)}`)).toThrow(/more than 500 characters/);
 		expect(() => parseCoefficient(`${'('.repeat(60)}1${')'.repeat(60)}`)).toThrow(/50 levels/);
+	});
+
+	it('refuses a product that spreads into too many or too long square roots', () => {
+		const product = (primes: number[]) => primes.map((p) => `(1+sqrt(${p}))`).join('*');
+		expect(() => parseCoefficient(product([2, 3, 5, 7, 11, 13, 17]))).toThrow(/irrational parts/);
+		expect(() => parseCoefficient(`1234567^9*${product([2, 3, 5, 7])}`)).toThrow(
+			/too many irrational numbers/
+		);
 	});
 
 	it('reads back what it prints', () => {

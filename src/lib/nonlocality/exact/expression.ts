@@ -29,11 +29,26 @@ const LONGEST_FRACTION = 700;
 /** A number whose double is less certain than this, relative to max(1, |value|), is refused. */
 const LARGEST_RELATIVE_ERROR = 1e-9;
 
-const FUNCTIONS: Readonly<Record<string, (a: Coefficient) => Coefficient>> = {
-	sqrt: squareRoot,
-	cos: cosine,
-	sin: sine
-};
+type OneNumber = (a: Coefficient) => Coefficient;
+
+const FUNCTIONS: ReadonlyMap<string, OneNumber> = new Map([
+	['sqrt', squareRoot],
+	['cos', cosine],
+	['sin', sine]
+]);
+
+const UNARY: ReadonlyMap<string, OneNumber> = new Map([
+	['unaryMinus', negateCoefficient],
+	['unaryPlus', (a: Coefficient) => a]
+]);
+
+const BINARY: ReadonlyMap<string, (a: Coefficient, b: Coefficient) => Coefficient> = new Map([
+	['add', addCoefficients],
+	['subtract', subtractCoefficients],
+	['multiply', multiplyCoefficients],
+	['divide', divideCoefficients],
+	['pow', powerOfCoefficient]
+]);
 
 const TOKEN = /(\d+\.?\d*|\.\d+)(?:[eE]([+-]?\d+))?|[A-Za-z]+|\S/g;
 
@@ -77,7 +92,7 @@ function readLiterals(text: string, original: (index: number) => number | null):
 		} else if (/^[A-Za-z]/.test(token)) {
 			const digit = /^\d/.exec(text.slice(match.index + token.length));
 			if (digit) throw unknownWord(token + digit[0], position);
-			if (token !== 'pi' && !Object.hasOwn(FUNCTIONS, token)) throw unknownWord(token, position);
+			if (token !== 'pi' && !FUNCTIONS.has(token)) throw unknownWord(token, position);
 			if (/\/\s*[\d.]+$/.test(text.slice(0, match.index)))
 				throw new NotationError(
 					`it is not clear whether ${token} belongs below the fraction bar`,
@@ -125,7 +140,7 @@ function parseTree(text: string, original: (index: number) => number | null): Ma
 		return library.parse(text);
 	} catch (error) {
 		const at = error instanceof SyntaxError && 'char' in error ? Number(error.char) - 1 : NaN;
-		const position = Number.isInteger(at) ? original(Math.max(0, Math.min(at, text.length))) : null;
+		const position = original(Math.max(0, Math.min(at, text.length)));
 		const ends = at >= text.trimEnd().length;
 		throw new NotationError(
 			ends ? 'the number ends too early' : 'this is not a number as it stands',
@@ -160,7 +175,7 @@ class Walk {
 		if (isNode(node, 'SymbolNode') && node.name === 'pi') return PI;
 		if (isNode(node, 'FunctionNode')) {
 			const name = node.fn.name;
-			const apply = Object.hasOwn(FUNCTIONS, name) ? FUNCTIONS[name] : undefined;
+			const apply = FUNCTIONS.get(name);
 			const [argument, second] = node.args;
 			if (!apply || !argument || second) throw new NotationError(`${name} takes one number`);
 			return apply(this.read(argument));
@@ -178,40 +193,24 @@ class Walk {
 	private constant(): Coefficient {
 		const literal = this.literals[this.next++];
 		const value = literal && parseRational(literal.text);
-		if (!value) throw new NotationError('this number is not understood', literal?.position ?? null);
+		if (!value) throw new NotationError('this number is not understood');
 		return exactCoefficient(value);
 	}
 
 	private operator(node: NodeTypes['OperatorNode']): Coefficient {
-		const [first, second, third] = node.args;
-		if (!first || third) throw new NotationError(`${node.op} is not understood here`);
-		const a = this.read(first);
-		if (!second) {
-			if (node.fn === 'unaryMinus') return negateCoefficient(a);
-			if (node.fn === 'unaryPlus') return a;
-			throw new NotationError(`${node.op} is not understood here`);
-		}
-		const b = this.read(second);
-		switch (node.fn) {
-			case 'add':
-				return addCoefficients(a, b);
-			case 'subtract':
-				return subtractCoefficients(a, b);
-			case 'multiply':
-				return multiplyCoefficients(a, b);
-			case 'divide':
-				if (isNode(second, 'OperatorNode') && second.implicit)
-					throw new NotationError(
-						'it is not clear what belongs below the fraction bar',
-						null,
-						'Write a *, or parentheses around what stands below.'
-					);
-				return divideCoefficients(a, b);
-			case 'pow':
-				return powerOfCoefficient(a, b);
-			default:
-				throw new NotationError(`${node.op} is not understood here`);
-		}
+		const [a, b] = node.args.map((argument) => this.read(argument));
+		const unary = UNARY.get(node.fn);
+		if (unary && a) return unary(a);
+		const divisor = node.fn === 'divide' && node.args[1];
+		if (divisor && isNode(divisor, 'OperatorNode') && divisor.implicit)
+			throw new NotationError(
+				'it is not clear what belongs below the fraction bar',
+				null,
+				'Write a *, or parentheses around what stands below.'
+			);
+		const binary = BINARY.get(node.fn);
+		if (binary && a && b) return binary(a, b);
+		throw new NotationError(`${node.op} is not understood here`);
 	}
 }
 

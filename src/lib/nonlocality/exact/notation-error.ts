@@ -12,6 +12,12 @@ export class NotationError extends Error {
 	}
 }
 
+/** The error of a part, with the part's place before its message. @throws any other error */
+export function errorWithin(place: string, error: unknown): NotationError {
+	if (!(error instanceof NotationError)) throw error;
+	return new NotationError(`${place}: ${error.message}`, null, error.suggestion);
+}
+
 /** Well written, but past a limit that the message names. */
 export class NotationLimitError extends NotationError {
 	constructor(message: string, position: number | null = null, suggestion: string | null = null) {

@@ -74,3 +74,15 @@ describe('hermitianEigen', () => {
 		expect(high).toBeCloseTo(1, 14);
 	});
 });
+
+describe('degenerate matrices', () => {
+	it('has no eigenvalues without rows', () => {
+		expect(hermitianEigen(complexZeros(0, true), 0).values).toHaveLength(0);
+	});
+
+	it('refuses entries that are not finite', () => {
+		const matrix = complexZeros(9, true);
+		matrix.re.fill(NaN);
+		expect(() => hermitianEigen(matrix, 3)).toThrow(/did not converge/);
+	});
+});

@@ -13,6 +13,9 @@ import { largestBlockStep } from './block-step-length';
 import type { MatrixCone, StepFraction } from './matrix-cone';
 import type { SparseRow } from './moment-programme';
 
+/** Stands for the part of a block that there is not. */
+const NO_BLOCK = new Float64Array(0);
+
 /**
  * The matrices of a block programme, block by block: too small for a call of other kernels than the
  * plain ones to pay. The projection on the multiplier's equalities is by the Gram matrix of the B_j.
@@ -72,9 +75,9 @@ export class BlockCone implements MatrixCone {
 		this.#factor.set(matrix);
 		const factors = blocksOf(this.#programme, this.#factor);
 		const inverses = blocksOf(this.#programme, inverse);
-		if (!sizes.every((size, b) => factorCholesky(factors[b] ?? inverse, size))) return false;
+		if (!sizes.every((size, b) => factorCholesky(factors[b] ?? NO_BLOCK, size))) return false;
 		sizes.forEach((size, b) => {
-			invertFactor(factors[b] ?? inverse, size, inverses[b] ?? inverse);
+			invertFactor(factors[b] ?? NO_BLOCK, size, inverses[b] ?? NO_BLOCK);
 		});
 		return true;
 	}
@@ -83,7 +86,7 @@ export class BlockCone implements MatrixCone {
 		const inverses = blocksOf(this.#programme, inverseFactor);
 		const outs = blocksOf(this.#programme, out);
 		this.#programme.sizes.forEach((size, b) => {
-			inverseFromFactor(inverses[b] ?? inverseFactor, size, outs[b] ?? out);
+			inverseFromFactor(inverses[b] ?? NO_BLOCK, size, outs[b] ?? NO_BLOCK);
 		});
 	}
 
@@ -91,21 +94,22 @@ export class BlockCone implements MatrixCone {
 		const inverses = blocksOf(this.#programme, inverseFactor);
 		const directions = blocksOf(this.#programme, direction);
 		return this.#programme.sizes.reduce((step, size, b) => {
-			const own = largestBlockStep(inverses[b] ?? inverseFactor, directions[b] ?? direction, size);
+			const own = largestBlockStep(inverses[b] ?? NO_BLOCK, directions[b] ?? NO_BLOCK, size);
 			return Math.min(step, own);
 		}, Infinity);
 	}
 
 	subtractProduct(out: Float64Array, a: Float64Array, b: Float64Array, c: Float64Array): void {
-		const [as, bs, cs] = [a, b, c].map((array) => blocksOf(this.#programme, array));
+		const lefts = blocksOf(this.#programme, a);
+		const middles = blocksOf(this.#programme, b);
+		const rights = blocksOf(this.#programme, c);
 		const firsts = blocksOf(this.#programme, this.#first);
 		const seconds = blocksOf(this.#programme, this.#second);
 		this.#programme.sizes.forEach((size, k) => {
-			const [left, middle, right] = [as?.[k], bs?.[k], cs?.[k]];
-			const [first, second] = [firsts[k], seconds[k]];
-			if (!left || !middle || !right || !first || !second) return;
-			multiply(left, middle, first, size);
-			multiply(first, right, second, size);
+			const first = firsts[k] ?? NO_BLOCK;
+			const second = seconds[k] ?? NO_BLOCK;
+			multiply(lefts[k] ?? NO_BLOCK, middles[k] ?? NO_BLOCK, first, size);
+			multiply(first, rights[k] ?? NO_BLOCK, second, size);
 			symmetrise(second, size);
 		});
 		addScaled(out, -1, this.#second);

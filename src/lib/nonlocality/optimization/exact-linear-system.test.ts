@@ -55,3 +55,9 @@ it('gives no answer for a singular system', () => {
 	] as const;
 	expect(solveExactly(rows, [1n, 0n], () => {})).toBeNull();
 });
+
+it('leaves a system of more than 800 rows alone', () => {
+	const rows = Array.from({ length: 801 }, (_, i) => [[i, 1] as const]);
+	const rightSide = rows.map(() => 1n);
+	expect(solveExactly(rows, rightSide, () => {})).toBeNull();
+});

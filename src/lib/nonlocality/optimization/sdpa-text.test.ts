@@ -112,3 +112,7 @@ describe('SDPA text', () => {
 		);
 	});
 });
+
+test('refuses a text of more than 50 million characters', () => {
+	expect(() => parseSdpa('1'.repeat(50_000_001))).toThrow(/longer than 50000000 characters/);
+});

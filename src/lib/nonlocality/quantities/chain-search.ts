@@ -8,7 +8,7 @@ import {
 	type ChainFunctional,
 	type ChainStrategy
 } from './chain-strategy';
-import { BudgetSpent } from './search-budget';
+import { expectBudgetSpent } from './search-budget';
 import type { SeeSawStrategy } from './see-saw-strategy';
 
 /** Patterns are tried in this local dimension: long enough to tell them apart, and quick. */
@@ -92,7 +92,7 @@ export class ChainSearch {
 		try {
 			value = climbChain(this.#functional, chain, options);
 		} catch (error) {
-			if (!(error instanceof BudgetSpent)) throw error;
+			expectBudgetSpent(error);
 			stop = error;
 		}
 		if (explores && value > best) {

@@ -130,6 +130,7 @@ class MixtureSearch {
 		const allowance = this.#objective.allowance.add(twiceTheErrors(this.#functional));
 		const sides = outcomeOfSides(below, above, allowance);
 		const { weights } = this.#below;
+		const { multipliers } = this.#above;
 		return {
 			...sides,
 			method: {
@@ -144,8 +145,8 @@ class MixtureSearch {
 					const weight = weights[i] ?? ZERO;
 					return weight.n === 0n ? [] : [{ weight: printRational(weight), strategy }];
 				}),
-				multipliers: this.#above.multipliers.map((m, k) =>
-					printRational(m.mul(ratio(this.#constraints[k]?.integers.denominator ?? 1n, denominator)))
+				multipliers: this.#constraints.map(({ integers }, k) =>
+					printRational((multipliers[k] ?? ZERO).mul(ratio(integers.denominator, denominator)))
 				),
 				value: sides.exact
 			}

@@ -92,8 +92,8 @@ abstract class Enumeration {
 		this.ties?.visit([...fixed, bestReplies(last, entry)]);
 	}
 
-	protected startCode(level: number): MixedRadixGray {
-		const code = new MixedRadixGray(this.parties[level]?.outputs ?? []);
+	protected startCode(level: number, outputs: readonly number[]): MixedRadixGray {
+		const code = new MixedRadixGray(outputs);
 		this.codes[level] = code;
 		return code;
 	}
@@ -126,7 +126,7 @@ class DoubleEnumeration extends Enumeration {
 		const current = rows.slice(0, width);
 		const sums = last?.binary ? rowSums(rows, width) : null;
 		let sum = sums ? at(sums, 0) : 0;
-		const code = this.startCode(level);
+		const code = this.startCode(level, party.outputs);
 		do {
 			let modulus = 0;
 			if (code.changed >= 0) {
@@ -222,7 +222,7 @@ class BigIntEnumeration extends Enumeration {
 		if (level === this.parties.length - 1) return this.#reply(party, rows);
 		const width = rows.length / party.size;
 		const current = rows.slice(0, width);
-		const code = this.startCode(level);
+		const code = this.startCode(level, party.outputs);
 		do {
 			if (code.changed >= 0) {
 				const old = rowOf(party, code.changed, code.before) * width;

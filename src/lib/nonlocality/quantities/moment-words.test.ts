@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { levelWords } from './moment-level';
-import { adjointProduct, makeAlphabet, momentKey, type Word } from './moment-words';
+import { adjointProduct, letterOf, makeAlphabet, momentKey, type Word } from './moment-words';
 import type { Level } from '../problem';
 import { isClosed, levelNames, momentName, nameOf } from '../certificates/operator-words';
 import type { Monomial } from '../certificates/types';
@@ -66,3 +66,10 @@ function printed(alphabet: ReturnType<typeof makeAlphabet>, word: Word): Monomia
 		)
 	);
 }
+
+test('has no projector for a last output, nor for an input that is not there', () => {
+	const alphabet = makeAlphabet({ outputs: [[2]] });
+	expect(letterOf(alphabet, 0, 0, 0)).toBe(0);
+	expect(() => letterOf(alphabet, 0, 0, 1)).toThrow(RangeError);
+	expect(() => letterOf(alphabet, 0, 1, 0)).toThrow(RangeError);
+});

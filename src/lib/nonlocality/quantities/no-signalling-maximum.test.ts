@@ -7,13 +7,21 @@ import { parseCoefficient } from '../exact/expression';
 import { parseRational } from '../exact/rational';
 import type { Problem } from '../problem';
 import { familyFunctional, type FamilySpec } from '../scenario/families';
-import { makeFunctional, scaleFunctional, type Functional } from '../scenario/functional';
+import { integerFunctional } from '../scenario/fixed-point';
+import {
+	collinsGisinForm,
+	makeFunctional,
+	scaleFunctional,
+	type Functional
+} from '../scenario/functional';
 import { functionalOfTerms } from '../scenario/problem-terms';
 import { relabelFunctional } from '../scenario/relabelling';
 import { bestBehaviour, bestMultipliers } from './no-signalling-certificate';
 import { noSignallingMaximum } from './no-signalling-maximum';
+import { maximiseOverPolytope, objectiveOf } from './no-signalling-programme';
 import { noSignallingRows } from './no-signalling-rows';
 import { solve } from './solve';
+import { WorkClock } from './work-clock';
 
 async function maximumOf(f: Functional, constraints: Problem['constraints'] = []) {
 	const problem = problemOn('no-signalling', f, { constraints });
@@ -232,5 +240,25 @@ describe('a poor proposal of the simplex method', () => {
 		expect(bound.how).toBe('rounded, with a residual');
 		expect(bound.multipliers.every((m) => m.compare(0) >= 0)).toBe(true);
 		expect(bound.bound.compare(behaviour.value)).toBeGreaterThan(0);
+	});
+
+	it('is mended by its basis where only its numbers are off', async () => {
+		const chsh = familyFunctional({ name: 'chsh' });
+		const { terms } = integerFunctional(collinsGisinForm(chsh));
+		const costs = objectiveOf(polytope, terms);
+		const clock = new WorkClock(quietControl, 3600);
+		const { solution } = await maximiseOverPolytope(polytope, costs, clock, quietControl);
+		const off = (values: Float64Array) => values.map((value) => value + 1e-5 * Math.PI);
+		const outside = solution.primal.map(() => 2);
+		for (const primal of [off(solution.primal), outside]) {
+			const behaviour = bestBehaviour(polytope, costs, { ...solution, primal }, () => {});
+			expect(behaviour.how).toBe('exact basis');
+			// the PR box: Popescu, Rohrlich, Found. Phys. 24, 379 (1994)
+			expect(behaviour.value.equals(4)).toBe(true);
+		}
+		const multipliers = off(solution.multipliers);
+		const bound = bestMultipliers(polytope, costs, { ...solution, multipliers }, 1, () => {});
+		expect(bound.how).toBe('exact basis');
+		expect(bound.bound.equals(4)).toBe(true);
 	});
 });

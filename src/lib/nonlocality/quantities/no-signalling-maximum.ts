@@ -1,4 +1,4 @@
-import { ratio } from '../exact/rational';
+import { ZERO, ratio } from '../exact/rational';
 import type { Control, ProblemOf } from '../problem';
 import { integerFunctional } from '../scenario/fixed-point';
 import { collinsGisinForm, type Functional } from '../scenario/functional';
@@ -67,7 +67,9 @@ export async function noSignallingMaximum(
 			primal: recordOfRows(polytope, behaviour.probabilities),
 			dual: recordOfRows(
 				polytope,
-				multipliers.multipliers.map((m, i) => m.mul(unit).mul(polytope.rows[i]?.scale ?? 1n))
+				polytope.rows.map(({ scale }, i) =>
+					(multipliers.multipliers[i] ?? ZERO).mul(unit).mul(scale)
+				)
 			),
 			value: sides.exact
 		}

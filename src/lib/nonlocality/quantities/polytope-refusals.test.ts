@@ -6,6 +6,7 @@ import type {
 	HybridCertificate,
 	LocalMixtureCertificate
 } from '../certificates/types';
+import { checkFacet } from '../certificates/check-facet';
 import { verifyResult } from '../certificates/verify';
 import type { DoneResult, Problem } from '../problem';
 import { familyFunctional } from '../scenario/families';
@@ -132,6 +133,14 @@ describe('a facet certificate', () => {
 		expect(refused([['1', [[0, 0, 0]]]])).toMatch(/does not vanish/);
 		const irrational = { ...tilted, terms: [['sqrt(2)', [[0, 0, 0]]]] } as const;
 		expect(reasonOf(result, whole, { ...irrational, quantity: 'facet' })).toMatch(/rational/);
+	});
+
+	it('is refused where the strategies are too many to enumerate again', () => {
+		const many = familyFunctional({ name: 'chained', n: 60 });
+		const certificate = { kind: 'facet', maximum: '118', strategies: [], vanishing: null } as const;
+		expect(checkFacet(many, certificate)).toMatchObject({
+			reason: 'the enumeration of all strategies is too large to repeat here'
+		});
 	});
 });
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Control, ProblemOf } from '../problem';
+import { QuantumEnclosure } from './quantum-enclosure';
 import { quantumMaximum } from './quantum-maximum';
 import { familyFunctional } from '../scenario/families';
 import { termsOfFunctional } from '../scenario/problem-terms';
@@ -85,5 +86,32 @@ describe('checkEnclosure', () => {
 			expect(checkEnclosure(problem, g, { ...certificate(), upperLevel })).toMatchObject({
 				reason: 'upper side: its level cannot be read'
 			});
+	});
+});
+
+describe('QuantumEnclosure', () => {
+	const lower = certificate().lower;
+	const upper = certificate().upper;
+
+	it('has infinite sides before anything is known', () => {
+		const enclosure = new QuantumEnclosure();
+		expect([enclosure.floor, enclosure.ceiling, enclosure.width]).toEqual([
+			-Infinity,
+			Infinity,
+			Infinity
+		]);
+		expect(enclosure.lowerFrom).toBeNull();
+	});
+
+	it('keeps the better sides, and takes crossing ones for a defect', () => {
+		if (!lower || !upper) throw new Error('both sides were found');
+		const enclosure = new QuantumEnclosure();
+		expect(enclosure.raise(2, lower)).toBe(true);
+		expect(enclosure.raise(1, lower)).toBe(false);
+		expect(enclosure.reduce(3, upper, 1)).toBe(true);
+		expect(enclosure.reduce(4, upper, 2)).toBe(false);
+		expect(enclosure.upperLevel).toBe(1);
+		expect(enclosure.width).toBe(1);
+		expect(() => enclosure.raise(3.5, lower)).toThrow(/contradict each other/);
 	});
 });

@@ -15,8 +15,18 @@ export class QuantumEnclosure {
 	#upperCertificate: MomentCertificate | ExactMomentCertificate | null = null;
 	#upperLevel: Level | null = null;
 
+	/** The lower side, -Infinity while there is none. */
+	get floor(): number {
+		return this.lower ?? -Infinity;
+	}
+
+	/** The upper side, Infinity while there is none. */
+	get ceiling(): number {
+		return this.upper ?? Infinity;
+	}
+
 	raise(lower: number, certificate: DeterministicCertificate | StrategyCertificate): boolean {
-		if (!(lower > (this.lower ?? -Infinity))) return false;
+		if (!(lower > this.floor)) return false;
 		this.lower = lower;
 		this.#lowerCertificate = certificate;
 		this.#expectOrder();
@@ -28,7 +38,7 @@ export class QuantumEnclosure {
 		certificate: MomentCertificate | ExactMomentCertificate,
 		level: Level
 	): boolean {
-		if (!(upper < (this.upper ?? Infinity))) return false;
+		if (!(upper < this.ceiling)) return false;
 		this.upper = upper;
 		// Feasible moments bound the relaxation from below, not the quantum maximum.
 		this.#upperCertificate = { ...certificate, moments: null, feasibleValue: null };
@@ -38,7 +48,7 @@ export class QuantumEnclosure {
 	}
 
 	get width(): number {
-		return this.lower === null || this.upper === null ? Infinity : this.upper - this.lower;
+		return this.ceiling - this.floor;
 	}
 
 	/** `local` when no quantum strategy found is better than the best deterministic one. */

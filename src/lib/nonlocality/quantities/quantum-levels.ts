@@ -1,10 +1,11 @@
-import { SolverStop, type Control, type Level, type ProblemOf } from '../problem';
+import type { Control, Level, ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { symmetryGroup } from '../scenario/symmetry-group';
 import { npaBound } from './npa-bound';
 import type { QuantumEnclosure } from './quantum-enclosure';
 import { levelsToTry, predictLevel, type LevelForecast } from './quantum-plan';
 import { ArmHistory, type Arm } from './quantum-schedule';
+import { stopOfPart } from './search-budget';
 
 /** A level predicted to take more than this many times what is left is not begun. */
 const HOPELESS = 3;
@@ -84,7 +85,7 @@ export class LevelArm implements Arm {
 		if (level === undefined) return;
 		const start = this.#control.now();
 		const predicted = this.#forecast(level).seconds;
-		const before = this.#enclosure.upper ?? Infinity;
+		const before = this.#enclosure.ceiling;
 		const elapsed = () => (this.#control.now() - start) / 1000;
 		try {
 			const problem = {
@@ -100,12 +101,12 @@ export class LevelArm implements Arm {
 			if (upper !== null && (certificate?.kind === 'npa-dual' || certificate?.kind === 'npa-exact'))
 				this.#enclosure.reduce(upper, certificate, level);
 		} catch (error) {
-			if (!(error instanceof SolverStop) || error.status === 'cancelled') throw error;
+			const { message } = stopOfPart(error);
 			if (this.#enclosure.width < 0) throw error;
-			this.#done.push({ level, reason: error.message, seconds: elapsed() });
+			this.#done.push({ level, reason: message, seconds: elapsed() });
 			return;
 		}
 		if (predicted > TELLING) this.#pace = elapsed() / predicted;
-		this.history.note(before - (this.#enclosure.upper ?? Infinity));
+		this.history.note(before - this.#enclosure.ceiling);
 	}
 }

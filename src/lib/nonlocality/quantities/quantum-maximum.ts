@@ -8,6 +8,7 @@ import { LevelArm } from './quantum-levels';
 import { dimensionsToTry } from './quantum-plan';
 import { mostPromising, type Arm } from './quantum-schedule';
 import { DimensionArm, GrowthArm } from './quantum-search';
+import { stopOfPart } from './search-budget';
 import { StrategyGrowth } from './see-saw-growth';
 import { searchStrategies } from './strategy-search';
 
@@ -129,8 +130,7 @@ class Escalation {
 			this.#enclosure.raise(lower, certificate);
 			this.#local = { local: lower };
 		} catch (error) {
-			if (!(error instanceof SolverStop) || error.status === 'cancelled') throw error;
-			this.#local = { localReason: error.message };
+			this.#local = { localReason: stopOfPart(error).message };
 		}
 	}
 
@@ -151,7 +151,6 @@ class Escalation {
 			known: null
 		} as const;
 		const found = searchStrategies(this.#g, search, this.#passingOn());
-		if (!found) return;
 		this.#enclosure.raise(found.certificate.value, found.certificate);
 		this.#growth.growFrom(found.strategy);
 	}

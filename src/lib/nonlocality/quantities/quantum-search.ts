@@ -27,6 +27,9 @@ export interface KnownSides {
 	readonly lower: number | null;
 	readonly upper: number | null;
 	readonly width: number;
+	/** The sides, infinite while they are not known. */
+	readonly floor: number;
+	readonly ceiling: number;
 	raise(lower: number, certificate: StrategyCertificate): boolean;
 }
 
@@ -75,7 +78,7 @@ export class DimensionArm implements Arm {
 	run(seconds: number): void {
 		const { problem, g, known, control, onBetter } = this.#around;
 		const began = control.now();
-		const before = known.lower ?? -Infinity;
+		const before = known.floor;
 		const search = {
 			dimensions: partyDimensions([this.dimension], problem.outputs.length),
 			starts: this.#batch,
@@ -89,20 +92,18 @@ export class DimensionArm implements Arm {
 		} as const;
 		try {
 			const found = searchStrategies(g, search, control);
-			this.#starts += found?.startsDone ?? this.#batch;
+			this.#starts += found.startsDone;
 			this.#batch *= 2;
-			if (found) {
-				const { certificate } = found;
-				this.#lower = Math.max(this.#lower ?? -Infinity, certificate.value);
-				if (known.raise(certificate.value, certificate)) onBetter(found.strategy);
-			}
+			const { certificate } = found;
+			this.#lower = Math.max(this.#lower ?? -Infinity, certificate.value);
+			if (known.raise(certificate.value, certificate)) onBetter(found.strategy);
 		} catch (error) {
 			if (!(error instanceof SolverStop) || error.status !== 'limit') throw error;
 			this.#starts = MOST_STARTS; // too large: not to be visited again
 		}
 		const elapsed = (control.now() - began) / 1000;
 		this.#spent += elapsed;
-		this.history.note((known.lower ?? -Infinity) - before);
+		this.history.note(known.floor - before);
 	}
 }
 
@@ -135,12 +136,12 @@ export class GrowthArm implements Arm {
 
 	run(seconds: number): void {
 		const { problem, known, control } = this.#around;
-		const before = known.lower ?? -Infinity;
-		const enough = (known.upper ?? Infinity) - problem.gap / 2;
+		const before = known.floor;
+		const enough = known.ceiling - problem.gap / 2;
 		const slice = Math.min(seconds, this.#slice);
 		this.#slice *= 2;
 		const found = this.#growth.run(slice, before, control, enough);
 		if (found) known.raise(found.value, found);
-		this.history.note((known.lower ?? -Infinity) - before);
+		this.history.note(known.floor - before);
 	}
 }

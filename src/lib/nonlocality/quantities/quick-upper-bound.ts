@@ -1,7 +1,8 @@
-import { SolverStop, type Control, type ProblemOf } from '../problem';
+import type { Control, ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { npaBound } from './npa-bound';
 import { levelsToTry, predictLevel } from './quantum-plan';
+import { stopOfPart } from './search-budget';
 
 /** Predicted seconds up to which a relaxation costs less than the starts it may save. */
 const QUICK = 0.01;
@@ -32,7 +33,7 @@ export function quickUpperBound(
 			const { upper } = npaBound(relaxation, g, quiet);
 			if (upper !== null) best = Math.min(best ?? Infinity, upper);
 		} catch (error) {
-			if (!(error instanceof SolverStop) || error.status === 'cancelled') throw error;
+			stopOfPart(error);
 		}
 	}
 	return best;

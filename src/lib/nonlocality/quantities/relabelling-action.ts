@@ -10,17 +10,30 @@ import { PartyStrings } from './party-strings';
  */
 export type Pattern = readonly number[];
 
+interface Party {
+	readonly centred: CentredStrings;
+	readonly inputStrings: PartyStrings;
+	/** Pattern and place of each string of letters, as they are asked for. */
+	readonly patterns: number[];
+	readonly places: number[];
+}
+
+/** What a relabelling does to one party. */
+interface ElementPart {
+	/** The new party. */
+	readonly target: number;
+	/** New input, and the orthogonal matrix of the outputs (null for the identity). */
+	readonly inputs: readonly number[];
+	readonly matrices: readonly (Float64Array | null)[];
+	/** Image and sign of each string of inputs, as they are asked for. */
+	readonly images: number[];
+	readonly signs: number[];
+}
+
 interface Element {
-	/** New party of each party. */
-	readonly parties: readonly number[];
+	readonly parts: readonly ElementPart[];
 	/** Old party of each party. */
 	readonly sources: readonly number[];
-	/** New input, and the orthogonal matrix of the outputs (null for the identity). */
-	readonly inputs: readonly (readonly number[])[];
-	readonly matrices: readonly (readonly (Float64Array | null)[])[];
-	/** By party: image and sign of each string of inputs, as they are asked for. */
-	readonly images: number[][];
-	readonly signs: number[][];
 }
 
 /**
@@ -28,33 +41,44 @@ interface Element {
  * matrix that is a product over the letters (a sign where all outputs are two).
  */
 export class RelabellingAction {
-	readonly #parties: readonly CentredStrings[];
-	readonly #inputStrings: readonly PartyStrings[];
+	readonly #parties: readonly Party[];
 	readonly #elements: readonly Element[];
 	readonly #bits: number;
-	readonly #placed: readonly { pattern: number[]; at: number[] }[];
 
 	constructor(parties: readonly CentredStrings[], elements: readonly Relabelling[]) {
-		this.#parties = parties;
 		this.#bits = Math.floor(52 / parties.length);
-		this.#inputStrings = parties.map(
-			({ inputCount }) => new PartyStrings(Array.from({ length: inputCount }, (_, x) => x))
-		);
-		this.#placed = parties.map(() => ({ pattern: [], at: [] }));
+		this.#parties = parties.map((centred) => ({
+			centred,
+			inputStrings: new PartyStrings(Array.from({ length: centred.inputCount }, (_, x) => x)),
+			patterns: [],
+			places: []
+		}));
 		this.#elements = elements.map((relabelling) => ({
-			parties: relabelling.parties,
-			sources: relabelling.parties.map((_, p) => relabelling.parties.indexOf(p)),
-			inputs: relabelling.inputs,
-			matrices: relabelling.outputs.map((ofParty, p) =>
-				ofParty.map((images, x) =>
+			parts: relabelling.parties.map((target, p) => ({
+				target,
+				inputs: relabelling.inputs[p] ?? [],
+				matrices: (relabelling.outputs[p] ?? []).map((images, x) =>
 					images.every((image, a) => image === a)
 						? null
-						: outputMatrix(parties[p]?.lettersOf(x) ?? noLetters(), images)
-				)
-			),
-			images: parties.map(() => []),
-			signs: parties.map(() => [])
+						: outputMatrix(this.#party(p).centred.lettersOf(x), images)
+				),
+				images: [],
+				signs: []
+			})),
+			sources: relabelling.parties.map((_, p) => relabelling.parties.indexOf(p))
 		}));
+	}
+
+	#party(p: number): Party {
+		const party = this.#parties[p];
+		if (!party) throw new RangeError(`there is no party ${p}`);
+		return party;
+	}
+
+	#element(number: number): Element {
+		const element = this.#elements[number];
+		if (!element) throw new RangeError(`there is no relabelling ${number}`);
+		return element;
 	}
 
 	get order(): number {
@@ -63,12 +87,9 @@ export class RelabellingAction {
 
 	/** Pattern of one party's string of letters, and where in the pattern's vectors it stands. */
 	placeOf(party: number, string: number): { pattern: number; at: number } {
-		const placed = this.#placed[party];
-		const centred = this.#parties[party];
-		const inputStrings = this.#inputStrings[party];
-		if (!placed || !centred || !inputStrings) throw new RangeError(`there is no party ${party}`);
-		const known = placed.pattern[string];
-		if (known !== undefined) return { pattern: known, at: placed.at[string] ?? 0 };
+		const { centred, inputStrings, patterns, places } = this.#party(party);
+		const known = patterns[string];
+		if (known !== undefined) return { pattern: known, at: places[string] ?? 0 };
 		let pattern = 0;
 		let at = 0;
 		for (const letter of centred.strings.letters(string)) {
@@ -76,8 +97,8 @@ export class RelabellingAction {
 			pattern = inputStrings.append(pattern, input);
 			at = at * centred.dimensionOf(input) + (letter - centred.firstOf(input));
 		}
-		placed.pattern[string] = pattern;
-		placed.at[string] = at;
+		patterns[string] = pattern;
+		places[string] = at;
 		return { pattern, at };
 	}
 
@@ -90,16 +111,10 @@ export class RelabellingAction {
 		}, 0);
 	}
 
-	/** Sizes of the factors of a pattern's space, party by party. */
-	#dimensions(pattern: Pattern): number[][] {
-		return pattern.map((part, p) =>
-			(this.#inputStrings[p]?.letters(part) ?? []).map((x) => this.#parties[p]?.dimensionOf(x) ?? 1)
-		);
-	}
-
 	dimensionOfPart(party: number, part: number): number {
-		const inputs = this.#inputStrings[party]?.letters(part) ?? [];
-		return inputs.reduce((product, x) => product * (this.#parties[party]?.dimensionOf(x) ?? 1), 1);
+		const { centred, inputStrings } = this.#party(party);
+		const inputs = inputStrings.letters(part);
+		return inputs.reduce((product, x) => product * centred.dimensionOf(x), 1);
 	}
 
 	dimension(pattern: Pattern): number {
@@ -109,37 +124,31 @@ export class RelabellingAction {
 	/** @param reversed the word's adjoint is taken as well. */
 	image(element: number, pattern: Pattern, reversed: boolean): number[] {
 		const image = pattern.map(() => 0);
-		const g = this.#elements[element];
-		if (!g) throw new RangeError('no such element');
-		pattern.forEach((part, p) => {
-			const target = g.parties[p] ?? p;
-			const cache = g.images[p];
-			const strings = this.#inputStrings[target];
-			if (!cache || !strings) throw new RangeError(`there is no party ${p}`);
-			let mapped = cache[part];
+		this.#element(element).parts.forEach(({ target, inputs, images }, p) => {
+			const part = pattern[p] ?? 0;
+			const { inputStrings } = this.#party(target);
+			let mapped = images[part];
 			if (mapped === undefined) {
 				mapped = 0;
-				for (const x of this.#inputStrings[p]?.letters(part) ?? [])
-					mapped = strings.append(mapped, g.inputs[p]?.[x] ?? 0);
-				cache[part] = mapped;
+				for (const x of this.#party(p).inputStrings.letters(part))
+					mapped = inputStrings.append(mapped, inputs[x] ?? 0);
+				images[part] = mapped;
 			}
-			image[target] = reversed ? strings.reversed(mapped) : mapped;
+			image[target] = reversed ? inputStrings.reversed(mapped) : mapped;
 		});
 		return image;
 	}
 
 	/** A pattern of dimension 1: what its vector is multiplied by. */
 	sign(element: number, pattern: Pattern): number {
-		const g = this.#elements[element];
 		let sign = 1;
-		pattern.forEach((part, p) => {
-			const cache = g?.signs[p];
-			let own = cache?.[part];
+		this.#element(element).parts.forEach(({ matrices, signs }, p) => {
+			const part = pattern[p] ?? 0;
+			let own = signs[part];
 			if (own === undefined) {
 				own = 1;
-				for (const x of this.#inputStrings[p]?.letters(part) ?? [])
-					own *= g?.matrices[p]?.[x]?.[0] ?? 1;
-				if (cache) cache[part] = own;
+				for (const x of this.#party(p).inputStrings.letters(part)) own *= matrices[x]?.[0] ?? 1;
+				signs[part] = own;
 			}
 			sign *= own;
 		});
@@ -161,34 +170,29 @@ export class RelabellingAction {
 			const sign = Math.round(this.sign(element, pattern));
 			return vectors.map((value) => sign * value);
 		}
-		const g = this.#elements[element];
-		const dimensions = this.#dimensions(pattern);
+		const { parts, sources } = this.#element(element);
+		const inputs = pattern.map((part, p) => this.#party(p).inputStrings.letters(part));
+		const dimensions = inputs.map((own, p) =>
+			own.map((x) => this.#party(p).centred.dimensionOf(x))
+		);
 		const sizes = [...dimensions.flat(), columns];
-		const factors = tensorFactors(sizes);
+		const matrices = inputs.flatMap((own, p) => own.map((x) => parts[p]?.matrices[x]));
 		let current = { re: vectors.slice(), im: null };
 		let other = { re: new Float64Array(vectors.length), im: null };
-		let axis = 0;
-		pattern.forEach((part, p) => {
-			for (const x of this.#inputStrings[p]?.letters(part) ?? []) {
-				const factor = factors[axis++];
-				const re = g?.matrices[p]?.[x];
-				if (!re || !factor) continue;
-				applyToFactor({ re, im: null }, factor, current, other);
-				[current, other] = [other, current];
-			}
+		tensorFactors(sizes).forEach((factor, axis) => {
+			const re = matrices[axis];
+			if (!re) return;
+			applyToFactor({ re, im: null }, factor, current, other);
+			[current, other] = [other, current];
 		});
 		let first = 0;
 		const axes = dimensions.map((own) => own.map(() => first++));
-		const order = (g?.sources ?? []).flatMap((source) => {
+		const order = sources.flatMap((source) => {
 			const own = axes[source] ?? [];
 			return reversed ? own.toReversed() : own;
 		});
 		return permuteAxes(current.re, sizes, [...order, first]);
 	}
-}
-
-function noLetters(): never {
-	throw new RangeError('the relabelling has a party too many');
 }
 
 /** Axis k of the result is axis order[k] of the row-major array. */

@@ -5,7 +5,7 @@ import { SolverStop, type Control, type ProblemOf } from '../problem';
 import type { ConstraintForm } from '../scenario/constraint-form';
 import type { Functional } from '../scenario/functional';
 import type { Outcome } from './outcome';
-import { BudgetSpent, pollWithin } from './search-budget';
+import { expectBudgetSpent, pollWithin } from './search-budget';
 import { ConstrainedAscent } from './see-saw-constraints';
 import { printDimensions } from './see-saw-dimensions';
 import { fixedState } from './see-saw-fixed-state';
@@ -72,7 +72,7 @@ export function searchUnderConstraints(
 			best = { certificate: { ...plain, violation }, real: reached.real, start: done };
 		}
 	} catch (error) {
-		if (!(error instanceof BudgetSpent)) throw error;
+		expectBudgetSpent(error);
 	}
 	if (!best) throw noneFound(done, nearest, search.seconds);
 	const { certificate, real, start } = best;

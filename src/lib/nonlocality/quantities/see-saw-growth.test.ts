@@ -9,6 +9,7 @@ import { climbChain } from './chain-climb';
 import { chainFunctional, expandChain, randomChain } from './chain-strategy';
 import { paddedStrategy } from './grown-strategy';
 import { searchStrategies } from './strategy-search';
+import { partyDimensions } from './see-saw-dimensions';
 import { arrangeForSeeSaw } from './see-saw-functional';
 import { StrategyGrowth } from './see-saw-growth';
 import { guaranteedValue } from './see-saw-guarantee';
@@ -137,5 +138,28 @@ describe('StrategyGrowth', () => {
 		const grown = growth.run(3, qubits?.value ?? 0, countingControl(), 2.91485);
 		expect(grown?.value).toBeGreaterThan(2.9148);
 		expect(growth.dimensions).toEqual([3, 3]);
+	});
+});
+
+describe('searchStrategies', () => {
+	const search = {
+		dimensions: [2, 2],
+		starts: 1,
+		firstStart: 0,
+		seed: 1,
+		seconds: 3600,
+		state: 'free',
+		from: null,
+		target: null,
+		known: null
+	} as const;
+
+	it('asks for at least one start, in dimensions that are whole numbers', () => {
+		expect(searchStrategies(g, search, countingControl()).startsDone).toBe(1);
+		expect(() => searchStrategies(g, { ...search, starts: 0 }, countingControl())).toThrow(
+			/at least one start/
+		);
+		expect(() => partyDimensions([0], 2)).toThrow(/0 is no whole number of at least 1/);
+		expect(() => partyDimensions([2, 2, 2], 2)).toThrow(/3 numbers for 2 parties/);
 	});
 });

@@ -4,7 +4,7 @@ import type { Control } from '../problem';
 import type { Functional } from '../scenario/functional';
 import { ChainSearch } from './chain-search';
 import { paddedStrategy } from './grown-strategy';
-import { BudgetSpent, pollWithin } from './search-budget';
+import { expectBudgetSpent, pollWithin } from './search-budget';
 import { climb } from './see-saw-climb';
 import { arrangeForSeeSaw, type SeeSawFunctional } from './see-saw-functional';
 import { guaranteedValue } from './see-saw-guarantee';
@@ -118,7 +118,7 @@ export class StrategyGrowth {
 				this.#report(known, control);
 			}
 		} catch (error) {
-			if (!(error instanceof BudgetSpent)) throw error;
+			expectBudgetSpent(error);
 			this.#takeChain();
 		}
 		if (!this.#current || this.#value <= known) return null;

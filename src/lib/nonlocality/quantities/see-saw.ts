@@ -67,23 +67,18 @@ export function seeSaw(
 		known: null
 	};
 	const found = searchStrategies(g, search, control);
-	if (grow === undefined || found?.targetReached) {
-		if (!found) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
-		return outcomeOf(found, dimensions);
-	}
+	if (grow === undefined || found.targetReached) return outcomeOf(found, dimensions);
 	const growth = new StrategyGrowth(g, { seed, largest: grow, start: from });
-	if (found) growth.growFrom(found.strategy);
+	growth.growFrom(found.strategy);
 	const left = seconds - (control.now() - began) / 1000;
-	const lower = found?.certificate.value ?? -Infinity;
+	const lower = found.certificate.value;
 	const enough = target === null ? Infinity : target - search.gap;
 	const grown = left > 0 ? growth.run(left, lower, control, enough) : null;
-	const certificate = grown ?? found?.certificate;
-	if (!certificate) throw new SolverStop('limit', `no start was possible within ${seconds} s`);
-	const outcome = found ? outcomeOf(found, dimensions) : null;
+	const certificate = grown ?? found.certificate;
 	return {
 		...plainOutcome(certificate.value, growth.value),
 		method: {
-			...(outcome?.method ?? { name: 'see-saw', dimension: dimensions }),
+			...outcomeOf(found, dimensions).method,
 			projective: certificate.projective,
 			grown: { dimensions: certificate.strategy.dimensions, tries: growth.tries }
 		},

@@ -3,7 +3,7 @@ import { setComplex } from '../linalg/complex-dense';
 import { seededRandom } from '../linalg/seeded-random';
 import type { Control, ProblemOf } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { BudgetSpent, pollWithin } from './search-budget';
+import { expectBudgetSpent, pollWithin } from './search-budget';
 import { climb } from './see-saw-climb';
 import { checkStateSize, printDimensions } from './see-saw-dimensions';
 import { fixedState } from './see-saw-fixed-state';
@@ -46,14 +46,14 @@ export interface SearchResult {
 
 /**
  * Best of many alternating maximisations from seeded random strategies, real and complex in turn,
- * and by twos with projective and with general measurements where there are more than two outputs. Null when the budget ended before the first step.
+ * and by twos with projective and with general measurements where there are more than two outputs.
  * @throws SolverStop `cancelled` when told to stop, `limit` for a state of more than 4096 entries
  */
 export function searchStrategies(
 	g: Functional,
 	search: StrategySearch,
 	control: Control
-): SearchResult | null {
+): SearchResult {
 	const { dimensions } = search;
 	checkStateSize(dimensions, 'dimension');
 	const functional = arrangeForSeeSaw(g);
@@ -85,7 +85,7 @@ export function searchStrategies(
 			({ value, converged } = done);
 			iterations += done.iterations;
 		} catch (error) {
-			if (!(error instanceof BudgetSpent)) throw error;
+			expectBudgetSpent(error);
 			stopped = true;
 			value = valueWhereStopped(g, strategy);
 		}
@@ -101,7 +101,7 @@ export function searchStrategies(
 		});
 		if (stopped) break;
 	}
-	if (!best) return null;
+	if (!best) throw new RangeError('a search has at least one start');
 	const certificate = guaranteedValue(g, best.strategy);
 	return { ...best, certificate, startsDone, iterations, targetReached };
 }

@@ -9,9 +9,9 @@ export function wholeStrategy(
 ): number[][] {
 	const strategy = scenario.outputs.map((counts) => counts.map(() => 0));
 	tensor.parties.forEach(({ party, inputs }, k) => {
+		const row = strategy[party] ?? [];
 		inputs.forEach((input, i) => {
-			const row = strategy[party];
-			if (row) row[input] = digits[k]?.[i] ?? 0;
+			row[input] = digits[k]?.[i] ?? 0;
 		});
 	});
 	return strategy;

@@ -34,24 +34,25 @@ export function equivalenceGraph(
 	terms: readonly { readonly events: readonly Event[]; readonly rank: number }[]
 ): EquivalenceGraph {
 	const events: Event[] = [];
-	const index = new Map<string, number>();
 	const inputs: [party: number, input: number][] = [];
-	scenario.outputs.forEach((counts, p) =>
-		counts.forEach((count, x) => {
-			inputs.push([p, x]);
+	const places: number[] = [];
+	const firstEvent = scenario.outputs.map((counts, p) =>
+		counts.map((count, x) => {
+			const first = events.length;
 			for (let a = 0; a < count; a++) {
-				index.set(`${p}.${x}.${a}`, events.length);
 				events.push([p, x, a]);
+				places.push(inputs.length);
 			}
+			inputs.push([p, x]);
+			return first;
 		})
 	);
-	const inputVertex = new Map(inputs.map(([p, x], i) => [`${p}.${x}`, events.length + i]));
-	const inputOfEvent = events.map(([p, x]) => inputVertex.get(`${p}.${x}`) ?? 0);
+	const inputOfEvent = places.map((place) => events.length + place);
 	const firstParty = events.length + inputs.length;
 	const partyOfInput = inputs.map(([p]) => firstParty + p);
 	const labelled = terms.map((term) => ({
 		rank: term.rank,
-		events: term.events.map((event) => index.get(event.join('.')) ?? 0)
+		events: term.events.map(([p, x, a]) => (firstEvent[p]?.[x] ?? 0) + a)
 	}));
 	const firstTerm = firstParty + scenario.outputs.length;
 	const edges: [number, number][] = [

@@ -21,7 +21,7 @@ export function dropUnused(scenario: Scenario, terms: readonly IntegerTerm[]): U
 	const parties = inputs.flatMap((list, p) => (list.length > 0 ? [p] : []));
 	const renumber = ([p, x, a]: Event): Event => [
 		parties.indexOf(p),
-		inputs[p]?.indexOf(x) ?? -1,
+		(inputs[p] ?? []).indexOf(x),
 		a
 	];
 	return {
@@ -41,7 +41,7 @@ export function sparseTerms({
 	terms
 }: UsedTerms): { events: readonly Event[]; rank: number }[] {
 	const values = [...new Set([0n, ...terms.map((term) => term.integer)])];
-	values.sort((a, b) => (a < b ? -1 : a > b ? 1 : 0));
+	values.sort((a, b) => (a < b ? -1 : 1));
 	const rankOf = new Map(values.map((value, rank) => [value, rank]));
 	const blocks = new Map<string, IntegerTerm[]>();
 	for (const term of terms) {
@@ -51,15 +51,11 @@ export function sparseTerms({
 		else blocks.set(key, [term]);
 	}
 	return [...blocks.values()].flatMap((block) => {
-		const entries = block.map(({ events, integer }) => ({
+		const zeros = zerosOfBlock(scenario, block).map((events) => ({ events, integer: 0n }));
+		const all = [...block, ...zeros].map(({ events, integer }) => ({
 			events,
 			rank: rankOf.get(integer) ?? 0
 		}));
-		const zeros = zerosOfBlock(scenario, block).map((events) => ({
-			events,
-			rank: rankOf.get(0n) ?? 0
-		}));
-		const all = [...entries, ...zeros];
 		const frequency = new Map<number, number>();
 		for (const { rank } of all) frequency.set(rank, (frequency.get(rank) ?? 0) + 1);
 		const [background] = [...frequency].reduce((a, b) =>

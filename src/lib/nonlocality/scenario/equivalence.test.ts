@@ -12,7 +12,7 @@ import {
 	rewrittenByNoSignalling
 } from '../../../../tests/factories/random-functional';
 import { lehmer } from '../../../../tests/factories/solver-problem';
-import { affineMap, canonicalForm, looseForm } from './equivalence';
+import { affineMap, agree, canonicalForm, looseForm } from './equivalence';
 import { familyFunctional, type FamilySpec } from './families';
 import { makeFunctional, scaleFunctional, type Functional } from './functional';
 import { functionalOfTerms } from './problem-terms';
@@ -298,5 +298,38 @@ describe('affine map', () => {
 		expect(canonicalForm(g).digest).toBe(form.digest);
 		expect(affineMap(g, f)?.scale.value).toBeCloseTo(3 * Math.cos(Math.PI / 7), 12);
 		expect(affineMap(f, familyFunctional({ name: 'tilted-chsh', alpha: '1.4142' }))).toBeNull();
+	});
+});
+
+describe('agree', () => {
+	const form = canonicalForm(familyFunctional({ name: 'chsh' }));
+	const withTerms = (change: (terms: Functional['terms']) => Functional['terms']) => ({
+		...form,
+		canonical: { ...form.canonical, terms: change(form.canonical.terms) }
+	});
+
+	it('compares term by term what has the same digest', () => {
+		expect(agree(form, form)).toBe(true);
+		expect(agree(form, { ...form, complete: false })).toBe(false);
+		expect(
+			agree(
+				form,
+				withTerms((terms) => terms.slice(1))
+			)
+		).toBe(false);
+		expect(
+			agree(
+				form,
+				withTerms((terms) => terms.toReversed())
+			)
+		).toBe(false);
+	});
+
+	it('leaves irrational coefficients out of the loose form', () => {
+		const [a, b] = ['sqrt(2)', 'sqrt(3)'].map((alpha) =>
+			looseForm(familyFunctional({ name: 'tilted-chsh', alpha }))
+		);
+		expect(a).toBe(b);
+		expect(a).not.toBe(looseForm(familyFunctional({ name: 'tilted-chsh', alpha: '1/2' })));
 	});
 });

@@ -135,9 +135,9 @@ function smallestScenario(uses: readonly Use[], parties: number, base: 0 | 1): n
 		return Array.from({ length: Math.max(1, ...inputs) }, () => 2);
 	});
 	for (const use of uses) {
-		const row = outputs[use.party];
+		const row = outputs[use.party] ?? [];
 		const input = use.index - base;
-		if (row) row[input] = Math.max(row[input] ?? 2, use.outputs);
+		row[input] = Math.max(row[input] ?? 2, use.outputs);
 	}
 	for (const use of uses) {
 		const count = outputs[use.party]?.[use.index - base] ?? 2;

@@ -1,6 +1,6 @@
 import { parseCoefficient } from '../exact/expression';
 import type { Coefficient } from '../exact/coefficient';
-import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { NotationError, errorWithin, NotationLimitError } from '../exact/notation-error';
 import { FAMILIES, type FamilyInfo, type FamilyName } from './family-list';
 import * as forms from './family-forms';
 import type { Functional } from './functional';
@@ -133,12 +133,7 @@ function matrixParameter(spec: FamilySpec): Coefficient[][] {
 			try {
 				return parseCoefficient(String(entry));
 			} catch (error) {
-				if (!(error instanceof NotationError)) throw error;
-				throw new NotationError(
-					`row ${x + 1}, column ${y + 1} of the matrix: ${error.message}`,
-					null,
-					error.suggestion
-				);
+				throw errorWithin(`row ${x + 1}, column ${y + 1} of the matrix`, error);
 			}
 		});
 	});

@@ -27,8 +27,8 @@ function relabelScenario(scenario: Scenario, relabelling: Relabelling): Scenario
 	scenario.outputs.forEach((counts, p) =>
 		counts.forEach((_, x) => {
 			const [party, input] = relabelEvent([p, x, 0], relabelling);
-			const row = outputs[party];
-			if (row) row[input] = outputCount(scenario, p, x);
+			const row = outputs[party] ?? [];
+			row[input] = outputCount(scenario, p, x);
 		})
 	);
 	return { outputs };

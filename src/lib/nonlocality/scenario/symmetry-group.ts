@@ -67,12 +67,11 @@ function relabellingOf(graph: EquivalenceGraph, permutation: Permutation): Relab
 	const inputs: number[][] = outputs.map(() => []);
 	const names: number[][][] = outputs.map((counts) => counts.map(() => []));
 	graph.events.forEach(([p, x, a], e) => {
-		const [party, input, output] = graph.events[permutation[e] ?? e] ?? [p, x, a];
-		parties[p] = party;
-		const ofParty = inputs[p];
-		if (ofParty) ofParty[x] = input;
-		const ofInput = names[p]?.[x];
-		if (ofInput) ofInput[a] = output;
+		const image = graph.events[permutation[e] ?? -1];
+		if (!image) throw new RangeError(`event ${e} has no image`);
+		const ofParty = inputs[p] ?? [];
+		const ofInput = names[p]?.[x] ?? [];
+		[parties[p], ofParty[x], ofInput[a]] = image;
 	});
 	return { parties, inputs, outputs: names };
 }

@@ -1,6 +1,6 @@
 import { COEFFICIENT_ZERO, type Coefficient } from '../exact/coefficient';
 import { parseCoefficient } from '../exact/expression';
-import { NotationError } from '../exact/notation-error';
+import { errorWithin } from '../exact/notation-error';
 import type { TableCell } from './table-text';
 
 /** Coefficient in a cell; an empty one is zero. Rows and columns count from 1 in messages. */
@@ -10,11 +10,6 @@ export function readCell(cell: TableCell, row: number, column: number): Coeffici
 	try {
 		return parseCoefficient(text);
 	} catch (error) {
-		if (!(error instanceof NotationError)) throw error;
-		throw new NotationError(
-			`row ${row + 1}, column ${column + 1}: ${error.message}`,
-			null,
-			error.suggestion
-		);
+		throw errorWithin(`row ${row + 1}, column ${column + 1}`, error);
 	}
 }

@@ -1,6 +1,6 @@
 import { isZero } from '../exact/coefficient';
 import { parseCoefficient } from '../exact/expression';
-import { NotationError, NotationLimitError } from '../exact/notation-error';
+import { NotationError, errorWithin, NotationLimitError } from '../exact/notation-error';
 import { observableTerms } from './expression-print';
 import {
 	collinsGisinForm,
@@ -180,8 +180,7 @@ export function parseProbabilities(
 		try {
 			return { coefficient: parseCoefficient(String(value)), events };
 		} catch (error) {
-			if (!(error instanceof NotationError)) throw error;
-			throw new NotationError(`${JSON.stringify(key)}: ${error.message}`, null, error.suggestion);
+			throw errorWithin(JSON.stringify(key), error);
 		}
 	});
 	return makeFunctional(scenario, terms);

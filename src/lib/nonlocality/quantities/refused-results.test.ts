@@ -101,12 +101,20 @@ describe('printed numbers', () => {
 		]) {
 			const problem = kind === 'local-mixture' ? { ...chsh, quantity: 'facet' } : chsh;
 			const certificate = { ...result.certificate, kind };
-			expect(check(result, { problem, certificate })).toMatchObject(
+			const { quantity } = problem;
+			expect(check(result, { quantity, problem, certificate })).toMatchObject(
 				refusedFor(
 					kind === 'local-mixture' ? /proves nothing on "facet"/ : /proves nothing on "local"/
 				)
 			);
 		}
+	});
+
+	it('of another quantity than its problem asks for', async () => {
+		const result = await solved(chsh);
+		expect(check(result, { quantity: 'quantum' })).toMatchObject(
+			refusedFor(/the result says "quantum", its problem "local"/)
+		);
 	});
 
 	it('of a local maximum under constraints, with a strategy alone', async () => {

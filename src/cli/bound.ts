@@ -8,12 +8,8 @@ import { CommandError, EXIT, printJson, readJson, runCommand } from './read-inpu
 const USAGE =
 	'usage: npm run --silent bound -- [--sdpa] FILE.json   (- for standard input; --help says more)';
 
-await runCommand(async () => {
+await runCommand(BOUND_HELP, async () => {
 	const args = process.argv.slice(2);
-	if (args.includes('--help') || args.includes('-h')) {
-		process.stdout.write(BOUND_HELP);
-		return EXIT.done;
-	}
 	const [first, ...rest] = args;
 	if (first === '--sdpa') return printProgramme(readProblem(readJson(USAGE, rest)));
 	const problem = readProblem(readJson(USAGE, args));

@@ -36,11 +36,7 @@ Example:
   echo '{"problem": {"family": {"name": "i3322"}, "quantity": "quantum"}, "value": "0.2509"}' | npm run --silent check-claim -- -
 `;
 
-await runCommand(async () => {
-	if (process.argv[2] === '--help') {
-		process.stdout.write(HELP);
-		return EXIT.done;
-	}
+await runCommand(HELP, async () => {
 	const written = readClaim(readJson(USAGE));
 	const reading = readValue(written);
 	const claim = { ...written, relation: readRelation(written, reading) };

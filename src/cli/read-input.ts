@@ -52,8 +52,15 @@ export function printJson(value: object): void {
 	process.stdout.write(`{\n${lines.join(',\n')}\n}\n`);
 }
 
-/** Runs a command to its exit code; what goes wrong is one line on standard error. */
-export async function runCommand(command: () => Promise<number>): Promise<void> {
+/**
+ * Runs a command to its exit code; what goes wrong is one line on standard error.
+ * @param help printed instead, on standard output, where it is asked for
+ */
+export async function runCommand(help: string, command: () => Promise<number>): Promise<void> {
+	if (process.argv.slice(2).some((argument) => argument === '--help' || argument === '-h')) {
+		process.stdout.write(help);
+		return;
+	}
 	try {
 		process.exitCode = await command();
 	} catch (error) {

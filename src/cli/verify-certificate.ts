@@ -15,11 +15,7 @@ and how (exit ${EXIT.done}), or {"checked": false, "reason"} (exit ${EXIT.unchec
 described in src/lib/nonlocality/README.md.
 `;
 
-await runCommand(async () => {
-	if (process.argv[2] === '--help') {
-		process.stdout.write(HELP);
-		return EXIT.done;
-	}
+await runCommand(HELP, async () => {
 	const json = readJson(USAGE);
 	const outcome = check(json);
 	printJson(outcome.checked ? { ...outcome, quantity: quantityOf(json) } : outcome);

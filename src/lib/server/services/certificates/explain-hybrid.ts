@@ -1,6 +1,7 @@
 import type { HybridCertificate } from '../../../nonlocality/certificates/types';
 import type { CertificateExplanation } from '../../../schemas/certificate-view';
 import { counted } from './counted';
+import { MAXIMUM_FIELD } from './maximum-field';
 
 const letters = (group: readonly number[]) =>
 	group.map((party) => String.fromCharCode(65 + party)).join('');
@@ -34,12 +35,7 @@ export function explainHybrid({ groups, bipartitions }: HybridCertificate): Cert
 						: 'left out: the strategies are compared instead',
 				numbers: bipartitions.length > 0 ? 'exact' : 'none'
 			},
-			{
-				name: 'value',
-				what: 'The maximum as a fraction; null where the two sides do not meet exactly.',
-				size: 'one number',
-				numbers: 'exact'
-			}
+			MAXIMUM_FIELD
 		],
 		proof: [
 			'Lower side: both tables are distributions (and no-signalling, in that model), and the functional at their product is the value.',

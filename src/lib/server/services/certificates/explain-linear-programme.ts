@@ -1,6 +1,7 @@
 import type { LinearProgrammeCertificate } from '../../../nonlocality/certificates/types';
 import type { CertificateExplanation } from '../../../schemas/certificate-view';
 import { entries } from './counted';
+import { MAXIMUM_FIELD } from './maximum-field';
 
 export function explainLinearProgramme({
 	primal,
@@ -24,12 +25,7 @@ export function explainLinearProgramme({
 				size: entries(dual),
 				numbers: 'exact'
 			},
-			{
-				name: 'value',
-				what: 'The maximum as a fraction; null where the two sides do not meet exactly.',
-				size: 'one number',
-				numbers: 'exact'
-			}
+			MAXIMUM_FIELD
 		],
 		proof: [
 			'Lower side: the entries of the box are at least 0, sum to 1 for every choice of inputs, and its marginals are independent of the other inputs; the functional at it is the value. All of it in fractions.',

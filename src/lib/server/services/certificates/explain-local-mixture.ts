@@ -1,6 +1,7 @@
 import type { LocalMixtureCertificate } from '../../../nonlocality/certificates/types';
 import type { CertificateExplanation } from '../../../schemas/certificate-view';
 import { counted } from './counted';
+import { MAXIMUM_FIELD } from './maximum-field';
 
 export function explainLocalMixture({
 	mixture,
@@ -24,12 +25,7 @@ export function explainLocalMixture({
 				size: counted(multipliers.length, 'number'),
 				numbers: 'exact'
 			},
-			{
-				name: 'value',
-				what: 'The maximum as a fraction; null where the two sides do not meet exactly.',
-				size: 'one number',
-				numbers: 'exact'
-			}
+			MAXIMUM_FIELD
 		],
 		proof: [
 			'Lower side: the mixture meets every constraint and the functional at it is the value, all in fractions.',

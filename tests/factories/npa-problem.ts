@@ -1,7 +1,7 @@
 import type { Control, Level, ProblemOf } from '../../src/lib/nonlocality/problem';
 import { familyFunctional, type FamilySpec } from '../../src/lib/nonlocality/scenario/families';
 import type { Functional } from '../../src/lib/nonlocality/scenario/functional';
-import { termsOfFunctional } from '../../src/lib/nonlocality/scenario/problem-terms';
+import { problemAbout } from './solver-problem';
 
 /** An npa problem about a family member or a functional, with everything else at its default. */
 export function npaProblem(
@@ -11,14 +11,8 @@ export function npaProblem(
 ): ProblemOf<'npa'> {
 	const functional = 'terms' in subject ? subject : familyFunctional(subject);
 	return {
-		format: 1,
+		...problemAbout(functional),
 		quantity: 'npa',
-		outputs: functional.scenario.outputs,
-		terms: termsOfFunctional(functional),
-		sense: 'max',
-		constraints: [],
-		seconds: 60,
-		seed: 0,
 		level,
 		nonNegative: false,
 		...overrides

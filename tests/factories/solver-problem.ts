@@ -1,4 +1,5 @@
-import type { Control, Problem, ProblemOf } from '../../src/lib/nonlocality/problem';
+import type { Control, DoneResult, Problem, ProblemOf } from '../../src/lib/nonlocality/problem';
+import { solve } from '../../src/lib/nonlocality/quantities/solve';
 import type { Functional } from '../../src/lib/nonlocality/scenario/functional';
 import { termsOfFunctional } from '../../src/lib/nonlocality/scenario/problem-terms';
 
@@ -8,6 +9,25 @@ export const quietControl: Control = {
 	shouldStop: () => false,
 	report: () => {}
 };
+
+/** A problem's fields beside its quantity, at their defaults. */
+export const problemAbout = (f: Functional) =>
+	({
+		format: 1,
+		outputs: f.scenario.outputs,
+		terms: termsOfFunctional(f),
+		sense: 'max',
+		constraints: [],
+		seconds: 60,
+		seed: 0
+	}) as const;
+
+/** The result of a problem that has one. @throws Error with the reason otherwise. */
+export async function solved(problem: Problem): Promise<DoneResult> {
+	const result = await solve(problem, quietControl);
+	if (result.status !== 'done') throw new Error(result.reason);
+	return result;
+}
 
 type Changes = Partial<Pick<Problem, 'sense' | 'seconds' | 'seed' | 'constraints'>>;
 
@@ -23,17 +43,7 @@ export function problemOn(
 	f: Functional,
 	changes: Changes = {}
 ): ProblemOf<'local' | 'no-signalling'> {
-	return {
-		format: 1,
-		quantity,
-		outputs: f.scenario.outputs,
-		terms: termsOfFunctional(f),
-		sense: 'max',
-		constraints: [],
-		seconds: 60,
-		seed: 0,
-		...changes
-	};
+	return { ...problemAbout(f), quantity, ...changes };
 }
 
 /** A small linear congruential generator (Lehmer, 48271 mod 2^31 - 1): tests repeat exactly. */

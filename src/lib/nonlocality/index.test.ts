@@ -1,17 +1,11 @@
 import { beforeAll, describe, expect, it } from 'vitest';
-import { problemOn, quietControl } from '../../../tests/factories/solver-problem';
+import { problemOn, solved } from '../../../tests/factories/solver-problem';
 import { asResult, expectChangesCaught } from '../../../tests/support/certificate-changes';
 import { asJson } from '../../../tests/support/changed-json';
 import { parseRational } from './exact/rational';
-import type { DoneResult, Problem } from './problem';
-import { solve, verifyResult } from './index';
+import type { DoneResult } from './problem';
+import { verifyResult } from './index';
 import { familyFunctional, type FamilySpec } from './scenario/families';
-
-async function solved(problem: Problem): Promise<DoneResult> {
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
-}
 
 // Values: Collins et al., PRL 88, 040404 (2002); Collins, Gisin, J. Phys. A 37, 1775 (2004); Almeida
 // et al., PRL 104, 230404 (2010); all from memory. I3322 at no-signalling: recomputed, unpublished.

@@ -1,5 +1,10 @@
 import { describe, expect, it } from 'vitest';
-import { lehmer, problemOn, quietControl } from '../../../../tests/factories/solver-problem';
+import {
+	lehmer,
+	problemOn,
+	quietControl,
+	solved
+} from '../../../../tests/factories/solver-problem';
 import { randomFunctional, randomRelabelling } from '../../../../tests/factories/random-functional';
 import { verifyResult } from '../certificates/verify';
 import { parseCoefficient } from '../exact/expression';
@@ -17,8 +22,7 @@ function facetProblem(f: Functional): Problem {
 }
 
 async function tested(f: Functional): Promise<DoneResult> {
-	const result = await solve(facetProblem(f), quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
+	const result = await solved(facetProblem(f));
 	expect(verifyResult(result)).toMatchObject({ checked: true, exact: result.exact });
 	return result;
 }

@@ -1,12 +1,17 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { randomFunctional, randomRelabelling } from '../../../../tests/factories/random-functional';
-import { lehmer, problemOn, quietControl } from '../../../../tests/factories/solver-problem';
+import {
+	lehmer,
+	problemOn,
+	quietControl,
+	solved
+} from '../../../../tests/factories/solver-problem';
 import { verifyResult } from '../certificates/verify';
 import { exactCoefficient } from '../exact/coefficient';
 import { parseCoefficient } from '../exact/expression';
 import { ONE, ZERO, parseRational, ratio, type Rational } from '../exact/rational';
-import type { DoneResult, HybridModel, Problem } from '../problem';
+import type { HybridModel, Problem } from '../problem';
 import { parseExpression } from '../scenario/expression';
 import { familyFunctional, type FamilySpec } from '../scenario/families';
 import { makeFunctional, scaleFunctional, type Functional } from '../scenario/functional';
@@ -16,12 +21,6 @@ import { solve } from './solve';
 
 function hybridProblem(f: Functional, model: HybridModel): Problem {
 	return { ...problemOn('local', f), quantity: 'hybrid', model };
-}
-
-async function solved(problem: Problem): Promise<DoneResult> {
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
 }
 
 /** The exact maximum, proved again on both sides by the check. */

@@ -1,14 +1,12 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { randomFunctional, randomRelabelling } from '../../../../tests/factories/random-functional';
-import { lehmer, quietControl } from '../../../../tests/factories/solver-problem';
+import { lehmer, problemAbout, solved } from '../../../../tests/factories/solver-problem';
 import { exactCoefficient } from '../exact/coefficient';
 import { parseRational, printRational, ratio, type Rational } from '../exact/rational';
 import type { DoneResult, Problem } from '../problem';
 import { makeFunctional, scaleFunctional, type Functional } from '../scenario/functional';
-import { termsOfFunctional } from '../scenario/problem-terms';
 import { relabelFunctional } from '../scenario/relabelling';
-import { solve } from './solve';
 
 const RUNS = 5;
 /** Of two solves of one relaxation, and of two searches that found the same strategy. */
@@ -67,15 +65,7 @@ const CHANGES: readonly (readonly [
 type Quantity = 'local' | 'no-signalling' | 'npa' | 'see-saw';
 
 function problemOf(f: Functional, quantity: Quantity): Problem {
-	const common = {
-		format: 1,
-		outputs: f.scenario.outputs,
-		terms: termsOfFunctional(f),
-		sense: 'max',
-		constraints: [],
-		seconds: 60,
-		seed: 3
-	} as const;
+	const common = { ...problemAbout(f), seed: 3 } as const;
 	const parties = f.scenario.outputs.length;
 	if (quantity === 'npa')
 		return {
@@ -87,12 +77,6 @@ function problemOf(f: Functional, quantity: Quantity): Problem {
 	if (quantity === 'see-saw')
 		return { ...common, quantity, dimension: [2], starts: 30, state: 'free' };
 	return { ...common, quantity };
-}
-
-async function solved(f: Functional, quantity: Quantity): Promise<DoneResult> {
-	const result = await solve(problemOf(f, quantity), quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
 }
 
 const SCENARIOS: readonly number[][][] = [
@@ -131,8 +115,8 @@ describe.each(CHANGES)('%s moves every value as it must', (_, change, scale, shi
 
 	it.each(['local', 'no-signalling'] as const)('%s, exactly', async (quantity) => {
 		await eachCase(async (f, changed) => {
-			const before = await solved(f, quantity);
-			const after = await solved(changed, quantity);
+			const before = await solved(problemOf(f, quantity));
+			const after = await solved(problemOf(changed, quantity));
 			const moved = exactOf(before).mul(scale).add(shift);
 			expect(printRational(exactOf(after))).toBe(printRational(moved));
 		});
@@ -140,8 +124,8 @@ describe.each(CHANGES)('%s moves every value as it must', (_, change, scale, shi
 
 	it('a relaxation, within its rounding', async () => {
 		await eachCase(async (f, changed) => {
-			const before = await solved(f, 'npa');
-			const after = await solved(changed, 'npa');
+			const before = await solved(problemOf(f, 'npa'));
+			const after = await solved(problemOf(changed, 'npa'));
 			const slack = SOLVER_DIFFERENCE * Math.max(sizeOf(f), sizeOf(changed));
 			for (const side of ['lower', 'upper'] as const)
 				expect(
@@ -152,8 +136,8 @@ describe.each(CHANGES)('%s moves every value as it must', (_, change, scale, shi
 
 	it('a strategy found, from the same number of starts', async () => {
 		await eachCase(async (f, changed) => {
-			const before = await solved(f, 'see-saw');
-			const after = await solved(changed, 'see-saw');
+			const before = await solved(problemOf(f, 'see-saw'));
+			const after = await solved(problemOf(changed, 'see-saw'));
 			const slack = SEARCH_DIFFERENCE * sizeOf(f);
 			const expected = Number(scale) * (before.lower ?? NaN) + Number(shift);
 			expect(Math.abs((after.lower ?? NaN) - expected)).toBeLessThan(slack);

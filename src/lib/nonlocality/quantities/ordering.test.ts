@@ -1,32 +1,15 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { randomFunctional } from '../../../../tests/factories/random-functional';
-import { lehmer, quietControl } from '../../../../tests/factories/solver-problem';
-import type { DoneResult, Level, Problem } from '../problem';
+import { lehmer, problemAbout, solved } from '../../../../tests/factories/solver-problem';
+import type { Level } from '../problem';
 import type { Functional } from '../scenario/functional';
-import { termsOfFunctional } from '../scenario/problem-terms';
-import { solve } from './solve';
 
 /** What two solves of relaxations may differ by, as a share of the sum of |coefficients|. */
 const SOLVER_DIFFERENCE = 3e-9;
 const RUNS = 8;
 
-const common = (f: Functional) =>
-	({
-		format: 1,
-		outputs: f.scenario.outputs,
-		terms: termsOfFunctional(f),
-		sense: 'max',
-		constraints: [],
-		seconds: 60,
-		seed: 1
-	}) as const;
-
-async function solved(problem: Problem): Promise<DoneResult> {
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
-}
+const common = (f: Functional) => ({ ...problemAbout(f), seed: 1 }) as const;
 
 const known = (side: number | null) => side ?? NaN;
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { problemOn, quietControl } from '../../../../tests/factories/solver-problem';
+import { problemOn, solved } from '../../../../tests/factories/solver-problem';
 import type {
 	Certificate,
 	FacetCertificate,
@@ -10,13 +10,6 @@ import { checkFacet } from '../certificates/check-facet';
 import { verifyResult } from '../certificates/verify';
 import type { DoneResult, Problem } from '../problem';
 import { familyFunctional } from '../scenario/families';
-import { solve } from './solve';
-
-async function solved(problem: Problem): Promise<DoneResult> {
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
-}
 
 const svetlichny = problemOn('local', familyFunctional({ name: 'svetlichny', n: 3 }));
 const chsh = problemOn('local', familyFunctional({ name: 'chsh' }));

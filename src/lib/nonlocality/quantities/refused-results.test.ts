@@ -1,21 +1,14 @@
 /** Results that were never the solver's: each is refused, with what is wrong. */
 import { describe, expect, it } from 'vitest';
 import { CHSH_STRATEGY } from '../../../../tests/factories/chsh-strategy';
-import { problemOn, quietControl } from '../../../../tests/factories/solver-problem';
+import { problemOn, quietControl, solved } from '../../../../tests/factories/solver-problem';
 import { asResult } from '../../../../tests/support/certificate-changes';
 import { asJson } from '../../../../tests/support/changed-json';
 import { verifyResult } from '../certificates/verify';
-import type { DoneResult, Problem } from '../problem';
 import { familyFunctional } from '../scenario/families';
 import { solve } from './solve';
 
 const chsh = problemOn('local', familyFunctional({ name: 'chsh' }));
-
-async function solved(problem: Problem): Promise<DoneResult> {
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result;
-}
 
 /** Whatever JSON a stored result may hold. */
 const check = (...parts: object[]) => verifyResult(asResult(asJson(Object.assign({}, ...parts))));

@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { problemOn, quietControl } from '../../../../tests/factories/solver-problem';
+import { problemOn, solved } from '../../../../tests/factories/solver-problem';
 import { parseCoefficient } from '../exact/expression';
-import { solve } from '../index';
 import { familyFunctional, familyInfo, type FamilySpec } from './families';
 
 /** The value of a formula of the list, its parameter put in. */
@@ -17,9 +16,7 @@ function listed(formula: string, spec: FamilySpec): string {
 async function exactMaximum(quantity: 'local' | 'no-signalling', spec: FamilySpec) {
 	const f = familyFunctional(spec);
 	const problem = quantity === 'local' ? problemOn('local', f) : problemOn('no-signalling', f);
-	const result = await solve(problem, quietControl);
-	if (result.status !== 'done') throw new Error(result.reason);
-	return result.exact;
+	return (await solved(problem)).exact;
 }
 
 const MEMBERS: FamilySpec[] = [
